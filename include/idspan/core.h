@@ -1,0 +1,199 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/**
+ * @file core.h
+ * Status codes and the context: allocator, byte budget, progress, cancel, last error.
+ *
+ * Every call that can fail returns an ids_status, and those that allocate or run long take
+ * an ids_ctx first. The library never aborts, exits, prints, or keeps process-wide state.
+ */
+#ifndef IDSPAN_CORE_H
+#define IDSPAN_CORE_H
+
+#include <stddef.h>
+#include <stdint.h>
+
+#include <idspan/export.h>
+#include <idspan/version.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+#if defined(__GNUC__) || defined(__clang__)
+#define IDS_MUST_USE __attribute__((warn_unused_result))
+#else
+#define IDS_MUST_USE
+#endif
+
+/**
+ * The list of status codes: name, value, one-line text. Values are frozen.
+ */
+#define IDS_STATUS_LIST(X)                                                            \
+    X(IDS_OK, 0, "done")                                                              \
+    X(IDS_ERR_NOMEM, 1, "the allocator refused memory")                               \
+    X(IDS_ERR_LIMIT, 2, "a size limit, 64 bits, or the byte budget would be exceeded") \
+    X(IDS_ERR_ARG, 3, "an argument is not acceptable")                                \
+    X(IDS_ERR_PARSE, 4, "the text is not well formed")                                \
+    X(IDS_ERR_DOMAIN, 5, "the result is not defined for this input")                  \
+    X(IDS_ERR_UNABLE, 6, "the method does not cover this input")                      \
+    X(IDS_ERR_NOT_CANONICAL, 7, "well formed, but not the chosen one of its class")   \
+    X(IDS_ERR_CANCELLED, 8, "cancelled by the caller")                                \
+    X(IDS_ERR_IO, 9, "reading or writing failed")                                     \
+    X(IDS_ERR_INTERNAL, 10, "internal error: please report it")
+
+/** What a call came to. */
+typedef enum ids_status {
+#define IDS_STATUS_ENUM(name, value, text) name = value,
+    IDS_STATUS_LIST(IDS_STATUS_ENUM)
+#undef IDS_STATUS_ENUM
+} ids_status;
+
+/**
+ * Name of a status code, such as "IDS_ERR_PARSE".
+ *
+ * @param status  any value; an unknown one gives "IDS_ERR_UNKNOWN".
+ * @return a static string, never NULL.
+ * Cost: constant. Threads: any. Since: 0.1
+ */
+IDS_API const char *ids_status_name(ids_status status);
+
+/**
+ * One-line English text of a status code.
+ *
+ * @param status  any value; an unknown one gives a text that says so.
+ * @return a static string, never NULL.
+ * Cost: constant. Threads: any. Since: 0.1
+ */
+IDS_API const char *ids_status_text(ids_status status);
+
+/** The context: one thread at a time may pass it to calls; see ids_ctx_create(). */
+typedef struct ids_ctx ids_ctx;
+
+/**
+ * The one allocator function of a context.
+ *
+ * `ptr == NULL` allocates `new_size` bytes; `new_size == 0` frees; otherwise resizes.
+ * Memory is aligned as malloc's. Returns NULL when it refuses; the old block is then intact.
+ * It may be called from any thread that uses an object of the context.
+ */
+typedef void *(*ids_resize_fn)(void *user, void *ptr, size_t old_size, size_t new_size);
+
+/** What a progress hook is told. */
+typedef struct ids_progress {
+    const char *stage; /**< what is being done, borrowed until the hook returns */
+    uint32_t degree;   /**< degree that is being worked on, 0 when there is none */
+    uint64_t done;     /**< units of work done in this stage */
+    uint64_t total;    /**< units of work in this stage; 0 when unknown */
+    double share;      /**< share of the estimated cost of the whole call, 0 .. 1 */
+} ids_progress;
+
+/** Progress hook, called about ten times a second; non-zero cancels the call. */
+typedef int (*ids_progress_fn)(void *user, const ids_progress *progress);
+
+/** Options of ids_ctx_create(); set struct_size to sizeof(ids_ctx_options), the rest to 0. */
+typedef struct ids_ctx_options {
+    size_t struct_size;           /**< sizeof(ids_ctx_options) */
+    ids_resize_fn resize;         /**< NULL: malloc, realloc, free */
+    void *resize_user;            /**< passed to resize; kept */
+    uint64_t byte_budget;         /**< most bytes that may be live at once; 0: no limit */
+    ids_progress_fn progress;     /**< NULL: none */
+    void *progress_user;          /**< passed to progress; kept */
+    uint32_t threads;             /**< most threads a call may use; 0 counts as 1 */
+} ids_ctx_options;
+
+/**
+ * Makes a context.
+ *
+ * @param options  borrowed; NULL for the defaults (malloc, no budget, no progress, one thread).
+ * @param ctx      out, owned: free with ids_ctx_free() after every object made with it.
+ * @return IDS_OK, IDS_ERR_ARG (ctx NULL, struct_size unknown), IDS_ERR_NOMEM
+ * Cost: one allocation. Threads: any; one context serves one thread at a time. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_ctx_create(const ids_ctx_options *options, ids_ctx **ctx);
+
+/**
+ * Frees a context. Objects made with it must have been freed before.
+ *
+ * @param ctx  owned; NULL is fine.
+ * Since: 0.1
+ */
+IDS_API void ids_ctx_free(ids_ctx *ctx);
+
+/**
+ * Asks the call that runs with this context to stop with IDS_ERR_CANCELLED.
+ *
+ * Sets an atomic flag and nothing else. The flag is cleared when a call has answered it.
+ * @param ctx  borrowed; NULL is fine.
+ * Threads: any, and signal handlers. Since: 0.1
+ */
+IDS_API void ids_ctx_cancel(ids_ctx *ctx);
+
+/**
+ * Explanation of the last failure in this context, "" when there was none.
+ *
+ * @param ctx  borrowed; NULL gives "".
+ * @return a string that lives until the next call with ctx. UTF-8, without a final newline;
+ *         it can have several lines (a parse error shows the source line with a caret).
+ * Since: 0.1
+ */
+IDS_API const char *ids_ctx_message(const ids_ctx *ctx);
+
+/**
+ * Status of the last failure in this context, IDS_OK when there was none.
+ *
+ * @param ctx  borrowed; NULL gives IDS_ERR_ARG.
+ * Since: 0.1
+ */
+IDS_API ids_status ids_ctx_last_status(const ids_ctx *ctx);
+
+/** Where in an input the last IDS_ERR_PARSE stands. */
+typedef struct ids_place {
+    uint32_t line;   /**< from 1; 0: no place is known */
+    uint32_t column; /**< from 1, in characters (not bytes) */
+} ids_place;
+
+/**
+ * Place in the input of the last failure, {0, 0} when it has none.
+ *
+ * @param ctx  borrowed; NULL gives {0, 0}.
+ * Since: 0.1
+ */
+IDS_API ids_place ids_ctx_last_place(const ids_ctx *ctx);
+
+/** Memory that a context accounts for. */
+typedef struct ids_memory {
+    uint64_t live;   /**< bytes allocated now */
+    uint64_t peak;   /**< most bytes that were live at once */
+    uint64_t budget; /**< the byte budget, 0: none */
+} ids_memory;
+
+/**
+ * Memory in use through this context. Memory inside GMP and FLINT is not in it.
+ *
+ * @param ctx  borrowed; NULL gives zeros.
+ * Since: 0.1
+ */
+IDS_API ids_memory ids_ctx_memory(const ids_ctx *ctx);
+
+/**
+ * Sets the most threads that later calls may use.
+ *
+ * Results do not depend on it. @param ctx borrowed; NULL is fine. @param threads 0 counts as 1.
+ * Since: 0.1
+ */
+IDS_API void ids_ctx_set_threads(ids_ctx *ctx, uint32_t threads);
+
+/**
+ * Frees a string that the library handed out as owned.
+ *
+ * @param ctx     borrowed: the context that made the string.
+ * @param string  owned; NULL is fine.
+ * Since: 0.1
+ */
+IDS_API void ids_string_free(ids_ctx *ctx, char *string);
+
+#ifdef __cplusplus
+}
+#endif
+
+#endif

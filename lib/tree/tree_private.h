@@ -1,0 +1,190 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Signatures, prefix-code trees, association types and label distributions, as the other
+ * rooms see them.
+ */
+#ifndef IDSI_TREE_PRIVATE_H
+#define IDSI_TREE_PRIVATE_H
+
+#include <idspan/tree.h>
+
+#include "../core/core_private.h"
+
+/* ---- prefix code ------------------------------------------------------------------------
+ * A tree is an array of tokens in prefix order: a node is its operation, then its arguments;
+ * a leaf is its label (>= 1). A tree of degree n has at most 2n-1 tokens.
+ */
+typedef uint32_t idsi_token;
+
+#define IDSI_NODE_BIT 0x80000000u
+#define IDSI_MAX_TOKENS (2u * IDS_MAX_DEGREE - 1u)
+
+static inline bool idsi_is_node(idsi_token token)
+{
+    return (token & IDSI_NODE_BIT) != 0;
+}
+
+static inline idsi_token idsi_node(uint32_t op)
+{
+    return IDSI_NODE_BIT | op;
+}
+
+static inline uint32_t idsi_node_op(idsi_token token)
+{
+    return token & ~IDSI_NODE_BIT;
+}
+
+/* ---- groups of signed argument orders ------------------------------------------------------- */
+
+/* order of arguments: result[i] = argument[image[i]] */
+typedef struct idsi_group {
+    uint32_t arity;
+    ids_symmetry symmetry;      /* elements are listed for GENERATED only */
+    uint64_t order;
+    ids_signed_order *elements; /* `order` of them, identity first */
+} idsi_group;
+
+/* The group that `count` signed orders generate. IDS_ERR_DOMAIN when the signs contradict. */
+ids_status idsi_group_close(ids_ctx *ctx, uint32_t arity, const ids_signed_order *generators,
+                            size_t count, idsi_group *group);
+void idsi_group_clear(ids_ctx *ctx, idsi_group *group);
+
+/*
+ * Chooses the canonical argument order. `key[i]` is the size of argument i (larger first) and
+ * `label[i]` breaks ties (smaller first); pass label = NULL for none. Writes image with
+ * canonical[i] = argument[image[i]] and returns the sign, op(arguments) = sign * op(canonical).
+ */
+int idsi_group_canonical(const idsi_group *group, const uint64_t *key, const uint64_t *label,
+                         uint8_t *image);
+
+/* ---- signature --------------------------------------------------------------------------------- */
+
+typedef struct idsi_op {
+    ids_notation notation;
+    char *open;
+    char *close; /* NULL unless a fence */
+    uint32_t arity;
+    idsi_group group;
+    ids_signed_order *generators; /* as declared, for printing; NULL unless GENERATED */
+    size_t generator_count;
+} idsi_op;
+
+struct ids_signature {
+    ids_ctx *ctx;
+    size_t count;
+    idsi_op *ops;
+};
+
+/* ---- trees ----------------------------------------------------------------------------------------- */
+
+/* Number of tokens of the subtree that starts at `tree`. */
+size_t idsi_tree_length(const ids_signature *sig, const idsi_token *tree);
+/* Number of its leaves. */
+uint32_t idsi_tree_degree(const ids_signature *sig, const idsi_token *tree);
+/*
+ * Size order of the shapes: degree, then operation (declared earlier = larger), then arguments
+ * from left to right. < 0, 0, > 0; labels do not count.
+ */
+int idsi_tree_compare_shape(const ids_signature *sig, const idsi_token *a, const idsi_token *b);
+/* Total order of labelled canonical trees: larger shape first, then leaf labels left to right. */
+int idsi_tree_compare(const ids_signature *sig, const idsi_token *a, const idsi_token *b);
+/*
+ * Makes a tree canonical in place (labels may repeat); returns the sign, 0 when the tree is zero.
+ * `length` tokens; no allocation.
+ */
+int idsi_tree_canonicalize(const ids_signature *sig, idsi_token *tree, size_t length);
+
+struct ids_mono {
+    ids_ctx *ctx;
+    const ids_signature *sig;
+    uint32_t degree;
+    uint32_t length;
+    idsi_token tokens[]; /* length */
+};
+
+ids_status idsi_mono_from_tokens(ids_ctx *ctx, const ids_signature *sig, const idsi_token *tokens,
+                                 size_t length, ids_mono **mono);
+/*
+ * Appends a tree in the signature's notation. names[i] is written for label i+1; names == NULL
+ * gives the standard letters a, b, c, ... without those that name an operation.
+ * An infix product inside another product gets parentheses.
+ */
+ids_status idsi_tree_print(const ids_signature *sig, const idsi_token *tree,
+                           const char *const *names, idsi_text *text);
+/* The standard name of label 1, 2, ...: letters that are not operations, then x1, x2, ...;
+ * label 0 gives the letter for a leaf without label. At most 15 bytes and the NUL. */
+void idsi_label_name(const ids_signature *sig, uint32_t label, char name[16]);
+
+/* ---- label distributions -------------------------------------------------------------------------------
+ * How a set of labels is dealt to the arguments of a node, with the symmetries divided out
+ * (lib/tree/split.c). Argument i takes size[i] labels. parent[i] < i says that argument i is
+ * one of those that a symmetry can bring to place parent[i], so that argument parent[i] must
+ * hold the least label of its whole family (i's and its descendants' sets included).
+ */
+#define IDSI_SPLIT_MAX 16u
+
+typedef struct idsi_split {
+    uint32_t count;                  /* arguments */
+    uint32_t total;                  /* labels in all */
+    uint8_t size[IDSI_SPLIT_MAX];    /* labels of each argument */
+    int8_t parent[IDSI_SPLIT_MAX];   /* -1: a root of the forest */
+    uint8_t family[IDSI_SPLIT_MAX];  /* labels of the argument and all its descendants */
+    uint64_t ways;                   /* number of distributions; 0 when beyond 64 bits */
+    uint64_t stabilizer;             /* order of the group that was divided out */
+} idsi_split;
+
+/* Fills everything from count, size and parent. */
+void idsi_split_prepare(idsi_split *split);
+/* The distributions for a group and canonical keys: arguments with equal keys may be swapped. */
+void idsi_split_for_group(const idsi_group *group, const uint64_t *key, const uint8_t *size,
+                          idsi_split *split);
+/*
+ * Rank of the distribution sets[0..count-1] of the label set `all` (bit l-1 = label l): 0 .. ways-1,
+ * in lexicographic order of the sets in turn. The sets must be canonical (see idsi_split_is_canonical).
+ */
+uint64_t idsi_split_rank(const idsi_split *split, uint64_t all, const uint64_t *sets);
+void idsi_split_unrank(const idsi_split *split, uint64_t all, uint64_t rank, uint64_t *sets);
+bool idsi_split_is_canonical(const idsi_split *split, const uint64_t *sets);
+/* Next distribution in rank order; false after the last one. */
+bool idsi_split_next(const idsi_split *split, uint64_t all, uint64_t *sets);
+
+/* Spreads the low bits of `bits` over the set bits of `mask`, and back (pdep, pext). */
+uint64_t idsi_bits_deposit(uint64_t bits, uint64_t mask);
+uint64_t idsi_bits_extract(uint64_t bits, uint64_t mask);
+
+/* ---- association types ------------------------------------------------------------------------------------ */
+
+typedef struct idsi_type {
+    uint32_t op;          /* UINT32_MAX for the leaf */
+    uint32_t degree;
+    uint32_t children;    /* first child in ids_types.children */
+    uint64_t automorphisms; /* 0: beyond 64 bits */
+    uint64_t monomials;     /* 0: beyond 64 bits */
+} idsi_type;
+
+/*
+ * Type number 0 is the leaf; then degree by degree, largest first. first[d] is the number of the
+ * first type of degree d, first[max_degree+1] the number of all. Within a degree a smaller number
+ * is a larger type.
+ */
+struct ids_types {
+    ids_ctx *ctx;
+    const ids_signature *sig;
+    uint32_t max_degree;
+    idsi_type *list;
+    uint32_t *children;
+    uint32_t *first;
+};
+
+/* Key that orders types by size: larger key, larger type. */
+static inline uint64_t idsi_type_key(const ids_types *types, uint32_t type)
+{
+    return ((uint64_t)types->list[type].degree << 32) | (UINT32_MAX - type);
+}
+
+/* The label distributions of a type's root. */
+void idsi_type_split(const ids_types *types, uint32_t type, idsi_split *split);
+/* Number of the type of a canonical tree; UINT32_MAX when the degree is not listed. */
+uint32_t idsi_types_find(const ids_types *types, const idsi_token *tree);
+
+#endif
