@@ -1,0 +1,122 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/**
+ * @file identity.h
+ * Presentations: a signature with polynomial identities, read from and written to text.
+ *
+ * The text format is in idspan(5) and in README.md, "The presentation file".
+ */
+#ifndef IDSPAN_IDENTITY_H
+#define IDSPAN_IDENTITY_H
+
+#include <idspan/tree.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+/** A signature, its identities and its candidates. Immutable once read, shareable. */
+typedef struct ids_presentation ids_presentation;
+
+/** Whether an identity is imposed or only to be tested. */
+typedef enum ids_role {
+    IDS_ROLE_IDENTITY = 0, /**< imposed */
+    IDS_ROLE_CANDIDATE = 1 /**< to be tested */
+} ids_role;
+
+/**
+ * Reads a presentation.
+ *
+ * @param ctx           borrowed now, kept.
+ * @param text          borrowed; UTF-8; need not end in NUL.
+ * @param length        bytes of text.
+ * @param source        borrowed: name of the text for messages (a file name); NULL: "input".
+ * @param presentation  out, owned: ids_presentation_free().
+ * @return IDS_OK; IDS_ERR_PARSE (ids_ctx_message() names source, line and column, shows the line
+ *         with a caret and says what was expected; ids_ctx_last_place() gives the place);
+ *         IDS_ERR_DOMAIN (a sign character that forces an operation to be zero; with place);
+ *         IDS_ERR_LIMIT (degree, number of terms or byte budget; with place where there is one);
+ *         IDS_ERR_ARG; IDS_ERR_NOMEM
+ * Cost: linear in the text and in the terms of the expanded definitions. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_presentation_read(ids_ctx *ctx, const char *text, size_t length,
+                                                      const char *source,
+                                                      ids_presentation **presentation);
+
+/** Frees a presentation; NULL is fine. Since: 0.1 */
+IDS_API void ids_presentation_free(ids_presentation *presentation);
+
+/** Signature of a presentation, borrowed from it; NULL for NULL. Since: 0.1 */
+IDS_API const ids_signature *ids_presentation_signature(const ids_presentation *presentation);
+
+/** Number of identities, or of candidates; 0 for NULL. Since: 0.1 */
+IDS_API size_t ids_presentation_count(const ids_presentation *presentation, ids_role role);
+
+/** What is known of one identity or candidate. */
+typedef struct ids_identity_info {
+    const char *name;      /**< borrowed; "" when it has none */
+    uint32_t degree;       /**< degree of the identity */
+    uint32_t line;         /**< line of the text it was read from */
+    uint64_t terms;        /**< terms as written, definitions expanded and equal ones collected */
+    uint64_t linear_terms; /**< terms of its complete linearisation */
+    bool multilinear;      /**< every variable once in each term */
+} ids_identity_info;
+
+/**
+ * Describes an identity or candidate, in the order of the text.
+ *
+ * @return IDS_OK, IDS_ERR_ARG. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_presentation_info(const ids_presentation *presentation,
+                                                      ids_role role, size_t index,
+                                                      ids_identity_info *info);
+
+/** Which form of an identity ids_presentation_print_identity() writes. */
+typedef enum ids_form {
+    IDS_FORM_WRITTEN = 0, /**< as written, definitions expanded, monomials canonical */
+    IDS_FORM_LINEAR = 1   /**< complete linearisation, integer coefficients with content 1 */
+} ids_form;
+
+/**
+ * Writes the polynomial of an identity or candidate as text, "0" when it is zero.
+ *
+ * @param text  out, owned: ids_string_free().
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_presentation_print_identity(ids_ctx *ctx,
+                                                                const ids_presentation *presentation,
+                                                                ids_role role, size_t index,
+                                                                ids_form form, char **text);
+
+/**
+ * Writes a whole presentation as text that reads back to the same presentation.
+ *
+ * Definitions are expanded; comments are not kept.
+ * @param text  out, owned: ids_string_free().
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_presentation_print(ids_ctx *ctx,
+                                                       const ids_presentation *presentation,
+                                                       char **text);
+
+/**
+ * Whether two presentations have the same operations, identities and candidates (names included).
+ *
+ * Since: 0.1
+ */
+IDS_API bool ids_presentation_equal(const ids_presentation *a, const ids_presentation *b);
+
+/**
+ * Writes one operation as it is declared, for instance "a*b commutative".
+ *
+ * @param text  out, owned: ids_string_free().
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_signature_print_operation(ids_ctx *ctx,
+                                                              const ids_signature *signature,
+                                                              size_t index, char **text);
+
+#ifdef __cplusplus
+}
+#endif
+
+#endif

@@ -1,0 +1,15 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/**
+ * @file idspan.h
+ * The one header a user includes.
+ */
+#ifndef IDSPAN_IDSPAN_H
+#define IDSPAN_IDSPAN_H
+
+#include <idspan/answer.h>
+#include <idspan/core.h>
+#include <idspan/identity.h>
+#include <idspan/render.h>
+#include <idspan/tree.h>
+
+#endif

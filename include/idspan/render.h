@@ -1,0 +1,85 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/**
+ * @file render.h
+ * Writers for tables: aligned text for people; CSV, JSON and LaTeX as stable contracts.
+ */
+#ifndef IDSPAN_RENDER_H
+#define IDSPAN_RENDER_H
+
+#include <idspan/core.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+/** Output format. */
+typedef enum ids_format {
+    IDS_FORMAT_TEXT = 0,  /**< aligned columns, for people; not a contract */
+    IDS_FORMAT_CSV = 1,   /**< RFC 4180, header line, LF line ends */
+    IDS_FORMAT_JSON = 2,  /**< RFC 8259: {"task": ..., "columns": [...], "rows": [{...}]} */
+    IDS_FORMAT_LATEX = 3  /**< a tabular with booktabs rules */
+} ids_format;
+
+/** What the cells of a column are. */
+typedef enum ids_column_kind {
+    IDS_COLUMN_NUMBER = 0, /**< an integer in decimal digits: right-justified, bare in JSON */
+    IDS_COLUMN_TEXT = 1,   /**< words: left-justified, a string in JSON */
+    IDS_COLUMN_MATH = 2    /**< a formula: as TEXT, but in math mode in LaTeX */
+} ids_column_kind;
+
+/** One column of a table. */
+typedef struct ids_column {
+    const char *name;     /**< heading; key in JSON */
+    ids_column_kind kind; /**< kind of its cells */
+    uint32_t width;       /**< least width in text format, in characters; 0: as wide as needed */
+} ids_column;
+
+/** Receives output; returns 0, or non-zero to stop with IDS_ERR_IO. `bytes` is borrowed. */
+typedef int (*ids_sink_fn)(void *user, const char *bytes, size_t length);
+
+/** A table that is being written. */
+typedef struct ids_writer ids_writer;
+
+/**
+ * Starts a table. Rows are written as they come; text format holds back some rows to align them.
+ *
+ * @param ctx      borrowed now, kept.
+ * @param format   output format.
+ * @param task     borrowed: name of the table in JSON, label in LaTeX.
+ * @param columns  borrowed now, names copied; count of them, at least 1.
+ * @param sink     receives the output; sink_user is kept and passed to it.
+ * @param writer   out, owned: ids_writer_free(), after ids_writer_end() for a complete table.
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_writer_create(ids_ctx *ctx, ids_format format, const char *task,
+                                                  const ids_column *columns, size_t count,
+                                                  ids_sink_fn sink, void *sink_user,
+                                                  ids_writer **writer);
+
+/**
+ * Adds a name and value that JSON keeps beside the rows and text shows as a line after them
+ * (CSV and LaTeX leave it out, LaTeX as a comment). Call it before ids_writer_end().
+ *
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *name,
+                                                const char *value);
+
+/**
+ * Writes one row; cells[i] is borrowed text for column i, as many as there are columns.
+ *
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_writer_row(ids_writer *writer, const char *const *cells);
+
+/** Writes what is held back and the end of the table. @return as ids_writer_row(). Since: 0.1 */
+IDS_API IDS_MUST_USE ids_status ids_writer_end(ids_writer *writer);
+
+/** Frees a writer; NULL is fine. Since: 0.1 */
+IDS_API void ids_writer_free(ids_writer *writer);
+
+#ifdef __cplusplus
+}
+#endif
+
+#endif

@@ -1,0 +1,78 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Polynomials and presentations as the engines see them.
+ */
+#ifndef IDSI_IDENTITY_PRIVATE_H
+#define IDSI_IDENTITY_PRIVATE_H
+
+#include <gmp.h>
+
+#include <idspan/identity.h>
+
+#include "../tree/tree_private.h"
+
+/* Most terms a polynomial may have, written or linearised; over it: IDS_ERR_LIMIT. */
+#define IDSI_MAX_TERMS 4000000u
+/* Largest degree of an identity or candidate. */
+#define IDSI_MAX_IDENTITY_DEGREE 16u
+
+/*
+ * A polynomial: terms in idsi_tree_compare() order, no two with the same tree, no coefficient 0,
+ * every tree canonical. All trees have the same degree, so term i's tree is
+ * tokens[start[i] .. start[i+1]).
+ */
+typedef struct idsi_poly {
+    ids_ctx *ctx;
+    const ids_signature *sig;
+    uint32_t degree;    /* 0 when there are no terms */
+    uint32_t variables; /* labels are 1 .. variables */
+    size_t count;
+    mpq_t *coefficients;
+    size_t *start; /* count + 1 entries */
+    idsi_token *tokens;
+    size_t term_capacity;
+    size_t token_capacity;
+} idsi_poly;
+
+void idsi_poly_init(idsi_poly *poly, ids_ctx *ctx, const ids_signature *sig);
+void idsi_poly_clear(idsi_poly *poly);
+/* Appends a term as it stands (no sorting, no canonical form); coefficient may be 0. */
+ids_status idsi_poly_append(idsi_poly *poly, mpq_srcptr coefficient, const idsi_token *tree,
+                            size_t length);
+/* Makes all trees canonical, sorts, collects equal trees, drops zeros, sets degree. */
+ids_status idsi_poly_normalize(idsi_poly *poly);
+/* Multiplies by a rational so that coefficients are integers with content 1, the first positive. */
+void idsi_poly_primitive(idsi_poly *poly);
+bool idsi_poly_equal(const idsi_poly *a, const idsi_poly *b);
+/* names as in idsi_tree_print(). Writes "0" for no terms. */
+ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi_text *text);
+
+/*
+ * Complete linearisation: a variable of multiplicity m becomes m variables, summed over all m!
+ * ways to place them; primitive. Variables keep their order: x x y z z -> x1 x2 y z1 z2.
+ * The polynomial must have every variable equally often in each term.
+ */
+ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear);
+
+typedef struct idsi_identity {
+    ids_role role;
+    char *name;     /* "" when it has none */
+    char **letters; /* variable names as written, written.variables of them */
+    uint32_t line;
+    bool multilinear;
+    idsi_poly written; /* normalised; labels 1.. number the variables in order of first use */
+    idsi_poly linear;  /* primitive, multilinear; no terms when the identity is trivial */
+} idsi_identity;
+
+struct ids_presentation {
+    ids_ctx *ctx;
+    ids_signature *sig;
+    size_t count; /* identities and candidates in the order of the text */
+    idsi_identity *list;
+};
+
+/* The index-th identity of a role, NULL when out of range. */
+const idsi_identity *idsi_presentation_get(const ids_presentation *pres, ids_role role,
+                                           size_t index);
+
+#endif
