@@ -86,7 +86,7 @@ uint32_t idsi_tree_degree(const ids_signature *sig, const idsi_token *tree);
  * from left to right. < 0, 0, > 0; labels do not count.
  */
 int idsi_tree_compare_shape(const ids_signature *sig, const idsi_token *a, const idsi_token *b);
-/* Total order of labelled canonical trees: larger shape first, then leaf labels left to right. */
+/* Total order of labelled trees: larger shape first, then least label, then labels left to right. */
 int idsi_tree_compare(const ids_signature *sig, const idsi_token *a, const idsi_token *b);
 /*
  * Makes a tree canonical in place (labels may repeat); returns the sign, 0 when the tree is zero.
@@ -139,18 +139,16 @@ void idsi_split_prepare(idsi_split *split);
 void idsi_split_for_group(const idsi_group *group, const uint64_t *key, const uint8_t *size,
                           idsi_split *split);
 /*
- * Rank of the distribution sets[0..count-1] of the label set `all` (bit l-1 = label l): 0 .. ways-1,
- * in lexicographic order of the sets in turn. The sets must be canonical (see idsi_split_is_canonical).
+ * Rank of the distribution sets[0..count-1] of the label set `all` (bit l-1 = label l): 0 .. ways-1.
+ * The order is lexicographic, argument by argument: first the labels of the argument's whole
+ * family, then its own. The sets must be canonical (see idsi_split_is_canonical).
  */
 uint64_t idsi_split_rank(const idsi_split *split, uint64_t all, const uint64_t *sets);
 void idsi_split_unrank(const idsi_split *split, uint64_t all, uint64_t rank, uint64_t *sets);
 bool idsi_split_is_canonical(const idsi_split *split, const uint64_t *sets);
-/* Next distribution in rank order; false after the last one. */
-bool idsi_split_next(const idsi_split *split, uint64_t all, uint64_t *sets);
-
-/* Spreads the low bits of `bits` over the set bits of `mask`, and back (pdep, pext). */
-uint64_t idsi_bits_deposit(uint64_t bits, uint64_t mask);
-uint64_t idsi_bits_extract(uint64_t bits, uint64_t mask);
+/* Rank of `subset` among the subsets of `pool` of its size, in lexicographic order; and back. */
+uint64_t idsi_subset_rank(uint64_t pool, uint64_t subset);
+uint64_t idsi_subset_unrank(uint64_t pool, uint32_t size, uint64_t rank);
 
 /* ---- association types ------------------------------------------------------------------------------------ */
 
