@@ -170,7 +170,7 @@ ids_status idsi_fail_at(ids_ctx *ctx, ids_status status, ids_place place, const 
 
 ids_status idsi_fail_arg(ids_ctx *ctx, const char *what)
 {
-    return idsi_fail(ctx, IDS_ERR_ARG, "%s", what);
+    return idsi_fail(ctx, IDS_ERR_ARG, "%s is NULL or out of range", what);
 }
 
 /* ---- progress and cancel ----------------------------------------------------------------- */

@@ -26,9 +26,9 @@ struct ids_ctx {
 
     ids_progress_fn progress;
     void *progress_user;
-    atomic_int cancel;          /* set by ids_ctx_cancel(), answered by idsi_poll() */
-    _Atomic uint64_t hook_due;  /* monotonic nanoseconds: no hook before this */
-    atomic_flag hook_is_busy;   /* the hook runs in one thread at a time */
+    atomic_int cancel;         /* set by ids_ctx_cancel(), answered by idsi_poll() */
+    _Atomic uint64_t hook_due; /* monotonic nanoseconds: no hook before this */
+    atomic_flag hook_is_busy;  /* the hook runs in one thread at a time */
     _Atomic uint32_t threads;
 
     atomic_flag error_is_busy; /* guards the three below while a call runs */

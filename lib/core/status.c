@@ -8,8 +8,8 @@
 const char *ids_status_name(ids_status status)
 {
     switch (status) {
-#define STATUS_NAME(name, value, text)                                                             \
-    case name:                                                                                     \
+#define STATUS_NAME(name, value, text) \
+    case name:                         \
         return #name;
         IDS_STATUS_LIST(STATUS_NAME)
 #undef STATUS_NAME
@@ -20,8 +20,8 @@ const char *ids_status_name(ids_status status)
 const char *ids_status_text(ids_status status)
 {
     switch (status) {
-#define STATUS_TEXT(name, value, text)                                                             \
-    case name:                                                                                     \
+#define STATUS_TEXT(name, value, text) \
+    case name:                         \
         return text;
         IDS_STATUS_LIST(STATUS_TEXT)
 #undef STATUS_TEXT

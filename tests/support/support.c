@@ -54,8 +54,8 @@ int test_run(Suite *suite)
     failed = srunner_ntests_failed(runner);
     srunner_free(runner);
     if (failed > 0) {
-        printf("run again with IDS_TEST_SEED=%" PRIu64 " IDS_TEST_SCALE=%" PRIu64 "\n",
-               test_seed(), test_scale());
+        printf("run again with IDS_TEST_SEED=%" PRIu64 " IDS_TEST_SCALE=%" PRIu64 "\n", test_seed(),
+               test_scale());
     }
     return failed == 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }

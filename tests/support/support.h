@@ -68,12 +68,12 @@ typedef ids_status (*test_call)(ids_ctx *ctx, void *data);
 void test_oom_loop(test_call call, const char *name, void *data);
 
 /* ck_assert for a status, with the explanation of the context. */
-#define TEST_STATUS(ctx, call, expected)                                                           \
-    do {                                                                                           \
-        ids_status test_status_got = (call);                                                       \
-        ck_assert_msg(test_status_got == (expected), "%s is %s, not %s: %s", #call,                \
-                      ids_status_name(test_status_got), ids_status_name(expected),                 \
-                      ids_ctx_message(ctx));                                                       \
+#define TEST_STATUS(ctx, call, expected)                                            \
+    do {                                                                            \
+        ids_status test_status_got = (call);                                        \
+        ck_assert_msg(test_status_got == (expected), "%s is %s, not %s: %s", #call, \
+                      ids_status_name(test_status_got), ids_status_name(expected),  \
+                      ids_ctx_message(ctx));                                        \
     } while (0)
 #define TEST_OK(ctx, call) TEST_STATUS(ctx, call, IDS_OK)
 
