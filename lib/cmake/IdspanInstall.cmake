@@ -1,6 +1,7 @@
 # SPDX-License-Identifier: BSD-2-Clause
 #
-# Install rules: libraries, headers, pkg-config and CMake package files, tool, data, man pages.
+# Install rules: libraries, headers, pkg-config and CMake package files, tool, data. What belongs
+# to the tool (man pages, completion) is installed by tools/CMakeLists.txt.
 include(CMakePackageConfigHelpers)
 
 set(idspan_cmakedir "${CMAKE_INSTALL_LIBDIR}/cmake/idspan")
@@ -15,10 +16,6 @@ endif()
 install(DIRECTORY "${PROJECT_SOURCE_DIR}/data/" DESTINATION "${CMAKE_INSTALL_DATADIR}/idspan"
         PATTERN "corpus" EXCLUDE
 )
-file(GLOB idspan_man_pages "${PROJECT_SOURCE_DIR}/tools/man/*.1")
-if(idspan_man_pages)
-    install(FILES ${idspan_man_pages} DESTINATION "${CMAKE_INSTALL_MANDIR}/man1")
-endif()
 
 # The .pc file finds its prefix from its own place, so that the tree can be moved.
 cmake_path(

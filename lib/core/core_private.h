@@ -27,22 +27,23 @@
 #endif
 
 /* The one control macro: a call that fails sends the function to its `done:` label. */
-#define IDSI_TRY(call)             \
-    do {                           \
-        st = (call);               \
-        if (st != IDS_OK) {        \
-            goto done;             \
-        }                          \
+#define IDSI_TRY(call)      \
+    do {                    \
+        st = (call);        \
+        if (st != IDS_OK) { \
+            goto done;      \
+        }                   \
     } while (0)
 
 /* ---- errors -------------------------------------------------------------------------- */
 
-/* Records status and message (formatted, cut at the buffer) in ctx; returns status. ctx may be NULL. */
+/* Records status and message (formatted, cut at the buffer) in ctx, which may be NULL; returns
+ * status. */
 ids_status idsi_fail(ids_ctx *ctx, ids_status status, const char *format, ...) IDSI_PRINTF(3, 4);
 /* The same with a place in the input. */
 ids_status idsi_fail_at(ids_ctx *ctx, ids_status status, ids_place place, const char *format, ...)
     IDSI_PRINTF(4, 5);
-/* IDS_ERR_ARG, "<what> is NULL" and the like. */
+/* IDS_ERR_ARG, "<what> is NULL or out of range". */
 ids_status idsi_fail_arg(ids_ctx *ctx, const char *what);
 
 /* ---- memory --------------------------------------------------------------------------- */
@@ -53,19 +54,22 @@ ids_status idsi_alloc(ids_ctx *ctx, size_t bytes, void **out);              /* n
 ids_status idsi_alloc_zero(ids_ctx *ctx, size_t bytes, void **out);
 /* n elements of `size` bytes, cleared. n == 0 gives a valid unique block. */
 ids_status idsi_alloc_array(ids_ctx *ctx, size_t n, size_t size, void *out_pointer);
-/* Resizes *(void **)pointer to n elements of `size`; new memory is not cleared; NULL is allocated. */
+/* Resizes *(void **)pointer to n elements of `size`; new memory is not cleared; NULL is
+ * allocated. */
 ids_status idsi_resize_array(ids_ctx *ctx, size_t n, size_t size, void *pointer);
 /* Makes room for one more element in a growing array: *capacity doubles when *count reaches it. */
 ids_status idsi_grow(ids_ctx *ctx, size_t count, size_t *capacity, size_t size, void *pointer);
 void idsi_free(ids_ctx *ctx, void *ptr); /* NULL is fine; any thread */
-/* IDS_ERR_LIMIT now if `bytes` more would break the budget; `what` names the thing for the message. */
+/* IDS_ERR_LIMIT now if `bytes` more would break the budget; `what` names the thing in the
+ * message. */
 ids_status idsi_budget_check(ids_ctx *ctx, uint64_t bytes, const char *what);
 ids_status idsi_strdup(ids_ctx *ctx, const char *text, char **out);
 
 /* ---- progress and cancel ------------------------------------------------------------------ */
 
 /* Cheap enough for inner loops: tests the cancel flag, calls the hook at most ten times a second.
- * progress may be NULL (only the flag). IDS_ERR_CANCELLED or IDS_OK. */
+ * progress may be NULL (only the flag). IDS_ERR_CANCELLED or IDS_OK. The flag is then cleared, so
+ * of several threads one is told: it must stop the others. */
 ids_status idsi_poll(ids_ctx *ctx, const ids_progress *progress);
 uint32_t idsi_threads(const ids_ctx *ctx); /* >= 1 */
 
@@ -97,7 +101,7 @@ void idsi_random_seed(idsi_random *random, uint64_t seed);
 uint64_t idsi_random_next(idsi_random *random);
 uint64_t idsi_random_below(idsi_random *random, uint64_t bound); /* 0 .. bound-1, unbiased */
 
-/* ---- exact arithmetic on 64 bits ----------------------------------------------------------------- */
+/* ---- exact arithmetic on 64 bits ----------------------------------------------------------- */
 
 static inline bool idsi_mul_u64(uint64_t a, uint64_t b, uint64_t *out)
 {
