@@ -1,0 +1,191 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The rank table: one tower a prime, grown side by side, degree by degree.
+ *
+ * A rank mod p never exceeds the rank over Q, so the largest rank over the primes is a lower
+ * bound for `consequences`. It is exact without more work when no identity reaches the degree
+ * (rank 0) and when nothing is left (rank = dim F(n)); otherwise it is proved on request
+ * (lib/engine/exact.c), or stands with the error bound of lib/field/prime.c. The matrix that the
+ * bound is about is that of all consequences in the monomials of degree n: a row is a law with
+ * its monomials renamed, so its norm is the law's norm, and the rank is at most dim F(n).
+ */
+#include <math.h>
+#include <string.h>
+
+#include <idspan/answer.h>
+
+#include "../engine/engine_private.h"
+
+struct ids_rank_table {
+    ids_ctx *ctx;
+    size_t count;
+    ids_rank_row *rows;
+    size_t prime_count;
+    uint32_t *primes;
+};
+
+void ids_rank_table_free(ids_rank_table *table)
+{
+    if (table != NULL) {
+        ids_ctx *ctx = table->ctx;
+        idsi_free(ctx, table->rows);
+        idsi_free(ctx, table->primes);
+        idsi_free(ctx, table);
+    }
+}
+
+size_t ids_rank_table_count(const ids_rank_table *table)
+{
+    return table == NULL ? 0 : table->count;
+}
+
+ids_status ids_rank_table_row(const ids_rank_table *table, size_t index, ids_rank_row *row)
+{
+    if (table == NULL || row == NULL || index >= table->count) {
+        return IDS_ERR_ARG;
+    }
+    *row = table->rows[index];
+    return IDS_OK;
+}
+
+size_t ids_rank_table_prime_count(const ids_rank_table *table)
+{
+    return table == NULL ? 0 : table->prime_count;
+}
+
+uint64_t ids_rank_table_prime(const ids_rank_table *table, size_t index)
+{
+    return table == NULL || index >= table->prime_count ? 0 : table->primes[index];
+}
+
+/* Everything one table needs while it is made. */
+typedef struct job {
+    ids_ctx *ctx;
+    uint32_t from;
+    uint32_t to;
+    idsi_proof *proof; /* NULL unless exact ranks are asked for */
+    idsi_random random;
+    idsi_laws *laws;
+    size_t tower_count;
+    idsi_tower *towers;
+    ids_rank_table *table;
+} job;
+
+/* Largest norm of the laws that reach a degree, in bits; negative when none does. */
+static double law_bits(const idsi_laws *laws, uint32_t degree)
+{
+    double bits = -1;
+    for (size_t i = 0; i < laws->count; i++) {
+        if (laws->law[i].degree <= degree) {
+            bits = fmax(bits, laws->law[i].norm_bits);
+        }
+    }
+    return bits;
+}
+
+static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
+{
+    const idsi_level *level = &j->towers[0].level[degree];
+    double bits = law_bits(j->laws, degree);
+    bool proved = false;
+
+    *row = (ids_rank_row){.degree = degree, .free = level->free, .quotient = level->dimension};
+    for (size_t k = 1; k < j->tower_count; k++) {
+        uint64_t dimension = j->towers[k].level[degree].dimension;
+        row->quotient = dimension < row->quotient ? dimension : row->quotient;
+    }
+    row->consequences = row->free - row->quotient;
+    if (bits < 0 || row->quotient == 0) {
+        proved = true;
+    } else if (j->proof != NULL) {
+        proved = level->dimension == row->quotient;
+    }
+    row->certainty = proved ? IDS_CERTAINTY_EXACT : IDS_CERTAINTY_MODULAR;
+    if (!proved) {
+        row->bits = idsi_prime_error_bits((double)row->free * bits, (uint32_t)j->tower_count);
+    }
+}
+
+static ids_status start_towers(job *j, uint32_t primes)
+{
+    ids_status st = IDS_OK;
+    ids_rank_table *table = j->table;
+
+    IDSI_TRY(idsi_alloc_array(j->ctx, primes, sizeof *table->primes, &table->primes));
+    IDSI_TRY(idsi_alloc_array(j->ctx, primes, sizeof *j->towers, &j->towers));
+    for (uint32_t k = 0; k < primes; k++) {
+        table->primes[k] = idsi_prime_draw(&j->random, table->primes, k);
+        idsi_tower_init(&j->towers[k], j->ctx, j->laws, table->primes[k]);
+    }
+    table->prime_count = primes;
+    j->tower_count = primes;
+done:
+    return st;
+}
+
+static ids_status fill_table(job *j)
+{
+    ids_status st = IDS_OK;
+
+    for (uint32_t degree = 1; degree <= j->to; degree++) {
+        for (size_t k = 0; k < j->tower_count; k++) {
+            IDSI_TRY(idsi_tower_grow(&j->towers[k], degree < j->to || j->proof != NULL));
+        }
+        if (j->proof != NULL) {
+            IDSI_TRY(idsi_proof_degree(j->proof, &j->towers[0], &j->random));
+        }
+        if (degree >= j->from) {
+            make_row(j, degree, &j->table->rows[j->table->count]);
+            j->table->count++;
+        }
+    }
+done:
+    return st;
+}
+
+ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentation, uint32_t from,
+                                 uint32_t to, const ids_rank_options *options,
+                                 ids_rank_table **table)
+{
+    ids_status st = IDS_OK;
+    ids_rank_options chosen = {0};
+    job j = {.ctx = ctx, .from = from, .to = to};
+
+    if (ctx == NULL || presentation == NULL || table == NULL) {
+        return idsi_fail_arg(ctx, "context, presentation or result");
+    }
+    *table = NULL;
+    if (from == 0 || from > to || to >= IDS_MAX_DEGREE) {
+        return idsi_fail(ctx, IDS_ERR_ARG, "degrees %u to %u: possible are 1 to %u, upwards", from,
+                         to, IDS_MAX_DEGREE - 1);
+    }
+    if (options != NULL) {
+        if (options->struct_size != sizeof chosen) {
+            return idsi_fail_arg(ctx, "struct_size");
+        }
+        chosen = *options;
+    }
+    idsi_random_seed(&j.random, chosen.seed);
+    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *j.table, &j.table));
+    j.table->ctx = ctx;
+    IDSI_TRY(idsi_alloc_array(ctx, to - from + 1u, sizeof *j.table->rows, &j.table->rows));
+    IDSI_TRY(idsi_laws_create(ctx, presentation, &j.laws));
+    if (chosen.exact) {
+        IDSI_TRY(idsi_proof_create(ctx, j.laws, &j.proof));
+    }
+    IDSI_TRY(start_towers(&j, chosen.primes == 0 ? 1 : chosen.primes));
+    IDSI_TRY(fill_table(&j));
+done:
+    for (size_t k = 0; k < j.tower_count; k++) {
+        idsi_tower_clear(&j.towers[k]);
+    }
+    idsi_free(ctx, j.towers);
+    idsi_proof_free(j.proof);
+    idsi_laws_free(j.laws);
+    if (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED) {
+        *table = j.table;
+    } else {
+        ids_rank_table_free(j.table);
+    }
+    return st;
+}

@@ -1,0 +1,136 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The monomial engine: the relatively free algebra degree by degree, in the quotient.
+ */
+#ifndef IDSI_ENGINE_PRIVATE_H
+#define IDSI_ENGINE_PRIVATE_H
+
+#include "../field/field_private.h"
+#include "../identity/identity_private.h"
+
+/*
+ * A block of columns of one degree: an operation with arguments of given degrees, in canonical
+ * order (larger degrees first where the symmetry allows). Its columns are numbered
+ *
+ *     offset + (rank of the label distribution) * inner + sum of stride[i] * q[i]
+ *
+ * where q[i] < dim F(degree[i])/I(degree[i]) is the normal form in argument i.
+ */
+typedef struct idsi_block {
+    uint32_t op;
+    uint8_t degree[IDS_MAX_ARITY];
+    idsi_split split;
+    uint64_t inner;
+    uint32_t stride[IDS_MAX_ARITY];
+    uint64_t offset;
+} idsi_block;
+
+/*
+ * One degree of the tower. Column c of the degree equals the combination
+ * entries[start[c] .. start[c+1]) of normal forms (entry.column = number of a normal form);
+ * degrees whose tables were not asked for have start == NULL.
+ */
+typedef struct idsi_level {
+    uint32_t degree;
+    uint64_t free;      /* dim F(n) */
+    uint64_t columns;   /* of the quotient step; for degree 1, where there is none: 0 */
+    uint64_t dimension; /* dim F(n)/I(n) */
+    size_t block_count;
+    idsi_block *blocks; /* by operation, then degrees descending */
+    uint32_t *normal;   /* column of each normal form; NULL without tables and for degree 1 */
+    size_t *start;      /* columns + 1 */
+    idsi_entry *entries;
+} idsi_level;
+
+/* ---- laws (lib/engine/laws.c) ------------------------------------------------------------------- */
+
+/* A product in a law: argument i is variable arg[i] when arg[i] >= 0, else node -1-arg[i]. */
+typedef struct idsi_law_node {
+    uint32_t op;
+    uint32_t arity;
+    int32_t arg[IDS_MAX_ARITY];
+    uint32_t variables; /* set of the variables below */
+} idsi_law_node;
+
+/*
+ * A linearised identity, ready to be evaluated. Equal products in several terms are one node;
+ * nodes stand after the nodes they use. Term t is coefficient t of `poly` times node root[t].
+ */
+typedef struct idsi_law {
+    const idsi_poly *poly;
+    uint32_t degree;
+    size_t node_count;
+    idsi_law_node *nodes;
+    uint32_t *root;
+    /* Variables that the law is symmetric or antisymmetric in have the same class. */
+    uint8_t class_of[IDSI_MAX_IDENTITY_DEGREE];
+    double norm_bits; /* log2 of the Euclidean norm of the coefficients */
+} idsi_law;
+
+/* The identities of a presentation that are not trivial. */
+typedef struct idsi_laws {
+    ids_ctx *ctx;
+    const ids_presentation *pres;
+    size_t count;
+    idsi_law *law;
+} idsi_laws;
+
+ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_laws **laws);
+void idsi_laws_free(idsi_laws *laws);
+
+/* ---- the tower (lib/engine/tower.c) ------------------------------------------------------------------ */
+
+/* F/I mod a prime, degrees 1 .. height. */
+typedef struct idsi_tower {
+    ids_ctx *ctx;
+    const idsi_laws *laws;
+    const ids_signature *sig;
+    uint32_t prime;
+    uint32_t height;
+    idsi_level level[IDS_MAX_DEGREE + 1]; /* level[1 .. height] */
+} idsi_tower;
+
+void idsi_tower_init(idsi_tower *tower, ids_ctx *ctx, const idsi_laws *laws, uint32_t prime);
+void idsi_tower_clear(idsi_tower *tower);
+void idsi_level_clear(ids_ctx *ctx, idsi_level *level);
+
+/*
+ * Adds the next degree. `tables`: also the normal forms and the reduction of every column, which
+ * higher degrees need. IDS_ERR_LIMIT names the degree, its columns, and the budget.
+ */
+ids_status idsi_tower_grow(idsi_tower *tower, bool tables);
+
+/* Blocks, free dimension and number of columns of the degree above the tower. */
+ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level);
+/* The block of an operation with canonical argument degrees. */
+const idsi_block *idsi_level_block(const idsi_level *level, uint32_t op, const uint8_t *degree);
+
+/* ---- rows (lib/engine/rows.c) ------------------------------------------------------------------- */
+
+/*
+ * Receives one consequence f(m1, .., md) of degree n, as entries (column, value) of the quotient
+ * step of degree n, in any order, columns may repeat.
+ */
+typedef ids_status (*idsi_row_fn)(void *user, const idsi_entry *row, size_t count);
+
+/* Makes every row of degree `level->degree` from the tower's lower degrees. */
+ids_status idsi_rows_each(const idsi_tower *tower, const idsi_level *level, idsi_row_fn row,
+                          void *user);
+/* Number of rows that idsi_rows_each() makes. */
+ids_status idsi_rows_count(const idsi_tower *tower, const idsi_level *level, uint64_t *count);
+
+/* ---- proof over Q (lib/engine/exact.c) --------------------------------------------------------------- */
+
+/* Rational tables of the degrees that are proved so far. */
+typedef struct idsi_proof idsi_proof;
+
+ids_status idsi_proof_create(ids_ctx *ctx, const idsi_laws *laws, idsi_proof **proof);
+void idsi_proof_free(idsi_proof *proof);
+/*
+ * Proves that the dimension of the tower's top degree is that over Q. To be called for every
+ * degree 1, 2, ... in turn, with a tower that has tables in all of them. More primes are drawn
+ * from `random` as needed. IDS_ERR_UNABLE when the coefficients of the normal forms do not fit.
+ */
+ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_random *random);
+
+#endif

@@ -1,0 +1,543 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Proof that the dimensions found mod p are those over Q.
+ *
+ * One half is free: rank mod p <= rank over Q, so dim over Q <= dim mod p. For the other half the
+ * tables of the tower (every column as a combination of normal forms) are lifted to rational
+ * numbers, and it is shown that with them every row of every degree vanishes over Q. Then the
+ * normal forms, with the lifted tables as multiplication, are an algebra in which the identities
+ * hold up to this degree; it is a quotient of F/I, so dim over Q >= number of normal forms.
+ *
+ * That the rows vanish is shown by residues. A row's value is a vector of rationals. It is
+ * computed mod primes q from the lifted tables. Let
+ *     k    be the largest number of products below the root in a term of a law,
+ *     L    the least common denominator of the tables below degree n, D that of degree n,
+ *     rho  the largest sum of absolute values of a column's entries, below n and in degree n.
+ * Every product below the root multiplies the sum of absolute values by at most rho(< n) and the
+ * denominator by a divisor of L; the final reduction by rho(n) and D. So a coordinate times
+ * L^k * D is an integer of absolute value at most
+ *     sum |coefficients of the law| * rho(< n)^k * rho(n) * L^k * D,
+ * and it is zero when it vanishes mod primes whose product is larger. The primes that the tables
+ * were lifted from count: there the rows vanish because the echelon form says so.
+ *
+ * Lifting is by Chinese remaindering over 1 to 4 primes and rational reconstruction; entries must
+ * fit 62 bits above and below.
+ */
+#include <math.h>
+#include <string.h>
+
+#include "engine_private.h"
+
+#define MOST_PRIMES 4u
+#define CACHE_SIZE 1024u
+#define MOST_CHECKS 512u
+
+__extension__ typedef unsigned __int128 wide;
+
+/* The lifted table of one degree, in the shape of idsi_level.start and .entries. */
+typedef struct lifted {
+    size_t *start;
+    uint32_t *normal; /* entry's normal form */
+    int64_t *num;
+    int64_t *den;
+    double rho_bits;
+    double den_bits; /* log2 of the common denominator */
+} lifted;
+
+struct idsi_proof {
+    ids_ctx *ctx;
+    const idsi_laws *laws;
+    uint32_t degree; /* proved so far */
+    size_t extra;    /* towers besides the caller's, for lifting */
+    idsi_tower *towers[MOST_PRIMES - 1];
+    lifted table[IDS_MAX_DEGREE + 1];
+    mpz_t below; /* L: common denominator of the proved degrees */
+};
+
+ids_status idsi_proof_create(ids_ctx *ctx, const idsi_laws *laws, idsi_proof **proof)
+{
+    ids_status st = IDS_OK;
+    idsi_proof *made = NULL;
+
+    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
+    made->ctx = ctx;
+    made->laws = laws;
+    mpz_init_set_ui(made->below, 1);
+    *proof = made;
+done:
+    return st;
+}
+
+static void lifted_clear(ids_ctx *ctx, lifted *table)
+{
+    idsi_free(ctx, table->start);
+    idsi_free(ctx, table->normal);
+    idsi_free(ctx, table->num);
+    idsi_free(ctx, table->den);
+    memset(table, 0, sizeof *table);
+}
+
+void idsi_proof_free(idsi_proof *proof)
+{
+    if (proof == NULL) {
+        return;
+    }
+    for (size_t i = 0; i < proof->extra; i++) {
+        idsi_tower_clear(proof->towers[i]);
+        idsi_free(proof->ctx, proof->towers[i]);
+    }
+    for (uint32_t d = 0; d <= IDS_MAX_DEGREE; d++) {
+        lifted_clear(proof->ctx, &proof->table[d]);
+    }
+    mpz_clear(proof->below);
+    idsi_free(proof->ctx, proof);
+}
+
+/* ---- lifting ------------------------------------------------------------------------------ */
+
+static void set_wide(mpz_ptr z, wide value)
+{
+    mpz_set_ui(z, (uint64_t)(value >> 64));
+    mpz_mul_2exp(z, z, 64);
+    mpz_add_ui(z, z, (uint64_t)value);
+}
+
+/* Reconstructs fractions; the same few residues come again and again, so some are remembered. */
+typedef struct lifter {
+    mpz_t residue;
+    mpz_t modulus_z;
+    mpq_t fraction;
+    wide modulus;
+    wide key[CACHE_SIZE];
+    int64_t num[CACHE_SIZE];
+    int64_t den[CACHE_SIZE]; /* 0: empty */
+} lifter;
+
+static bool fits(mpz_srcptr z)
+{
+    return mpz_sizeinbase(z, 2) <= 62;
+}
+
+static bool lift(lifter *l, wide residue, int64_t *num, int64_t *den)
+{
+    size_t slot = (size_t)((uint64_t)residue * UINT64_C(0x9E3779B97F4A7C15) >> 54) % CACHE_SIZE;
+    if (l->den[slot] == 0 || l->key[slot] != residue) {
+        set_wide(l->residue, residue);
+        if (!idsi_border_reconstruct(l->fraction, l->residue, l->modulus_z) ||
+            !fits(mpq_numref(l->fraction)) || !fits(mpq_denref(l->fraction))) {
+            return false;
+        }
+        l->key[slot] = residue;
+        l->num[slot] = mpz_get_si(mpq_numref(l->fraction));
+        l->den[slot] = mpz_get_si(mpq_denref(l->fraction));
+    }
+    *num = l->num[slot];
+    *den = l->den[slot];
+    return true;
+}
+
+/* The same level of the towers that are lifted from. */
+typedef struct sources {
+    size_t count;
+    const idsi_level *level[MOST_PRIMES];
+    uint32_t prime[MOST_PRIMES];
+} sources;
+
+static uint32_t wide_mod(wide value, uint32_t p)
+{
+    return (uint32_t)(value % p);
+}
+
+/* Next entry of a column that any of the towers has; false at the end of the column. */
+static bool next_entry(const sources *src, uint64_t column, size_t *at, uint32_t *normal,
+                       wide *residue)
+{
+    bool any = false;
+    *normal = 0;
+    for (size_t k = 0; k < src->count; k++) {
+        if (at[k] < src->level[k]->start[column + 1]) {
+            uint32_t n = src->level[k]->entries[at[k]].column;
+            *normal = !any || n > *normal ? n : *normal;
+            any = true;
+        }
+    }
+    wide modulus = 1;
+    *residue = 0;
+    for (size_t k = 0; any && k < src->count; k++) {
+        uint32_t p = src->prime[k];
+        uint32_t value = 0;
+        if (at[k] < src->level[k]->start[column + 1] &&
+            src->level[k]->entries[at[k]].column == *normal) {
+            value = src->level[k]->entries[at[k]].value;
+            at[k]++;
+        }
+        uint32_t gap = (value + p - wide_mod(*residue, p)) % p;
+        uint32_t step = idsi_mod_mul(gap, idsi_mod_inverse(wide_mod(modulus, p), p), p);
+        *residue += modulus * step;
+        modulus *= p;
+    }
+    return any;
+}
+
+/* Lifts a whole table; *ok is false when some entry has no small fraction. */
+static ids_status lift_entries(ids_ctx *ctx, const sources *src, lifter *l, lifted *table,
+                               bool *ok)
+{
+    ids_status st = IDS_OK;
+    uint64_t columns = src->level[0]->columns;
+    size_t room = 0;
+    size_t used = 0;
+
+    for (size_t k = 0; k < src->count; k++) {
+        room += src->level[k]->start[columns];
+    }
+    IDSI_TRY(idsi_alloc_array(ctx, columns + 1, sizeof *table->start, &table->start));
+    IDSI_TRY(idsi_alloc_array(ctx, room, sizeof *table->normal, &table->normal));
+    IDSI_TRY(idsi_alloc_array(ctx, room, sizeof *table->num, &table->num));
+    IDSI_TRY(idsi_alloc_array(ctx, room, sizeof *table->den, &table->den));
+    *ok = true;
+    for (uint64_t c = 0; *ok && c < columns; c++) {
+        size_t at[MOST_PRIMES];
+        wide residue = 0;
+        table->start[c] = used;
+        for (size_t k = 0; k < src->count; k++) {
+            at[k] = src->level[k]->start[c];
+        }
+        while (*ok && next_entry(src, c, at, &table->normal[used], &residue)) {
+            *ok = lift(l, residue, &table->num[used], &table->den[used]);
+            used++;
+        }
+    }
+    table->start[columns] = used;
+done:
+    return st;
+}
+
+/* Common denominator and largest column sum of a lifted table. */
+static void measure(lifted *table, uint64_t columns, mpz_ptr denominator)
+{
+    int64_t last = 1;
+    double rho = 1;
+
+    mpz_set_ui(denominator, 1);
+    for (uint64_t c = 0; c < columns; c++) {
+        double sum = 0;
+        for (size_t i = table->start[c]; i < table->start[c + 1]; i++) {
+            sum += fabs((double)table->num[i] / (double)table->den[i]);
+            if (table->den[i] != last) {
+                last = table->den[i];
+                mpz_lcm_ui(denominator, denominator, (uint64_t)last);
+            }
+        }
+        rho = fmax(rho, sum);
+    }
+    /* Rounded up: sums of a few million terms lose far less than one part in a million. */
+    table->rho_bits = log2(rho) + 1e-6;
+    table->den_bits = (double)mpz_sizeinbase(denominator, 2);
+}
+
+static ids_status lift_table(idsi_proof *proof, const sources *src, lifted *table,
+                             mpz_ptr denominator, bool *ok)
+{
+    ids_status st = IDS_OK;
+    lifter *l = NULL;
+
+    lifted_clear(proof->ctx, table);
+    IDSI_TRY(idsi_alloc_array(proof->ctx, 1, sizeof *l, &l));
+    mpz_init(l->residue);
+    mpz_init(l->modulus_z);
+    mpq_init(l->fraction);
+    l->modulus = 1;
+    for (size_t k = 0; k < src->count; k++) {
+        l->modulus *= src->prime[k];
+    }
+    set_wide(l->modulus_z, l->modulus);
+    st = lift_entries(proof->ctx, src, l, table, ok);
+    mpq_clear(l->fraction);
+    mpz_clear(l->modulus_z);
+    mpz_clear(l->residue);
+    IDSI_TRY(st);
+    if (*ok) {
+        measure(table, src->level[0]->columns, denominator);
+    }
+done:
+    idsi_free(proof->ctx, l);
+    return st;
+}
+
+/* ---- checking ----------------------------------------------------------------------------------- */
+
+/* Products below the root, at most, in a term of a law that reaches the degree. */
+static uint32_t products_below_root(const idsi_law *law)
+{
+    uint32_t most = 0;
+    for (size_t t = 0; t < law->poly->count; t++) {
+        size_t tokens = law->poly->start[t + 1] - law->poly->start[t];
+        uint32_t products = (uint32_t)tokens - law->degree;
+        most = products > most ? products : most;
+    }
+    return most == 0 ? 0 : most - 1;
+}
+
+static double coefficient_bits(const idsi_law *law)
+{
+    double sum = 0;
+    for (size_t t = 0; t < law->poly->count; t++) {
+        sum += fabs(mpq_get_d(law->poly->coefficients[t]));
+    }
+    return log2(sum) + 1e-6;
+}
+
+/* log2 of the bound at the top of this file, for all laws together. */
+static double value_bits(const idsi_proof *proof, uint32_t degree, const lifted *table)
+{
+    double rho = 0;
+    double bits = 0;
+
+    for (uint32_t d = 2; d < degree; d++) {
+        rho = fmax(rho, proof->table[d].rho_bits);
+    }
+    for (size_t i = 0; i < proof->laws->count; i++) {
+        const idsi_law *law = &proof->laws->law[i];
+        if (law->degree <= degree) {
+            double k = products_below_root(law);
+            double below = (double)mpz_sizeinbase(proof->below, 2);
+            bits = fmax(bits, coefficient_bits(law) + k * (rho + below) + table->rho_bits +
+                                  table->den_bits);
+        }
+    }
+    return bits + 1;
+}
+
+/* Residues of a lifted table mod q; *ok is false when q divides a denominator. */
+static ids_status reduce_table(ids_ctx *ctx, const lifted *table, uint64_t columns, uint32_t q,
+                               idsi_level *level, bool *ok)
+{
+    ids_status st = IDS_OK;
+    size_t count = table->start[columns];
+    int64_t last_den = 1;
+    uint32_t last_inverse = 1;
+
+    IDSI_TRY(idsi_alloc_array(ctx, count, sizeof *level->entries, &level->entries));
+    for (size_t i = 0; i < count; i++) {
+        if (table->den[i] != last_den) {
+            last_den = table->den[i];
+            uint32_t residue = (uint32_t)((uint64_t)last_den % q);
+            if (residue == 0) {
+                *ok = false;
+                goto done;
+            }
+            last_inverse = idsi_mod_inverse(residue, q);
+        }
+        int64_t num = table->num[i] % (int64_t)q;
+        uint32_t residue = (uint32_t)(num < 0 ? num + q : num);
+        level->entries[i] =
+            (idsi_entry){table->normal[i], idsi_mod_mul(residue, last_inverse, q)};
+    }
+done:
+    return st;
+}
+
+/* A tower mod q that borrows everything from `model` but the tables' values. */
+static ids_status borrow_tower(const idsi_proof *proof, const idsi_tower *model, uint32_t q,
+                               idsi_tower *tower, bool *ok)
+{
+    ids_status st = IDS_OK;
+
+    *ok = true;
+    *tower = *model;
+    tower->prime = q;
+    for (uint32_t d = 1; d <= model->height; d++) {
+        tower->level[d].entries = NULL;
+        tower->level[d].start = proof->table[d].start;
+    }
+    for (uint32_t d = 2; *ok && d <= model->height; d++) {
+        if (proof->table[d].start != NULL) {
+            IDSI_TRY(reduce_table(proof->ctx, &proof->table[d], model->level[d].columns, q,
+                                  &tower->level[d], ok));
+        }
+    }
+done:
+    return st;
+}
+
+typedef struct checker {
+    const idsi_level *level;
+    uint32_t prime;
+    uint64_t *sum;
+    bool vanishes;
+} checker;
+
+static ids_status check_row(void *user, const idsi_entry *row, size_t count)
+{
+    checker *c = user;
+    uint64_t square = (uint64_t)c->prime * c->prime;
+
+    if (!c->vanishes) {
+        return IDS_OK;
+    }
+    for (size_t i = 0; i < count; i++) {
+        const size_t *start = &c->level->start[row[i].column];
+        for (size_t k = start[0]; k < start[1]; k++) {
+            uint64_t *sum = &c->sum[c->level->entries[k].column];
+            *sum += (uint64_t)row[i].value * c->level->entries[k].value;
+            *sum = *sum >= square ? *sum - square : *sum;
+        }
+    }
+    for (uint64_t j = 0; j < c->level->dimension; j++) {
+        if (c->sum[j] % c->prime != 0) {
+            c->vanishes = false;
+        }
+        c->sum[j] = 0;
+    }
+    return IDS_OK;
+}
+
+/* Whether all rows of the model's top degree vanish mod q under the lifted tables. */
+static ids_status rows_vanish(const idsi_proof *proof, const idsi_tower *model, uint32_t q,
+                              bool *usable, bool *vanish)
+{
+    ids_status st = IDS_OK;
+    ids_ctx *ctx = proof->ctx;
+    idsi_tower *tower = NULL;
+    checker c = {.prime = q, .vanishes = true};
+
+    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *tower, &tower));
+    IDSI_TRY(borrow_tower(proof, model, q, tower, usable));
+    if (*usable) {
+        c.level = &tower->level[model->height];
+        IDSI_TRY(idsi_alloc_array(ctx, c.level->dimension, sizeof *c.sum, &c.sum));
+        IDSI_TRY(idsi_rows_each(tower, c.level, check_row, &c));
+        *vanish = c.vanishes;
+    }
+done:
+    for (uint32_t d = 2; tower != NULL && d <= model->height; d++) {
+        idsi_free(ctx, tower->level[d].entries);
+    }
+    idsi_free(ctx, tower);
+    idsi_free(ctx, c.sum);
+    return st;
+}
+
+/* The primes must differ, or their product would not count. */
+static ids_status check_table(const idsi_proof *proof, const idsi_tower *model,
+                              const sources *src, idsi_random *random, bool *vanish)
+{
+    ids_status st = IDS_OK;
+    double missing = value_bits(proof, model->height, &proof->table[model->height]);
+    uint32_t known[MOST_CHECKS];
+    size_t count = 0;
+
+    *vanish = true;
+    for (; count < src->count; count++) {
+        known[count] = src->prime[count];
+        missing -= log2(src->prime[count]);
+    }
+    while (*vanish && missing >= 0) {
+        bool usable = true;
+        if (count == MOST_CHECKS) {
+            *vanish = false;
+            break;
+        }
+        known[count] = idsi_prime_draw(random, known, count);
+        IDSI_TRY(rows_vanish(proof, model, known[count], &usable, vanish));
+        missing -= usable ? 30 : 0;
+        count++;
+    }
+done:
+    return st;
+}
+
+/* ---- one degree ---------------------------------------------------------------------------------- */
+
+/* One more tower to lift from, grown to the model's height. */
+static ids_status add_tower(idsi_proof *proof, const idsi_tower *model, idsi_random *random)
+{
+    ids_status st = IDS_OK;
+    uint32_t known[MOST_PRIMES] = {model->prime};
+    idsi_tower **slot = &proof->towers[proof->extra];
+
+    for (size_t k = 0; k < proof->extra; k++) {
+        known[k + 1] = proof->towers[k]->prime;
+    }
+    IDSI_TRY(idsi_alloc_array(proof->ctx, 1, sizeof **slot, slot));
+    idsi_tower_init(*slot, proof->ctx, proof->laws,
+                    idsi_prime_draw(random, known, proof->extra + 1));
+    proof->extra++;
+done:
+    return st;
+}
+
+static bool same_normal_forms(const idsi_level *a, const idsi_level *b)
+{
+    return a->dimension == b->dimension && a->columns == b->columns &&
+           memcmp(a->normal, b->normal, a->dimension * sizeof *a->normal) == 0;
+}
+
+static ids_status unable(const idsi_proof *proof, uint32_t degree)
+{
+    return idsi_fail(proof->ctx, IDS_ERR_UNABLE,
+                     "degree %u: the normal forms have coefficients too large for the proof over "
+                     "the rational numbers; the ranks mod primes stand",
+                     degree);
+}
+
+/* Levels of all towers; grows those that lag behind. *same is false when a prime is exceptional. */
+static ids_status gather_sources(idsi_proof *proof, const idsi_tower *model, sources *src,
+                                 bool *same)
+{
+    ids_status st = IDS_OK;
+    uint32_t degree = model->height;
+
+    *src = (sources){.count = 1, .level = {&model->level[degree]}, .prime = {model->prime}};
+    *same = true;
+    for (size_t k = 0; k < proof->extra; k++) {
+        idsi_tower *tower = proof->towers[k];
+        while (tower->height < degree) {
+            IDSI_TRY(idsi_tower_grow(tower, true));
+        }
+        *same = *same && same_normal_forms(&tower->level[degree], src->level[0]);
+        src->level[src->count] = &tower->level[degree];
+        src->prime[src->count] = tower->prime;
+        src->count++;
+    }
+done:
+    return st;
+}
+
+ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_random *random)
+{
+    ids_status st = IDS_OK;
+    uint32_t degree = tower->height;
+    const idsi_level *level = &tower->level[degree];
+    mpz_t denominator;
+    bool proved = level->dimension == 0 || level->columns == 0;
+
+    mpz_init(denominator);
+    IDSI_ASSERT(degree == proof->degree + 1);
+    while (!proved) {
+        sources src;
+        bool good = true;
+        IDSI_TRY(gather_sources(proof, tower, &src, &good));
+        if (good) {
+            IDSI_TRY(lift_table(proof, &src, &proof->table[degree], denominator, &good));
+        }
+        if (good) {
+            IDSI_TRY(check_table(proof, tower, &src, random, &proved));
+        }
+        if (!proved) {
+            if (proof->extra == MOST_PRIMES - 1) {
+                st = unable(proof, degree);
+                goto done;
+            }
+            IDSI_TRY(add_tower(proof, tower, random));
+        }
+    }
+    if (level->dimension > 0 && level->columns > 0) {
+        mpz_lcm(proof->below, proof->below, denominator);
+    }
+    proof->degree = degree;
+done:
+    mpz_clear(denominator);
+    return st;
+}

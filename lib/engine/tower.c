@@ -1,0 +1,288 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The relatively free algebra mod a prime, degree by degree in the quotient.
+ *
+ * Degree n is spanned by the products of normal forms of lower degrees (the columns), modulo the
+ * values of the identities on normal forms (the rows, made by rows.c). That is all: products with
+ * a consequence of lower degree in one place vanish because that place holds a normal form, and an
+ * identity's value depends on its arguments only modulo I. A commutative degree 8 modulo the
+ * Jordan identity has 41,475 columns this way, where there are 135,135 monomials.
+ *
+ * The columns stand in blocks, one for each operation and canonical tuple of argument degrees,
+ * which is where the type's arithmetic for labels is used again: the arguments' degrees take the
+ * place of their shapes. Rows are streamed into an echelon form and never held.
+ *
+ * A pivot is the largest column of its row, so the normal forms prefer the blocks that come first:
+ * those whose first argument has the largest degree.
+ */
+#include <string.h>
+
+#include "engine_private.h"
+
+void idsi_tower_init(idsi_tower *tower, ids_ctx *ctx, const idsi_laws *laws, uint32_t prime)
+{
+    memset(tower, 0, sizeof *tower);
+    tower->ctx = ctx;
+    tower->laws = laws;
+    tower->sig = laws->pres->sig;
+    tower->prime = prime;
+}
+
+void idsi_level_clear(ids_ctx *ctx, idsi_level *level)
+{
+    idsi_free(ctx, level->blocks);
+    idsi_free(ctx, level->normal);
+    idsi_free(ctx, level->start);
+    idsi_free(ctx, level->entries);
+    memset(level, 0, sizeof *level);
+}
+
+void idsi_tower_clear(idsi_tower *tower)
+{
+    for (uint32_t d = 1; d <= tower->height; d++) {
+        idsi_level_clear(tower->ctx, &tower->level[d]);
+    }
+    tower->height = 0;
+}
+
+/* A level that is being planned. */
+typedef struct planner {
+    const idsi_tower *tower;
+    idsi_level *level;
+    size_t capacity;
+    uint32_t op;
+    uint8_t degree[IDS_MAX_ARITY];
+} planner;
+
+static ids_status too_large(const planner *plan, const char *what)
+{
+    return idsi_fail(plan->tower->ctx, IDS_ERR_LIMIT, "degree %u has %s than 64 bits can count",
+                     plan->level->degree, what);
+}
+
+/* Adds the block of the chosen degrees; blocks without columns are left out. */
+static ids_status add_block(planner *plan)
+{
+    ids_status st = IDS_OK;
+    ids_ctx *ctx = plan->tower->ctx;
+    idsi_level *level = plan->level;
+    const idsi_group *group = &plan->tower->sig->ops[plan->op].group;
+    uint64_t key[IDS_MAX_ARITY];
+    idsi_block block = {.op = plan->op, .inner = 1, .offset = level->columns};
+
+    for (uint32_t i = 0; i < group->arity; i++) {
+        key[i] = plan->degree[i];
+        block.degree[i] = plan->degree[i];
+    }
+    idsi_split_for_group(group, key, plan->degree, &block.split);
+    uint64_t free_monomials = block.split.ways;
+    uint64_t columns = block.split.ways;
+    bool fits = columns > 0;
+    for (uint32_t i = group->arity; i-- > 0;) {
+        const idsi_level *lower = &plan->tower->level[plan->degree[i]];
+        block.stride[i] = (uint32_t)block.inner;
+        fits = fits && idsi_mul_u64(block.inner, lower->dimension, &block.inner) &&
+               idsi_mul_u64(free_monomials, lower->free, &free_monomials);
+    }
+    fits = fits && idsi_mul_u64(columns, block.inner, &columns) &&
+           idsi_add_u64(level->columns, columns, &level->columns) &&
+           idsi_add_u64(level->free, free_monomials, &level->free);
+    if (!fits) {
+        return too_large(plan, "more monomials");
+    }
+    if (columns == 0) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_grow(ctx, level->block_count, &plan->capacity, sizeof *level->blocks,
+                       &level->blocks));
+    level->blocks[level->block_count] = block;
+    level->block_count++;
+done:
+    return st;
+}
+
+/* Whether no argument order of the operation makes the tuple of degrees larger. */
+static bool degrees_are_canonical(const idsi_group *group, const uint8_t *degree)
+{
+    uint64_t key[IDS_MAX_ARITY];
+    uint8_t image[IDS_MAX_ARITY];
+    for (uint32_t i = 0; i < group->arity; i++) {
+        key[i] = degree[i];
+    }
+    (void)idsi_group_canonical(group, key, NULL, image);
+    for (uint32_t i = 0; i < group->arity; i++) {
+        if (degree[image[i]] != degree[i]) {
+            return false;
+        }
+    }
+    return true;
+}
+
+static ids_status choose_degrees(planner *plan, uint32_t place, uint32_t left)
+{
+    ids_status st = IDS_OK;
+    const idsi_group *group = &plan->tower->sig->ops[plan->op].group;
+    uint32_t places = group->arity - place;
+
+    if (places == 0) {
+        return degrees_are_canonical(group, plan->degree) ? add_block(plan) : IDS_OK;
+    }
+    uint32_t most = left - (places - 1);
+    uint32_t least = places == 1 ? left : 1;
+    for (uint32_t degree = most; degree >= least && degree > 0; degree--) {
+        plan->degree[place] = (uint8_t)degree;
+        IDSI_TRY(choose_degrees(plan, place + 1, left - degree));
+    }
+done:
+    return st;
+}
+
+/* Whether some law says x = 0. */
+static bool is_trivial(const idsi_laws *laws)
+{
+    for (size_t i = 0; i < laws->count; i++) {
+        if (laws->law[i].degree == 1) {
+            return true;
+        }
+    }
+    return false;
+}
+
+ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level)
+{
+    ids_status st = IDS_OK;
+    planner plan = {.tower = tower, .level = level};
+    const ids_signature *sig = tower->sig;
+
+    memset(level, 0, sizeof *level);
+    level->degree = tower->height + 1;
+    if (level->degree == 1) {
+        level->free = 1;
+        level->dimension = is_trivial(tower->laws) ? 0 : 1;
+        return IDS_OK;
+    }
+    for (plan.op = 0; plan.op < sig->count; plan.op++) {
+        if (sig->ops[plan.op].arity <= level->degree) {
+            IDSI_TRY(choose_degrees(&plan, 0, level->degree));
+        }
+    }
+    if (level->columns >= UINT32_MAX) {
+        st = idsi_fail(tower->ctx, IDS_ERR_LIMIT,
+                       "degree %u has %llu monomials; in the quotient by the consequences of "
+                       "lower degrees it still has %llu columns, and 4294967294 are possible",
+                       level->degree, (unsigned long long)level->free,
+                       (unsigned long long)level->columns);
+    }
+done:
+    if (st != IDS_OK) {
+        idsi_level_clear(tower->ctx, level);
+    }
+    return st;
+}
+
+const idsi_block *idsi_level_block(const idsi_level *level, uint32_t op, const uint8_t *degree)
+{
+    for (size_t i = 0; i < level->block_count; i++) {
+        const idsi_block *block = &level->blocks[i];
+        if (block->op == op && memcmp(block->degree, degree, block->split.count) == 0) {
+            return block;
+        }
+    }
+    return NULL;
+}
+
+/* The rows' way into the echelon form. */
+typedef struct elimination {
+    idsi_echelon *echelon;
+    uint64_t columns;
+} elimination;
+
+static ids_status eliminate_row(void *user, const idsi_entry *row, size_t count)
+{
+    elimination *e = user;
+    if (idsi_echelon_rank(e->echelon) == e->columns) {
+        return IDS_OK;
+    }
+    return idsi_echelon_add(e->echelon, row, count, NULL);
+}
+
+/* Copies the complete echelon form into the level's tables. */
+static ids_status make_tables(ids_ctx *ctx, const idsi_echelon *echelon, idsi_level *level)
+{
+    ids_status st = IDS_OK;
+    uint32_t *number = NULL; /* of the normal form that a column is */
+    const idsi_entry *rule = NULL;
+    uint32_t count = 0;
+    size_t at = 0;
+    uint64_t normal = 0;
+
+    IDSI_TRY(idsi_alloc_array(ctx, level->columns, sizeof *number, &number));
+    IDSI_TRY(idsi_alloc_array(ctx, level->dimension, sizeof *level->normal, &level->normal));
+    IDSI_TRY(idsi_alloc_array(ctx, level->columns + 1, sizeof *level->start, &level->start));
+    IDSI_TRY(idsi_alloc_array(ctx, idsi_echelon_fill(echelon) + level->dimension,
+                              sizeof *level->entries, &level->entries));
+    for (uint32_t c = 0; c < level->columns; c++) {
+        level->start[c] = at;
+        if (idsi_echelon_rule(echelon, c, &rule, &count)) {
+            for (uint32_t i = 0; i < count; i++) {
+                level->entries[at++] = (idsi_entry){number[rule[i].column], rule[i].value};
+            }
+        } else {
+            number[c] = (uint32_t)normal;
+            level->normal[normal] = c;
+            level->entries[at++] = (idsi_entry){(uint32_t)normal, 1};
+            normal++;
+        }
+    }
+    level->start[level->columns] = at;
+done:
+    idsi_free(ctx, number);
+    return st;
+}
+
+static ids_status solve_level(const idsi_tower *tower, idsi_level *level, bool tables)
+{
+    ids_status st = IDS_OK;
+    ids_ctx *ctx = tower->ctx;
+    elimination e = {.columns = level->columns};
+    ids_memory memory = ids_ctx_memory(ctx);
+    uint64_t need = idsi_echelon_base_bytes(level->columns);
+
+    if (memory.budget > 0 && need > memory.budget - memory.live) {
+        return idsi_fail(ctx, IDS_ERR_LIMIT,
+                         "degree %u has %llu monomials, %llu columns in the quotient by the "
+                         "consequences of lower degrees; they need %llu bytes at least, %llu of "
+                         "the budget of %llu bytes are left",
+                         level->degree, (unsigned long long)level->free,
+                         (unsigned long long)level->columns, (unsigned long long)need,
+                         (unsigned long long)(memory.budget - memory.live),
+                         (unsigned long long)memory.budget);
+    }
+    IDSI_TRY(idsi_echelon_create(ctx, tower->prime, (uint32_t)level->columns, &e.echelon));
+    IDSI_TRY(idsi_rows_each(tower, level, eliminate_row, &e));
+    level->dimension = level->columns - idsi_echelon_rank(e.echelon);
+    if (tables) {
+        IDSI_TRY(idsi_echelon_complete(e.echelon));
+        IDSI_TRY(make_tables(ctx, e.echelon, level));
+    }
+done:
+    idsi_echelon_free(e.echelon);
+    return st;
+}
+
+ids_status idsi_tower_grow(idsi_tower *tower, bool tables)
+{
+    ids_status st = IDS_OK;
+    idsi_level *level = &tower->level[tower->height + 1];
+
+    IDSI_TRY(idsi_level_plan(tower, level));
+    if (level->degree > 1 && level->columns > 0) {
+        IDSI_TRY(solve_level(tower, level, tables));
+    }
+    tower->height++;
+done:
+    if (st != IDS_OK) {
+        idsi_level_clear(tower->ctx, level);
+    }
+    return st;
+}

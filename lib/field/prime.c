@@ -1,0 +1,89 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Arithmetic mod primes below 2^31, random primes, and what a random prime can miss.
+ *
+ * Error bound. Let A be an integer matrix of rank r over Q. Some r x r minor M is not zero, and
+ * the rank of A mod p is less than r only if p divides M. By Hadamard |M| <= product of the
+ * Euclidean norms of its rows, say 2^b, so at most b/30 primes above 2^30 divide it. A prime drawn
+ * uniformly from the IDSI_PRIME_COUNT primes of (2^30, 2^31) is one of these with probability at
+ * most (b/30) / IDSI_PRIME_COUNT, and independent draws multiply. (Count of primes: pi(2^31) =
+ * 105097565, pi(2^30) = 54400028, OEIS A007053.)
+ */
+#include <math.h>
+
+#include "field_private.h"
+
+uint32_t idsi_mod_pow(uint32_t base, uint64_t exponent, uint32_t p)
+{
+    uint32_t power = 1 % p;
+    while (exponent > 0) {
+        if (exponent & 1) {
+            power = idsi_mod_mul(power, base, p);
+        }
+        base = idsi_mod_mul(base, base, p);
+        exponent >>= 1;
+    }
+    return power;
+}
+
+uint32_t idsi_mod_inverse(uint32_t a, uint32_t p)
+{
+    int64_t r0 = p;
+    int64_t r1 = a;
+    int64_t t0 = 0;
+    int64_t t1 = 1;
+    while (r1 != 0) {
+        int64_t q = r0 / r1;
+        int64_t r2 = r0 - q * r1;
+        int64_t t2 = t0 - q * t1;
+        r0 = r1;
+        r1 = r2;
+        t0 = t1;
+        t1 = t2;
+    }
+    return (uint32_t)(t0 < 0 ? t0 + p : t0);
+}
+
+bool idsi_mod_rational(mpq_srcptr number, uint32_t p, uint32_t *residue)
+{
+    uint32_t num = (uint32_t)mpz_fdiv_ui(mpq_numref(number), p);
+    uint32_t den = (uint32_t)mpz_fdiv_ui(mpq_denref(number), p);
+    if (den == 0) {
+        return false;
+    }
+    *residue = idsi_mod_mul(num, idsi_mod_inverse(den, p), p);
+    return true;
+}
+
+bool idsi_is_prime(uint32_t n)
+{
+    return idsi_border_is_prime(n);
+}
+
+static bool is_known(uint32_t prime, const uint32_t *known, size_t count)
+{
+    for (size_t i = 0; i < count; i++) {
+        if (known[i] == prime) {
+            return true;
+        }
+    }
+    return false;
+}
+
+uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t count)
+{
+    for (;;) {
+        uint32_t n = IDSI_PRIME_LOW +
+                     (uint32_t)idsi_random_below(random, IDSI_PRIME_HIGH - IDSI_PRIME_LOW);
+        if ((n & 1u) && idsi_is_prime(n) && !is_known(n, known, count)) {
+            return n;
+        }
+    }
+}
+
+uint32_t idsi_prime_error_bits(double minor_bits, uint32_t primes)
+{
+    double bad = fmax(1.0, ceil(minor_bits / 30.0));
+    double bits = floor(log2((double)(IDSI_PRIME_COUNT - primes) / bad) * primes);
+    return bits > 0 ? (uint32_t)bits : 0;
+}

@@ -1,0 +1,324 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Sparse echelon form mod a prime, as rewriting rules, for rows that come one by one.
+ *
+ *     rule_of[c]   0, or 1 + number of the rule whose pivot is column c
+ *     rule         pivot, then its entries: pivot = sum of value * column, columns < pivot
+ *     sum[c]       the row at work, a full-length accumulator, each < 2 p^2 < 2^63
+ *     bits         which sum[c] may be nonzero: a bit set with two levels of summaries, so that
+ *                  the largest such column is found in three steps whatever the row's length
+ *
+ * A row is rewritten from its largest column down until that column is no pivot; the rest of it
+ * stays as it is, so a rule costs no more than it must. The entries of rules lie in chunks that
+ * are never moved.
+ */
+#include <string.h>
+
+#include "field_private.h"
+
+#define CHUNK_ENTRIES (UINT32_C(1) << 18)
+
+typedef struct rule {
+    uint32_t pivot;
+    uint32_t count;
+    idsi_entry *entries;
+} rule;
+
+typedef struct chunk {
+    struct chunk *next;
+    size_t used;
+    size_t capacity;
+    idsi_entry entries[];
+} chunk;
+
+struct idsi_echelon {
+    ids_ctx *ctx;
+    uint32_t prime;
+    uint32_t columns;
+    uint64_t square; /* prime^2 */
+    uint32_t *rule_of;
+    uint64_t *sum;
+    uint64_t *bits[3]; /* words of columns, of words, of words of words */
+    size_t rule_count;
+    size_t rule_capacity;
+    rule *rules;
+    chunk *chunks;
+    idsi_entry *gathered; /* a row after rewriting */
+    size_t gathered_capacity;
+    uint64_t fill;
+};
+
+static size_t words(size_t n)
+{
+    return (n + 63) / 64;
+}
+
+uint64_t idsi_echelon_base_bytes(uint64_t columns)
+{
+    return columns * (sizeof(uint64_t) + sizeof(uint32_t)) + columns / 7 + 4096;
+}
+
+ids_status idsi_echelon_create(ids_ctx *ctx, uint32_t prime, uint32_t columns,
+                               idsi_echelon **echelon)
+{
+    ids_status st = IDS_OK;
+    idsi_echelon *made = NULL;
+
+    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
+    made->ctx = ctx;
+    made->prime = prime;
+    made->columns = columns;
+    made->square = (uint64_t)prime * prime;
+    IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *made->rule_of, &made->rule_of));
+    IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *made->sum, &made->sum));
+    size_t n = columns;
+    for (int level = 0; level < 3; level++) {
+        n = words(n);
+        IDSI_TRY(idsi_alloc_array(ctx, n + 1, sizeof *made->bits[level], &made->bits[level]));
+    }
+    *echelon = made;
+    made = NULL;
+done:
+    idsi_echelon_free(made);
+    return st;
+}
+
+void idsi_echelon_free(idsi_echelon *echelon)
+{
+    if (echelon == NULL) {
+        return;
+    }
+    ids_ctx *ctx = echelon->ctx;
+    while (echelon->chunks != NULL) {
+        chunk *next = echelon->chunks->next;
+        idsi_free(ctx, echelon->chunks);
+        echelon->chunks = next;
+    }
+    for (int level = 0; level < 3; level++) {
+        idsi_free(ctx, echelon->bits[level]);
+    }
+    idsi_free(ctx, echelon->gathered);
+    idsi_free(ctx, echelon->rules);
+    idsi_free(ctx, echelon->sum);
+    idsi_free(ctx, echelon->rule_of);
+    idsi_free(ctx, echelon);
+}
+
+static inline void mark(idsi_echelon *e, uint32_t column)
+{
+    uint64_t *word = &e->bits[0][column >> 6];
+    if (*word == 0) {
+        e->bits[1][column >> 12] |= UINT64_C(1) << ((column >> 6) & 63);
+        e->bits[2][column >> 18] |= UINT64_C(1) << ((column >> 12) & 63);
+    }
+    *word |= UINT64_C(1) << (column & 63);
+}
+
+static inline void unmark(idsi_echelon *e, uint32_t column)
+{
+    uint64_t *word = &e->bits[0][column >> 6];
+    *word &= ~(UINT64_C(1) << (column & 63));
+    if (*word == 0) {
+        uint64_t *above = &e->bits[1][column >> 12];
+        *above &= ~(UINT64_C(1) << ((column >> 6) & 63));
+        if (*above == 0) {
+            e->bits[2][column >> 18] &= ~(UINT64_C(1) << ((column >> 12) & 63));
+        }
+    }
+}
+
+static uint32_t top_bit(uint64_t word)
+{
+    return 63u - (uint32_t)__builtin_clzll(word);
+}
+
+/* Largest marked column; false when there is none. *top is the last nonzero word of bits[2]. */
+static inline bool largest(const idsi_echelon *e, size_t *top, uint32_t *column)
+{
+    while (e->bits[2][*top] == 0) {
+        if (*top == 0) {
+            return false;
+        }
+        (*top)--;
+    }
+    size_t middle = *top * 64 + top_bit(e->bits[2][*top]);
+    size_t low = middle * 64 + top_bit(e->bits[1][middle]);
+    *column = (uint32_t)(low * 64 + top_bit(e->bits[0][low]));
+    return true;
+}
+
+static inline void accumulate(idsi_echelon *e, uint32_t column, uint64_t product)
+{
+    uint64_t sum = e->sum[column] + product;
+    e->sum[column] = sum >= e->square ? sum - e->square : sum;
+    mark(e, column);
+}
+
+static void apply_rule(idsi_echelon *e, const rule *r, uint32_t factor)
+{
+    for (uint32_t i = 0; i < r->count; i++) {
+        accumulate(e, r->entries[i].column, (uint64_t)factor * r->entries[i].value);
+    }
+}
+
+/*
+ * Rewrites the accumulator from the top. When `all`, every pivot column is rewritten, else only
+ * until the top column is no pivot. What remains is gathered, largest column first, and cleared.
+ */
+static ids_status gather(idsi_echelon *e, bool all, size_t *count)
+{
+    ids_status st = IDS_OK;
+    size_t top = words(words(words(e->columns))) - (e->columns > 0);
+    uint32_t column = 0;
+    bool stopped = false;
+
+    *count = 0;
+    while (largest(e, &top, &column)) {
+        uint32_t value = (uint32_t)(e->sum[column] % e->prime);
+        e->sum[column] = 0;
+        unmark(e, column);
+        if (value == 0) {
+            continue;
+        }
+        uint32_t number = e->rule_of[column];
+        if (number != 0 && (all || !stopped)) {
+            apply_rule(e, &e->rules[number - 1], value);
+            continue;
+        }
+        stopped = true;
+        IDSI_TRY(idsi_grow(e->ctx, *count, &e->gathered_capacity, sizeof *e->gathered,
+                           &e->gathered));
+        e->gathered[*count] = (idsi_entry){column, value};
+        (*count)++;
+    }
+done:
+    if (st != IDS_OK) {
+        while (largest(e, &top, &column)) {
+            e->sum[column] = 0;
+            unmark(e, column);
+        }
+    }
+    return st;
+}
+
+/* Room for `count` entries that will not move. */
+static ids_status chunk_take(idsi_echelon *e, size_t count, idsi_entry **entries)
+{
+    ids_status st = IDS_OK;
+    void *block = NULL;
+
+    if (e->chunks == NULL || e->chunks->capacity - e->chunks->used < count) {
+        size_t capacity = count > CHUNK_ENTRIES ? count : CHUNK_ENTRIES;
+        if (e->chunks == NULL && capacity > e->columns * (size_t)16 && count < 4096) {
+            capacity = 4096;
+        }
+        IDSI_TRY(idsi_alloc(e->ctx, sizeof(chunk) + capacity * sizeof(idsi_entry), &block));
+        chunk *made = block;
+        made->next = e->chunks;
+        made->used = 0;
+        made->capacity = capacity;
+        e->chunks = made;
+    }
+    *entries = e->chunks->entries + e->chunks->used;
+    e->chunks->used += count;
+done:
+    return st;
+}
+
+/* Stores gathered[0..count-1] as a rule for its first column. */
+static ids_status store_rule(idsi_echelon *e, size_t count)
+{
+    ids_status st = IDS_OK;
+    idsi_entry *entries = NULL;
+    const idsi_entry *row = e->gathered;
+
+    IDSI_TRY(idsi_grow(e->ctx, e->rule_count, &e->rule_capacity, sizeof *e->rules, &e->rules));
+    IDSI_TRY(chunk_take(e, count - 1, &entries));
+    uint32_t factor = idsi_mod_neg(idsi_mod_inverse(row[0].value, e->prime), e->prime);
+    for (size_t i = 1; i < count; i++) {
+        entries[i - 1] =
+            (idsi_entry){row[i].column, idsi_mod_mul(row[i].value, factor, e->prime)};
+    }
+    e->rules[e->rule_count] = (rule){row[0].column, (uint32_t)(count - 1), entries};
+    e->rule_count++;
+    e->rule_of[row[0].column] = (uint32_t)e->rule_count;
+    e->fill += count - 1;
+done:
+    return st;
+}
+
+ids_status idsi_echelon_add(idsi_echelon *echelon, const idsi_entry *row, size_t count,
+                            bool *independent)
+{
+    ids_status st = IDS_OK;
+    size_t left = 0;
+
+    for (size_t i = 0; i < count; i++) {
+        accumulate(echelon, row[i].column, row[i].value);
+    }
+    IDSI_TRY(gather(echelon, false, &left));
+    if (left > 0) {
+        IDSI_TRY(store_rule(echelon, left));
+    }
+    if (independent != NULL) {
+        *independent = left > 0;
+    }
+done:
+    return st;
+}
+
+uint32_t idsi_echelon_rank(const idsi_echelon *echelon)
+{
+    return (uint32_t)echelon->rule_count;
+}
+
+uint64_t idsi_echelon_fill(const idsi_echelon *echelon)
+{
+    return echelon->fill;
+}
+
+ids_status idsi_echelon_complete(idsi_echelon *echelon)
+{
+    ids_status st = IDS_OK;
+    idsi_echelon *e = echelon;
+
+    /* Upwards: the rules that a rule is rewritten with are complete by then. */
+    for (uint32_t column = 0; column < e->columns; column++) {
+        size_t count = 0;
+        if (e->rule_of[column] == 0) {
+            continue;
+        }
+        rule *r = &e->rules[e->rule_of[column] - 1];
+        bool complete = true;
+        for (uint32_t i = 0; complete && i < r->count; i++) {
+            complete = e->rule_of[r->entries[i].column] == 0;
+        }
+        if (complete) {
+            continue;
+        }
+        for (uint32_t i = 0; i < r->count; i++) {
+            accumulate(e, r->entries[i].column, r->entries[i].value);
+        }
+        IDSI_TRY(gather(e, true, &count));
+        if (count > r->count) {
+            IDSI_TRY(chunk_take(e, count, &r->entries));
+        }
+        memcpy(r->entries, e->gathered, count * sizeof *r->entries);
+        e->fill = e->fill - r->count + count;
+        r->count = (uint32_t)count;
+    }
+done:
+    return st;
+}
+
+bool idsi_echelon_rule(const idsi_echelon *echelon, uint32_t column, const idsi_entry **entries,
+                       uint32_t *count)
+{
+    uint32_t number = echelon->rule_of[column];
+    if (number == 0) {
+        return false;
+    }
+    *entries = echelon->rules[number - 1].entries;
+    *count = echelon->rules[number - 1].count;
+    return true;
+}
