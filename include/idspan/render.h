@@ -16,13 +16,14 @@ extern "C" {
 typedef enum ids_format {
     IDS_FORMAT_TEXT = 0,  /**< aligned columns, for people; not a contract */
     IDS_FORMAT_CSV = 1,   /**< RFC 4180, header line, LF line ends */
-    IDS_FORMAT_JSON = 2,  /**< RFC 8259: {"task": ..., "columns": [...], "rows": [{...}]} */
+    IDS_FORMAT_JSON = 2,  /**< RFC 8259: {"task", "columns": [...], "rows": [{...}], "notes": {}} */
     IDS_FORMAT_LATEX = 3  /**< a tabular with booktabs rules */
 } ids_format;
 
 /** What the cells of a column are. */
 typedef enum ids_column_kind {
-    IDS_COLUMN_NUMBER = 0, /**< an integer in decimal digits: right-justified, bare in JSON */
+    IDS_COLUMN_NUMBER = 0, /**< an integer in decimal digits, of any size, or "" for none:
+                                right-justified; bare in JSON, "" as null */
     IDS_COLUMN_TEXT = 1,   /**< words: left-justified, a string in JSON */
     IDS_COLUMN_MATH = 2    /**< a formula: as TEXT, but in math mode in LaTeX */
 } ids_column_kind;
@@ -41,12 +42,13 @@ typedef int (*ids_sink_fn)(void *user, const char *bytes, size_t length);
 typedef struct ids_writer ids_writer;
 
 /**
- * Starts a table. Rows are written as they come; text format holds back some rows to align them.
+ * Starts a table. Rows are written as they come; text format holds back some hundred rows to
+ * align them. Memory does not grow with the number of rows.
  *
  * @param ctx      borrowed now, kept.
  * @param format   output format.
- * @param task     borrowed: name of the table in JSON, label in LaTeX.
- * @param columns  borrowed now, names copied; count of them, at least 1.
+ * @param task     borrowed: name of the table in JSON, in a comment in LaTeX.
+ * @param columns  borrowed now, names copied; count of them, at least 1, no two with one name.
  * @param sink     receives the output; sink_user is kept and passed to it.
  * @param writer   out, owned: ids_writer_free(), after ids_writer_end() for a complete table.
  * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO. Since: 0.1
@@ -58,7 +60,7 @@ IDS_API IDS_MUST_USE ids_status ids_writer_create(ids_ctx *ctx, ids_format forma
 
 /**
  * Adds a name and value that JSON keeps beside the rows and text shows as a line after them
- * (CSV and LaTeX leave it out, LaTeX as a comment). Call it before ids_writer_end().
+ * (CSV leaves it out, LaTeX makes it a comment). Call it before ids_writer_end(), once a name.
  *
  * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
  */
@@ -68,11 +70,13 @@ IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *
 /**
  * Writes one row; cells[i] is borrowed text for column i, as many as there are columns.
  *
+ * A row that is refused with IDS_ERR_ARG leaves the table as it was. After any other failure the
+ * table is broken off: later calls answer with the same status and nothing more is written.
  * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_row(ids_writer *writer, const char *const *cells);
 
-/** Writes what is held back and the end of the table. @return as ids_writer_row(). Since: 0.1 */
+/** Writes what is held back, the notes and the end. @return as ids_writer_row(). Since: 0.1 */
 IDS_API IDS_MUST_USE ids_status ids_writer_end(ids_writer *writer);
 
 /** Frees a writer; NULL is fine. Since: 0.1 */
