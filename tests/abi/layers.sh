@@ -81,8 +81,10 @@ done < <(includes_of "${files[@]}")
 
 # ---- every source file -----------------------------------------------------------------------
 
+folders=(lib include tools tests)
+[ ! -d bench ] || folders+=(bench)
 mapfile -t files < <(
-    find lib include tools tests bench -type f \( -name '*.[ch]' -o -name '*.cc' -o -name '*.sh' \
+    find "${folders[@]}" -type f \( -name '*.[ch]' -o -name '*.cc' -o -name '*.sh' \
         -o -name '*.cmake' -o -name '*.h.in' -o -name '*.cmake.in' -o -name CMakeLists.txt \
         -o -perm -u+x ! -name '*.*' \) | sort
 )
