@@ -13,6 +13,8 @@
 
 /* Most terms a polynomial may have, written or linearised; over it: IDS_ERR_LIMIT. */
 #define IDSI_MAX_TERMS 4000000u
+/* Most limbs of a coefficient, numerator and denominator together (16 KiB: 39,000 digits). */
+#define IDSI_MAX_LIMBS 2048u
 /* Largest degree of an identity or candidate. */
 #define IDSI_MAX_IDENTITY_DEGREE 16u
 
@@ -32,6 +34,7 @@ typedef struct idsi_poly {
     idsi_token *tokens;
     size_t term_capacity;
     size_t token_capacity;
+    size_t big_limbs; /* GMP limbs of the coefficients of more than a word, an upper bound */
 } idsi_poly;
 
 void idsi_poly_init(idsi_poly *poly, ids_ctx *ctx, const ids_signature *sig);
@@ -39,18 +42,22 @@ void idsi_poly_clear(idsi_poly *poly);
 /* Appends a term as it stands (no sorting, no canonical form); coefficient may be 0. */
 ids_status idsi_poly_append(idsi_poly *poly, mpq_srcptr coefficient, const idsi_token *tree,
                             size_t length);
-/* Makes all trees canonical, sorts, collects equal trees, drops zeros, sets degree. */
+/* Makes all trees canonical, sorts, collects equal trees, drops zeros, sets degree. On failure
+ * the terms still have the same sum. */
 ids_status idsi_poly_normalize(idsi_poly *poly);
-/* Multiplies by a rational so that coefficients are integers with content 1, the first positive. */
-void idsi_poly_primitive(idsi_poly *poly);
+/* Multiplies by a rational so that coefficients are integers with content 1, the first positive.
+ * IDS_ERR_LIMIT, the polynomial unchanged, when the common denominator is enormous. */
+ids_status idsi_poly_primitive(idsi_poly *poly);
 bool idsi_poly_equal(const idsi_poly *a, const idsi_poly *b);
 /* names as in idsi_tree_print(). Writes "0" for no terms. */
 ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi_text *text);
 
 /*
- * Complete linearisation: a variable of multiplicity m becomes m variables, summed over all m!
+ * Complete linearisation, into an initialised polynomial without terms: a variable of multiplicity m becomes m variables, summed over all m!
  * ways to place them; primitive. Variables keep their order: x x y z z -> x1 x2 y z1 z2.
- * The polynomial must have every variable equally often in each term.
+ * The polynomial must be normalised and have every variable equally often in each term
+ * (else IDS_ERR_ARG). Cost: O(degree^2) for each term of the result before equal ones are
+ * collected; for a generated group, times its order.
  */
 ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear);
 
@@ -59,9 +66,11 @@ typedef struct idsi_identity {
     char *name;     /* "" when it has none */
     char **letters; /* variable names as written, written.variables of them */
     uint32_t line;
+    uint32_t degree; /* also of a trivial identity, which has no terms */
     bool multilinear;
-    idsi_poly written; /* normalised; labels 1.. number the variables in order of first use */
+    idsi_poly written; /* normalised; labels 1.. number the variables in the order of their names */
     idsi_poly linear;  /* primitive, multilinear; no terms when the identity is trivial */
+    idsi_token trivial[2u * IDSI_MAX_IDENTITY_DEGREE]; /* a tree that was written, if trivial */
 } idsi_identity;
 
 struct ids_presentation {

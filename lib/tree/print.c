@@ -10,9 +10,10 @@
 
 #include "tree_private.h"
 
+/* Letters beyond ASCII count as well, and symbols there do no harm with blanks around them. */
 static bool is_word_byte(char c)
 {
-    return (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z') || (c >= '0' && c <= '9') || c == '_' ||
+    return (uint8_t)c >= 0x80 || (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z') || (c >= '0' && c <= '9') || c == '_' ||
            c == '\'';
 }
 
