@@ -13,8 +13,8 @@
 /* Letters beyond ASCII count as well, and symbols there do no harm with blanks around them. */
 static bool is_word_byte(char c)
 {
-    return (uint8_t)c >= 0x80 || (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z') || (c >= '0' && c <= '9') || c == '_' ||
-           c == '\'';
+    return (uint8_t)c >= 0x80 || (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z') ||
+           (c >= '0' && c <= '9') || c == '_' || c == '\'';
 }
 
 static bool names_operation(const ids_signature *sig, const char *name)
