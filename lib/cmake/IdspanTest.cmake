@@ -23,7 +23,6 @@ endif()
 
 # What test programs have in common.
 function(idspan_test_program name)
-    set_target_properties(${name} PROPERTIES C_EXTENSIONS OFF)
     target_compile_definitions(
         ${name} PRIVATE _POSIX_C_SOURCE=200809L "IDSPAN_DATA_DIR=\"${PROJECT_SOURCE_DIR}/data\""
     )

@@ -49,6 +49,7 @@ ids_status idsi_text_append(idsi_text *text, const char *bytes, size_t n)
     ids_status st = reserve(text, n);
 
     if (st == IDS_OK) {
+        IDSI_ASSERT(text->data != NULL);
         if (n > 0) {
             memcpy(text->data + text->length, bytes, n);
         }
@@ -76,6 +77,7 @@ ids_status idsi_text_printf(idsi_text *text, const char *format, ...)
         return idsi_fail(text->ctx, IDS_ERR_INTERNAL, "a text could not be formatted");
     }
     IDSI_TRY(reserve(text, (size_t)needed));
+    IDSI_ASSERT(text->data != NULL);
     va_start(arguments, format);
     (void)vsnprintf(text->data + text->length, (size_t)needed + 1, format, arguments);
     va_end(arguments);
