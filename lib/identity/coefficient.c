@@ -73,7 +73,8 @@ static ids_status read_after_number(idsi_reader *reader)
         idsi_reader_operation(reader, IDS_NOTATION_INFIX, reader->at, 0) != SIZE_MAX) {
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                                 "the number %s is a coefficient, not an operand; expected a "
-                                "factor after it", shown.text);
+                                "factor after it",
+                                shown.text);
     }
     if (next->kind != IDSI_LEX_SYMBOL) {
         return IDS_OK;
@@ -81,11 +82,13 @@ static ids_status read_after_number(idsi_reader *reader)
     if (!idsi_lexeme_is(reader, reader->at, "*")) {
         const bool decimal = idsi_lexeme_is(reader, reader->at, ".") && next->glued &&
                              reader->lexemes[reader->at + 1].kind == IDSI_LEX_NUMBER;
-        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at, decimal
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
+                                decimal
                                     ? "a decimal fraction; write the number %s... as a fraction "
                                       "such as 3/2"
                                     : "the number %s is a coefficient, not an operand; expected "
-                                      "'*' or a factor after it", shown.text);
+                                      "'*' or a factor after it",
+                                shown.text);
     }
     reader->at++;
     if (!begins_factor(reader->lexemes[reader->at].kind)) {

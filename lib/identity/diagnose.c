@@ -156,8 +156,8 @@ idsi_shown idsi_reader_show(const idsi_reader *reader, size_t lexeme)
     idsi_shown shown = {{0}};
     const idsi_lexeme *at = &reader->lexemes[lexeme];
     if (at->kind == IDSI_LEX_END) {
-        const char *what = at->offset == reader->length ? "the end of the text"
-                                                        : "the end of the line";
+        const char *what =
+            at->offset == reader->length ? "the end of the text" : "the end of the line";
         memcpy(shown.text, what, strlen(what) + 1);
         return shown;
     }
@@ -211,8 +211,8 @@ const char *idsi_reader_nearest(const idsi_reader *reader, size_t lexeme, const 
     const char *nearest = NULL;
     size_t best = 3;
     for (size_t i = 0; i < count; i++) {
-        const size_t d = distance(reader->text + at->offset, at->length, words[i],
-                                  strlen(words[i]));
+        const size_t d =
+            distance(reader->text + at->offset, at->length, words[i], strlen(words[i]));
         if (d < best && d < at->length) {
             best = d;
             nearest = words[i];

@@ -28,8 +28,8 @@ static void arguments_clear(idsi_reader *reader, arguments *args)
 
 static ids_status arguments_init(idsi_reader *reader, arguments *args)
 {
-    ids_status st = idsi_alloc_array(reader->ctx, IDSI_MAX_VARIABLES, sizeof *args->value,
-                                     &args->value);
+    ids_status st =
+        idsi_alloc_array(reader->ctx, IDSI_MAX_VARIABLES, sizeof *args->value, &args->value);
     for (uint32_t i = 0; st == IDS_OK && i < IDSI_MAX_VARIABLES; i++) {
         idsi_value_init(&args->value[i], reader->ctx, reader->presentation->sig);
     }
@@ -74,8 +74,8 @@ static ids_status check_declared(idsi_reader *reader, size_t op, size_t use)
     const idsi_shown shown = idsi_reader_show(reader, use);
     return idsi_reader_fail(reader, IDS_ERR_PARSE, use,
                             "the operation %s is declared only in line %u; expected its "
-                            "declaration before its first use", shown.text,
-                            reader->lexemes[declared].line);
+                            "declaration before its first use",
+                            shown.text, reader->lexemes[declared].line);
 }
 
 /* ---- fences -------------------------------------------------------------------------------- */
@@ -90,8 +90,8 @@ static ids_status fail_fence(idsi_reader *reader, size_t open, uint32_t count)
     if (other != SIZE_MAX) {
         return idsi_reader_fail(reader, IDS_ERR_PARSE, open,
                                 "wrong number of arguments: the operation %c%c of line %u takes "
-                                "%u, found %u", a, b,
-                                reader->lexemes[reader->operations[other].lexeme].line,
+                                "%u, found %u",
+                                a, b, reader->lexemes[reader->operations[other].lexeme].line,
                                 reader->operations[other].operation.arity, count);
     }
     if (count == 1) {
@@ -100,8 +100,8 @@ static ids_status fail_fence(idsi_reader *reader, size_t open, uint32_t count)
     }
     return idsi_reader_fail(reader, IDS_ERR_PARSE, open,
                             "unknown operation %c%c with %u arguments; expected a declaration "
-                            "above, as in: operation %ca,b%s%c", a, b, count, a,
-                            count == 2 ? "" : ",...", b);
+                            "above, as in: operation %ca,b%s%c",
+                            a, b, count, a, count == 2 ? "" : ",...", b);
 }
 
 static ids_status read_fence(idsi_reader *reader, idsi_value *value)
@@ -116,9 +116,9 @@ static ids_status read_fence(idsi_reader *reader, idsi_value *value)
         *value = inner;
         goto done;
     }
-    const size_t op = args.count == 1 ? SIZE_MAX
-                                      : idsi_reader_operation(reader, IDS_NOTATION_FENCE, open,
-                                                              args.count);
+    const size_t op = args.count == 1
+                          ? SIZE_MAX
+                          : idsi_reader_operation(reader, IDS_NOTATION_FENCE, open, args.count);
     if (op == SIZE_MAX) {
         st = fail_fence(reader, open, args.count);
         goto done;
@@ -140,19 +140,22 @@ static ids_status fail_unknown_name(idsi_reader *reader, size_t name)
     if (reader->defining != SIZE_MAX && idsi_lexeme_same(reader, reader->defining, name)) {
         return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
                                 "the definition of %s uses itself; expected operations and "
-                                "earlier definitions", shown.text);
+                                "earlier definitions",
+                                shown.text);
     }
     for (size_t i = name + 1; i + 1 < reader->lexeme_count; i++) {
         if (reader->lexemes[i].first && idsi_lexeme_is(reader, i, "define") &&
             idsi_lexeme_same(reader, i + 1, name)) {
             return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
                                     "%s is defined only in line %u; expected its definition "
-                                    "before its first use", shown.text, reader->lexemes[i].line);
+                                    "before its first use",
+                                    shown.text, reader->lexemes[i].line);
         }
     }
     return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
                             "unknown operation %s; expected the name of a declared operation or "
-                            "definition before '('", shown.text);
+                            "definition before '('",
+                            shown.text);
 }
 
 static ids_status fail_argument_count(idsi_reader *reader, size_t name, uint32_t takes,
@@ -222,13 +225,14 @@ static ids_status read_variable(idsi_reader *reader, idsi_value *value)
             const idsi_shown defined = idsi_reader_show(reader, reader->defining);
             return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
                                     "%s is not an argument of the definition %s; expected one "
-                                    "of its arguments", shown.text, defined.text);
+                                    "of its arguments",
+                                    shown.text, defined.text);
         }
         if (label == IDSI_MAX_VARIABLES) {
             return idsi_reader_fail(reader, IDS_ERR_LIMIT, name,
                                     "more than %u different variables; the degree of an identity "
-                                    "is at most %u", IDSI_MAX_VARIABLES,
-                                    IDSI_MAX_IDENTITY_DEGREE);
+                                    "is at most %u",
+                                    IDSI_MAX_VARIABLES, IDSI_MAX_IDENTITY_DEGREE);
         }
         reader->variables[reader->variable_count++] = name;
     }
@@ -251,7 +255,8 @@ static ids_status read_primary(idsi_reader *reader, idsi_value *value)
     const idsi_shown found = idsi_reader_show(reader, reader->at);
     return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                             "missing operand: expected a variable, a number or an opening fence, "
-                            "found %s", found.text);
+                            "found %s",
+                            found.text);
 }
 
 /* ---- products and sums ---------------------------------------------------------------------- */
@@ -270,7 +275,8 @@ static ids_status read_factor(idsi_reader *reader, idsi_value *value)
             const idsi_shown found = idsi_reader_show(reader, reader->at);
             st = idsi_reader_fail(reader, IDS_ERR_PARSE, begin,
                                   "a number alone (only 0 can stand alone); expected a factor "
-                                  "after it, found %s", found.text);
+                                  "after it, found %s",
+                                  found.text);
         }
         goto done;
     }
@@ -332,9 +338,9 @@ static ids_status fail_chain(idsi_reader *reader, size_t begin, size_t first)
     const char *z = shown ? c.text : "c";
     return idsi_reader_fail(reader, IDS_ERR_PARSE, second,
                             "a product of three without parentheses; write "
-                            "(%s%s%s%s%s)%s%s%s%s or %s%s%s%s(%s%s%s%s%s)", x, blank, s.text, blank,
-                            y, blank, t.text, blank, z, x, blank, s.text, blank, y, blank, t.text,
-                            blank, z);
+                            "(%s%s%s%s%s)%s%s%s%s or %s%s%s%s(%s%s%s%s%s)",
+                            x, blank, s.text, blank, y, blank, t.text, blank, z, x, blank, s.text,
+                            blank, y, blank, t.text, blank, z);
 }
 
 /* After a complete product: a symbol or an operand here is an error worth explaining. */
@@ -346,8 +352,8 @@ static ids_status check_after_product(idsi_reader *reader, size_t begin, size_t 
     if (kind == IDSI_LEX_SYMBOL && !infix) {
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                                 "unknown operation %s; expected a declaration above, as in: "
-                                "operation a%.*sb", found.text,
-                                (int)reader->lexemes[reader->at].length,
+                                "operation a%.*sb",
+                                found.text, (int)reader->lexemes[reader->at].length,
                                 reader->text + reader->lexemes[reader->at].offset);
     }
     if (kind == IDSI_LEX_SYMBOL || (kind == IDSI_LEX_NAME && infix)) {
@@ -357,7 +363,8 @@ static ids_status check_after_product(idsi_reader *reader, size_t begin, size_t 
         const idsi_shown before = idsi_reader_show(reader, reader->at - 1);
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                                 "missing operation: expected an operation, '+', '-' or the end "
-                                "of the expression between %s and %s", before.text, found.text);
+                                "of the expression between %s and %s",
+                                before.text, found.text);
     }
     return IDS_OK;
 }
@@ -369,7 +376,8 @@ static ids_status read_second_factor(idsi_reader *reader, idsi_value *value)
         const idsi_shown sign = idsi_reader_show(reader, reader->at);
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                                 "missing operand: expected a factor, found %s (a factor with a "
-                                "sign needs parentheses)", sign.text);
+                                "sign needs parentheses)",
+                                sign.text);
     }
     return read_factor(reader, value);
 }

@@ -73,8 +73,8 @@ static ids_status track_fence(grouping *g, size_t lexeme)
     }
     if (at->kind == IDSI_LEX_OPEN) {
         if (g->depth == IDSI_MAX_NESTING) {
-            return idsi_reader_fail(reader, IDS_ERR_LIMIT, lexeme,
-                                    "fences nested deeper than %u", IDSI_MAX_NESTING);
+            return idsi_reader_fail(reader, IDS_ERR_LIMIT, lexeme, "fences nested deeper than %u",
+                                    IDSI_MAX_NESTING);
         }
         g->open[g->depth++] = lexeme;
         return IDS_OK;
@@ -115,34 +115,47 @@ static ids_status end_statement(grouping *g)
     return st;
 }
 
+/* Whether the END number i only ends a line, and the statement goes on or has not begun. */
+static bool goes_on(const grouping *g, size_t i)
+{
+    const idsi_reader *reader = g->reader;
+    if (g->kept == g->begin) {
+        return true;
+    }
+    if (i + 1 == reader->lexeme_count) {
+        return false;
+    }
+    const bool next_begins =
+        reader->lexemes[i + 1].kind == IDSI_LEX_NAME && idsi_lexeme_is_statement(reader, i + 1);
+    return g->depth > 0 || (is_operator(reader, g->kept - 1) && !next_begins);
+}
+
 ids_status idsi_reader_group(idsi_reader *reader)
 {
     grouping g = {.reader = reader};
+    idsi_lexeme first_end = {.kind = IDSI_LEX_NAME}; /* first END since the last other lexeme */
     ids_status st = IDS_OK;
     for (size_t i = 0; i < reader->lexeme_count; i++) {
-        const bool last = i + 1 == reader->lexeme_count;
-        const bool empty = g.kept == g.begin;
         const idsi_lexeme lexeme = reader->lexemes[i];
-        if (lexeme.kind == IDSI_LEX_END) {
-            if (last && g.depth > 0) {
-                st = fail_open(&g);
-                goto done;
-            }
-            const bool next_begins = !last && reader->lexemes[i + 1].first &&
-                                     reader->lexemes[i + 1].kind == IDSI_LEX_NAME &&
-                                     idsi_lexeme_is_statement(reader, i + 1);
-            if (empty || (!last && (g.depth > 0 || (is_operator(reader, g.kept - 1) &&
-                                                    !next_begins)))) {
-                continue;
-            }
-        }
         /* Nothing is written above i, so what is still to be read stays as it is. */
-        reader->lexemes[g.kept++] = lexeme;
-        if (lexeme.kind == IDSI_LEX_END) {
-            IDSI_TRY(end_statement(&g));
-        } else {
+        if (lexeme.kind != IDSI_LEX_END) {
+            first_end.kind = IDSI_LEX_NAME;
+            reader->lexemes[g.kept++] = lexeme;
             IDSI_TRY(track_fence(&g, g.kept - 1));
+            continue;
         }
+        if (first_end.kind != IDSI_LEX_END) {
+            first_end = lexeme;
+        }
+        if (goes_on(&g, i)) {
+            continue;
+        }
+        if (g.depth > 0) {
+            st = fail_open(&g);
+            goto done;
+        }
+        reader->lexemes[g.kept++] = first_end;
+        IDSI_TRY(end_statement(&g));
     }
     reader->lexeme_count = g.kept;
 done:

@@ -66,10 +66,10 @@ static ids_status push(scanner *s, idsi_lexeme_kind kind, const scanner *begin)
         return st;
     }
     idsi_lexeme *lexeme = &reader->lexemes[reader->lexeme_count++];
-    *lexeme = (idsi_lexeme){kind,          (uint32_t)begin->offset,
-                            (uint32_t)(s->offset - begin->offset),
-                            begin->line,   begin->column,
-                            begin->glued,  begin->first};
+    *lexeme =
+        (idsi_lexeme){kind,        (uint32_t)begin->offset, (uint32_t)(s->offset - begin->offset),
+                      begin->line, begin->column,           begin->glued,
+                      begin->first};
     s->glued = true;
     s->first = false;
     return IDS_OK;
@@ -214,7 +214,8 @@ static ids_status scan_one(scanner *s, uint32_t code, size_t bytes)
     }
     return fail(s, IDS_ERR_PARSE,
                 "control, invisible or unusual blank character U+%04X; expected a letter, "
-                "a number, a symbol or a space", (unsigned)code);
+                "a number, a symbol or a space",
+                (unsigned)code);
 }
 
 ids_status idsi_reader_lex(idsi_reader *reader)

@@ -107,8 +107,8 @@ static uint64_t node_init(dealer *d, size_t at)
         n->kind[i] = i;
         for (uint32_t j = 0; j < i; j++) {
             if (d->size[n->child[j]] == d->size[child] &&
-                memcmp(d->tree + n->child[j], d->tree + child,
-                       d->size[child] * sizeof *d->tree) == 0) {
+                memcmp(d->tree + n->child[j], d->tree + child, d->size[child] * sizeof *d->tree) ==
+                    0) {
                 n->kind[i] = j;
                 break;
             }

@@ -96,7 +96,8 @@ static ids_status read_infix(idsi_reader *reader, pattern *p)
         symbol->kind == IDSI_LEX_EQUAL || symbol->kind == IDSI_LEX_COLON) {
         st = idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                               "%s belongs to the notation and cannot name an operation; expected "
-                              "another symbol", shown.text);
+                              "another symbol",
+                              shown.text);
         goto done;
     }
     if ((symbol->kind != IDSI_LEX_SYMBOL && symbol->kind != IDSI_LEX_NAME) ||
@@ -109,7 +110,8 @@ static ids_status read_infix(idsi_reader *reader, pattern *p)
         const idsi_shown found = idsi_reader_show(reader, reader->at);
         st = idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                               "missing operand: expected the name of an argument after %s, "
-                              "found %s", shown.text, found.text);
+                              "found %s",
+                              shown.text, found.text);
         goto done;
     }
     IDSI_TRY(read_argument(reader, p));
@@ -184,7 +186,8 @@ static ids_status read_order(idsi_reader *reader, const pattern *base, ids_signe
             const idsi_shown name = idsi_reader_show(reader, p.argument[i]);
             return idsi_reader_fail(reader, IDS_ERR_PARSE, p.argument[i],
                                     "%s is not among the arguments on the left; expected the "
-                                    "same arguments in another order", name.text);
+                                    "same arguments in another order",
+                                    name.text);
         }
         order->image[i] = (uint8_t)j;
     }
@@ -234,7 +237,8 @@ static ids_status read_symmetry(idsi_reader *reader, const pattern *base, idsi_d
         const char *near = idsi_reader_nearest(reader, reader->at, words, 3);
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                                 "unknown symmetry %s; expected commutative, alternating, none or "
-                                "'='%s%s%s", found.text, near == NULL ? "" : " (did you mean '",
+                                "'='%s%s%s",
+                                found.text, near == NULL ? "" : " (did you mean '",
                                 near == NULL ? "" : near, near == NULL ? "" : "'?)");
     }
     return idsi_reader_end(reader, "commutative, alternating, none, '=' or the end of the line");
@@ -251,8 +255,8 @@ static ids_status check_new(idsi_reader *reader, const pattern *base)
                                 other->line);
     }
     if (reader->operation_count == IDS_MAX_OPERATIONS) {
-        return idsi_reader_fail(reader, IDS_ERR_LIMIT, base->first,
-                                "more than %u operations", IDS_MAX_OPERATIONS);
+        return idsi_reader_fail(reader, IDS_ERR_LIMIT, base->first, "more than %u operations",
+                                IDS_MAX_OPERATIONS);
     }
     return IDS_OK;
 }
@@ -270,8 +274,10 @@ ids_status idsi_reader_declare(idsi_reader *reader)
     if (base.notation == IDS_NOTATION_FENCE) {
         IDSI_TRY(idsi_lexeme_copy(reader, base.close, &declared.close));
     }
-    declared.operation = (ids_operation){.notation = base.notation, .open = declared.open,
-                                         .close = declared.close, .arity = base.count};
+    declared.operation = (ids_operation){.notation = base.notation,
+                                         .open = declared.open,
+                                         .close = declared.close,
+                                         .arity = base.count};
     IDSI_TRY(read_symmetry(reader, &base, &declared));
     if (declared.operation.symmetry == IDS_SYMMETRY_GENERATED) {
         st = ids_signature_create(reader->ctx, &declared.operation, 1, &trial);

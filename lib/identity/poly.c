@@ -48,8 +48,8 @@ static ids_status check_size(idsi_poly *poly, mpq_srcptr coefficient)
         return IDS_OK;
     }
     if (size > IDSI_MAX_LIMBS) {
-        return idsi_fail(poly->ctx, IDS_ERR_LIMIT,
-                         "a coefficient with more than %u bits", IDSI_MAX_LIMBS * 64u);
+        return idsi_fail(poly->ctx, IDS_ERR_LIMIT, "a coefficient with more than %u bits",
+                         IDSI_MAX_LIMBS * 64u);
     }
     poly->big_limbs += size;
     if (poly->big_limbs > MAX_ALL_LIMBS) {
@@ -281,8 +281,8 @@ ids_status idsi_poly_primitive(idsi_poly *poly)
         mpz_gcd(content, content, mpq_numref(poly->coefficients[i]));
         mpz_lcm(common, common, mpq_denref(poly->coefficients[i]));
         if (mpz_size(common) > IDSI_MAX_LIMBS) {
-            st = idsi_fail(poly->ctx, IDS_ERR_LIMIT,
-                           "a common denominator with more than %u bits", IDSI_MAX_LIMBS * 64u);
+            st = idsi_fail(poly->ctx, IDS_ERR_LIMIT, "a common denominator with more than %u bits",
+                           IDSI_MAX_LIMBS * 64u);
             goto done;
         }
     }

@@ -56,6 +56,9 @@ static ids_status make_signature(idsi_reader *reader)
     ids_operation *list = NULL;
     ids_status st = IDS_OK;
     if (reader->operation_count == 0) {
+        if (reader->lexeme_count == 0) {
+            reader->lexemes[0] = (idsi_lexeme){.kind = IDSI_LEX_END, .line = 1, .column = 1};
+        }
         return idsi_reader_fail(reader, IDS_ERR_PARSE, 0,
                                 "no operation is declared; expected a line such as: "
                                 "operation a*b commutative");

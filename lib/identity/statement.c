@@ -33,10 +33,9 @@ static ids_status read_defined_name(idsi_reader *reader)
     const idsi_shown shown = idsi_reader_show(reader, name);
     const size_t definition = idsi_reader_definition(reader, name);
     if (definition != SIZE_MAX) {
-        return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
-                                "%s is defined already, in line %u; expected another name",
-                                shown.text,
-                                reader->lexemes[reader->definitions[definition].lexeme].line);
+        return idsi_reader_fail(
+            reader, IDS_ERR_PARSE, name, "%s is defined already, in line %u; expected another name",
+            shown.text, reader->lexemes[reader->definitions[definition].lexeme].line);
     }
     size_t op = idsi_reader_operation(reader, IDS_NOTATION_PREFIX, name, 0);
     if (op == SIZE_MAX) {
@@ -45,8 +44,8 @@ static ids_status read_defined_name(idsi_reader *reader)
     if (op != SIZE_MAX) {
         return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
                                 "%s names the operation of line %u; expected another name for "
-                                "the definition", shown.text,
-                                reader->lexemes[reader->operations[op].lexeme].line);
+                                "the definition",
+                                shown.text, reader->lexemes[reader->operations[op].lexeme].line);
     }
     if (idsi_lexeme_is_reserved(reader, name)) {
         return idsi_reader_check_variable(reader, name);
@@ -78,8 +77,7 @@ static ids_status read_parameters(idsi_reader *reader)
         }
         if (reader->variable_count == IDSI_MAX_VARIABLES) {
             return idsi_reader_fail(reader, IDS_ERR_LIMIT, reader->at,
-                                    "a definition with more than %u arguments",
-                                    IDSI_MAX_VARIABLES);
+                                    "a definition with more than %u arguments", IDSI_MAX_VARIABLES);
         }
         reader->variables[reader->variable_count++] = reader->at++;
     } while (reader->lexemes[reader->at].kind == IDSI_LEX_COMMA);
@@ -299,12 +297,14 @@ static ids_status fail_word(idsi_reader *reader, size_t word)
         return idsi_reader_fail(reader, IDS_ERR_PARSE, word,
                                 "expected a statement word (operation, define, identity, "
                                 "candidate), found %s; to go on with the statement above, end "
-                                "its line in an operator", found.text);
+                                "its line in an operator",
+                                found.text);
     }
     const char *near = idsi_reader_nearest(reader, word, idsi_statement_words, 4);
     return idsi_reader_fail(reader, IDS_ERR_PARSE, word,
                             "unknown statement %s; expected operation, define, identity or "
-                            "candidate%s%s%s", found.text, near == NULL ? "" : " (did you mean '",
+                            "candidate%s%s%s",
+                            found.text, near == NULL ? "" : " (did you mean '",
                             near == NULL ? "" : near, near == NULL ? "" : "'?)");
 }
 

@@ -94,14 +94,16 @@ ids_status idsi_reader_check_variable(idsi_reader *reader, size_t lexeme)
         const size_t declared = reader->operations[op].lexeme;
         return idsi_reader_fail(reader, IDS_ERR_PARSE, lexeme,
                                 "%s names the operation of line %u; expected a variable or "
-                                "another operand", name.text, reader->lexemes[declared].line);
+                                "another operand",
+                                name.text, reader->lexemes[declared].line);
     }
     const size_t definition = idsi_reader_definition(reader, lexeme);
     if (definition != SIZE_MAX) {
         const size_t defined = reader->definitions[definition].lexeme;
         return idsi_reader_fail(reader, IDS_ERR_PARSE, lexeme,
                                 "%s is defined in line %u and takes %u arguments in ( ) directly "
-                                "after its name", name.text, reader->lexemes[defined].line,
+                                "after its name",
+                                name.text, reader->lexemes[defined].line,
                                 reader->definitions[definition].arity);
     }
     return IDS_OK;
