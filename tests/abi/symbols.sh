@@ -4,7 +4,8 @@
 # symbols.sh ARCHIVE ASSERTIONS   (ASSERTIONS: 1 when the build has them, else 0)
 #
 # What the objects of the static library refer to and define: nothing that ends the process,
-# prints, reads the environment, jumps, or has hidden state; no writable data.
+# prints, reads the environment, jumps, or has hidden state; no writable data; no global name
+# without our prefix, which could meet another one in a static program.
 here=$(cd "$(dirname "${BASH_SOURCE[0]}")" && pwd)
 # shellcheck source-path=SCRIPTDIR source=common.sh
 . "$here/common.sh"
@@ -58,4 +59,8 @@ while read -r object symbol; do
         complain "$object has writable data: $symbol"
     fi
 done <<<"$writable"
+
+while read -r name; do
+    [[ -z $name || $name == ids_* || $name == idsi_* ]] || complain "global name $name"
+done < <(nm -g --defined-only "$archive" | awk 'NF == 3 { print $3 }')
 finish
