@@ -9,11 +9,12 @@
  *     number * factor        a coefficient: 2\,(...)
  *     name                   one letter as it is, more in \mathrm; digits at the end are an index
  *     name between operands  an infix operation: o -> \circ, others \mathbin{\mathrm{...}}
- *     * . ^ ~ \ ...          see symbol(): * -> \cdot, the rest as it looks
+ *     * . ^ ~ \ ...          see symbols: * -> \cdot, the rest as it looks
  *     { }                    \{ \}
  *     < >                    \langle \rangle as fences, as they are between operands
- *     beyond ASCII           the usual operation signs have their commands; any other character
- *                            is named by its code point, since a font may lack it
+ *     beyond ASCII           Greek letters and the usual operation signs have their commands,
+ *                            Latin letters stay, subscript digits are an index; any other
+ *                            character is named by its code point, since a font may lack it
  *
  * Nothing outside LaTeX's own commands is used, so no package is needed.
  */
@@ -33,65 +34,48 @@ typedef struct reader {
     size_t angles; /* open < fences */
 } reader;
 
-/* The command for a symbol, NULL when the character stands for itself. */
-static const char *symbol(uint32_t character)
-{
-    static const struct {
-        uint32_t character;
-        const char *command;
-    } table[] = {
-        {'*', "\\cdot "},
-        {'.', "\\mathbin{.}"},
-        {'^', "\\wedge "},
-        {'~', "\\sim "},
-        {'\\', "\\setminus "},
-        {'&', "\\mathbin{\\&}"},
-        {'%', "\\mathbin{\\%}"},
-        {'#', "\\mathbin{\\#}"},
-        {'$', "\\mathbin{\\$}"},
-        {'_', "\\mathbin{\\_}"},
-        {'@', "\\mathbin{@}"},
-        {'!', "\\mathbin{!}"},
-        {'?', "\\mathbin{?}"},
-        {'|', "\\mathbin{|}"},
-        {':', "\\mathbin{:}"},
-        {';', "\\mathbin{;}"},
-        {'/', "\\mathbin{/}"},
-        {'"', "\\mathbin{\\mbox{\"}}"},
-        {'`', "\\mathbin{\\mbox{`}}"},
-        {'\'', "\\mathbin{\\mbox{'}}"},
-        {'{', "\\{"},
-        {'}', "\\}"},
-        {0xB7, "\\cdot "},
-        {0xD7, "\\times "},
-        {0xF7, "\\div "},
-        {0xB1, "\\pm "},
-        {0x2022, "\\bullet "},
-        {0x2217, "\\ast "},
-        {0x2218, "\\circ "},
-        {0x2219, "\\bullet "},
-        {0x2227, "\\wedge "},
-        {0x2228, "\\vee "},
-        {0x2229, "\\cap "},
-        {0x222A, "\\cup "},
-        {0x2293, "\\sqcap "},
-        {0x2294, "\\sqcup "},
-        {0x2295, "\\oplus "},
-        {0x2296, "\\ominus "},
-        {0x2297, "\\otimes "},
-        {0x2298, "\\oslash "},
-        {0x2299, "\\odot "},
-        {0x22C4, "\\diamond "},
-        {0x22C5, "\\cdot "},
-        {0x22C6, "\\star "},
-        {0x25CB, "\\bigcirc "},
-        {0x25E6, "\\circ "},
-        {0x2605, "\\star "},
-    };
+typedef struct entry {
+    uint32_t character;
+    const char *command;
+} entry;
 
-    for (size_t i = 0; i < sizeof table / sizeof table[0]; i++) {
-        if (table[i].character == character) {
-            return table[i].command;
+/* clang-format off */
+static const entry symbols[] = {
+    {'*', "\\cdot "}, {'.', "\\mathbin{.}"}, {'^', "\\wedge "}, {'~', "\\sim "},
+    {'\\', "\\setminus "}, {'&', "\\mathbin{\\&}"}, {'%', "\\mathbin{\\%}"},
+    {'#', "\\mathbin{\\#}"}, {'$', "\\mathbin{\\$}"}, {'_', "\\mathbin{\\_}"},
+    {'@', "\\mathbin{@}"}, {'!', "\\mathbin{!}"}, {'?', "\\mathbin{?}"},
+    {'|', "\\mathbin{|}"}, {':', "\\mathbin{:}"}, {';', "\\mathbin{;}"},
+    {'/', "\\mathbin{/}"}, {'"', "\\mathbin{\\mbox{\"}}"}, {'`', "\\mathbin{\\mbox{`}}"},
+    {'\'', "\\mathbin{\\mbox{'}}"}, {'{', "\\{"}, {'}', "\\}"},
+    {0xB1, "\\pm "}, {0xB7, "\\cdot "}, {0xD7, "\\times "}, {0xF7, "\\div "},
+    {0x2022, "\\bullet "}, {0x2217, "\\ast "}, {0x2218, "\\circ "}, {0x2219, "\\bullet "},
+    {0x2227, "\\wedge "}, {0x2228, "\\vee "}, {0x2229, "\\cap "}, {0x222A, "\\cup "},
+    {0x2293, "\\sqcap "}, {0x2294, "\\sqcup "}, {0x2295, "\\oplus "}, {0x2296, "\\ominus "},
+    {0x2297, "\\otimes "}, {0x2298, "\\oslash "}, {0x2299, "\\odot "}, {0x22C4, "\\diamond "},
+    {0x22C5, "\\cdot "}, {0x22C6, "\\star "}, {0x25CB, "\\bigcirc "}, {0x25E6, "\\circ "},
+    {0x2605, "\\star "},
+};
+
+static const entry greek[] = {
+    {0x393, "\\Gamma "}, {0x394, "\\Delta "}, {0x398, "\\Theta "}, {0x39B, "\\Lambda "},
+    {0x39E, "\\Xi "}, {0x3A0, "\\Pi "}, {0x3A3, "\\Sigma "}, {0x3A6, "\\Phi "},
+    {0x3A8, "\\Psi "}, {0x3A9, "\\Omega "},
+    {0x3B1, "\\alpha "}, {0x3B2, "\\beta "}, {0x3B3, "\\gamma "}, {0x3B4, "\\delta "},
+    {0x3B5, "\\varepsilon "}, {0x3B6, "\\zeta "}, {0x3B7, "\\eta "}, {0x3B8, "\\theta "},
+    {0x3B9, "\\iota "}, {0x3BA, "\\kappa "}, {0x3BB, "\\lambda "}, {0x3BC, "\\mu "},
+    {0x3BD, "\\nu "}, {0x3BE, "\\xi "}, {0x3C0, "\\pi "}, {0x3C1, "\\rho "},
+    {0x3C3, "\\sigma "}, {0x3C4, "\\tau "}, {0x3C5, "\\upsilon "}, {0x3C6, "\\varphi "},
+    {0x3C7, "\\chi "}, {0x3C8, "\\psi "}, {0x3C9, "\\omega "}, {0x3D5, "\\phi "},
+};
+/* clang-format on */
+
+/* The command for a character, NULL when the list has none. */
+static const char *find(const entry *list, size_t count, uint32_t character)
+{
+    for (size_t i = 0; i < count; i++) {
+        if (list[i].character == character) {
+            return list[i].command;
         }
     }
     return NULL;
@@ -193,32 +177,67 @@ done:
     return st;
 }
 
-static ids_status read_symbol(reader *in)
+/* Subscript digits, one index however many there are. */
+static ids_status read_subscript(reader *in, uint32_t character)
 {
     ids_status st = IDS_OK;
-    uint32_t character = idsi_utf8_next(&in->at);
-    const char *command = symbol(character);
-    bool closing = strchr(")]}", (int)(character < 0x80 ? character : 'x')) != NULL;
+    const char *next = in->at;
 
-    if (character == '<' && !in->operand) {
-        in->angles++;
-        command = "\\langle ";
-    } else if (character == '>' && in->operand && in->angles > 0) {
-        in->angles--;
-        command = "\\rangle ";
-        closing = true;
+    IDSI_TRY(idsi_text_puts(in->line, "_{"));
+    while (character >= 0x2080 && character <= 0x2089) {
+        IDSI_TRY(idsi_text_printf(in->line, "%u", (unsigned)(character - 0x2080)));
+        in->at = next;
+        character = *next != '\0' ? idsi_utf8_next(&next) : 0;
     }
-    if (command != NULL) {
-        IDSI_TRY(idsi_text_puts(in->line, command));
-    } else if (character >= 0x80) {
-        IDSI_TRY(idsi_text_printf(in->line, "\\mathbin{\\mathrm{U{+}%04X}}", (unsigned)character));
-    } else {
-        IDSI_TRY(
-            idsi_utf8_append(in->line, character < 0x20 || character == 0x7F ? ' ' : character));
-    }
-    in->operand = closing;
+    IDSI_TRY(idsi_text_puts(in->line, "}"));
 done:
     return st;
+}
+
+/* Any other character beyond ASCII: a letter or a sign. */
+static ids_status append_beyond(reader *in, uint32_t character)
+{
+    const char *command = find(greek, sizeof greek / sizeof greek[0], character);
+
+    in->operand = true;
+    if (command != NULL) {
+        return idsi_text_puts(in->line, command);
+    }
+    if (character >= 0xC0 && character <= 0x17F) {
+        ids_status st = idsi_text_puts(in->line, "\\mbox{");
+        st = st == IDS_OK ? idsi_utf8_append(in->line, character) : st;
+        return st == IDS_OK ? idsi_text_puts(in->line, "}") : st;
+    }
+    in->operand = false;
+    return idsi_text_printf(in->line, "\\mathbin{\\mathrm{U{+}%04X}}", (unsigned)character);
+}
+
+static ids_status read_symbol(reader *in)
+{
+    uint32_t character = idsi_utf8_next(&in->at);
+    const char *command = find(symbols, sizeof symbols / sizeof symbols[0], character);
+    bool operand = in->operand;
+
+    in->operand = character == ')' || character == ']' || character == '}';
+    if (character == '<' && !operand) {
+        in->angles++;
+        command = "\\langle ";
+    } else if (character == '>' && operand && in->angles > 0) {
+        in->angles--;
+        in->operand = true;
+        command = "\\rangle ";
+    }
+    if (command != NULL) {
+        return idsi_text_puts(in->line, command);
+    }
+    if (character >= 0x2080 && character <= 0x2089) {
+        in->operand = true;
+        return read_subscript(in, character);
+    }
+    if (character >= 0x80) {
+        return append_beyond(in, character);
+    }
+    return idsi_utf8_append(in->line, character < 0x20 || character == 0x7F ? ' ' : character);
 }
 
 ids_status idsi_latex_formula(idsi_text *line, const char *text)

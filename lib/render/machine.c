@@ -12,7 +12,7 @@
 
 #include "render_private.h"
 
-/* ---- CSV -------------------------------------------------------------------------------- */
+/* ---- CSV ----------------------------------------------------------------------------- */
 
 static ids_status append_field(idsi_text *line, const char *field, bool alone)
 {
@@ -68,7 +68,7 @@ static ids_status csv_end(ids_writer *writer, idsi_text *line)
 
 const idsi_format idsi_format_csv = {csv_begin, csv_row, csv_end};
 
-/* ---- JSON ------------------------------------------------------------------------------------ */
+/* ---- JSON ---------------------------------------------------------------------------- */
 
 static ids_status append_string(idsi_text *line, const char *text)
 {

@@ -10,7 +10,7 @@
 
 #include "../core/core_private.h"
 
-/* ---- UTF-8 ------------------------------------------------------------------------------- */
+/* ---- UTF-8 --------------------------------------------------------------------------- */
 
 #define IDSI_BAD_CHARACTER 0xFFFDu
 
@@ -24,7 +24,7 @@ ids_status idsi_utf8_append(idsi_text *text, uint32_t character);
 /* Columns that a terminal uses for a text: 2 for wide characters, 0 for combining ones. */
 size_t idsi_utf8_width(const char *text);
 
-/* ---- the table ----------------------------------------------------------------------------- */
+/* ---- the table ----------------------------------------------------------------------- */
 
 typedef struct idsi_column {
     char *name;
@@ -69,7 +69,7 @@ struct ids_writer {
 bool idsi_writer_next_note(const ids_writer *writer, size_t *at, const char **name,
                            const char **value);
 
-/* ---- LaTeX ------------------------------------------------------------------------------------ */
+/* ---- LaTeX --------------------------------------------------------------------------- */
 
 /* Appends words for text mode: the characters that TeX reads as commands are escaped. */
 ids_status idsi_latex_words(idsi_text *line, const char *text);

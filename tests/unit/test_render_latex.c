@@ -72,6 +72,8 @@ static const pair formulas[] = {
     {"a\xe2\x97\x87"
      "b",
      "a\\mathbin{\\mathrm{U{+}25C7}}b"},
+    {"\xce\xb1*\xce\xbb\xe2\x82\x81\xe2\x82\x82*b", "\\alpha \\cdot \\lambda _{12}\\cdot b"},
+    {"\xc3\xa9*b", "\\mbox{\xc3\xa9}\\cdot b"},
     {"", ""},
 };
 

@@ -1,0 +1,127 @@
+#!/bin/bash
+# SPDX-License-Identifier: BSD-2-Clause
+#
+# The command line: help, version, what is refused and what is said about it.
+here=$(dirname "$(readlink -f "$0")")
+# shellcheck source=tests/cli/common.sh
+. "$here/common.sh"
+
+tasks="show types basis rank"
+
+# ---- help and version ------------------------------------------------------------------
+
+run 0 --version
+grep -qE '^idspan [0-9]+\.[0-9]+\.[0-9]+$' out || complain "--version: $(cat out)"
+is_empty err
+run 2
+has err "idspan TASK FILE"
+is_empty out
+run 0 --help
+is_empty err
+has out "Examples:"
+for task in $tasks; do
+    has out "  $task "
+done
+for option in degree degrees from count exact primes seed format output memory threads help version; do
+    has out "--$option"
+done
+run 0 -h
+has out "idspan TASK FILE"
+
+common="format output memory threads help version"
+# shellcheck disable=SC2034 # by indirection, below
+{
+    own_show=""
+    own_types="degree degrees"
+    own_basis="degree from count"
+    own_rank="degree degrees exact primes seed"
+}
+for task in $tasks; do
+    run 0 "$task" --help
+    is_empty err
+    own=own_$task
+    for option in ${!own} $common; do
+        has out "  --$option"
+        grep -qF -e "--$option" "$source_dir/tools/idspan/idspan.bash" ||
+            complain "the completion lacks --$option"
+        grep -qE -e "\\\\-\\\\-$option( |\$)" "$source_dir/tools/idspan/idspan.1" ||
+            complain "the manual lacks --$option"
+    done
+    has out "  idspan $task "
+    grep -q "^\.SS $task\$" "$source_dir/tools/idspan/idspan.1" || complain "the manual lacks $task"
+done
+run 0 types --help
+has out "degree,index,type,automorphisms,monomials"
+has out "count from 0"
+run 0 basis --help
+has out "degree,index,monomial"
+has out "count from 0"
+run 0 rank --help
+has out "degree,free,consequences,quotient,certainty"
+
+# ---- refusals -------------------------------------------------------------------------
+
+refuse() { # MESSAGE ARGUMENT...
+    local message=$1
+    shift
+    run 2 "$@"
+    is_empty out
+    has err "idspan: "
+    has err "$message"
+}
+
+refuse 'no task "rnak"; did you mean "rank"?' rnak jordan.pres
+refuse 'no task "xyzzy"; idspan --help' xyzzy jordan.pres
+refuse 'the task comes first: idspan show jordan.pres' jordan.pres show
+refuse 'say what to do' --format csv
+refuse 'wants a presentation file, or -' show
+refuse 'wants a degree' rank jordan.pres
+refuse 'wants a degree' basis jordan.pres
+refuse 'wants a degree' types jordan.pres
+refuse 'one file at a time' show jordan.pres ternary.pres
+refuse 'no option --degre; did you mean --degree?' rank jordan.pres --degre 3
+refuse 'no option --fromat; did you mean --format?' show jordan.pres --fromat csv
+refuse 'no option --xyzzy; idspan --help' show jordan.pres --xyzzy
+refuse 'no option -x' show jordan.pres -x
+refuse '--exact takes no value' rank jordan.pres --degree 3 --exact=yes
+refuse '--degree wants a value: --degree N' rank jordan.pres --degree
+refuse '--format is given twice' show jordan.pres --format csv --format csv
+refuse '--exact is an option of "rank", not of "types"' types jordan.pres --degree 3 --exact
+refuse '--from is an option of "basis", not of "rank"' rank jordan.pres --degree 3 --from 0
+refuse 'exclude each other' rank jordan.pres --degree 3 --degrees 1..3
+refuse '--degree wants a whole number from 1 to 64, not "0"' rank jordan.pres --degree 0
+refuse '--degree wants a whole number from 1 to 64, not "65"' rank jordan.pres --degree 65
+refuse 'not "-1"' rank jordan.pres --degree -1
+refuse 'not "3x"' rank jordan.pres --degree 3x
+refuse 'not ""' rank jordan.pres --degree=
+refuse '--degrees wants a range such as 1..7, not "1-3"' rank jordan.pres --degrees 1-3
+refuse '--degrees wants a range such as 1..7, not "1.."' rank jordan.pres --degrees 1..
+refuse 'is empty; did you mean 2..5?' rank jordan.pres --degrees 5..2
+refuse 'degrees go from 1 to 64' rank jordan.pres --degrees 1..65
+refuse 'degrees go from 1 to 64' rank jordan.pres --degrees 0..5
+refuse 'not "json5"; did you mean json?' show jordan.pres --format json5
+refuse '--memory wants a size' show jordan.pres --memory 4X
+refuse '--memory wants a size' show jordan.pres --memory 0
+refuse '--memory wants a size' show jordan.pres --memory 99999999999G
+refuse '--threads wants' show jordan.pres --threads 0
+refuse '--primes wants' rank jordan.pres --degree 3 --primes 0
+refuse '--seed wants' rank jordan.pres --degree 3 --seed 18446744073709551616
+refuse '--count wants' basis jordan.pres --degree 3 --count all
+refuse '--from 3: degree 3 has 3 monomials' basis jordan.pres --degree 3 --from 3
+
+# ---- what is the same ---------------------------------------------------------------------
+
+run 0 rank jordan.pres --degrees 1..4 --format csv
+cp out expected
+for arguments in "--format csv rank jordan.pres --degrees 1..4" \
+    "rank --degrees=1..4 jordan.pres --format=csv" \
+    "rank --format csv --degrees 1..4 -- jordan.pres" \
+    "rank jordan.pres --degrees 1..4 --format csv --memory 64MiB --threads 1" \
+    "rank jordan.pres --degrees 1..4 --format csv --memory none" \
+    "rank jordan.pres --degrees 1..4 --format csv --output -"; do
+    # shellcheck disable=SC2086 # words on purpose
+    run 0 $arguments
+    cmp -s out expected || complain "$last: another output"
+done
+
+finish

@@ -1,0 +1,65 @@
+# SPDX-License-Identifier: BSD-2-Clause
+#
+# Completion of idspan command lines for bash.
+
+_idspan()
+{
+    local word=${COMP_WORDS[COMP_CWORD]}
+    local previous=${COMP_WORDS[COMP_CWORD - 1]}
+    local tasks="show types basis rank"
+    local common="--format --output --memory --threads --help --version"
+    local task="" own="" i
+
+    # --option=value comes as three words.
+    if [[ $previous == "=" ]]; then
+        previous=${COMP_WORDS[COMP_CWORD - 2]}
+    elif [[ $word == "=" ]]; then
+        word=""
+    fi
+    COMPREPLY=()
+    case $previous in
+    --format)
+        mapfile -t COMPREPLY < <(compgen -W "text csv json latex" -- "$word")
+        return
+        ;;
+    --output)
+        mapfile -t COMPREPLY < <(compgen -f -- "$word")
+        return
+        ;;
+    --memory)
+        mapfile -t COMPREPLY < <(compgen -W "1G 2G 4G 8G 16G none" -- "$word")
+        return
+        ;;
+    --degree | --degrees | --from | --count | --primes | --seed | --threads)
+        return
+        ;;
+    esac
+
+    for ((i = 1; i < COMP_CWORD; i++)); do
+        case ${COMP_WORDS[i]} in
+        show | types | basis | rank)
+            task=${COMP_WORDS[i]}
+            break
+            ;;
+        esac
+    done
+    case $task in
+    types) own="--degree --degrees" ;;
+    basis) own="--degree --from --count" ;;
+    rank) own="--degree --degrees --exact --primes --seed" ;;
+    esac
+
+    if [[ $word == -* ]]; then
+        mapfile -t COMPREPLY < <(compgen -W "$own $common" -- "$word")
+    elif [[ -z $task ]]; then
+        mapfile -t COMPREPLY < <(compgen -W "$tasks" -- "$word")
+    else
+        compopt -o filenames 2>/dev/null
+        mapfile -t COMPREPLY < <(
+            compgen -f -X '!*.pres' -- "$word"
+            compgen -d -- "$word"
+        )
+    fi
+}
+
+complete -F _idspan idspan

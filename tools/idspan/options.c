@@ -1,0 +1,389 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The command line: TASK FILE and long options, in any order.
+ *
+ * `--name value` and `--name=value` are the same; `--` ends the options. Every option is in
+ * option_list with its help, every task says which of them are its own, so a misplaced or
+ * mistyped word can be answered with what was probably meant.
+ */
+#include <stdlib.h>
+#include <string.h>
+#include <unistd.h>
+
+#include "tool.h"
+
+#define DEFAULT_MEMORY ((uint64_t)4 << 30)
+
+const option option_list[OPTION_END] = {
+    [OPTION_DEGREE] = {"degree", "N", "the degree N, from 1 to 64"},
+    [OPTION_DEGREES] = {"degrees", "A..B", "all degrees from A to B"},
+    [OPTION_FROM] = {"from", "I", "begin with index I; indices count from 0"},
+    [OPTION_COUNT] = {"count", "K", "list at most K of them"},
+    [OPTION_EXACT] = {"exact", NULL, "prove the ranks over the rational numbers"},
+    [OPTION_PRIMES] = {"primes", "K", "compute modulo K random primes (default 1)"},
+    [OPTION_SEED] = {"seed", "S",
+                     "draw the primes from seed S (default 0); the same seed\n"
+                     "gives the same primes on every machine"},
+    [OPTION_FORMAT] = {"format", "F", "text (for people, the default), csv, json or latex"},
+    [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
+    [OPTION_MEMORY] = {"memory", "SIZE",
+                       "use at most SIZE, such as 500M or 8G (default 4G);\n"
+                       "none for no limit"},
+    [OPTION_THREADS] = {"threads", "N",
+                        "use at most N threads (default: one a processor);\n"
+                        "results do not depend on it"},
+    [OPTION_HELP] = {"help", NULL, "show this help"},
+    [OPTION_VERSION] = {"version", NULL, "show the version"},
+};
+
+/* ---- values -------------------------------------------------------------------------- */
+
+/* Reads a number in decimal digits from the start of text; NULL when there is none. */
+static const char *read_digits(const char *text, uint64_t *number)
+{
+    uint64_t value = 0;
+    const char *at = text;
+
+    for (; *at >= '0' && *at <= '9'; at++) {
+        uint64_t digit = (uint64_t)(*at - '0');
+        if (value > (UINT64_MAX - digit) / 10) {
+            return NULL;
+        }
+        value = 10 * value + digit;
+    }
+    *number = value;
+    return at > text ? at : NULL;
+}
+
+static bool read_number(option_id id, const char *text, uint64_t least, uint64_t most,
+                        uint64_t *number)
+{
+    uint64_t value = 0;
+    const char *end = read_digits(text, &value);
+
+    if (end == NULL || *end != '\0' || value < least || value > most) {
+        if (most == UINT64_MAX) {
+            complain("--%s wants a whole number from %s on, not \"%s\"", option_list[id].name,
+                     digits_of(least).text, text);
+        } else {
+            complain("--%s wants a whole number from %s to %s, not \"%s\"", option_list[id].name,
+                     digits_of(least).text, digits_of(most).text, text);
+        }
+        return false;
+    }
+    *number = value;
+    return true;
+}
+
+/* A..B, or N for one degree. */
+static bool read_degrees(const char *text, settings *read)
+{
+    uint64_t first = 0;
+    uint64_t last = 0;
+    const char *end = read_digits(text, &first);
+
+    if (end != NULL && *end == '\0') {
+        last = first;
+    } else if (end != NULL && strncmp(end, "..", 2) == 0) {
+        end = read_digits(end + 2, &last);
+    } else {
+        end = NULL;
+    }
+    if (end == NULL || *end != '\0') {
+        complain("--degrees wants a range such as 1..7, not \"%s\"", text);
+        return false;
+    }
+    if (first < 1 || last > IDS_MAX_DEGREE) {
+        complain("--degrees %s: degrees go from 1 to %u", text, IDS_MAX_DEGREE);
+        return false;
+    }
+    if (first > last) {
+        complain("--degrees %s is empty; did you mean %s..%s?", text, digits_of(last).text,
+                 digits_of(first).text);
+        return false;
+    }
+    read->first_degree = (uint32_t)first;
+    read->last_degree = (uint32_t)last;
+    return true;
+}
+
+/* 500M, 8G, 8GB, 8GiB, none; all in powers of 1024. */
+static bool read_memory(const char *text, uint64_t *bytes)
+{
+    static const char units[] = "kKmMgGtT";
+    uint64_t value = 0;
+    unsigned shift = 0;
+    const char *end = read_digits(text, &value);
+    const char *unit = NULL;
+
+    if (strcmp(text, "none") == 0) {
+        *bytes = 0;
+        return true;
+    }
+    if (end != NULL && *end != '\0') {
+        unit = strchr(units, *end);
+        shift = unit != NULL ? 10 * (1 + (unsigned)(unit - units) / 2) : 0;
+        end = unit != NULL ? end + 1 : end;
+        if (unit != NULL && *end == 'i') {
+            end++;
+        }
+        if (*end == 'B') {
+            end++;
+        }
+    }
+    if (end == NULL || *end != '\0' || value == 0 || value > UINT64_MAX >> shift) {
+        complain("--memory wants a size such as 500M or 8G, or none, not \"%s\"", text);
+        return false;
+    }
+    *bytes = value << shift;
+    return true;
+}
+
+static bool read_format(const char *text, ids_format *format)
+{
+    static const char *const names[] = {"text", "csv", "json", "latex", NULL};
+    const char *near = NULL;
+
+    for (unsigned i = 0; names[i] != NULL; i++) {
+        if (strcmp(text, names[i]) == 0) {
+            *format = (ids_format)i;
+            return true;
+        }
+    }
+    near = help_nearest(text, names);
+    complain("--format can be text, csv, json or latex, not \"%s\"%s%s%s", text,
+             near != NULL ? "; did you mean " : "", near != NULL ? near : "",
+             near != NULL ? "?" : "");
+    return false;
+}
+
+static bool read_value(option_id id, const char *value, settings *read)
+{
+    uint64_t number = 0;
+
+    switch (id) {
+    case OPTION_DEGREE:
+        if (!read_number(id, value, 1, IDS_MAX_DEGREE, &number)) {
+            return false;
+        }
+        read->first_degree = (uint32_t)number;
+        read->last_degree = (uint32_t)number;
+        return true;
+    case OPTION_DEGREES:
+        return read_degrees(value, read);
+    case OPTION_FROM:
+        return read_number(id, value, 0, UINT64_MAX, &read->from);
+    case OPTION_COUNT:
+        return read_number(id, value, 0, UINT64_MAX, &read->count);
+    case OPTION_PRIMES:
+        if (!read_number(id, value, 1, 1000, &number)) {
+            return false;
+        }
+        read->primes = (uint32_t)number;
+        return true;
+    case OPTION_SEED:
+        return read_number(id, value, 0, UINT64_MAX, &read->seed);
+    case OPTION_FORMAT:
+        return read_format(value, &read->format);
+    case OPTION_OUTPUT:
+        read->output = value;
+        return true;
+    case OPTION_MEMORY:
+        return read_memory(value, &read->memory);
+    case OPTION_THREADS:
+        if (!read_number(id, value, 1, 1024, &number)) {
+            return false;
+        }
+        read->threads = (uint32_t)number;
+        return true;
+    default:
+        return true;
+    }
+}
+
+/* ---- words --------------------------------------------------------------------------- */
+
+static void complain_of_option(const char *word, size_t length)
+{
+    const char *names[OPTION_END + 1] = {0};
+    char name[64] = {0};
+    const char *near = NULL;
+
+    for (size_t i = 0; i < OPTION_END; i++) {
+        names[i] = option_list[i].name;
+    }
+    snprintf(name, sizeof name, "%.*s", (int)(length < sizeof name ? length : sizeof name - 1),
+             word);
+    near = help_nearest(name, names);
+    if (near != NULL) {
+        complain("there is no option --%s; did you mean --%s?", name, near);
+    } else {
+        complain("there is no option --%s; idspan --help lists them", name);
+    }
+}
+
+/* Reads the option at argv[*at] and its value, and moves *at past both. */
+static bool read_option(int argc, char **argv, int *at, settings *read)
+{
+    const char *word = argv[*at] + 2;
+    size_t length = strcspn(word, "=");
+    const char *value = word[length] == '=' ? word + length + 1 : NULL;
+    unsigned id = 0;
+
+    while (id < OPTION_END && (strncmp(option_list[id].name, word, length) != 0 ||
+                               option_list[id].name[length] != '\0')) {
+        id++;
+    }
+    if (id == OPTION_END) {
+        complain_of_option(word, length);
+        return false;
+    }
+    *at += 1;
+    if (option_list[id].value == NULL && value != NULL) {
+        complain("--%s takes no value", option_list[id].name);
+        return false;
+    }
+    if (option_list[id].value != NULL && value == NULL) {
+        if (*at >= argc) {
+            complain("--%s wants a value: --%s %s", option_list[id].name, option_list[id].name,
+                     option_list[id].value);
+            return false;
+        }
+        value = argv[*at];
+        *at += 1;
+    }
+    if ((read->seen & BIT(id)) != 0) {
+        complain("--%s is given twice", option_list[id].name);
+        return false;
+    }
+    read->seen |= BIT(id);
+    return read_value((option_id)id, value, read);
+}
+
+static bool read_task(const char *word, settings *read)
+{
+    const char *names[16] = {0};
+    const char *near = NULL;
+
+    read->task = task_find(word);
+    if (read->task != NULL) {
+        return true;
+    }
+    for (size_t i = 0; task_list[i] != NULL; i++) {
+        names[i] = task_list[i]->name;
+    }
+    near = help_nearest(word, names);
+    if (near != NULL) {
+        complain("there is no task \"%s\"; did you mean \"%s\"?", word, near);
+    } else {
+        complain("there is no task \"%s\"; idspan --help lists them", word);
+    }
+    return false;
+}
+
+/* The first word is the task, the second the file. */
+static bool read_word(char **words, size_t count, settings *read)
+{
+    if (count == 0) {
+        return true;
+    }
+    if (count > 1 && task_find(words[0]) == NULL && task_find(words[1]) != NULL) {
+        complain("the task comes first: idspan %s %s", words[1], words[0]);
+        return false;
+    }
+    if (!read_task(words[0], read)) {
+        return false;
+    }
+    if (count > 2) {
+        complain("one file at a time, please: \"%s\" is left over", words[2]);
+        return false;
+    }
+    read->file = count > 1 ? words[1] : NULL;
+    return true;
+}
+
+/* ---- what does not go together ------------------------------------------------------- */
+
+static bool check_own_options(const settings *read)
+{
+    for (unsigned id = 0; id < OPTION_END; id++) {
+        if ((read->seen & BIT(id) & ~(read->task->options | COMMON_OPTIONS)) == 0) {
+            continue;
+        }
+        for (size_t i = 0; task_list[i] != NULL; i++) {
+            if ((task_list[i]->options & BIT(id)) != 0) {
+                complain("--%s is an option of \"%s\", not of \"%s\"", option_list[id].name,
+                         task_list[i]->name, read->task->name);
+                return false;
+            }
+        }
+    }
+    return true;
+}
+
+static bool check(const settings *read)
+{
+    const task *chosen = read->task;
+
+    if ((read->seen & (BIT(OPTION_HELP) | BIT(OPTION_VERSION))) != 0) {
+        return true;
+    }
+    if (chosen == NULL) {
+        complain("say what to do: idspan TASK FILE; idspan --help tells more");
+        return false;
+    }
+    if (!check_own_options(read)) {
+        return false;
+    }
+    if (read->file == NULL) {
+        complain("\"%s\" wants a presentation file, or - for standard input:\n"
+                 "        idspan %s FILE%s",
+                 chosen->name, chosen->name, chosen->usage);
+        return false;
+    }
+    if (chosen->wanted != 0 && (read->seen & chosen->wanted) == 0) {
+        complain("\"%s\" wants a degree:\n        idspan %s %s%s", chosen->name, chosen->name,
+                 read->file, chosen->usage);
+        return false;
+    }
+    if ((read->seen & BIT(OPTION_DEGREE)) != 0 && (read->seen & BIT(OPTION_DEGREES)) != 0) {
+        complain("--degree and --degrees exclude each other");
+        return false;
+    }
+    return true;
+}
+
+bool settings_read(int argc, char **argv, settings *read)
+{
+    char *words[3] = {0};
+    size_t count = 0;
+    bool options = true;
+    int64_t processors = sysconf(_SC_NPROCESSORS_ONLN);
+    int at = 1;
+
+    memset(read, 0, sizeof *read);
+    read->count = UINT64_MAX;
+    read->memory = DEFAULT_MEMORY;
+    read->threads = processors > 0 && processors < 1024 ? (uint32_t)processors : 1;
+    while (at < argc) {
+        char *word = argv[at];
+        if (!options || word[0] != '-' || word[1] == '\0') {
+            if (count < 3) {
+                words[count++] = word;
+            }
+            at++;
+        } else if (strcmp(word, "--") == 0) {
+            options = false;
+            at++;
+        } else if (strcmp(word, "-h") == 0) {
+            read->seen |= BIT(OPTION_HELP);
+            at++;
+        } else if (word[1] != '-') {
+            complain("there is no option %s; options are written with two dashes, --help", word);
+            return false;
+        } else if (!read_option(argc, argv, &at, read)) {
+            return false;
+        }
+    }
+    return read_word(words, count, read) && check(read);
+}

@@ -1,0 +1,136 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Progress for people who watch, and Ctrl-C.
+ *
+ * One line on standard error, rewritten in place, only when standard error is a terminal, and
+ * only after the first second, so that short work shows nothing. The process has one terminal
+ * and one set of signal handlers, so this file is the one place of the tool with static data.
+ * The first Ctrl-C asks the library to stop; the handler is then gone, so a second one kills.
+ */
+#include <signal.h>
+#include <string.h>
+#include <time.h>
+#include <unistd.h>
+
+#include "tool.h"
+
+#define QUIET_SECONDS 1.0
+
+static struct {
+    bool on;
+    bool shown;
+    const char *task;
+    struct timespec start;
+} line;
+
+static ids_ctx *volatile watched;
+static volatile sig_atomic_t caught;
+
+/* ---- progress ------------------------------------------------------------------------ */
+
+static double seconds_since(const struct timespec *start)
+{
+    struct timespec now = {0};
+
+    clock_gettime(CLOCK_MONOTONIC, &now);
+    return (double)(now.tv_sec - start->tv_sec) + 1e-9 * (double)(now.tv_nsec - start->tv_nsec);
+}
+
+void progress_start(const char *name)
+{
+    line.on = isatty(STDERR_FILENO) == 1;
+    line.task = name;
+    clock_gettime(CLOCK_MONOTONIC, &line.start);
+}
+
+/* "about 40 s left" and the like; nothing until the share says enough. */
+static void print_time_left(double elapsed, double share)
+{
+    double left = share > 0.001 ? elapsed / share - elapsed : -1;
+
+    if (left < 0 || left > 1e7) {
+        return;
+    }
+    if (left < 90) {
+        fprintf(stderr, ", about %.0f s left", left + 0.5);
+    } else if (left < 5400) {
+        fprintf(stderr, ", about %.0f min left", left / 60);
+    } else {
+        fprintf(stderr, ", about %.1f h left", left / 3600);
+    }
+}
+
+int progress_hook(void *user, const ids_progress *progress)
+{
+    double elapsed = 0;
+
+    (void)user;
+    if (!line.on) {
+        return 0;
+    }
+    elapsed = seconds_since(&line.start);
+    if (elapsed < QUIET_SECONDS) {
+        return 0;
+    }
+    fprintf(stderr, "\r\033[K%s", line.task);
+    if (progress->degree > 0) {
+        fprintf(stderr, "  degree %u", (unsigned)progress->degree);
+    }
+    if (progress->stage != NULL && progress->stage[0] != '\0') {
+        fprintf(stderr, "  %.30s", progress->stage);
+    }
+    if (progress->share > 0 && progress->share <= 1) {
+        fprintf(stderr, "  %.0f %%", 100 * progress->share);
+        print_time_left(elapsed, progress->share);
+    }
+    fflush(stderr);
+    line.shown = true;
+    return 0;
+}
+
+void progress_clear(void)
+{
+    if (line.shown) {
+        fputs("\r\033[K", stderr);
+        fflush(stderr);
+        line.shown = false;
+    }
+}
+
+/* ---- interruption -------------------------------------------------------------------- */
+
+static void on_signal(int number)
+{
+    caught = number;
+    ids_ctx_cancel(watched);
+}
+
+/* A signal that is ignored already, as in a job of a script in the background, stays ignored. */
+static void catch_signal(int number)
+{
+    struct sigaction action;
+    struct sigaction old;
+
+    memset(&action, 0, sizeof action);
+    memset(&old, 0, sizeof old);
+    action.sa_handler = on_signal;
+    action.sa_flags = (int)(SA_RESETHAND | SA_RESTART);
+    sigemptyset(&action.sa_mask);
+    if (sigaction(number, NULL, &old) == 0 && old.sa_handler != SIG_IGN) {
+        sigaction(number, &action, NULL);
+    }
+}
+
+void interrupt_watch(ids_ctx *ctx)
+{
+    watched = ctx;
+    if (ctx != NULL) {
+        catch_signal(SIGINT);
+        catch_signal(SIGTERM);
+    }
+}
+
+bool interrupted(void)
+{
+    return caught != 0;
+}

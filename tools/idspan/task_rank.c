@@ -1,0 +1,209 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * idspan rank: the rank table, one row a degree.
+ *
+ * When the work stops early (a limit, Ctrl-C) the degrees that were finished are written all the
+ * same, with a note that says why there are no more.
+ */
+#include <string.h>
+
+#include "tool.h"
+
+enum { DEGREE, FREE, CONSEQUENCES, QUOTIENT, CERTAINTY, COLUMNS };
+
+static ids_status write_row(const ids_rank_table *table, size_t index, ids_writer *writer)
+{
+    ids_status st = IDS_OK;
+    ids_rank_row row = {0};
+    digits numbers[CERTAINTY] = {{{0}}};
+    char certainty[24] = "exact";
+    const char *cells[COLUMNS] = {0};
+
+    TRY(ids_rank_table_row(table, index, &row));
+    if (row.certainty == IDS_CERTAINTY_MODULAR) {
+        snprintf(certainty, sizeof certainty, "2^-%u", (unsigned)row.bits);
+    }
+    numbers[DEGREE] = digits_of(row.degree);
+    numbers[FREE] = digits_of(row.free);
+    numbers[CONSEQUENCES] = digits_of(row.consequences);
+    numbers[QUOTIENT] = digits_of(row.quotient);
+    for (size_t i = 0; i < CERTAINTY; i++) {
+        cells[i] = numbers[i].text;
+    }
+    cells[CERTAINTY] = certainty;
+    TRY(ids_writer_row(writer, cells));
+done:
+    return st;
+}
+
+/* The primes, with blanks between; a long list is cut, since the seed tells the rest. */
+static void list_primes(const ids_rank_table *table, char *text, size_t size)
+{
+    size_t used = 0;
+
+    text[0] = '\0';
+    for (size_t i = 0; i < ids_rank_table_prime_count(table); i++) {
+        digits prime = digits_of(ids_rank_table_prime(table, i));
+        if (used + strlen(prime.text) + 6 > size) {
+            snprintf(text + used, size - used, " ...");
+            return;
+        }
+        used += (size_t)snprintf(text + used, size - used, "%s%s", i > 0 ? " " : "", prime.text);
+    }
+}
+
+static ids_status write_notes(session *s, const ids_rank_table *table, ids_status stopped,
+                              ids_writer *writer)
+{
+    ids_status st = IDS_OK;
+    char primes[4096] = "";
+
+    if (ids_rank_table_prime_count(table) > 0) {
+        list_primes(table, primes, sizeof primes);
+        TRY(ids_writer_note(writer, "primes", primes));
+        TRY(ids_writer_note(writer, "seed", digits_of(s->set->seed).text));
+    }
+    if (stopped != IDS_OK) {
+        TRY(ids_writer_note(writer, "stopped", s->failure));
+    }
+done:
+    return st;
+}
+
+/* How sure the numbers are, for the end of the verdict. */
+static ids_status write_certainty(session *s, const ids_rank_table *table)
+{
+    size_t count = ids_rank_table_count(table);
+    uint32_t bits = UINT32_MAX;
+    bool proved = true;
+
+    for (size_t i = 0; i < count; i++) {
+        ids_rank_row row = {0};
+        ids_status st = ids_rank_table_row(table, i, &row);
+        if (st != IDS_OK) {
+            return st;
+        }
+        if (row.certainty == IDS_CERTAINTY_MODULAR) {
+            proved = false;
+            bits = row.bits < bits ? row.bits : bits;
+        }
+    }
+    if (proved) {
+        return output_printf(&s->out, " (proved).\n");
+    }
+    return output_printf(&s->out, " (%stoo large with probability at most 2^-%u).\n",
+                         count == 1 ? "" : "each ", (unsigned)bits);
+}
+
+static ids_status write_verdict(session *s, const ids_rank_table *table)
+{
+    size_t count = ids_rank_table_count(table);
+    ids_rank_row first = {0};
+    ids_rank_row row = {0};
+    ids_status st = IDS_OK;
+
+    TRY(ids_rank_table_row(table, 0, &first));
+    TRY(ids_rank_table_row(table, count - 1, &row));
+    if (count == 1) {
+        TRY(output_printf(&s->out, "\nDegree %u: a quotient of dimension %s", (unsigned)row.degree,
+                          digits_of(row.quotient).text));
+    } else {
+        TRY(output_printf(&s->out, "\nDegrees %u to %u: quotients of dimension ",
+                          (unsigned)first.degree, (unsigned)row.degree));
+        for (size_t i = 0; i < count; i++) {
+            TRY(ids_rank_table_row(table, i, &row));
+            TRY(output_printf(&s->out, "%s%s", i > 0 ? ", " : "", digits_of(row.quotient).text));
+        }
+    }
+    TRY(write_certainty(s, table));
+done:
+    return st;
+}
+
+static ids_status write_table(session *s, const ids_rank_table *table, ids_status stopped)
+{
+    static const ids_column columns[COLUMNS] = {
+        [DEGREE] = {"degree", IDS_COLUMN_NUMBER, 0},
+        [FREE] = {"free", IDS_COLUMN_NUMBER, 0},
+        [CONSEQUENCES] = {"consequences", IDS_COLUMN_NUMBER, 0},
+        [QUOTIENT] = {"quotient", IDS_COLUMN_NUMBER, 0},
+        [CERTAINTY] = {"certainty", IDS_COLUMN_MATH, 0},
+    };
+    bool text = s->set->format == IDS_FORMAT_TEXT;
+    size_t count = ids_rank_table_count(table);
+    ids_writer *writer = NULL;
+    ids_status st = IDS_OK;
+
+    if (text && count == 0) {
+        return IDS_OK;
+    }
+    TRY(ids_writer_create(s->ctx, s->set->format, "rank", columns, COLUMNS, output_sink, &s->out,
+                          &writer));
+    for (size_t i = 0; i < count; i++) {
+        TRY(write_row(table, i, writer));
+    }
+    TRY(write_notes(s, table, stopped, writer));
+    TRY(ids_writer_end(writer));
+    if (text) {
+        TRY(write_verdict(s, table));
+    }
+done:
+    ids_writer_free(writer);
+    return st;
+}
+
+/* Keeps the reason why the table ends early, with the degree at which it does. */
+static void keep_reason(session *s, const ids_rank_table *table, ids_status st)
+{
+    size_t next = s->set->first_degree + ids_rank_table_count(table);
+
+    if (st == IDS_ERR_CANCELLED) {
+        session_fail(s, st, "interrupted before degree %zu was finished", next);
+    } else if (st == IDS_ERR_LIMIT || st == IDS_ERR_NOMEM) {
+        session_fail(s, st, "degree %zu was not finished: %s", next, ids_ctx_message(s->ctx));
+    }
+}
+
+static ids_status run(session *s)
+{
+    const settings *set = s->set;
+    ids_rank_options options = {.struct_size = sizeof options,
+                                .exact = (set->seen & BIT(OPTION_EXACT)) != 0,
+                                .primes = set->primes,
+                                .seed = set->seed};
+    ids_rank_table *table = NULL;
+    ids_status written = IDS_OK;
+    ids_status st = ids_rank_table_create(s->ctx, s->pres, set->first_degree, set->last_degree,
+                                          &options, &table);
+
+    keep_reason(s, table, st);
+    if (table != NULL) {
+        written = write_table(s, table, st);
+    }
+    ids_rank_table_free(table);
+    return written != IDS_OK ? written : st;
+}
+
+const task task_rank = {
+    .name = "rank",
+    .usage = " --degree N | --degrees A..B [--exact] [--primes K] [--seed S]",
+    .summary = "count how many monomials the identities leave independent",
+    .details =
+        "For each degree, dimensions of spaces of multilinear polynomials: `free` without the\n"
+        "identities, `consequences` of what follows from the identities, and `quotient`, the\n"
+        "difference. A degree without monomials has a row of zeros.\n"
+        "\n"
+        "Without --exact the ranks are computed modulo a random prime. `consequences` is then a\n"
+        "lower bound for the true number, and the column `certainty` bounds the probability\n"
+        "that it is too small: 2^-k. With --exact the numbers are proved and it says `exact`.\n"
+        "When a limit is hit, or after Ctrl-C, the degrees that were finished are shown.\n"
+        "\n"
+        "Columns: degree,free,consequences,quotient,certainty",
+    .examples = "  idspan rank pair.pres --degrees 1..6\n"
+                "  idspan rank pair.pres --degree 5 --exact\n"
+                "  idspan rank pair.pres --degrees 1..7 --primes 2 --seed 17 --format json",
+    .options = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) |
+               BIT(OPTION_SEED),
+    .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
+    .run = run,
+};

@@ -1,0 +1,194 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * What the files of the tool share. The tool is a user of the library like any other: it
+ * includes the public headers only.
+ */
+#ifndef TOOL_H
+#define TOOL_H
+
+#include <stdbool.h>
+#include <stdint.h>
+#include <stdio.h>
+
+#include <idspan/idspan.h>
+
+#if defined(__GNUC__) || defined(__clang__)
+#define PRINTF_LIKE(text, first) __attribute__((format(printf, text, first)))
+#else
+#define PRINTF_LIKE(text, first)
+#endif
+
+/* Exit status; 1 is kept for the answer "does not follow". */
+enum { EXIT_DONE = 0, EXIT_INPUT = 2, EXIT_LIMIT = 3, EXIT_INTERRUPTED = 4 };
+
+/* ---- options ------------------------------------------------------------------------- */
+
+typedef enum option_id {
+    OPTION_DEGREE,
+    OPTION_DEGREES,
+    OPTION_FROM,
+    OPTION_COUNT,
+    OPTION_EXACT,
+    OPTION_PRIMES,
+    OPTION_SEED,
+    OPTION_FORMAT,
+    OPTION_OUTPUT,
+    OPTION_MEMORY,
+    OPTION_THREADS,
+    OPTION_HELP,
+    OPTION_VERSION,
+    OPTION_END
+} option_id;
+
+#define BIT(id) (1u << (unsigned)(id))
+#define COMMON_OPTIONS                                                                    \
+    (BIT(OPTION_FORMAT) | BIT(OPTION_OUTPUT) | BIT(OPTION_MEMORY) | BIT(OPTION_THREADS) | \
+     BIT(OPTION_HELP) | BIT(OPTION_VERSION))
+
+/* One option: `value` names its argument, NULL when it has none. `help` may have several lines. */
+typedef struct option {
+    const char *name;
+    const char *value;
+    const char *help;
+} option;
+
+extern const option option_list[OPTION_END];
+
+struct task;
+
+/* The command line, read and checked. Strings are borrowed from argv. */
+typedef struct settings {
+    const struct task *task; /* NULL for `idspan --help` and `idspan --version` */
+    const char *file;        /* "-": standard input */
+    unsigned seen;           /* BIT() of the options that were given */
+    uint32_t first_degree;
+    uint32_t last_degree;
+    uint64_t from;
+    uint64_t count;
+    uint32_t primes;
+    uint64_t seed;
+    ids_format format;
+    const char *output; /* NULL: standard output */
+    uint64_t memory;    /* bytes, 0: no limit */
+    uint32_t threads;
+} settings;
+
+/* Reads the command line; false after a message on standard error. */
+bool settings_read(int argc, char **argv, settings *read);
+
+/* ---- the run of a task --------------------------------------------------------------- */
+
+/* Where the results go. */
+typedef struct output {
+    FILE *file;
+    const char *name;
+    int error; /* errno of the first write that failed, else 0 */
+} output;
+
+/* What a task works with; made and closed by main.c. */
+typedef struct session {
+    const settings *set;
+    ids_ctx *ctx;
+    ids_presentation *pres;
+    output out;
+    char failure[2048]; /* explanation of a failure, "" to use the library's */
+} session;
+
+/* One task of the tool. It writes its results and returns IDS_OK, or what stopped it. */
+typedef struct task {
+    const char *name;
+    const char *usage;   /* what follows `idspan NAME FILE`, with a blank before it, or "" */
+    const char *summary; /* one line */
+    const char *details; /* for --help */
+    const char *examples;
+    unsigned options; /* BIT() of its own options, without the common ones */
+    unsigned wanted;  /* of these, at least one must be given; 0: none need be */
+    ids_status (*run)(session *s);
+} task;
+
+extern const task task_show;
+extern const task task_types;
+extern const task task_basis;
+extern const task task_rank;
+
+/* All tasks, NULL at the end. */
+extern const task *const task_list[];
+const task *task_find(const char *name);
+
+/* Sends a function to its `done:` label when a call fails. */
+#define TRY(call)           \
+    do {                    \
+        st = (call);        \
+        if (st != IDS_OK) { \
+            goto done;      \
+        }                   \
+    } while (0)
+
+/* Explains a failure in the tool's own words, in place of the library's; returns status. */
+ids_status session_fail(session *s, ids_status status, const char *format, ...) PRINTF_LIKE(3, 4);
+/* IDS_ERR_CANCELLED after Ctrl-C, for loops that the library does not see. */
+ids_status session_poll(void);
+
+/* ---- help ---------------------------------------------------------------------------- */
+
+void help_general(FILE *to);
+void help_task(FILE *to, const task *about);
+/* The entry of `names` (NULL at the end) that a mistyped word most likely meant, or NULL. */
+const char *help_nearest(const char *word, const char *const *names);
+
+/* ---- messages and results ------------------------------------------------------------ */
+
+/* "idspan: ..." on standard error. */
+void complain(const char *format, ...) PRINTF_LIKE(1, 2);
+
+/* Reads a whole file, "-" for standard input; the caller frees *text. False after a message. */
+bool input_read(const char *name, char **text, size_t *length);
+
+/* Opens the output unless it is the file `source`. False after a message. */
+bool output_open(output *out, const char *name, const char *source);
+/* An ids_sink_fn for an output. */
+int output_sink(void *out, const char *bytes, size_t length);
+ids_status output_printf(output *out, const char *format, ...) PRINTF_LIKE(2, 3);
+/* False after a message when any write has failed. */
+bool output_close(output *out);
+
+/* ---- progress and interruption ------------------------------------------------------- */
+
+/* Shows progress from now on if standard error is a terminal. */
+void progress_start(const char *name);
+/* An ids_progress_fn. */
+int progress_hook(void *user, const ids_progress *progress);
+/* Takes the progress line away; called before anything else is written. */
+void progress_clear(void);
+/* Ctrl-C and SIGTERM cancel what runs with ctx from now on; NULL: they are only noted. */
+void interrupt_watch(ids_ctx *ctx);
+bool interrupted(void);
+
+/* ---- numbers of any size that the tool needs ----------------------------------------- */
+
+#define DECIMAL_LIMBS 12u
+#define DECIMAL_CHARS (9u * DECIMAL_LIMBS + 1u)
+
+/* Not negative, below 10^108; limbs to base 10^9, the lowest first. 64! has 90 digits. */
+typedef struct decimal {
+    uint32_t limb[DECIMAL_LIMBS];
+} decimal;
+
+void decimal_set(decimal *number, uint64_t value);
+void decimal_add(decimal *number, const decimal *more);
+void decimal_multiply(decimal *number, uint32_t factor);
+/* n! / divisor for n <= 64; the divisor must divide n!. */
+void decimal_factorial_over(decimal *number, uint32_t n, uint64_t divisor);
+bool decimal_is_one(const decimal *number);
+void decimal_print(const decimal *number, char text[DECIMAL_CHARS]);
+
+/* Digits of a 64-bit number, for cells. */
+typedef struct digits {
+    char text[24];
+} digits;
+
+digits digits_of(uint64_t number);
+/* Number of decimal digits. */
+uint32_t digits_count(uint64_t number);
+
+#endif
