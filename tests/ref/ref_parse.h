@@ -13,8 +13,7 @@
 typedef struct ref_parser {
     const char *path;
     int line;
-    const char *text; /* the statement */
-    const char *at;   /* where reading stands in it */
+    const char *at; /* where reading stands in the statement */
     ref_pres *pres;
     char names[REF_DEGREE][REF_NAME]; /* variables, in the order of the letters 'a', 'b', ... */
     int name_count;

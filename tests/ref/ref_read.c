@@ -181,7 +181,7 @@ static void read_identity(ref_parser *parser)
 
 static void read_statement(ref_pres *pres, const char *path, int line, const char *text)
 {
-    ref_parser parser = {.path = path, .line = line, .text = text, .at = text, .pres = pres};
+    ref_parser parser = {.path = path, .line = line, .at = text, .pres = pres};
     char word[REF_NAME] = "";
     ref_word(&parser, word);
     if (strcmp(word, "operation") == 0)
