@@ -102,7 +102,12 @@ static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
     }
     row->certainty = proved ? IDS_CERTAINTY_EXACT : IDS_CERTAINTY_MODULAR;
     if (!proved) {
-        row->bits = idsi_prime_error_bits((double)row->free * bits, (uint32_t)j->tower_count);
+        double error = 0;
+        for (size_t k = 0; k < j->tower_count; k++) {
+            error = fmax(error, j->towers[k].level[degree].error);
+        }
+        row->bits =
+            idsi_prime_error_bits((double)row->free * bits, error, (uint32_t)j->tower_count);
     }
 }
 

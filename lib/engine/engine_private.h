@@ -40,6 +40,7 @@ typedef struct idsi_level {
     uint32_t *normal;   /* column of each normal form; NULL without tables and for degree 1 */
     size_t *start;      /* columns + 1 */
     idsi_entry *entries;
+    double error; /* probability that random rows missed some consequence in this degree or below */
 } idsi_level;
 
 /* ---- laws (lib/engine/laws.c) ------------------------------------------------------------------- */
@@ -86,6 +87,7 @@ typedef struct idsi_tower {
     const idsi_laws *laws;
     const ids_signature *sig;
     uint32_t prime;
+    idsi_random random; /* for what elimination chooses at random */
     uint32_t height;
     idsi_level level[IDS_MAX_DEGREE + 1]; /* level[1 .. height] */
 } idsi_tower;
@@ -108,12 +110,9 @@ const idsi_block *idsi_level_block(const idsi_level *level, uint32_t op, const u
 /* ---- rows (lib/engine/rows.c) ------------------------------------------------------------------- */
 
 /*
- * Receives one consequence f(m1, .., md) of degree n, as entries (column, value) of the quotient
- * step of degree n, in any order, columns may repeat.
+ * Makes every row of degree `level->degree` from the tower's lower degrees: a consequence
+ * f(m1, .., md), as entries (column, value) of the quotient step.
  */
-typedef ids_status (*idsi_row_fn)(void *user, const idsi_entry *row, size_t count);
-
-/* Makes every row of degree `level->degree` from the tower's lower degrees. */
 ids_status idsi_rows_each(const idsi_tower *tower, const idsi_level *level, idsi_row_fn row,
                           void *user);
 /* Number of rows that idsi_rows_each() makes. */

@@ -441,7 +441,7 @@ static ids_status check_table(const idsi_proof *proof, const idsi_tower *model,
         }
         known[count] = idsi_prime_draw(random, known, count);
         IDSI_TRY(rows_vanish(proof, model, known[count], &usable, vanish));
-        missing -= usable ? 30 : 0;
+        missing -= usable ? 29 : 0;
         count++;
     }
 done:

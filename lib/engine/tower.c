@@ -26,6 +26,7 @@ void idsi_tower_init(idsi_tower *tower, ids_ctx *ctx, const idsi_laws *laws, uin
     tower->laws = laws;
     tower->sig = laws->pres->sig;
     tower->prime = prime;
+    idsi_random_seed(&tower->random, prime);
 }
 
 void idsi_level_clear(ids_ctx *ctx, idsi_level *level)
@@ -191,21 +192,6 @@ const idsi_block *idsi_level_block(const idsi_level *level, uint32_t op, const u
     return NULL;
 }
 
-/* The rows' way into the echelon form. */
-typedef struct elimination {
-    idsi_echelon *echelon;
-    uint64_t columns;
-} elimination;
-
-static ids_status eliminate_row(void *user, const idsi_entry *row, size_t count)
-{
-    elimination *e = user;
-    if (idsi_echelon_rank(e->echelon) == e->columns) {
-        return IDS_OK;
-    }
-    return idsi_echelon_add(e->echelon, row, count, NULL);
-}
-
 /* Copies the complete echelon form into the level's tables. */
 static ids_status make_tables(ids_ctx *ctx, const idsi_echelon *echelon, idsi_level *level)
 {
@@ -240,33 +226,72 @@ done:
     return st;
 }
 
-static ids_status solve_level(const idsi_tower *tower, idsi_level *level, bool tables)
+/* What the elimination calls to have the rows made. */
+typedef struct row_source {
+    const idsi_tower *tower;
+    const idsi_level *level;
+} row_source;
+
+static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
+{
+    const row_source *source = user;
+    return idsi_rows_each(source->tower, source->level, row, row_user);
+}
+
+/*
+ * The first block as passive columns, when rows have long tails there: the reductions of the
+ * degree below stand in it.
+ */
+static uint32_t passive_columns(const idsi_tower *tower, const idsi_level *level)
+{
+    const idsi_level *below = &tower->level[level->degree - 1];
+    if (level->block_count < 2 || below->start == NULL ||
+        below->start[below->columns] < 4 * below->columns) {
+        return 0;
+    }
+    return (uint32_t)level->blocks[1].offset;
+}
+
+static ids_status check_budget(const idsi_tower *tower, const idsi_level *level)
+{
+    ids_memory memory = ids_ctx_memory(tower->ctx);
+    uint64_t need = idsi_echelon_base_bytes(level->columns);
+    uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
+
+    if (memory.budget == 0 || need <= left) {
+        return IDS_OK;
+    }
+    return idsi_fail(tower->ctx, IDS_ERR_LIMIT,
+                     "degree %u has %llu monomials, %llu columns in the quotient by the "
+                     "consequences of lower degrees; they need %llu bytes at least, %llu of the "
+                     "budget of %llu bytes are left",
+                     level->degree, (unsigned long long)level->free,
+                     (unsigned long long)level->columns, (unsigned long long)need,
+                     (unsigned long long)left, (unsigned long long)memory.budget);
+}
+
+static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
 {
     ids_status st = IDS_OK;
-    ids_ctx *ctx = tower->ctx;
-    elimination e = {.columns = level->columns};
-    ids_memory memory = ids_ctx_memory(ctx);
-    uint64_t need = idsi_echelon_base_bytes(level->columns);
+    row_source source = {tower, level};
+    idsi_result result = {0};
+    idsi_matrix matrix = {.ctx = tower->ctx,
+                          .prime = tower->prime,
+                          .columns = (uint32_t)level->columns,
+                          .passive = passive_columns(tower, level),
+                          .tables = tables,
+                          .source = make_rows,
+                          .source_user = &source};
 
-    if (memory.budget > 0 && need > memory.budget - memory.live) {
-        return idsi_fail(ctx, IDS_ERR_LIMIT,
-                         "degree %u has %llu monomials, %llu columns in the quotient by the "
-                         "consequences of lower degrees; they need %llu bytes at least, %llu of "
-                         "the budget of %llu bytes are left",
-                         level->degree, (unsigned long long)level->free,
-                         (unsigned long long)level->columns, (unsigned long long)need,
-                         (unsigned long long)(memory.budget - memory.live),
-                         (unsigned long long)memory.budget);
-    }
-    IDSI_TRY(idsi_echelon_create(ctx, tower->prime, (uint32_t)level->columns, &e.echelon));
-    IDSI_TRY(idsi_rows_each(tower, level, eliminate_row, &e));
-    level->dimension = level->columns - idsi_echelon_rank(e.echelon);
+    IDSI_TRY(check_budget(tower, level));
+    IDSI_TRY(idsi_eliminate(&matrix, &tower->random, &result));
+    level->dimension = level->columns - result.rank;
+    level->error = tower->level[level->degree - 1].error + result.error;
     if (tables) {
-        IDSI_TRY(idsi_echelon_complete(e.echelon));
-        IDSI_TRY(make_tables(ctx, e.echelon, level));
+        IDSI_TRY(make_tables(tower->ctx, result.echelon, level));
     }
 done:
-    idsi_echelon_free(e.echelon);
+    idsi_echelon_free(result.echelon);
     return st;
 }
 

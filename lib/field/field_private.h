@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * Prime fields with primes below 2^31, sparse echelon forms, and the border to FLINT.
+ * Prime fields with primes below 2^30, sparse echelon forms, and the border to FLINT.
  */
 #ifndef IDSI_FIELD_PRIVATE_H
 #define IDSI_FIELD_PRIVATE_H
@@ -9,12 +9,15 @@
 
 #include "../core/core_private.h"
 
-/* Primes are drawn from (2^30, 2^31): PRIME_COUNT of them, pi(2^31) - pi(2^30). */
-#define IDSI_PRIME_LOW (UINT32_C(1) << 30)
-#define IDSI_PRIME_HIGH (UINT32_C(1) << 31)
-#define IDSI_PRIME_COUNT 50697537u
+/*
+ * Primes are drawn from (2^29, 2^30): IDSI_PRIME_COUNT of them, pi(2^30) - pi(2^29). Below 2^30 a
+ * sum of 16 products of centred residues fits 62 bits, which the dense kernels live on.
+ */
+#define IDSI_PRIME_LOW (UINT32_C(1) << 29)
+#define IDSI_PRIME_HIGH (UINT32_C(1) << 30)
+#define IDSI_PRIME_COUNT 26207278u
 
-/* ---- arithmetic mod a prime p < 2^31 -------------------------------------------------------- */
+/* ---- arithmetic mod a prime p < 2^30 -------------------------------------------------------- */
 
 static inline uint32_t idsi_mod_mul(uint32_t a, uint32_t b, uint32_t p)
 {
@@ -34,15 +37,16 @@ bool idsi_mod_rational(mpq_srcptr number, uint32_t p, uint32_t *residue);
 
 /* ---- primes --------------------------------------------------------------------------------------- */
 
-/* A prime drawn uniformly from (2^30, 2^31), none of those in known[0..count-1]. */
+/* A prime drawn uniformly from (2^29, 2^30), none of those in known[0..count-1]. */
 uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t count);
 bool idsi_is_prime(uint32_t n);
 /*
- * The k of an error probability 2^-k: of the primes in (2^30, 2^31), at most minor_bits / 30
+ * The k of an error probability 2^-k: of the primes in (2^29, 2^30), at most minor_bits / 29
  * divide one nonzero integer of minor_bits bits, so a random one does with probability at most
- * that over IDSI_PRIME_COUNT; `primes` independent draws multiply. 0 when the bound is void.
+ * that over IDSI_PRIME_COUNT; random_error is added for what random rows can miss with each prime;
+ * `primes` independent draws multiply. 0 when the bound is void.
  */
-uint32_t idsi_prime_error_bits(double minor_bits, uint32_t primes);
+uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes);
 
 /* ---- sparse echelon form (lib/field/sparse.c) -------------------------------------------------------- */
 
@@ -64,17 +68,65 @@ ids_status idsi_echelon_create(ids_ctx *ctx, uint32_t prime, uint32_t columns,
 void idsi_echelon_free(idsi_echelon *echelon);
 /* Bytes that idsi_echelon_create() takes for so many columns. */
 uint64_t idsi_echelon_base_bytes(uint64_t columns);
-/* Columns in any order, may repeat; values < prime. *independent may be NULL. */
-ids_status idsi_echelon_add(idsi_echelon *echelon, const idsi_entry *row, size_t count,
-                            bool *independent);
+/* Adds factor * row to the row at work. Columns in any order, may repeat; values < prime. */
+void idsi_echelon_load(idsi_echelon *echelon, const idsi_entry *row, size_t count,
+                       uint32_t factor);
+typedef enum idsi_verdict {
+    IDSI_DEPENDENT,   /* the row adds nothing */
+    IDSI_INDEPENDENT, /* it has become a rule */
+    IDSI_DEFERRED     /* it would take more work than allowed: dropped, nothing changed */
+} idsi_verdict;
+/* Turns the row at work into a rule, applying at most `work` entries of rules. */
+ids_status idsi_echelon_settle(idsi_echelon *echelon, uint64_t work, idsi_verdict *verdict);
+/*
+ * Rewrites the row at work completely and hands it out: entries at columns that are no pivots,
+ * largest first. Borrowed until the next call.
+ */
+ids_status idsi_echelon_rewrite(idsi_echelon *echelon, const idsi_entry **entries, size_t *count);
+/* Stores a row that is already free of pivots, largest column first, as a rule. */
+ids_status idsi_echelon_store(idsi_echelon *echelon, const idsi_entry *entries, size_t count);
 uint32_t idsi_echelon_rank(const idsi_echelon *echelon);
 /* Rewrites all rules so that only columns that are no pivots stand on their right sides. */
 ids_status idsi_echelon_complete(idsi_echelon *echelon);
+bool idsi_echelon_is_pivot(const idsi_echelon *echelon, uint32_t column);
 /* The rule of a pivot column; false when the column is none. Borrowed until the next add. */
 bool idsi_echelon_rule(const idsi_echelon *echelon, uint32_t column, const idsi_entry **entries,
                        uint32_t *count);
 /* Entries in all rules. */
 uint64_t idsi_echelon_fill(const idsi_echelon *echelon);
+
+/* ---- elimination (lib/field/eliminate.c) ----------------------------------------------------------------- */
+
+/* Receives one row: entries in any order, columns may repeat. */
+typedef ids_status (*idsi_row_fn)(void *user, const idsi_entry *row, size_t count);
+/* Makes all rows, the same ones in the same order at every call. */
+typedef ids_status (*idsi_source_fn)(void *user, idsi_row_fn row, void *row_user);
+
+typedef struct idsi_matrix {
+    ids_ctx *ctx;
+    uint32_t prime;
+    uint32_t columns;
+    /* Columns 0 .. passive-1 are expected to hold (nearly) no pivots; with ranks alone they may be
+     * folded into a few random combinations. 0: do not. */
+    uint32_t passive;
+    bool tables; /* the complete echelon form is wanted, not only the rank */
+    idsi_source_fn source;
+    void *source_user;
+} idsi_matrix;
+
+typedef struct idsi_result {
+    idsi_echelon *echelon; /* with tables: complete, owned; else NULL */
+    uint64_t rank;
+    double error;  /* probability that the rank is too small, whatever the matrix; 0: none */
+    uint64_t rows; /* that the source made */
+    uint64_t deferred; /* rows that were left to the dense finish */
+    uint64_t fill;     /* entries in sparse rules */
+    uint64_t dense_rank;
+    uint64_t dense_columns;
+} idsi_result;
+
+/* Rank, and with tables the echelon form, of a matrix whose rows are streamed. */
+ids_status idsi_eliminate(const idsi_matrix *matrix, idsi_random *random, idsi_result *result);
 
 /* ---- border: FLINT (lib/field/flint_border.c) ----------------------------------------------------------- */
 

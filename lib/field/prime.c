@@ -1,13 +1,13 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * Arithmetic mod primes below 2^31, random primes, and what a random prime can miss.
+ * Arithmetic mod primes below 2^30, random primes, and what a random prime can miss.
  *
  * Error bound. Let A be an integer matrix of rank r over Q. Some r x r minor M is not zero, and
  * the rank of A mod p is less than r only if p divides M. By Hadamard |M| <= product of the
- * Euclidean norms of its rows, say 2^b, so at most b/30 primes above 2^30 divide it. A prime drawn
- * uniformly from the IDSI_PRIME_COUNT primes of (2^30, 2^31) is one of these with probability at
- * most (b/30) / IDSI_PRIME_COUNT, and independent draws multiply. (Count of primes: pi(2^31) =
- * 105097565, pi(2^30) = 54400028, OEIS A007053.)
+ * Euclidean norms of its rows, say 2^b, so at most b/29 primes above 2^29 divide it. A prime drawn
+ * uniformly from the IDSI_PRIME_COUNT primes of (2^29, 2^30) is one of these with probability at
+ * most (b/29) / IDSI_PRIME_COUNT, and independent draws multiply. (Count of primes: pi(2^30) =
+ * 54400028, pi(2^29) = 28192750, OEIS A007053.)
  */
 #include <math.h>
 
@@ -81,9 +81,10 @@ uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t coun
     }
 }
 
-uint32_t idsi_prime_error_bits(double minor_bits, uint32_t primes)
+uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes)
 {
-    double bad = fmax(1.0, ceil(minor_bits / 30.0));
-    double bits = floor(log2((double)(IDSI_PRIME_COUNT - primes) / bad) * primes);
+    double bad = fmax(1.0, ceil(minor_bits / 29.0));
+    double error = bad / (double)(IDSI_PRIME_COUNT - primes) + random_error;
+    double bits = floor(-log2(error) * primes);
     return bits > 0 ? (uint32_t)bits : 0;
 }

@@ -161,18 +161,32 @@ static void apply_rule(idsi_echelon *e, const rule *r, uint32_t factor)
     }
 }
 
+/* Clears the row at work. */
+static void drop_row(idsi_echelon *e)
+{
+    size_t top = words(words(words(e->columns)));
+    uint32_t column = 0;
+
+    while (largest(e, &top, &column)) {
+        e->sum[column] = 0;
+        unmark(e, column);
+    }
+}
+
 /*
- * Rewrites the accumulator from the top. When `all`, every pivot column is rewritten, else only
+ * Rewrites the row at work from the top. When `all`, every pivot column is rewritten, else only
  * until the top column is no pivot. What remains is gathered, largest column first, and cleared.
+ * When more than `work` entries of rules would be applied, *over is set and the row is dropped.
  */
-static ids_status gather(idsi_echelon *e, bool all, size_t *count)
+static ids_status gather(idsi_echelon *e, bool all, uint64_t work, size_t *count, bool *over)
 {
     ids_status st = IDS_OK;
-    size_t top = words(words(words(e->columns))) - (e->columns > 0);
+    size_t top = words(words(words(e->columns)));
     uint32_t column = 0;
     bool stopped = false;
 
     *count = 0;
+    *over = false;
     while (largest(e, &top, &column)) {
         uint32_t value = (uint32_t)(e->sum[column] % e->prime);
         e->sum[column] = 0;
@@ -182,7 +196,13 @@ static ids_status gather(idsi_echelon *e, bool all, size_t *count)
         }
         uint32_t number = e->rule_of[column];
         if (number != 0 && (all || !stopped)) {
-            apply_rule(e, &e->rules[number - 1], value);
+            const rule *r = &e->rules[number - 1];
+            if (r->count > work) {
+                *over = true;
+                break;
+            }
+            work -= r->count;
+            apply_rule(e, r, value);
             continue;
         }
         stopped = true;
@@ -192,11 +212,8 @@ static ids_status gather(idsi_echelon *e, bool all, size_t *count)
         (*count)++;
     }
 done:
-    if (st != IDS_OK) {
-        while (largest(e, &top, &column)) {
-            e->sum[column] = 0;
-            unmark(e, column);
-        }
+    if (st != IDS_OK || *over) {
+        drop_row(e);
     }
     return st;
 }
@@ -225,12 +242,11 @@ done:
     return st;
 }
 
-/* Stores gathered[0..count-1] as a rule for its first column. */
-static ids_status store_rule(idsi_echelon *e, size_t count)
+ids_status idsi_echelon_store(idsi_echelon *echelon, const idsi_entry *row, size_t count)
 {
     ids_status st = IDS_OK;
+    idsi_echelon *e = echelon;
     idsi_entry *entries = NULL;
-    const idsi_entry *row = e->gathered;
 
     IDSI_TRY(idsi_grow(e->ctx, e->rule_count, &e->rule_capacity, sizeof *e->rules, &e->rules));
     IDSI_TRY(chunk_take(e, count - 1, &entries));
@@ -247,24 +263,43 @@ done:
     return st;
 }
 
-ids_status idsi_echelon_add(idsi_echelon *echelon, const idsi_entry *row, size_t count,
-                            bool *independent)
+void idsi_echelon_load(idsi_echelon *echelon, const idsi_entry *row, size_t count,
+                       uint32_t factor)
+{
+    for (size_t i = 0; i < count; i++) {
+        accumulate(echelon, row[i].column, (uint64_t)row[i].value * factor);
+    }
+}
+
+ids_status idsi_echelon_settle(idsi_echelon *echelon, uint64_t work, idsi_verdict *verdict)
 {
     ids_status st = IDS_OK;
     size_t left = 0;
+    bool over = false;
 
-    for (size_t i = 0; i < count; i++) {
-        accumulate(echelon, row[i].column, row[i].value);
+    IDSI_TRY(gather(echelon, false, work, &left, &over));
+    if (left > 0 && !over) {
+        IDSI_TRY(idsi_echelon_store(echelon, echelon->gathered, left));
     }
-    IDSI_TRY(gather(echelon, false, &left));
-    if (left > 0) {
-        IDSI_TRY(store_rule(echelon, left));
-    }
-    if (independent != NULL) {
-        *independent = left > 0;
-    }
+    *verdict = over ? IDSI_DEFERRED : left > 0 ? IDSI_INDEPENDENT : IDSI_DEPENDENT;
 done:
     return st;
+}
+
+ids_status idsi_echelon_rewrite(idsi_echelon *echelon, const idsi_entry **entries, size_t *count)
+{
+    ids_status st = IDS_OK;
+    bool over = false;
+
+    IDSI_TRY(gather(echelon, true, UINT64_MAX, count, &over));
+    *entries = echelon->gathered;
+done:
+    return st;
+}
+
+bool idsi_echelon_is_pivot(const idsi_echelon *echelon, uint32_t column)
+{
+    return echelon->rule_of[column] != 0;
 }
 
 uint32_t idsi_echelon_rank(const idsi_echelon *echelon)
@@ -285,6 +320,7 @@ ids_status idsi_echelon_complete(idsi_echelon *echelon)
     /* Upwards: the rules that a rule is rewritten with are complete by then. */
     for (uint32_t column = 0; column < e->columns; column++) {
         size_t count = 0;
+        bool over = false;
         if (e->rule_of[column] == 0) {
             continue;
         }
@@ -299,7 +335,7 @@ ids_status idsi_echelon_complete(idsi_echelon *echelon)
         for (uint32_t i = 0; i < r->count; i++) {
             accumulate(e, r->entries[i].column, r->entries[i].value);
         }
-        IDSI_TRY(gather(e, true, &count));
+        IDSI_TRY(gather(e, true, UINT64_MAX, &count, &over));
         if (count > r->count) {
             IDSI_TRY(chunk_take(e, count, &r->entries));
         }
