@@ -245,6 +245,10 @@ ids_status idsi_latex_formula(idsi_text *line, const char *text)
     ids_status st = IDS_OK;
     reader in = {.at = text, .line = line};
 
+    /* A sum that goes on from another cell: an empty operand gives the sign its usual space. */
+    if ((text[0] == '+' || text[0] == '-') && text[1] == ' ') {
+        IDSI_TRY(idsi_text_puts(line, "{}"));
+    }
     while (*in.at != '\0') {
         if (*in.at == ' ') {
             in.blank = true;

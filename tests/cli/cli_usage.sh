@@ -6,7 +6,7 @@ here=$(dirname "$(readlink -f "$0")")
 # shellcheck source=tests/cli/common.sh
 . "$here/common.sh"
 
-tasks="show types basis rank"
+tasks="show types basis count rank"
 
 # ---- help and version ------------------------------------------------------------------
 
@@ -22,7 +22,8 @@ has out "Examples:"
 for task in $tasks; do
     has out "  $task "
 done
-for option in degree degrees from count exact primes seed format output memory threads help version; do
+for option in degree degrees from count split exact primes seed \
+    format output memory threads help version; do
     has out "--$option"
 done
 run 0 -h
@@ -34,6 +35,7 @@ common="format output memory threads help version"
     own_show=""
     own_types="degree degrees"
     own_basis="degree from count"
+    own_count="degree degrees split"
     own_rank="degree degrees exact primes seed"
 }
 for task in $tasks; do

@@ -60,6 +60,7 @@ static const pair formulas[] = {
     {"o*a", "o\\cdot a"},
     {"2*(x,x,y)*z - 1/3*(y,x,x)*z", "2\\,(x,x,y)\\cdot z - \\frac{1}{3}\\,(y,x,x)\\cdot z"},
     {"-3 a*b + 2 c*d", "-3 a\\cdot b + 2 c\\cdot d"},
+    {"- a*b + c*d", "{}- a\\cdot b + c\\cdot d"},
     {"2^-61", "2^{-61}"},
     {"exact", "\\mathrm{exact}"},
     {"a.b", "a\\mathbin{.}b"},

@@ -6,7 +6,7 @@ _idspan()
 {
     local word=${COMP_WORDS[COMP_CWORD]}
     local previous=${COMP_WORDS[COMP_CWORD - 1]}
-    local tasks="show types basis rank"
+    local tasks="show types basis count rank draw"
     local common="--format --output --memory --threads --help --version"
     local task="" own="" i
 
@@ -19,7 +19,7 @@ _idspan()
     COMPREPLY=()
     case $previous in
     --format)
-        mapfile -t COMPREPLY < <(compgen -W "text csv json latex" -- "$word")
+        mapfile -t COMPREPLY < <(compgen -W "text csv json latex ascii svg tikz" -- "$word")
         return
         ;;
     --output)
@@ -30,14 +30,14 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "1G 2G 4G 8G 16G none" -- "$word")
         return
         ;;
-    --degree | --degrees | --from | --count | --primes | --seed | --threads)
+    --degree | --degrees | --from | --count | --index | --primes | --seed | --threads)
         return
         ;;
     esac
 
     for ((i = 1; i < COMP_CWORD; i++)); do
         case ${COMP_WORDS[i]} in
-        show | types | basis | rank)
+        show | types | basis | count | rank | draw)
             task=${COMP_WORDS[i]}
             break
             ;;
@@ -46,6 +46,8 @@ _idspan()
     case $task in
     types) own="--degree --degrees" ;;
     basis) own="--degree --from --count" ;;
+    count) own="--degree --degrees --split" ;;
+    draw) own="--degree --monomials --index --from --count" ;;
     rank) own="--degree --degrees --exact --primes --seed" ;;
     esac
 

@@ -15,16 +15,20 @@
 #define DEFAULT_MEMORY ((uint64_t)4 << 30)
 
 const option option_list[OPTION_END] = {
-    [OPTION_DEGREE] = {"degree", "N", "the degree N, from 1 to 64"},
+    [OPTION_DEGREE] = {"degree", "N", "the degree N, from 1 to 64; count goes to 1000000"},
     [OPTION_DEGREES] = {"degrees", "A..B", "all degrees from A to B"},
     [OPTION_FROM] = {"from", "I", "begin with index I; indices count from 0"},
     [OPTION_COUNT] = {"count", "K", "list at most K of them"},
+    [OPTION_INDEX] = {"index", "I", "only the one of index I; indices count from 0"},
+    [OPTION_MONOMIALS] = {"monomials", NULL, "the multilinear monomials, with their labels"},
+    [OPTION_SPLIT] = {"split", NULL, "split the numbers by the uses of each operation"},
     [OPTION_EXACT] = {"exact", NULL, "prove the ranks over the rational numbers"},
     [OPTION_PRIMES] = {"primes", "K", "compute modulo K random primes (default 1)"},
     [OPTION_SEED] = {"seed", "S",
                      "draw the primes from seed S (default 0); the same seed\n"
                      "gives the same primes on every machine"},
-    [OPTION_FORMAT] = {"format", "F", "text (for people, the default), csv, json or latex"},
+    [OPTION_FORMAT] = {"format", "F", "text (for people, the default), csv, json or latex;\n"
+                       "of draw: text, ascii, svg or tikz"},
     [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
     [OPTION_MEMORY] = {"memory", "SIZE",
                        "use at most SIZE, such as 500M or 8G (default 4G);\n"
@@ -76,7 +80,7 @@ static bool read_number(option_id id, const char *text, uint64_t least, uint64_t
 }
 
 /* A..B, or N for one degree. */
-static bool read_degrees(const char *text, settings *read)
+static bool read_degrees(const char *text, uint32_t most, settings *read)
 {
     uint64_t first = 0;
     uint64_t last = 0;
@@ -93,8 +97,8 @@ static bool read_degrees(const char *text, settings *read)
         complain("--degrees wants a range such as 1..7, not \"%s\"", text);
         return false;
     }
-    if (first < 1 || last > IDS_MAX_DEGREE) {
-        complain("--degrees %s: degrees go from 1 to %u", text, IDS_MAX_DEGREE);
+    if (first < 1 || last > most) {
+        complain("--degrees %s: degrees go from 1 to %u", text, (unsigned)most);
         return false;
     }
     if (first > last) {
@@ -139,42 +143,21 @@ static bool read_memory(const char *text, uint64_t *bytes)
     return true;
 }
 
-static bool read_format(const char *text, ids_format *format)
-{
-    static const char *const names[] = {"text", "csv", "json", "latex", NULL};
-    const char *near = NULL;
-
-    for (unsigned i = 0; names[i] != NULL; i++) {
-        if (strcmp(text, names[i]) == 0) {
-            *format = (ids_format)i;
-            return true;
-        }
-    }
-    near = help_nearest(text, names);
-    complain("--format can be text, csv, json or latex, not \"%s\"%s%s%s", text,
-             near != NULL ? "; did you mean " : "", near != NULL ? near : "",
-             near != NULL ? "?" : "");
-    return false;
-}
-
 static bool read_value(option_id id, const char *value, settings *read)
 {
     uint64_t number = 0;
 
     switch (id) {
     case OPTION_DEGREE:
-        if (!read_number(id, value, 1, IDS_MAX_DEGREE, &number)) {
-            return false;
-        }
-        read->first_degree = (uint32_t)number;
-        read->last_degree = (uint32_t)number;
-        return true;
     case OPTION_DEGREES:
-        return read_degrees(value, read);
+        read->degrees = value; /* the limit is the task's, which is not yet known */
+        return true;
     case OPTION_FROM:
         return read_number(id, value, 0, UINT64_MAX, &read->from);
     case OPTION_COUNT:
         return read_number(id, value, 0, UINT64_MAX, &read->count);
+    case OPTION_INDEX:
+        return read_number(id, value, 0, UINT64_MAX, &read->index);
     case OPTION_PRIMES:
         if (!read_number(id, value, 1, 1000, &number)) {
             return false;
@@ -184,7 +167,8 @@ static bool read_value(option_id id, const char *value, settings *read)
     case OPTION_SEED:
         return read_number(id, value, 0, UINT64_MAX, &read->seed);
     case OPTION_FORMAT:
-        return read_format(value, &read->format);
+        read->format_name = value; /* which there are depends on the task */
+        return true;
     case OPTION_OUTPUT:
         read->output = value;
         return true;
@@ -321,7 +305,55 @@ static bool check_own_options(const settings *read)
     return true;
 }
 
-static bool check(const settings *read)
+/* Reads --degree or --degrees. */
+static bool check_degrees(settings *read)
+{
+    uint32_t most = read->task->most_degree > 0 ? read->task->most_degree : IDS_MAX_DEGREE;
+    uint64_t number = 0;
+
+    if ((read->seen & BIT(OPTION_DEGREES)) != 0) {
+        return read_degrees(read->degrees, most, read);
+    }
+    if ((read->seen & BIT(OPTION_DEGREE)) != 0) {
+        if (!read_number(OPTION_DEGREE, read->degrees, 1, most, &number)) {
+            return false;
+        }
+        read->first_degree = (uint32_t)number;
+        read->last_degree = (uint32_t)number;
+    }
+    return true;
+}
+
+/* Reads --format, one of the task's own. */
+static bool check_format(settings *read)
+{
+    static const char *const tables[] = {"text", "csv", "json", "latex", NULL};
+    const char *const *names = read->task->formats != NULL ? read->task->formats : tables;
+    char list[80] = "";
+    size_t used = 0;
+    const char *near = NULL;
+
+    if (read->format_name == NULL) {
+        return true;
+    }
+    for (unsigned i = 0; names[i] != NULL; i++) {
+        if (strcmp(read->format_name, names[i]) == 0) {
+            read->format = (ids_format)i;
+            return true;
+        }
+    }
+    for (unsigned i = 0; names[i] != NULL && used < sizeof list; i++) {
+        const char *before = i == 0 ? "" : names[i + 1] != NULL ? ", " : " or ";
+        used += (size_t)snprintf(list + used, sizeof list - used, "%s%s", before, names[i]);
+    }
+    near = help_nearest(read->format_name, names);
+    complain("--format can be %s, not \"%s\"%s%s%s", list, read->format_name,
+             near != NULL ? "; did you mean " : "", near != NULL ? near : "",
+             near != NULL ? "?" : "");
+    return false;
+}
+
+static bool check(settings *read)
 {
     const task *chosen = read->task;
 
@@ -350,7 +382,7 @@ static bool check(const settings *read)
         complain("--degree and --degrees exclude each other");
         return false;
     }
-    return true;
+    return check_degrees(read) && check_format(read);
 }
 
 bool settings_read(int argc, char **argv, settings *read)

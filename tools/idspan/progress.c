@@ -21,6 +21,8 @@ static struct {
     bool shown;
     const char *task;
     struct timespec start;
+    uint32_t degree; /* of the stage that is shown, which began at stage_start */
+    struct timespec stage_start;
 } line;
 
 static ids_ctx *volatile watched;
@@ -43,11 +45,12 @@ void progress_start(const char *name)
     clock_gettime(CLOCK_MONOTONIC, &line.start);
 }
 
-/* "about 40 s left" and the like; nothing until the share says enough. */
-static void print_time_left(double elapsed, double share)
+/* "  35 %, about 40 s left" and the like; the time only once the share says enough. */
+static void print_share(double elapsed, double share, const char *of)
 {
     double left = share > 0.001 ? elapsed / share - elapsed : -1;
 
+    fprintf(stderr, "  %.0f %%%s", 100 * share, of);
     if (left < 0 || left > 1e7) {
         return;
     }
@@ -60,6 +63,17 @@ static void print_time_left(double elapsed, double share)
     }
 }
 
+/* The share of the whole work where it is known, else that of the degree. */
+static void print_how_far(const ids_progress *progress, double elapsed)
+{
+    if (progress->share > 0 && progress->share <= 1) {
+        print_share(elapsed, progress->share, "");
+    } else if (progress->total > 0 && progress->done <= progress->total) {
+        print_share(seconds_since(&line.stage_start),
+                    (double)progress->done / (double)progress->total, " of this degree");
+    }
+}
+
 int progress_hook(void *user, const ids_progress *progress)
 {
     double elapsed = 0;
@@ -67,6 +81,10 @@ int progress_hook(void *user, const ids_progress *progress)
     (void)user;
     if (!line.on) {
         return 0;
+    }
+    if (progress->degree != line.degree) {
+        line.degree = progress->degree;
+        clock_gettime(CLOCK_MONOTONIC, &line.stage_start);
     }
     elapsed = seconds_since(&line.start);
     if (elapsed < QUIET_SECONDS) {
@@ -76,13 +94,7 @@ int progress_hook(void *user, const ids_progress *progress)
     if (progress->degree > 0) {
         fprintf(stderr, "  degree %u", (unsigned)progress->degree);
     }
-    if (progress->stage != NULL && progress->stage[0] != '\0') {
-        fprintf(stderr, "  %.30s", progress->stage);
-    }
-    if (progress->share > 0 && progress->share <= 1) {
-        fprintf(stderr, "  %.0f %%", 100 * progress->share);
-        print_time_left(elapsed, progress->share);
-    }
+    print_how_far(progress, elapsed);
     fflush(stderr);
     line.shown = true;
     return 0;

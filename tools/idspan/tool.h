@@ -28,6 +28,9 @@ typedef enum option_id {
     OPTION_DEGREES,
     OPTION_FROM,
     OPTION_COUNT,
+    OPTION_INDEX,
+    OPTION_MONOMIALS,
+    OPTION_SPLIT,
     OPTION_EXACT,
     OPTION_PRIMES,
     OPTION_SEED,
@@ -61,13 +64,16 @@ typedef struct settings {
     const struct task *task; /* NULL for `idspan --help` and `idspan --version` */
     const char *file;        /* "-": standard input */
     unsigned seen;           /* BIT() of the options that were given */
+    const char *degrees;     /* value of --degree or --degrees, as written */
     uint32_t first_degree;
     uint32_t last_degree;
     uint64_t from;
     uint64_t count;
+    uint64_t index;
     uint32_t primes;
     uint64_t seed;
-    ids_format format;
+    const char *format_name; /* value of --format, as written */
+    ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
     uint64_t memory;    /* bytes, 0: no limit */
     uint32_t threads;
@@ -101,15 +107,19 @@ typedef struct task {
     const char *summary; /* one line */
     const char *details; /* for --help */
     const char *examples;
-    unsigned options; /* BIT() of its own options, without the common ones */
-    unsigned wanted;  /* of these, at least one must be given; 0: none need be */
+    unsigned options;     /* BIT() of its own options, without the common ones */
+    unsigned wanted;      /* of these, at least one must be given; 0: none need be */
+    uint32_t most_degree; /* 0: IDS_MAX_DEGREE */
+    const char *const *formats; /* NULL at the end; NULL: those of tables */
     ids_status (*run)(session *s);
 } task;
 
 extern const task task_show;
 extern const task task_types;
 extern const task task_basis;
+extern const task task_count;
 extern const task task_rank;
+extern const task task_draw;
 
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
