@@ -36,7 +36,6 @@ common="format output memory threads help version"
     own_types="degree degrees"
     own_basis="degree from count"
     own_count="degree degrees split"
-    own_count="degree degrees split"
     own_rank="degree degrees exact primes seed"
 }
 for task in $tasks; do
