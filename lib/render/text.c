@@ -15,7 +15,7 @@
 #include "render_private.h"
 
 #define HELD_ROWS 400u
-#define HELD_BYTES (256u * 1024u)
+#define HELD_BYTES 262144u
 #define GAP "  "
 
 static ids_status append_blanks(idsi_text *line, size_t n, char blank)

@@ -157,7 +157,7 @@ bool input_read(const char *name, char **text, size_t *length);
 /* Opens the output unless it is the file `source`. False after a message. */
 bool output_open(output *out, const char *name, const char *source);
 /* An ids_sink_fn for an output. */
-int output_sink(void *out, const char *bytes, size_t length);
+int output_sink(void *user, const char *bytes, size_t length);
 ids_status output_printf(output *out, const char *format, ...) PRINTF_LIKE(2, 3);
 /* False after a message when any write has failed. */
 bool output_close(output *out);
