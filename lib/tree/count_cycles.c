@@ -157,9 +157,11 @@ static void start_equation(const ids_signature *sig, const uint64_t *mark, uint6
     for (size_t i = 0; i < sig->count; i++) {
         if (!left_out(mark, i)) {
             uint64_t order = sig->ops[i].group.order;
+            uint64_t common = gcd(eq->divisor, order);
 
+            IDSI_ASSERT(common > 0);
             gap = gcd(gap, sig->ops[i].arity - 1);
-            eq->divisor = eq->divisor / gcd(eq->divisor, order) * order;
+            eq->divisor = eq->divisor / common * order;
         }
     }
     eq->gap = gap == 0 ? 1 : (uint32_t)gap;
@@ -199,6 +201,7 @@ static uint64_t find_scale(const ids_signature *sig, uint32_t gap)
             uint32_t h = (sig->ops[i].arity - 1) / gap;
             uint32_t times = 0;
 
+            IDSI_ASSERT(h > 0);
             for (uint64_t order = sig->ops[i].group.order; order % primes[p] == 0;
                  order /= primes[p]) {
                 times++;

@@ -230,7 +230,9 @@ static void widen(mp_limb_t *limbs, uint64_t count, size_t width, size_t new_wid
 /* Width for the exponents up to `last`. */
 static size_t slot_width(const idsi_count_equation *eq, uint64_t last)
 {
-    return idsi_count_width(eq, (double)(last / eq->place) * eq->gap + 1);
+    uint64_t m = last / eq->place;
+
+    return idsi_count_width(eq, (double)(m * eq->gap + 1));
 }
 
 uint64_t idsi_count_bytes(const idsi_count_equation *eq, uint64_t last)
