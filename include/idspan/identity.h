@@ -3,7 +3,9 @@
  * @file identity.h
  * Presentations: a signature with polynomial identities, read from and written to text.
  *
- * The text format is in idspan(5) and in README.md, "The presentation file".
+ * The text format is in idspan(5) and in README.md, "The presentation file". Limits: degree 16,
+ * 16 variables a statement, 64 operations, 4,000,000 terms a polynomial, numbers of 10,000
+ * digits, names of 63 bytes, fences nested 250 deep.
  */
 #ifndef IDSPAN_IDENTITY_H
 #define IDSPAN_IDENTITY_H
@@ -26,6 +28,10 @@ typedef enum ids_role {
 /**
  * Reads a presentation.
  *
+ * Every identity and candidate must have each variable equally often in each term. Its variables
+ * are numbered in the order of their names (x2 before x10), and it is linearised completely. An
+ * identity that cancels to 0 is kept, with no terms and the degree that was written.
+ *
  * @param ctx           borrowed now, kept.
  * @param text          borrowed; UTF-8; need not end in NUL.
  * @param length        bytes of text.
@@ -35,8 +41,11 @@ typedef enum ids_role {
  *         with a caret and says what was expected; ids_ctx_last_place() gives the place);
  *         IDS_ERR_DOMAIN (a sign character that forces an operation to be zero; with place);
  *         IDS_ERR_LIMIT (degree, number of terms or byte budget; with place where there is one);
- *         IDS_ERR_ARG; IDS_ERR_NOMEM
- * Cost: linear in the text and in the terms of the expanded definitions. Since: 0.1
+ *         IDS_ERR_UNABLE (a `model` statement; with place); IDS_ERR_CANCELLED; IDS_ERR_ARG;
+ *         IDS_ERR_NOMEM
+ * Cost: linear in the text and, up to a logarithm for sorting, in the terms of expanded products
+ * and of linearisations. Cancel: polled. Border: coefficients are GMP numbers of bounded size,
+ * outside of the byte budget; when the system refuses GMP memory, the process ends. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_presentation_read(ids_ctx *ctx, const char *text, size_t length,
                                                       const char *source,
@@ -72,8 +81,10 @@ IDS_API IDS_MUST_USE ids_status ids_presentation_info(const ids_presentation *pr
 
 /** Which form of an identity ids_presentation_print_identity() writes. */
 typedef enum ids_form {
-    IDS_FORM_WRITTEN = 0, /**< as written, definitions expanded, monomials canonical */
-    IDS_FORM_LINEAR = 1   /**< complete linearisation, integer coefficients with content 1 */
+    IDS_FORM_WRITTEN = 0, /**< as written, in its own letters, definitions expanded, monomials
+                               canonical */
+    IDS_FORM_LINEAR = 1   /**< complete linearisation in the letters a, b, c, ... that name no
+                               operation; integer coefficients with content 1, the first positive */
 } ids_form;
 
 /**
@@ -82,15 +93,15 @@ typedef enum ids_form {
  * @param text  out, owned: ids_string_free().
  * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
  */
-IDS_API IDS_MUST_USE ids_status ids_presentation_print_identity(ids_ctx *ctx,
-                                                                const ids_presentation *presentation,
-                                                                ids_role role, size_t index,
-                                                                ids_form form, char **text);
+IDS_API IDS_MUST_USE ids_status ids_presentation_print_identity(
+    ids_ctx *ctx, const ids_presentation *presentation, ids_role role, size_t index, ids_form form,
+    char **text);
 
 /**
  * Writes a whole presentation as text that reads back to the same presentation.
  *
- * Definitions are expanded; comments are not kept.
+ * Definitions are expanded; comments are not kept. An identity that is zero is written as 0 times
+ * a monomial of its degree.
  * @param text  out, owned: ids_string_free().
  * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
  */
@@ -99,9 +110,10 @@ IDS_API IDS_MUST_USE ids_status ids_presentation_print(ids_ctx *ctx,
                                                        char **text);
 
 /**
- * Whether two presentations have the same operations, identities and candidates (names included).
+ * Whether two presentations have the same operations, identities and candidates, in the same
+ * order. The names of identities count, those of variables only in so far as they order them.
  *
- * Since: 0.1
+ * Cost: linear, for generated groups times their order. Threads: any. Since: 0.1
  */
 IDS_API bool ids_presentation_equal(const ids_presentation *a, const ids_presentation *b);
 

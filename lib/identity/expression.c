@@ -14,26 +14,17 @@
 #include "notation_private.h"
 
 typedef struct arguments {
-    idsi_value *value; /* IDSI_MAX_VARIABLES of them, initialised */
-    uint32_t count;
+    idsi_value *value; /* room for IDSI_MAX_VARIABLES */
+    uint32_t begun;    /* initialised */
+    uint32_t count;    /* read */
 } arguments;
 
 static void arguments_clear(idsi_reader *reader, arguments *args)
 {
-    for (uint32_t i = 0; args->value != NULL && i < IDSI_MAX_VARIABLES; i++) {
+    for (uint32_t i = 0; i < args->begun; i++) {
         idsi_value_clear(&args->value[i]);
     }
     idsi_free(reader->ctx, args->value);
-}
-
-static ids_status arguments_init(idsi_reader *reader, arguments *args)
-{
-    ids_status st =
-        idsi_alloc_array(reader->ctx, IDSI_MAX_VARIABLES, sizeof *args->value, &args->value);
-    for (uint32_t i = 0; st == IDS_OK && i < IDSI_MAX_VARIABLES; i++) {
-        idsi_value_init(&args->value[i], reader->ctx, reader->presentation->sig);
-    }
-    return st;
 }
 
 /* Reads the sums between the fence at the cursor and its closing one. */
@@ -41,7 +32,9 @@ static ids_status read_arguments(idsi_reader *reader, arguments *args)
 {
     const size_t open = reader->at;
     ids_status st = IDS_OK;
-    IDSI_TRY(arguments_init(reader, args));
+    void *room = NULL;
+    IDSI_TRY(idsi_alloc(reader->ctx, IDSI_MAX_VARIABLES * sizeof *args->value, &room));
+    args->value = room;
     do {
         reader->at++;
         if (args->count == IDSI_MAX_VARIABLES) {
@@ -49,6 +42,7 @@ static ids_status read_arguments(idsi_reader *reader, arguments *args)
                                   "wrong number of arguments: more than %u", IDSI_MAX_VARIABLES);
             goto done;
         }
+        idsi_value_init(&args->value[args->begun++], reader->ctx, reader->presentation->sig);
         IDSI_TRY(idsi_reader_sum(reader, &args->value[args->count]));
         args->count++;
     } while (reader->lexemes[reader->at].kind == IDSI_LEX_COMMA);
@@ -78,7 +72,7 @@ static ids_status check_declared(idsi_reader *reader, size_t op, size_t use)
                             shown.text, reader->lexemes[declared].line);
 }
 
-/* ---- fences -------------------------------------------------------------------------------- */
+/* ---- fences ---------------------------------------------------------------------------------- */
 
 static ids_status fail_fence(idsi_reader *reader, size_t open, uint32_t count)
 {
@@ -131,7 +125,7 @@ done:
     return st;
 }
 
-/* ---- names --------------------------------------------------------------------------------- */
+/* ---- names ----------------------------------------------------------------------------------- */
 
 /* NAME ( where NAME is neither an operation nor, so far, a definition. */
 static ids_status fail_unknown_name(idsi_reader *reader, size_t name)
@@ -259,7 +253,7 @@ static ids_status read_primary(idsi_reader *reader, idsi_value *value)
                             found.text);
 }
 
-/* ---- products and sums ---------------------------------------------------------------------- */
+/* ---- products and sums ----------------------------------------------------------------------- */
 
 static ids_status read_factor(idsi_reader *reader, idsi_value *value)
 {

@@ -109,7 +109,7 @@ ids_status idsi_identity_finish(idsi_reader *reader, idsi_identity *identity, id
     identity->written.variables = variables;
     if (is_trivial) {
         relabel(value->nominal, value->nominal_length, order, variables);
-        memcpy(identity->trivial, value->nominal, sizeof value->nominal);
+        memcpy(identity->trivial, value->nominal, value->nominal_length * sizeof *value->nominal);
         identity->degree = value->nominal_degree;
     } else {
         relabel(identity->written.tokens, identity->written.start[identity->written.count], order,

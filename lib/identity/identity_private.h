@@ -53,11 +53,12 @@ bool idsi_poly_equal(const idsi_poly *a, const idsi_poly *b);
 ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi_text *text);
 
 /*
- * Complete linearisation, into an initialised polynomial without terms: a variable of multiplicity m becomes m variables, summed over all m!
- * ways to place them; primitive. Variables keep their order: x x y z z -> x1 x2 y z1 z2.
- * The polynomial must be normalised and have every variable equally often in each term
- * (else IDS_ERR_ARG). Cost: O(degree^2) for each term of the result before equal ones are
- * collected; for a generated group, times its order.
+ * Complete linearisation, into an initialised polynomial without terms: a variable of
+ * multiplicity m becomes m variables, summed over all m! ways to place them; primitive. Variables
+ * keep their order: x x y z z -> x1 x2 y z1 z2. The polynomial must be normalised and have every
+ * variable equally often in each term (else IDS_ERR_ARG).
+ * Cost: O(degree^2) for each term of the result before equal ones are collected; for a generated
+ * group, its order for each node of a written term.
  */
 ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear);
 

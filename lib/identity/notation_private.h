@@ -18,7 +18,7 @@
 /* Most tokens of a tree of an identity: 2 * degree - 1. */
 #define IDSI_IDENTITY_TOKENS (2u * IDSI_MAX_IDENTITY_DEGREE - 1u)
 
-/* ---- characters (chars.c) -------------------------------------------------------------- */
+/* ---- characters (chars.c) -------------------------------------------------------------------- */
 
 typedef enum idsi_char_class {
     IDSI_CHAR_BLANK,    /* space, tab */
@@ -35,7 +35,7 @@ typedef enum idsi_char_class {
 size_t idsi_utf8_decode(const char *text, size_t length, uint32_t *code);
 idsi_char_class idsi_char_classify(uint32_t code);
 
-/* ---- lexemes (lexer.c) -------------------------------------------------------------------- */
+/* ---- lexemes (lexer.c) ----------------------------------------------------------------------- */
 
 typedef enum idsi_lexeme_kind {
     IDSI_LEX_END, /* end of a statement (while lexing: of a line) */
@@ -90,7 +90,7 @@ ids_status idsi_value_product(idsi_value *value, uint32_t op, const idsi_value *
 ids_status idsi_value_substitute(idsi_value *value, const idsi_value *body,
                                  const idsi_value *arguments);
 
-/* ---- the reader --------------------------------------------------------------------------------- */
+/* ---- the reader ------------------------------------------------------------------------------ */
 
 /* An operation as it was declared. */
 typedef struct idsi_declared {
@@ -171,7 +171,7 @@ size_t idsi_reader_operation(const idsi_reader *reader, ids_notation notation, s
                              uint32_t arity);
 /* Index of the definition with this name, SIZE_MAX when there is none. */
 size_t idsi_reader_definition(const idsi_reader *reader, size_t lexeme);
-/* Fails unless a NAME may be a variable or an argument: not reserved, no operation, no definition. */
+/* Fails unless a NAME may be a variable or an argument: no reserved word, operation, definition. */
 ids_status idsi_reader_check_variable(idsi_reader *reader, size_t lexeme);
 /* Fails unless the statement is at its end; then steps over it. */
 ids_status idsi_reader_end(idsi_reader *reader, const char *expected);

@@ -99,7 +99,7 @@ done:
     return st;
 }
 
-/* ---- access ------------------------------------------------------------------------------------ */
+/* ---- access ---------------------------------------------------------------------------------- */
 
 const ids_signature *ids_presentation_signature(const ids_presentation *presentation)
 {
@@ -146,7 +146,7 @@ ids_status ids_presentation_info(const ids_presentation *presentation, ids_role 
     return IDS_OK;
 }
 
-/* ---- equality ------------------------------------------------------------------------------------ */
+/* ---- equality -------------------------------------------------------------------------------- */
 
 static bool has_element(const idsi_group *group, const ids_signed_order *order)
 {

@@ -60,7 +60,7 @@ done:
     return st;
 }
 
-/* ---- operations ---------------------------------------------------------------------------- */
+/* ---- operations ------------------------------------------------------------------------------ */
 
 static ids_status print_pattern(const ids_signature *sig, uint32_t index,
                                 const ids_signed_order *order, idsi_text *text)

@@ -21,7 +21,7 @@ static ids_status expected(idsi_reader *reader, const char *what)
                             found.text);
 }
 
-/* ---- define -------------------------------------------------------------------------------- */
+/* ---- define ---------------------------------------------------------------------------------- */
 
 static ids_status read_defined_name(idsi_reader *reader)
 {
@@ -114,7 +114,7 @@ done:
     return st;
 }
 
-/* ---- names of identities ----------------------------------------------------------------------- */
+/* ---- names of identities --------------------------------------------------------------------- */
 
 /* Lexemes of the label at the cursor, which may have hyphens inside; 0 when there is none. */
 static size_t label_length(const idsi_reader *reader)
@@ -163,7 +163,7 @@ static ids_status read_label(idsi_reader *reader, idsi_identity *identity)
     return IDS_OK;
 }
 
-/* ---- homogeneous ------------------------------------------------------------------------------------ */
+/* ---- homogeneous ----------------------------------------------------------------------------- */
 
 static void count_variables(const idsi_poly *poly, size_t term, uint32_t count[IDSI_MAX_VARIABLES])
 {
@@ -233,7 +233,7 @@ static ids_status check_homogeneous(idsi_reader *reader, const idsi_poly *poly, 
     return IDS_OK;
 }
 
-/* ---- identity and candidate ---------------------------------------------------------------------- */
+/* ---- identity and candidate ------------------------------------------------------------------ */
 
 static ids_status read_equation(idsi_reader *reader, idsi_value *value)
 {

@@ -13,8 +13,9 @@
 
 void idsi_value_init(idsi_value *value, ids_ctx *ctx, const ids_signature *sig)
 {
-    memset(value, 0, sizeof *value);
     idsi_poly_init(&value->poly, ctx, sig);
+    value->nominal_degree = 0;
+    value->nominal_length = 0;
 }
 
 void idsi_value_clear(idsi_value *value)
@@ -79,14 +80,14 @@ ids_status idsi_value_append(idsi_value *value, const idsi_value *other, int sig
     if (other->nominal_degree > value->nominal_degree) {
         value->nominal_degree = other->nominal_degree;
         value->nominal_length = other->nominal_length;
-        memcpy(value->nominal, other->nominal, sizeof value->nominal);
+        memcpy(value->nominal, other->nominal, other->nominal_length * sizeof *value->nominal);
     }
 done:
     mpq_clear(coefficient);
     return st;
 }
 
-/* ---- substitution -------------------------------------------------------------------------- */
+/* ---- substitution ---------------------------------------------------------------------------- */
 
 /* A tree that is being put together. */
 typedef struct assembly {

@@ -44,8 +44,27 @@ uint32_t idsi_tree_degree(const ids_signature *sig, const idsi_token *tree)
     return leaves;
 }
 
+/* Whether two trees differ at most in their labels: one pass, where a comparison takes many. */
+static bool same_shape(const ids_signature *sig, const idsi_token *a, const idsi_token *b)
+{
+    size_t open = 1;
+    for (size_t i = 0; open > 0; i++) {
+        open--;
+        if (idsi_is_node(a[i]) || idsi_is_node(b[i])) {
+            if (a[i] != b[i]) {
+                return false;
+            }
+            open += sig->ops[idsi_node_op(a[i])].arity;
+        }
+    }
+    return true;
+}
+
 int idsi_tree_compare_shape(const ids_signature *sig, const idsi_token *a, const idsi_token *b)
 {
+    if (same_shape(sig, a, b)) {
+        return 0;
+    }
     uint32_t degree_a = idsi_tree_degree(sig, a);
     uint32_t degree_b = idsi_tree_degree(sig, b);
     if (degree_a != degree_b) {
