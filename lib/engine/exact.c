@@ -153,21 +153,26 @@ static bool next_entry(const sources *src, uint64_t column, size_t *at, uint32_t
                        wide *residue)
 {
     bool any = false;
-    *normal = 0;
+    uint32_t largest = 0;
+
     for (size_t k = 0; k < src->count; k++) {
         if (at[k] < src->level[k]->start[column + 1]) {
             uint32_t n = src->level[k]->entries[at[k]].column;
-            *normal = !any || n > *normal ? n : *normal;
+            largest = n > largest ? n : largest;
             any = true;
         }
     }
+    if (!any) {
+        return false;
+    }
+    *normal = largest;
     wide modulus = 1;
     *residue = 0;
-    for (size_t k = 0; any && k < src->count; k++) {
+    for (size_t k = 0; k < src->count; k++) {
         uint32_t p = src->prime[k];
         uint32_t value = 0;
         if (at[k] < src->level[k]->start[column + 1] &&
-            src->level[k]->entries[at[k]].column == *normal) {
+            src->level[k]->entries[at[k]].column == largest) {
             value = src->level[k]->entries[at[k]].value;
             at[k]++;
         }
@@ -176,7 +181,7 @@ static bool next_entry(const sources *src, uint64_t column, size_t *at, uint32_t
         *residue += modulus * step;
         modulus *= p;
     }
-    return any;
+    return true;
 }
 
 /* Lifts a whole table; *ok is false when some entry has no small fraction. */

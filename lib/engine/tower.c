@@ -238,20 +238,6 @@ static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
     return idsi_rows_each(source->tower, source->level, row, row_user);
 }
 
-/*
- * The first block as passive columns, when rows have long tails there: the reductions of the
- * degree below stand in it.
- */
-static uint32_t passive_columns(const idsi_tower *tower, const idsi_level *level)
-{
-    const idsi_level *below = &tower->level[level->degree - 1];
-    if (level->block_count < 2 || below->start == NULL ||
-        below->start[below->columns] < 4 * below->columns) {
-        return 0;
-    }
-    return (uint32_t)level->blocks[1].offset;
-}
-
 static ids_status check_budget(const idsi_tower *tower, const idsi_level *level)
 {
     ids_memory memory = ids_ctx_memory(tower->ctx);
@@ -278,7 +264,6 @@ static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
     idsi_matrix matrix = {.ctx = tower->ctx,
                           .prime = tower->prime,
                           .columns = (uint32_t)level->columns,
-                          .passive = passive_columns(tower, level),
                           .tables = tables,
                           .source = make_rows,
                           .source_user = &source};

@@ -14,21 +14,12 @@
  *
  * A check passes wrongly with probability at most 1/p: if a deferred row is independent, the slot
  * that holds it is so but for one value of its random factor.
- *
- * When only the rank is wanted, the passive columns can be folded: column j becomes FOLD random
- * numbers, so A becomes A R with R random on these columns. rank(A R) <= rank(A), so a lower bound
- * stays one. Let r be the rank of what A leaves in the passive columns when the others are
- * eliminated; if fewer than FOLD pivots are found in the folded columns, r is that number but for
- * probability at most r/p < FOLD/p (a nonzero minor of degree r in the random numbers vanishes;
- * Schwartz, Zippel). If FOLD pivots are found, the folding hides something: it is undone, and the
- * work begins again.
  */
 #include <string.h>
 
 #include "dense_private.h"
 
-#define FOLD 32u
-#define FIRST_WORK 16384u
+#define FIRST_WORK 4096u
 #define BLOCK 192u
 /* Below this, random numbers mod p are too few to rely on. */
 #define LEAST_RANDOM_PRIME (UINT32_C(1) << 20)
@@ -38,11 +29,7 @@ typedef struct elimination {
     idsi_random *random;
     ids_ctx *ctx;
     uint32_t prime;
-    uint32_t columns; /* after folding */
-    uint32_t folded;  /* passive columns that are folded, 0: none */
-    uint32_t *fold;   /* folded x FOLD random numbers */
-    idsi_entry *row;  /* a folded row */
-    size_t row_capacity;
+    uint32_t columns;
     idsi_echelon *echelon;
     uint64_t work;
     uint64_t number;    /* of the row that is handled */
@@ -56,66 +43,14 @@ typedef struct elimination {
     size_t dense_columns;
     uint32_t *block; /* BLOCK x dense_columns */
     size_t block_rows;
+    idsi_lanes *lanes;
+    uint32_t lane;      /* at work */
     uint64_t together;  /* rows combined into one */
-    uint64_t combined;  /* rows in the combination at work */
+    uint64_t combined;  /* rows in the lane at work */
     bool adapt;         /* together follows the yield */
     bool was_combined;  /* some slot held several rows */
     uint64_t added;     /* in this pass over the rows */
 } elimination;
-
-/* ---- folding ------------------------------------------------------------------------------------ */
-
-static ids_status make_fold(elimination *e)
-{
-    ids_status st = IDS_OK;
-    size_t count = (size_t)e->folded * FOLD;
-
-    IDSI_TRY(idsi_alloc_array(e->ctx, count, sizeof *e->fold, &e->fold));
-    for (size_t i = 0; i < count; i++) {
-        e->fold[i] = (uint32_t)idsi_random_below(e->random, e->prime);
-    }
-done:
-    return st;
-}
-
-/* Replaces the passive columns of a row by their FOLD combinations. */
-static ids_status fold_row(elimination *e, const idsi_entry **row, size_t *count)
-{
-    ids_status st = IDS_OK;
-    uint64_t square = (uint64_t)e->prime * e->prime;
-    uint64_t sum[FOLD] = {0};
-    size_t kept = 0;
-
-    if (e->folded == 0) {
-        return IDS_OK;
-    }
-    if (e->row_capacity < *count + FOLD) {
-        IDSI_TRY(idsi_resize_array(e->ctx, *count + FOLD, sizeof *e->row, &e->row));
-        e->row_capacity = *count + FOLD;
-    }
-    for (size_t i = 0; i < *count; i++) {
-        const idsi_entry *entry = &(*row)[i];
-        if (entry->column >= e->folded) {
-            e->row[kept++] = (idsi_entry){entry->column - e->folded + FOLD, entry->value};
-            continue;
-        }
-        const uint32_t *fold = e->fold + (size_t)entry->column * FOLD;
-        for (size_t q = 0; q < FOLD; q++) {
-            uint64_t s = sum[q] + (uint64_t)entry->value * fold[q];
-            sum[q] = s >= 8 * square ? s - 8 * square : s;
-        }
-    }
-    for (uint32_t q = 0; q < FOLD; q++) {
-        uint32_t value = (uint32_t)(sum[q] % e->prime);
-        if (value != 0) {
-            e->row[kept++] = (idsi_entry){q, value};
-        }
-    }
-    *row = e->row;
-    *count = kept;
-done:
-    return st;
-}
 
 /* ---- stage 1 -------------------------------------------------------------------------------------- */
 
@@ -158,7 +93,6 @@ static ids_status sparse_row(void *user, const idsi_entry *row, size_t count)
     bool again = e->rows > 0;
 
     if (total_rank(e) < e->columns && (!again || is_deferred(e, e->number))) {
-        IDSI_TRY(fold_row(e, &row, &count));
         idsi_echelon_load(e->echelon, row, count, 1);
         IDSI_TRY(idsi_echelon_settle(e->echelon, e->work, &verdict));
         if (again && verdict != IDSI_DEFERRED) {
@@ -189,7 +123,7 @@ static uint64_t dense_bytes(const elimination *e)
     uint64_t columns = e->columns - idsi_echelon_rank(e->echelon);
     uint64_t rows = e->deferred_count < columns ? e->deferred_count : columns;
     return (rows + 2 * BLOCK) * columns * sizeof(uint32_t) +
-           (uint64_t)e->columns * 2 * sizeof(uint32_t);
+           (uint64_t)e->columns * 2 * sizeof(uint32_t) + idsi_lanes_bytes(e->columns);
 }
 
 /* Whether the dense stage has room: half of what the budget leaves, or 4 GiB without a budget. */
@@ -233,6 +167,7 @@ static ids_status start_dense(elimination *e)
         }
     }
     IDSI_TRY(idsi_alloc_array(e->ctx, BLOCK * e->dense_columns, sizeof *e->block, &e->block));
+    IDSI_TRY(idsi_lanes_create(e->ctx, e->prime, e->columns, &e->lanes));
     IDSI_TRY(idsi_dense_echelon_create(e->ctx, e->prime, e->dense_columns, &e->dense));
 done:
     return st;
@@ -261,28 +196,35 @@ done:
     return st;
 }
 
-/* The combination at work becomes a dense row. */
-static ids_status flush_row(elimination *e)
+/* The lanes become dense rows. */
+static ids_status flush_lanes(elimination *e)
 {
     ids_status st = IDS_OK;
-    const idsi_entry *entries = NULL;
-    size_t count = 0;
 
-    if (e->combined == 0) {
-        return IDS_OK;
+    if (e->lane > 0) {
+        idsi_lanes_rewrite(e->lanes, e->echelon, e->dense_column,
+                           e->block + e->block_rows * e->dense_columns, e->dense_columns);
+        e->block_rows += e->lane;
+        e->lane = 0;
+        if (e->block_rows + idsi_lanes_count() > BLOCK) {
+            IDSI_TRY(flush_block(e));
+        }
     }
-    IDSI_TRY(idsi_echelon_rewrite(e->echelon, &entries, &count));
-    e->combined = 0;
-    if (count == 0) {
-        return IDS_OK;
-    }
-    uint32_t *target = e->block + e->block_rows * e->dense_columns;
-    for (size_t i = 0; i < count; i++) {
-        target[e->dense_column[entries[i].column]] = entries[i].value;
-    }
-    e->block_rows++;
-    if (e->block_rows == BLOCK) {
-        IDSI_TRY(flush_block(e));
+done:
+    return st;
+}
+
+/* The combination at work is complete. */
+static ids_status next_lane(elimination *e)
+{
+    ids_status st = IDS_OK;
+
+    if (e->combined > 0) {
+        e->combined = 0;
+        e->lane++;
+        if (e->lane == idsi_lanes_count()) {
+            IDSI_TRY(flush_lanes(e));
+        }
     }
 done:
     return st;
@@ -299,11 +241,10 @@ static ids_status dense_row(void *user, const idsi_entry *row, size_t count)
             factor = 1 + (uint32_t)idsi_random_below(e->random, e->prime - 1);
             e->was_combined = true;
         }
-        IDSI_TRY(fold_row(e, &row, &count));
-        idsi_echelon_load(e->echelon, row, count, factor);
+        idsi_lanes_load(e->lanes, e->lane, row, count, factor);
         e->combined++;
         if (e->combined >= e->together) {
-            IDSI_TRY(flush_row(e));
+            IDSI_TRY(next_lane(e));
         }
     }
     e->number++;
@@ -318,7 +259,8 @@ static ids_status dense_pass(elimination *e)
     e->number = 0;
     e->added = 0;
     IDSI_TRY(e->matrix->source(e->matrix->source_user, dense_row, e));
-    IDSI_TRY(flush_row(e));
+    IDSI_TRY(next_lane(e));
+    IDSI_TRY(flush_lanes(e));
     IDSI_TRY(flush_block(e));
 done:
     return st;
@@ -380,46 +322,11 @@ static void clear_elimination(elimination *e)
 {
     idsi_echelon_free(e->echelon);
     idsi_dense_echelon_free(e->dense);
-    idsi_free(e->ctx, e->fold);
-    idsi_free(e->ctx, e->row);
+    idsi_lanes_free(e->lanes);
     idsi_free(e->ctx, e->deferred);
     idsi_free(e->ctx, e->dense_column);
     idsi_free(e->ctx, e->sparse_column);
     idsi_free(e->ctx, e->block);
-}
-
-/* Pivots among the folded columns. */
-static uint32_t folded_rank(const elimination *e)
-{
-    uint32_t rank = 0;
-    for (uint32_t q = 0; q < FOLD; q++) {
-        rank += idsi_echelon_is_pivot(e->echelon, q);
-    }
-    for (size_t i = 0; e->dense != NULL && i < idsi_dense_echelon_rank(e->dense); i++) {
-        rank += e->sparse_column[idsi_dense_echelon_pivot(e->dense, i)] < FOLD;
-    }
-    return rank;
-}
-
-/* One attempt; *hidden is set when the folding hid something. */
-static ids_status attempt(elimination *e, bool *hidden)
-{
-    ids_status st = IDS_OK;
-
-    *hidden = false;
-    e->columns = e->matrix->columns;
-    if (e->folded > 0) {
-        e->columns = e->columns - e->folded + FOLD;
-        IDSI_TRY(make_fold(e));
-    }
-    IDSI_TRY(idsi_echelon_create(e->ctx, e->prime, e->columns, &e->echelon));
-    IDSI_TRY(sparse_stage(e));
-    if (e->deferred_count > 0 && total_rank(e) < e->columns) {
-        IDSI_TRY(dense_stage(e));
-    }
-    *hidden = e->folded > 0 && folded_rank(e) == FOLD;
-done:
-    return st;
 }
 
 static void report(const elimination *e, idsi_result *result)
@@ -427,35 +334,27 @@ static void report(const elimination *e, idsi_result *result)
     *result = (idsi_result){.rank = total_rank(e),
                             .rows = e->rows,
                             .deferred = e->deferred_count,
-                            .fill = idsi_echelon_fill(e->echelon)};
+                            .fill = idsi_echelon_fill(e->echelon),
+                            .error = e->was_combined ? 1.0 / (double)e->prime : 0.0};
     if (e->dense != NULL) {
         result->dense_rank = idsi_dense_echelon_rank(e->dense);
         result->dense_columns = e->dense_columns;
     }
-    result->error = (e->folded > 0 ? (double)FOLD : 0.0) / (double)e->prime +
-                    (e->was_combined ? 1.0 / (double)e->prime : 0.0);
 }
 
 ids_status idsi_eliminate(const idsi_matrix *matrix, idsi_random *random, idsi_result *result)
 {
     ids_status st = IDS_OK;
-    bool hidden = false;
-    bool may_fold = !matrix->tables && matrix->prime >= LEAST_RANDOM_PRIME &&
-                    matrix->passive > 4 * FOLD;
     elimination e = {.matrix = matrix,
                      .random = random,
                      .ctx = matrix->ctx,
                      .prime = matrix->prime,
-                     .folded = may_fold ? matrix->passive : 0};
+                     .columns = matrix->columns};
 
-    IDSI_TRY(attempt(&e, &hidden));
-    if (hidden) {
-        clear_elimination(&e);
-        e = (elimination){.matrix = matrix,
-                          .random = random,
-                          .ctx = matrix->ctx,
-                          .prime = matrix->prime};
-        IDSI_TRY(attempt(&e, &hidden));
+    IDSI_TRY(idsi_echelon_create(e.ctx, e.prime, e.columns, &e.echelon));
+    IDSI_TRY(sparse_stage(&e));
+    if (e.deferred_count > 0 && total_rank(&e) < e.columns) {
+        IDSI_TRY(dense_stage(&e));
     }
     report(&e, result);
     if (matrix->tables) {

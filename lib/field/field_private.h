@@ -78,11 +78,6 @@ typedef enum idsi_verdict {
 } idsi_verdict;
 /* Turns the row at work into a rule, applying at most `work` entries of rules. */
 ids_status idsi_echelon_settle(idsi_echelon *echelon, uint64_t work, idsi_verdict *verdict);
-/*
- * Rewrites the row at work completely and hands it out: entries at columns that are no pivots,
- * largest first. Borrowed until the next call.
- */
-ids_status idsi_echelon_rewrite(idsi_echelon *echelon, const idsi_entry **entries, size_t *count);
 /* Stores a row that is already free of pivots, largest column first, as a rule. */
 ids_status idsi_echelon_store(idsi_echelon *echelon, const idsi_entry *entries, size_t count);
 uint32_t idsi_echelon_rank(const idsi_echelon *echelon);
@@ -95,6 +90,26 @@ bool idsi_echelon_rule(const idsi_echelon *echelon, uint32_t column, const idsi_
 /* Entries in all rules. */
 uint64_t idsi_echelon_fill(const idsi_echelon *echelon);
 
+/*
+ * Rows that are rewritten completely by an echelon form's rules, several side by side
+ * (lib/field/lanes.c). The form must not get new rules meanwhile.
+ */
+typedef struct idsi_lanes idsi_lanes;
+
+ids_status idsi_lanes_create(ids_ctx *ctx, uint32_t prime, uint32_t columns, idsi_lanes **lanes);
+void idsi_lanes_free(idsi_lanes *lanes);
+uint32_t idsi_lanes_count(void); /* rows side by side */
+uint64_t idsi_lanes_bytes(uint64_t columns);
+/* Adds factor * row to the row in a lane. */
+void idsi_lanes_load(idsi_lanes *lanes, uint32_t lane, const idsi_entry *row, size_t count,
+                     uint32_t factor);
+/*
+ * Rewrites all lanes and clears them. Residues at columns c that are no pivots go to
+ * out[lane * stride + place[c]], where out must be zero before.
+ */
+void idsi_lanes_rewrite(idsi_lanes *lanes, const idsi_echelon *echelon, const uint32_t *place,
+                        uint32_t *out, size_t stride);
+
 /* ---- elimination (lib/field/eliminate.c) ----------------------------------------------------------------- */
 
 /* Receives one row: entries in any order, columns may repeat. */
@@ -106,9 +121,6 @@ typedef struct idsi_matrix {
     ids_ctx *ctx;
     uint32_t prime;
     uint32_t columns;
-    /* Columns 0 .. passive-1 are expected to hold (nearly) no pivots; with ranks alone they may be
-     * folded into a few random combinations. 0: do not. */
-    uint32_t passive;
     bool tables; /* the complete echelon form is wanted, not only the rank */
     idsi_source_fn source;
     void *source_user;

@@ -54,6 +54,30 @@ __attribute__((target("avx2"))) static void strip(uint32_t p, size_t steps, cons
     }
 }
 
-const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS, COLUMNS, strip};
+__attribute__((target("avx2"))) static void lanes(uint32_t p, const idsi_entry *entries,
+                                                  size_t count, const uint32_t *factor,
+                                                  uint64_t *sums)
+{
+    __m256i back = _mm256_set1_epi64x((int64_t)(4 * (uint64_t)p * p));
+    __m256i factors[4];
+
+    for (size_t v = 0; v < 4; v++) {
+        factors[v] = _mm256_cvtepu32_epi64(_mm_loadu_si128((const __m128i *)(factor + 4 * v)));
+    }
+    for (size_t i = 0; i < count; i++) {
+        __m256i *sum = (__m256i *)(sums + (size_t)entries[i].column * IDSI_LANES);
+        __m256i value = _mm256_set1_epi64x((int64_t)entries[i].value);
+        for (size_t v = 0; v < 4; v++) {
+            __m256i s = _mm256_add_epi64(_mm256_loadu_si256(sum + v),
+                                         _mm256_mul_epu32(value, factors[v]));
+            __m256i less = _mm256_sub_epi64(s, back); /* its sign tells which of the two */
+            s = _mm256_castpd_si256(_mm256_blendv_pd(
+                _mm256_castsi256_pd(less), _mm256_castsi256_pd(s), _mm256_castsi256_pd(less)));
+            _mm256_storeu_si256(sum + v, s);
+        }
+    }
+}
+
+const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS, COLUMNS, strip, lanes};
 
 #endif

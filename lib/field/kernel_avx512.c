@@ -97,6 +97,25 @@ AVX512 static void strip(uint32_t p, size_t steps, const int64_t *a, const int64
     store(p, sum, c, ldc, m, n);
 }
 
-const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip};
+AVX512 static void lanes(uint32_t p, const idsi_entry *entries, size_t count,
+                         const uint32_t *factor, uint64_t *sums)
+{
+    __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
+    __m512i f0 = _mm512_cvtepu32_epi64(_mm256_loadu_si256((const __m256i *)factor));
+    __m512i f1 = _mm512_cvtepu32_epi64(_mm256_loadu_si256((const __m256i *)(factor + 8)));
+
+    for (size_t i = 0; i < count; i++) {
+        uint64_t *sum = sums + (size_t)entries[i].column * IDSI_LANES;
+        __m512i value = _mm512_set1_epi64((int64_t)entries[i].value);
+        __m512i s0 = _mm512_add_epi64(_mm512_loadu_si512(sum), _mm512_mul_epu32(value, f0));
+        __m512i s1 = _mm512_add_epi64(_mm512_loadu_si512(sum + 8), _mm512_mul_epu32(value, f1));
+        s0 = _mm512_min_epu64(s0, _mm512_sub_epi64(s0, back));
+        s1 = _mm512_min_epu64(s1, _mm512_sub_epi64(s1, back));
+        _mm512_storeu_si512(sum, s0);
+        _mm512_storeu_si512(sum + 8, s1);
+    }
+}
+
+const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip, lanes};
 
 #endif

@@ -36,4 +36,18 @@ static void strip(uint32_t p, size_t steps, const int64_t *a, const int64_t *b, 
     }
 }
 
-const idsi_kernel idsi_kernel_portable = {"portable", ROWS, COLUMNS, strip};
+static void lanes(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factor,
+                  uint64_t *sums)
+{
+    uint64_t back = 4 * (uint64_t)p * p;
+
+    for (size_t i = 0; i < count; i++) {
+        uint64_t *sum = sums + (size_t)entries[i].column * IDSI_LANES;
+        for (size_t lane = 0; lane < IDSI_LANES; lane++) {
+            uint64_t s = sum[lane] + (uint64_t)factor[lane] * entries[i].value;
+            sum[lane] = s >= back ? s - back : s;
+        }
+    }
+}
+
+const idsi_kernel idsi_kernel_portable = {"portable", ROWS, COLUMNS, strip, lanes};

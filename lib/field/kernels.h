@@ -11,10 +11,11 @@
 #ifndef IDSI_KERNELS_H
 #define IDSI_KERNELS_H
 
-#include <stddef.h>
-#include <stdint.h>
+#include "field_private.h"
 
 #define IDSI_KERNEL_STEPS 16u
+/* Rows that are rewritten side by side. */
+#define IDSI_LANES 16u
 
 typedef struct idsi_kernel {
     const char *name;
@@ -26,7 +27,16 @@ typedef struct idsi_kernel {
      */
     void (*strip)(uint32_t p, size_t steps, const int64_t *a, const int64_t *b, uint32_t *c,
                   size_t ldc, size_t m, size_t n);
+    /*
+     * Adds factor[lane] * entry.value to sums[entry.column][lane] for every entry and lane; sums
+     * < 4 p^2 before and after.
+     */
+    void (*lanes)(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factor,
+                  uint64_t *sums);
 } idsi_kernel;
+
+/* The kernel for this processor. */
+const idsi_kernel *idsi_kernel_choose(void);
 
 extern const idsi_kernel idsi_kernel_portable;
 #if defined(__x86_64__)

@@ -21,7 +21,7 @@
 #define NC 1024u
 #define PACK_ALIGN 64u
 
-static const idsi_kernel *choose_kernel(void)
+const idsi_kernel *idsi_kernel_choose(void)
 {
 #if defined(__x86_64__)
     if (__builtin_cpu_supports("avx512f") && __builtin_cpu_supports("avx512dq")) {
@@ -36,7 +36,7 @@ static const idsi_kernel *choose_kernel(void)
 
 const char *idsi_dense_kernel_name(void)
 {
-    return choose_kernel()->name;
+    return idsi_kernel_choose()->name;
 }
 
 ids_status idsi_workspace_init(idsi_workspace *work, ids_ctx *ctx)
@@ -116,7 +116,7 @@ void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, si
                         const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
                         size_t ldc)
 {
-    const idsi_kernel *kernel = choose_kernel();
+    const idsi_kernel *kernel = idsi_kernel_choose();
     int64_t *packed_a = aligned(work->packed_a);
     int64_t *packed_b = aligned(work->packed_b);
 

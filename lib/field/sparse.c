@@ -5,8 +5,7 @@
  *     rule_of[c]   0, or 1 + number of the rule whose pivot is column c
  *     rule         pivot, then its entries: pivot = sum of value * column, columns < pivot
  *     sum[c]       the row at work, a full-length accumulator, each < 2 p^2 < 2^63
- *     bits         which sum[c] may be nonzero: a bit set with two levels of summaries, so that
- *                  the largest such column is found in three steps whatever the row's length
+ *     marks        which sum[c] may be nonzero (marks.h)
  *
  * A row is rewritten from its largest column down until that column is no pivot; the rest of it
  * stays as it is, so a rule costs no more than it must. The entries of rules lie in chunks that
@@ -15,6 +14,7 @@
 #include <string.h>
 
 #include "field_private.h"
+#include "marks.h"
 
 #define CHUNK_ENTRIES (UINT32_C(1) << 18)
 
@@ -38,7 +38,7 @@ struct idsi_echelon {
     uint64_t square; /* prime^2 */
     uint32_t *rule_of;
     uint64_t *sum;
-    uint64_t *bits[3]; /* words of columns, of words, of words of words */
+    idsi_marks marks;
     size_t rule_count;
     size_t rule_capacity;
     rule *rules;
@@ -47,11 +47,6 @@ struct idsi_echelon {
     size_t gathered_capacity;
     uint64_t fill;
 };
-
-static size_t words(size_t n)
-{
-    return (n + 63) / 64;
-}
 
 uint64_t idsi_echelon_base_bytes(uint64_t columns)
 {
@@ -71,11 +66,7 @@ ids_status idsi_echelon_create(ids_ctx *ctx, uint32_t prime, uint32_t columns,
     made->square = (uint64_t)prime * prime;
     IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *made->rule_of, &made->rule_of));
     IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *made->sum, &made->sum));
-    size_t n = columns;
-    for (int level = 0; level < 3; level++) {
-        n = words(n);
-        IDSI_TRY(idsi_alloc_array(ctx, n + 1, sizeof *made->bits[level], &made->bits[level]));
-    }
+    IDSI_TRY(idsi_marks_init(ctx, &made->marks, columns));
     *echelon = made;
     made = NULL;
 done:
@@ -94,9 +85,7 @@ void idsi_echelon_free(idsi_echelon *echelon)
         idsi_free(ctx, echelon->chunks);
         echelon->chunks = next;
     }
-    for (int level = 0; level < 3; level++) {
-        idsi_free(ctx, echelon->bits[level]);
-    }
+    idsi_marks_clear(ctx, &echelon->marks);
     idsi_free(ctx, echelon->gathered);
     idsi_free(ctx, echelon->rules);
     idsi_free(ctx, echelon->sum);
@@ -104,54 +93,11 @@ void idsi_echelon_free(idsi_echelon *echelon)
     idsi_free(ctx, echelon);
 }
 
-static inline void mark(idsi_echelon *e, uint32_t column)
-{
-    uint64_t *word = &e->bits[0][column >> 6];
-    if (*word == 0) {
-        e->bits[1][column >> 12] |= UINT64_C(1) << ((column >> 6) & 63);
-        e->bits[2][column >> 18] |= UINT64_C(1) << ((column >> 12) & 63);
-    }
-    *word |= UINT64_C(1) << (column & 63);
-}
-
-static inline void unmark(idsi_echelon *e, uint32_t column)
-{
-    uint64_t *word = &e->bits[0][column >> 6];
-    *word &= ~(UINT64_C(1) << (column & 63));
-    if (*word == 0) {
-        uint64_t *above = &e->bits[1][column >> 12];
-        *above &= ~(UINT64_C(1) << ((column >> 6) & 63));
-        if (*above == 0) {
-            e->bits[2][column >> 18] &= ~(UINT64_C(1) << ((column >> 12) & 63));
-        }
-    }
-}
-
-static uint32_t top_bit(uint64_t word)
-{
-    return 63u - (uint32_t)__builtin_clzll(word);
-}
-
-/* Largest marked column; false when there is none. *top is the last nonzero word of bits[2]. */
-static inline bool largest(const idsi_echelon *e, size_t *top, uint32_t *column)
-{
-    while (e->bits[2][*top] == 0) {
-        if (*top == 0) {
-            return false;
-        }
-        (*top)--;
-    }
-    size_t middle = *top * 64 + top_bit(e->bits[2][*top]);
-    size_t low = middle * 64 + top_bit(e->bits[1][middle]);
-    *column = (uint32_t)(low * 64 + top_bit(e->bits[0][low]));
-    return true;
-}
-
 static inline void accumulate(idsi_echelon *e, uint32_t column, uint64_t product)
 {
     uint64_t sum = e->sum[column] + product;
     e->sum[column] = sum >= e->square ? sum - e->square : sum;
-    mark(e, column);
+    idsi_marks_add(&e->marks, column);
 }
 
 static void apply_rule(idsi_echelon *e, const rule *r, uint32_t factor)
@@ -164,12 +110,11 @@ static void apply_rule(idsi_echelon *e, const rule *r, uint32_t factor)
 /* Clears the row at work. */
 static void drop_row(idsi_echelon *e)
 {
-    size_t top = words(words(words(e->columns)));
+    size_t top = e->marks.top_words - 1;
     uint32_t column = 0;
 
-    while (largest(e, &top, &column)) {
+    while (idsi_marks_pop(&e->marks, &top, &column)) {
         e->sum[column] = 0;
-        unmark(e, column);
     }
 }
 
@@ -181,16 +126,15 @@ static void drop_row(idsi_echelon *e)
 static ids_status gather(idsi_echelon *e, bool all, uint64_t work, size_t *count, bool *over)
 {
     ids_status st = IDS_OK;
-    size_t top = words(words(words(e->columns)));
+    size_t top = e->marks.top_words - 1;
     uint32_t column = 0;
     bool stopped = false;
 
     *count = 0;
     *over = false;
-    while (largest(e, &top, &column)) {
+    while (idsi_marks_pop(&e->marks, &top, &column)) {
         uint32_t value = (uint32_t)(e->sum[column] % e->prime);
         e->sum[column] = 0;
-        unmark(e, column);
         if (value == 0) {
             continue;
         }
@@ -282,17 +226,6 @@ ids_status idsi_echelon_settle(idsi_echelon *echelon, uint64_t work, idsi_verdic
         IDSI_TRY(idsi_echelon_store(echelon, echelon->gathered, left));
     }
     *verdict = over ? IDSI_DEFERRED : left > 0 ? IDSI_INDEPENDENT : IDSI_DEPENDENT;
-done:
-    return st;
-}
-
-ids_status idsi_echelon_rewrite(idsi_echelon *echelon, const idsi_entry **entries, size_t *count)
-{
-    ids_status st = IDS_OK;
-    bool over = false;
-
-    IDSI_TRY(gather(echelon, true, UINT64_MAX, count, &over));
-    *entries = echelon->gathered;
 done:
     return st;
 }
