@@ -160,6 +160,97 @@ IDS_API IDS_MUST_USE ids_status ids_count_split_types(const ids_count_split *spl
 IDS_API IDS_MUST_USE ids_status ids_count_split_monomials(const ids_count_split *split,
                                                           uint64_t row, mpz_t monomials);
 
+/**
+ * Order of the automorphism group of a type and number of its multilinear monomials, exactly.
+ *
+ * @param automorphisms  borrowed.
+ * @param order          out, initialised by the caller; written only on IDS_OK.
+ * @param monomials      out, initialised by the caller, another one: degree! / order.
+ * @return IDS_OK, IDS_ERR_ARG (NULL)
+ * Cost: O(degree). Threads: any number may share `automorphisms`. Cancel: not polled. Border:
+ * GMP (the memory of the results). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_automorphisms_exact(const ids_automorphisms *automorphisms,
+                                                        mpz_t order, mpz_t monomials);
+
+/**
+ * Prepares the numbering of the canonical monomials of a degree, whatever its size.
+ *
+ * Where the numbers fit 64 bits this is ids_basis_create(). Beyond, ids_basis_size() is 0, the
+ * calls of tree.h that take or give an index answer IDS_ERR_LIMIT, and those below take their
+ * place; these work for every basis.
+ * @param ctx     borrowed now, kept.
+ * @param types   kept: must outlive the basis.
+ * @param degree  1 .. max_degree of types.
+ * @param basis   out, owned: ids_basis_free().
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT (byte budget), IDS_ERR_CANCELLED
+ * Cost: O(number of types * degree). Border: GMP (no memory of it). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_basis_create_exact(ids_ctx *ctx, const ids_types *types,
+                                                       uint32_t degree, ids_basis **basis);
+
+/**
+ * Number of monomials of a basis.
+ *
+ * @param size  out, initialised by the caller.
+ * @return IDS_OK, IDS_ERR_ARG (NULL). Border: GMP (the memory of `size`). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_basis_size_exact(const ids_basis *basis, mpz_t size);
+
+/**
+ * Where the monomials of one association type stand: from begin up to end - 1.
+ *
+ * @param type        0 .. ids_types_count()-1 for the degree of the basis.
+ * @param begin, end  out, initialised by the caller.
+ * @return IDS_OK, IDS_ERR_ARG (NULL, type out of range). Border: GMP (their memory). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_basis_type_range_exact(const ids_basis *basis, uint64_t type,
+                                                           mpz_t begin, mpz_t end);
+
+/**
+ * Index of a canonical monomial; see ids_basis_rank().
+ *
+ * @param index  out, initialised by the caller; written only on IDS_OK.
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOT_CANONICAL
+ * Cost: O(degree^2) word operations. Border: GMP (the memory of `index`). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_basis_rank_exact(const ids_basis *basis, const ids_mono *mono,
+                                                     mpz_t index);
+
+/** Index of a monomial given as prefix code; see ids_basis_rank_code(). Since: 0.1 */
+IDS_API IDS_MUST_USE ids_status ids_basis_rank_code_exact(const ids_basis *basis,
+                                                          const int32_t *code, size_t length,
+                                                          mpz_t index);
+
+/**
+ * Canonical monomial with a given index; see ids_basis_unrank().
+ *
+ * @param index  borrowed, 0 .. size-1.
+ * @return IDS_OK, IDS_ERR_ARG (NULL, index out of range), IDS_ERR_NOMEM, IDS_ERR_LIMIT
+ * Cost: O(degree^2) word operations. Border: GMP (no memory of it). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_basis_unrank_exact(ids_ctx *ctx, const ids_basis *basis,
+                                                       const mpz_t index, ids_mono **mono);
+
+/** Prefix code of the monomial with a given index; see ids_basis_unrank_code(). Since: 0.1 */
+IDS_API IDS_MUST_USE ids_status ids_basis_unrank_code_exact(const ids_basis *basis,
+                                                            const mpz_t index, int32_t *code,
+                                                            size_t capacity, size_t *length);
+
+/**
+ * Makes an iterator over `count` monomials from number `begin` on; see ids_iter_create().
+ *
+ * @param begin  borrowed; begin + count must not pass the size of the basis.
+ * @return IDS_OK, IDS_ERR_ARG (NULL, no such range), IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_iter_create_exact(ids_ctx *ctx, const ids_basis *basis,
+                                                      const mpz_t begin, uint64_t count,
+                                                      ids_iter **iter);
+
+/** Moves an iterator to `count` monomials from `begin` on; see ids_iter_seek(). Since: 0.1 */
+IDS_API IDS_MUST_USE ids_status ids_iter_seek_exact(ids_iter *iter, const mpz_t begin,
+                                                    uint64_t count);
+
 #ifdef __cplusplus
 }
 #endif

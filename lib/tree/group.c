@@ -51,7 +51,8 @@ static bool is_permutation(const uint8_t *image, uint32_t arity)
     return true;
 }
 
-static ids_signed_order compose(const ids_signed_order *e, const ids_signed_order *f, uint32_t arity)
+static ids_signed_order compose(const ids_signed_order *e, const ids_signed_order *f,
+                                uint32_t arity)
 {
     ids_signed_order product = {0};
     for (uint32_t i = 0; i < arity; i++) {
@@ -151,7 +152,8 @@ void idsi_group_clear(ids_ctx *ctx, idsi_group *group)
 }
 
 /* Insertion sort by key (larger first), then label (smaller first); returns the parity's sign. */
-static int sort_arguments(uint32_t arity, const uint64_t *key, const uint64_t *label, uint8_t *image)
+static int sort_arguments(uint32_t arity, const uint64_t *key, const uint64_t *label,
+                          uint8_t *image)
 {
     int sign = 1;
     for (uint32_t i = 0; i < arity; i++) {
@@ -193,7 +195,8 @@ int idsi_group_canonical(const idsi_group *group, const uint64_t *key, const uin
                          uint8_t *image)
 {
     uint32_t arity = group->arity;
-    if (group->symmetry == IDS_SYMMETRY_COMMUTATIVE || group->symmetry == IDS_SYMMETRY_ALTERNATING) {
+    if (group->symmetry == IDS_SYMMETRY_COMMUTATIVE ||
+        group->symmetry == IDS_SYMMETRY_ALTERNATING) {
         int sign = sort_arguments(arity, key, label, image);
         return group->symmetry == IDS_SYMMETRY_ALTERNATING ? sign : 1;
     }

@@ -71,28 +71,41 @@ uint64_t idsi_subset_unrank(uint64_t pool, uint32_t size, uint64_t rank)
     return subset;
 }
 
+/* Labels and places of every family; the places give the order of H by the hook formula. */
+static void gather_families(idsi_split *split)
+{
+    uint32_t places[IDSI_SPLIT_MAX];
+
+    split->total = 0;
+    split->stabilizer = 1;
+    for (uint32_t i = 0; i < split->count; i++) {
+        split->family[i] = split->size[i];
+        split->total += split->size[i];
+        places[i] = 1;
+    }
+    for (uint32_t i = split->count; i-- > 0;) {
+        split->stabilizer *= places[i];
+        if (split->parent[i] >= 0) {
+            split->family[split->parent[i]] =
+                (uint8_t)(split->family[split->parent[i]] + split->family[i]);
+            places[split->parent[i]] += places[i];
+        }
+    }
+}
+
 void idsi_split_prepare(idsi_split *split)
 {
     uint32_t count = split->count;
     uint32_t left[IDSI_SPLIT_MAX + 1] = {0}; /* labels still to deal: by place, last: to roots */
 
-    split->total = 0;
-    for (uint32_t i = count; i-- > 0;) {
-        uint32_t family = split->size[i];
-        for (uint32_t j = i + 1; j < count; j++) {
-            if (split->parent[j] == (int8_t)i) {
-                family += split->family[j];
-            }
-        }
-        split->family[i] = (uint8_t)family;
-        split->total += split->size[i];
-    }
+    gather_families(split);
     left[count] = split->total;
     split->ways = 1;
     for (uint32_t i = 0; i < count; i++) {
         uint32_t from = split->parent[i] < 0 ? count : (uint32_t)split->parent[i];
         uint32_t family = split->family[i];
         uint64_t ways = split->ways;
+
         if (!idsi_mul_u64(ways, idsi_binomial(left[from], family), &ways) ||
             !idsi_mul_u64(ways, idsi_binomial(family - 1, split->size[i] - 1u), &ways)) {
             split->ways = 0;
@@ -104,10 +117,9 @@ void idsi_split_prepare(idsi_split *split)
     }
 }
 
-/* Sets the parents for a group with listed elements; returns the order of the stabiliser. */
-static uint64_t generated_parents(const idsi_group *group, const uint64_t *key, int8_t *parent)
+/* Sets the parents for a group with listed elements. */
+static void generated_parents(const idsi_group *group, const uint64_t *key, int8_t *parent)
 {
-    uint64_t stabilizer = 1;
     for (uint32_t i = 0; i < group->arity; i++) {
         uint32_t orbit = 0;
         for (uint64_t e = 0; e < group->order; e++) {
@@ -125,28 +137,21 @@ static uint64_t generated_parents(const idsi_group *group, const uint64_t *key, 
                 parent[j] = (int8_t)i;
             }
         }
-        stabilizer *= count_bits(orbit);
     }
-    return stabilizer;
 }
 
 void idsi_split_for_group(const idsi_group *group, const uint64_t *key, const uint8_t *size,
                           idsi_split *split)
 {
-    uint32_t run = 1;
-
     memset(split, 0, sizeof *split);
     split->count = group->arity;
-    split->stabilizer = 1;
     memcpy(split->size, size, group->arity);
     memset(split->parent, -1, sizeof split->parent);
     if (group->symmetry == IDS_SYMMETRY_GENERATED) {
-        split->stabilizer = generated_parents(group, key, split->parent);
+        generated_parents(group, key, split->parent);
     } else if (group->symmetry != IDS_SYMMETRY_NONE) {
         for (uint32_t i = 1; i < group->arity; i++) {
-            run = key[i] == key[i - 1] ? run + 1 : 1;
-            split->stabilizer *= run;
-            split->parent[i] = run > 1 ? (int8_t)(i - 1) : -1;
+            split->parent[i] = key[i] == key[i - 1] ? (int8_t)(i - 1) : -1;
         }
     }
     idsi_split_prepare(split);
@@ -186,7 +191,8 @@ uint64_t idsi_split_rank(const idsi_split *split, uint64_t all, const uint64_t *
     return rank;
 }
 
-/* The digits of a rank, least significant last: digit[2i] for the family, digit[2i+1] for i's own. */
+/* The digits of a rank, least significant last: digit[2i] for the family of argument i,
+ * digit[2i+1] for its own labels. */
 static void rank_digits(const idsi_split *split, uint64_t rank, uint64_t *digit)
 {
     uint64_t radix[2 * IDSI_SPLIT_MAX];

@@ -133,7 +133,7 @@ typedef struct idsi_split {
     uint64_t stabilizer;             /* order of the group that was divided out */
 } idsi_split;
 
-/* Fills everything from count, size and parent. */
+/* Fills everything from count, size and parent. On overflow of ways the rest is still right. */
 void idsi_split_prepare(idsi_split *split);
 /* The distributions for a group and canonical keys: arguments with equal keys may be swapped. */
 void idsi_split_for_group(const idsi_group *group, const uint64_t *key, const uint8_t *size,
@@ -171,7 +171,10 @@ struct ids_types {
     uint32_t max_degree;
     idsi_type *list;
     uint32_t *children;
+    int8_t *parents; /* idsi_split.parent of each child, in step with children */
     uint32_t *first;
+    uint32_t *slots; /* slot_mask + 1 types by (operation, children), 0: empty */
+    uint64_t slot_mask;
 };
 
 /* Key that orders types by size: larger key, larger type. */
@@ -184,5 +187,7 @@ static inline uint64_t idsi_type_key(const ids_types *types, uint32_t type)
 void idsi_type_split(const ids_types *types, uint32_t type, idsi_split *split);
 /* Number of the type of a canonical tree; UINT32_MAX when the degree is not listed. */
 uint32_t idsi_types_find(const ids_types *types, const idsi_token *tree);
+/* The same for a whole prefix code of `length` tokens. */
+uint32_t idsi_types_find_code(const ids_types *types, const idsi_token *code, size_t length);
 
 #endif

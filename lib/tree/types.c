@@ -4,6 +4,8 @@
  *
  *     list      [leaf][degree 2 ...][degree 3 ...] ...     first[d] = where degree d begins
  *     children  [c c][c c c] ...                           list[t].children = where t's begin
+ *     parents   [p p][p p p] ...                           what the root's symmetry says of them
+ *     slots     [.][t][.][u] ...                           hash table of (operation, arguments)
  *
  * Within a degree the types stand by operation, then by their arguments, larger ones first; so
  * of two types of one degree the one with the smaller number is larger. An argument tuple is
@@ -12,6 +14,10 @@
  *
  * The automorphism order of a type is the product of those of its arguments and of the order of
  * the stabiliser of the argument tuple in the operation's group.
+ *
+ * A tree finds its type by the hash table, node by node from the leaves; a binary search among
+ * the types of each degree would do as well, but mispredicted branches make it several times
+ * slower, and ranking a monomial is hardly more than this.
  */
 #include <string.h>
 
@@ -25,20 +31,38 @@ typedef struct builder {
     size_t capacity;
     size_t child_count;
     size_t child_capacity;
+    size_t parent_capacity;
     uint32_t degree; /* that is being listed */
     uint32_t op;
     uint32_t chosen[IDS_MAX_ARITY];
 } builder;
 
-static void fill_type(const ids_types *types, uint32_t number, idsi_type *type)
+/* Arguments' keys and degrees, as the functions of groups and splits want them. */
+static void describe_arguments(const ids_types *types, const uint32_t *children, uint32_t arity,
+                               uint64_t *key, uint8_t *size)
 {
+    for (uint32_t i = 0; i < arity; i++) {
+        key[i] = idsi_type_key(types, children[i]);
+        size[i] = (uint8_t)types->list[children[i]].degree;
+    }
+}
+
+static void fill_type(ids_types *types, idsi_type *type)
+{
+    const idsi_group *group = &types->sig->ops[type->op].group;
+    const uint32_t *children = types->children + type->children;
+    uint64_t key[IDS_MAX_ARITY];
+    uint8_t size[IDS_MAX_ARITY];
     idsi_split split;
 
-    idsi_type_split(types, number, &split);
+    describe_arguments(types, children, group->arity, key, size);
+    idsi_split_for_group(group, key, size, &split);
+    memcpy(types->parents + type->children, split.parent, group->arity);
     type->automorphisms = split.stabilizer;
     type->monomials = split.ways;
     for (uint32_t i = 0; i < split.count; i++) {
-        const idsi_type *child = &types->list[types->children[type->children + i]];
+        const idsi_type *child = &types->list[children[i]];
+
         if (!idsi_mul_u64(type->automorphisms, child->automorphisms, &type->automorphisms)) {
             type->automorphisms = 0;
         }
@@ -55,18 +79,20 @@ static ids_status add_type(builder *b)
     uint32_t arity = types->sig->ops[b->op].arity;
 
     if (b->child_count + arity > UINT32_MAX) {
-        return idsi_fail(b->ctx, IDS_ERR_LIMIT,
-                         "degree %u has too many association types to list", b->degree);
+        return idsi_fail(b->ctx, IDS_ERR_LIMIT, "degree %u has too many association types to list",
+                         b->degree);
     }
     IDSI_TRY(idsi_grow(b->ctx, b->count, &b->capacity, sizeof *types->list, &types->list));
     IDSI_TRY(idsi_grow(b->ctx, b->child_count + arity - 1, &b->child_capacity,
                        sizeof *types->children, &types->children));
+    IDSI_TRY(idsi_grow(b->ctx, b->child_count + arity - 1, &b->parent_capacity,
+                       sizeof *types->parents, &types->parents));
     memcpy(types->children + b->child_count, b->chosen, arity * sizeof *b->chosen);
     idsi_type *type = &types->list[b->count];
     *type = (idsi_type){.op = b->op, .degree = b->degree, .children = (uint32_t)b->child_count};
+    fill_type(types, type);
     b->child_count += arity;
     b->count++;
-    fill_type(types, (uint32_t)(b->count - 1), type);
     if ((b->count & 0xfffu) == 0) {
         IDSI_TRY(idsi_poll(b->ctx, NULL));
     }
@@ -101,8 +127,8 @@ static ids_status choose(builder *b, uint32_t place, uint32_t left)
     ids_status st = IDS_OK;
     const idsi_group *group = &b->types->sig->ops[b->op].group;
     uint32_t places = group->arity - place;
-    bool sorted = group->symmetry == IDS_SYMMETRY_COMMUTATIVE ||
-                  group->symmetry == IDS_SYMMETRY_ALTERNATING;
+    bool sorted =
+        group->symmetry == IDS_SYMMETRY_COMMUTATIVE || group->symmetry == IDS_SYMMETRY_ALTERNATING;
 
     if (places == 0) {
         return tuple_is_canonical(b, group) ? add_type(b) : IDS_OK;
@@ -126,6 +152,8 @@ static ids_status choose(builder *b, uint32_t place, uint32_t left)
 done:
     return st;
 }
+
+static ids_status fill_slots(ids_ctx *ctx, ids_types *types, uint32_t count);
 
 ids_status ids_types_create(ids_ctx *ctx, const ids_signature *signature, uint32_t max_degree,
                             ids_types **types)
@@ -158,6 +186,7 @@ ids_status ids_types_create(ids_ctx *ctx, const ids_signature *signature, uint32
         }
         b.types->first[b.degree + 1] = (uint32_t)b.count;
     }
+    IDSI_TRY(fill_slots(ctx, b.types, (uint32_t)b.count));
     *types = b.types;
     b.types = NULL;
 done:
@@ -171,7 +200,9 @@ void ids_types_free(ids_types *types)
         ids_ctx *ctx = types->ctx;
         idsi_free(ctx, types->list);
         idsi_free(ctx, types->children);
+        idsi_free(ctx, types->parents);
         idsi_free(ctx, types->first);
+        idsi_free(ctx, types->slots);
         idsi_free(ctx, types);
     }
 }
@@ -191,25 +222,24 @@ ids_status ids_types_info(const ids_types *types, uint32_t degree, uint64_t inde
         return IDS_ERR_ARG;
     }
     const idsi_type *type = &types->list[types->first[degree] + index];
-    *info = (ids_type_info){.operation = type->op,
-                            .automorphisms = type->automorphisms,
-                            .monomials = type->monomials};
+    *info = (ids_type_info){
+        .operation = type->op, .automorphisms = type->automorphisms, .monomials = type->monomials};
     return IDS_OK;
 }
 
 void idsi_type_split(const ids_types *types, uint32_t type, idsi_split *split)
 {
     const idsi_type *entry = &types->list[type];
-    const idsi_group *group = &types->sig->ops[entry->op].group;
-    uint64_t key[IDS_MAX_ARITY];
-    uint8_t size[IDS_MAX_ARITY];
 
-    for (uint32_t i = 0; i < group->arity; i++) {
+    memset(split, 0, sizeof *split);
+    split->count = types->sig->ops[entry->op].arity;
+    for (uint32_t i = 0; i < split->count; i++) {
         uint32_t child = types->children[entry->children + i];
-        key[i] = idsi_type_key(types, child);
-        size[i] = (uint8_t)types->list[child].degree;
+
+        split->size[i] = (uint8_t)types->list[child].degree;
+        split->parent[i] = types->parents[entry->children + i];
     }
-    idsi_split_for_group(group, key, size, split);
+    idsi_split_prepare(split);
 }
 
 /* Writes the prefix code of a type, every leaf as label 0. */
@@ -246,63 +276,82 @@ done:
     return st;
 }
 
-/* < 0 when the type of (op, children) stands before `type` in the list of its degree. */
-static int compare_with_listed(const ids_types *types, uint32_t op, const uint32_t *children,
-                               uint32_t type)
+/* ---- from a tree to its type ----------------------------------------------------------------- */
+
+static uint64_t mix(uint64_t hash, uint32_t number)
 {
-    const idsi_type *entry = &types->list[type];
-    if (op != entry->op) {
-        return op < entry->op ? -1 : 1;
-    }
-    for (uint32_t i = 0; i < types->sig->ops[op].arity; i++) {
-        uint64_t mine = idsi_type_key(types, children[i]);
-        uint64_t other = idsi_type_key(types, types->children[entry->children + i]);
-        if (mine != other) {
-            return mine > other ? -1 : 1;
-        }
-    }
-    return 0;
+    hash = (hash ^ number) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden ratio */
+    return hash ^ (hash >> 32);
 }
 
-static uint32_t find_type(const ids_types *types, const idsi_token **at)
+/* The slot of the type with this operation and these arguments, or the empty one it would have.
+ * Argument i is children[i * step]. */
+static uint32_t *find_slot(const ids_types *types, uint32_t op, const uint32_t *children,
+                           ptrdiff_t step)
 {
-    idsi_token token = *(*at)++;
-    uint32_t children[IDS_MAX_ARITY];
-    uint32_t degree = 0;
+    uint32_t arity = types->sig->ops[op].arity;
+    uint64_t hash = op;
 
-    if (!idsi_is_node(token)) {
-        return 0;
+    for (uint32_t i = 0; i < arity; i++) {
+        hash = mix(hash, children[(ptrdiff_t)i * step]);
     }
-    uint32_t op = idsi_node_op(token);
-    for (uint32_t i = 0; i < types->sig->ops[op].arity; i++) {
-        children[i] = find_type(types, at);
-        if (children[i] == UINT32_MAX) {
+    for (;; hash++) {
+        uint32_t *slot = &types->slots[hash & types->slot_mask];
+        const idsi_type *type = &types->list[*slot];
+        bool same = type->op == op;
+
+        for (uint32_t i = 0; same && i < arity; i++) {
+            same = types->children[type->children + i] == children[(ptrdiff_t)i * step];
+        }
+        if (*slot == 0 || same) {
+            return slot;
+        }
+    }
+}
+
+static ids_status fill_slots(ids_ctx *ctx, ids_types *types, uint32_t count)
+{
+    ids_status st = IDS_OK;
+    size_t slots = 4;
+
+    while (slots / 2 < count) {
+        slots *= 2;
+    }
+    IDSI_TRY(idsi_alloc_array(ctx, slots, sizeof *types->slots, &types->slots));
+    types->slot_mask = slots - 1;
+    for (uint32_t t = 1; t < count; t++) {
+        const idsi_type *type = &types->list[t];
+
+        *find_slot(types, type->op, types->children + type->children, 1) = t;
+    }
+done:
+    return st;
+}
+
+uint32_t idsi_types_find_code(const ids_types *types, const idsi_token *code, size_t length)
+{
+    uint32_t stack[IDSI_MAX_TOKENS]; /* types of the subtrees to the right, leftmost on top */
+    size_t top = 0;
+
+    for (size_t i = length; i-- > 0;) {
+        if (!idsi_is_node(code[i])) {
+            stack[top] = 0;
+            top++;
+            continue;
+        }
+        uint32_t op = idsi_node_op(code[i]);
+        uint32_t found = *find_slot(types, op, &stack[top - 1], -1);
+
+        if (found == 0) {
             return UINT32_MAX;
         }
-        degree += types->list[children[i]].degree;
+        top -= types->sig->ops[op].arity - 1;
+        stack[top - 1] = found;
     }
-    if (degree > types->max_degree) {
-        return UINT32_MAX;
-    }
-    uint32_t low = types->first[degree];
-    uint32_t high = types->first[degree + 1];
-    while (low < high) {
-        uint32_t middle = low + (high - low) / 2;
-        int order = compare_with_listed(types, op, children, middle);
-        if (order == 0) {
-            return middle;
-        }
-        if (order < 0) {
-            high = middle;
-        } else {
-            low = middle + 1;
-        }
-    }
-    return UINT32_MAX;
+    return stack[0];
 }
 
 uint32_t idsi_types_find(const ids_types *types, const idsi_token *tree)
 {
-    const idsi_token *at = tree;
-    return find_type(types, &at);
+    return idsi_types_find_code(types, tree, idsi_tree_length(types->sig, tree));
 }
