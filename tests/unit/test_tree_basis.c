@@ -140,6 +140,30 @@ static const large larges[] = {
     {"g4:0132- c4", 16},
 };
 
+/* Another way to write the monomial, by one symmetry at one node, is well formed and has no
+ * index. */
+static void check_other_order(const fixture *f, idsi_random *random, uint64_t index)
+{
+    sample_tree tree = {0};
+    sample_tree other;
+    ids_signed_order order[IDS_MAX_ARITY];
+    size_t length = 0;
+    uint64_t found = 0;
+
+    SURE(ids_basis_unrank_code(f->basis, index, tree.code, IDSI_MAX_TOKENS, &length) == IDS_OK);
+    tree.length = (uint32_t)length;
+    uint32_t node = (uint32_t)idsi_random_below(random, length);
+    if (tree.code[node] > 0) {
+        node = 0;
+    }
+    size_t count = sample_generators(&f->ops.op[~tree.code[node]], order);
+    for (size_t g = 0; g < count; g++) {
+        sample_reorder(&f->ops, &tree, node, order[g].image, &other);
+        SURE(ids_basis_rank_code(f->basis, other.code, other.length, &found) ==
+             IDS_ERR_NOT_CANONICAL);
+    }
+}
+
 START_TEST(test_random_indices)
 {
     idsi_random random;
@@ -152,7 +176,10 @@ START_TEST(test_random_indices)
     (void)check_index(&f, 0);
     (void)check_index(&f, size - 1);
     for (uint64_t round = 0; round < 1000 * test_scale(); round++) {
-        (void)check_index(&f, idsi_random_below(&random, size));
+        uint64_t index = idsi_random_below(&random, size);
+
+        (void)check_index(&f, index);
+        check_other_order(&f, &random, index);
     }
     close_fixture(&f);
 }
