@@ -14,12 +14,14 @@ cd "$1"
 rooms=(core tree identity young field engine model answer run render)
 
 # Place of a room in the list; a public header carries the name of its room. The generated
-# headers stand before all rooms; gmp.h speaks of the numbers of types and monomials.
+# headers stand before all rooms; gmp.h speaks of the numbers of types and monomials, draw.h belongs
+# to render.
 declare -A place=([export]=0 [version]=0)
 for number in "${!rooms[@]}"; do
     place[${rooms[number]}]=$number
 done
 place[gmp]=${place[tree]}
+place[draw]=${place[render]}
 
 # Lines "file <header>" or "file "header"" of the files given.
 includes_of() {

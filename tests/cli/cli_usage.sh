@@ -6,7 +6,7 @@ here=$(dirname "$(readlink -f "$0")")
 # shellcheck source=tests/cli/common.sh
 . "$here/common.sh"
 
-tasks="show types basis count rank"
+tasks="show types basis count rank draw"
 
 # ---- help and version ------------------------------------------------------------------
 
@@ -22,7 +22,7 @@ has out "Examples:"
 for task in $tasks; do
     has out "  $task "
 done
-for option in degree degrees from count split exact primes seed \
+for option in degree degrees from count index monomials split exact primes seed \
     format output memory threads help version; do
     has out "--$option"
 done
@@ -37,6 +37,7 @@ common="format output memory threads help version"
     own_basis="degree from count"
     own_count="degree degrees split"
     own_rank="degree degrees exact primes seed"
+    own_draw="degree monomials index from count"
 }
 for task in $tasks; do
     run 0 "$task" --help

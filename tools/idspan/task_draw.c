@@ -22,8 +22,9 @@ static ids_status choose_part(session *s, uint64_t all, const char *things, uint
     *first = one ? set->index : set->from;
     *count = one ? 1 : set->count;
     if (one && (set->seen & (BIT(OPTION_FROM) | BIT(OPTION_COUNT))) != 0) {
-        return session_fail(s, IDS_ERR_ARG, "--index draws one tree; --from and --count have no "
-                                            "place beside it");
+        return session_fail(s, IDS_ERR_ARG,
+                            "--index draws one tree; --from and --count have no "
+                            "place beside it");
     }
     if (*first > 0 && *first >= all) {
         return session_fail(s, IDS_ERR_ARG, "--%s %s: degree %u has %s %s; indices count from 0",
@@ -46,8 +47,7 @@ static ids_status choose_part(session *s, uint64_t all, const char *things, uint
 static ids_status run(session *s)
 {
     const settings *set = s->set;
-    ids_draw_options options = {.struct_size = sizeof options,
-                                .picture = (ids_picture)set->format};
+    ids_draw_options options = {.struct_size = sizeof options, .picture = (ids_picture)set->format};
     bool monomials = (set->seen & BIT(OPTION_MONOMIALS)) != 0;
     ids_status st = IDS_OK;
     ids_types *types = NULL;
