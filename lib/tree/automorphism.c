@@ -151,8 +151,11 @@ static ids_status join(builder *b, size_t base, idsi_text *text, idsi_order *ord
     ids_status st = IDS_OK;
     size_t count = b->height - base;
 
-    sort_factors(b->stack + base, count);
     order_set(order, 1);
+    if (count == 0) {
+        return IDS_OK; /* there may be no stack yet */
+    }
+    sort_factors(b->stack + base, count);
     for (size_t i = 0; i < count; i++) {
         const factor *f = &b->stack[base + i];
         bool fenced = count > 1 && f->kind != FACTOR_NAME;
@@ -289,13 +292,13 @@ static ids_status walk(builder *b, uint32_t type, uint32_t first_leaf)
 {
     ids_status st = IDS_OK;
     const idsi_type *entry = &b->types->list[type];
-    const uint32_t *child = b->types->children + entry->children;
     uint32_t first[IDS_MAX_ARITY + 1] = {first_leaf};
     idsi_stabilizer stabilizer;
 
     if (entry->automorphisms == 1) {
         return IDS_OK;
     }
+    const uint32_t *child = b->types->children + entry->children;
     uint32_t arity = b->types->sig->ops[entry->op].arity;
     for (uint32_t i = 0; i < arity; i++) {
         first[i + 1] = first[i] + b->types->list[child[i]].degree;
