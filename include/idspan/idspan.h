@@ -12,5 +12,6 @@
 #include <idspan/identity.h>
 #include <idspan/render.h>
 #include <idspan/tree.h>
+#include <idspan/young.h>
 
 #endif

@@ -1,0 +1,115 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/**
+ * @file young.h
+ * Partitions, which name the irreducible modules of the symmetric groups.
+ *
+ * The partitions of a degree stand in the order of published tables: reverse lexicographic, so
+ * 4, 3+1, 2+2, 2+1+1, 1+1+1+1. Indices count from 0. 4 stands for the trivial module of S_4 and
+ * 1+1+1+1 for the one on which a permutation acts by its sign.
+ */
+#ifndef IDSPAN_YOUNG_H
+#define IDSPAN_YOUNG_H
+
+#include <idspan/core.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+/** Largest degree of a partition. */
+#define IDS_MAX_PARTITION_DEGREE 40u
+
+/**
+ * A partition: plain data, to be copied and assigned. Well formed when part[0] >= part[1] >= ...
+ * >= part[length-1] >= 1, the sum is the degree, and the parts after them are 0; the calls below
+ * answer IDS_ERR_ARG when it is not. Two partitions are equal when all their bytes are.
+ */
+typedef struct ids_partition {
+    uint32_t degree;                        /**< 0 .. IDS_MAX_PARTITION_DEGREE */
+    uint32_t length;                        /**< number of parts */
+    uint8_t part[IDS_MAX_PARTITION_DEGREE]; /**< largest first, then zeros */
+} ids_partition;
+
+/**
+ * Reads a partition written as 4+3+1: largest part first, no blanks.
+ *
+ * @param ctx        borrowed.
+ * @param text       borrowed.
+ * @param partition  out, written only on IDS_OK.
+ * @return IDS_OK; IDS_ERR_ARG (NULL); IDS_ERR_PARSE (not such a text, a part 0, a part larger
+ *         than the one before it, degree over IDS_MAX_PARTITION_DEGREE; the message says which,
+ *         ids_ctx_last_place() where)
+ * Cost: O(length of text), no allocation. Border: none. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_parse(ids_ctx *ctx, const char *text,
+                                                    ids_partition *partition);
+
+/**
+ * Writes a partition in the form that ids_partition_parse() reads; degree 0 gives "0".
+ *
+ * @param ctx        borrowed.
+ * @param partition  borrowed.
+ * @param text       out, owned: ids_string_free().
+ * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT (byte budget). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_print(ids_ctx *ctx, const ids_partition *partition,
+                                                    char **text);
+
+/**
+ * Number of partitions of a degree; 0 when it is over IDS_MAX_PARTITION_DEGREE.
+ *
+ * Cost: O(IDS_MAX_PARTITION_DEGREE^2) additions, no allocation; as for the calls that follow.
+ * Threads: any. Since: 0.1
+ */
+IDS_API uint64_t ids_partition_count(uint32_t degree);
+
+/**
+ * Index of a partition among those of its degree; inverse of ids_partition_unrank().
+ *
+ * @param partition  borrowed.
+ * @param index      out: 0 .. ids_partition_count(degree)-1, written only on IDS_OK.
+ * @return IDS_OK, IDS_ERR_ARG (NULL, not well formed). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_rank(const ids_partition *partition, uint64_t *index);
+
+/**
+ * Partition of a degree with a given index.
+ *
+ * @param degree     0 .. IDS_MAX_PARTITION_DEGREE.
+ * @param index      0 .. ids_partition_count(degree)-1.
+ * @param partition  out, written only on IDS_OK.
+ * @return IDS_OK, IDS_ERR_ARG (NULL, out of range). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_unrank(uint32_t degree, uint64_t index,
+                                                     ids_partition *partition);
+
+/**
+ * The conjugate partition: rows and columns of the diagram exchanged. Its module is that of
+ * `partition` with every permutation multiplied by its sign.
+ *
+ * @param partition  borrowed.
+ * @param conjugate  out, written only on IDS_OK; it may be `partition` itself.
+ * @return IDS_OK, IDS_ERR_ARG (NULL, not well formed). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_conjugate(const ids_partition *partition,
+                                                        ids_partition *conjugate);
+
+/**
+ * Dimension of the irreducible module of a partition: the number of its standard tableaux.
+ *
+ * @param partition  borrowed.
+ * @param dimension  out, written only on IDS_OK.
+ * @return IDS_OK; IDS_ERR_ARG (NULL, not well formed); IDS_ERR_LIMIT (it passes 64 bits, which
+ *         can happen from degree 35 on)
+ * Cost: O(degree^2) greatest common divisors, no allocation. Threads: any.
+ * Source: degree! / product of the hook lengths (Frame, Robinson, Thrall, Canad. J. Math. 6
+ * (1954)). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_dimension(const ids_partition *partition,
+                                                        uint64_t *dimension);
+
+#ifdef __cplusplus
+}
+#endif
+
+#endif
