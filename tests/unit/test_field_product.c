@@ -1,0 +1,290 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Every product kernel that this processor can run, and the blocked product around the chosen
+ * one, against FLINT's nmod_mat_mul.
+ */
+#include <stdlib.h>
+#include <string.h>
+
+#include "field/dense_private.h"
+#include "field/kernels.h"
+#include "field_matrix.h"
+
+static const idsi_kernel *kernel_number(size_t number)
+{
+    if (number == 0) {
+        return &idsi_kernel_portable;
+    }
+#if defined(__x86_64__)
+    if (number == 1 && __builtin_cpu_supports("avx2")) {
+        return &idsi_kernel_avx2;
+    }
+    if (number == 2 && __builtin_cpu_supports("avx512f") && __builtin_cpu_supports("avx512dq")) {
+        return &idsi_kernel_avx512;
+    }
+#endif
+    return NULL;
+}
+
+#define KERNELS 3u
+
+/* C - A B by FLINT. */
+static void expect(const field_matrix *a, const field_matrix *b, field_matrix *c)
+{
+    const uint32_t p = c->p;
+    nmod_mat_t left;
+    nmod_mat_t right;
+    nmod_mat_t product;
+
+    nmod_mat_init(left, (slong)a->rows, (slong)a->columns, p);
+    nmod_mat_init(right, (slong)b->rows, (slong)b->columns, p);
+    nmod_mat_init(product, (slong)c->rows, (slong)c->columns, p);
+    for (size_t i = 0; i < a->rows * a->columns; i++) {
+        left->entries[i] = a->entries[i];
+    }
+    for (size_t i = 0; i < b->rows * b->columns; i++) {
+        right->entries[i] = b->entries[i];
+    }
+    nmod_mat_mul(product, left, right);
+    for (size_t i = 0; i < c->rows * c->columns; i++) {
+        c->entries[i] = (uint32_t)((c->entries[i] + p - product->entries[i]) % p);
+    }
+    nmod_mat_clear(left);
+    nmod_mat_clear(right);
+    nmod_mat_clear(product);
+}
+
+static int64_t centred(uint32_t value, uint32_t p)
+{
+    return value > p / 2 ? (int64_t)value - (int64_t)p : (int64_t)value;
+}
+
+/* A matrix in strips as kernels.h describes, `across` for B. */
+static int64_t *pack(const field_matrix *matrix, size_t width, size_t steps, bool across)
+{
+    size_t length = across ? matrix->columns : matrix->rows;
+    size_t strips = (length + width - 1) / width;
+    size_t size = (strips * width * steps + 8) * sizeof(int64_t);
+    int64_t *packed = aligned_alloc(64, (size + 63) / 64 * 64);
+
+    ck_assert_ptr_nonnull(packed);
+    memset(packed, 0, (size + 63) / 64 * 64);
+    for (size_t i = 0; i < matrix->rows; i++) {
+        for (size_t j = 0; j < matrix->columns; j++) {
+            size_t along = across ? i : j;
+            size_t x = across ? j : i;
+            packed[(x / width * steps + along) * width + x % width] =
+                centred(field_matrix_row(matrix, i)[j], matrix->p);
+        }
+    }
+    return packed;
+}
+
+static void run_kernel(const idsi_kernel *kernel, const field_matrix *a, const field_matrix *b,
+                       field_matrix *c)
+{
+    size_t steps =
+        (a->columns + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
+    int64_t *left = pack(a, kernel->rows, steps, false);
+    int64_t *right = pack(b, kernel->columns, steps, true);
+
+    for (size_t i = 0; i < c->rows; i += kernel->rows) {
+        for (size_t j = 0; j < c->columns; j += kernel->columns) {
+            size_t m = c->rows - i < kernel->rows ? c->rows - i : kernel->rows;
+            size_t n = c->columns - j < kernel->columns ? c->columns - j : kernel->columns;
+            kernel->strip(c->p, steps, left + i * steps, right + j * steps,
+                          field_matrix_row(c, i) + j, c->columns, m, n);
+        }
+    }
+    free(left);
+    free(right);
+}
+
+static void compare(const char *name, const field_matrix *got, const field_matrix *wanted)
+{
+    for (size_t i = 0; i < got->rows * got->columns; i++) {
+        ck_assert_msg(got->entries[i] == wanted->entries[i],
+                      "%s: entry %zu of a %zu x %zu product mod %u is %u, not %u", name, i,
+                      got->rows, got->columns, got->p, got->entries[i], wanted->entries[i]);
+    }
+}
+
+/* kernel == NULL: the blocked product. */
+static void try_product(const idsi_kernel *kernel, uint32_t p, const size_t size[3],
+                        field_kind kind, idsi_random *random)
+{
+    field_matrix a;
+    field_matrix b;
+    field_matrix c;
+    field_matrix wanted;
+    ids_ctx *ctx = test_ctx();
+    idsi_workspace work;
+
+    field_matrix_init(&a, p, size[0], size[2]);
+    field_matrix_init(&b, p, size[2], size[1]);
+    field_matrix_init(&c, p, size[0], size[1]);
+    field_matrix_init(&wanted, p, size[0], size[1]);
+    field_matrix_random(&a, kind, random);
+    field_matrix_random(&b, kind, random);
+    field_matrix_random(&c, FIELD_EXTREME, random);
+    memcpy(wanted.entries, c.entries, c.rows * c.columns * sizeof *c.entries);
+    expect(&a, &b, &wanted);
+    if (kernel != NULL) {
+        run_kernel(kernel, &a, &b, &c);
+    } else {
+        TEST_OK(ctx, idsi_workspace_init(&work, ctx));
+        idsi_dense_mul_sub(&work, p, size[0], size[1], size[2], a.entries, a.columns, b.entries,
+                           b.columns, c.entries, c.columns);
+        idsi_workspace_clear(&work);
+    }
+    compare(kernel == NULL ? "blocked" : kernel->name, &c, &wanted);
+    field_matrix_clear(&a);
+    field_matrix_clear(&b);
+    field_matrix_clear(&c);
+    field_matrix_clear(&wanted);
+    test_ctx_free(ctx);
+}
+
+static const size_t sizes[][3] = {{1, 1, 1},   {1, 32, 16},  {6, 32, 16},  {5, 31, 15}, {7, 33, 17},
+                                  {13, 65, 1}, {4, 8, 48},   {9, 17, 100}, {3, 70, 257}};
+#define SIZES (sizeof sizes / sizeof *sizes)
+
+START_TEST(test_kernels)
+{
+    const idsi_kernel *kernel = kernel_number((size_t)_i % KERNELS);
+    const uint32_t p = field_primes[(size_t)_i / KERNELS];
+    idsi_random random;
+
+    if (kernel == NULL) {
+        return;
+    }
+    test_random(&random, 10 + (uint64_t)_i);
+    for (size_t i = 0; i < SIZES; i++) {
+        try_product(kernel, p, sizes[i], FIELD_DENSE, &random);
+        try_product(kernel, p, sizes[i], FIELD_EXTREME, &random);
+    }
+}
+END_TEST
+
+/* All products are ((p-1)/2)^2 or its negative: the largest sums there can be. */
+START_TEST(test_largest_sums)
+{
+    const uint32_t p = 1073741789;
+
+    for (size_t number = 0; number < KERNELS; number++) {
+        const idsi_kernel *kernel = kernel_number(number);
+        for (uint32_t sign = 0; kernel != NULL && sign < 2; sign++) {
+            field_matrix a;
+            field_matrix b;
+            field_matrix c;
+            field_matrix wanted;
+            field_matrix_init(&a, p, 7, 1000);
+            field_matrix_init(&b, p, 1000, 33);
+            field_matrix_init(&c, p, 7, 33);
+            field_matrix_init(&wanted, p, 7, 33);
+            for (size_t i = 0; i < 1000; i++) {
+                for (size_t j = 0; j < 33; j++) {
+                    b.entries[i * 33 + j] = (p - 1) / 2;
+                    a.entries[i * 7 + j % 7] = sign == 0 ? (p - 1) / 2 : (p + 1) / 2;
+                }
+            }
+            expect(&a, &b, &wanted);
+            run_kernel(kernel, &a, &b, &c);
+            compare(kernel->name, &c, &wanted);
+            field_matrix_clear(&a);
+            field_matrix_clear(&b);
+            field_matrix_clear(&c);
+            field_matrix_clear(&wanted);
+        }
+    }
+}
+END_TEST
+
+START_TEST(test_blocked)
+{
+    static const size_t large[][3] = {{97, 1025, 257}, {191, 300, 193}, {1, 2050, 513}};
+    const uint32_t p = field_primes[_i];
+    idsi_random random;
+
+    test_random(&random, 40 + (uint64_t)_i);
+    for (size_t i = 0; i < SIZES; i++) {
+        try_product(NULL, p, sizes[i], FIELD_EXTREME, &random);
+    }
+    for (size_t i = 0; i < 3; i++) {
+        try_product(NULL, p, large[i], i % 2 == 0 ? FIELD_DENSE : FIELD_EXTREME, &random);
+    }
+}
+END_TEST
+
+/* Rows side by side: sum[column][lane] += factor[lane] * value, kept below 4 p^2. */
+START_TEST(test_lane_kernels)
+{
+    const uint32_t p = field_primes[_i];
+    const uint64_t bound = 4 * (uint64_t)p * p;
+    idsi_random random;
+    enum { COLUMNS = 5, COUNT = 40 };
+
+    test_random(&random, 70 + (uint64_t)_i);
+    for (size_t number = 0; number < KERNELS; number++) {
+        const idsi_kernel *kernel = kernel_number(number);
+        uint64_t *sums = aligned_alloc(64, COLUMNS * IDSI_LANES * sizeof *sums);
+        uint32_t expected[COLUMNS][IDSI_LANES];
+        uint32_t factor[IDSI_LANES];
+        idsi_entry entries[COUNT];
+
+        ck_assert_ptr_nonnull(sums);
+        for (size_t lane = 0; lane < IDSI_LANES; lane++) {
+            factor[lane] = lane < 2 ? p - 1 : (uint32_t)idsi_random_below(&random, p);
+        }
+        for (size_t i = 0; i < COLUMNS * IDSI_LANES; i++) {
+            sums[i] = i % 3 == 0 ? bound - 1 : idsi_random_below(&random, bound);
+            expected[i / IDSI_LANES][i % IDSI_LANES] = (uint32_t)(sums[i] % p);
+        }
+        for (size_t i = 0; i < COUNT; i++) {
+            entries[i].column = (uint32_t)idsi_random_below(&random, COLUMNS);
+            entries[i].value = i % 2 == 0 ? p - 1 : (uint32_t)idsi_random_below(&random, p);
+            for (size_t lane = 0; lane < IDSI_LANES; lane++) {
+                uint32_t *sum = &expected[entries[i].column][lane];
+                *sum = (*sum + idsi_mod_mul(factor[lane], entries[i].value, p)) % p;
+            }
+        }
+        if (kernel != NULL) {
+            kernel->lanes(p, entries, COUNT, factor, sums);
+        }
+        for (size_t i = 0; kernel != NULL && i < COLUMNS * IDSI_LANES; i++) {
+            ck_assert_uint_lt(sums[i], bound);
+            ck_assert_msg(sums[i] % p == expected[i / IDSI_LANES][i % IDSI_LANES],
+                          "%s, lane %zu mod %u", kernel->name, i % IDSI_LANES, p);
+        }
+        free(sums);
+    }
+}
+END_TEST
+
+START_TEST(test_choice)
+{
+    const idsi_kernel *chosen = idsi_kernel_choose();
+    bool known = false;
+
+    ck_assert_str_eq(chosen->name, idsi_dense_kernel_name());
+    for (size_t number = 0; number < KERNELS; number++) {
+        known = known || chosen == kernel_number(number);
+    }
+    ck_assert(known);
+}
+END_TEST
+
+int main(void)
+{
+    Suite *suite = suite_create("field: products");
+    TCase *tcase = tcase_create("products");
+
+    tcase_set_timeout(tcase, 20);
+    tcase_add_loop_test(tcase, test_kernels, 0, (int)(field_prime_count * KERNELS));
+    tcase_add_test(tcase, test_largest_sums);
+    tcase_add_loop_test(tcase, test_blocked, 0, (int)field_prime_count);
+    tcase_add_loop_test(tcase, test_lane_kernels, 0, (int)field_prime_count);
+    tcase_add_test(tcase, test_choice);
+    suite_add_tcase(suite, tcase);
+    return test_run(suite);
+}
