@@ -21,36 +21,23 @@
  * were lifted from count: there the rows vanish because the echelon form says so.
  *
  * Lifting is by Chinese remaindering over 1 to 4 primes and rational reconstruction; entries must
- * fit 62 bits above and below.
+ * fit 62 bits above and below. A prime whose elimination combined rows at random does not count,
+ * since a row may have been missed there; nor does one whose pivots differ in a lower degree.
  */
 #include <math.h>
 #include <string.h>
 
-#include "engine_private.h"
+#include "lift_private.h"
 
-#define MOST_PRIMES 4u
-#define CACHE_SIZE 1024u
 #define MOST_CHECKS 512u
-
-__extension__ typedef unsigned __int128 wide;
-
-/* The lifted table of one degree, in the shape of idsi_level.start and .entries. */
-typedef struct lifted {
-    size_t *start;
-    uint32_t *normal; /* entry's normal form */
-    int64_t *num;
-    int64_t *den;
-    double rho_bits;
-    double den_bits; /* log2 of the common denominator */
-} lifted;
 
 struct idsi_proof {
     ids_ctx *ctx;
     const idsi_laws *laws;
     uint32_t degree; /* proved so far */
     size_t extra;    /* towers besides the caller's, for lifting */
-    idsi_tower *towers[MOST_PRIMES - 1];
-    lifted table[IDS_MAX_DEGREE + 1];
+    idsi_tower *towers[IDSI_LIFT_PRIMES - 1];
+    idsi_lifted table[IDS_MAX_DEGREE + 1];
     mpz_t below; /* L: common denominator of the proved degrees */
 };
 
@@ -68,15 +55,6 @@ done:
     return st;
 }
 
-static void lifted_clear(ids_ctx *ctx, lifted *table)
-{
-    idsi_free(ctx, table->start);
-    idsi_free(ctx, table->normal);
-    idsi_free(ctx, table->num);
-    idsi_free(ctx, table->den);
-    memset(table, 0, sizeof *table);
-}
-
 void idsi_proof_free(idsi_proof *proof)
 {
     if (proof == NULL) {
@@ -87,190 +65,13 @@ void idsi_proof_free(idsi_proof *proof)
         idsi_free(proof->ctx, proof->towers[i]);
     }
     for (uint32_t d = 0; d <= IDS_MAX_DEGREE; d++) {
-        lifted_clear(proof->ctx, &proof->table[d]);
+        idsi_lifted_clear(proof->ctx, &proof->table[d]);
     }
     mpz_clear(proof->below);
     idsi_free(proof->ctx, proof);
 }
 
-/* ---- lifting ------------------------------------------------------------------------------ */
-
-static void set_wide(mpz_ptr z, wide value)
-{
-    mpz_set_ui(z, (uint64_t)(value >> 64));
-    mpz_mul_2exp(z, z, 64);
-    mpz_add_ui(z, z, (uint64_t)value);
-}
-
-/* Reconstructs fractions; the same few residues come again and again, so some are remembered. */
-typedef struct lifter {
-    mpz_t residue;
-    mpz_t modulus_z;
-    mpq_t fraction;
-    wide modulus;
-    wide key[CACHE_SIZE];
-    int64_t num[CACHE_SIZE];
-    int64_t den[CACHE_SIZE]; /* 0: empty */
-} lifter;
-
-static bool fits(mpz_srcptr z)
-{
-    return mpz_sizeinbase(z, 2) <= 62;
-}
-
-static bool lift(lifter *l, wide residue, int64_t *num, int64_t *den)
-{
-    size_t slot = (size_t)((uint64_t)residue * UINT64_C(0x9E3779B97F4A7C15) >> 54) % CACHE_SIZE;
-    if (l->den[slot] == 0 || l->key[slot] != residue) {
-        set_wide(l->residue, residue);
-        if (!idsi_border_reconstruct(l->fraction, l->residue, l->modulus_z) ||
-            !fits(mpq_numref(l->fraction)) || !fits(mpq_denref(l->fraction))) {
-            return false;
-        }
-        l->key[slot] = residue;
-        l->num[slot] = mpz_get_si(mpq_numref(l->fraction));
-        l->den[slot] = mpz_get_si(mpq_denref(l->fraction));
-    }
-    *num = l->num[slot];
-    *den = l->den[slot];
-    return true;
-}
-
-/* The same level of the towers that are lifted from. */
-typedef struct sources {
-    size_t count;
-    const idsi_level *level[MOST_PRIMES];
-    uint32_t prime[MOST_PRIMES];
-} sources;
-
-static uint32_t wide_mod(wide value, uint32_t p)
-{
-    return (uint32_t)(value % p);
-}
-
-/* Next entry of a column that any of the towers has; false at the end of the column. */
-static bool next_entry(const sources *src, uint64_t column, size_t *at, uint32_t *normal,
-                       wide *residue)
-{
-    bool any = false;
-    uint32_t largest = 0;
-
-    for (size_t k = 0; k < src->count; k++) {
-        if (at[k] < src->level[k]->start[column + 1]) {
-            uint32_t n = src->level[k]->entries[at[k]].column;
-            largest = n > largest ? n : largest;
-            any = true;
-        }
-    }
-    if (!any) {
-        return false;
-    }
-    *normal = largest;
-    wide modulus = 1;
-    *residue = 0;
-    for (size_t k = 0; k < src->count; k++) {
-        uint32_t p = src->prime[k];
-        uint32_t value = 0;
-        if (at[k] < src->level[k]->start[column + 1] &&
-            src->level[k]->entries[at[k]].column == largest) {
-            value = src->level[k]->entries[at[k]].value;
-            at[k]++;
-        }
-        uint32_t gap = (value + p - wide_mod(*residue, p)) % p;
-        uint32_t step = idsi_mod_mul(gap, idsi_mod_inverse(wide_mod(modulus, p), p), p);
-        *residue += modulus * step;
-        modulus *= p;
-    }
-    return true;
-}
-
-/* Lifts a whole table; *ok is false when some entry has no small fraction. */
-static ids_status lift_entries(ids_ctx *ctx, const sources *src, lifter *l, lifted *table,
-                               bool *ok)
-{
-    ids_status st = IDS_OK;
-    uint64_t columns = src->level[0]->columns;
-    size_t room = 0;
-    size_t used = 0;
-
-    for (size_t k = 0; k < src->count; k++) {
-        room += src->level[k]->start[columns];
-    }
-    IDSI_TRY(idsi_alloc_array(ctx, columns + 1, sizeof *table->start, &table->start));
-    IDSI_TRY(idsi_alloc_array(ctx, room, sizeof *table->normal, &table->normal));
-    IDSI_TRY(idsi_alloc_array(ctx, room, sizeof *table->num, &table->num));
-    IDSI_TRY(idsi_alloc_array(ctx, room, sizeof *table->den, &table->den));
-    *ok = true;
-    for (uint64_t c = 0; *ok && c < columns; c++) {
-        size_t at[MOST_PRIMES];
-        wide residue = 0;
-        table->start[c] = used;
-        for (size_t k = 0; k < src->count; k++) {
-            at[k] = src->level[k]->start[c];
-        }
-        while (*ok && next_entry(src, c, at, &table->normal[used], &residue)) {
-            *ok = lift(l, residue, &table->num[used], &table->den[used]);
-            used++;
-        }
-    }
-    table->start[columns] = used;
-done:
-    return st;
-}
-
-/* Common denominator and largest column sum of a lifted table. */
-static void measure(lifted *table, uint64_t columns, mpz_ptr denominator)
-{
-    int64_t last = 1;
-    double rho = 1;
-
-    mpz_set_ui(denominator, 1);
-    for (uint64_t c = 0; c < columns; c++) {
-        double sum = 0;
-        for (size_t i = table->start[c]; i < table->start[c + 1]; i++) {
-            sum += fabs((double)table->num[i] / (double)table->den[i]);
-            if (table->den[i] != last) {
-                last = table->den[i];
-                mpz_lcm_ui(denominator, denominator, (uint64_t)last);
-            }
-        }
-        rho = fmax(rho, sum);
-    }
-    /* Rounded up: sums of a few million terms lose far less than one part in a million. */
-    table->rho_bits = log2(rho) + 1e-6;
-    table->den_bits = (double)mpz_sizeinbase(denominator, 2);
-}
-
-static ids_status lift_table(idsi_proof *proof, const sources *src, lifted *table,
-                             mpz_ptr denominator, bool *ok)
-{
-    ids_status st = IDS_OK;
-    lifter *l = NULL;
-
-    lifted_clear(proof->ctx, table);
-    IDSI_TRY(idsi_alloc_array(proof->ctx, 1, sizeof *l, &l));
-    mpz_init(l->residue);
-    mpz_init(l->modulus_z);
-    mpq_init(l->fraction);
-    l->modulus = 1;
-    for (size_t k = 0; k < src->count; k++) {
-        l->modulus *= src->prime[k];
-    }
-    set_wide(l->modulus_z, l->modulus);
-    st = lift_entries(proof->ctx, src, l, table, ok);
-    mpq_clear(l->fraction);
-    mpz_clear(l->modulus_z);
-    mpz_clear(l->residue);
-    IDSI_TRY(st);
-    if (*ok) {
-        measure(table, src->level[0]->columns, denominator);
-    }
-done:
-    idsi_free(proof->ctx, l);
-    return st;
-}
-
-/* ---- checking ----------------------------------------------------------------------------------- */
+/* ---- checking --------------------------------------------------------------------------------- */
 
 /* Products below the root, at most, in a term of a law that reaches the degree. */
 static uint32_t products_below_root(const idsi_law *law)
@@ -294,7 +95,7 @@ static double coefficient_bits(const idsi_law *law)
 }
 
 /* log2 of the bound at the top of this file, for all laws together. */
-static double value_bits(const idsi_proof *proof, uint32_t degree, const lifted *table)
+static double value_bits(const idsi_proof *proof, uint32_t degree, const idsi_lifted *table)
 {
     double rho = 0;
     double bits = 0;
@@ -315,7 +116,7 @@ static double value_bits(const idsi_proof *proof, uint32_t degree, const lifted 
 }
 
 /* Residues of a lifted table mod q; *ok is false when q divides a denominator. */
-static ids_status reduce_table(ids_ctx *ctx, const lifted *table, uint64_t columns, uint32_t q,
+static ids_status reduce_table(ids_ctx *ctx, const idsi_lifted *table, uint64_t columns, uint32_t q,
                                idsi_level *level, bool *ok)
 {
     ids_status st = IDS_OK;
@@ -336,8 +137,7 @@ static ids_status reduce_table(ids_ctx *ctx, const lifted *table, uint64_t colum
         }
         int64_t num = table->num[i] % (int64_t)q;
         uint32_t residue = (uint32_t)(num < 0 ? num + q : num);
-        level->entries[i] =
-            (idsi_entry){table->normal[i], idsi_mod_mul(residue, last_inverse, q)};
+        level->entries[i] = (idsi_entry){table->normal[i], idsi_mod_mul(residue, last_inverse, q)};
     }
 done:
     return st;
@@ -426,7 +226,7 @@ done:
 
 /* The primes must differ, or their product would not count. */
 static ids_status check_table(const idsi_proof *proof, const idsi_tower *model,
-                              const sources *src, idsi_random *random, bool *vanish)
+                              const idsi_lift_sources *src, idsi_random *random, bool *vanish)
 {
     ids_status st = IDS_OK;
     double missing = value_bits(proof, model->height, &proof->table[model->height]);
@@ -436,7 +236,9 @@ static ids_status check_table(const idsi_proof *proof, const idsi_tower *model,
     *vanish = true;
     for (; count < src->count; count++) {
         known[count] = src->prime[count];
-        missing -= log2(src->prime[count]);
+        if (src->level[count]->error == 0) {
+            missing -= log2(src->prime[count]);
+        }
     }
     while (*vanish && missing >= 0) {
         bool usable = true;
@@ -453,13 +255,13 @@ done:
     return st;
 }
 
-/* ---- one degree ---------------------------------------------------------------------------------- */
+/* ---- one degree ------------------------------------------------------------------------------- */
 
 /* One more tower to lift from, grown to the model's height. */
 static ids_status add_tower(idsi_proof *proof, const idsi_tower *model, idsi_random *random)
 {
     ids_status st = IDS_OK;
-    uint32_t known[MOST_PRIMES] = {model->prime};
+    uint32_t known[IDSI_LIFT_PRIMES] = {model->prime};
     idsi_tower **slot = &proof->towers[proof->extra];
 
     for (size_t k = 0; k < proof->extra; k++) {
@@ -473,10 +275,19 @@ done:
     return st;
 }
 
-static bool same_normal_forms(const idsi_level *a, const idsi_level *b)
+/* In all degrees: then both towers are residues of the same rational one. */
+static bool same_normal_forms(const idsi_tower *a, const idsi_tower *b, uint32_t degree)
 {
-    return a->dimension == b->dimension && a->columns == b->columns &&
-           memcmp(a->normal, b->normal, a->dimension * sizeof *a->normal) == 0;
+    for (uint32_t d = 2; d <= degree; d++) {
+        const idsi_level *x = &a->level[d];
+        const idsi_level *y = &b->level[d];
+        if (x->dimension != y->dimension || x->columns != y->columns ||
+            (x->dimension > 0 &&
+             memcmp(x->normal, y->normal, x->dimension * sizeof *x->normal) != 0)) {
+            return false;
+        }
+    }
+    return true;
 }
 
 static ids_status unable(const idsi_proof *proof, uint32_t degree)
@@ -488,20 +299,21 @@ static ids_status unable(const idsi_proof *proof, uint32_t degree)
 }
 
 /* Levels of all towers; grows those that lag behind. *same is false when a prime is exceptional. */
-static ids_status gather_sources(idsi_proof *proof, const idsi_tower *model, sources *src,
+static ids_status gather_sources(idsi_proof *proof, const idsi_tower *model, idsi_lift_sources *src,
                                  bool *same)
 {
     ids_status st = IDS_OK;
     uint32_t degree = model->height;
 
-    *src = (sources){.count = 1, .level = {&model->level[degree]}, .prime = {model->prime}};
+    *src =
+        (idsi_lift_sources){.count = 1, .level = {&model->level[degree]}, .prime = {model->prime}};
     *same = true;
     for (size_t k = 0; k < proof->extra; k++) {
         idsi_tower *tower = proof->towers[k];
         while (tower->height < degree) {
             IDSI_TRY(idsi_tower_grow(tower, true));
         }
-        *same = *same && same_normal_forms(&tower->level[degree], src->level[0]);
+        *same = *same && same_normal_forms(tower, model, degree);
         src->level[src->count] = &tower->level[degree];
         src->prime[src->count] = tower->prime;
         src->count++;
@@ -521,17 +333,17 @@ ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_ra
     mpz_init(denominator);
     IDSI_ASSERT(degree == proof->degree + 1);
     while (!proved) {
-        sources src;
+        idsi_lift_sources src;
         bool good = true;
         IDSI_TRY(gather_sources(proof, tower, &src, &good));
         if (good) {
-            IDSI_TRY(lift_table(proof, &src, &proof->table[degree], denominator, &good));
+            IDSI_TRY(idsi_lift_table(proof->ctx, &src, &proof->table[degree], denominator, &good));
         }
         if (good) {
             IDSI_TRY(check_table(proof, tower, &src, random, &proved));
         }
         if (!proved) {
-            if (proof->extra == MOST_PRIMES - 1) {
+            if (proof->extra == IDSI_LIFT_PRIMES - 1) {
                 st = unable(proof, degree);
                 goto done;
             }
