@@ -78,6 +78,15 @@ typedef struct idsi_laws {
 
 ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_laws **laws);
 void idsi_laws_free(idsi_laws *laws);
+/* Whether some law says x = 0. */
+bool idsi_laws_trivial(const idsi_laws *laws);
+
+/* ---- argument degrees (lib/engine/degrees.c) ------------------------------------------------- */
+
+typedef ids_status (*idsi_degrees_fn)(void *user, const uint8_t *degree);
+/* All canonical tuples of argument degrees with a given total, largest first. */
+ids_status idsi_degrees_each(const idsi_group *group, uint32_t total, idsi_degrees_fn fn,
+                             void *user);
 
 /* ---- the tower (lib/engine/tower.c) ------------------------------------------------------------------ */
 

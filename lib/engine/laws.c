@@ -182,3 +182,13 @@ void idsi_laws_free(idsi_laws *laws)
         idsi_free(laws->ctx, laws);
     }
 }
+
+bool idsi_laws_trivial(const idsi_laws *laws)
+{
+    for (size_t i = 0; i < laws->count; i++) {
+        if (laws->law[i].degree == 1) {
+            return true;
+        }
+    }
+    return false;
+}

@@ -52,7 +52,6 @@ typedef struct planner {
     idsi_level *level;
     size_t capacity;
     uint32_t op;
-    uint8_t degree[IDS_MAX_ARITY];
 } planner;
 
 static ids_status too_large(const planner *plan, const char *what)
@@ -61,10 +60,11 @@ static ids_status too_large(const planner *plan, const char *what)
                      plan->level->degree, what);
 }
 
-/* Adds the block of the chosen degrees; blocks without columns are left out. */
-static ids_status add_block(planner *plan)
+/* Adds the block of the given degrees; blocks without columns are left out. */
+static ids_status add_block(void *user, const uint8_t *degree)
 {
     ids_status st = IDS_OK;
+    planner *plan = user;
     ids_ctx *ctx = plan->tower->ctx;
     idsi_level *level = plan->level;
     const idsi_group *group = &plan->tower->sig->ops[plan->op].group;
@@ -72,15 +72,15 @@ static ids_status add_block(planner *plan)
     idsi_block block = {.op = plan->op, .inner = 1, .offset = level->columns};
 
     for (uint32_t i = 0; i < group->arity; i++) {
-        key[i] = plan->degree[i];
-        block.degree[i] = plan->degree[i];
+        key[i] = degree[i];
+        block.degree[i] = degree[i];
     }
-    idsi_split_for_group(group, key, plan->degree, &block.split);
+    idsi_split_for_group(group, key, degree, &block.split);
     uint64_t free_monomials = block.split.ways;
     uint64_t columns = block.split.ways;
     bool fits = columns > 0;
     for (uint32_t i = group->arity; i-- > 0;) {
-        const idsi_level *lower = &plan->tower->level[plan->degree[i]];
+        const idsi_level *lower = &plan->tower->level[degree[i]];
         block.stride[i] = (uint32_t)block.inner;
         fits = fits && idsi_mul_u64(block.inner, lower->dimension, &block.inner) &&
                idsi_mul_u64(free_monomials, lower->free, &free_monomials);
@@ -102,53 +102,6 @@ done:
     return st;
 }
 
-/* Whether no argument order of the operation makes the tuple of degrees larger. */
-static bool degrees_are_canonical(const idsi_group *group, const uint8_t *degree)
-{
-    uint64_t key[IDS_MAX_ARITY];
-    uint8_t image[IDS_MAX_ARITY];
-    for (uint32_t i = 0; i < group->arity; i++) {
-        key[i] = degree[i];
-    }
-    (void)idsi_group_canonical(group, key, NULL, image);
-    for (uint32_t i = 0; i < group->arity; i++) {
-        if (degree[image[i]] != degree[i]) {
-            return false;
-        }
-    }
-    return true;
-}
-
-static ids_status choose_degrees(planner *plan, uint32_t place, uint32_t left)
-{
-    ids_status st = IDS_OK;
-    const idsi_group *group = &plan->tower->sig->ops[plan->op].group;
-    uint32_t places = group->arity - place;
-
-    if (places == 0) {
-        return degrees_are_canonical(group, plan->degree) ? add_block(plan) : IDS_OK;
-    }
-    uint32_t most = left - (places - 1);
-    uint32_t least = places == 1 ? left : 1;
-    for (uint32_t degree = most; degree >= least && degree > 0; degree--) {
-        plan->degree[place] = (uint8_t)degree;
-        IDSI_TRY(choose_degrees(plan, place + 1, left - degree));
-    }
-done:
-    return st;
-}
-
-/* Whether some law says x = 0. */
-static bool is_trivial(const idsi_laws *laws)
-{
-    for (size_t i = 0; i < laws->count; i++) {
-        if (laws->law[i].degree == 1) {
-            return true;
-        }
-    }
-    return false;
-}
-
 ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level)
 {
     ids_status st = IDS_OK;
@@ -159,13 +112,11 @@ ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level)
     level->degree = tower->height + 1;
     if (level->degree == 1) {
         level->free = 1;
-        level->dimension = is_trivial(tower->laws) ? 0 : 1;
+        level->dimension = idsi_laws_trivial(tower->laws) ? 0 : 1;
         return IDS_OK;
     }
     for (plan.op = 0; plan.op < sig->count; plan.op++) {
-        if (sig->ops[plan.op].arity <= level->degree) {
-            IDSI_TRY(choose_degrees(&plan, 0, level->degree));
-        }
+        IDSI_TRY(idsi_degrees_each(&sig->ops[plan.op].group, level->degree, add_block, &plan));
     }
     if (level->columns >= UINT32_MAX) {
         st = idsi_fail(tower->ctx, IDS_ERR_LIMIT,

@@ -1,0 +1,309 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Values of maps on products, against blocks of covectors.
+ *
+ * Let r be a covector on the Specht module of the shape t, and op(x1, .., xk) a product with labels
+ * from left to right. In the basis of tableaux, r is a sum over chains of shapes of covectors on
+ * the pieces' modules, found at the addresses that idsi_cut knows. So r(phi(op(x1, .., xk))) has,
+ * for the unknown that belongs to a chain and basis maps m1 (x) .. (x) mk, the coefficient
+ * r(m1(x1) (x) .. (x) mk(xk)).
+ *
+ * The arguments other than the core are peeled off one after the other: their values are known
+ * matrices (rows: basis maps, columns: tableaux), one product each, and the results widen the block
+ * of covectors on the rest. The core takes the widened block at once. Its own values come from a
+ * stored matrix, or again from its product and the basis of solutions of its shape.
+ *
+ * Solutions and stored values are kept negated, because the products subtract.
+ */
+#include <string.h>
+
+#include "partition_private.h"
+
+/* A value matrix is stored when it has no more entries, and all together no more bytes. */
+#define STORE_ENTRIES (UINT64_C(1) << 20)
+#define STORE_BYTES (UINT64_C(1) << 30)
+
+/* ---- stored values ------------------------------------------------------------------------------ */
+
+static size_t value_place(const idsi_partition_engine *engine, uint32_t shape, uint32_t expr)
+{
+    uint64_t hash = ((uint64_t)shape << 32 | expr) * UINT64_C(0x9E3779B97F4A7C15);
+    size_t at = (size_t)(hash >> 20) & (engine->value_slots - 1);
+    while (engine->values[at].matrix != NULL &&
+           (engine->values[at].shape != shape || engine->values[at].expr != expr)) {
+        at = (at + 1) & (engine->value_slots - 1);
+    }
+    return at;
+}
+
+static ids_status grow_values(idsi_partition_engine *engine)
+{
+    ids_status st = IDS_OK;
+    size_t count = engine->value_slots == 0 ? 1024 : 2 * engine->value_slots;
+    idsi_value *old = engine->values;
+    size_t old_count = engine->value_slots;
+    idsi_value *values = NULL;
+
+    IDSI_TRY(idsi_alloc_array(engine->ctx, count, sizeof *values, &values));
+    engine->values = values;
+    engine->value_slots = count;
+    for (size_t i = 0; i < old_count; i++) {
+        if (old[i].matrix != NULL) {
+            values[value_place(engine, old[i].shape, old[i].expr)] = old[i];
+        }
+    }
+    idsi_free(engine->ctx, old);
+done:
+    return st;
+}
+
+static const uint32_t *find_value(idsi_partition_engine *engine, uint32_t shape, uint32_t expr)
+{
+    const uint32_t *matrix = NULL;
+    pthread_mutex_lock(&engine->lock);
+    if (engine->value_slots > 0) {
+        matrix = engine->values[value_place(engine, shape, expr)].matrix;
+    }
+    pthread_mutex_unlock(&engine->lock);
+    return matrix;
+}
+
+/* Stores a matrix unless another thread was first; *matrix is then the stored one. */
+static ids_status store_value(idsi_partition_engine *engine, uint32_t shape, uint32_t expr,
+                              uint64_t bytes, uint32_t **matrix)
+{
+    ids_status st = IDS_OK;
+
+    pthread_mutex_lock(&engine->lock);
+    if (2 * (engine->value_count + 1) > engine->value_slots) {
+        IDSI_TRY(grow_values(engine));
+    }
+    idsi_value *value = &engine->values[value_place(engine, shape, expr)];
+    if (value->matrix != NULL) {
+        idsi_free(engine->ctx, *matrix);
+        *matrix = value->matrix;
+    } else {
+        *value = (idsi_value){shape, expr, *matrix};
+        engine->value_count++;
+        engine->value_bytes += bytes;
+    }
+done:
+    pthread_mutex_unlock(&engine->lock);
+    return st;
+}
+
+static void negate(uint32_t *v, size_t count, uint32_t p)
+{
+    for (size_t i = 0; i < count; i++) {
+        v[i] = idsi_mod_neg(v[i], p);
+    }
+}
+
+/* Values on an expression as a matrix, computed when it is not stored; *owned: to be freed. */
+static ids_status get_value(idsi_scratch *s, uint32_t shape, uint32_t expr,
+                            const uint32_t **matrix, uint32_t **owned)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = s->engine;
+    uint32_t tableaux = engine->skews.list[shape]->count;
+    uint64_t entries = (uint64_t)engine->spaces[shape].dimension * tableaux;
+    uint32_t *identity = NULL;
+    uint32_t *made = NULL;
+
+    *owned = NULL;
+    *matrix = find_value(engine, shape, expr);
+    if (*matrix != NULL) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)tableaux * tableaux, sizeof *identity, &identity));
+    IDSI_TRY(idsi_alloc_array(s->ctx, entries, sizeof *made, &made));
+    for (size_t i = 0; i < tableaux; i++) {
+        identity[i * tableaux + i] = 1;
+    }
+    IDSI_TRY(idsi_contract_values(s, shape, expr, identity, tableaux, made));
+    negate(made, entries, engine->prime);
+    if (entries <= STORE_ENTRIES && engine->value_bytes < STORE_BYTES) {
+        IDSI_TRY(store_value(engine, shape, expr, entries * sizeof *made, &made));
+    } else {
+        *owned = made;
+    }
+    *matrix = made;
+    made = NULL;
+done:
+    idsi_free(s->ctx, identity);
+    idsi_free(s->ctx, made);
+    return st;
+}
+
+/* ---- peeling -------------------------------------------------------------------------------------- */
+
+/* What is being contracted: arguments first .. last of a product, core among them. */
+typedef struct contraction {
+    idsi_scratch *s;
+    const idsi_form *form;
+    const uint32_t *arg;
+    uint32_t *out; /* where the next unknown's coefficients go */
+} contraction;
+
+static ids_status contract(contraction *c, uint32_t shape, uint32_t first, uint32_t last,
+                           const uint32_t *block, size_t width);
+
+static bool is_letter(const idsi_partition_engine *engine, uint32_t expr)
+{
+    return engine->exprs[expr].op == UINT32_MAX;
+}
+
+/* Moves rows: to[(i * b + j)] = from[(j * a + i)], each row `width` long, i < a, j < b. */
+static void exchange_indices(const uint32_t *from, size_t a, size_t b, size_t width, uint32_t *to)
+{
+    for (size_t i = 0; i < a; i++) {
+        for (size_t j = 0; j < b; j++) {
+            memcpy(to + (i * b + j) * width, from + (j * a + i) * width, width * sizeof *to);
+        }
+    }
+}
+
+/*
+ * Multiplies the peeled piece's values (dimension x count) into the gathered block
+ * (count x rest x width) and turns the result into rest x dimension x width.
+ */
+static ids_status apply_value(contraction *c, uint32_t piece, uint32_t expr,
+                              const uint32_t *gathered, size_t rest, size_t width, uint32_t *wide)
+{
+    ids_status st = IDS_OK;
+    idsi_scratch *s = c->s;
+    idsi_partition_engine *engine = s->engine;
+    size_t count = engine->skews.list[piece]->count;
+    size_t dimension = engine->spaces[piece].dimension;
+    const uint32_t *value = NULL;
+    uint32_t *owned = NULL;
+    uint32_t *product = NULL;
+
+    IDSI_TRY(get_value(s, piece, expr, &value, &owned));
+    IDSI_TRY(idsi_alloc_array(s->ctx, dimension * rest * width, sizeof *product, &product));
+    idsi_dense_mul_sub(&s->work, engine->prime, dimension, rest * width, count, value, count,
+                       gathered, rest * width, product, rest * width);
+    exchange_indices(product, rest, dimension, width, wide);
+done:
+    idsi_free(s->ctx, owned);
+    idsi_free(s->ctx, product);
+    return st;
+}
+
+/* One cut: peels its upper (or lower) piece and contracts the other. */
+static ids_status peel(contraction *c, const idsi_cut *cut, bool upper, uint32_t first,
+                       uint32_t last, const uint32_t *block, size_t width)
+{
+    ids_status st = IDS_OK;
+    idsi_scratch *s = c->s;
+    idsi_partition_engine *engine = s->engine;
+    uint32_t piece = upper ? cut->high : cut->low;
+    uint32_t rest_shape = upper ? cut->low : cut->high;
+    uint32_t expr = c->arg[upper ? last : first];
+    size_t count = upper ? cut->high_count : cut->low_count;
+    size_t rest = upper ? cut->low_count : cut->high_count;
+    size_t dimension = engine->spaces[piece].dimension;
+    uint32_t *gathered = NULL; /* count x rest x width */
+    uint32_t *wide = NULL;     /* rest x dimension x width */
+
+    if (dimension == 0) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_resize_array(s->ctx, count * rest * width, sizeof *gathered, &gathered));
+    for (size_t i = 0; i < cut->low_count; i++) {
+        const uint32_t *from = block + (size_t)cut->start[i] * width;
+        if (upper) {
+            for (size_t j = 0; j < cut->high_count; j++) {
+                memcpy(gathered + (j * rest + i) * width, from + j * width, width * sizeof *from);
+            }
+        } else {
+            memcpy(gathered + i * rest * width, from, rest * width * sizeof *from);
+        }
+    }
+    uint32_t next_first = upper ? first : first + 1;
+    uint32_t next_last = upper ? last - 1 : last;
+    if (is_letter(engine, expr)) {
+        IDSI_TRY(contract(c, rest_shape, next_first, next_last, gathered, width));
+    } else {
+        IDSI_TRY(
+            idsi_resize_array(s->ctx, rest * dimension * width, sizeof *wide, &wide));
+        IDSI_TRY(apply_value(c, piece, expr, gathered, rest, width, wide));
+        IDSI_TRY(contract(c, rest_shape, next_first, next_last, wide, dimension * width));
+    }
+done:
+    idsi_free(s->ctx, gathered);
+    idsi_free(s->ctx, wide);
+    return st;
+}
+
+static ids_status contract(contraction *c, uint32_t shape, uint32_t first, uint32_t last,
+                           const uint32_t *block, size_t width)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = c->s->engine;
+    const idsi_skew *skew = engine->skews.list[shape];
+
+    if (first == last) {
+        size_t dimension = engine->spaces[shape].dimension;
+        if (dimension > 0) {
+            IDSI_TRY(idsi_contract_values(c->s, shape, c->arg[first], block, width, c->out));
+            c->out += dimension * width;
+        }
+        return IDS_OK;
+    }
+    bool upper = last > c->form->core;
+    uint32_t at = upper ? skew->shape.cells - (uint32_t)c->form->degree[last]
+                        : c->form->degree[first];
+    for (size_t k = 0; k < skew->cut_count[at]; k++) {
+        IDSI_TRY(peel(c, &skew->cut[at][k], upper, first, last, block, width));
+    }
+done:
+    return st;
+}
+
+ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
+                                 const uint32_t *block, size_t width, uint32_t *out)
+{
+    idsi_partition_engine *engine = scratch->engine;
+    const idsi_expr *entry = &engine->exprs[expr];
+    uint32_t form = idsi_form_find(engine, entry);
+
+    if (form == UINT32_MAX) {
+        return IDS_OK;
+    }
+    contraction c = {.s = scratch,
+                     .form = &engine->degree[entry->degree].forms[form],
+                     .arg = entry->arg,
+                     .out = out + (size_t)engine->spaces[shape].offset[form] * width};
+    return contract(&c, shape, 0, c.form->arity - 1, block, width);
+}
+
+ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
+                                const uint32_t *block, size_t width, uint32_t *out)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = scratch->engine;
+    const idsi_space *space = &engine->spaces[shape];
+    size_t tableaux = engine->skews.list[shape]->count;
+    uint32_t *product = NULL;
+
+    if (is_letter(engine, expr)) {
+        memcpy(out, block, width * sizeof *out);
+        return IDS_OK;
+    }
+    memset(out, 0, space->dimension * width * sizeof *out);
+    const uint32_t *value = find_value(engine, shape, expr);
+    if (value != NULL) {
+        idsi_dense_mul_sub(&scratch->work, engine->prime, space->dimension, width, tableaux, value,
+                           tableaux, block, width, out, width);
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_alloc_array(scratch->ctx, (size_t)space->unknowns * width, sizeof *product,
+                              &product));
+    IDSI_TRY(idsi_contract_product(scratch, shape, expr, block, width, product));
+    idsi_dense_mul_sub(&scratch->work, engine->prime, space->dimension, width, space->unknowns,
+                       space->solution, space->unknowns, product, width, out, width);
+done:
+    idsi_free(scratch->ctx, product);
+    return st;
+}

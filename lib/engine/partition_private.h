@@ -1,0 +1,159 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The partition engine: multiplicities of irreducible modules in F(n)/I(n), a partition at a time.
+ *
+ * For a shape t of n cells let M(t) be the space of S_n-maps from F(n)/I(n) to the skew Specht
+ * module of t. A map is given by its values on products, that is, by an element of
+ *
+ *     U(t) = sum over operations, degrees, chains of shapes   M(piece 1) (x) .. (x) M(piece k)
+ *
+ * (the unknowns), subject to linear equations: the operations' symmetries, and the identities.
+ * M(t) is the solution space; `solution` is a basis of it.
+ */
+#ifndef IDSI_PARTITION_PRIVATE_H
+#define IDSI_PARTITION_PRIVATE_H
+
+#include <pthread.h>
+
+#include "../field/dense_private.h"
+#include "../young/skew_private.h"
+#include "engine_private.h"
+
+/* ---- expressions ---------------------------------------------------------------------------
+ * Monomials whose labels run from left to right, built from the letter (number 0). Arguments are
+ * in canonical order of degrees. Each expression is kept once.
+ */
+typedef struct idsi_expr {
+    uint32_t op; /* UINT32_MAX for the letter */
+    uint32_t degree;
+    uint32_t arg[IDS_MAX_ARITY];
+} idsi_expr;
+
+/* ---- equations -------------------------------------------------------------------------------- */
+
+/* coefficient * (labels permuted by w) expr; w is a word in exchanges, applied left to right. */
+typedef struct idsi_term {
+    uint32_t coefficient;
+    uint32_t expr;
+    uint16_t word_length;
+    uint8_t *word;
+} idsi_term;
+
+/* A linear combination of monomials that every map must send to zero. Terms of one word adjoin. */
+typedef struct idsi_equation {
+    size_t count;
+    idsi_term *terms;
+    double cost; /* rough, for the order in which equations are used */
+} idsi_equation;
+
+/* ---- unknowns ------------------------------------------------------------------------------------ */
+
+/*
+ * How an operation with given argument degrees is taken apart: the argument with the largest
+ * degree is the core; the others are peeled, those behind the core from the end, those before it
+ * from the start.
+ */
+typedef struct idsi_form {
+    uint32_t op;
+    uint32_t arity;
+    uint8_t degree[IDS_MAX_ARITY];
+    uint32_t core;
+} idsi_form;
+
+/* What is known for one shape. */
+typedef struct idsi_space {
+    bool solved;
+    uint32_t dimension; /* of M(t) */
+    uint32_t unknowns;  /* dim U(t) */
+    uint32_t *solution; /* dimension x unknowns, negated residues; NULL for the single cell */
+    uint32_t *offset;   /* first unknown of each form of the degree */
+} idsi_space;
+
+typedef struct idsi_degree {
+    size_t form_count;
+    idsi_form *forms;
+    size_t equation_count;
+    idsi_equation *equations;
+    bool equations_made;
+    size_t generator_count; /* expressions that generate F(d)/I(d) as S_d-module */
+    uint32_t *generators;
+    bool generators_made;
+    size_t shape_count; /* shapes that must be solved */
+    uint32_t *shapes;
+} idsi_degree;
+
+/* A stored evaluation matrix: values of M(t)'s basis on an expression, dimension x tableaux. */
+typedef struct idsi_value {
+    uint32_t shape;
+    uint32_t expr;
+    uint32_t *matrix; /* negated residues */
+} idsi_value;
+
+typedef struct idsi_partition_engine {
+    ids_ctx *ctx;
+    const idsi_laws *laws;
+    const ids_signature *sig;
+    uint32_t prime;
+    uint32_t top; /* largest degree */
+    idsi_random random;
+    uint32_t inverse[2 * IDSI_SHAPE_MAX + 1];
+    idsi_skews skews;
+    idsi_space *spaces; /* one a shape, after planning */
+    idsi_degree degree[IDSI_SHAPE_MAX + 1];
+    size_t expr_count;
+    size_t expr_capacity;
+    idsi_expr *exprs;
+    uint32_t *expr_slot; /* open addressing: 1 + number */
+    size_t expr_slots;
+    pthread_mutex_t lock; /* of the stored values */
+    idsi_value *values;
+    size_t value_slots;
+    size_t value_count;
+    uint64_t value_bytes;
+    double error; /* probability that random vectors missed an equation, so far */
+} idsi_partition_engine;
+
+ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t prime, uint32_t top,
+                                 idsi_partition_engine **engine);
+void idsi_partition_free(idsi_partition_engine *engine);
+/* Solves everything below `degree`, so that the shapes of that degree are independent. */
+ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree);
+/* Multiplicity of a partition of `degree` in F/I. */
+ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint8_t *parts,
+                                       uint32_t rows, uint32_t *multiplicity);
+
+/* ---- partition_plan.c ------------------------------------------------------------------------- */
+
+ids_status idsi_plan_forms(idsi_partition_engine *engine);
+ids_status idsi_plan_shapes(idsi_partition_engine *engine);
+/* Number and places of the unknowns of a shape whose pieces are solved. */
+ids_status idsi_plan_unknowns(idsi_partition_engine *engine, uint32_t shape);
+
+/* ---- partition_expr.c ------------------------------------------------------------------------- */
+
+ids_status idsi_expr_intern(idsi_partition_engine *engine, uint32_t op, const uint32_t *args,
+                            uint32_t *number);
+ids_status idsi_equations_make(idsi_partition_engine *engine, uint32_t degree);
+void idsi_equations_clear(ids_ctx *ctx, idsi_degree *degree);
+/* Form of an expression among those of its degree; UINT32_MAX when it has none. */
+uint32_t idsi_form_find(const idsi_partition_engine *engine, const idsi_expr *expr);
+
+/* ---- partition_contract.c --------------------------------------------------------------------------
+ * A block of covectors on a Specht module has `tableaux` rows of `width` residues.
+ */
+
+/* Scratch of one thread. */
+typedef struct idsi_scratch {
+    ids_ctx *ctx;
+    idsi_partition_engine *engine;
+    idsi_workspace work;
+} idsi_scratch;
+
+/* Coefficients of the unknowns of `shape`: out (unknowns x width, added to) for a product. */
+ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
+                                 const uint32_t *block, size_t width, uint32_t *out);
+/* Values of M(shape)'s basis on an expression: out (dimension x width, overwritten). */
+ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
+                                const uint32_t *block, size_t width, uint32_t *out);
+
+#endif
