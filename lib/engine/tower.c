@@ -207,6 +207,16 @@ static ids_status check_budget(const idsi_tower *tower, const idsi_level *level)
                      (unsigned long long)left, (unsigned long long)memory.budget);
 }
 
+/* Puts the size of the degree before the message of a limit that was hit on the way. */
+static ids_status fail_size(const idsi_tower *tower, const idsi_level *level)
+{
+    return idsi_fail(tower->ctx, IDS_ERR_LIMIT,
+                     "degree %u has %llu monomials, %llu columns in the quotient by the "
+                     "consequences of lower degrees; %s",
+                     level->degree, (unsigned long long)level->free,
+                     (unsigned long long)level->columns, ids_ctx_message(tower->ctx));
+}
+
 static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
 {
     ids_status st = IDS_OK;
@@ -220,11 +230,14 @@ static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
                           .source_user = &source};
 
     IDSI_TRY(check_budget(tower, level));
-    IDSI_TRY(idsi_eliminate(&matrix, &tower->random, &result));
-    level->dimension = level->columns - result.rank;
-    level->error = tower->level[level->degree - 1].error + result.error;
-    if (tables) {
-        IDSI_TRY(make_tables(tower->ctx, result.echelon, level));
+    st = idsi_eliminate(&matrix, &tower->random, &result);
+    if (st == IDS_OK) {
+        level->dimension = level->columns - result.rank;
+        level->error = tower->level[level->degree - 1].error + result.error;
+        st = tables ? make_tables(tower->ctx, result.echelon, level) : IDS_OK;
+    }
+    if (st == IDS_ERR_LIMIT) {
+        st = fail_size(tower, level);
     }
 done:
     idsi_echelon_free(result.echelon);

@@ -183,6 +183,12 @@ static inline uint64_t idsi_type_key(const ids_types *types, uint32_t type)
     return ((uint64_t)types->list[type].degree << 32) | (UINT32_MAX - type);
 }
 
+/*
+ * IDS_ERR_LIMIT when the types of degrees 1 .. max_degree are too many for the budget or for their
+ * 32-bit numbers, or when that is known to the caller (`too_large`): the message has the numbers.
+ */
+ids_status idsi_types_check_size(ids_ctx *ctx, const ids_signature *sig, uint32_t max_degree,
+                                 bool too_large);
 /* The label distributions of a type's root. */
 void idsi_type_split(const ids_types *types, uint32_t type, idsi_split *split);
 /* Number of the type of a canonical tree; UINT32_MAX when the degree is not listed. */

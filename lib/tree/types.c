@@ -23,6 +23,9 @@
 
 #include "tree_private.h"
 
+/* A list that reaches this length is checked for its final size; most never do. */
+enum { CHECKED_FROM = 4096 };
+
 /* The list while it grows. */
 typedef struct builder {
     ids_ctx *ctx;
@@ -78,6 +81,9 @@ static ids_status add_type(builder *b)
     ids_types *types = b->types;
     uint32_t arity = types->sig->ops[b->op].arity;
 
+    if (b->count == CHECKED_FROM) {
+        IDSI_TRY(idsi_types_check_size(b->ctx, types->sig, types->max_degree, false));
+    }
     if (b->child_count + arity > UINT32_MAX) {
         return idsi_fail(b->ctx, IDS_ERR_LIMIT, "degree %u has too many association types to list",
                          b->degree);
@@ -191,6 +197,9 @@ ids_status ids_types_create(ids_ctx *ctx, const ids_signature *signature, uint32
     b.types = NULL;
 done:
     ids_types_free(b.types);
+    if (st == IDS_ERR_LIMIT && b.count > CHECKED_FROM) {
+        st = idsi_types_check_size(ctx, signature, max_degree, true);
+    }
     return st;
 }
 

@@ -304,6 +304,35 @@ START_TEST(test_cancel)
 }
 END_TEST
 
+/* What a list that is too long would hold is known before much memory is taken. */
+START_TEST(test_too_many)
+{
+    ids_ctx_options options = {.struct_size = sizeof options, .byte_budget = 1u << 24};
+    ids_ctx *ctx = NULL;
+    ids_types *types = NULL;
+    sample_ops ops;
+
+    ck_assert_int_eq(ids_ctx_create(&options, &ctx), IDS_OK);
+    sample_read("m2", &ops);
+    ids_signature *sig = sample_make(ctx, &ops);
+    TEST_STATUS(ctx, ids_types_create(ctx, sig, 40, &types), IDS_ERR_LIMIT);
+    ck_assert_ptr_null(types);
+    /* Catalan number binomial(78, 39) / 40, and 40! times that */
+    const char *message = ids_ctx_message(ctx);
+    ck_assert_ptr_nonnull(strstr(message, "degree 40 has 680425371729975800390 association types"));
+    ck_assert_ptr_nonnull(strstr(message, " and 555169459904119312801489697750523356926251146868403"
+                                          "816366080000000000 multilinear monomials"));
+    ck_assert_ptr_nonnull(strstr(message, "budget is 16777216 bytes"));
+    ck_assert_uint_lt(ids_ctx_memory(ctx).peak, 1u << 20);
+    /* These fit by the estimate, but not while the list grows. (Catalan number of 12.) */
+    TEST_STATUS(ctx, ids_types_create(ctx, sig, 13, &types), IDS_ERR_LIMIT);
+    ck_assert_ptr_null(types);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "degree 13 has 208012 association types"));
+    ids_signature_free(sig);
+    test_ctx_free(ctx);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("tree: types");
@@ -317,6 +346,7 @@ int main(void)
     tcase_add_test(tcase, test_borders);
     tcase_add_test(tcase, test_not_listed);
     tcase_add_test(tcase, test_cancel);
+    tcase_add_test(tcase, test_too_many);
     suite_add_tcase(suite, tcase);
     return test_run(suite);
 }
