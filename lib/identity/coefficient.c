@@ -82,12 +82,13 @@ static ids_status read_after_number(idsi_reader *reader)
     if (!idsi_lexeme_is(reader, reader->at, "*")) {
         const bool decimal = idsi_lexeme_is(reader, reader->at, ".") && next->glued &&
                              reader->lexemes[reader->at + 1].kind == IDSI_LEX_NUMBER;
+        if (decimal) {
+            return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
+                                    "a decimal fraction; expected a fraction such as 3/2");
+        }
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
-                                decimal
-                                    ? "a decimal fraction; write the number %s... as a fraction "
-                                      "such as 3/2"
-                                    : "the number %s is a coefficient, not an operand; expected "
-                                      "'*' or a factor after it",
+                                "the number %s is a coefficient, not an operand; expected '*' or "
+                                "a factor after it",
                                 shown.text);
     }
     reader->at++;

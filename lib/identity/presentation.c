@@ -59,9 +59,11 @@ static ids_status make_signature(idsi_reader *reader)
         if (reader->lexeme_count == 0) {
             reader->lexemes[0] = (idsi_lexeme){.kind = IDSI_LEX_END, .line = 1, .column = 1};
         }
+        const bool mistyped = idsi_reader_nearest(reader, 0, idsi_statement_words, 1) != NULL;
         return idsi_reader_fail(reader, IDS_ERR_PARSE, 0,
                                 "no operation is declared; expected a line such as: "
-                                "operation a*b commutative");
+                                "operation a*b commutative%s",
+                                mistyped ? " (did you mean 'operation'?)" : "");
     }
     IDSI_TRY(idsi_alloc_array(reader->ctx, reader->operation_count, sizeof *list, &list));
     for (size_t i = 0; i < reader->operation_count; i++) {

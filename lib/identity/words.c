@@ -86,10 +86,16 @@ ids_status idsi_reader_check_variable(idsi_reader *reader, size_t lexeme)
                                 "%s is a word of the notation; expected the name of a variable",
                                 name.text);
     }
-    size_t op = idsi_reader_operation(reader, IDS_NOTATION_INFIX, lexeme, 0);
-    if (op == SIZE_MAX) {
-        op = idsi_reader_operation(reader, IDS_NOTATION_PREFIX, lexeme, 0);
+    size_t op = idsi_reader_operation(reader, IDS_NOTATION_PREFIX, lexeme, 0);
+    if (op != SIZE_MAX) {
+        const idsi_declared *declared = &reader->operations[op];
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, lexeme,
+                                "%s names the operation of line %u and takes %u arguments in ( ) "
+                                "directly after its name",
+                                name.text, reader->lexemes[declared->lexeme].line,
+                                declared->operation.arity);
     }
+    op = idsi_reader_operation(reader, IDS_NOTATION_INFIX, lexeme, 0);
     if (op != SIZE_MAX) {
         const size_t declared = reader->operations[op].lexeme;
         return idsi_reader_fail(reader, IDS_ERR_PARSE, lexeme,

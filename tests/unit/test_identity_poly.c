@@ -174,6 +174,7 @@ static Suite *suite(void)
 {
     Suite *s = suite_create("identity_poly");
     TCase *tc = tcase_create("poly");
+    tcase_set_timeout(tc, 20);
     tcase_add_test(tc, test_normalize);
     tcase_add_test(tc, test_primitive);
     tcase_add_test(tc, test_primitive_limit);

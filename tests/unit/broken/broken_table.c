@@ -9,6 +9,7 @@ const broken broken_table[] = {
     /* ---- the text as such ---- */
     {"", 0, P, 1, 1, "no operation is declared"},
     {"# only a comment\n", 0, P, 1, 1, "no operation is declared"},
+    {"operaton a*b\n", 0, P, 1, 1, "did you mean 'operation'"},
     {"identity x = 0\n", 0, P, 1, 1, "no operation is declared"},
     {OP "identity x\x80y\n", 0, P, 2, 11, "the byte 0x80 is not UTF-8"},
     {OP "identity \xC3\xA4\xC3\n", 0, P, 2, 11, "the byte 0xC3 is not UTF-8"},
@@ -83,7 +84,7 @@ const broken broken_table[] = {
     /* ---- names ---- */
     {OP "identity t(x,y)\n", 0, P, 2, 10, "unknown operation 't'"},
     {"operation t(a,b,c)\nidentity t(x,y)\n", 0, P, 2, 10, "'t' takes 3, found 2"},
-    {"operation t(a,b)\nidentity t (x,y)\n", 0, P, 2, 10, "'t' names the operation of line 1"},
+    {"operation t(a,b)\nidentity t (x,y)\n", 0, P, 2, 10, "takes 2 arguments in ( ) directly"},
     {"operation a o b\nidentity o o x\n", 0, P, 2, 10, "'o' names the operation of line 1"},
     {OP "identity none*x\n", 0, P, 2, 10, "'none' is a word of the notation"},
     {OP "identity x.y\n", 0, P, 2, 11, "unknown operation '.'"},
@@ -118,7 +119,7 @@ const broken broken_table[] = {
     {OP "identity x*2\n", 0, P, 2, 12, "a number alone"},
     {OP "identity 2 3*x\n", 0, P, 2, 12, "two numbers side by side"},
     {OP "identity 2*\n", 0, P, 2, 12, "missing operand"},
-    {OP "identity 1.5*x\n", 0, P, 2, 11, "a decimal fraction"},
+    {OP "identity 1.5*x\n", 0, P, 2, 11, "expected a fraction such as 3/2"},
     {TWO "identity 2.x\n", 0, P, 3, 11, "'2' is a coefficient, not an operand"},
     {"operation a o b\nidentity 2 o x\n", 0, P, 2, 12, "'2' is a coefficient, not an operand"},
 
