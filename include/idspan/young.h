@@ -1,7 +1,8 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /**
  * @file young.h
- * Partitions, which name the irreducible modules of the symmetric groups.
+ * Partitions, which name the irreducible modules of the symmetric groups, and the cocharacter of
+ * the free algebra of a signature.
  *
  * The partitions of a degree stand in the order of published tables: reverse lexicographic, so
  * 4, 3+1, 2+2, 2+1+1, 1+1+1+1. Indices count from 0. 4 stands for the trivial module of S_4 and
@@ -10,7 +11,7 @@
 #ifndef IDSPAN_YOUNG_H
 #define IDSPAN_YOUNG_H
 
-#include <idspan/core.h>
+#include <idspan/tree.h>
 
 #ifdef __cplusplus
 extern "C" {
@@ -100,13 +101,66 @@ IDS_API IDS_MUST_USE ids_status ids_partition_conjugate(const ids_partition *par
  * @param partition  borrowed.
  * @param dimension  out, written only on IDS_OK.
  * @return IDS_OK; IDS_ERR_ARG (NULL, not well formed); IDS_ERR_LIMIT (it passes 64 bits, which
- *         can happen from degree 35 on)
+ *         can happen from degree 36 on)
  * Cost: O(degree^2) greatest common divisors, no allocation. Threads: any.
  * Source: degree! / product of the hook lengths (Frame, Robinson, Thrall, Canad. J. Math. 6
  * (1954)). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_dimension(const ids_partition *partition,
                                                         uint64_t *dimension);
+
+/**
+ * The cocharacter of a free algebra: for each degree up to a largest one, and each partition, how
+ * often its irreducible module occurs in the space of multilinear monomials. Immutable, shareable.
+ */
+typedef struct ids_cocharacter ids_cocharacter;
+
+/**
+ * Computes the cocharacter of the free algebra of a signature.
+ *
+ * The signs of the operations count. The result is exact: characters of the symmetric groups, no
+ * monomial is looked at.
+ * @param ctx          borrowed now, kept by the cocharacter.
+ * @param signature    borrowed.
+ * @param max_degree   1 .. IDS_MAX_PARTITION_DEGREE.
+ * @param cocharacter  out, owned: ids_cocharacter_free(); written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL pointer, max_degree out of range
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_CANCELLED  cancelled
+ *         IDS_ERR_INTERNAL   a division left a remainder: never, please report it
+ * Cost: grows with the square of the number of partitions. One binary operation takes milliseconds
+ * and less than a megabyte to degree 20, seconds and 100 MB to degree 40; an operation of arity k
+ * up to k times that.
+ * Threads: one a ctx. Cancel: polled. Border: none (GMP's functions on limbs, which take no
+ * memory).
+ * Source: M = h1 + sum of Z[M] over the operations, Z the cycle index of the symmetry with signs
+ * and [ ] plethysm (Macdonald, Symmetric Functions and Hall Polynomials, I.7, I.8). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_cocharacter_create(ids_ctx *ctx, const ids_signature *signature,
+                                                       uint32_t max_degree,
+                                                       ids_cocharacter **cocharacter);
+
+/** Frees a cocharacter; NULL is fine. Since: 0.1 */
+IDS_API void ids_cocharacter_free(ids_cocharacter *cocharacter);
+
+/** The max_degree of a cocharacter; 0 for NULL. Since: 0.1 */
+IDS_API uint32_t ids_cocharacter_max_degree(const ids_cocharacter *cocharacter);
+
+/**
+ * How often the module of a partition occurs.
+ *
+ * @param cocharacter   borrowed.
+ * @param degree        1 .. ids_cocharacter_max_degree().
+ * @param index         0 .. ids_partition_count(degree)-1, as ids_partition_rank() gives it.
+ * @param multiplicity  out, written only on IDS_OK.
+ * @return IDS_OK; IDS_ERR_ARG (NULL, out of range); IDS_ERR_LIMIT (it passes 64 bits)
+ * Cost: constant, no allocation. Threads: any number may share `cocharacter`. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_cocharacter_multiplicity(const ids_cocharacter *cocharacter,
+                                                             uint32_t degree, uint64_t index,
+                                                             uint64_t *multiplicity);
 
 #ifdef __cplusplus
 }

@@ -18,7 +18,7 @@
 
 #define MAX IDS_MAX_PARTITION_DEGREE
 
-/* ---- order and index ------------------------------------------------------------------------- */
+/* ---- order and index ------------------------------------------------------------------ */
 
 void idsi_partition_counts_fill(idsi_partition_counts *counts)
 {
@@ -150,7 +150,7 @@ ids_status ids_partition_unrank(uint32_t degree, uint64_t index, ids_partition *
     return IDS_OK;
 }
 
-/* ---- text -------------------------------------------------------------------------------------- */
+/* ---- text ------------------------------------------------------------------------------- */
 
 static ids_status fail_at(ids_ctx *ctx, const char *text, size_t at, const char *reason)
 {
@@ -244,7 +244,7 @@ ids_status ids_partition_print(ids_ctx *ctx, const ids_partition *partition, cha
     return idsi_strdup(ctx, buffer, text);
 }
 
-/* ---- diagram ----------------------------------------------------------------------------------- */
+/* ---- diagram ---------------------------------------------------------------------------- */
 
 ids_status ids_partition_conjugate(const ids_partition *partition, ids_partition *conjugate)
 {
@@ -334,7 +334,7 @@ uint64_t idsi_partition_beads(const ids_partition *partition, uint32_t count)
 {
     uint64_t beads = 0;
 
-    IDSI_ASSERT(count >= partition->length && partition->degree + count <= 64);
+    IDSI_ASSERT(count >= partition->length && partition->part[0] + count <= 64);
     for (uint32_t i = 0; i < count; i++) {
         uint32_t part = i < partition->length ? partition->part[i] : 0;
 
