@@ -69,6 +69,18 @@ has err 'raise it with --memory'
 run 3 rank jordan.pres --degrees 1..12 --memory 3M
 has out 'Degrees 1 to '
 has out 'stopped: degree '
+has err ' monomials, '
+has err ' columns in the quotient '
+has err 'the budget is 3145728'
+
+# A list that is too long is refused before it is begun. (Catalan number of 39, OEIS A000108.)
+printf 'operation a*b\n' >plain.pres
+for task in types basis draw; do
+    run 3 "$task" plain.pres --degree 40
+    is_empty out
+    has err 'degree 40 has 680425371729975800390 association types'
+    has err 'raise it with --memory'
+done
 
 # ---- types -----------------------------------------------------------------------------
 
