@@ -100,6 +100,13 @@ typedef struct idsi_random {
 void idsi_random_seed(idsi_random *random, uint64_t seed);
 uint64_t idsi_random_next(idsi_random *random);
 uint64_t idsi_random_below(idsi_random *random, uint64_t bound); /* 0 .. bound-1, unbiased */
+/* 0 .. bound-1 in one multiplication; a value's probability is off by at most 2^-64. */
+static inline uint32_t idsi_random_residue(idsi_random *random, uint32_t bound)
+{
+    __extension__ unsigned __int128 product =
+        (unsigned __int128)idsi_random_next(random) * bound;
+    return (uint32_t)(product >> 64);
+}
 
 /* ---- exact arithmetic on 64 bits ----------------------------------------------------------- */
 

@@ -4,10 +4,11 @@
  *
  * A shape is solved by linear equations for its unknowns. Every equation of its degree says that an
  * element z of the free algebra is sent to zero, which is one linear equation for every covector r
- * on the Specht module; they are taken with random covectors, a block at a time. When a block of B
- * covectors adds B-2 or fewer independent equations, z is used up: if z still had something to add,
- * so low a yield would have probability at most 2/p^2 (two of B random vectors would lie in a space
- * that the others do not fill). Equations that have nothing to add cost one small block.
+ * on the Specht module; they are taken with random covectors, a block at a time, in turn, and
+ * eliminated in batches. When a block of B covectors adds B-2 or fewer independent equations, z is
+ * used up: if z still had something to add, so low a yield would have probability at most 2/p^2
+ * (two of B random vectors would lie in a space that the others do not fill). Equations that have
+ * nothing to add cost one small block.
  *
  * The degrees follow each other; within a degree the shapes are independent, and threads take them
  * one by one. The random vectors of a shape come from a seed of its own, and the solution space's
@@ -19,7 +20,7 @@
 #include "partition_private.h"
 
 #define FIRST_BLOCK 16u
-#define LARGEST_BLOCK 192u
+#define BATCH 192u
 
 /* ---- one shape --------------------------------------------------------------------------------- */
 
@@ -32,7 +33,12 @@ typedef struct solver {
     uint32_t *start;   /* tableaux x width: random covectors */
     uint32_t *moved;   /* the same with a word applied */
     uint32_t *product; /* unknowns x width */
-    uint32_t *rows;    /* width x unknowns */
+    uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
+    size_t row_count;
+    uint32_t owner[BATCH]; /* whose rows they are */
+    bool independent[BATCH];
+    uint32_t *width; /* of each equation's next block; 0: it is used up */
+    size_t left;     /* equations that are not */
     uint64_t blocks;
 } solver;
 
@@ -43,6 +49,7 @@ static void clear_solver(solver *v)
     idsi_free(v->s->ctx, v->moved);
     idsi_free(v->s->ctx, v->product);
     idsi_free(v->s->ctx, v->rows);
+    idsi_free(v->s->ctx, v->width);
 }
 
 static void apply_word(const solver *v, const idsi_term *term, size_t width)
@@ -70,26 +77,56 @@ static void add_product(const solver *v, uint32_t coefficient, uint32_t from, ui
     for (uint32_t u = from; u < to; u++) {
         uint32_t *product = v->product + (size_t)u * width;
         for (size_t b = 0; b < width; b++) {
-            uint32_t *row = &v->rows[b * unknowns + u];
+            uint32_t *row = &v->rows[(v->row_count + b) * unknowns + u];
             *row = (uint32_t)((*row + (uint64_t)coefficient * product[b]) % p);
             product[b] = 0;
         }
     }
 }
 
-/* One block of covectors for one equation. */
-static ids_status use_equation(solver *v, const idsi_equation *equation, size_t width,
-                               size_t *added)
+/* Eliminates the batch; each equation's yield decides whether it goes on. */
+static ids_status flush_batch(solver *v)
+{
+    ids_status st = IDS_OK;
+    size_t from = 0;
+
+    IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, v->row_count, v->independent));
+    while (from < v->row_count) {
+        uint32_t owner = v->owner[from];
+        uint32_t width = v->width[owner];
+        uint32_t yield = 0;
+        for (size_t i = from; i < from + width; i++) {
+            yield += v->independent[i];
+        }
+        from += width;
+        if (yield + 2 <= width) {
+            v->width[owner] = 0;
+            v->left--;
+        } else if (yield == width && 2 * width <= BATCH) {
+            v->width[owner] = 2 * width;
+        }
+    }
+    memset(v->rows, 0,
+           v->row_count * v->engine->spaces[v->shape].unknowns * sizeof *v->rows);
+    v->row_count = 0;
+done:
+    return st;
+}
+
+/* One block of covectors for one equation, into the batch. */
+static ids_status use_equation(solver *v, uint32_t number)
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = v->engine;
     const idsi_space *space = &engine->spaces[v->shape];
     uint32_t tableaux = engine->skews.list[v->shape]->count;
+    const idsi_equation *equation =
+        &engine->degree[engine->skews.list[v->shape]->shape.cells].equations[number];
+    uint32_t width = v->width[number];
 
     for (size_t i = 0; i < (size_t)tableaux * width; i++) {
-        v->start[i] = (uint32_t)idsi_random_below(&v->random, engine->prime);
+        v->start[i] = idsi_random_residue(&v->random, engine->prime);
     }
-    memset(v->rows, 0, width * space->unknowns * sizeof *v->rows);
     for (size_t t = 0; t < equation->count; t++) {
         const idsi_term *term = &equation->terms[t];
         uint32_t form = idsi_form_find(engine, &engine->exprs[term->expr]);
@@ -102,12 +139,19 @@ static ids_status use_equation(solver *v, const idsi_equation *equation, size_t 
         IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, v->moved, width, v->product));
         add_product(v, term->coefficient, space->offset[form], space->offset[form + 1], width);
     }
-    IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, width, added));
+    for (uint32_t b = 0; b < width; b++) {
+        v->owner[v->row_count + b] = number;
+    }
+    v->row_count += width;
     v->blocks++;
 done:
     return st;
 }
 
+/*
+ * All equations in turn, until each is used up. An equation that has rows in the batch waits for
+ * them to be eliminated before it is asked again.
+ */
 static ids_status use_equations(solver *v)
 {
     ids_status st = IDS_OK;
@@ -115,16 +159,25 @@ static ids_status use_equations(solver *v)
     const idsi_degree *degree = &engine->degree[engine->skews.list[v->shape]->shape.cells];
     uint32_t unknowns = engine->spaces[v->shape].unknowns;
 
+    v->left = degree->equation_count;
     for (size_t i = 0; i < degree->equation_count; i++) {
-        size_t width = FIRST_BLOCK;
-        size_t added = width;
-        while (added + 2 > width && idsi_dense_echelon_rank(v->echelon) < unknowns) {
-            IDSI_TRY(use_equation(v, &degree->equations[i], width, &added));
-            if (added == width && 2 * width <= LARGEST_BLOCK) {
-                width *= 2;
-                added = width;
+        v->width[i] = FIRST_BLOCK;
+    }
+    while (v->left > 0) {
+        for (uint32_t i = 0; i < degree->equation_count; i++) {
+            if (idsi_dense_echelon_rank(v->echelon) == unknowns) {
+                return IDS_OK;
+            }
+            if (v->width[i] > 0) {
+                if (v->row_count + v->width[i] > BATCH) {
+                    IDSI_TRY(flush_batch(v));
+                }
+                if (v->width[i] > 0) {
+                    IDSI_TRY(use_equation(v, i));
+                }
             }
         }
+        IDSI_TRY(flush_batch(v));
     }
 done:
     return st;
@@ -204,13 +257,14 @@ static ids_status solve_shape(idsi_scratch *scratch, uint32_t shape, bool basis,
     IDSI_TRY(idsi_plan_unknowns(engine, shape));
     if (space->unknowns > 0) {
         ids_ctx *ctx = scratch->ctx;
-        size_t width = LARGEST_BLOCK;
+        size_t equations = engine->degree[engine->skews.list[shape]->shape.cells].equation_count;
         idsi_random_seed(&v.random, shape_seed(engine, shape));
         IDSI_TRY(idsi_dense_echelon_create(ctx, engine->prime, space->unknowns, &v.echelon));
-        IDSI_TRY(idsi_alloc_array(ctx, tableaux * width, sizeof *v.start, &v.start));
-        IDSI_TRY(idsi_alloc_array(ctx, tableaux * width, sizeof *v.moved, &v.moved));
-        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * width, sizeof *v.product, &v.product));
-        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * width, sizeof *v.rows, &v.rows));
+        IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.start, &v.start));
+        IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.moved, &v.moved));
+        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.product, &v.product));
+        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.rows, &v.rows));
+        IDSI_TRY(idsi_alloc_array(ctx, equations, sizeof *v.width, &v.width));
         IDSI_TRY(use_equations(&v));
         if (basis) {
             IDSI_TRY(make_solution(&v));
@@ -270,7 +324,7 @@ static ids_status look(chooser *c, sight *seen, uint32_t expr, size_t *added)
     IDSI_TRY(idsi_alloc_array(c->s->ctx, dimension * width, sizeof *values, &values));
     IDSI_TRY(idsi_alloc_array(c->s->ctx, dimension * width, sizeof *rows, &rows));
     for (size_t i = 0; i < tableaux * width; i++) {
-        block[i] = (uint32_t)idsi_random_below(&c->random, engine->prime);
+        block[i] = idsi_random_residue(&c->random, engine->prime);
     }
     IDSI_TRY(idsi_contract_values(c->s, seen->shape, expr, block, width, values));
     for (size_t i = 0; i < dimension; i++) {
@@ -278,7 +332,9 @@ static ids_status look(chooser *c, sight *seen, uint32_t expr, size_t *added)
             rows[b * dimension + i] = values[i * width + b];
         }
     }
-    IDSI_TRY(idsi_dense_echelon_add(seen->echelon, rows, width, added));
+    size_t before = idsi_dense_echelon_rank(seen->echelon);
+    IDSI_TRY(idsi_dense_echelon_add(seen->echelon, rows, width, NULL));
+    *added = idsi_dense_echelon_rank(seen->echelon) - before;
 done:
     idsi_free(c->s->ctx, block);
     idsi_free(c->s->ctx, values);

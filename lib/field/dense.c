@@ -174,10 +174,11 @@ done:
 
 /* Brings a few rows to reduced echelon form by themselves; those that are left stand first. */
 static size_t reduce_slice(const idsi_dense_echelon *e, uint32_t *rows, size_t count,
-                           uint32_t *pivot)
+                           uint32_t *pivot, bool *independent)
 {
     size_t kept = 0;
     for (size_t i = 0; i < count; i++) {
+        independent[i] = false;
         uint32_t *row = rows + i * e->columns;
         size_t last = 0;
         for (size_t k = 0; k < kept; k++) {
@@ -199,6 +200,7 @@ static size_t reduce_slice(const idsi_dense_echelon *e, uint32_t *rows, size_t c
             memcpy(rows + kept * e->columns, row, e->columns * sizeof *row);
         }
         pivot[kept] = (uint32_t)last;
+        independent[i] = true;
         kept++;
     }
     return kept;
@@ -232,22 +234,25 @@ done:
 }
 
 ids_status idsi_dense_echelon_add(idsi_dense_echelon *echelon, uint32_t *rows, size_t count,
-                                  size_t *added)
+                                  bool *independent)
 {
     ids_status st = IDS_OK;
     idsi_dense_echelon *e = echelon;
     size_t before = e->rank;
     uint32_t pivot[SLICE];
+    bool found[SLICE];
 
     IDSI_TRY(clear_range(e, rows, count, 0, before));
     for (size_t i = 0; i < count; i += SLICE) {
         uint32_t *slice = rows + i * e->columns;
         size_t height = count - i < SLICE ? count - i : SLICE;
         IDSI_TRY(clear_range(e, slice, height, before, e->rank));
-        size_t kept = reduce_slice(e, slice, height, pivot);
+        size_t kept = reduce_slice(e, slice, height, pivot, found);
         IDSI_TRY(store_slice(e, slice, kept, pivot));
+        if (independent != NULL) {
+            memcpy(independent + i, found, height * sizeof *found);
+        }
     }
-    *added = e->rank - before;
 done:
     return st;
 }

@@ -39,9 +39,12 @@ typedef struct idsi_dense_echelon idsi_dense_echelon;
 ids_status idsi_dense_echelon_create(ids_ctx *ctx, uint32_t p, size_t columns,
                                      idsi_dense_echelon **echelon);
 void idsi_dense_echelon_free(idsi_dense_echelon *echelon);
-/* Rows (count x columns, stride columns) are used up. *added = how many were independent. */
+/*
+ * Rows (count x columns, stride columns) are used up. independent[i] tells whether row i was
+ * independent of the form and of the rows before it; NULL when that is not wanted.
+ */
 ids_status idsi_dense_echelon_add(idsi_dense_echelon *echelon, uint32_t *rows, size_t count,
-                                  size_t *added);
+                                  bool *independent);
 size_t idsi_dense_echelon_rank(const idsi_dense_echelon *echelon);
 /* Clears every pivot column but for the pivot itself. */
 ids_status idsi_dense_echelon_complete(idsi_dense_echelon *echelon);

@@ -176,12 +176,13 @@ done:
 static ids_status flush_block(elimination *e)
 {
     ids_status st = IDS_OK;
-    size_t added = 0;
+    size_t before = idsi_dense_echelon_rank(e->dense);
 
     if (e->block_rows == 0) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_dense_echelon_add(e->dense, e->block, e->block_rows, &added));
+    IDSI_TRY(idsi_dense_echelon_add(e->dense, e->block, e->block_rows, NULL));
+    size_t added = idsi_dense_echelon_rank(e->dense) - before;
     e->added += added;
     if (e->adapt && e->prime >= LEAST_RANDOM_PRIME) {
         if (4 * added < e->block_rows) {

@@ -54,6 +54,24 @@ __attribute__((target("avx2"))) static void strip(uint32_t p, size_t steps, cons
     }
 }
 
+__attribute__((target("avx2"))) static void centre(uint32_t p, const uint32_t *values, size_t count,
+                                                   int64_t *out)
+{
+    __m256i prime = _mm256_set1_epi64x((int64_t)p);
+    __m256i half = _mm256_set1_epi64x((int64_t)(p / 2));
+    size_t j = 0;
+
+    for (; j + 4 <= count; j += 4) {
+        __m256i v = _mm256_cvtepu32_epi64(_mm_loadu_si128((const __m128i *)(values + j)));
+        __m256i large = _mm256_cmpgt_epi64(v, half);
+        v = _mm256_sub_epi64(v, _mm256_and_si256(large, prime));
+        _mm256_storeu_si256((__m256i *)(out + j), v);
+    }
+    for (; j < count; j++) {
+        out[j] = idsi_kernel_centred(values[j], p);
+    }
+}
+
 __attribute__((target("avx2"))) static void lanes(uint32_t p, const idsi_entry *entries,
                                                   size_t count, const uint32_t *factor,
                                                   uint64_t *sums)
@@ -78,6 +96,6 @@ __attribute__((target("avx2"))) static void lanes(uint32_t p, const idsi_entry *
     }
 }
 
-const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS, COLUMNS, strip, lanes};
+const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS, COLUMNS, strip, centre, lanes};
 
 #endif

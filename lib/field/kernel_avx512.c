@@ -97,6 +97,22 @@ AVX512 static void strip(uint32_t p, size_t steps, const int64_t *a, const int64
     store(p, sum, c, ldc, m, n);
 }
 
+AVX512 static void centre(uint32_t p, const uint32_t *values, size_t count, int64_t *out)
+{
+    __m512i prime = _mm512_set1_epi64((int64_t)p);
+    __m512i half = _mm512_set1_epi64((int64_t)(p / 2));
+    size_t j = 0;
+
+    for (; j + 8 <= count; j += 8) {
+        __m512i v = _mm512_cvtepu32_epi64(_mm256_loadu_si256((const __m256i *)(values + j)));
+        v = _mm512_mask_sub_epi64(v, _mm512_cmpgt_epi64_mask(v, half), v, prime);
+        _mm512_storeu_si512(out + j, v);
+    }
+    for (; j < count; j++) {
+        out[j] = idsi_kernel_centred(values[j], p);
+    }
+}
+
 AVX512 static void lanes(uint32_t p, const idsi_entry *entries, size_t count,
                          const uint32_t *factor, uint64_t *sums)
 {
@@ -116,6 +132,6 @@ AVX512 static void lanes(uint32_t p, const idsi_entry *entries, size_t count,
     }
 }
 
-const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip, lanes};
+const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip, centre, lanes};
 
 #endif

@@ -36,6 +36,13 @@ static void strip(uint32_t p, size_t steps, const int64_t *a, const int64_t *b, 
     }
 }
 
+static void centre(uint32_t p, const uint32_t *values, size_t count, int64_t *out)
+{
+    for (size_t j = 0; j < count; j++) {
+        out[j] = idsi_kernel_centred(values[j], p);
+    }
+}
+
 static void lanes(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factor,
                   uint64_t *sums)
 {
@@ -50,4 +57,4 @@ static void lanes(uint32_t p, const idsi_entry *entries, size_t count, const uin
     }
 }
 
-const idsi_kernel idsi_kernel_portable = {"portable", ROWS, COLUMNS, strip, lanes};
+const idsi_kernel idsi_kernel_portable = {"portable", ROWS, COLUMNS, strip, centre, lanes};

@@ -28,6 +28,10 @@ typedef struct idsi_kernel {
     void (*strip)(uint32_t p, size_t steps, const int64_t *a, const int64_t *b, uint32_t *c,
                   size_t ldc, size_t m, size_t n);
     /*
+     * Centres count residues into 64 bits: one row of a strip of B.
+     */
+    void (*centre)(uint32_t p, const uint32_t *values, size_t count, int64_t *out);
+    /*
      * Adds factor[lane] * entry.value to sums[entry.column][lane] for every entry and lane; sums
      * < 4 p^2 before and after.
      */
@@ -43,6 +47,11 @@ extern const idsi_kernel idsi_kernel_portable;
 extern const idsi_kernel idsi_kernel_avx2;
 extern const idsi_kernel idsi_kernel_avx512;
 #endif
+
+static inline int64_t idsi_kernel_centred(uint32_t value, uint32_t p)
+{
+    return value > p / 2 ? (int64_t)value - (int64_t)p : (int64_t)value;
+}
 
 /* c - sum mod p for |sum| < 2^63, by the remainder of 64-bit integers. */
 static inline uint32_t idsi_kernel_settle(uint32_t c, int64_t sum, uint32_t p)

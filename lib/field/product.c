@@ -70,23 +70,22 @@ static int64_t *aligned(int64_t *pointer)
     return pointer + (address - (uintptr_t)pointer) / sizeof *pointer;
 }
 
-static inline int64_t centred(uint32_t value, uint32_t p)
+/* Packs k x n of B into strips; pads with zeros to whole strips and steps. */
+static void pack_b(const idsi_kernel *kernel, uint32_t p, size_t k, size_t steps, size_t n,
+                   const uint32_t *b, size_t ldb, int64_t *out)
 {
-    return value > p / 2 ? (int64_t)value - (int64_t)p : (int64_t)value;
-}
+    size_t width = kernel->columns;
 
-/* Packs k x n of B into strips of `width` columns; pads with zeros to whole strips and steps. */
-static void pack_b(uint32_t p, size_t k, size_t steps, size_t n, size_t width, const uint32_t *b,
-                   size_t ldb, int64_t *out)
-{
     for (size_t j = 0; j < n; j += width) {
         size_t real = n - j < width ? n - j : width;
         for (size_t s = 0; s < steps; s++) {
-            for (size_t x = 0; x < real && s < k; x++) {
-                out[x] = centred(b[s * ldb + j + x], p);
-            }
             size_t from = s < k ? real : 0;
-            memset(out + from, 0, (width - from) * sizeof *out);
+            if (from > 0) {
+                kernel->centre(p, b + s * ldb + j, from, out);
+            }
+            if (from < width) {
+                memset(out + from, 0, (width - from) * sizeof *out);
+            }
             out += width;
         }
     }
@@ -100,7 +99,7 @@ static void pack_a(uint32_t p, size_t m, size_t k, size_t steps, size_t height, 
         for (size_t s = 0; s < steps; s++) {
             for (size_t y = 0; y < height; y++) {
                 bool real = i + y < m && s < k;
-                out[y] = real ? centred(a[(i + y) * lda + s], p) : 0;
+                out[y] = real ? idsi_kernel_centred(a[(i + y) * lda + s], p) : 0;
             }
             out += height;
         }
@@ -125,7 +124,7 @@ void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, si
         for (size_t pc = 0; pc < k; pc += KC) {
             size_t kc = least(k - pc, KC);
             size_t steps = (kc + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
-            pack_b(p, kc, steps, nc, kernel->columns, b + pc * ldb + jc, ldb, packed_b);
+            pack_b(kernel, p, kc, steps, nc, b + pc * ldb + jc, ldb, packed_b);
             for (size_t ic = 0; ic < m; ic += MC) {
                 size_t mc = least(m - ic, MC);
                 pack_a(p, mc, kc, steps, kernel->rows, a + ic * lda + pc, lda, packed_a);

@@ -13,6 +13,7 @@
  * basis vector. It needs p larger than all |d|. (Young 1931; for skew shapes Ram, "Skew shape
  * representations are irreducible", 1998.)
  */
+#include "mix.h"
 #include "skew_private.h"
 
 static inline uint32_t mul(uint32_t a, uint32_t b, uint32_t p)
@@ -20,22 +21,28 @@ static inline uint32_t mul(uint32_t a, uint32_t b, uint32_t p)
     return (uint32_t)((uint64_t)a * b % p);
 }
 
-static void scale(uint32_t *v, uint32_t a, size_t width, uint32_t p)
+static uint32_t shoup(uint32_t f, uint32_t p)
 {
-    for (size_t j = 0; j < width; j++) {
-        v[j] = mul(v[j], a, p);
-    }
+    return (uint32_t)(((uint64_t)f << 32) / p);
 }
 
-/* (x, y) -> (a x + y, (1 - a^2) x - a y): the transposed action on the pair T, T'. */
-static void mix(uint32_t *x, uint32_t *y, uint32_t a, uint32_t b, size_t width, uint32_t p)
+static idsi_mix_fn choose_mix(void)
 {
-    uint32_t minus = a == 0 ? 0 : p - a;
+#if defined(__x86_64__)
+    if (__builtin_cpu_supports("avx512f")) {
+        return idsi_mix_avx512;
+    }
+    if (__builtin_cpu_supports("avx2")) {
+        return idsi_mix_avx2;
+    }
+#endif
+    return idsi_mix_portable;
+}
+
+static void negate(uint32_t *v, size_t width, uint32_t p)
+{
     for (size_t j = 0; j < width; j++) {
-        uint32_t u = x[j];
-        uint32_t v = y[j];
-        x[j] = (uint32_t)(((uint64_t)a * u + v) % p);
-        y[j] = (uint32_t)(((uint64_t)b * u + (uint64_t)minus * v) % p);
+        v[j] = v[j] == 0 ? 0 : p - v[j];
     }
 }
 
@@ -45,18 +52,23 @@ void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
     const uint32_t *swap = skew->swap + (size_t)i * skew->count;
     const int8_t *distance = skew->distance + (size_t)i * skew->count;
     uint32_t n = skew->shape.cells;
+    idsi_mix_fn mix_pair = choose_mix();
 
     for (uint32_t t = 0; t < skew->count; t++) {
         int d = distance[t];
-        uint32_t a = d > 0 ? inverse[d] : p - inverse[-d];
         const uint8_t *row = skew->row + (size_t)t * n;
         if (swap[t] == t) {
             if (d < 0) {
-                scale(block + (size_t)t * width, p - 1, width, p);
+                negate(block + (size_t)t * width, width, p);
             }
         } else if (row[i] < row[i + 1]) {
-            uint32_t b = (1 + p - mul(a, a, p)) % p;
-            mix(block + (size_t)t * width, block + (size_t)swap[t] * width, a, b, width, p);
+            idsi_mix mix = {.p = p, .a = d > 0 ? inverse[d] : p - inverse[-d]};
+            mix.b = (1 + p - mul(mix.a, mix.a, p)) % p;
+            mix.c = p - mix.a;
+            mix.shoup_a = shoup(mix.a, p);
+            mix.shoup_b = shoup(mix.b, p);
+            mix.shoup_c = shoup(mix.c, p);
+            mix_pair(&mix, block + (size_t)t * width, block + (size_t)swap[t] * width, width);
         }
     }
 }

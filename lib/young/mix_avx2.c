@@ -1,0 +1,51 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The seminormal inner loop for AVX2: 8 places at once.
+ */
+#include "mix.h"
+
+#if defined(__x86_64__)
+
+#include <immintrin.h>
+
+#define AVX2 __attribute__((target("avx2")))
+
+AVX2 static inline __m256i times(__m256i u, __m256i f, __m256i shoup, __m256i p)
+{
+    __m256i even = _mm256_srli_epi64(_mm256_mul_epu32(u, shoup), 32);
+    __m256i odd = _mm256_mul_epu32(_mm256_srli_epi64(u, 32), shoup);
+    __m256i quotient = _mm256_blend_epi32(even, odd, 0xaa);
+    return _mm256_sub_epi32(_mm256_mullo_epi32(u, f), _mm256_mullo_epi32(quotient, p));
+}
+
+AVX2 static inline __m256i reduce(__m256i x, __m256i bound)
+{
+    return _mm256_min_epu32(x, _mm256_sub_epi32(x, bound));
+}
+
+AVX2 void idsi_mix_avx2(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width)
+{
+    __m256i p = _mm256_set1_epi32((int)mix->p);
+    __m256i twice = _mm256_add_epi32(p, p);
+    __m256i a = _mm256_set1_epi32((int)mix->a);
+    __m256i b = _mm256_set1_epi32((int)mix->b);
+    __m256i c = _mm256_set1_epi32((int)mix->c);
+    __m256i shoup_a = _mm256_set1_epi32((int)mix->shoup_a);
+    __m256i shoup_b = _mm256_set1_epi32((int)mix->shoup_b);
+    __m256i shoup_c = _mm256_set1_epi32((int)mix->shoup_c);
+    size_t j = 0;
+
+    for (; j + 8 <= width; j += 8) {
+        __m256i u = _mm256_loadu_si256((const __m256i *)(x + j));
+        __m256i v = _mm256_loadu_si256((const __m256i *)(y + j));
+        __m256i s = _mm256_add_epi32(times(u, a, shoup_a, p), v);
+        __m256i t = _mm256_add_epi32(times(u, b, shoup_b, p), times(v, c, shoup_c, p));
+        _mm256_storeu_si256((__m256i *)(x + j), reduce(reduce(s, twice), p));
+        _mm256_storeu_si256((__m256i *)(y + j), reduce(reduce(t, twice), p));
+    }
+    for (; j < width; j++) {
+        idsi_mix_one(mix, &x[j], &y[j]);
+    }
+}
+
+#endif
