@@ -5,7 +5,7 @@
 #
 # Installs the build below WORK_DIR, moves the installation to another place, and builds and runs
 # the program beside this script four times: by CMake package and by pkg-config, with the shared
-# and with the static library.
+# and with the static library. The program in README.md must print what README.md says.
 set -euo pipefail
 
 here=$(cd "$(dirname "${BASH_SOURCE[0]}")" && pwd)
@@ -38,6 +38,13 @@ words --static --cflags --libs
 cc -std=c11 -DIDS_STATIC_DEFINE -o "$work/pc_static" "$here/program/main.c" \
     "${flags[@]/#-lidspan/-l:libidspan.a}"
 "$work/pc_static"
+
+sed -n '/^```c$/,/^```$/{/^```/d;p}' "$here/../../README.md" >"$work/ranks.c"
+words --cflags --libs
+cc -std=c11 -Wall -Wextra -Werror -o "$work/ranks" "$work/ranks.c" "${flags[@]}"
+sed -n '/^    \$ \.\/ranks$/,/^$/{/^    [^$]/s/^    //p}' "$here/../../README.md" >"$work/expected"
+LD_LIBRARY_PATH=$libdir "$work/ranks" >"$work/got"
+cmp "$work/expected" "$work/got"
 
 soname='SONAME.*libidspan\.so\.[0-9]*\.[0-9]*\]'
 if ! readelf -d "$libdir/libidspan.so" | grep "$soname" >/dev/null; then
