@@ -18,6 +18,8 @@ typedef struct ids_rank_options {
     bool exact;           /**< prove the ranks over the rational numbers */
     uint32_t primes;      /**< number of random primes to try; 0: one */
     uint64_t seed;        /**< seed that the primes are drawn from; 0 is a seed like any other */
+    uint32_t field;       /**< a prime p < 2^30: ranks over GF(p), without `exact` and `primes`;
+                               0: over the rational numbers */
 } ids_rank_options;
 
 /** A finished rank table, one row a degree. Immutable, shareable. */
@@ -25,9 +27,9 @@ typedef struct ids_rank_table ids_rank_table;
 
 /** What a rank claims to be. */
 typedef enum ids_certainty {
-    IDS_CERTAINTY_EXACT = 0,   /**< proved over the rational numbers */
-    IDS_CERTAINTY_MODULAR = 1  /**< ranks mod random primes: `consequences` is a lower bound, and
-                                    too small with probability at most 2^-bits */
+    IDS_CERTAINTY_EXACT = 0,   /**< proved, over the rational numbers or the field asked for */
+    IDS_CERTAINTY_MODULAR = 1  /**< `consequences` is a lower bound, and too small with probability
+                                    at most 2^-bits; see ids_rank_table_create() */
 } ids_certainty;
 
 /** One row: dimensions of the multilinear components of degree n. */
@@ -43,14 +45,35 @@ typedef struct ids_rank_row {
 /**
  * Ranks of the identities of a presentation in degrees from .. to, by the monomial engine.
  *
+ * Over the rational numbers the ranks are computed mod `primes` primes p, drawn at random from the
+ * N = 26207278 primes between 2^29 and 2^30. A rank mod p never exceeds the rank over Q, so the
+ * largest one is a lower bound. It is too small only if every p divides some minor M != 0 of full
+ * rank of the matrix of all consequences, in the monomials of degree n. By Hadamard's inequality M
+ * has at most free * b bits, where 2^b bounds the Euclidean norm of the coefficients of each
+ * linearised identity; so at most B = free * b / 29 of the N primes divide it, and
+ *
+ *     2^-bits = (B / (N - primes) + r)^primes
+ *
+ * where r bounds the probability that combining rows at random has missed one (0 where no rows
+ * were combined). The derivation is in lib/field/prime.c. `exact` proves the ranks instead; in
+ * degrees below that of every identity, and where the quotient is 0, they are proved anyway.
+ *
+ * With `field` the ranks are those over GF(p), of the identities as completely linearised, with
+ * integer coefficients of content 1. Where p is at most the number of times that a variable occurs
+ * in a term, the linearisation can say less than the identity, or (after division by a common
+ * factor) other things; ids_rank_table_weakened() tells. For p < 2^20 rows are not combined and the
+ * ranks are exact; above, they are exact or have the bound 2^-bits = r.
+ *
  * @param ctx           borrowed now, kept.
  * @param presentation  borrowed.
  * @param from, to      1 <= from <= to <= IDS_MAX_DEGREE. Lower degrees are computed as needed.
  * @param options       borrowed; NULL for the defaults.
  * @param table         out, owned: ids_rank_table_free(). On IDS_ERR_LIMIT and IDS_ERR_CANCELLED
  *                      it holds the degrees that were finished (maybe none) and must be freed too.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT (the message says how many columns a
- *         degree would have and what the budget is), IDS_ERR_CANCELLED
+ * @return IDS_OK; IDS_ERR_ARG (NULL, degrees, struct_size, a field that is no prime below 2^30, or
+ *         together with `exact` or `primes` > 1); IDS_ERR_NOMEM; IDS_ERR_LIMIT (the message says
+ *         how many monomials and columns a degree has, what they need and what the budget is);
+ *         IDS_ERR_UNABLE (`exact`: the coefficients do not fit the proof); IDS_ERR_CANCELLED
  * Cost: see DEVELOPERS.md, "Monomial engine". Threads: up to the context's number; results do not
  * depend on it. Since: 0.1
  */
@@ -75,6 +98,16 @@ IDS_API size_t ids_rank_table_prime_count(const ids_rank_table *table);
 
 /** The index-th prime that was used; 0 when out of range. Since: 0.1 */
 IDS_API uint64_t ids_rank_table_prime(const ids_rank_table *table, size_t index);
+
+/** The prime p when the ranks are those over GF(p); 0 over the rational numbers. Since: 0.1 */
+IDS_API uint32_t ids_rank_table_field(const ids_rank_table *table);
+
+/**
+ * Whether, over the field of the table, some identity of a degree in it can differ from its
+ * linearisation: p is at most the number of times that a variable occurs in each of its terms.
+ * False over the rational numbers and for NULL. Since: 0.1
+ */
+IDS_API bool ids_rank_table_weakened(const ids_rank_table *table);
 
 #ifdef __cplusplus
 }

@@ -8,6 +8,9 @@
  * (lib/engine/exact.c), or stands with the error bound of lib/field/prime.c. The matrix that the
  * bound is about is that of all consequences in the monomials of degree n: a row is a law with
  * its monomials renamed, so its norm is the law's norm, and the rank is at most dim F(n).
+ *
+ * Over GF(p) there is one tower, mod p, and nothing to lift; only random combinations of rows,
+ * which the elimination keeps to large p, leave a doubt.
  */
 #include <math.h>
 #include <string.h>
@@ -22,6 +25,8 @@ struct ids_rank_table {
     ids_rank_row *rows;
     size_t prime_count;
     uint32_t *primes;
+    uint32_t field;
+    bool weakened;
 };
 
 void ids_rank_table_free(ids_rank_table *table)
@@ -56,6 +61,16 @@ size_t ids_rank_table_prime_count(const ids_rank_table *table)
 uint64_t ids_rank_table_prime(const ids_rank_table *table, size_t index)
 {
     return table == NULL || index >= table->prime_count ? 0 : table->primes[index];
+}
+
+uint32_t ids_rank_table_field(const ids_rank_table *table)
+{
+    return table == NULL ? 0 : table->field;
+}
+
+bool ids_rank_table_weakened(const ids_rank_table *table)
+{
+    return table != NULL && table->weakened;
 }
 
 /* Everything one table needs while it is made. */
@@ -99,6 +114,8 @@ static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
         proved = true;
     } else if (j->proof != NULL) {
         proved = level->dimension == row->quotient;
+    } else if (j->table->field != 0) {
+        proved = level->error == 0;
     }
     row->certainty = proved ? IDS_CERTAINTY_EXACT : IDS_CERTAINTY_MODULAR;
     if (!proved) {
@@ -106,8 +123,9 @@ static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
         for (size_t k = 0; k < j->tower_count; k++) {
             error = fmax(error, j->towers[k].level[degree].error);
         }
-        row->bits =
-            idsi_prime_error_bits((double)row->free * bits, error, (uint32_t)j->tower_count);
+        row->bits = j->table->field != 0 ? (uint32_t)fmax(0, floor(-log2(error)))
+                                         : idsi_prime_error_bits((double)row->free * bits, error,
+                                                                 (uint32_t)j->tower_count);
     }
 }
 
@@ -119,7 +137,8 @@ static ids_status start_towers(job *j, uint32_t primes)
     IDSI_TRY(idsi_alloc_array(j->ctx, primes, sizeof *table->primes, &table->primes));
     IDSI_TRY(idsi_alloc_array(j->ctx, primes, sizeof *j->towers, &j->towers));
     for (uint32_t k = 0; k < primes; k++) {
-        table->primes[k] = idsi_prime_draw(&j->random, table->primes, k);
+        table->primes[k] =
+            table->field != 0 ? table->field : idsi_prime_draw(&j->random, table->primes, k);
         idsi_tower_init(&j->towers[k], j->ctx, j->laws, table->primes[k]);
     }
     table->prime_count = primes;
@@ -148,6 +167,54 @@ done:
     return st;
 }
 
+/* Most times that a variable occurs in a term of an identity. */
+static uint32_t multiplicity(const idsi_identity *identity)
+{
+    uint32_t times[IDSI_MAX_IDENTITY_DEGREE + 1] = {0};
+    uint32_t most = 0;
+    const idsi_poly *poly = &identity->written;
+
+    for (size_t i = 0; poly->count > 0 && i < poly->start[1]; i++) {
+        if (!idsi_is_node(poly->tokens[i])) {
+            uint32_t *seen = &times[poly->tokens[i]];
+            (*seen)++;
+            most = *seen > most ? *seen : most;
+        }
+    }
+    return most;
+}
+
+static bool is_weakened(const ids_presentation *pres, uint32_t field, uint32_t degree)
+{
+    for (size_t i = 0; field > 0 && i < ids_presentation_count(pres, IDS_ROLE_IDENTITY); i++) {
+        const idsi_identity *identity = idsi_presentation_get(pres, IDS_ROLE_IDENTITY, i);
+        if (!identity->multilinear && identity->degree <= degree &&
+            field <= multiplicity(identity)) {
+            return true;
+        }
+    }
+    return false;
+}
+
+static ids_status check_options(ids_ctx *ctx, const ids_rank_options *options)
+{
+    if (options->field == 0) {
+        return IDS_OK;
+    }
+    if (options->field >= IDSI_PRIME_HIGH || !idsi_is_prime(options->field)) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "%u elements: a field has a prime number of elements here, below 2^30",
+                         options->field);
+    }
+    if (options->exact || options->primes > 1) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "a proof over the rational numbers and several primes exclude the ranks "
+                         "over the field of %u elements",
+                         options->field);
+    }
+    return IDS_OK;
+}
+
 ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentation, uint32_t from,
                                  uint32_t to, const ids_rank_options *options,
                                  ids_rank_table **table)
@@ -169,10 +236,13 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
             return idsi_fail_arg(ctx, "struct_size");
         }
         chosen = *options;
+        IDSI_TRY(check_options(ctx, &chosen));
     }
     idsi_random_seed(&j.random, chosen.seed);
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *j.table, &j.table));
     j.table->ctx = ctx;
+    j.table->field = chosen.field;
+    j.table->weakened = is_weakened(presentation, chosen.field, to);
     IDSI_TRY(idsi_alloc_array(ctx, to - from + 1u, sizeof *j.table->rows, &j.table->rows));
     IDSI_TRY(idsi_laws_create(ctx, presentation, &j.laws));
     if (chosen.exact) {

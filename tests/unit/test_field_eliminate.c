@@ -134,10 +134,8 @@ START_TEST(test_many_rows)
     field_matrix low = matrix;
     low.rows = 3999;
     field_matrix_random(&low, FIELD_LOW, &random);
-    field_matrix last = {.p = p,
-                         .rows = 1,
-                         .columns = matrix.columns,
-                         .entries = field_matrix_row(&matrix, 3999)};
+    field_matrix last = {
+        .p = p, .rows = 1, .columns = matrix.columns, .entries = field_matrix_row(&matrix, 3999)};
     field_matrix_random(&last, FIELD_DENSE, &random);
     try_matrix(&matrix, &random);
     field_matrix_clear(&matrix);

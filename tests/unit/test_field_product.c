@@ -83,8 +83,7 @@ static int64_t *pack(const field_matrix *matrix, size_t width, size_t steps, boo
 static void run_kernel(const idsi_kernel *kernel, const field_matrix *a, const field_matrix *b,
                        field_matrix *c)
 {
-    size_t steps =
-        (a->columns + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
+    size_t steps = (a->columns + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
     int64_t *left = pack(a, kernel->rows, steps, false);
     int64_t *right = pack(b, kernel->columns, steps, true);
 
@@ -145,8 +144,8 @@ static void try_product(const idsi_kernel *kernel, uint32_t p, const size_t size
     test_ctx_free(ctx);
 }
 
-static const size_t sizes[][3] = {{1, 1, 1},   {1, 32, 16},  {6, 32, 16},  {5, 31, 15}, {7, 33, 17},
-                                  {13, 65, 1}, {4, 8, 48},   {9, 17, 100}, {3, 70, 257}};
+static const size_t sizes[][3] = {{1, 1, 1},   {1, 32, 16}, {6, 32, 16},  {5, 31, 15}, {7, 33, 17},
+                                  {13, 65, 1}, {4, 8, 48},  {9, 17, 100}, {3, 70, 257}};
 #define SIZES (sizeof sizes / sizeof *sizes)
 
 START_TEST(test_kernels)

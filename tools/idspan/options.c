@@ -27,6 +27,7 @@ const option option_list[OPTION_END] = {
     [OPTION_SEED] = {"seed", "S",
                      "draw the primes from seed S (default 0); the same seed\n"
                      "gives the same primes on every machine"},
+    [OPTION_FIELD] = {"field", "P", "work over the field of P elements, P a prime below 2^30"},
     [OPTION_FORMAT] = {"format", "F", "text (for people, the default), csv, json or latex;\n"
                        "of draw: text, ascii, svg or tikz"},
     [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
@@ -166,6 +167,12 @@ static bool read_value(option_id id, const char *value, settings *read)
         return true;
     case OPTION_SEED:
         return read_number(id, value, 0, UINT64_MAX, &read->seed);
+    case OPTION_FIELD:
+        if (!read_number(id, value, 2, (1u << 30) - 1, &number)) {
+            return false;
+        }
+        read->field = (uint32_t)number;
+        return true;
     case OPTION_FORMAT:
         read->format_name = value; /* which there are depends on the task */
         return true;
@@ -353,6 +360,25 @@ static bool check_format(settings *read)
     return false;
 }
 
+/* Options that say different things about the same. */
+static bool check_pairs(const settings *read)
+{
+    static const option_id pairs[][2] = {{OPTION_DEGREE, OPTION_DEGREES},
+                                         {OPTION_FIELD, OPTION_EXACT},
+                                         {OPTION_FIELD, OPTION_PRIMES},
+                                         {OPTION_FIELD, OPTION_SEED}};
+
+    for (size_t i = 0; i < sizeof pairs / sizeof *pairs; i++) {
+        unsigned both = BIT(pairs[i][0]) | BIT(pairs[i][1]);
+        if ((read->seen & both) == both) {
+            complain("--%s and --%s exclude each other", option_list[pairs[i][0]].name,
+                     option_list[pairs[i][1]].name);
+            return false;
+        }
+    }
+    return true;
+}
+
 static bool check(settings *read)
 {
     const task *chosen = read->task;
@@ -378,11 +404,7 @@ static bool check(settings *read)
                  read->file, chosen->usage);
         return false;
     }
-    if ((read->seen & BIT(OPTION_DEGREE)) != 0 && (read->seen & BIT(OPTION_DEGREES)) != 0) {
-        complain("--degree and --degrees exclude each other");
-        return false;
-    }
-    return check_degrees(read) && check_format(read);
+    return check_pairs(read) && check_degrees(read) && check_format(read);
 }
 
 bool settings_read(int argc, char **argv, settings *read)

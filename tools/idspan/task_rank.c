@@ -58,10 +58,18 @@ static ids_status write_notes(session *s, const ids_rank_table *table, ids_statu
     ids_status st = IDS_OK;
     char primes[4096] = "";
 
-    if (ids_rank_table_prime_count(table) > 0) {
+    if (ids_rank_table_field(table) > 0) {
+        TRY(ids_writer_note(writer, "field", digits_of(ids_rank_table_field(table)).text));
+    } else if (ids_rank_table_prime_count(table) > 0) {
         list_primes(table, primes, sizeof primes);
         TRY(ids_writer_note(writer, "primes", primes));
         TRY(ids_writer_note(writer, "seed", digits_of(s->set->seed).text));
+    }
+    if (ids_rank_table_weakened(table)) {
+        TRY(ids_writer_note(writer, "warning",
+                            "some variable occurs in a term at least as often as the field has "
+                            "elements; the linearised identities, which are what counts here, "
+                            "can be weaker than the identities as written"));
     }
     if (stopped != IDS_OK) {
         TRY(ids_writer_note(writer, "stopped", s->failure));
@@ -98,18 +106,23 @@ static ids_status write_certainty(session *s, const ids_rank_table *table)
 static ids_status write_verdict(session *s, const ids_rank_table *table)
 {
     size_t count = ids_rank_table_count(table);
+    uint32_t field = ids_rank_table_field(table);
+    char over[32] = "";
     ids_rank_row first = {0};
     ids_rank_row row = {0};
     ids_status st = IDS_OK;
 
     TRY(ids_rank_table_row(table, 0, &first));
     TRY(ids_rank_table_row(table, count - 1, &row));
+    if (field > 0) {
+        snprintf(over, sizeof over, " over GF(%u)", (unsigned)field);
+    }
     if (count == 1) {
-        TRY(output_printf(&s->out, "\nDegree %u: a quotient of dimension %s", (unsigned)row.degree,
-                          digits_of(row.quotient).text));
+        TRY(output_printf(&s->out, "\nDegree %u%s: a quotient of dimension %s",
+                          (unsigned)row.degree, over, digits_of(row.quotient).text));
     } else {
-        TRY(output_printf(&s->out, "\nDegrees %u to %u: quotients of dimension ",
-                          (unsigned)first.degree, (unsigned)row.degree));
+        TRY(output_printf(&s->out, "\nDegrees %u to %u%s: quotients of dimension ",
+                          (unsigned)first.degree, (unsigned)row.degree, over));
         for (size_t i = 0; i < count; i++) {
             TRY(ids_rank_table_row(table, i, &row));
             TRY(output_printf(&s->out, "%s%s", i > 0 ? ", " : "", digits_of(row.quotient).text));
@@ -170,7 +183,8 @@ static ids_status run(session *s)
     ids_rank_options options = {.struct_size = sizeof options,
                                 .exact = (set->seen & BIT(OPTION_EXACT)) != 0,
                                 .primes = set->primes,
-                                .seed = set->seed};
+                                .seed = set->seed,
+                                .field = set->field};
     ids_rank_table *table = NULL;
     ids_status written = IDS_OK;
     ids_status st = ids_rank_table_create(s->ctx, s->pres, set->first_degree, set->last_degree,
@@ -186,7 +200,7 @@ static ids_status run(session *s)
 
 const task task_rank = {
     .name = "rank",
-    .usage = " --degree N | --degrees A..B [--exact] [--primes K] [--seed S]",
+    .usage = " --degree N | --degrees A..B [--exact] [--primes K] [--seed S] [--field P]",
     .summary = "count how many monomials the identities leave independent",
     .details =
         "For each degree, dimensions of spaces of multilinear polynomials: `free` without the\n"
@@ -196,14 +210,19 @@ const task task_rank = {
         "Without --exact the ranks are computed modulo a random prime. `consequences` is then a\n"
         "lower bound for the true number, and the column `certainty` bounds the probability\n"
         "that it is too small: 2^-k. With --exact the numbers are proved and it says `exact`.\n"
+        "With --field P they are the ranks over the field of P elements, of the linearised\n"
+        "identities. Linearising can weaken an identity when a variable occurs in it P times or\n"
+        "more; a note then warns of it.\n"
+        "\n"
         "When a limit is hit, or after Ctrl-C, the degrees that were finished are shown.\n"
         "\n"
         "Columns: degree,free,consequences,quotient,certainty",
     .examples = "  idspan rank pair.pres --degrees 1..6\n"
                 "  idspan rank pair.pres --degree 5 --exact\n"
-                "  idspan rank pair.pres --degrees 1..7 --primes 2 --seed 17 --format json",
+                "  idspan rank pair.pres --degrees 1..7 --primes 2 --seed 17 --format json\n"
+                "  idspan rank pair.pres --degrees 1..6 --field 3",
     .options = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) |
-               BIT(OPTION_SEED),
+               BIT(OPTION_SEED) | BIT(OPTION_FIELD),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
     .run = run,
 };

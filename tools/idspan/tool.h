@@ -34,6 +34,7 @@ typedef enum option_id {
     OPTION_EXACT,
     OPTION_PRIMES,
     OPTION_SEED,
+    OPTION_FIELD,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -72,6 +73,7 @@ typedef struct settings {
     uint64_t index;
     uint32_t primes;
     uint64_t seed;
+    uint32_t field;
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
