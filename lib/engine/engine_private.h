@@ -43,7 +43,7 @@ typedef struct idsi_level {
     double error; /* probability that random rows missed some consequence in this degree or below */
 } idsi_level;
 
-/* ---- laws (lib/engine/laws.c) ------------------------------------------------------------------- */
+/* ---- laws (lib/engine/laws.c) ---------------------------------------------------------------- */
 
 /* A product in a law: argument i is variable arg[i] when arg[i] >= 0, else node -1-arg[i]. */
 typedef struct idsi_law_node {
@@ -88,7 +88,7 @@ typedef ids_status (*idsi_degrees_fn)(void *user, const uint8_t *degree);
 ids_status idsi_degrees_each(const idsi_group *group, uint32_t total, idsi_degrees_fn fn,
                              void *user);
 
-/* ---- the tower (lib/engine/tower.c) ------------------------------------------------------------------ */
+/* ---- the tower (lib/engine/tower.c) ---------------------------------------------------------- */
 
 /* F/I mod a prime, degrees 1 .. height. */
 typedef struct idsi_tower {
@@ -116,7 +116,7 @@ ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level);
 /* The block of an operation with canonical argument degrees. */
 const idsi_block *idsi_level_block(const idsi_level *level, uint32_t op, const uint8_t *degree);
 
-/* ---- rows (lib/engine/rows.c) ------------------------------------------------------------------- */
+/* ---- rows (lib/engine/rows.c) ---------------------------------------------------------------- */
 
 /*
  * Makes every row of degree `level->degree` from the tower's lower degrees: a consequence
@@ -127,7 +127,7 @@ ids_status idsi_rows_each(const idsi_tower *tower, const idsi_level *level, idsi
 /* Number of rows that idsi_rows_each() makes. */
 ids_status idsi_rows_count(const idsi_tower *tower, const idsi_level *level, uint64_t *count);
 
-/* ---- proof over Q (lib/engine/exact.c) --------------------------------------------------------------- */
+/* ---- proof over Q (lib/engine/exact.c) ------------------------------------------------------- */
 
 /* Rational tables of the degrees that are proved so far. */
 typedef struct idsi_proof idsi_proof;

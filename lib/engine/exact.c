@@ -71,7 +71,7 @@ void idsi_proof_free(idsi_proof *proof)
     idsi_free(proof->ctx, proof);
 }
 
-/* ---- checking --------------------------------------------------------------------------------- */
+/* ---- checking -------------------------------------------------------------------------------- */
 
 /* Products below the root, at most, in a term of a law that reaches the degree. */
 static uint32_t products_below_root(const idsi_law *law)
@@ -255,7 +255,7 @@ done:
     return st;
 }
 
-/* ---- one degree ------------------------------------------------------------------------------- */
+/* ---- one degree ------------------------------------------------------------------------------ */
 
 /* One more tower to lift from, grown to the model's height. */
 static ids_status add_tower(idsi_proof *proof, const idsi_tower *model, idsi_random *random)

@@ -28,7 +28,7 @@ void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, si
 /* Name of the kernel that this processor gets: "avx512", "avx2" or "portable". */
 const char *idsi_dense_kernel_name(void);
 
-/* ---- echelon form (lib/field/dense.c) ------------------------------------------------------------- */
+/* ---- echelon form (lib/field/dense.c) -------------------------------------------------------- */
 
 /*
  * Echelon form of rows that come in blocks. The pivot of a row is its largest column. Every

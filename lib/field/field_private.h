@@ -35,7 +35,7 @@ uint32_t idsi_mod_inverse(uint32_t a, uint32_t p);
 /* Residue of a rational number; false when p divides the denominator. */
 bool idsi_mod_rational(mpq_srcptr number, uint32_t p, uint32_t *residue);
 
-/* ---- primes --------------------------------------------------------------------------------------- */
+/* ---- primes ---------------------------------------------------------------------------------- */
 
 /* A prime drawn uniformly from (2^29, 2^30), none of those in known[0..count-1]. */
 uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t count);
@@ -48,7 +48,7 @@ bool idsi_is_prime(uint32_t n);
  */
 uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes);
 
-/* ---- sparse echelon form (lib/field/sparse.c) -------------------------------------------------------- */
+/* ---- sparse echelon form (lib/field/sparse.c) ------------------------------------------------ */
 
 typedef struct idsi_entry {
     uint32_t column;
@@ -110,7 +110,7 @@ void idsi_lanes_load(idsi_lanes *lanes, uint32_t lane, const idsi_entry *row, si
 void idsi_lanes_rewrite(idsi_lanes *lanes, const idsi_echelon *echelon, const uint32_t *place,
                         uint32_t *out, size_t stride);
 
-/* ---- elimination (lib/field/eliminate.c) ----------------------------------------------------------------- */
+/* ---- elimination (lib/field/eliminate.c) ----------------------------------------------------- */
 
 /* Receives one row: entries in any order, columns may repeat. */
 typedef ids_status (*idsi_row_fn)(void *user, const idsi_entry *row, size_t count);
@@ -140,7 +140,7 @@ typedef struct idsi_result {
 /* Rank, and with tables the echelon form, of a matrix whose rows are streamed. */
 ids_status idsi_eliminate(const idsi_matrix *matrix, idsi_random *random, idsi_result *result);
 
-/* ---- border: FLINT (lib/field/flint_border.c) ----------------------------------------------------------- */
+/* ---- border: FLINT (lib/field/flint_border.c) ------------------------------------------------ */
 
 /* Deterministic primality of a 64-bit number. */
 bool idsi_border_is_prime(uint64_t n);

@@ -57,7 +57,7 @@ void idsi_group_clear(ids_ctx *ctx, idsi_group *group);
 int idsi_group_canonical(const idsi_group *group, const uint64_t *key, const uint64_t *label,
                          uint8_t *image);
 
-/* ---- signature --------------------------------------------------------------------------------- */
+/* ---- signature ------------------------------------------------------------------------------- */
 
 typedef struct idsi_op {
     ids_notation notation;
@@ -75,7 +75,7 @@ struct ids_signature {
     idsi_op *ops;
 };
 
-/* ---- trees ----------------------------------------------------------------------------------------- */
+/* ---- trees ----------------------------------------------------------------------------------- */
 
 /* Number of tokens of the subtree that starts at `tree`. */
 size_t idsi_tree_length(const ids_signature *sig, const idsi_token *tree);
@@ -150,7 +150,7 @@ bool idsi_split_is_canonical(const idsi_split *split, const uint64_t *sets);
 uint64_t idsi_subset_rank(uint64_t pool, uint64_t subset);
 uint64_t idsi_subset_unrank(uint64_t pool, uint32_t size, uint64_t rank);
 
-/* ---- association types ------------------------------------------------------------------------------------ */
+/* ---- association types ----------------------------------------------------------------------- */
 
 typedef struct idsi_type {
     uint32_t op;          /* UINT32_MAX for the leaf */
