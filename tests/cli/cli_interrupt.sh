@@ -34,8 +34,8 @@ if command -v python3 >/dev/null; then
 fi
 interrupt TERM basis commutative.pres --degree 12 --format csv --output /dev/null
 
-# A terminal, if there is a program that makes one.
-if command -v script >/dev/null; then
+# A terminal, if there is a program that makes one, and the system has one to give.
+if command -v script >/dev/null && script -q -c true /dev/null </dev/null >/dev/null 2>&1; then
     last="idspan basis on a terminal"
     timeout 30 script -q -e -c \
         "timeout -s TERM 3 '$tool' basis commutative.pres --degree 12 --format csv >/dev/null" \
