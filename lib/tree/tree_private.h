@@ -115,7 +115,7 @@ ids_status idsi_tree_print(const ids_signature *sig, const idsi_token *tree,
  * label 0 gives the letter for a leaf without label. At most 15 bytes and the NUL. */
 void idsi_label_name(const ids_signature *sig, uint32_t label, char name[16]);
 
-/* ---- label distributions -------------------------------------------------------------------------------
+/* ---- label distributions ------------------------------------------------------------------------
  * How a set of labels is dealt to the arguments of a node, with the symmetries divided out
  * (lib/tree/split.c). Argument i takes size[i] labels. parent[i] < i says that argument i is
  * one of those that a symmetry can bring to place parent[i], so that argument parent[i] must
