@@ -282,7 +282,7 @@ done:
     return st;
 }
 
-/* All choices of generators for the arguments from `place` on; `tied[i]` bounds by an earlier one. */
+/* All choices of generators for the arguments from `place` on; `tied[i]` bounds by an earlier. */
 static ids_status choose_generators(maker *m, uint32_t place, const int8_t *tied)
 {
     ids_status st = IDS_OK;

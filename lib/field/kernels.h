@@ -5,8 +5,8 @@
  * A kernel multiplies packed operands: A in strips of `rows` rows, B in strips of `columns`
  * columns, both step by step of k, entries centred (|entry| <= (p-1)/2 < 2^29) in 64 bits. So a
  * product is below 2^58, and a sum is brought back by 4 p^2 after every 16 of them: with
- * |sum| <= 4 p^2 before, |sum| < 4 p^2 + 16 ((p-1)/2)^2 < 8 p^2 < 2^63 after 16 steps, and adding or
- * subtracting 4 p^2, whichever is towards zero, leaves |sum| <= 4 p^2.
+ * |sum| <= 4 p^2 before, |sum| < 4 p^2 + 16 ((p-1)/2)^2 < 8 p^2 < 2^63 after 16 steps, and adding
+ * or subtracting 4 p^2, whichever is towards zero, leaves |sum| <= 4 p^2.
  */
 #ifndef IDSI_KERNELS_H
 #define IDSI_KERNELS_H

@@ -86,7 +86,7 @@ uint32_t idsi_tree_degree(const ids_signature *sig, const idsi_token *tree);
  * from left to right. < 0, 0, > 0; labels do not count.
  */
 int idsi_tree_compare_shape(const ids_signature *sig, const idsi_token *a, const idsi_token *b);
-/* Total order of labelled trees: larger shape first, then least label, then labels left to right. */
+/* Total order of labelled trees: larger shape first, then least label, then labels in turn. */
 int idsi_tree_compare(const ids_signature *sig, const idsi_token *a, const idsi_token *b);
 /*
  * Makes a tree canonical in place (labels may repeat); returns the sign, 0 when the tree is zero.
@@ -139,7 +139,7 @@ void idsi_split_prepare(idsi_split *split);
 void idsi_split_for_group(const idsi_group *group, const uint64_t *key, const uint8_t *size,
                           idsi_split *split);
 /*
- * Rank of the distribution sets[0..count-1] of the label set `all` (bit l-1 = label l): 0 .. ways-1.
+ * Rank of the distribution sets[0..count-1] of the label set `all` (bit l-1: label l), 0 .. ways-1.
  * The order is lexicographic, argument by argument: first the labels of the argument's whole
  * family, then its own. The sets must be canonical (see idsi_split_is_canonical).
  */

@@ -26,7 +26,7 @@ typedef struct ref_mono {
     char s[REF_MONO];
 } ref_mono;
 
-/* One element of a symmetry group: op(a[0], a[1], ...) = sign * op(a[image[0]], a[image[1]], ...) */
+/* Element of a symmetry group: op(a[0], a[1], ...) = sign * op(a[image[0]], a[image[1]], ...) */
 typedef struct ref_order {
     int image[REF_ARITY];
     int sign;
