@@ -7,6 +7,7 @@
 #define IDSPAN_ANSWER_H
 
 #include <idspan/identity.h>
+#include <idspan/young.h>
 
 #ifdef __cplusplus
 extern "C" {
@@ -108,6 +109,81 @@ IDS_API uint32_t ids_rank_table_field(const ids_rank_table *table);
  * False over the rational numbers and for NULL. Since: 0.1
  */
 IDS_API bool ids_rank_table_weakened(const ids_rank_table *table);
+
+/** Options of ids_partition_table_create(); set struct_size, the rest to 0 for the defaults. */
+typedef struct ids_partition_options {
+    size_t struct_size;             /**< sizeof(ids_partition_options) */
+    uint32_t primes;                /**< number of random primes to try; 0: one */
+    uint64_t seed;                  /**< seed that the primes are drawn from */
+    const ids_partition *partition; /**< only this partition, of degree from = to; NULL: all */
+    bool cross_check;               /**< compute every degree by the monomial engine too */
+} ids_partition_options;
+
+/** A finished rank table by partition. Immutable, shareable. */
+typedef struct ids_partition_table ids_partition_table;
+
+/** One row: how often the irreducible module of a partition occurs; or the total of a degree. */
+typedef struct ids_partition_row {
+    uint32_t degree;         /**< n */
+    bool total;              /**< the total: `partition` and `dimension` are empty, the others are
+                                  dimensions, sums of multiplicity times dimension */
+    ids_partition partition; /**< of n */
+    uint64_t dimension;      /**< of its irreducible module */
+    uint64_t free;           /**< multiplicity in F(n) */
+    uint64_t consequences;   /**< multiplicity in I(n) */
+    uint64_t quotient;       /**< multiplicity in F(n)/I(n) = free - consequences */
+    ids_certainty certainty; /**< what the numbers claim; those of `free` are exact */
+    uint32_t bits;           /**< for MODULAR: error probability at most 2^-bits; else 0 */
+} ids_partition_row;
+
+/**
+ * Ranks of the identities of a presentation by partition, in degrees from .. to, by the partition
+ * engine; for each degree one row a partition, in the order of ids_partition_rank(), then a total.
+ *
+ * `free` comes from characters and is exact. The multiplicities in the quotient are computed mod
+ * `primes` primes p between 2^29 and 2^30 and never too small; one is too large only if every p
+ * divides a certain nonzero integer M. Let e be the Young symmetriser of the partition, R and C
+ * the orders of its row and column groups. The multiplicity in I(n) is the rank of the vectors
+ * e z, z a consequence, in the monomials of degree n; it is at most `free`, and such a vector has
+ * Euclidean norm at most R C 2^b, b as in ids_rank_table_create(). So M has at most
+ * free * (log2(R C) + b) bits, which bounds the probability as there; what random test vectors
+ * can miss, at most 2/p^2 for every block of them, is added.
+ *
+ * @param ctx           borrowed now, kept.
+ * @param presentation  borrowed.
+ * @param from, to      1 <= from <= to <= 16. Lower degrees are computed as needed.
+ * @param options       borrowed; NULL for the defaults.
+ * @param table         out, owned: ids_partition_table_free(). On IDS_ERR_LIMIT and
+ *                      IDS_ERR_CANCELLED it holds the degrees that were finished with the first
+ *                      prime (maybe none) and must be freed too.
+ * @return IDS_OK; IDS_ERR_ARG (NULL, degrees, struct_size, a partition of another degree);
+ *         IDS_ERR_NOMEM; IDS_ERR_LIMIT (the message says how many unknowns a partition has, what
+ *         they need and what the budget is); IDS_ERR_CANCELLED; IDS_ERR_INTERNAL (the cross-check
+ *         failed: the message gives both numbers)
+ * Cost: see DEVELOPERS.md, "Partition engine". Threads: up to the context's number; results do not
+ * depend on it. Source: Young's seminormal form; equivariant maps to skew Specht modules. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_partition_table_create(ids_ctx *ctx,
+                                                           const ids_presentation *presentation,
+                                                           uint32_t from, uint32_t to,
+                                                           const ids_partition_options *options,
+                                                           ids_partition_table **table);
+
+/** Frees a table; NULL is fine. Since: 0.1 */
+IDS_API void ids_partition_table_free(ids_partition_table *table);
+
+/** Number of rows; 0 for NULL. Since: 0.1 */
+IDS_API size_t ids_partition_table_count(const ids_partition_table *table);
+
+/** Copies row `index`. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+IDS_API IDS_MUST_USE ids_status ids_partition_table_row(const ids_partition_table *table,
+                                                        size_t index, ids_partition_row *row);
+
+/** Number of primes that were used. Since: 0.1 */
+IDS_API size_t ids_partition_table_prime_count(const ids_partition_table *table);
+
+/** The index-th prime that was used; 0 when out of range. Since: 0.1 */
+IDS_API uint64_t ids_partition_table_prime(const ids_partition_table *table, size_t index);
 
 #ifdef __cplusplus
 }

@@ -80,6 +80,8 @@ ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_law
 void idsi_laws_free(idsi_laws *laws);
 /* Whether some law says x = 0. */
 bool idsi_laws_trivial(const idsi_laws *laws);
+/* Largest norm_bits of the laws that reach a degree; negative when none does. */
+double idsi_laws_norm_bits(const idsi_laws *laws, uint32_t degree);
 
 /* ---- argument degrees (lib/engine/degrees.c) ------------------------------------------------- */
 

@@ -192,3 +192,14 @@ bool idsi_laws_trivial(const idsi_laws *laws)
     }
     return false;
 }
+
+double idsi_laws_norm_bits(const idsi_laws *laws, uint32_t degree)
+{
+    double bits = -1;
+    for (size_t i = 0; i < laws->count; i++) {
+        if (laws->law[i].degree <= degree) {
+            bits = fmax(bits, laws->law[i].norm_bits);
+        }
+    }
+    return bits;
+}

@@ -39,6 +39,7 @@ typedef struct solver {
     bool independent[BATCH];
     uint32_t *width; /* of each equation's next block; 0: it is used up */
     size_t left;     /* equations that are not */
+    const atomic_bool *stop; /* set when another thread failed */
     uint64_t blocks;
 } solver;
 
@@ -165,9 +166,10 @@ static ids_status use_equations(solver *v)
     }
     while (v->left > 0) {
         for (uint32_t i = 0; i < degree->equation_count; i++) {
-            if (idsi_dense_echelon_rank(v->echelon) == unknowns) {
+            if (idsi_dense_echelon_rank(v->echelon) == unknowns || atomic_load(v->stop)) {
                 return IDS_OK;
             }
+            IDSI_TRY(idsi_poll(engine->ctx, NULL));
             if (v->width[i] > 0) {
                 if (v->row_count + v->width[i] > BATCH) {
                     IDSI_TRY(flush_batch(v));
@@ -237,13 +239,35 @@ static uint64_t shape_seed(const idsi_partition_engine *engine, uint32_t shape)
     return seed;
 }
 
+/* Memory for one shape: the echelon form at its largest, and the blocks. */
+static ids_status check_budget(const idsi_partition_engine *engine, uint32_t shape)
+{
+    uint64_t unknowns = engine->spaces[shape].unknowns;
+    uint64_t tableaux = engine->skews.list[shape]->count;
+    ids_memory memory = ids_ctx_memory(engine->ctx);
+    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + 2 * BATCH * (unknowns + tableaux));
+    uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
+
+    if (memory.budget == 0 || need <= left) {
+        return IDS_OK;
+    }
+    return idsi_fail(engine->ctx, IDS_ERR_LIMIT,
+                     "a partition of degree %u with %llu tableaux has %llu unknowns; they need up "
+                     "to %llu bytes, %llu of the budget of %llu bytes are left",
+                     (unsigned)engine->skews.list[shape]->shape.cells,
+                     (unsigned long long)tableaux, (unsigned long long)unknowns,
+                     (unsigned long long)need, (unsigned long long)left,
+                     (unsigned long long)memory.budget);
+}
+
 /* Solves a shape; without `basis` only its dimension is wanted. */
-static ids_status solve_shape(idsi_scratch *scratch, uint32_t shape, bool basis, uint64_t *blocks)
+static ids_status solve_shape(idsi_scratch *scratch, uint32_t shape, bool basis,
+                              const atomic_bool *stop, uint64_t *blocks)
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = scratch->engine;
     idsi_space *space = &engine->spaces[shape];
-    solver v = {.s = scratch, .engine = engine, .shape = shape};
+    solver v = {.s = scratch, .engine = engine, .shape = shape, .stop = stop};
     size_t tableaux = engine->skews.list[shape]->count;
 
     if (space->solved) {
@@ -257,6 +281,7 @@ static ids_status solve_shape(idsi_scratch *scratch, uint32_t shape, bool basis,
     IDSI_TRY(idsi_plan_unknowns(engine, shape));
     if (space->unknowns > 0) {
         ids_ctx *ctx = scratch->ctx;
+        IDSI_TRY(check_budget(engine, shape));
         size_t equations = engine->degree[engine->skews.list[shape]->shape.cells].equation_count;
         idsi_random_seed(&v.random, shape_seed(engine, shape));
         IDSI_TRY(idsi_dense_echelon_create(ctx, engine->prime, space->unknowns, &v.echelon));
@@ -273,7 +298,7 @@ static ids_status solve_shape(idsi_scratch *scratch, uint32_t shape, bool basis,
         }
         *blocks += v.blocks;
     }
-    space->solved = true;
+    space->solved = !atomic_load(stop);
 done:
     clear_solver(&v);
     return st;
@@ -486,8 +511,12 @@ static uint32_t largest_argument(const idsi_partition_engine *engine, uint32_t d
 /* Shapes of a degree, taken by threads one by one. */
 typedef struct crew {
     idsi_partition_engine *engine;
-    const uint32_t *shapes;
+    uint32_t degree;
+    uint32_t *shapes; /* largest first */
     size_t count;
+    bool basis; /* solutions are wanted, not only their number */
+    double cost;
+    _Atomic double cost_done;
     atomic_size_t next;
     atomic_uint_least64_t blocks;
     atomic_bool stop;
@@ -499,6 +528,31 @@ typedef struct worker {
     ids_status st;
 } worker;
 
+/* The elimination, which is most of the work, grows with the cube of the number of tableaux. */
+static double shape_cost(const idsi_partition_engine *engine, uint32_t shape)
+{
+    double tableaux = engine->skews.list[shape]->count;
+    return tableaux * tableaux * tableaux;
+}
+
+static void add_cost(crew *c, double cost)
+{
+    double done = atomic_load(&c->cost_done);
+    while (!atomic_compare_exchange_weak(&c->cost_done, &done, done + cost)) {
+    }
+}
+
+static ids_status report_crew(crew *c)
+{
+    ids_progress progress = {.stage = "partitions",
+                             .degree = c->degree,
+                             .done = atomic_load(&c->next),
+                             .total = c->count,
+                             .share = atomic_load(&c->cost_done) / c->cost};
+    progress.done = progress.done < progress.total ? progress.done : progress.total;
+    return idsi_poll(c->engine->ctx, &progress);
+}
+
 static void work(worker *w, bool first)
 {
     crew *c = w->crew;
@@ -508,11 +562,11 @@ static void work(worker *w, bool first)
         if (k >= c->count) {
             return;
         }
-        w->st = solve_shape(&w->scratch, c->shapes[k], true, &blocks);
+        w->st = solve_shape(&w->scratch, c->shapes[k], c->basis, &c->stop, &blocks);
         atomic_fetch_add(&c->blocks, blocks);
+        add_cost(c, shape_cost(c->engine, c->shapes[k]));
         if (w->st == IDS_OK && first) {
-            ids_progress progress = {.stage = "shapes", .done = k, .total = c->count};
-            w->st = idsi_poll(c->engine->ctx, &progress);
+            w->st = report_crew(c);
         }
     }
     if (w->st != IDS_OK) {
@@ -594,19 +648,50 @@ done:
     return st;
 }
 
-ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree)
+/* Largest shapes first, so that the threads end together; shapes of equal size stay in order. */
+static void sort_shapes(const idsi_partition_engine *engine, uint32_t *shapes, size_t count)
+{
+    for (size_t i = 1; i < count; i++) {
+        uint32_t shape = shapes[i];
+        size_t at = i;
+        while (at > 0 &&
+               engine->skews.list[shapes[at - 1]]->count < engine->skews.list[shape]->count) {
+            shapes[at] = shapes[at - 1];
+            at--;
+        }
+        shapes[at] = shape;
+    }
+}
+
+static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, uint32_t *shapes,
+                               size_t count)
+{
+    ids_status st = IDS_OK;
+    crew hands = {.engine = engine,
+                  .degree = degree,
+                  .shapes = shapes,
+                  .count = count,
+                  .basis = degree < engine->top};
+
+    IDSI_TRY(make_equations(engine, degree));
+    sort_shapes(engine, shapes, count);
+    for (size_t k = 0; k < count; k++) {
+        hands.cost += shape_cost(engine, shapes[k]);
+    }
+    st = run_crew(&hands);
+    note_error(engine, atomic_load(&hands.blocks));
+done:
+    return st;
+}
+
+ids_status idsi_partition_solve(idsi_partition_engine *engine, uint32_t degree)
 {
     ids_status st = IDS_OK;
 
-    for (uint32_t d = 1; d < degree; d++) {
-        crew hands = {.engine = engine,
-                      .shapes = engine->degree[d].shapes,
-                      .count = engine->degree[d].shape_count};
-        IDSI_TRY(make_equations(engine, d));
-        IDSI_TRY(run_crew(&hands));
-        note_error(engine, atomic_load(&hands.blocks));
+    for (uint32_t d = engine->solved + 1; d <= degree; d++) {
+        IDSI_TRY(solve_shapes(engine, d, engine->degree[d].shapes, engine->degree[d].shape_count));
+        engine->solved = d;
     }
-    IDSI_TRY(make_equations(engine, degree));
 done:
     return st;
 }
@@ -616,25 +701,23 @@ ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint
 {
     ids_status st = IDS_OK;
     static const uint8_t empty[IDSI_SHAPE_MAX] = {0};
-    idsi_scratch scratch = {.ctx = engine->ctx, .engine = engine};
     uint32_t shape = 0;
-    uint64_t blocks = 0;
-    size_t known = engine->skews.count;
+    uint32_t degree = 0;
 
+    for (uint32_t i = 0; i < rows; i++) {
+        degree += parts[i];
+    }
+    IDSI_TRY(idsi_partition_solve(engine, degree - 1));
     IDSI_TRY(idsi_skews_get(&engine->skews, parts, empty, rows, &shape));
-    if (shape >= known) {
-        *multiplicity = 0; /* no monomial of this degree */
+    if (shape >= engine->space_count) {
+        *multiplicity = 0; /* there is no monomial of this degree */
         return IDS_OK;
     }
-    IDSI_TRY(idsi_workspace_init(&scratch.work, engine->ctx));
-    uint32_t degree = engine->skews.list[shape]->shape.cells;
-    IDSI_TRY(solve_shape(&scratch, shape, degree < engine->top, &blocks));
-    note_error(engine, blocks);
+    if (!engine->spaces[shape].solved) {
+        IDSI_TRY(solve_shapes(engine, degree, &shape, 1));
+    }
     *multiplicity = engine->spaces[shape].dimension;
 done:
-    if (scratch.work.ctx != NULL) {
-        idsi_workspace_clear(&scratch.work);
-    }
     return st;
 }
 
@@ -681,7 +764,7 @@ void idsi_partition_free(idsi_partition_engine *engine)
     for (size_t i = 0; i < engine->value_slots; i++) {
         idsi_free(ctx, engine->values[i].matrix);
     }
-    for (size_t i = 0; engine->spaces != NULL && i < engine->skews.count; i++) {
+    for (size_t i = 0; i < engine->space_count; i++) {
         idsi_free(ctx, engine->spaces[i].solution);
         idsi_free(ctx, engine->spaces[i].offset);
     }

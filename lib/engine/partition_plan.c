@@ -156,6 +156,7 @@ ids_status idsi_plan_shapes(idsi_partition_engine *engine)
     }
     IDSI_TRY(idsi_alloc_array(engine->ctx, engine->skews.count, sizeof *engine->spaces,
                               &engine->spaces));
+    engine->space_count = engine->skews.count;
 done:
     idsi_free(engine->ctx, plan.planned);
     return st;

@@ -94,11 +94,13 @@ typedef struct idsi_partition_engine {
     const idsi_laws *laws;
     const ids_signature *sig;
     uint32_t prime;
-    uint32_t top; /* largest degree */
+    uint32_t top;    /* largest degree */
+    uint32_t solved; /* degrees of which all shapes are solved */
     idsi_random random;
     uint32_t inverse[2 * IDSI_SHAPE_MAX + 1];
     idsi_skews skews;
-    idsi_space *spaces; /* one a shape, after planning */
+    size_t space_count;
+    idsi_space *spaces; /* one a shape that was known when planning ended */
     idsi_degree degree[IDSI_SHAPE_MAX + 1];
     size_t expr_count;
     size_t expr_capacity;
@@ -116,9 +118,9 @@ typedef struct idsi_partition_engine {
 ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t prime, uint32_t top,
                                  idsi_partition_engine **engine);
 void idsi_partition_free(idsi_partition_engine *engine);
-/* Solves everything below `degree`, so that the shapes of that degree are independent. */
-ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree);
-/* Multiplicity of a partition of `degree` in F/I. */
+/* Solves all shapes of the degrees up to `degree`, with the context's threads. */
+ids_status idsi_partition_solve(idsi_partition_engine *engine, uint32_t degree);
+/* Multiplicity of a partition in F/I; solves the lower degrees and this shape when needed. */
 ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint8_t *parts,
                                        uint32_t rows, uint32_t *multiplicity);
 

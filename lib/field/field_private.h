@@ -41,11 +41,14 @@ bool idsi_mod_rational(mpq_srcptr number, uint32_t p, uint32_t *residue);
 uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t count);
 bool idsi_is_prime(uint32_t n);
 /*
- * The k of an error probability 2^-k: of the primes in (2^29, 2^30), at most minor_bits / 29
+ * Error probability, and the k of 2^-k for it: of the primes in (2^29, 2^30), at most minor_bits / 29
  * divide one nonzero integer of minor_bits bits, so a random one does with probability at most
  * that over IDSI_PRIME_COUNT; random_error is added for what random rows can miss with each prime;
  * `primes` independent draws multiply. 0 when the bound is void.
  */
+double idsi_prime_error(double minor_bits, double random_error, uint32_t primes);
+/* The k of 2^-k >= error; 0 when the error is no bound, 1000 for no error. */
+uint32_t idsi_error_bits(double error);
 uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes);
 
 /* ---- sparse echelon form (lib/field/sparse.c) ------------------------------------------------ */

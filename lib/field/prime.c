@@ -81,10 +81,20 @@ uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t coun
     }
 }
 
-uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes)
+double idsi_prime_error(double minor_bits, double random_error, uint32_t primes)
 {
     double bad = fmax(1.0, ceil(minor_bits / 29.0));
     double error = bad / (double)(IDSI_PRIME_COUNT - primes) + random_error;
-    double bits = floor(-log2(error) * primes);
+    return pow(fmin(1.0, error), primes);
+}
+
+uint32_t idsi_error_bits(double error)
+{
+    double bits = error > 0 ? floor(-log2(error)) : 1000.0;
     return bits > 0 ? (uint32_t)bits : 0;
+}
+
+uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes)
+{
+    return idsi_error_bits(idsi_prime_error(minor_bits, random_error, primes));
 }
