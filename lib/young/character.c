@@ -9,8 +9,8 @@
  * gives the values of all characters there.
  *
  * A strip is a bead that moves up by k places (young_private.h): one of those for the parts, or
- * one of the k beads for parts 0 that come below them, since a strip adds at most k rows. The latter
- * are tried one by one, the lowest each time, so that no bead passes place m + k <= 40 of a word.
+ * one of the k beads for parts 0 below them, since a strip adds at most k rows. The latter are
+ * tried one by one, the lowest each time, so that no bead passes place m + k <= 40 of a word.
  *
  * Sums are taken modulo 2^64. The values fit, so what they pass through does not matter.
  */

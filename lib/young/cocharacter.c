@@ -213,6 +213,7 @@ static ids_status fill(idsi_plethysm *plethysm, expansion *e, ids_cocharacter *m
         IDSI_TRY(store(e, made->multiplicity + made->first[n]));
     }
 done:
+    e->progress = NULL; /* it was on the stack of the loop */
     return st;
 }
 

@@ -143,8 +143,10 @@ ids_status idsi_cycle_sum_create(ids_ctx *ctx, const ids_signature *sig, idsi_cy
     IDSI_TRY(find_product(ctx, sum, IDSI_NO_PRODUCT, 1, &sum->single[1]));
     for (size_t i = 0; i < sig->count; i++) {
         const uint64_t order = sig->ops[i].group.order;
+        const uint64_t common = gcd(sum->divisor, order);
 
-        sum->divisor = sum->divisor / gcd(sum->divisor, order) * order;
+        IDSI_ASSERT(common > 0);
+        sum->divisor = sum->divisor / common * order;
     }
     for (size_t i = 0; i < sig->count; i++) {
         IDSI_TRY(add_operation(ctx, sum, &sig->ops[i].group));

@@ -68,8 +68,8 @@ typedef struct idsi_strips {
     uint32_t *entry;
 } idsi_strips;
 
-/* max_degree <= IDS_MAX_PARTITION_DEGREE. Cost: in proportion to the memory, 6 MB for degree 32 and 34 MB for
- * degree 40. */
+/* max_degree <= IDS_MAX_PARTITION_DEGREE. Memory: 6 MB for degree 32, 34 MB for degree 40; the cost
+ * is in proportion to it. */
 ids_status idsi_strips_create(ids_ctx *ctx, uint32_t max_degree, idsi_strips *strips);
 void idsi_strips_clear(idsi_strips *strips); /* all zeros is fine */
 
