@@ -183,6 +183,9 @@ IDS_API ids_memory ids_ctx_memory(const ids_ctx *ctx);
  */
 IDS_API void ids_ctx_set_threads(ids_ctx *ctx, uint32_t threads);
 
+/** Receives output; returns 0, or non-zero to stop with IDS_ERR_IO. `bytes` is borrowed. */
+typedef int (*ids_sink_fn)(void *user, const char *bytes, size_t length);
+
 /**
  * Frees a string that the library handed out as owned.
  *

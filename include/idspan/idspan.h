@@ -9,6 +9,7 @@
 #include <idspan/answer.h>
 #include <idspan/core.h>
 #include <idspan/draw.h>
+#include <idspan/engine.h>
 #include <idspan/identity.h>
 #include <idspan/render.h>
 #include <idspan/tree.h>

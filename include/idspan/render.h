@@ -35,9 +35,6 @@ typedef struct ids_column {
     uint32_t width;       /**< least width in text format, in characters; 0: as wide as needed */
 } ids_column;
 
-/** Receives output; returns 0, or non-zero to stop with IDS_ERR_IO. `bytes` is borrowed. */
-typedef int (*ids_sink_fn)(void *user, const char *bytes, size_t length);
-
 /** A table that is being written. */
 typedef struct ids_writer ids_writer;
 

@@ -86,22 +86,10 @@ typedef struct job {
     ids_rank_table *table;
 } job;
 
-/* Largest norm of the laws that reach a degree, in bits; negative when none does. */
-static double law_bits(const idsi_laws *laws, uint32_t degree)
-{
-    double bits = -1;
-    for (size_t i = 0; i < laws->count; i++) {
-        if (laws->law[i].degree <= degree) {
-            bits = fmax(bits, laws->law[i].norm_bits);
-        }
-    }
-    return bits;
-}
-
 static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
 {
     const idsi_level *level = &j->towers[0].level[degree];
-    double bits = law_bits(j->laws, degree);
+    double bits = idsi_laws_norm_bits(j->laws, degree);
     bool proved = false;
 
     *row = (ids_rank_row){.degree = degree, .free = level->free, .quotient = level->dimension};
@@ -201,10 +189,9 @@ static ids_status check_options(ids_ctx *ctx, const ids_rank_options *options)
     if (options->field == 0) {
         return IDS_OK;
     }
-    if (options->field >= IDSI_PRIME_HIGH || !idsi_is_prime(options->field)) {
-        return idsi_fail(ctx, IDS_ERR_ARG,
-                         "%u elements: a field has a prime number of elements here, below 2^30",
-                         options->field);
+    ids_status st = idsi_prime_check(ctx, options->field);
+    if (st != IDS_OK) {
+        return st;
     }
     if (options->exact || options->primes > 1) {
         return idsi_fail(ctx, IDS_ERR_ARG,

@@ -71,6 +71,11 @@ void idsi_proof_free(idsi_proof *proof)
     idsi_free(proof->ctx, proof);
 }
 
+const idsi_lifted *idsi_proof_table(const idsi_proof *proof, uint32_t degree)
+{
+    return &proof->table[degree];
+}
+
 /* ---- checking -------------------------------------------------------------------------------- */
 
 /* Products below the root, at most, in a term of a law that reaches the degree. */

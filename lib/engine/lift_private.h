@@ -35,5 +35,7 @@ void idsi_lifted_clear(ids_ctx *ctx, idsi_lifted *table);
  */
 ids_status idsi_lift_table(ids_ctx *ctx, const idsi_lift_sources *src, idsi_lifted *table,
                            mpz_ptr denominator, bool *ok);
+/* (exact.c) The proved table of a degree; start is NULL where no column or normal form is. */
+const idsi_lifted *idsi_proof_table(const idsi_proof *proof, uint32_t degree);
 
 #endif

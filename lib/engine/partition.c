@@ -124,6 +124,7 @@ static ids_status use_equation(solver *v, uint32_t number)
     const idsi_equation *equation =
         &engine->degree[engine->skews.list[v->shape]->shape.cells].equations[number];
     uint32_t width = v->width[number];
+    const idsi_term *applied = NULL; /* whose word `moved` has */
 
     for (size_t i = 0; i < (size_t)tableaux * width; i++) {
         v->start[i] = idsi_random_residue(&v->random, engine->prime);
@@ -134,8 +135,9 @@ static ids_status use_equation(solver *v, uint32_t number)
         if (form == UINT32_MAX || space->offset[form] == space->offset[form + 1]) {
             continue;
         }
-        if (t == 0 || !same_word(term, term - 1)) {
+        if (applied == NULL || !same_word(term, applied)) {
             apply_word(v, term, width);
+            applied = term;
         }
         IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, v->moved, width, v->product));
         add_product(v, term->coefficient, space->offset[form], space->offset[form + 1], width);

@@ -40,6 +40,8 @@ bool idsi_mod_rational(mpq_srcptr number, uint32_t p, uint32_t *residue);
 /* A prime drawn uniformly from (2^29, 2^30), none of those in known[0..count-1]. */
 uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t count);
 bool idsi_is_prime(uint32_t n);
+/* IDS_ERR_ARG with a message unless p is a prime below 2^30. */
+ids_status idsi_prime_check(ids_ctx *ctx, uint32_t p);
 /*
  * Error probability, and the k of 2^-k for it: of the primes in (2^29, 2^30), at most minor_bits / 29
  * divide one nonzero integer of minor_bits bits, so a random one does with probability at most

@@ -60,6 +60,15 @@ bool idsi_is_prime(uint32_t n)
     return idsi_border_is_prime(n);
 }
 
+ids_status idsi_prime_check(ids_ctx *ctx, uint32_t p)
+{
+    if (p >= IDSI_PRIME_HIGH || !idsi_is_prime(p)) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "%u elements: a field has a prime number of elements here, below 2^30", p);
+    }
+    return IDS_OK;
+}
+
 static bool is_known(uint32_t prime, const uint32_t *known, size_t count)
 {
     for (size_t i = 0; i < count; i++) {
