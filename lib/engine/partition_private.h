@@ -14,6 +14,7 @@
 #define IDSI_PARTITION_PRIVATE_H
 
 #include <pthread.h>
+#include <stdatomic.h>
 
 #include "../field/dense_private.h"
 #include "../young/skew_private.h"
@@ -157,5 +158,16 @@ ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t
 /* Values of M(shape)'s basis on an expression: out (dimension x width, overwritten). */
 ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
                                 const uint32_t *block, size_t width, uint32_t *out);
+
+/* ---- partition_solve.c, partition_generators.c ------------------------------------------------- */
+
+/*
+ * Solves a shape whose pieces are solved; without `basis` only its dimension is wanted. Adds the
+ * number of blocks of random covectors to *blocks. Leaves the shape unsolved when *stop is set.
+ */
+ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
+                            const atomic_bool *stop, uint64_t *blocks);
+/* Chooses the generators of a degree; its partitions and the lower degrees' generators are known. */
+ids_status idsi_generators_choose(idsi_scratch *scratch, uint32_t degree);
 
 #endif

@@ -1,0 +1,301 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Solving one shape of the partition engine.
+ *
+ * Every equation of the shape's degree says that an element z of the free algebra is sent to zero,
+ * which is one linear equation for every covector r on the Specht module; they are taken with
+ * random covectors, a block at a time, in turn, and eliminated in batches. When a block of B
+ * covectors adds B-2 or fewer independent equations, z is used up: if z still had something to add,
+ * so low a yield would have probability at most 2/p^2 (two of B random vectors would lie in a space
+ * that the others do not fill). Equations that have nothing to add cost one small block.
+ *
+ * The random vectors of a shape come from a seed of its own, and the solution space's basis is
+ * that of the reduced echelon form.
+ */
+#include <string.h>
+
+#include "partition_private.h"
+
+#define FIRST_BLOCK 16u
+#define BATCH 192u
+
+typedef struct solver {
+    idsi_scratch *s;
+    idsi_partition_engine *engine;
+    uint32_t shape;
+    idsi_random random;
+    idsi_dense_echelon *echelon;
+    uint32_t *start;   /* tableaux x width: random covectors */
+    uint32_t *moved;   /* the same with a word applied */
+    uint32_t *product; /* unknowns x width */
+    uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
+    size_t row_count;
+    uint32_t owner[BATCH]; /* whose rows they are */
+    bool independent[BATCH];
+    uint32_t *width; /* of each equation's next block; 0: it is used up */
+    size_t left;     /* equations that are not */
+    const atomic_bool *stop; /* set when another thread failed */
+    uint64_t blocks;
+} solver;
+
+static void clear_solver(solver *v)
+{
+    idsi_dense_echelon_free(v->echelon);
+    idsi_free(v->s->ctx, v->start);
+    idsi_free(v->s->ctx, v->moved);
+    idsi_free(v->s->ctx, v->product);
+    idsi_free(v->s->ctx, v->rows);
+    idsi_free(v->s->ctx, v->width);
+}
+
+static void apply_word(const solver *v, const idsi_term *term, size_t width)
+{
+    const idsi_skew *skew = v->engine->skews.list[v->shape];
+    memcpy(v->moved, v->start, (size_t)skew->count * width * sizeof *v->moved);
+    for (size_t i = 0; i < term->word_length; i++) {
+        idsi_seminormal_exchange(skew, term->word[i], v->engine->prime, v->engine->inverse,
+                                 v->moved, width);
+    }
+}
+
+static bool same_word(const idsi_term *a, const idsi_term *b)
+{
+    return a->word_length == b->word_length && memcmp(a->word, b->word, a->word_length) == 0;
+}
+
+/* rows[b][u] += coefficient * product[u][b] for the unknowns of one form. */
+static void add_product(const solver *v, uint32_t coefficient, uint32_t from, uint32_t to,
+                        size_t width)
+{
+    uint32_t p = v->engine->prime;
+    uint32_t unknowns = v->engine->spaces[v->shape].unknowns;
+
+    for (uint32_t u = from; u < to; u++) {
+        uint32_t *product = v->product + (size_t)u * width;
+        for (size_t b = 0; b < width; b++) {
+            uint32_t *row = &v->rows[(v->row_count + b) * unknowns + u];
+            *row = (uint32_t)((*row + (uint64_t)coefficient * product[b]) % p);
+            product[b] = 0;
+        }
+    }
+}
+
+/* Eliminates the batch; each equation's yield decides whether it goes on. */
+static ids_status flush_batch(solver *v)
+{
+    ids_status st = IDS_OK;
+    size_t from = 0;
+
+    IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, v->row_count, v->independent));
+    while (from < v->row_count) {
+        uint32_t owner = v->owner[from];
+        uint32_t width = v->width[owner];
+        uint32_t yield = 0;
+        for (size_t i = from; i < from + width; i++) {
+            yield += v->independent[i];
+        }
+        from += width;
+        if (yield + 2 <= width) {
+            v->width[owner] = 0;
+            v->left--;
+        } else if (yield == width && 2 * width <= BATCH) {
+            v->width[owner] = 2 * width;
+        }
+    }
+    memset(v->rows, 0,
+           v->row_count * v->engine->spaces[v->shape].unknowns * sizeof *v->rows);
+    v->row_count = 0;
+done:
+    return st;
+}
+
+/* One block of covectors for one equation, into the batch. */
+static ids_status use_equation(solver *v, uint32_t number)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = v->engine;
+    const idsi_space *space = &engine->spaces[v->shape];
+    uint32_t tableaux = engine->skews.list[v->shape]->count;
+    const idsi_equation *equation =
+        &engine->degree[engine->skews.list[v->shape]->shape.cells].equations[number];
+    uint32_t width = v->width[number];
+    const idsi_term *applied = NULL; /* whose word `moved` has */
+
+    for (size_t i = 0; i < (size_t)tableaux * width; i++) {
+        v->start[i] = idsi_random_residue(&v->random, engine->prime);
+    }
+    for (size_t t = 0; t < equation->count; t++) {
+        const idsi_term *term = &equation->terms[t];
+        uint32_t form = idsi_form_find(engine, &engine->exprs[term->expr]);
+        if (form == UINT32_MAX || space->offset[form] == space->offset[form + 1]) {
+            continue;
+        }
+        if (applied == NULL || !same_word(term, applied)) {
+            apply_word(v, term, width);
+            applied = term;
+        }
+        IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, v->moved, width, v->product));
+        add_product(v, term->coefficient, space->offset[form], space->offset[form + 1], width);
+    }
+    for (uint32_t b = 0; b < width; b++) {
+        v->owner[v->row_count + b] = number;
+    }
+    v->row_count += width;
+    v->blocks++;
+done:
+    return st;
+}
+
+/*
+ * All equations in turn, until each is used up. An equation that has rows in the batch waits for
+ * them to be eliminated before it is asked again.
+ */
+static ids_status use_equations(solver *v)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = v->engine;
+    const idsi_degree *degree = &engine->degree[engine->skews.list[v->shape]->shape.cells];
+    uint32_t unknowns = engine->spaces[v->shape].unknowns;
+
+    v->left = degree->equation_count;
+    for (size_t i = 0; i < degree->equation_count; i++) {
+        v->width[i] = FIRST_BLOCK;
+    }
+    while (v->left > 0) {
+        for (uint32_t i = 0; i < degree->equation_count; i++) {
+            if (idsi_dense_echelon_rank(v->echelon) == unknowns || atomic_load(v->stop)) {
+                return IDS_OK;
+            }
+            IDSI_TRY(idsi_poll(engine->ctx, NULL));
+            if (v->width[i] > 0) {
+                if (v->row_count + v->width[i] > BATCH) {
+                    IDSI_TRY(flush_batch(v));
+                }
+                if (v->width[i] > 0) {
+                    IDSI_TRY(use_equation(v, i));
+                }
+            }
+        }
+        IDSI_TRY(flush_batch(v));
+    }
+done:
+    return st;
+}
+
+/* The solution space from the complete echelon form, negated. */
+static ids_status make_solution(solver *v)
+{
+    ids_status st = IDS_OK;
+    idsi_space *space = &v->engine->spaces[v->shape];
+    size_t rank = idsi_dense_echelon_rank(v->echelon);
+    uint32_t *free_of = NULL; /* 1 + number among the columns without pivot */
+    uint32_t p = v->engine->prime;
+    uint32_t count = 0;
+
+    space->dimension = space->unknowns - (uint32_t)rank;
+    if (space->dimension == 0) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_dense_echelon_complete(v->echelon));
+    IDSI_TRY(idsi_alloc_array(v->s->ctx, space->unknowns, sizeof *free_of, &free_of));
+    IDSI_TRY(idsi_alloc_array(v->s->ctx, (size_t)space->dimension * space->unknowns,
+                              sizeof *space->solution, &space->solution));
+    for (size_t i = 0; i < rank; i++) {
+        free_of[idsi_dense_echelon_pivot(v->echelon, i)] = UINT32_MAX;
+    }
+    for (uint32_t u = 0; u < space->unknowns; u++) {
+        if (free_of[u] == 0) {
+            space->solution[(size_t)count * space->unknowns + u] = p - 1;
+            count++;
+            free_of[u] = count;
+        } else {
+            free_of[u] = 0;
+        }
+    }
+    for (size_t i = 0; i < rank; i++) {
+        const uint32_t *row = idsi_dense_echelon_row(v->echelon, i);
+        uint32_t pivot = idsi_dense_echelon_pivot(v->echelon, i);
+        for (uint32_t u = 0; u < pivot; u++) {
+            if (row[u] != 0 && free_of[u] != 0) {
+                space->solution[(size_t)(free_of[u] - 1) * space->unknowns + pivot] = row[u];
+            }
+        }
+    }
+done:
+    idsi_free(v->s->ctx, free_of);
+    return st;
+}
+
+static uint64_t shape_seed(const idsi_partition_engine *engine, uint32_t shape)
+{
+    const idsi_shape *s = &engine->skews.list[shape]->shape;
+    uint64_t seed = engine->prime;
+    for (uint32_t i = 0; i < s->rows; i++) {
+        seed = (seed * 31 + s->outer[i]) * 31 + s->inner[i];
+    }
+    return seed;
+}
+
+/* Memory for one shape: the echelon form at its largest, and the blocks. */
+static ids_status check_budget(const idsi_partition_engine *engine, uint32_t shape)
+{
+    uint64_t unknowns = engine->spaces[shape].unknowns;
+    uint64_t tableaux = engine->skews.list[shape]->count;
+    ids_memory memory = ids_ctx_memory(engine->ctx);
+    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + 2 * BATCH * (unknowns + tableaux));
+    uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
+
+    if (memory.budget == 0 || need <= left) {
+        return IDS_OK;
+    }
+    return idsi_fail(engine->ctx, IDS_ERR_LIMIT,
+                     "a partition of degree %u with %llu tableaux has %llu unknowns; they need up "
+                     "to %llu bytes, %llu of the budget of %llu bytes are left",
+                     (unsigned)engine->skews.list[shape]->shape.cells,
+                     (unsigned long long)tableaux, (unsigned long long)unknowns,
+                     (unsigned long long)need, (unsigned long long)left,
+                     (unsigned long long)memory.budget);
+}
+
+ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
+                            const atomic_bool *stop, uint64_t *blocks)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = scratch->engine;
+    idsi_space *space = &engine->spaces[shape];
+    solver v = {.s = scratch, .engine = engine, .shape = shape, .stop = stop};
+    size_t tableaux = engine->skews.list[shape]->count;
+
+    if (space->solved) {
+        return IDS_OK;
+    }
+    if (engine->skews.list[shape]->shape.cells == 1) {
+        space->dimension = idsi_laws_trivial(engine->laws) ? 0 : 1;
+        space->solved = true;
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_plan_unknowns(engine, shape));
+    if (space->unknowns > 0) {
+        ids_ctx *ctx = scratch->ctx;
+        IDSI_TRY(check_budget(engine, shape));
+        size_t equations = engine->degree[engine->skews.list[shape]->shape.cells].equation_count;
+        idsi_random_seed(&v.random, shape_seed(engine, shape));
+        IDSI_TRY(idsi_dense_echelon_create(ctx, engine->prime, space->unknowns, &v.echelon));
+        IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.start, &v.start));
+        IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.moved, &v.moved));
+        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.product, &v.product));
+        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.rows, &v.rows));
+        IDSI_TRY(idsi_alloc_array(ctx, equations, sizeof *v.width, &v.width));
+        IDSI_TRY(use_equations(&v));
+        if (basis) {
+            IDSI_TRY(make_solution(&v));
+        } else {
+            space->dimension = space->unknowns - (uint32_t)idsi_dense_echelon_rank(v.echelon);
+        }
+        *blocks += v.blocks;
+    }
+    space->solved = !atomic_load(stop);
+done:
+    clear_solver(&v);
+    return st;
+}
