@@ -214,9 +214,9 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
         return idsi_fail_arg(ctx, "context, presentation or result");
     }
     *table = NULL;
-    if (from == 0 || from > to || to >= IDS_MAX_DEGREE) {
+    if (from == 0 || from > to || to > IDS_MAX_DEGREE) {
         return idsi_fail(ctx, IDS_ERR_ARG, "degrees %u to %u: possible are 1 to %u, upwards", from,
-                         to, IDS_MAX_DEGREE - 1);
+                         to, IDS_MAX_DEGREE);
     }
     if (options != NULL) {
         if (options->struct_size != sizeof chosen) {

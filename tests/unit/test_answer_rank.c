@@ -154,6 +154,7 @@ START_TEST(test_bad_options)
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 0, 2, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 3, 2, NULL, &table), IDS_ERR_ARG);
+    TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 65, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 1000, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, NULL, 1, 2, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, NULL, NULL), IDS_ERR_ARG);

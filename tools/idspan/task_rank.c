@@ -173,7 +173,14 @@ static void keep_reason(session *s, const ids_rank_table *table, ids_status st)
     if (st == IDS_ERR_CANCELLED) {
         session_fail(s, st, "interrupted before degree %zu was finished", next);
     } else if (st == IDS_ERR_LIMIT || st == IDS_ERR_NOMEM) {
-        session_fail(s, st, "degree %zu was not finished: %s", next, ids_ctx_message(s->ctx));
+        const char *reason = ids_ctx_message(s->ctx);
+
+        /* Mostly the library names the degree, which can be a lower one. */
+        if (strncmp(reason, "degree ", 7) == 0) {
+            session_fail(s, st, "%s", reason);
+        } else {
+            session_fail(s, st, "degree %zu was not finished: %s", next, reason);
+        }
     }
 }
 
