@@ -4,10 +4,13 @@
  *
  * Every equation of the shape's degree says that an element z of the free algebra is sent to zero,
  * which is one linear equation for every covector r on the Specht module; they are taken with
- * random covectors, a block at a time, in turn, and eliminated in batches. When a block of B
- * covectors adds B-2 or fewer independent equations, z is used up: if z still had something to add,
- * so low a yield would have probability at most 2/p^2 (two of B random vectors would lie in a space
- * that the others do not fill). Equations that have nothing to add cost one small block.
+ * random covectors, a block at a time. When a block of B covectors adds B-2 or fewer independent
+ * equations, z is used up: if z still had something to add, so low a yield would have probability
+ * at most 2/p^2 (two of B random vectors would lie in a space that the others do not fill).
+ *
+ * Cheap equations come first and are used up before the next ones are touched. When they have
+ * said all, the others are only probed, with small blocks, several equations in one batch: the
+ * fewer had something to add, the more are probed together.
  *
  * The random vectors of a shape come from a seed of its own, and the solution space's basis is
  * that of the reduced echelon form.
@@ -16,8 +19,9 @@
 
 #include "partition_private.h"
 
-#define FIRST_BLOCK 16u
+#define PROBE 8u
 #define BATCH 192u
+#define GROUP (BATCH / PROBE)
 
 typedef struct solver {
     idsi_scratch *s;
@@ -30,10 +34,7 @@ typedef struct solver {
     uint32_t *product; /* unknowns x width */
     uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
     size_t row_count;
-    uint32_t owner[BATCH]; /* whose rows they are */
     bool independent[BATCH];
-    uint32_t *width; /* of each equation's next block; 0: it is used up */
-    size_t left;     /* equations that are not */
     const atomic_bool *stop; /* set when another thread failed */
     uint64_t blocks;
 } solver;
@@ -45,7 +46,6 @@ static void clear_solver(solver *v)
     idsi_free(v->s->ctx, v->moved);
     idsi_free(v->s->ctx, v->product);
     idsi_free(v->s->ctx, v->rows);
-    idsi_free(v->s->ctx, v->width);
 }
 
 static void apply_word(const solver *v, const idsi_term *term, size_t width)
@@ -80,28 +80,11 @@ static void add_product(const solver *v, uint32_t coefficient, uint32_t from, ui
     }
 }
 
-/* Eliminates the batch; each equation's yield decides whether it goes on. */
 static ids_status flush_batch(solver *v)
 {
     ids_status st = IDS_OK;
-    size_t from = 0;
 
     IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, v->row_count, v->independent));
-    while (from < v->row_count) {
-        uint32_t owner = v->owner[from];
-        uint32_t width = v->width[owner];
-        uint32_t yield = 0;
-        for (size_t i = from; i < from + width; i++) {
-            yield += v->independent[i];
-        }
-        from += width;
-        if (yield + 2 <= width) {
-            v->width[owner] = 0;
-            v->left--;
-        } else if (yield == width && 2 * width <= BATCH) {
-            v->width[owner] = 2 * width;
-        }
-    }
     memset(v->rows, 0,
            v->row_count * v->engine->spaces[v->shape].unknowns * sizeof *v->rows);
     v->row_count = 0;
@@ -110,15 +93,12 @@ done:
 }
 
 /* One block of covectors for one equation, into the batch. */
-static ids_status use_equation(solver *v, uint32_t number)
+static ids_status use_equation(solver *v, const idsi_equation *equation, uint32_t width)
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = v->engine;
     const idsi_space *space = &engine->spaces[v->shape];
     uint32_t tableaux = engine->skews.list[v->shape]->count;
-    const idsi_equation *equation =
-        &engine->degree[engine->skews.list[v->shape]->shape.cells].equations[number];
-    uint32_t width = v->width[number];
     const idsi_term *applied = NULL; /* whose word `moved` has */
 
     for (size_t i = 0; i < (size_t)tableaux * width; i++) {
@@ -137,46 +117,85 @@ static ids_status use_equation(solver *v, uint32_t number)
         IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, v->moved, width, v->product));
         add_product(v, term->coefficient, space->offset[form], space->offset[form + 1], width);
     }
-    for (uint32_t b = 0; b < width; b++) {
-        v->owner[v->row_count + b] = number;
-    }
     v->row_count += width;
     v->blocks++;
+    IDSI_TRY(idsi_poll(engine->ctx, NULL));
 done:
     return st;
 }
 
-/*
- * All equations in turn, until each is used up. An equation that has rows in the batch waits for
- * them to be eliminated before it is asked again.
- */
+static uint32_t yield(const solver *v, size_t from, uint32_t width)
+{
+    uint32_t count = 0;
+    for (size_t i = from; i < from + width; i++) {
+        count += v->independent[i];
+    }
+    return count;
+}
+
+static bool is_done(const solver *v)
+{
+    return idsi_dense_echelon_rank(v->echelon) == v->engine->spaces[v->shape].unknowns ||
+           atomic_load(v->stop);
+}
+
+/* Uses an equation in growing blocks until it has nothing to add. */
+static ids_status drain_equation(solver *v, const idsi_equation *equation)
+{
+    ids_status st = IDS_OK;
+    uint32_t width = 2 * PROBE;
+
+    while (!is_done(v)) {
+        IDSI_TRY(use_equation(v, equation, width));
+        IDSI_TRY(flush_batch(v));
+        uint32_t count = yield(v, 0, width);
+        if (count + 2 <= width) {
+            break;
+        }
+        width = 3 * width <= BATCH / 2 ? 3 * width : width;
+    }
+done:
+    return st;
+}
+
+/* Probes a group of equations, then drains those that had something to add. */
+static ids_status probe_group(solver *v, const idsi_equation *equations, size_t count, bool *any)
+{
+    ids_status st = IDS_OK;
+    bool more[GROUP] = {false};
+
+    *any = false;
+    for (size_t i = 0; i < count; i++) {
+        IDSI_TRY(use_equation(v, &equations[i], PROBE));
+    }
+    IDSI_TRY(flush_batch(v));
+    for (size_t i = 0; i < count; i++) {
+        more[i] = yield(v, i * PROBE, PROBE) + 2 > PROBE;
+        *any = *any || more[i];
+    }
+    for (size_t i = 0; i < count; i++) {
+        if (more[i]) {
+            IDSI_TRY(drain_equation(v, &equations[i]));
+        }
+    }
+done:
+    return st;
+}
+
 static ids_status use_equations(solver *v)
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = v->engine;
     const idsi_degree *degree = &engine->degree[engine->skews.list[v->shape]->shape.cells];
-    uint32_t unknowns = engine->spaces[v->shape].unknowns;
+    size_t group = 1;
 
-    v->left = degree->equation_count;
-    for (size_t i = 0; i < degree->equation_count; i++) {
-        v->width[i] = FIRST_BLOCK;
-    }
-    while (v->left > 0) {
-        for (uint32_t i = 0; i < degree->equation_count; i++) {
-            if (idsi_dense_echelon_rank(v->echelon) == unknowns || atomic_load(v->stop)) {
-                return IDS_OK;
-            }
-            IDSI_TRY(idsi_poll(engine->ctx, NULL));
-            if (v->width[i] > 0) {
-                if (v->row_count + v->width[i] > BATCH) {
-                    IDSI_TRY(flush_batch(v));
-                }
-                if (v->width[i] > 0) {
-                    IDSI_TRY(use_equation(v, i));
-                }
-            }
-        }
-        IDSI_TRY(flush_batch(v));
+    for (size_t i = 0; i < degree->equation_count && !is_done(v);) {
+        bool any = false;
+        size_t left = degree->equation_count - i;
+        size_t count = group < left ? group : left;
+        IDSI_TRY(probe_group(v, degree->equations + i, count, &any));
+        i += count;
+        group = any ? 1 : group < GROUP / 2 ? 2 * group : GROUP;
     }
 done:
     return st;
@@ -278,14 +297,12 @@ ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
     if (space->unknowns > 0) {
         ids_ctx *ctx = scratch->ctx;
         IDSI_TRY(check_budget(engine, shape));
-        size_t equations = engine->degree[engine->skews.list[shape]->shape.cells].equation_count;
         idsi_random_seed(&v.random, shape_seed(engine, shape));
         IDSI_TRY(idsi_dense_echelon_create(ctx, engine->prime, space->unknowns, &v.echelon));
         IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.start, &v.start));
         IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.moved, &v.moved));
         IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.product, &v.product));
         IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.rows, &v.rows));
-        IDSI_TRY(idsi_alloc_array(ctx, equations, sizeof *v.width, &v.width));
         IDSI_TRY(use_equations(&v));
         if (basis) {
             IDSI_TRY(make_solution(&v));
