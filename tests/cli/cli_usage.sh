@@ -22,8 +22,8 @@ has out "Examples:"
 for task in $tasks; do
     has out "  $task "
 done
-for option in degree degrees from count index monomials split exact primes seed \
-    format output memory threads help version; do
+for option in degree degrees from count index monomials split by partition cross-check \
+    exact primes seed field format output memory threads help version; do
     has out "--$option"
 done
 run 0 -h
@@ -36,7 +36,7 @@ common="format output memory threads help version"
     own_types="degree degrees"
     own_basis="degree from count"
     own_count="degree degrees split"
-    own_rank="degree degrees exact primes seed"
+    own_rank="degree degrees by partition cross-check exact primes seed field"
     own_draw="degree monomials index from count"
 }
 for task in $tasks; do
@@ -47,7 +47,7 @@ for task in $tasks; do
         has out "  --$option"
         grep -qF -e "--$option" "$source_dir/tools/idspan/idspan.bash" ||
             complain "the completion lacks --$option"
-        grep -qE -e "\\\\-\\\\-$option( |\$)" "$source_dir/tools/idspan/idspan.1" ||
+        grep -qE -e "\\\\-\\\\-${option//-/\\\\-}( |\$)" "$source_dir/tools/idspan/idspan.1" ||
             complain "the manual lacks --$option"
     done
     has out "  idspan $task "
@@ -61,6 +61,7 @@ has out "degree,index,monomial"
 has out "count from 0"
 run 0 rank --help
 has out "degree,free,consequences,quotient,certainty"
+has out "degree,partition,dimension,free,consequences,quotient,certainty"
 
 # ---- refusals -------------------------------------------------------------------------
 
@@ -108,6 +109,22 @@ refuse '--memory wants a size' show jordan.pres --memory 0
 refuse '--memory wants a size' show jordan.pres --memory 99999999999G
 refuse '--threads wants' show jordan.pres --threads 0
 refuse '--primes wants' rank jordan.pres --degree 3 --primes 0
+refuse '--by can be partition, not "degree"' rank jordan.pres --degree 3 --by degree
+refuse 'wants a degree' rank jordan.pres --by partition
+refuse '--cross-check is for --by partition' rank jordan.pres --degree 3 --cross-check
+refuse '--partition and --cross-check exclude' rank jordan.pres --partition 2+1 --cross-check
+refuse '--exact does not go with --by partition' rank jordan.pres --degree 3 --by partition --exact
+refuse '--field does not go with --by partition' rank jordan.pres --partition 2+1 --field 101
+refuse 'primes larger than the degree' rank jordan.pres --degree 3 --by partition --field 7
+refuse 'degree 17: by partition degrees go from 1 to 16' \
+    rank jordan.pres --degrees 1..17 --by partition
+refuse '--partition 9+8 is one of 17; by partition degrees' rank jordan.pres --partition 9+8
+refuse '--partition "3+4": ' rank jordan.pres --partition 3+4
+refuse '--partition "": ' rank jordan.pres --partition=
+refuse 'belongs to degree 8, which need not be given; 7 is another' \
+    rank jordan.pres --partition 4+3+1 --degree 7
+refuse 'belongs to degree 8' rank jordan.pres --partition 4+3+1 --degrees 7..8
+refuse '--by is an option of "rank", not of "types"' types jordan.pres --degree 3 --by partition
 refuse '--seed wants' rank jordan.pres --degree 3 --seed 18446744073709551616
 refuse '--count wants' basis jordan.pres --degree 3 --count all
 refuse '--from 3: degree 3 has 3 monomials' basis jordan.pres --degree 3 --from 3

@@ -30,7 +30,11 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "1G 2G 4G 8G 16G none" -- "$word")
         return
         ;;
-    --degree | --degrees | --from | --count | --index | --primes | --seed | --field | --threads)
+    --by)
+        mapfile -t COMPREPLY < <(compgen -W "partition" -- "$word")
+        return
+        ;;
+    --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads)
         return
         ;;
     esac
@@ -48,7 +52,7 @@ _idspan()
     basis) own="--degree --from --count" ;;
     count) own="--degree --degrees --split" ;;
     draw) own="--degree --monomials --index --from --count" ;;
-    rank) own="--degree --degrees --exact --primes --seed --field" ;;
+    rank) own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field" ;;
     esac
 
     if [[ $word == -* ]]; then

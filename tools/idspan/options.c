@@ -28,6 +28,10 @@ const option option_list[OPTION_END] = {
                      "draw the primes from seed S (default 0); the same seed\n"
                      "gives the same primes on every machine"},
     [OPTION_FIELD] = {"field", "P", "work over the field of P elements, P a prime below 2^30"},
+    [OPTION_BY] = {"by", "partition", "one row a partition and a total, up to degree 16"},
+    [OPTION_PARTITION] = {"partition", "P", "only the partition P, written as 4+3+1"},
+    [OPTION_CROSS_CHECK] = {"cross-check", NULL,
+                            "compute the totals by monomials too and compare"},
     [OPTION_FORMAT] = {"format", "F", "text (for people, the default), csv, json or latex;\n"
                        "of draw: text, ascii, svg or tikz"},
     [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
@@ -172,6 +176,12 @@ static bool read_value(option_id id, const char *value, settings *read)
             return false;
         }
         read->field = (uint32_t)number;
+        return true;
+    case OPTION_BY:
+        read->by = value;
+        return true;
+    case OPTION_PARTITION:
+        read->partition_text = value;
         return true;
     case OPTION_FORMAT:
         read->format_name = value; /* which there are depends on the task */
@@ -366,7 +376,8 @@ static bool check_pairs(const settings *read)
     static const option_id pairs[][2] = {{OPTION_DEGREE, OPTION_DEGREES},
                                          {OPTION_FIELD, OPTION_EXACT},
                                          {OPTION_FIELD, OPTION_PRIMES},
-                                         {OPTION_FIELD, OPTION_SEED}};
+                                         {OPTION_FIELD, OPTION_SEED},
+                                         {OPTION_PARTITION, OPTION_CROSS_CHECK}};
 
     for (size_t i = 0; i < sizeof pairs / sizeof *pairs; i++) {
         unsigned both = BIT(pairs[i][0]) | BIT(pairs[i][1]);
@@ -404,7 +415,8 @@ static bool check(settings *read)
                  read->file, chosen->usage);
         return false;
     }
-    return check_pairs(read) && check_degrees(read) && check_format(read);
+    return check_pairs(read) && check_degrees(read) && check_format(read) &&
+           (chosen->check == NULL || chosen->check(read));
 }
 
 bool settings_read(int argc, char **argv, settings *read)

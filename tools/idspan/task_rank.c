@@ -36,19 +36,18 @@ done:
     return st;
 }
 
-/* The primes, with blanks between; a long list is cut, since the seed tells the rest. */
-static void list_primes(const ids_rank_table *table, char *text, size_t size)
+void primes_append(char *text, uint64_t prime)
 {
-    size_t used = 0;
+    size_t used = strlen(text);
+    digits next = digits_of(prime);
 
-    text[0] = '\0';
-    for (size_t i = 0; i < ids_rank_table_prime_count(table); i++) {
-        digits prime = digits_of(ids_rank_table_prime(table, i));
-        if (used + strlen(prime.text) + 6 > size) {
-            snprintf(text + used, size - used, " ...");
-            return;
-        }
-        used += (size_t)snprintf(text + used, size - used, "%s%s", i > 0 ? " " : "", prime.text);
+    if (used > 0 && text[used - 1] == '.') {
+        return;
+    }
+    if (used + strlen(next.text) + 6 > PRIMES_CHARS) {
+        snprintf(text + used, PRIMES_CHARS - used, " ...");
+    } else {
+        snprintf(text + used, PRIMES_CHARS - used, "%s%s", used > 0 ? " " : "", next.text);
     }
 }
 
@@ -56,12 +55,14 @@ static ids_status write_notes(session *s, const ids_rank_table *table, ids_statu
                               ids_writer *writer)
 {
     ids_status st = IDS_OK;
-    char primes[4096] = "";
+    char primes[PRIMES_CHARS] = "";
 
     if (ids_rank_table_field(table) > 0) {
         TRY(ids_writer_note(writer, "field", digits_of(ids_rank_table_field(table)).text));
     } else if (ids_rank_table_prime_count(table) > 0) {
-        list_primes(table, primes, sizeof primes);
+        for (size_t i = 0; i < ids_rank_table_prime_count(table); i++) {
+            primes_append(primes, ids_rank_table_prime(table, i));
+        }
         TRY(ids_writer_note(writer, "primes", primes));
         TRY(ids_writer_note(writer, "seed", digits_of(s->set->seed).text));
     }
@@ -187,6 +188,9 @@ static void keep_reason(session *s, const ids_rank_table *table, ids_status st)
 static ids_status run(session *s)
 {
     const settings *set = s->set;
+    if ((set->seen & (BIT(OPTION_BY) | BIT(OPTION_PARTITION))) != 0) {
+        return rank_by_partition(s);
+    }
     ids_rank_options options = {.struct_size = sizeof options,
                                 .exact = (set->seen & BIT(OPTION_EXACT)) != 0,
                                 .primes = set->primes,
@@ -207,7 +211,8 @@ static ids_status run(session *s)
 
 const task task_rank = {
     .name = "rank",
-    .usage = " --degree N | --degrees A..B [--exact] [--primes K] [--seed S] [--field P]",
+    .usage = " --degree N | --degrees A..B [--by partition [--cross-check] | --partition P]\n"
+             "          [--exact] [--primes K] [--seed S] [--field P]",
     .summary = "count how many monomials the identities leave independent",
     .details =
         "For each degree, dimensions of spaces of multilinear polynomials: `free` without the\n"
@@ -221,15 +226,25 @@ const task task_rank = {
         "identities. Linearising can weaken an identity when a variable occurs in it P times or\n"
         "more; a note then warns of it.\n"
         "\n"
+        "With --by partition each degree is split into the irreducible modules of the symmetric\n"
+        "group: the numbers are multiplicities, and a row `total` has the dimensions. It goes to\n"
+        "degree 16, much further than the usual table in the same time. --partition 4+3+1 asks\n"
+        "for one row and needs no degree. --exact and --field do not go with it.\n"
+        "\n"
         "When a limit is hit, or after Ctrl-C, the degrees that were finished are shown.\n"
         "\n"
-        "Columns: degree,free,consequences,quotient,certainty",
+        "Columns: degree,free,consequences,quotient,certainty\n"
+        "by partition: degree,partition,dimension,free,consequences,quotient,certainty",
     .examples = "  idspan rank pair.pres --degrees 1..6\n"
                 "  idspan rank pair.pres --degree 5 --exact\n"
                 "  idspan rank pair.pres --degrees 1..7 --primes 2 --seed 17 --format json\n"
-                "  idspan rank pair.pres --degrees 1..6 --field 3",
+                "  idspan rank pair.pres --degrees 1..6 --field 3\n"
+                "  idspan rank pair.pres --degree 8 --by partition\n"
+                "  idspan rank pair.pres --partition 4+3+1",
     .options = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) |
-               BIT(OPTION_SEED) | BIT(OPTION_FIELD),
-    .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
+               BIT(OPTION_SEED) | BIT(OPTION_FIELD) | BIT(OPTION_BY) | BIT(OPTION_PARTITION) |
+               BIT(OPTION_CROSS_CHECK),
+    .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_PARTITION),
+    .check = rank_check,
     .run = run,
 };

@@ -35,6 +35,9 @@ typedef enum option_id {
     OPTION_PRIMES,
     OPTION_SEED,
     OPTION_FIELD,
+    OPTION_BY,
+    OPTION_PARTITION,
+    OPTION_CROSS_CHECK,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -74,6 +77,9 @@ typedef struct settings {
     uint32_t primes;
     uint64_t seed;
     uint32_t field;
+    const char *by;             /* value of --by, as written */
+    const char *partition_text; /* value of --partition, as written */
+    ids_partition partition;    /* and as read by rank_check() */
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
@@ -113,6 +119,7 @@ typedef struct task {
     unsigned wanted;      /* of these, at least one must be given; 0: none need be */
     uint32_t most_degree; /* 0: IDS_MAX_DEGREE */
     const char *const *formats; /* NULL at the end; NULL: those of tables */
+    bool (*check)(settings *read); /* what else the options must be, with a message; or NULL */
     ids_status (*run)(session *s);
 } task;
 
@@ -126,6 +133,15 @@ extern const task task_draw;
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
 const task *task_find(const char *name);
+
+/* The part of `rank` that works by partition. */
+bool rank_check(settings *read);
+ids_status rank_by_partition(session *s);
+
+/* Appends a prime to a list with blanks between; a long list is cut, since the seed tells the
+ * rest. The text has PRIMES_CHARS characters. */
+#define PRIMES_CHARS 4096u
+void primes_append(char *text, uint64_t prime);
 
 /* Sends a function to its `done:` label when a call fails. */
 #define TRY(call)           \
