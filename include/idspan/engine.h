@@ -101,7 +101,7 @@ IDS_API IDS_MUST_USE ids_status ids_normal_forms_print(ids_ctx *ctx, const ids_n
                                                        uint32_t degree, uint64_t index,
                                                        char **text);
 
-/* ---- combinations of normal forms -------------------------------------------------------------- */
+/* ---- combinations of normal forms ------------------------------------------------------------ */
 
 /** A linear combination of the normal forms of one degree. Immutable, shareable. */
 typedef struct ids_combination ids_combination;
@@ -225,7 +225,7 @@ IDS_API IDS_MUST_USE ids_status ids_combination_print(ids_ctx *ctx,
                                                       const ids_combination *combination,
                                                       char **text);
 
-/* ---- matrices of consequences ------------------------------------------------------------------- */
+/* ---- matrices of consequences ---------------------------------------------------------------- */
 
 /** Options of ids_matrix_create(); set struct_size, the rest to 0 for the defaults. */
 typedef struct ids_matrix_options {

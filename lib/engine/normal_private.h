@@ -12,7 +12,7 @@
 struct ids_normal_forms {
     ids_ctx *ctx;
     const ids_presentation *pres;
-    uint32_t prime;    /* 0: over the rational numbers */
+    uint32_t prime; /* 0: over the rational numbers */
     idsi_laws *laws;
     idsi_proof *proof; /* NULL unless over the rational numbers */
     idsi_tower tower;
@@ -28,11 +28,12 @@ struct ids_combination {
     mpq_t *coefficient;
 };
 
-/* ---- trees of columns (lib/engine/column.c) ---------------------------------------------------- */
+/* ---- trees of columns (lib/engine/column.c) -------------------------------------------------- */
 
 /*
  * The product that a column of a planned level stands for, on a set of labels, multiplied out; the
- * tree is not canonical but has the sign +1. `out` has room for 2 * degree - 1 tokens; their number.
+ * tree is not canonical but has the sign +1. `out` has room for 2 * degree - 1 tokens; returns how
+ * many there are.
  */
 size_t idsi_column_tree(const idsi_tower *tower, const idsi_level *level, uint64_t column,
                         uint64_t labels, idsi_token *out);
@@ -40,7 +41,7 @@ size_t idsi_column_tree(const idsi_tower *tower, const idsi_level *level, uint64
 size_t idsi_normal_tree(const idsi_tower *tower, uint32_t degree, uint64_t index, uint64_t labels,
                         idsi_token *out);
 
-/* ---- reduction (lib/engine/reduce.c) ------------------------------------------------------------ */
+/* ---- reduction (lib/engine/reduce.c) --------------------------------------------------------- */
 
 /* Sum of terms of one degree, before it becomes a combination. */
 typedef struct idsi_sum {
@@ -73,7 +74,7 @@ ids_status idsi_sum_take(const idsi_sum *sum, ids_combination **combination);
 ids_status idsi_combination_unit(ids_ctx *ctx, const ids_normal_forms *forms, uint32_t degree,
                                  uint32_t index, ids_combination **combination);
 
-/* ---- writing matrices (lib/engine/market.c) ------------------------------------------------------ */
+/* ---- writing matrices (lib/engine/market.c) -------------------------------------------------- */
 
 /* Text on its way to a sink. */
 typedef struct idsi_market {
@@ -88,7 +89,7 @@ void idsi_market_clear(idsi_market *market);
 /* Hands the text on, when there is much of it or `all`. */
 ids_status idsi_market_flush(idsi_market *market, bool all);
 
-/* ---- all consequences (lib/engine/plain.c) -------------------------------------------------------- */
+/* ---- all consequences (lib/engine/plain.c) --------------------------------------------------- */
 
 /* What all consequences of a degree are made from. */
 typedef struct idsi_plain {
@@ -101,8 +102,7 @@ typedef struct idsi_plain {
     uint64_t entries;
 } idsi_plain;
 
-ids_status idsi_plain_init(idsi_plain *plain, ids_ctx *ctx, const idsi_laws *laws,
-                           uint32_t degree);
+ids_status idsi_plain_init(idsi_plain *plain, ids_ctx *ctx, const idsi_laws *laws, uint32_t degree);
 void idsi_plain_clear(idsi_plain *plain);
 /* Writes the lines "row column value" of all entries. */
 ids_status idsi_plain_write(const idsi_plain *plain, idsi_market *market);

@@ -11,7 +11,7 @@
 
 #include "normal_private.h"
 
-/* ---- combinations -------------------------------------------------------------------------------- */
+/* ---- combinations ---------------------------------------------------------------------------- */
 
 static ids_status combination_create(ids_ctx *ctx, const ids_normal_forms *forms, uint32_t degree,
                                      size_t count, ids_combination **combination)
@@ -58,7 +58,7 @@ ids_status idsi_combination_unit(ids_ctx *ctx, const ids_normal_forms *forms, ui
     return st;
 }
 
-/* ---- sums --------------------------------------------------------------------------------------- */
+/* ---- sums ------------------------------------------------------------------------------------ */
 
 ids_status idsi_sum_init(idsi_sum *sum, ids_ctx *ctx, const ids_normal_forms *forms,
                          uint32_t degree)
@@ -152,7 +152,7 @@ static void add_column_mod(idsi_sum *sum, uint64_t column, uint32_t coefficient)
     }
 }
 
-/* ---- products ------------------------------------------------------------------------------------ */
+/* ---- products -------------------------------------------------------------------------------- */
 
 /* A product of combinations that is being multiplied out. */
 typedef struct product {
@@ -236,7 +236,7 @@ ids_status idsi_sum_product(idsi_sum *sum, uint32_t op, const idsi_element *args
     return st;
 }
 
-/* ---- trees --------------------------------------------------------------------------------------- */
+/* ---- trees ----------------------------------------------------------------------------------- */
 
 static ids_status add_node(idsi_sum *sum, const idsi_token **at, mpq_srcptr coefficient,
                            uint64_t *labels);
@@ -276,8 +276,8 @@ static ids_status add_node(idsi_sum *sum, const idsi_token **at, mpq_srcptr coef
             mpq_add(sum->exact[0], sum->exact[0], coefficient);
         } else if (sum->size > 0) {
             if (!idsi_mod_rational(coefficient, sum->forms->prime, &residue)) {
-                return idsi_fail(sum->ctx, IDS_ERR_DOMAIN,
-                                 "a coefficient has no residue modulo %u", sum->forms->prime);
+                return idsi_fail(sum->ctx, IDS_ERR_DOMAIN, "a coefficient has no residue modulo %u",
+                                 sum->forms->prime);
             }
             sum->residue[0] = (sum->residue[0] + residue) % sum->forms->prime;
         }

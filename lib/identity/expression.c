@@ -62,7 +62,7 @@ done:
 static ids_status check_declared(idsi_reader *reader, size_t op, size_t use)
 {
     const size_t declared = reader->operations[op].lexeme;
-    if (declared < use) {
+    if (declared < use || reader->operations_follow) {
         return IDS_OK;
     }
     const idsi_shown shown = idsi_reader_show(reader, use);

@@ -81,6 +81,13 @@ struct ids_presentation {
     idsi_identity *list;
 };
 
+/*
+ * Reads as ids_presentation_read(); with operations_follow, operations may be declared behind their
+ * use, so that those of another presentation can be added to a text whose lines keep their numbers.
+ */
+ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
+                                  const char *source, bool operations_follow,
+                                  ids_presentation **presentation);
 /* The index-th identity of a role, NULL when out of range. */
 const idsi_identity *idsi_presentation_get(const ids_presentation *pres, ids_role role,
                                            size_t index);

@@ -113,6 +113,7 @@ typedef struct idsi_reader {
     const char *text;
     size_t length;
     const char *source;
+    bool operations_follow; /* an operation may be used before its declaration */
 
     idsi_lexeme *lexemes;
     size_t lexeme_count;

@@ -79,7 +79,18 @@ done:
 ids_status ids_presentation_read(ids_ctx *ctx, const char *text, size_t length, const char *source,
                                  ids_presentation **presentation)
 {
-    idsi_reader reader = {.ctx = ctx, .text = text, .length = length, .defining = SIZE_MAX};
+    return idsi_presentation_read(ctx, text, length, source, false, presentation);
+}
+
+ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
+                                  const char *source, bool operations_follow,
+                                  ids_presentation **presentation)
+{
+    idsi_reader reader = {.ctx = ctx,
+                          .text = text,
+                          .length = length,
+                          .operations_follow = operations_follow,
+                          .defining = SIZE_MAX};
     ids_status st = IDS_OK;
     if (ctx == NULL || text == NULL || presentation == NULL) {
         return idsi_fail_arg(ctx, "context, text or result");

@@ -6,7 +6,7 @@ _idspan()
 {
     local word=${COMP_WORDS[COMP_CWORD]}
     local previous=${COMP_WORDS[COMP_CWORD - 1]}
-    local tasks="show types basis count rank draw"
+    local tasks="show types basis count rank draw matrix"
     local common="--format --output --memory --threads --help --version"
     local task="" own="" i
 
@@ -19,7 +19,7 @@ _idspan()
     COMPREPLY=()
     case $previous in
     --format)
-        mapfile -t COMPREPLY < <(compgen -W "text csv json latex ascii svg tikz" -- "$word")
+        mapfile -t COMPREPLY < <(compgen -W "text csv json latex ascii svg tikz mtx" -- "$word")
         return
         ;;
     --output)
@@ -41,7 +41,7 @@ _idspan()
 
     for ((i = 1; i < COMP_CWORD; i++)); do
         case ${COMP_WORDS[i]} in
-        show | types | basis | count | rank | draw)
+        show | types | basis | count | rank | draw | matrix)
             task=${COMP_WORDS[i]}
             break
             ;;
@@ -52,6 +52,7 @@ _idspan()
     basis) own="--degree --from --count" ;;
     count) own="--degree --degrees --split" ;;
     draw) own="--degree --monomials --index --from --count" ;;
+    matrix) own="--degree --plain --field --seed" ;;
     rank) own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field" ;;
     esac
 

@@ -32,8 +32,10 @@ const option option_list[OPTION_END] = {
     [OPTION_PARTITION] = {"partition", "P", "only the partition P, written as 4+3+1"},
     [OPTION_CROSS_CHECK] = {"cross-check", NULL,
                             "compute the totals by monomials too and compare"},
-    [OPTION_FORMAT] = {"format", "F", "text (for people, the default), csv, json or latex;\n"
-                       "of draw: text, ascii, svg or tikz"},
+    [OPTION_PLAIN] = {"plain", NULL, "all consequences in all monomials, with integers"},
+    [OPTION_FORMAT] = {"format", "F",
+                       "text (for people, the default), csv, json or latex;\n"
+                       "of draw: text, ascii, svg or tikz; of matrix: mtx"},
     [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
     [OPTION_MEMORY] = {"memory", "SIZE",
                        "use at most SIZE, such as 500M or 8G (default 4G);\n"
@@ -373,11 +375,11 @@ static bool check_format(settings *read)
 /* Options that say different things about the same. */
 static bool check_pairs(const settings *read)
 {
-    static const option_id pairs[][2] = {{OPTION_DEGREE, OPTION_DEGREES},
-                                         {OPTION_FIELD, OPTION_EXACT},
-                                         {OPTION_FIELD, OPTION_PRIMES},
-                                         {OPTION_FIELD, OPTION_SEED},
-                                         {OPTION_PARTITION, OPTION_CROSS_CHECK}};
+    static const option_id pairs[][2] = {
+        {OPTION_DEGREE, OPTION_DEGREES}, {OPTION_FIELD, OPTION_EXACT},
+        {OPTION_FIELD, OPTION_PRIMES},   {OPTION_FIELD, OPTION_SEED},
+        {OPTION_PLAIN, OPTION_FIELD},    {OPTION_PLAIN, OPTION_SEED},
+        {OPTION_PARTITION, OPTION_CROSS_CHECK}};
 
     for (size_t i = 0; i < sizeof pairs / sizeof *pairs; i++) {
         unsigned both = BIT(pairs[i][0]) | BIT(pairs[i][1]);

@@ -38,6 +38,7 @@ typedef enum option_id {
     OPTION_BY,
     OPTION_PARTITION,
     OPTION_CROSS_CHECK,
+    OPTION_PLAIN,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -129,6 +130,7 @@ extern const task task_basis;
 extern const task task_count;
 extern const task task_rank;
 extern const task task_draw;
+extern const task task_matrix;
 
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
