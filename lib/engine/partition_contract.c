@@ -13,6 +13,10 @@
  * of covectors on the rest. The core takes the widened block at once. Its own values come from a
  * stored matrix, or again from its product and the basis of solutions of its shape.
  *
+ * When only the values of a few given maps are wanted, their unknowns take the place of the basis:
+ * what they are on a core behind peeled letters is one vector of the core's own unknowns, so the
+ * product with the core's basis of solutions is saved.
+ *
  * Solutions and stored values are kept negated, because the products subtract.
  */
 #include <string.h>
@@ -142,7 +146,11 @@ typedef struct contraction {
     idsi_scratch *s;
     const idsi_form *form;
     const uint32_t *arg;
-    uint32_t *out; /* where the next unknown's coefficients go */
+    uint32_t *out;   /* where the next unknown's coefficients go; NULL with maps */
+    idsi_maps *maps; /* NULL: all coefficients are wanted */
+    uint32_t at;     /* with maps: the next unknown */
+    size_t width;    /* with maps: of the block at the beginning */
+    uint32_t *sums;
 } contraction;
 
 static ids_status contract(contraction *c, uint32_t shape, uint32_t first, uint32_t last,
@@ -236,6 +244,87 @@ done:
     return st;
 }
 
+/* The maps' restrictions to the core of the chain at hand, whose other arguments are letters. */
+static ids_status map_image(contraction *c, uint32_t shape, const uint32_t **image)
+{
+    ids_status st = IDS_OK;
+    idsi_scratch *s = c->s;
+    const idsi_space *space = &s->engine->spaces[shape];
+    idsi_maps *maps = c->maps;
+
+    for (size_t i = 0; i < maps->image_count; i++) {
+        if (maps->images[i].at == c->at) {
+            *image = maps->images[i].values;
+            return IDS_OK;
+        }
+    }
+    IDSI_TRY(idsi_grow(s->ctx, maps->image_count, &maps->image_capacity, sizeof *maps->images,
+                       &maps->images));
+    idsi_map_image *made = &maps->images[maps->image_count];
+    *made = (idsi_map_image){.at = c->at};
+    maps->image_count++;
+    IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)IDSI_MAP_COUNT * space->unknowns,
+                              sizeof *made->values, &made->values));
+    idsi_dense_mul_sub(&s->work, s->engine->prime, IDSI_MAP_COUNT, space->unknowns,
+                       space->dimension, maps->values + c->at, maps->unknowns, space->solution,
+                       space->unknowns, made->values, space->unknowns);
+    *image = made->values;
+done:
+    return st;
+}
+
+/* Adds what a chain's core contributes to the sums, all peeled arguments being done. */
+static ids_status core_maps(contraction *c, uint32_t shape, uint32_t expr, const uint32_t *block,
+                            size_t width)
+{
+    ids_status st = IDS_OK;
+    idsi_scratch *s = c->s;
+    idsi_partition_engine *engine = s->engine;
+    const idsi_space *space = &engine->spaces[shape];
+    size_t peeled = width / c->width;
+    size_t unknowns = space->dimension * peeled;
+    uint32_t *values = NULL;
+    const uint32_t *image = NULL;
+
+    if (peeled == 1 && !is_letter(engine, expr) && find_value(engine, shape, expr) == NULL) {
+        IDSI_TRY(map_image(c, shape, &image));
+        IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)space->unknowns * width, sizeof *values,
+                                  &values));
+        IDSI_TRY(idsi_contract_product(s, shape, expr, block, width, values));
+        idsi_dense_mul_sub(&s->work, engine->prime, IDSI_MAP_COUNT, width, space->unknowns, image,
+                           space->unknowns, values, width, c->sums, width);
+    } else {
+        IDSI_TRY(idsi_resize_array(s->ctx, unknowns * c->width, sizeof *values, &values));
+        IDSI_TRY(idsi_contract_values(s, shape, expr, block, width, values));
+        idsi_dense_mul_sub(&s->work, engine->prime, IDSI_MAP_COUNT, c->width, unknowns,
+                           c->maps->values + c->at, c->maps->unknowns, values, c->width, c->sums,
+                           c->width);
+    }
+    c->at += (uint32_t)unknowns;
+done:
+    idsi_free(s->ctx, values);
+    return st;
+}
+
+/* The core of a chain. */
+static ids_status contract_core(contraction *c, uint32_t shape, uint32_t expr,
+                                const uint32_t *block, size_t width)
+{
+    ids_status st = IDS_OK;
+    size_t dimension = c->s->engine->spaces[shape].dimension;
+
+    if (dimension == 0) {
+        return IDS_OK;
+    }
+    if (c->maps != NULL) {
+        return core_maps(c, shape, expr, block, width);
+    }
+    IDSI_TRY(idsi_contract_values(c->s, shape, expr, block, width, c->out));
+    c->out += dimension * width;
+done:
+    return st;
+}
+
 static ids_status contract(contraction *c, uint32_t shape, uint32_t first, uint32_t last,
                            const uint32_t *block, size_t width)
 {
@@ -244,12 +333,7 @@ static ids_status contract(contraction *c, uint32_t shape, uint32_t first, uint3
     const idsi_skew *skew = engine->skews.list[shape];
 
     if (first == last) {
-        size_t dimension = engine->spaces[shape].dimension;
-        if (dimension > 0) {
-            IDSI_TRY(idsi_contract_values(c->s, shape, c->arg[first], block, width, c->out));
-            c->out += dimension * width;
-        }
-        return IDS_OK;
+        return contract_core(c, shape, c->arg[first], block, width);
     }
     bool upper = last > c->form->core;
     uint32_t at = upper ? skew->shape.cells - (uint32_t)c->form->degree[last]
@@ -275,6 +359,37 @@ ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t
                      .form = &engine->degree[entry->degree].forms[form],
                      .arg = entry->arg,
                      .out = out + (size_t)engine->spaces[shape].offset[form] * width};
+    return contract(&c, shape, 0, c.form->arity - 1, block, width);
+}
+
+void idsi_maps_clear(ids_ctx *ctx, idsi_maps *maps)
+{
+    for (size_t i = 0; i < maps->image_count; i++) {
+        idsi_free(ctx, maps->images[i].values);
+    }
+    idsi_free(ctx, maps->images);
+    idsi_free(ctx, maps->values);
+    memset(maps, 0, sizeof *maps);
+}
+
+ids_status idsi_contract_maps(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
+                              const uint32_t *block, size_t width, idsi_maps *maps,
+                              uint32_t *sums)
+{
+    idsi_partition_engine *engine = scratch->engine;
+    const idsi_expr *entry = &engine->exprs[expr];
+    uint32_t form = idsi_form_find(engine, entry);
+
+    if (form == UINT32_MAX) {
+        return IDS_OK;
+    }
+    contraction c = {.s = scratch,
+                     .form = &engine->degree[entry->degree].forms[form],
+                     .arg = entry->arg,
+                     .maps = maps,
+                     .at = engine->spaces[shape].offset[form],
+                     .width = width,
+                     .sums = sums};
     return contract(&c, shape, 0, c.form->arity - 1, block, width);
 }
 

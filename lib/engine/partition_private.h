@@ -16,7 +16,7 @@
 #include <pthread.h>
 #include <stdatomic.h>
 
-#include "../field/dense_private.h"
+#include "../field/solution_private.h"
 #include "../young/skew_private.h"
 #include "engine_private.h"
 
@@ -152,6 +152,33 @@ typedef struct idsi_scratch {
     idsi_workspace work;
 } idsi_scratch;
 
+/*
+ * A few maps from F/I to the Specht module of a shape that is being solved, by their unknowns:
+ * count x unknowns. `image` keeps their restrictions to the cores of chains, as they are needed.
+ */
+#define IDSI_MAP_COUNT 2u
+
+typedef struct idsi_map_image {
+    uint32_t at;      /* first unknown of the chain */
+    uint32_t *values; /* IDSI_MAP_COUNT x unknowns of the core's shape */
+} idsi_map_image;
+
+typedef struct idsi_maps {
+    uint32_t unknowns;
+    uint32_t *values; /* IDSI_MAP_COUNT x unknowns */
+    size_t image_count;
+    size_t image_capacity;
+    idsi_map_image *images;
+} idsi_maps;
+
+void idsi_maps_clear(ids_ctx *ctx, idsi_maps *maps);
+/*
+ * Values of maps on a product, negated: sums (IDSI_MAP_COUNT x width, added to). Cheaper than
+ * idsi_contract_product(), since no basis of solutions is gone through.
+ */
+ids_status idsi_contract_maps(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
+                              const uint32_t *block, size_t width, idsi_maps *maps,
+                              uint32_t *sums);
 /* Coefficients of the unknowns of `shape`: out (unknowns x width, added to) for a product. */
 ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
                                  const uint32_t *block, size_t width, uint32_t *out);

@@ -8,9 +8,11 @@
  * equations, z is used up: if z still had something to add, so low a yield would have probability
  * at most 2/p^2 (two of B random vectors would lie in a space that the others do not fill).
  *
- * Cheap equations come first and are used up before the next ones are touched. When they have
- * said all, the others are only probed, with small blocks, several equations in one batch: the
- * fewer had something to add, the more are probed together.
+ * Cheap equations come first and are used up before the next ones are touched. Once one has
+ * nothing to add, the others are tested before they are used: two random maps that satisfy all
+ * equations so far are evaluated on z, against a few covectors. If z still had something to add,
+ * all values would vanish with probability at most 1/p^2 + 1/p^PROBE, about. A test is much
+ * cheaper than a block, because two maps are evaluated and not a basis.
  *
  * The random vectors of a shape come from a seed of its own, and the solution space's basis is
  * that of the reduced echelon form.
@@ -19,9 +21,8 @@
 
 #include "partition_private.h"
 
-#define PROBE 8u
+#define PROBE 16u
 #define BATCH 192u
-#define GROUP (BATCH / PROBE)
 
 typedef struct solver {
     idsi_scratch *s;
@@ -143,7 +144,7 @@ static bool is_done(const solver *v)
 static ids_status drain_equation(solver *v, const idsi_equation *equation)
 {
     ids_status st = IDS_OK;
-    uint32_t width = 2 * PROBE;
+    uint32_t width = PROBE;
 
     while (!is_done(v)) {
         IDSI_TRY(use_equation(v, equation, width));
@@ -158,26 +159,55 @@ done:
     return st;
 }
 
-/* Probes a group of equations, then drains those that had something to add. */
-static ids_status probe_group(solver *v, const idsi_equation *equations, size_t count, bool *any)
+/* Random maps that satisfy the equations so far. */
+static ids_status draw_maps(solver *v, idsi_maps *maps)
 {
     ids_status st = IDS_OK;
-    bool more[GROUP] = {false};
+    uint32_t unknowns = v->engine->spaces[v->shape].unknowns;
 
-    *any = false;
-    for (size_t i = 0; i < count; i++) {
-        IDSI_TRY(use_equation(v, &equations[i], PROBE));
+    idsi_maps_clear(v->s->ctx, maps);
+    maps->unknowns = unknowns;
+    IDSI_TRY(idsi_alloc_array(v->s->ctx, (size_t)IDSI_MAP_COUNT * unknowns, sizeof *maps->values,
+                              &maps->values));
+    for (uint32_t k = 0; k < IDSI_MAP_COUNT; k++) {
+        idsi_dense_echelon_solution(v->echelon, v->engine->prime, unknowns, &v->random,
+                                    maps->values + (size_t)k * unknowns);
     }
-    IDSI_TRY(flush_batch(v));
-    for (size_t i = 0; i < count; i++) {
-        more[i] = yield(v, i * PROBE, PROBE) + 2 > PROBE;
-        *any = *any || more[i];
+done:
+    return st;
+}
+
+/* Whether the maps send an equation's element to something else than zero. */
+static ids_status test_equation(solver *v, const idsi_equation *equation, idsi_maps *maps,
+                                bool *more)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = v->engine;
+    uint32_t tableaux = engine->skews.list[v->shape]->count;
+    const idsi_term *applied = NULL;
+    uint64_t total[IDSI_MAP_COUNT * PROBE] = {0};
+
+    for (size_t i = 0; i < (size_t)tableaux * PROBE; i++) {
+        v->start[i] = idsi_random_residue(&v->random, engine->prime);
     }
-    for (size_t i = 0; i < count; i++) {
-        if (more[i]) {
-            IDSI_TRY(drain_equation(v, &equations[i]));
+    for (size_t t = 0; t < equation->count; t++) {
+        const idsi_term *term = &equation->terms[t];
+        uint32_t sums[IDSI_MAP_COUNT * PROBE] = {0};
+        if (applied == NULL || !same_word(term, applied)) {
+            apply_word(v, term, PROBE);
+            applied = term;
+        }
+        IDSI_TRY(idsi_contract_maps(v->s, v->shape, term->expr, v->moved, PROBE, maps, sums));
+        for (size_t i = 0; i < IDSI_MAP_COUNT * PROBE; i++) {
+            total[i] = (total[i] + (uint64_t)term->coefficient * sums[i]) % engine->prime;
         }
     }
+    *more = false;
+    for (size_t i = 0; i < IDSI_MAP_COUNT * PROBE; i++) {
+        *more = *more || total[i] != 0;
+    }
+    v->blocks++;
+    IDSI_TRY(idsi_poll(engine->ctx, NULL));
 done:
     return st;
 }
@@ -187,17 +217,27 @@ static ids_status use_equations(solver *v)
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = v->engine;
     const idsi_degree *degree = &engine->degree[engine->skews.list[v->shape]->shape.cells];
-    size_t group = 1;
+    idsi_maps maps = {0};
+    bool testing = false;
 
-    for (size_t i = 0; i < degree->equation_count && !is_done(v);) {
-        bool any = false;
-        size_t left = degree->equation_count - i;
-        size_t count = group < left ? group : left;
-        IDSI_TRY(probe_group(v, degree->equations + i, count, &any));
-        i += count;
-        group = any ? 1 : group < GROUP / 2 ? 2 * group : GROUP;
+    for (size_t i = 0; i < degree->equation_count && !is_done(v); i++) {
+        const idsi_equation *equation = &degree->equations[i];
+        bool more = true;
+        size_t before = idsi_dense_echelon_rank(v->echelon);
+        if (testing) {
+            if (maps.values == NULL) {
+                IDSI_TRY(draw_maps(v, &maps));
+            }
+            IDSI_TRY(test_equation(v, equation, &maps, &more));
+        }
+        if (more) {
+            IDSI_TRY(drain_equation(v, equation));
+            idsi_maps_clear(v->s->ctx, &maps);
+        }
+        testing = testing || idsi_dense_echelon_rank(v->echelon) == before;
     }
 done:
+    idsi_maps_clear(v->s->ctx, &maps);
     return st;
 }
 

@@ -46,6 +46,18 @@ static void negate(uint32_t *v, size_t width, uint32_t p)
     }
 }
 
+/* The constants of the action for a distance d of contents. */
+static idsi_mix constants(int d, uint32_t p, const uint32_t *inverse)
+{
+    idsi_mix mix = {.p = p, .a = d > 0 ? inverse[d] : p - inverse[-d]};
+    mix.b = (1 + p - mul(mix.a, mix.a, p)) % p;
+    mix.c = p - mix.a;
+    mix.shoup_a = shoup(mix.a, p);
+    mix.shoup_b = shoup(mix.b, p);
+    mix.shoup_c = shoup(mix.c, p);
+    return mix;
+}
+
 void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
                               const uint32_t *inverse, uint32_t *block, size_t width)
 {
@@ -53,6 +65,8 @@ void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
     const int8_t *distance = skew->distance + (size_t)i * skew->count;
     uint32_t n = skew->shape.cells;
     idsi_mix_fn mix_pair = choose_mix();
+    idsi_mix mix[4 * IDSI_SHAPE_MAX + 1];           /* by distance + 2 * IDSI_SHAPE_MAX */
+    bool known[4 * IDSI_SHAPE_MAX + 1] = {false};
 
     for (uint32_t t = 0; t < skew->count; t++) {
         int d = distance[t];
@@ -62,13 +76,12 @@ void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
                 negate(block + (size_t)t * width, width, p);
             }
         } else if (row[i] < row[i + 1]) {
-            idsi_mix mix = {.p = p, .a = d > 0 ? inverse[d] : p - inverse[-d]};
-            mix.b = (1 + p - mul(mix.a, mix.a, p)) % p;
-            mix.c = p - mix.a;
-            mix.shoup_a = shoup(mix.a, p);
-            mix.shoup_b = shoup(mix.b, p);
-            mix.shoup_c = shoup(mix.c, p);
-            mix_pair(&mix, block + (size_t)t * width, block + (size_t)swap[t] * width, width);
+            size_t k = (size_t)(d + 2 * (int)IDSI_SHAPE_MAX);
+            if (!known[k]) {
+                mix[k] = constants(d, p, inverse);
+                known[k] = true;
+            }
+            mix_pair(&mix[k], block + (size_t)t * width, block + (size_t)swap[t] * width, width);
         }
     }
 }
