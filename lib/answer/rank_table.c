@@ -17,7 +17,7 @@
 
 #include <idspan/answer.h>
 
-#include "../engine/engine_private.h"
+#include "forecast_private.h"
 
 struct ids_rank_table {
     ids_ctx *ctx;
@@ -84,6 +84,7 @@ typedef struct job {
     size_t tower_count;
     idsi_tower *towers;
     ids_rank_table *table;
+    double share; /* of the estimated cost, at the end of the degree at work */
 } job;
 
 static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
@@ -135,11 +136,29 @@ done:
     return st;
 }
 
+/* Spreads the share of a degree over the towers; it never falls, though estimates change. */
+static void plan_shares(job *j, uint32_t degree)
+{
+    double begin = 0;
+    double end = 0;
+
+    idsi_forecast(&j->towers[0], degree, j->to, &begin, &end);
+    begin = fmax(begin, j->share);
+    end = fmax(end, begin);
+    for (size_t k = 0; k < j->tower_count; k++) {
+        double part = (end - begin) / (double)j->tower_count;
+        j->towers[k].share_begin = begin + (double)k * part;
+        j->towers[k].share_end = begin + ((double)k + 1) * part;
+    }
+    j->share = end;
+}
+
 static ids_status fill_table(job *j)
 {
     ids_status st = IDS_OK;
 
     for (uint32_t degree = 1; degree <= j->to; degree++) {
+        plan_shares(j, degree);
         for (size_t k = 0; k < j->tower_count; k++) {
             IDSI_TRY(idsi_tower_grow(&j->towers[k], degree < j->to || j->proof != NULL));
         }

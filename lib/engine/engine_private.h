@@ -101,6 +101,9 @@ typedef struct idsi_tower {
     idsi_random random; /* for what elimination chooses at random */
     uint32_t height;
     idsi_level level[IDS_MAX_DEGREE + 1]; /* level[1 .. height] */
+    /* Shares of the whole work at the beginning and end of the next degree; 0, 0: unknown. */
+    double share_begin;
+    double share_end;
 } idsi_tower;
 
 void idsi_tower_init(idsi_tower *tower, ids_ctx *ctx, const idsi_laws *laws, uint32_t prime);
@@ -113,6 +116,11 @@ void idsi_level_clear(ids_ctx *ctx, idsi_level *level);
  */
 ids_status idsi_tower_grow(idsi_tower *tower, bool tables);
 
+/*
+ * Share of the whole work when `done` of `total` rows are made, counted over all passes: each pass
+ * is taken as half of what was left, since their number is not known.
+ */
+double idsi_tower_share(const idsi_tower *tower, uint64_t done, uint64_t total);
 /* Blocks, free dimension and number of columns of the degree above the tower. */
 ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level);
 /* The block of an operation with canonical argument degrees. */

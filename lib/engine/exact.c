@@ -157,6 +157,7 @@ static ids_status borrow_tower(const idsi_proof *proof, const idsi_tower *model,
     *ok = true;
     *tower = *model;
     tower->prime = q;
+    tower->share_begin = model->share_end;
     for (uint32_t d = 1; d <= model->height; d++) {
         tower->level[d].entries = NULL;
         tower->level[d].start = proof->table[d].start;
@@ -315,6 +316,8 @@ static ids_status gather_sources(idsi_proof *proof, const idsi_tower *model, ids
     *same = true;
     for (size_t k = 0; k < proof->extra; k++) {
         idsi_tower *tower = proof->towers[k];
+        tower->share_begin = model->share_end;
+        tower->share_end = model->share_end;
         while (tower->height < degree) {
             IDSI_TRY(idsi_tower_grow(tower, true));
         }

@@ -29,6 +29,20 @@ void idsi_tower_init(idsi_tower *tower, ids_ctx *ctx, const idsi_laws *laws, uin
     idsi_random_seed(&tower->random, prime);
 }
 
+double idsi_tower_share(const idsi_tower *tower, uint64_t done, uint64_t total)
+{
+    double left = 1;
+
+    if (total == 0) {
+        return tower->share_begin;
+    }
+    for (; done >= total && left > 1e-9; done -= total) {
+        left /= 2;
+    }
+    left *= 1 - 0.5 * (double)(done % total) / (double)total;
+    return tower->share_end - left * (tower->share_end - tower->share_begin);
+}
+
 void idsi_level_clear(ids_ctx *ctx, idsi_level *level)
 {
     idsi_free(ctx, level->blocks);

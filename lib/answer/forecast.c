@@ -1,0 +1,104 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Estimates what share of the work a degree of a rank table is.
+ *
+ * The cost of a degree is taken as (rows + 1) * columns of its quotient step. With
+ * D(x) = sum of dim F(n)/I(n) x^n/n!, the number of columns of degree n is n! [x^n] of
+ * D^arity / (order of the symmetry), summed over the operations, and that of rows of
+ * D^degree / (permutations within the classes), summed over the laws: both count distributions of
+ * labels, where the exponential formula divides out a symmetry that moves all distributions. The
+ * dimensions of degrees that are not known yet are taken as the same share of the columns as in
+ * the last degree that is. Only progress depends on it, so double precision will do.
+ */
+#include <string.h>
+
+#include "forecast_private.h"
+
+/* d[n] = dimension / n!, up to a degree. */
+typedef struct series {
+    double d[IDS_MAX_DEGREE + 1];
+} series;
+
+/* [x^n] of s^power. */
+static double power_coefficient(const series *s, uint32_t power, uint32_t n)
+{
+    double product[IDS_MAX_DEGREE + 1] = {1};
+
+    for (uint32_t i = 0; i < power; i++) {
+        for (uint32_t m = n + 1; m-- > 0;) {
+            double sum = 0;
+            for (uint32_t k = 1; k <= m; k++) {
+                sum += s->d[k] * product[m - k];
+            }
+            product[m] = sum;
+        }
+    }
+    return product[n];
+}
+
+static double factorial(uint32_t n)
+{
+    double f = 1;
+    for (uint32_t i = 2; i <= n; i++) {
+        f *= i;
+    }
+    return f;
+}
+
+static double columns_of(const idsi_tower *tower, const series *s, uint32_t n)
+{
+    double sum = 0;
+    for (size_t i = 0; i < tower->sig->count; i++) {
+        const idsi_op *op = &tower->sig->ops[i];
+        if (op->arity <= n) {
+            sum += power_coefficient(s, op->arity, n) / (double)op->group.order;
+        }
+    }
+    return sum * factorial(n);
+}
+
+static double rows_of(const idsi_tower *tower, const series *s, uint32_t n)
+{
+    double sum = 0;
+    for (size_t i = 0; i < tower->laws->count; i++) {
+        const idsi_law *law = &tower->laws->law[i];
+        double symmetry = 1;
+        uint32_t members[IDSI_MAX_IDENTITY_DEGREE] = {0};
+        for (uint32_t v = 0; v < law->degree; v++) {
+            members[law->class_of[v]]++;
+            symmetry *= members[law->class_of[v]];
+        }
+        if (law->degree <= n) {
+            sum += power_coefficient(s, law->degree, n) / symmetry;
+        }
+    }
+    return sum * factorial(n);
+}
+
+void idsi_forecast(const idsi_tower *tower, uint32_t degree, uint32_t to, double *begin,
+                   double *end)
+{
+    series s = {{0}};
+    double kept = 1; /* dimension over columns */
+    double before = 0;
+    double here = 0;
+    double all = 0;
+
+    s.d[1] = 1;
+    for (uint32_t n = 1; n <= to; n++) {
+        double columns = n == 1 ? 1 : columns_of(tower, &s, n);
+        double cost = (rows_of(tower, &s, n) + 1) * columns;
+        if (n < degree) {
+            double dimension = (double)tower->level[n].dimension;
+            kept = columns > 0 ? dimension / columns : kept;
+            s.d[n] = dimension / factorial(n);
+            before += cost;
+        } else {
+            s.d[n] = n == 1 ? 1 : kept * columns / factorial(n);
+            here += n == degree ? cost : 0;
+        }
+        all += cost;
+    }
+    *begin = all > 0 ? before / all : 0;
+    *end = all > 0 ? (before + here) / all : 1;
+}
