@@ -8,8 +8,8 @@
  * equations, z is used up: if z still had something to add, so low a yield would have probability
  * at most 2/p^2 (two of B random vectors would lie in a space that the others do not fill).
  *
- * Cheap equations come first and are used up before the next ones are touched. Once one has
- * nothing to add, the others are tested before they are used: two random maps that satisfy all
+ * Cheap equations come first and are used up before the next ones are touched. After one that had
+ * nothing to add, the next one is tested before it is used: two random maps that satisfy all
  * equations so far are evaluated on z, against a few covectors. If z still had something to add,
  * all values would vanish with probability at most 1/p^2 + 1/p^PROBE, about. A test is much
  * cheaper than a block, because two maps are evaluated and not a basis.
@@ -234,7 +234,7 @@ static ids_status use_equations(solver *v)
             IDSI_TRY(drain_equation(v, equation));
             idsi_maps_clear(v->s->ctx, &maps);
         }
-        testing = testing || idsi_dense_echelon_rank(v->echelon) == before;
+        testing = idsi_dense_echelon_rank(v->echelon) < before + PROBE;
     }
 done:
     idsi_maps_clear(v->s->ctx, &maps);
