@@ -161,7 +161,8 @@ typedef struct ids_partition_row {
  *         they need and what the budget is); IDS_ERR_CANCELLED; IDS_ERR_INTERNAL (the cross-check
  *         failed: the message gives both numbers)
  * Cost: see DEVELOPERS.md, "Partition engine". Threads: up to the context's number; results do not
- * depend on it. Source: Young's seminormal form; equivariant maps to skew Specht modules. Since: 0.1
+ * depend on it. Source: Young's seminormal form; equivariant maps to skew Specht modules.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_table_create(ids_ctx *ctx,
                                                            const ids_presentation *presentation,

@@ -73,7 +73,7 @@ typedef struct job {
     double *error; /* of each row, mod one prime */
 } job;
 
-/* ---- rows -------------------------------------------------------------------------------------- */
+/* ---- rows -------------------------------------------------------------------------------- */
 
 static ids_status lay_out_row(job *j, uint32_t degree, uint64_t index, ids_partition_row *row)
 {
@@ -185,7 +185,7 @@ done:
     return st;
 }
 
-/* ---- filling in ------------------------------------------------------------------------------------ */
+/* ---- filling in -------------------------------------------------------------------------- */
 
 static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
 {
@@ -197,7 +197,8 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
                                          &multiplicity));
     if (multiplicity > row->free) {
         st = idsi_fail(j->ctx, IDS_ERR_INTERNAL,
-                       "a multiplicity in the quotient in degree %u is %u, in the free algebra %llu",
+                       "degree %u: a multiplicity is %u in the quotient, %llu in the free "
+                       "algebra",
                        row->degree, multiplicity, (unsigned long long)row->free);
         goto done;
     }

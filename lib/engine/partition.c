@@ -10,7 +10,7 @@
 
 #include "partition_private.h"
 
-/* ---- one degree ------------------------------------------------------------------------------------ */
+/* ---- one degree -------------------------------------------------------------------------- */
 
 /* Degrees that arguments of a law or equal arguments of an operation can have. */
 static uint32_t largest_argument(const idsi_partition_engine *engine, uint32_t degree)
@@ -253,7 +253,7 @@ done:
     return st;
 }
 
-/* ---- the engine -------------------------------------------------------------------------------------- */
+/* ---- the engine -------------------------------------------------------------------------- */
 
 ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t prime, uint32_t top,
                                  idsi_partition_engine **engine)

@@ -27,7 +27,7 @@
 #define STORE_ENTRIES (UINT64_C(1) << 20)
 #define STORE_BYTES (UINT64_C(1) << 30)
 
-/* ---- stored values --------------------------------------------------------------------------- */
+/* ---- stored values ----------------------------------------------------------------------- */
 
 static size_t value_place(const idsi_partition_engine *engine, uint32_t shape, uint32_t expr)
 {
@@ -139,7 +139,7 @@ done:
     return st;
 }
 
-/* ---- peeling --------------------------------------------------------------------------------- */
+/* ---- peeling ----------------------------------------------------------------------------- */
 
 /* What is being contracted: arguments first .. last of a product, core among them. */
 typedef struct contraction {

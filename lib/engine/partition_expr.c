@@ -16,7 +16,7 @@
 
 #include "partition_private.h"
 
-/* ---- expressions ----------------------------------------------------------------------------- */
+/* ---- expressions ------------------------------------------------------------------------- */
 
 static size_t find_expr(const idsi_partition_engine *engine, const idsi_expr *expr)
 {
@@ -99,7 +99,7 @@ uint32_t idsi_form_find(const idsi_partition_engine *engine, const idsi_expr *ex
     return UINT32_MAX;
 }
 
-/* ---- making equations ------------------------------------------------------------------------ */
+/* ---- making equations -------------------------------------------------------------------- */
 
 typedef struct maker {
     idsi_partition_engine *engine;
@@ -257,7 +257,7 @@ done:
     return st;
 }
 
-/* ---- symmetries ------------------------------------------------------------------------------ */
+/* ---- symmetries -------------------------------------------------------------------------- */
 
 static ids_status finish_symmetry(maker *m)
 {
@@ -346,7 +346,7 @@ done:
     return st;
 }
 
-/* ---- identities ------------------------------------------------------------------------------ */
+/* ---- identities -------------------------------------------------------------------------- */
 
 /* Expression of a node or variable, its sign, and the variables from left to right. */
 static ids_status rewrite(maker *m, int32_t at, uint32_t *expr, int *sign, uint8_t *order,

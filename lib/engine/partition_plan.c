@@ -11,7 +11,7 @@
 
 #include "partition_private.h"
 
-/* ---- forms ---------------------------------------------------------------------------------- */
+/* ---- forms ------------------------------------------------------------------------------- */
 
 typedef struct form_list {
     idsi_partition_engine *engine;
@@ -58,7 +58,7 @@ done:
     return st;
 }
 
-/* ---- shapes ---------------------------------------------------------------------------------- */
+/* ---- shapes ------------------------------------------------------------------------------ */
 
 /* Marks of the shapes that are in some degree's list, by number. */
 typedef struct planner {
@@ -162,7 +162,7 @@ done:
     return st;
 }
 
-/* ---- unknowns -------------------------------------------------------------------------------- */
+/* ---- unknowns ---------------------------------------------------------------------------- */
 
 static uint64_t count_chains(const idsi_partition_engine *engine, const idsi_form *form,
                              uint32_t shape, uint32_t first, uint32_t last)

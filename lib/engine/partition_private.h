@@ -30,7 +30,7 @@ typedef struct idsi_expr {
     uint32_t arg[IDS_MAX_ARITY];
 } idsi_expr;
 
-/* ---- equations -------------------------------------------------------------------------------- */
+/* ---- equations --------------------------------------------------------------------------- */
 
 /* coefficient * (labels permuted by w) expr; w is a word in exchanges, applied left to right. */
 typedef struct idsi_term {
@@ -47,7 +47,7 @@ typedef struct idsi_equation {
     double cost; /* rough, for the order in which equations are used */
 } idsi_equation;
 
-/* ---- unknowns ------------------------------------------------------------------------------------ */
+/* ---- unknowns ---------------------------------------------------------------------------- */
 
 /*
  * How an operation with given argument degrees is taken apart: the argument with the largest
@@ -125,14 +125,14 @@ ids_status idsi_partition_solve(idsi_partition_engine *engine, uint32_t degree);
 ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint8_t *parts,
                                        uint32_t rows, uint32_t *multiplicity);
 
-/* ---- partition_plan.c ------------------------------------------------------------------------- */
+/* ---- partition_plan.c -------------------------------------------------------------------- */
 
 ids_status idsi_plan_forms(idsi_partition_engine *engine);
 ids_status idsi_plan_shapes(idsi_partition_engine *engine);
 /* Number and places of the unknowns of a shape whose pieces are solved. */
 ids_status idsi_plan_unknowns(idsi_partition_engine *engine, uint32_t shape);
 
-/* ---- partition_expr.c ------------------------------------------------------------------------- */
+/* ---- partition_expr.c -------------------------------------------------------------------- */
 
 ids_status idsi_expr_intern(idsi_partition_engine *engine, uint32_t op, const uint32_t *args,
                             uint32_t *number);
@@ -141,7 +141,7 @@ void idsi_equations_clear(ids_ctx *ctx, idsi_degree *degree);
 /* Form of an expression among those of its degree; UINT32_MAX when it has none. */
 uint32_t idsi_form_find(const idsi_partition_engine *engine, const idsi_expr *expr);
 
-/* ---- partition_contract.c --------------------------------------------------------------------------
+/* ---- partition_contract.c -------------------------------------------------------------------
  * A block of covectors on a Specht module has `tableaux` rows of `width` residues.
  */
 
@@ -186,7 +186,7 @@ ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t
 ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
                                 const uint32_t *block, size_t width, uint32_t *out);
 
-/* ---- partition_solve.c, partition_generators.c ------------------------------------------------- */
+/* ---- partition_solve.c, partition_generators.c ------------------------------------------- */
 
 /*
  * Solves a shape whose pieces are solved; without `basis` only its dimension is wanted. Adds the
@@ -194,7 +194,7 @@ ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t 
  */
 ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
                             const atomic_bool *stop, uint64_t *blocks);
-/* Chooses the generators of a degree; its partitions and the lower degrees' generators are known. */
+/* Chooses the generators of a degree whose partitions are solved; those of lower degrees exist. */
 ids_status idsi_generators_choose(idsi_scratch *scratch, uint32_t degree);
 
 #endif
