@@ -40,7 +40,7 @@ typedef struct ids_normal_forms ids_normal_forms;
  *
  * @param ctx           borrowed now, kept.
  * @param presentation  kept: must outlive the normal forms. Candidates play no part.
- * @param max_degree    1 .. IDS_MAX_DEGREE - 1.
+ * @param max_degree    1 .. IDS_MAX_DEGREE.
  * @param options       borrowed; NULL for the defaults.
  * @param forms         out, owned: ids_normal_forms_free(); written only on IDS_OK.
  * @return IDS_OK
@@ -253,7 +253,7 @@ typedef struct ids_matrix ids_matrix;
  *
  * @param ctx           borrowed now, kept.
  * @param presentation  kept: must outlive the matrix. Candidates play no part.
- * @param degree        1 .. IDS_MAX_DEGREE - 1.
+ * @param degree        1 .. IDS_MAX_DEGREE.
  * @param options       borrowed; NULL for the defaults.
  * @param matrix        out, owned: ids_matrix_free(); written only on IDS_OK.
  * @return IDS_OK; IDS_ERR_ARG (NULL, degree, unknown struct_size, `field` no prime below 2^30 or

@@ -194,9 +194,9 @@ ids_status ids_matrix_create(ids_ctx *ctx, const ids_presentation *presentation,
     if (ctx == NULL || presentation == NULL || matrix == NULL) {
         return idsi_fail_arg(ctx, "context, presentation or result");
     }
-    if (degree == 0 || degree >= IDS_MAX_DEGREE) {
+    if (degree == 0 || degree > IDS_MAX_DEGREE) {
         return idsi_fail(ctx, IDS_ERR_ARG, "degree %u: possible are 1 to %u", degree,
-                         IDS_MAX_DEGREE - 1);
+                         IDS_MAX_DEGREE);
     }
     IDSI_TRY(check_options(ctx, options, &chosen));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));

@@ -57,9 +57,9 @@ ids_status ids_normal_forms_create(ids_ctx *ctx, const ids_presentation *present
     if (ctx == NULL || presentation == NULL || forms == NULL) {
         return idsi_fail_arg(ctx, "context, presentation or result");
     }
-    if (max_degree == 0 || max_degree >= IDS_MAX_DEGREE) {
+    if (max_degree == 0 || max_degree > IDS_MAX_DEGREE) {
         return idsi_fail(ctx, IDS_ERR_ARG, "degree %u: possible are 1 to %u", max_degree,
-                         IDS_MAX_DEGREE - 1);
+                         IDS_MAX_DEGREE);
     }
     IDSI_TRY(choose_options(ctx, options, &chosen));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));

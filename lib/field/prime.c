@@ -6,8 +6,16 @@
  * the rank of A mod p is less than r only if p divides M. By Hadamard |M| <= product of the
  * Euclidean norms of its rows, say 2^b, so at most b/29 primes above 2^29 divide it. A prime drawn
  * uniformly from the IDSI_PRIME_COUNT primes of (2^29, 2^30) is one of these with probability at
- * most (b/29) / IDSI_PRIME_COUNT, and independent draws multiply. (Count of primes: pi(2^30) =
+ * most (b/29) / IDSI_PRIME_COUNT, and independent draws multiply; a draw that must differ from the
+ * ones before has no more than these primes less to choose from. (Count of primes: pi(2^30) =
  * 54400028, pi(2^29) = 28192750, OEIS A007053.)
+ *
+ * For a rank table A holds all consequences in the monomials of a degree. No quotient step is
+ * formed over Q, so none needs a bound: the steps mod p, taken together, give the rank of A mod p,
+ * because dim F(n)/I(n) over GF(p) is what they compute. The terms of a law stay different when
+ * monomials are put in and when it becomes a part of a product, so a row has the norm of its law,
+ * and r is at most dim F(n). Rows that random combinations miss in some step make the rank too
+ * small as well; the probability of that is added, for each prime.
  */
 #include <math.h>
 

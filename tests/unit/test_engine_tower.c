@@ -79,7 +79,6 @@ typedef struct check {
     const idsi_tower *tower;
     const idsi_level *level;
     uint64_t *sum;
-    uint64_t rows;
 } check;
 
 static ids_status row_vanishes(void *user, const idsi_entry *row, size_t count)
@@ -101,7 +100,6 @@ static ids_status row_vanishes(void *user, const idsi_entry *row, size_t count)
     for (uint64_t j = 0; j < c->level->dimension; j++) {
         ck_assert_uint_eq(c->sum[j], 0);
     }
-    c->rows++;
     return IDS_OK;
 }
 
@@ -109,7 +107,6 @@ static void check_level(const tower *t, uint32_t degree)
 {
     const idsi_level *level = &t->tower.level[degree];
     check c = {.tower = &t->tower, .level = level};
-    uint64_t rows = 0;
 
     for (uint64_t j = 0; j < level->dimension; j++) {
         /* A normal form is its own reduction; they stand in order. */
@@ -128,8 +125,6 @@ static void check_level(const tower *t, uint32_t degree)
     c.sum = calloc(level->dimension + 1, sizeof *c.sum);
     ck_assert_ptr_nonnull(c.sum);
     TEST_OK(t->ctx, idsi_rows_each(&t->tower, level, row_vanishes, &c));
-    TEST_OK(t->ctx, idsi_rows_count(&t->tower, level, &rows));
-    ck_assert_uint_le(c.rows, rows); /* empty rows are not handed on */
     free(c.sum);
 }
 
