@@ -240,6 +240,8 @@ static ids_status fill_table(job *j, uint32_t number)
 
     idsi_tower_init(&tower, j->ctx, j->laws, table->primes[number]);
     IDSI_TRY(idsi_partition_create(j->ctx, j->laws, table->primes[number], j->to, &engine));
+    engine->share_part = 1.0 / (j->options.primes == 0 ? 1 : j->options.primes);
+    engine->share_from = number * engine->share_part;
     for (uint32_t d = j->from; d <= j->to; d++) {
         size_t from = i;
         double error = 0;

@@ -47,8 +47,7 @@ typedef struct crew {
     uint32_t *shapes; /* largest first */
     size_t count;
     bool basis; /* solutions are wanted, not only their number */
-    double cost;
-    _Atomic double cost_done;
+    _Atomic double cost_done; /* in this degree */
     atomic_size_t next;
     atomic_uint_least64_t blocks;
     atomic_bool stop;
@@ -67,6 +66,18 @@ static double shape_cost(const idsi_partition_engine *engine, uint32_t shape)
     return tableaux * tableaux * tableaux;
 }
 
+/* That of all shapes below a degree. */
+static double lower_cost(const idsi_partition_engine *engine, uint32_t degree)
+{
+    double cost = 0;
+    for (uint32_t d = 1; d < degree; d++) {
+        for (size_t k = 0; k < engine->degree[d].shape_count; k++) {
+            cost += shape_cost(engine, engine->degree[d].shapes[k]);
+        }
+    }
+    return cost;
+}
+
 static void add_cost(crew *c, double cost)
 {
     double done = atomic_load(&c->cost_done);
@@ -76,11 +87,14 @@ static void add_cost(crew *c, double cost)
 
 static ids_status report_crew(crew *c)
 {
+    const idsi_partition_engine *engine = c->engine;
+    double done = engine->cost_done + atomic_load(&c->cost_done);
+    double share = done < engine->cost ? done / engine->cost : 1;
     ids_progress progress = {.stage = "partitions",
                              .degree = c->degree,
                              .done = atomic_load(&c->next),
                              .total = c->count,
-                             .share = atomic_load(&c->cost_done) / c->cost};
+                             .share = engine->share_from + engine->share_part * share};
     progress.done = progress.done < progress.total ? progress.done : progress.total;
     return idsi_poll(c->engine->ctx, &progress);
 }
@@ -207,10 +221,8 @@ static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, u
 
     IDSI_TRY(make_equations(engine, degree));
     sort_shapes(engine, shapes, count);
-    for (size_t k = 0; k < count; k++) {
-        hands.cost += shape_cost(engine, shapes[k]);
-    }
     st = run_crew(&hands);
+    engine->cost_done += atomic_load(&hands.cost_done);
     note_error(engine, atomic_load(&hands.blocks));
 done:
     return st;
@@ -239,8 +251,12 @@ ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint
     for (uint32_t i = 0; i < rows; i++) {
         degree += parts[i];
     }
-    IDSI_TRY(idsi_partition_solve(engine, degree - 1));
     IDSI_TRY(idsi_skews_get(&engine->skews, parts, empty, rows, &shape));
+    if (engine->solved < degree && shape < engine->space_count) {
+        /* This one alone is wanted of its degree. */
+        engine->cost = lower_cost(engine, degree) + shape_cost(engine, shape);
+    }
+    IDSI_TRY(idsi_partition_solve(engine, degree - 1));
     if (shape >= engine->space_count) {
         *multiplicity = 0; /* there is no monomial of this degree */
         return IDS_OK;
@@ -280,6 +296,8 @@ ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t p
     idsi_skews_init(&made->skews, ctx);
     IDSI_TRY(idsi_plan_forms(made));
     IDSI_TRY(idsi_plan_shapes(made));
+    made->cost = lower_cost(made, top + 1);
+    made->share_part = 1;
     *engine = made;
     made = NULL;
 done:

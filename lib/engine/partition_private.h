@@ -97,6 +97,10 @@ typedef struct idsi_partition_engine {
     uint32_t prime;
     uint32_t top;    /* largest degree */
     uint32_t solved; /* degrees of which all shapes are solved */
+    double cost;       /* estimated, of all shapes that are wanted */
+    double cost_done;  /* of them, in degrees that are finished */
+    double share_from; /* progress is reported from here on, */
+    double share_part; /* and this far: parts of a longer work; 0 and 1 unless set */
     idsi_random random;
     uint32_t inverse[2 * IDSI_SHAPE_MAX + 1];
     idsi_skews skews;
