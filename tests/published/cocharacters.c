@@ -9,6 +9,8 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include <idspan/gmp.h>
+
 #include "published.h"
 
 #define RANKS_HEADER "id,file,degree,quotient,status,reach,source"
@@ -186,6 +188,78 @@ void cocharacters_add(Suite *suite, const char *first, const char *second, bool 
     tcase_set_timeout(tcase, seconds);
     tcase_add_loop_test(tcase, test_file, 0, (int)file_count);
     suite_add_tcase(suite, tcase);
+}
+
+/* ---- far degrees ------------------------------------------------------------------------- */
+
+#define MOST_FAR 8u
+
+static struct {
+    const char *file;
+    uint32_t degree;
+} far[MOST_FAR];
+static size_t far_count;
+
+static void check_free(ids_ctx *ctx, const ids_presentation *presentation,
+                       const ids_partition_row *total)
+{
+    ids_counts *counts = NULL;
+    mpz_t monomials;
+
+    mpz_init(monomials);
+    TEST_OK(ctx, ids_counts_create(ctx, ids_presentation_signature(presentation), total->degree,
+                                   &counts));
+    TEST_OK(ctx, ids_counts_monomials(counts, total->degree, monomials));
+    ck_assert(mpz_fits_ulong_p(monomials) && mpz_get_ui(monomials) == total->free);
+    mpz_clear(monomials);
+    ids_counts_free(counts);
+}
+
+START_TEST(test_far)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_presentation *presentation = published_presentation(ctx, far[_i].file);
+    ids_partition_table *table[2] = {NULL, NULL};
+
+    for (size_t k = 0; k < 2; k++) {
+        ids_partition_options options = {.struct_size = sizeof options, .seed = 2024 + k};
+        TEST_OK(ctx, ids_partition_table_create(ctx, presentation, 1, far[_i].degree, &options,
+                                                &table[k]));
+    }
+    ck_assert_uint_ne(ids_partition_table_prime(table[0], 0),
+                      ids_partition_table_prime(table[1], 0));
+    for (size_t i = 0; i < ids_partition_table_count(table[0]); i++) {
+        ids_partition_row row[2] = {{0}};
+        ck_assert_int_eq(ids_partition_table_row(table[0], i, &row[0]), IDS_OK);
+        ck_assert_int_eq(ids_partition_table_row(table[1], i, &row[1]), IDS_OK);
+        ck_assert_msg(row[0].quotient == row[1].quotient,
+                      "%s, row %zu of degree %u: %" PRIu64 " mod one prime, %" PRIu64
+                      " mod another",
+                      far[_i].file, i, row[0].degree, row[0].quotient, row[1].quotient);
+        if (row[0].total) {
+            check_free(ctx, presentation, &row[0]);
+        }
+    }
+    ids_partition_table_free(table[0]);
+    ids_partition_table_free(table[1]);
+    ids_presentation_free(presentation);
+    test_ctx_free(ctx);
+}
+END_TEST
+
+void cocharacters_add_far(Suite *suite, const char *file, uint32_t degree, double seconds)
+{
+    TCase *tcase = tcase_create("far");
+
+    if (far_count == MOST_FAR) {
+        exit(EXIT_FAILURE); /* before Check runs, which could tell more */
+    }
+    far[far_count].file = file;
+    far[far_count].degree = degree;
+    tcase_set_timeout(tcase, seconds);
+    tcase_add_loop_test(tcase, test_far, (int)far_count, (int)far_count + 1);
+    suite_add_tcase(suite, tcase);
+    far_count++;
 }
 
 void cocharacters_free(void)

@@ -8,6 +8,7 @@
 
 #include <check.h>
 #include <stdbool.h>
+#include <stdint.h>
 
 /*
  * Adds a test for each file that has rows of ranks.csv whose column `reach` is `first` or
@@ -15,6 +16,12 @@
  */
 void cocharacters_add(Suite *suite, const char *first, const char *second, bool multiplicities,
                       double seconds);
+/*
+ * Adds a test that a presentation's table to a degree, for which no published values are known,
+ * comes out the same with two primes, and that its free dimensions are the numbers of monomials.
+ * `file` and `seconds` are kept.
+ */
+void cocharacters_add_far(Suite *suite, const char *file, uint32_t degree, double seconds);
 /* Frees what the tests used. */
 void cocharacters_free(void);
 

@@ -150,6 +150,8 @@ int main(void)
     tcase_add_loop_test(tcase, test_theorem, 0, sizeof theorems / sizeof *theorems);
     suite_add_tcase(suite, tcase);
     cocharacters_add(suite, "normal", "partition", true, 60);
+    cocharacters_add_far(suite, "varieties/ternary-cube-exchange.pres", 11, 60);
+    cocharacters_add_far(suite, "varieties/binary-ternary-derivation.pres", 8, 60);
     result = test_run(suite);
     cocharacters_free();
     return result;
