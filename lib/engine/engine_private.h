@@ -129,13 +129,20 @@ const idsi_block *idsi_level_block(const idsi_level *level, uint32_t op, const u
 /* ---- rows (lib/engine/rows.c) ---------------------------------------------------------------- */
 
 /*
- * Makes every row of degree `level->degree` from the tower's lower degrees: a consequence
- * f(m1, .., md), as entries (column, value) of the quotient step.
+ * All rows of degree `level->degree`, made from the tower's lower degrees: consequences
+ * f(m1, .., md), as entries (column, value) of the quotient step. They come in pieces, in the same
+ * order whenever they are made. Tower and level must outlive it.
  */
+typedef struct idsi_rows idsi_rows;
+
+ids_status idsi_rows_create(const idsi_tower *tower, const idsi_level *level, idsi_rows **rows);
+void idsi_rows_free(idsi_rows *rows);
+size_t idsi_rows_pieces(const idsi_rows *rows);
+/* Makes the rows of a piece of an idsi_rows; several threads may. */
+ids_status idsi_rows_piece(void *rows, size_t piece, idsi_row_fn row, void *user);
+/* Makes all rows. */
 ids_status idsi_rows_each(const idsi_tower *tower, const idsi_level *level, idsi_row_fn row,
                           void *user);
-/* Number of rows that idsi_rows_each() makes. */
-ids_status idsi_rows_count(const idsi_tower *tower, const idsi_level *level, uint64_t *count);
 
 /* ---- proof over Q (lib/engine/exact.c) ------------------------------------------------------- */
 

@@ -191,18 +191,6 @@ done:
     return st;
 }
 
-/* What the elimination calls to have the rows made. */
-typedef struct row_source {
-    const idsi_tower *tower;
-    const idsi_level *level;
-} row_source;
-
-static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
-{
-    const row_source *source = user;
-    return idsi_rows_each(source->tower, source->level, row, row_user);
-}
-
 static ids_status check_budget(const idsi_tower *tower, const idsi_level *level)
 {
     ids_memory memory = ids_ctx_memory(tower->ctx);
@@ -234,16 +222,18 @@ static ids_status fail_size(const idsi_tower *tower, const idsi_level *level)
 static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
 {
     ids_status st = IDS_OK;
-    row_source source = {tower, level};
+    idsi_rows *rows = NULL;
     idsi_result result = {0};
     idsi_matrix matrix = {.ctx = tower->ctx,
                           .prime = tower->prime,
                           .columns = (uint32_t)level->columns,
                           .tables = tables,
-                          .source = make_rows,
-                          .source_user = &source};
+                          .piece = idsi_rows_piece};
 
     IDSI_TRY(check_budget(tower, level));
+    IDSI_TRY(idsi_rows_create(tower, level, &rows));
+    matrix.pieces = idsi_rows_pieces(rows);
+    matrix.source_user = rows;
     st = idsi_eliminate(&matrix, &tower->random, &result);
     if (st == IDS_OK) {
         level->dimension = level->columns - result.rank;
@@ -254,6 +244,7 @@ static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
         st = fail_size(tower, level);
     }
 done:
+    idsi_rows_free(rows);
     idsi_echelon_free(result.echelon);
     return st;
 }

@@ -2,37 +2,64 @@
 /*
  * Dense echelon form mod a prime, for rows that come in blocks.
  *
- * Stored rows stand in panels of up to PANEL rows:
+ * Stored rows stand in panels of up to PANEL rows. A full panel's pivots are dropped from the
+ * columns of everything that comes later, since nothing but zeros stands there:
  *
- *     panel 0   1 . . at its own pivots
- *     panel 1   0 0 0 at the pivots of panel 0, 1 . . at its own
- *     panel 2   ...
+ *     panel 0   all columns               1 . . at its own pivots
+ *     panel 1   less the pivots of 0      1 . . at its own pivots
+ *     panel 2   less those of 0 and 1     ...
  *
  * A new block is cleared at the pivots of panel 0, 1, ... in turn, one product of matrices each
- * (the block's entries there, times the panel); panels do not disturb the pivots of earlier ones.
- * What is left is brought to echelon form by itself, in slices of SLICE rows, and becomes part of
- * the last panel. So all but a small share of the work is products. Cost: rank * rank * columns / 2
- * multiplications for as many rows as the rank.
+ * (the block's entries there, times the panel), and then loses these columns. What is left is
+ * brought to reduced echelon form by itself: half by half, each half clearing the other by a
+ * product, down to SLICE rows. Then it becomes part of the last panel. So all but a small share of
+ * the work is products. Cost for as many rows as the rank r: r^2 c / 2 - r^3 / 6 multiplications.
+ *
+ * Completed, a panel is left with the columns that are pivots of no panel at all.
  */
+#include <stdlib.h>
 #include <string.h>
 
 #include "dense_private.h"
+#include "kernels.h"
 
-#define PANEL 192u
+#define PANEL 256u
 #define SLICE 16u
+
+typedef struct panel {
+    size_t used;
+    size_t width;            /* number of its columns */
+    uint32_t *column;        /* its columns, ascending */
+    uint32_t *rows;          /* PANEL x width */
+    uint32_t pivot[PANEL];   /* of each row: a place among its columns */
+    uint32_t dropped[PANEL]; /* the pivots, ascending, when it is full */
+} panel;
 
 struct idsi_dense_echelon {
     ids_ctx *ctx;
+    const idsi_kernel *kernel;
     uint32_t p;
     size_t columns;
-    size_t rank;
-    size_t capacity;  /* panels */
-    uint32_t **panel; /* PANEL x columns each */
-    uint32_t *pivot;  /* capacity * PANEL */
-    uint32_t *factor; /* entries of a block at a panel's pivots */
-    size_t factor_capacity;
+    size_t count;
+    size_t capacity;
+    panel **panels;
+    uint32_t *factor; /* PANEL x PANEL: entries of rows at pivots */
     idsi_workspace work;
+    idsi_team *team;
+    bool complete;
+    size_t width;     /* complete: columns that are no pivots */
+    uint32_t *column; /* complete: which, ascending */
+    uint32_t *whole;  /* the row that is looked at, all columns */
 };
+
+/* Rows at work: from one block, with the columns of the panel that they will go to. */
+typedef struct block {
+    uint32_t *rows;
+    size_t stride;
+    size_t width;
+    uint32_t pivot[PANEL];
+    bool independent[PANEL];
+} block;
 
 ids_status idsi_dense_echelon_create(ids_ctx *ctx, uint32_t p, size_t columns,
                                      idsi_dense_echelon **echelon)
@@ -42,14 +69,24 @@ ids_status idsi_dense_echelon_create(ids_ctx *ctx, uint32_t p, size_t columns,
 
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
+    made->kernel = idsi_kernel_choose();
     made->p = p;
     made->columns = columns;
-    IDSI_TRY(idsi_workspace_init(&made->work, ctx));
+    IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *made->whole, &made->whole));
     *echelon = made;
     made = NULL;
 done:
     idsi_dense_echelon_free(made);
     return st;
+}
+
+static void free_panel(ids_ctx *ctx, panel *old)
+{
+    if (old != NULL) {
+        idsi_free(ctx, old->rows);
+        idsi_free(ctx, old->column);
+        idsi_free(ctx, old);
+    }
 }
 
 void idsi_dense_echelon_free(idsi_dense_echelon *echelon)
@@ -58,59 +95,128 @@ void idsi_dense_echelon_free(idsi_dense_echelon *echelon)
         return;
     }
     ids_ctx *ctx = echelon->ctx;
-    for (size_t k = 0; k < echelon->capacity; k++) {
-        idsi_free(ctx, echelon->panel[k]);
+    for (size_t k = 0; k < echelon->count; k++) {
+        free_panel(ctx, echelon->panels[k]);
     }
     if (echelon->work.ctx != NULL) {
         idsi_workspace_clear(&echelon->work);
     }
+    idsi_free(ctx, echelon->panels);
     idsi_free(ctx, echelon->factor);
-    idsi_free(ctx, echelon->panel);
-    idsi_free(ctx, echelon->pivot);
+    idsi_free(ctx, echelon->column);
+    idsi_free(ctx, echelon->whole);
     idsi_free(ctx, echelon);
+}
+
+ids_status idsi_dense_echelon_share(idsi_dense_echelon *echelon, idsi_team *team)
+{
+    echelon->team = team;
+    return echelon->work.ctx == NULL ? IDS_OK : idsi_workspace_share(&echelon->work, team);
 }
 
 size_t idsi_dense_echelon_rank(const idsi_dense_echelon *echelon)
 {
-    return echelon->rank;
+    const size_t count = echelon->count;
+    return count == 0 ? 0 : (count - 1) * PANEL + echelon->panels[count - 1]->used;
+}
+
+uint64_t idsi_dense_echelon_bytes(uint64_t columns, uint64_t rank)
+{
+    uint64_t panels = rank / PANEL + 1;
+    uint64_t dropped = panels * (panels - 1) / 2 * PANEL; /* columns, over all panels */
+    uint64_t kept = panels * columns > dropped ? panels * columns - dropped : 0;
+    return (kept * (PANEL + 1) + columns) * sizeof(uint32_t) + (UINT64_C(2) << 20);
 }
 
 uint32_t idsi_dense_echelon_pivot(const idsi_dense_echelon *echelon, size_t i)
 {
-    return echelon->pivot[i];
+    const panel *from = echelon->panels[i / PANEL];
+    return from->column[from->pivot[i % PANEL]];
 }
 
 const uint32_t *idsi_dense_echelon_row(const idsi_dense_echelon *echelon, size_t i)
 {
-    return echelon->panel[i / PANEL] + (i % PANEL) * echelon->columns;
+    const panel *from = echelon->panels[i / PANEL];
+    const uint32_t *column = echelon->complete ? echelon->column : from->column;
+    size_t width = echelon->complete ? echelon->width : from->width;
+    const uint32_t *row = from->rows + (i % PANEL) * width;
+
+    memset(echelon->whole, 0, echelon->columns * sizeof *echelon->whole);
+    for (size_t j = 0; j < width; j++) {
+        echelon->whole[column[j]] = row[j];
+    }
+    echelon->whole[idsi_dense_echelon_pivot(echelon, i)] = 1;
+    return echelon->whole;
 }
 
-static uint32_t *stored_row(idsi_dense_echelon *e, size_t i)
+/* ---- clearing -------------------------------------------------------------------------------- */
+
+/* What products need is made when the first one is: many forms are so small that none is. */
+static ids_status prepare_products(idsi_dense_echelon *e)
 {
-    return e->panel[i / PANEL] + (i % PANEL) * e->columns;
+    ids_status st = IDS_OK;
+    void *room = NULL;
+
+    if (e->factor == NULL) {
+        if (e->work.ctx == NULL) {
+            IDSI_TRY(idsi_workspace_init(&e->work, e->ctx));
+            IDSI_TRY(idsi_workspace_share(&e->work, e->team));
+        }
+        IDSI_TRY(idsi_alloc(e->ctx, PANEL * PANEL * sizeof *e->factor, &room));
+        e->factor = room;
+    }
+done:
+    return st;
 }
 
-/* target -= factor * source on columns 0 .. last */
-static void subtract_row(uint32_t p, uint32_t *target, const uint32_t *source, uint32_t factor,
-                         size_t last)
+/*
+ * Subtracts from m <= PANEL target rows the multiples of k <= PANEL source rows that clear the
+ * sources' pivots.
+ */
+static ids_status clear_rows(idsi_dense_echelon *e, uint32_t *target, size_t target_stride,
+                             size_t m, const uint32_t *source, size_t source_stride,
+                             const uint32_t *pivot, size_t k, size_t width)
 {
-    uint64_t minus = p - factor;
-    for (size_t j = 0; j <= last; j++) {
-        target[j] = (uint32_t)((target[j] + minus * source[j]) % p);
+    ids_status st = IDS_OK;
+
+    if (m == 0 || k == 0) {
+        return IDS_OK;
+    }
+    IDSI_TRY(prepare_products(e));
+    for (size_t i = 0; i < m; i++) {
+        for (size_t j = 0; j < k; j++) {
+            e->factor[i * k + j] = target[i * target_stride + pivot[j]];
+        }
+    }
+    idsi_dense_mul_sub(&e->work, e->p, m, width, k, e->factor, k, source, source_stride, target,
+                       target_stride);
+done:
+    return st;
+}
+
+/* Takes out of each row the entries at the pivots of a full panel. */
+static void drop_columns(const panel *full, uint32_t *rows, size_t stride, size_t count)
+{
+    for (size_t i = 0; i < count; i++) {
+        uint32_t *row = rows + i * stride;
+        size_t to = full->dropped[0];
+        for (size_t k = 0; k < PANEL; k++) {
+            size_t from = full->dropped[k] + 1u;
+            size_t end = k + 1 < PANEL ? full->dropped[k + 1] : full->width;
+            if (end > from) {
+                memmove(row + to, row + from, (end - from) * sizeof *row);
+                to += end - from;
+            }
+        }
     }
 }
 
-static void scale_row(uint32_t p, uint32_t *row, uint32_t factor, size_t last)
-{
-    for (size_t j = 0; j <= last; j++) {
-        row[j] = idsi_mod_mul(row[j], factor, p);
-    }
-}
+/* ---- a block by itself ----------------------------------------------------------------------- */
 
-/* Last column with a nonzero entry; false for a zero row. */
-static bool last_nonzero(const uint32_t *row, size_t columns, size_t *last)
+/* Place of the last nonzero entry; false for a zero row. */
+static bool last_nonzero(const uint32_t *row, size_t width, size_t *last)
 {
-    for (size_t j = columns; j-- > 0;) {
+    for (size_t j = width; j-- > 0;) {
         if (row[j] != 0) {
             *last = j;
             return true;
@@ -119,115 +225,156 @@ static bool last_nonzero(const uint32_t *row, size_t columns, size_t *last)
     return false;
 }
 
-/* Subtracts the multiples of stored rows from .. to-1 (of one panel) that clear their pivots. */
-static ids_status clear_pivots(idsi_dense_echelon *e, uint32_t *rows, size_t count, size_t from,
-                               size_t to)
+/* The rows from .. from+count-1 row by row; those that are left stand first. */
+static size_t reduce_slice(const idsi_dense_echelon *e, block *b, size_t from, size_t count)
 {
-    ids_status st = IDS_OK;
-    size_t width = to - from;
-
-    if (count * width > e->factor_capacity) {
-        IDSI_TRY(idsi_resize_array(e->ctx, count * width, sizeof *e->factor, &e->factor));
-        e->factor_capacity = count * width;
-    }
-    for (size_t i = 0; i < count; i++) {
-        for (size_t k = 0; k < width; k++) {
-            e->factor[i * width + k] = rows[i * e->columns + e->pivot[from + k]];
-        }
-    }
-    idsi_dense_mul_sub(&e->work, e->p, count, e->columns, width, e->factor, width,
-                       stored_row(e, from), e->columns, rows, e->columns);
-done:
-    return st;
-}
-
-static ids_status add_panel(idsi_dense_echelon *e)
-{
-    ids_status st = IDS_OK;
-    size_t capacity = e->capacity + 1;
-
-    IDSI_TRY(idsi_resize_array(e->ctx, capacity * PANEL, sizeof *e->pivot, &e->pivot));
-    IDSI_TRY(idsi_resize_array(e->ctx, capacity, sizeof *e->panel, &e->panel));
-    e->panel[e->capacity] = NULL;
-    e->capacity = capacity;
-    IDSI_TRY(idsi_alloc_array(e->ctx, PANEL * e->columns, sizeof **e->panel,
-                              &e->panel[capacity - 1]));
-done:
-    return st;
-}
-
-/* Clears rows at the pivots of the stored rows from .. to-1, panel by panel. */
-static ids_status clear_range(idsi_dense_echelon *e, uint32_t *rows, size_t count, size_t from,
-                              size_t to)
-{
-    ids_status st = IDS_OK;
-    while (from < to) {
-        size_t end = from - from % PANEL + PANEL;
-        end = end < to ? end : to;
-        IDSI_TRY(clear_pivots(e, rows, count, from, end));
-        IDSI_TRY(idsi_poll(e->ctx, NULL));
-        from = end;
-    }
-done:
-    return st;
-}
-
-/* Brings a few rows to reduced echelon form by themselves; those that are left stand first. */
-static size_t reduce_slice(const idsi_dense_echelon *e, uint32_t *rows, size_t count,
-                           uint32_t *pivot, bool *independent)
-{
+    uint32_t *rows = b->rows + from * b->stride;
+    uint32_t *pivot = b->pivot + from;
     size_t kept = 0;
+
     for (size_t i = 0; i < count; i++) {
-        independent[i] = false;
-        uint32_t *row = rows + i * e->columns;
+        uint32_t *row = rows + i * b->stride;
         size_t last = 0;
         for (size_t k = 0; k < kept; k++) {
             if (row[pivot[k]] != 0) {
-                subtract_row(e->p, row, rows + k * e->columns, row[pivot[k]], pivot[k]);
+                e->kernel->combine(e->p, row, 1, rows + k * b->stride, e->p - row[pivot[k]],
+                                   pivot[k] + (size_t)1);
             }
         }
-        if (!last_nonzero(row, e->columns, &last)) {
+        b->independent[from + i] = last_nonzero(row, b->width, &last);
+        if (!b->independent[from + i]) {
             continue;
         }
-        scale_row(e->p, row, idsi_mod_inverse(row[last], e->p), last);
+        e->kernel->combine(e->p, row, idsi_mod_inverse(row[last], e->p), row, 0, last + 1);
         for (size_t k = 0; k < kept; k++) {
-            uint32_t *other = rows + k * e->columns;
+            uint32_t *other = rows + k * b->stride;
             if (other[last] != 0) {
-                subtract_row(e->p, other, row, other[last], last);
+                e->kernel->combine(e->p, other, 1, row, e->p - other[last], last + 1);
             }
         }
         if (kept < i) {
-            memcpy(rows + kept * e->columns, row, e->columns * sizeof *row);
+            memcpy(rows + kept * b->stride, row, b->width * sizeof *row);
         }
         pivot[kept] = (uint32_t)last;
-        independent[i] = true;
         kept++;
     }
     return kept;
 }
 
-/* Stores rows in reduced echelon form that are zero at all pivots; clears theirs in the panel. */
-static ids_status store_slice(idsi_dense_echelon *e, const uint32_t *rows, size_t count,
-                              const uint32_t *pivot)
+/* Brings rows to reduced echelon form by themselves; the *kept rows that are left stand first. */
+static ids_status reduce_rows(idsi_dense_echelon *e, block *b, size_t from, size_t count,
+                              size_t *kept)
 {
     ids_status st = IDS_OK;
+    size_t half = (count / 2 + SLICE - 1) / SLICE * SLICE;
+    uint32_t *first = b->rows + from * b->stride;
+    uint32_t *second = first + half * b->stride;
+    size_t kept_first = 0;
+    size_t kept_second = 0;
 
-    while (count > 0) {
-        if (e->rank == e->capacity * PANEL) {
+    if (count <= SLICE) {
+        *kept = reduce_slice(e, b, from, count);
+        return IDS_OK;
+    }
+    IDSI_TRY(reduce_rows(e, b, from, half, &kept_first));
+    IDSI_TRY(clear_rows(e, second, b->stride, count - half, first, b->stride, b->pivot + from,
+                        kept_first, b->width));
+    IDSI_TRY(reduce_rows(e, b, from + half, count - half, &kept_second));
+    IDSI_TRY(clear_rows(e, first, b->stride, kept_first, second, b->stride, b->pivot + from + half,
+                        kept_second, b->width));
+    if (kept_first < half) {
+        for (size_t i = 0; i < kept_second; i++) {
+            memcpy(first + (kept_first + i) * b->stride, second + i * b->stride,
+                   b->width * sizeof *second);
+        }
+        memmove(b->pivot + from + kept_first, b->pivot + from + half,
+                kept_second * sizeof *b->pivot);
+    }
+    *kept = kept_first + kept_second;
+done:
+    return st;
+}
+
+/* ---- panels ---------------------------------------------------------------------------------- */
+
+static int compare_places(const void *a, const void *b)
+{
+    uint32_t x = *(const uint32_t *)a;
+    uint32_t y = *(const uint32_t *)b;
+    return x < y ? -1 : x > y;
+}
+
+/* A panel with the columns that are pivots of no panel so far. */
+static ids_status add_panel(idsi_dense_echelon *e)
+{
+    ids_status st = IDS_OK;
+    panel *made = NULL;
+    void *rows = NULL;
+    const panel *before = e->count > 0 ? e->panels[e->count - 1] : NULL;
+
+    IDSI_TRY(idsi_grow(e->ctx, e->count, &e->capacity, sizeof *e->panels, &e->panels));
+    IDSI_TRY(idsi_alloc_array(e->ctx, 1, sizeof *made, &made));
+    made->width = before == NULL ? e->columns : before->width - PANEL;
+    size_t all = before == NULL ? e->columns : before->width;
+    IDSI_TRY(idsi_alloc_array(e->ctx, all, sizeof *made->column, &made->column));
+    for (size_t j = 0; j < all; j++) {
+        made->column[j] = before == NULL ? (uint32_t)j : before->column[j];
+    }
+    if (before != NULL) {
+        drop_columns(before, made->column, 0, 1);
+    }
+    IDSI_TRY(idsi_alloc(e->ctx, (PANEL * made->width + 1) * sizeof *made->rows, &rows));
+    made->rows = rows;
+    e->panels[e->count] = made;
+    e->count++;
+    made = NULL;
+done:
+    free_panel(e->ctx, made);
+    return st;
+}
+
+/* A panel has become full: the rest of the block, from row `from` on, loses its pivots. */
+static void close_panel(panel *full, block *b, size_t from, size_t count)
+{
+    memcpy(full->dropped, full->pivot, sizeof full->dropped);
+    qsort(full->dropped, PANEL, sizeof *full->dropped, compare_places);
+    drop_columns(full, b->rows + from * b->stride, b->stride, count);
+    for (size_t i = from; i < from + count; i++) {
+        uint32_t below = 0;
+        for (size_t k = 0; k < PANEL; k++) {
+            below += full->dropped[k] < b->pivot[i];
+        }
+        b->pivot[i] -= below;
+    }
+    b->width -= PANEL;
+}
+
+/* Stores rows in reduced echelon form that are zero at all pivots; clears theirs in the panel. */
+static ids_status store_rows(idsi_dense_echelon *e, block *b, size_t count)
+{
+    ids_status st = IDS_OK;
+    size_t from = 0;
+
+    while (from < count) {
+        if (e->count == 0 || e->panels[e->count - 1]->used == PANEL) {
             IDSI_TRY(add_panel(e));
         }
-        size_t used = e->rank % PANEL;
-        size_t first = e->rank;
-        size_t now = count < PANEL - used ? count : PANEL - used;
-        memcpy(stored_row(e, first), rows, now * e->columns * sizeof *rows);
-        memcpy(e->pivot + first, pivot, now * sizeof *pivot);
-        if (used > 0) {
-            IDSI_TRY(clear_pivots(e, stored_row(e, first - used), used, first, first + now));
+        panel *last = e->panels[e->count - 1];
+        size_t room = PANEL - last->used;
+        size_t now = count - from < room ? count - from : room;
+        const uint32_t *rows = b->rows + from * b->stride;
+        IDSI_TRY(clear_rows(e, last->rows, last->width, last->used, rows, b->stride,
+                            b->pivot + from, now, last->width));
+        for (size_t i = 0; i < now; i++) {
+            memcpy(last->rows + (last->used + i) * last->width, rows + i * b->stride,
+                   last->width * sizeof *rows);
         }
-        e->rank += now;
-        rows += now * e->columns;
-        pivot += now;
-        count -= now;
+        memcpy(last->pivot + last->used, b->pivot + from, now * sizeof *b->pivot);
+        last->used += now;
+        from += now;
+        if (last->used == PANEL) {
+            close_panel(last, b, from, count - from);
+        }
     }
 done:
     return st;
@@ -238,22 +385,92 @@ ids_status idsi_dense_echelon_add(idsi_dense_echelon *echelon, uint32_t *rows, s
 {
     ids_status st = IDS_OK;
     idsi_dense_echelon *e = echelon;
-    size_t before = e->rank;
-    uint32_t pivot[SLICE];
-    bool found[SLICE];
+    block b = {.stride = e->columns};
 
-    IDSI_TRY(clear_range(e, rows, count, 0, before));
-    for (size_t i = 0; i < count; i += SLICE) {
-        uint32_t *slice = rows + i * e->columns;
-        size_t height = count - i < SLICE ? count - i : SLICE;
-        IDSI_TRY(clear_range(e, slice, height, before, e->rank));
-        size_t kept = reduce_slice(e, slice, height, pivot, found);
-        IDSI_TRY(store_slice(e, slice, kept, pivot));
+    for (size_t from = 0; from < count; from += PANEL) {
+        size_t now = count - from < PANEL ? count - from : PANEL;
+        size_t kept = 0;
+        b.rows = rows + from * e->columns;
+        b.width = e->columns;
+        for (size_t k = 0; k < e->count; k++) {
+            const panel *by = e->panels[k];
+            IDSI_TRY(clear_rows(e, b.rows, b.stride, now, by->rows, by->width, by->pivot, by->used,
+                                by->width));
+            if (by->used == PANEL) {
+                drop_columns(by, b.rows, b.stride, now);
+                b.width -= PANEL;
+            }
+            IDSI_TRY(idsi_poll(e->ctx, NULL));
+        }
+        IDSI_TRY(reduce_rows(e, &b, 0, now, &kept));
         if (independent != NULL) {
-            memcpy(independent + i, found, height * sizeof *found);
+            memcpy(independent + from, b.independent, now * sizeof *independent);
+        }
+        IDSI_TRY(store_rows(e, &b, kept));
+    }
+done:
+    return st;
+}
+
+/* ---- completion ------------------------------------------------------------------------------ */
+
+/* Finds the columns that are no pivots. */
+static ids_status find_free_columns(idsi_dense_echelon *e)
+{
+    ids_status st = IDS_OK;
+    size_t rank = idsi_dense_echelon_rank(e);
+    bool *is_pivot = NULL;
+
+    IDSI_TRY(idsi_alloc_array(e->ctx, e->columns, sizeof *is_pivot, &is_pivot));
+    IDSI_TRY(idsi_alloc_array(e->ctx, e->columns - rank, sizeof *e->column, &e->column));
+    for (size_t i = 0; i < rank; i++) {
+        is_pivot[idsi_dense_echelon_pivot(e, i)] = true;
+    }
+    for (size_t j = 0; j < e->columns; j++) {
+        if (!is_pivot[j]) {
+            e->column[e->width++] = (uint32_t)j;
         }
     }
 done:
+    idsi_free(e->ctx, is_pivot);
+    return st;
+}
+
+/* Completes panel k; later panels are complete and have shed their pivots. */
+static ids_status complete_panel(idsi_dense_echelon *e, size_t k, uint32_t *place)
+{
+    ids_status st = IDS_OK;
+    panel *at = e->panels[k];
+    void *made = NULL;
+
+    IDSI_TRY(prepare_products(e));
+    IDSI_TRY(idsi_alloc(e->ctx, (at->used * e->width + 1) * sizeof *at->rows, &made));
+    uint32_t *rows = made;
+    for (size_t j = 0; j < at->width; j++) {
+        place[at->column[j]] = (uint32_t)j;
+    }
+    for (size_t i = 0; i < at->used; i++) {
+        for (size_t j = 0; j < e->width; j++) {
+            rows[i * e->width + j] = at->rows[i * at->width + place[e->column[j]]];
+        }
+    }
+    for (size_t later = k + 1; later < e->count; later++) {
+        const panel *by = e->panels[later];
+        for (size_t i = 0; i < at->used; i++) {
+            for (size_t j = 0; j < by->used; j++) {
+                uint32_t column = by->column[by->pivot[j]];
+                e->factor[i * by->used + j] = at->rows[i * at->width + place[column]];
+            }
+        }
+        idsi_dense_mul_sub(&e->work, e->p, at->used, e->width, by->used, e->factor, by->used,
+                           by->rows, e->width, rows, e->width);
+        IDSI_TRY(idsi_poll(e->ctx, NULL));
+    }
+    idsi_free(e->ctx, at->rows);
+    at->rows = rows;
+    made = NULL;
+done:
+    idsi_free(e->ctx, made);
     return st;
 }
 
@@ -261,13 +478,15 @@ ids_status idsi_dense_echelon_complete(idsi_dense_echelon *echelon)
 {
     ids_status st = IDS_OK;
     idsi_dense_echelon *e = echelon;
+    uint32_t *place = NULL; /* of a column among those of a panel */
 
-    /* Downwards: a panel is cleared at the pivots of later panels, which are complete by then. */
-    for (size_t k = (e->rank + PANEL - 1) / PANEL; k-- > 0;) {
-        size_t first = k * PANEL;
-        size_t count = first + PANEL < e->rank ? PANEL : e->rank - first;
-        IDSI_TRY(clear_range(e, stored_row(e, first), count, first + PANEL, e->rank));
+    IDSI_TRY(idsi_alloc_array(e->ctx, e->columns, sizeof *place, &place));
+    IDSI_TRY(find_free_columns(e));
+    for (size_t k = e->count; k-- > 0;) {
+        IDSI_TRY(complete_panel(e, k, place));
     }
+    e->complete = true;
 done:
+    idsi_free(e->ctx, place);
     return st;
 }

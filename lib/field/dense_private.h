@@ -5,16 +5,22 @@
 #ifndef IDSI_DENSE_PRIVATE_H
 #define IDSI_DENSE_PRIVATE_H
 
+#include "../core/team_private.h"
 #include "field_private.h"
 
-/* Room for the packed operands of products; one a thread. */
+/* Room for the packed operands of products. One thread at a time, or one team, may use it. */
 typedef struct idsi_workspace {
     ids_ctx *ctx;
-    int64_t *packed_a;
-    int64_t *packed_b;
+    int32_t *packed_a;
+    int32_t *packed_b;
+    idsi_team *team;               /* that shares out large products; NULL: none */
+    struct idsi_workspace *others; /* of the other members of the team */
+    uint32_t other_count;
 } idsi_workspace;
 
 ids_status idsi_workspace_init(idsi_workspace *work, ids_ctx *ctx);
+/* Lets a team share out the products. It must outlive the workspace's last product. */
+ids_status idsi_workspace_share(idsi_workspace *work, idsi_team *team);
 void idsi_workspace_clear(idsi_workspace *work);
 
 /*
@@ -39,6 +45,8 @@ typedef struct idsi_dense_echelon idsi_dense_echelon;
 ids_status idsi_dense_echelon_create(ids_ctx *ctx, uint32_t p, size_t columns,
                                      idsi_dense_echelon **echelon);
 void idsi_dense_echelon_free(idsi_dense_echelon *echelon);
+/* Lets a team share out the work. It must outlive the last call that adds or completes. */
+ids_status idsi_dense_echelon_share(idsi_dense_echelon *echelon, idsi_team *team);
 /*
  * Rows (count x columns, stride columns) are used up. independent[i] tells whether row i was
  * independent of the form and of the rows before it; NULL when that is not wanted.
@@ -46,10 +54,13 @@ void idsi_dense_echelon_free(idsi_dense_echelon *echelon);
 ids_status idsi_dense_echelon_add(idsi_dense_echelon *echelon, uint32_t *rows, size_t count,
                                   bool *independent);
 size_t idsi_dense_echelon_rank(const idsi_dense_echelon *echelon);
-/* Clears every pivot column but for the pivot itself. */
+/* Bytes of a form with so many columns and such a rank, at most. */
+uint64_t idsi_dense_echelon_bytes(uint64_t columns, uint64_t rank);
+/* Clears every pivot column but for the pivot itself. No rows may be added afterwards. */
 ids_status idsi_dense_echelon_complete(idsi_dense_echelon *echelon);
-/* Pivot and row (columns entries) number i < rank. */
+/* Pivot of row number i < rank. */
 uint32_t idsi_dense_echelon_pivot(const idsi_dense_echelon *echelon, size_t i);
+/* Row number i < rank, columns entries; lives until the next call for a row of this form. */
 const uint32_t *idsi_dense_echelon_row(const idsi_dense_echelon *echelon, size_t i);
 
 #endif

@@ -43,10 +43,10 @@ bool idsi_is_prime(uint32_t n);
 /* IDS_ERR_ARG with a message unless p is a prime below 2^30. */
 ids_status idsi_prime_check(ids_ctx *ctx, uint32_t p);
 /*
- * Error probability, and the k of 2^-k for it: of the primes in (2^29, 2^30), at most minor_bits / 29
- * divide one nonzero integer of minor_bits bits, so a random one does with probability at most
- * that over IDSI_PRIME_COUNT; random_error is added for what random rows can miss with each prime;
- * `primes` independent draws multiply. 0 when the bound is void.
+ * Error probability, and the k of 2^-k for it: of the primes in (2^29, 2^30), at most
+ * minor_bits / 29 divide one nonzero integer of minor_bits bits, so a random one does with
+ * probability at most that over IDSI_PRIME_COUNT; random_error is added for what random rows can
+ * miss with each prime; `primes` independent draws multiply. 0 when the bound is void.
  */
 double idsi_prime_error(double minor_bits, double random_error, uint32_t primes);
 /* The k of 2^-k >= error; 0 when the error is no bound, 1000 for no error. */
@@ -95,39 +95,26 @@ bool idsi_echelon_rule(const idsi_echelon *echelon, uint32_t column, const idsi_
 /* Entries in all rules. */
 uint64_t idsi_echelon_fill(const idsi_echelon *echelon);
 
-/*
- * Rows that are rewritten completely by an echelon form's rules, several side by side
- * (lib/field/lanes.c). The form must not get new rules meanwhile.
- */
-typedef struct idsi_lanes idsi_lanes;
-
-ids_status idsi_lanes_create(ids_ctx *ctx, uint32_t prime, uint32_t columns, idsi_lanes **lanes);
-void idsi_lanes_free(idsi_lanes *lanes);
-uint32_t idsi_lanes_count(void); /* rows side by side */
-uint64_t idsi_lanes_bytes(uint64_t columns);
-/* Adds factor * row to the row in a lane. */
-void idsi_lanes_load(idsi_lanes *lanes, uint32_t lane, const idsi_entry *row, size_t count,
-                     uint32_t factor);
-/*
- * Rewrites all lanes and clears them. Residues at columns c that are no pivots go to
- * out[lane * stride + place[c]], where out must be zero before.
- */
-void idsi_lanes_rewrite(idsi_lanes *lanes, const idsi_echelon *echelon, const uint32_t *place,
-                        uint32_t *out, size_t stride);
-
 /* ---- elimination (lib/field/eliminate.c) ----------------------------------------------------- */
 
 /* Receives one row: entries in any order, columns may repeat. */
 typedef ids_status (*idsi_row_fn)(void *user, const idsi_entry *row, size_t count);
 /* Makes all rows, the same ones in the same order at every call. */
 typedef ids_status (*idsi_source_fn)(void *user, idsi_row_fn row, void *row_user);
+/*
+ * Makes the rows of one piece of the whole, in any thread. The rows are those of piece 0, 1, ..
+ * in turn.
+ */
+typedef ids_status (*idsi_piece_fn)(void *user, size_t piece, idsi_row_fn row, void *row_user);
 
 typedef struct idsi_matrix {
     ids_ctx *ctx;
     uint32_t prime;
     uint32_t columns;
     bool tables; /* the complete echelon form is wanted, not only the rank */
-    idsi_source_fn source;
+    idsi_source_fn source; /* unless there are pieces */
+    size_t pieces;         /* > 0: rows come from `piece` */
+    idsi_piece_fn piece;
     void *source_user;
 } idsi_matrix;
 
@@ -139,7 +126,9 @@ typedef struct idsi_result {
     uint64_t deferred; /* rows that were left to the dense finish */
     uint64_t fill;     /* entries in sparse rules */
     uint64_t dense_rank;
-    uint64_t dense_columns;
+    uint64_t dense_columns; /* columns that the dense finish started from */
+    uint64_t dense_width;   /* columns that its rows had, folded */
+    uint64_t dense_rows;    /* rows that went into it */
 } idsi_result;
 
 /* Rank, and with tables the echelon form, of a matrix whose rows are streamed. */

@@ -1,12 +1,12 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The product kernel for AVX-512 (F and DQ): strips of 6 rows and 32 columns, so that 24
- * accumulators, 4 columns vectors and a broadcast fill the registers. A step is 24 products of
+ * The kernels for AVX-512 (F and DQ). Products: strips of 6 rows and 32 columns, so that 24
+ * accumulators, 4 vectors of columns and a broadcast fill the registers. A step is 24 products of
  * 8 pairs and 24 sums.
  *
- * At the end the sums are reduced in the vector unit: the quotient by p is taken in double
- * precision, which is off by less than 2^62 * 2^-52 / p + 1/2 < 1, so that the remainder lies in
- * (-2p, 2p) and two corrections bring it to [0, p).
+ * Sums of at most 4 p^2 are reduced with a quotient by p in double precision. It is at most 4 p, so
+ * rounded to an integer it is off by less than 1/2 + 4 p * 2^-51 < 1: the remainder lies in
+ * (-p, p), and one correction brings it to [0, p).
  */
 #include "kernels.h"
 
@@ -20,39 +20,42 @@
 
 #define AVX512 __attribute__((target("avx512f,avx512dq")))
 
-/* c - sum mod p for 8 entries. */
-AVX512 static inline __m512i settle(__m512i c, __m512i sum, __m512i prime, __m512d inverse)
+/* sum mod p for 8 sums, |sum| <= 4 p^2. */
+AVX512 static inline __m512i residues_of(__m512i sum, __m512i prime, __m512d inverse)
 {
     __m512d quotient = _mm512_mul_pd(_mm512_cvtepi64_pd(sum), inverse);
-    __m512i rest = _mm512_sub_epi64(
-        sum, _mm512_mullo_epi64(_mm512_cvtpd_epi64(quotient), prime));
-    __m512i value = _mm512_sub_epi64(c, rest); /* in (-2p, 3p) */
-    value = _mm512_mask_add_epi64(value, _mm512_movepi64_mask(value), value, prime);
-    value = _mm512_mask_add_epi64(value, _mm512_movepi64_mask(value), value, prime);
-    value = _mm512_min_epu64(value, _mm512_sub_epi64(value, prime));
-    return _mm512_min_epu64(value, _mm512_sub_epi64(value, prime));
+    __m512i rest = _mm512_sub_epi64(sum, _mm512_mullo_epi64(_mm512_cvtpd_epi64(quotient), prime));
+    return _mm512_min_epu64(rest, _mm512_add_epi64(rest, prime));
+}
+
+/* c - sum mod p. */
+AVX512 static inline __m512i settle(__m512i c, __m512i sum, __m512i prime, __m512d inverse)
+{
+    __m512i value = _mm512_sub_epi64(c, residues_of(sum, prime, inverse));
+    return _mm512_min_epu64(value, _mm512_add_epi64(value, prime));
 }
 
 AVX512 static void store(uint32_t p, __m512i sum[ROWS][VECTORS], uint32_t *c, size_t ldc, size_t m,
                          size_t n)
 {
     __m512i prime = _mm512_set1_epi64((int64_t)p);
+    __m512i low = _mm512_set1_epi64(UINT32_MAX);
     __m512d inverse = _mm512_set1_pd(1.0 / (double)p);
 
     for (size_t i = 0; i < m; i++) {
-        for (size_t v = 0; v < VECTORS && 8 * v < n; v++) {
-            uint32_t *at = c + i * ldc + 8 * v;
-            size_t left = n - 8 * v;
-            __mmask16 mask = (__mmask16)(left >= 8 ? 0xffu : (1u << left) - 1u);
-            __m512i old = _mm512_cvtepu32_epi64(
-                _mm512_castsi512_si256(_mm512_maskz_loadu_epi32(mask, at)));
-            __m256i now = _mm512_cvtepi64_epi32(settle(old, sum[i][v], prime, inverse));
-            _mm512_mask_storeu_epi32(at, mask, _mm512_castsi256_si512(now));
+        for (size_t v = 0; v < VECTORS / 2 && 16 * v < n; v++) {
+            uint32_t *at = c + i * ldc + 16 * v;
+            size_t left = n - 16 * v;
+            __mmask16 mask = (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
+            __m512i old = _mm512_maskz_loadu_epi32(mask, at);
+            __m512i even = settle(_mm512_and_si512(old, low), sum[i][2 * v], prime, inverse);
+            __m512i odd = settle(_mm512_srli_epi64(old, 32), sum[i][2 * v + 1], prime, inverse);
+            _mm512_mask_storeu_epi32(at, mask, _mm512_or_si512(even, _mm512_slli_epi64(odd, 32)));
         }
     }
 }
 
-AVX512 static void strip(uint32_t p, size_t steps, const int64_t *a, const int64_t *b, uint32_t *c,
+AVX512 static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
                          size_t ldc, size_t m, size_t n)
 {
     __m512i sum[ROWS][VECTORS];
@@ -69,19 +72,19 @@ AVX512 static void strip(uint32_t p, size_t steps, const int64_t *a, const int64
     for (size_t s = 0; s < steps; s += IDSI_KERNEL_STEPS) {
         for (size_t k = 0; k < IDSI_KERNEL_STEPS; k++) {
             __m512i column[VECTORS];
-#pragma GCC unroll 4
-            for (size_t v = 0; v < VECTORS; v++) {
-                column[v] = _mm512_loadu_si512(b + 8 * v);
-            }
+            column[0] = _mm512_loadu_si512(b);
+            column[2] = _mm512_loadu_si512(b + 16);
+            column[1] = _mm512_srli_epi64(column[0], 32);
+            column[3] = _mm512_srli_epi64(column[2], 32);
 #pragma GCC unroll 6
             for (size_t i = 0; i < ROWS; i++) {
-                __m512i x = _mm512_set1_epi64(a[i]);
+                __m512i x = _mm512_set1_epi32(a[i * IDSI_KERNEL_DEPTH]);
 #pragma GCC unroll 4
                 for (size_t v = 0; v < VECTORS; v++) {
                     sum[i][v] = _mm512_add_epi64(sum[i][v], _mm512_mul_epi32(x, column[v]));
                 }
             }
-            a += ROWS;
+            a++;
             b += COLUMNS;
         }
 #pragma GCC unroll 6
@@ -97,41 +100,77 @@ AVX512 static void strip(uint32_t p, size_t steps, const int64_t *a, const int64
     store(p, sum, c, ldc, m, n);
 }
 
-AVX512 static void centre(uint32_t p, const uint32_t *values, size_t count, int64_t *out)
+AVX512 static void centre(uint32_t p, const uint32_t *values, size_t count, int32_t *out)
+{
+    __m512i prime = _mm512_set1_epi32((int32_t)p);
+    __m512i half = _mm512_set1_epi32((int32_t)(p / 2));
+
+    for (size_t j = 0; j < count; j += 16) {
+        size_t left = count - j;
+        __mmask16 mask = (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
+        __m512i v = _mm512_maskz_loadu_epi32(mask, values + j);
+        v = _mm512_mask_sub_epi32(v, _mm512_cmpgt_epi32_mask(v, half), v, prime);
+        _mm512_mask_storeu_epi32(out + j, mask, v);
+    }
+}
+
+AVX512 static void combine(uint32_t p, uint32_t *target, uint32_t scale, const uint32_t *source,
+                           uint32_t factor, size_t count)
 {
     __m512i prime = _mm512_set1_epi64((int64_t)p);
-    __m512i half = _mm512_set1_epi64((int64_t)(p / 2));
-    size_t j = 0;
+    __m512d inverse = _mm512_set1_pd(1.0 / (double)p);
+    __m512i s = _mm512_set1_epi64((int64_t)scale);
+    __m512i f = _mm512_set1_epi64((int64_t)factor);
 
-    for (; j + 8 <= count; j += 8) {
-        __m512i v = _mm512_cvtepu32_epi64(_mm256_loadu_si256((const __m256i *)(values + j)));
-        v = _mm512_mask_sub_epi64(v, _mm512_cmpgt_epi64_mask(v, half), v, prime);
-        _mm512_storeu_si512(out + j, v);
-    }
-    for (; j < count; j++) {
-        out[j] = idsi_kernel_centred(values[j], p);
+    for (size_t j = 0; j < count; j += 16) {
+        size_t left = count - j;
+        __mmask16 mask = (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
+        __m512i x = _mm512_maskz_loadu_epi32(mask, target + j);
+        __m512i y = _mm512_maskz_loadu_epi32(mask, source + j);
+        __m512i even = _mm512_add_epi64(_mm512_mul_epu32(x, s), _mm512_mul_epu32(y, f));
+        __m512i odd = _mm512_add_epi64(_mm512_mul_epu32(_mm512_srli_epi64(x, 32), s),
+                                       _mm512_mul_epu32(_mm512_srli_epi64(y, 32), f));
+        even = residues_of(even, prime, inverse);
+        odd = residues_of(odd, prime, inverse);
+        _mm512_mask_storeu_epi32(target + j, mask,
+                                 _mm512_or_si512(even, _mm512_slli_epi64(odd, 32)));
     }
 }
 
-AVX512 static void lanes(uint32_t p, const idsi_entry *entries, size_t count,
-                         const uint32_t *factor, uint64_t *sums)
+/* Brings a sum below 12 p^2 under 4 p^2. */
+AVX512 static inline __m512i bring_back(__m512i sum, __m512i back)
 {
-    __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
-    __m512i f0 = _mm512_cvtepu32_epi64(_mm256_loadu_si256((const __m256i *)factor));
-    __m512i f1 = _mm512_cvtepu32_epi64(_mm256_loadu_si256((const __m256i *)(factor + 8)));
-
-    for (size_t i = 0; i < count; i++) {
-        uint64_t *sum = sums + (size_t)entries[i].column * IDSI_LANES;
-        __m512i value = _mm512_set1_epi64((int64_t)entries[i].value);
-        __m512i s0 = _mm512_add_epi64(_mm512_loadu_si512(sum), _mm512_mul_epu32(value, f0));
-        __m512i s1 = _mm512_add_epi64(_mm512_loadu_si512(sum + 8), _mm512_mul_epu32(value, f1));
-        s0 = _mm512_min_epu64(s0, _mm512_sub_epi64(s0, back));
-        s1 = _mm512_min_epu64(s1, _mm512_sub_epi64(s1, back));
-        _mm512_storeu_si512(sum, s0);
-        _mm512_storeu_si512(sum + 8, s1);
-    }
+    sum = _mm512_min_epu64(sum, _mm512_sub_epi64(sum, _mm512_add_epi64(back, back)));
+    return _mm512_min_epu64(sum, _mm512_sub_epi64(sum, back));
 }
 
-const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip, centre, lanes};
+AVX512 static bool gather(uint32_t p, const idsi_entry *entries, size_t count,
+                          const uint32_t *factors, const uint64_t *sums, uint32_t *residues)
+{
+    __m512i prime = _mm512_set1_epi64((int64_t)p);
+    __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
+    __m512d inverse = _mm512_set1_pd(1.0 / (double)p);
+    __m512i even = _mm512_loadu_si512(sums);
+    __m512i odd = _mm512_loadu_si512(sums + 8);
+
+    for (size_t i = 0; i < count; i += 8) {
+        size_t end = i + 8 < count ? i + 8 : count;
+        for (size_t k = i; k < end; k++) {
+            __m512i f = _mm512_loadu_si512(factors + (size_t)entries[k].column * IDSI_LANES);
+            __m512i value = _mm512_set1_epi32((int32_t)entries[k].value);
+            even = _mm512_add_epi64(even, _mm512_mul_epu32(f, value));
+            odd = _mm512_add_epi64(odd, _mm512_mul_epu32(_mm512_srli_epi64(f, 32), value));
+        }
+        even = bring_back(even, back);
+        odd = bring_back(odd, back);
+    }
+    even = residues_of(even, prime, inverse);
+    odd = residues_of(odd, prime, inverse);
+    __m512i all = _mm512_or_si512(even, _mm512_slli_epi64(odd, 32));
+    _mm512_storeu_si512(residues, all);
+    return _mm512_test_epi64_mask(all, all) != 0;
+}
+
+const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip, centre, combine, gather};
 
 #endif

@@ -2,11 +2,23 @@
 /*
  * What the kernels for different processors have in common.
  *
- * A kernel multiplies packed operands: A in strips of `rows` rows, B in strips of `columns`
- * columns, both step by step of k, entries centred (|entry| <= (p-1)/2 < 2^29) in 64 bits. So a
- * product is below 2^58, and a sum is brought back by 4 p^2 after every 16 of them: with
+ * Products of matrices. Operands are packed as centred residues (|entry| <= (p-1)/2 < 2^29) of 32
+ * bits:
+ *
+ *     A   `rows` rows, each of IDSI_KERNEL_DEPTH entries, one after the other
+ *     B   step by step of k, `columns` entries each
+ *
+ * So a product is below 2^58, and a sum is brought back by 4 p^2 after every 16 of them: with
  * |sum| <= 4 p^2 before, |sum| < 4 p^2 + 16 ((p-1)/2)^2 < 8 p^2 < 2^63 after 16 steps, and adding
  * or subtracting 4 p^2, whichever is towards zero, leaves |sum| <= 4 p^2.
+ *
+ * Vector units multiply the even 32-bit places of two registers. The odd places are shifted down,
+ * so even and odd columns have sums of their own until they are stored side by side. The sums of
+ * IDSI_LANES rows keep this order in memory: idsi_kernel_slot().
+ *
+ * Remainders of x < 2^2b, where b is the number of bits of p, follow Barrett (Menezes, van
+ * Oorschot, Vanstone, Handbook of Applied Cryptography, 14.42): with mu = floor(2^2b / p), the
+ * quotient ((x >> (b-1)) mu) >> (b+1) is too small by 2 at most. All factors fit 32 bits.
  */
 #ifndef IDSI_KERNELS_H
 #define IDSI_KERNELS_H
@@ -14,6 +26,7 @@
 #include "field_private.h"
 
 #define IDSI_KERNEL_STEPS 16u
+#define IDSI_KERNEL_DEPTH 256u
 /* Rows that are rewritten side by side. */
 #define IDSI_LANES 16u
 
@@ -22,21 +35,22 @@ typedef struct idsi_kernel {
     size_t rows;    /* of a strip of A */
     size_t columns; /* of a strip of B */
     /*
-     * C[0..rows) x [0..columns) -= A B mod p for one strip of each; steps a multiple of 16; only
-     * the first m rows and n columns of C exist.
+     * C[0..rows) x [0..columns) -= A B mod p for one strip of each; steps <= IDSI_KERNEL_DEPTH, a
+     * multiple of 16; only the first m rows and n columns of C exist.
      */
-    void (*strip)(uint32_t p, size_t steps, const int64_t *a, const int64_t *b, uint32_t *c,
+    void (*strip)(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
                   size_t ldc, size_t m, size_t n);
+    /* Centres residues. */
+    void (*centre)(uint32_t p, const uint32_t *values, size_t count, int32_t *out);
+    /* target = scale * target + factor * source mod p, entry by entry; all residues. */
+    void (*combine)(uint32_t p, uint32_t *target, uint32_t scale, const uint32_t *source,
+                    uint32_t factor, size_t count);
     /*
-     * Centres count residues into 64 bits: one row of a strip of B.
+     * residues[lane] = sums[slot of lane] + sum of entry.value * factors[entry.column][lane] mod
+     * p; sums < 4 p^2. False when all residues are 0.
      */
-    void (*centre)(uint32_t p, const uint32_t *values, size_t count, int64_t *out);
-    /*
-     * Adds factor[lane] * entry.value to sums[entry.column][lane] for every entry and lane; sums
-     * < 4 p^2 before and after.
-     */
-    void (*lanes)(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factor,
-                  uint64_t *sums);
+    bool (*gather)(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factors,
+                   const uint64_t *sums, uint32_t *residues);
 } idsi_kernel;
 
 /* The kernel for this processor. */
@@ -48,16 +62,27 @@ extern const idsi_kernel idsi_kernel_avx2;
 extern const idsi_kernel idsi_kernel_avx512;
 #endif
 
-static inline int64_t idsi_kernel_centred(uint32_t value, uint32_t p)
+/* Place of a lane among the sums of a column: the even lanes first. */
+static inline size_t idsi_kernel_slot(size_t lane)
 {
-    return value > p / 2 ? (int64_t)value - (int64_t)p : (int64_t)value;
+    return (lane & 1u) * (IDSI_LANES / 2) + lane / 2;
 }
 
-/* c - sum mod p for |sum| < 2^63, by the remainder of 64-bit integers. */
-static inline uint32_t idsi_kernel_settle(uint32_t c, int64_t sum, uint32_t p)
+static inline int32_t idsi_kernel_centred(uint32_t value, uint32_t p)
 {
-    int64_t rest = ((int64_t)c - sum % (int64_t)p) % (int64_t)p;
-    return (uint32_t)(rest < 0 ? rest + p : rest);
+    return (int32_t)(value > p / 2 ? value - p : value);
+}
+
+/* Number of bits of p. */
+static inline uint32_t idsi_kernel_bits(uint32_t p)
+{
+    return 32u - (uint32_t)__builtin_clz(p);
+}
+
+/* floor(2^2b / p) */
+static inline uint64_t idsi_kernel_reciprocal(uint32_t p)
+{
+    return (UINT64_C(1) << (2 * idsi_kernel_bits(p))) / p;
 }
 
 #endif

@@ -2,24 +2,28 @@
 /*
  * Dense products mod p: blocking and packing around the kernels.
  *
- *     for blocks of NC columns of B, KC steps of k:   pack B into strips, centred, 64 bits
- *         for blocks of MC rows of A:                 pack A into strips
+ *     for blocks of NC columns of B, KC steps of k:   pack B into strips, centred
+ *         for blocks of MC rows of A:                 pack A into strips, centred
  *             for each strip of B, strip of A:        kernel
  *
  * The order of loops and the sizes follow Goto and van de Geijn, "Anatomy of high-performance
  * matrix multiplication" (ACM TOMS 34, 2008): a packed strip of B stays in the first cache, the
- * packed block of A in the second. The kernel is chosen by what the processor can do, at each
- * call, from constant tables.
+ * packed blocks in the second. The kernel is chosen by what the processor can do, at each call,
+ * from constant tables. A team shares out the columns of large products; each entry of C is
+ * computed in the same way whoever does it.
  */
 #include <string.h>
 
 #include "dense_private.h"
 #include "kernels.h"
 
-#define KC 256u
+#define KC IDSI_KERNEL_DEPTH
 #define MC 96u
-#define NC 1024u
-#define PACK_ALIGN 64u
+#define NC 512u
+/* Multiplications below which a team is not worth waking. */
+#define LEAST_SHARED 2000000u
+/* Tasks for each member of a team, so that one who is held up is not waited for. */
+#define SHARES 4u
 
 const idsi_kernel *idsi_kernel_choose(void)
 {
@@ -39,16 +43,19 @@ const char *idsi_dense_kernel_name(void)
     return idsi_kernel_choose()->name;
 }
 
+/* ---- workspaces ------------------------------------------------------------------------------ */
+
 ids_status idsi_workspace_init(idsi_workspace *work, ids_ctx *ctx)
 {
     ids_status st = IDS_OK;
+    void *room = NULL; /* not cleared: small products touch little of it */
 
     memset(work, 0, sizeof *work);
     work->ctx = ctx;
-    IDSI_TRY(idsi_alloc_array(ctx, KC * (MC + 8u) + PACK_ALIGN, sizeof *work->packed_a,
-                              &work->packed_a));
-    IDSI_TRY(idsi_alloc_array(ctx, KC * (NC + 32u) + PACK_ALIGN, sizeof *work->packed_b,
-                              &work->packed_b));
+    IDSI_TRY(idsi_alloc(ctx, (KC * MC + 16u) * sizeof *work->packed_a, &room));
+    work->packed_a = room;
+    IDSI_TRY(idsi_alloc(ctx, (KC * NC + 16u) * sizeof *work->packed_b, &room));
+    work->packed_b = room;
 done:
     if (st != IDS_OK) {
         idsi_workspace_clear(work);
@@ -56,32 +63,70 @@ done:
     return st;
 }
 
+ids_status idsi_workspace_share(idsi_workspace *work, idsi_team *team)
+{
+    ids_status st = IDS_OK;
+    uint32_t others = idsi_team_size(team) - 1;
+
+    IDSI_TRY(idsi_alloc_array(work->ctx, others, sizeof *work->others, &work->others));
+    while (work->other_count < others) {
+        IDSI_TRY(idsi_workspace_init(&work->others[work->other_count], work->ctx));
+        work->other_count++;
+    }
+    work->team = team;
+done:
+    return st;
+}
+
 void idsi_workspace_clear(idsi_workspace *work)
 {
+    for (uint32_t i = 0; i < work->other_count; i++) {
+        idsi_workspace_clear(&work->others[i]);
+    }
+    idsi_free(work->ctx, work->others);
     idsi_free(work->ctx, work->packed_a);
     idsi_free(work->ctx, work->packed_b);
-    work->packed_a = NULL;
-    work->packed_b = NULL;
+    memset(work, 0, sizeof *work);
 }
 
-static int64_t *aligned(int64_t *pointer)
+/* The packed operands begin at a line of the cache. */
+static int32_t *aligned(int32_t *pointer)
 {
-    uintptr_t address = ((uintptr_t)pointer + PACK_ALIGN - 1) & ~(uintptr_t)(PACK_ALIGN - 1);
-    return pointer + (address - (uintptr_t)pointer) / sizeof *pointer;
+    uintptr_t past = (uintptr_t)pointer & 63u;
+    return past == 0 ? pointer : pointer + (64u - past) / sizeof *pointer;
 }
+
+/* ---- one thread's product -------------------------------------------------------------------- */
+
+typedef struct product {
+    idsi_workspace *work;
+    const idsi_kernel *kernel;
+    uint32_t p;
+    size_t m;
+    size_t n;
+    size_t k;
+    const uint32_t *a;
+    size_t lda;
+    const uint32_t *b;
+    size_t ldb;
+    uint32_t *c;
+    size_t ldc;
+    size_t share; /* columns, or with by_rows rows, of one task */
+    bool by_rows;
+} product;
 
 /* Packs k x n of B into strips; pads with zeros to whole strips and steps. */
-static void pack_b(const idsi_kernel *kernel, uint32_t p, size_t k, size_t steps, size_t n,
-                   const uint32_t *b, size_t ldb, int64_t *out)
+static void pack_b(const product *pr, size_t k, size_t steps, size_t n, const uint32_t *b,
+                   int32_t *out)
 {
-    size_t width = kernel->columns;
+    size_t width = pr->kernel->columns;
 
     for (size_t j = 0; j < n; j += width) {
         size_t real = n - j < width ? n - j : width;
         for (size_t s = 0; s < steps; s++) {
             size_t from = s < k ? real : 0;
             if (from > 0) {
-                kernel->centre(p, b + s * ldb + j, from, out);
+                pr->kernel->centre(pr->p, b + s * pr->ldb + j, from, out);
             }
             if (from < width) {
                 memset(out + from, 0, (width - from) * sizeof *out);
@@ -91,18 +136,19 @@ static void pack_b(const idsi_kernel *kernel, uint32_t p, size_t k, size_t steps
     }
 }
 
-/* Packs m x k of A into strips of `height` rows, padded likewise. */
-static void pack_a(uint32_t p, size_t m, size_t k, size_t steps, size_t height, const uint32_t *a,
-                   size_t lda, int64_t *out)
+/* Packs m x k of A row by row, padded likewise. */
+static void pack_a(const product *pr, size_t m, size_t k, size_t steps, const uint32_t *a,
+                   int32_t *out)
 {
-    for (size_t i = 0; i < m; i += height) {
-        for (size_t s = 0; s < steps; s++) {
-            for (size_t y = 0; y < height; y++) {
-                bool real = i + y < m && s < k;
-                out[y] = real ? idsi_kernel_centred(a[(i + y) * lda + s], p) : 0;
-            }
-            out += height;
+    size_t padded = (m + pr->kernel->rows - 1) / pr->kernel->rows * pr->kernel->rows;
+
+    for (size_t i = 0; i < padded; i++) {
+        size_t from = i < m ? k : 0;
+        if (from > 0) {
+            pr->kernel->centre(pr->p, a + i * pr->lda, from, out);
         }
+        memset(out + from, 0, (steps - from) * sizeof *out);
+        out += KC;
     }
 }
 
@@ -111,32 +157,71 @@ static size_t least(size_t a, size_t b)
     return a < b ? a : b;
 }
 
-void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, size_t k,
-                        const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
-                        size_t ldc)
+static void multiply(const product *pr)
 {
-    const idsi_kernel *kernel = idsi_kernel_choose();
-    int64_t *packed_a = aligned(work->packed_a);
-    int64_t *packed_b = aligned(work->packed_b);
+    const idsi_kernel *kernel = pr->kernel;
+    int32_t *packed_a = aligned(pr->work->packed_a);
+    int32_t *packed_b = aligned(pr->work->packed_b);
 
-    for (size_t jc = 0; jc < n; jc += NC) {
-        size_t nc = least(n - jc, NC);
-        for (size_t pc = 0; pc < k; pc += KC) {
-            size_t kc = least(k - pc, KC);
+    for (size_t jc = 0; jc < pr->n; jc += NC) {
+        size_t nc = least(pr->n - jc, NC);
+        for (size_t pc = 0; pc < pr->k; pc += KC) {
+            size_t kc = least(pr->k - pc, KC);
             size_t steps = (kc + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
-            pack_b(kernel, p, kc, steps, nc, b + pc * ldb + jc, ldb, packed_b);
-            for (size_t ic = 0; ic < m; ic += MC) {
-                size_t mc = least(m - ic, MC);
-                pack_a(p, mc, kc, steps, kernel->rows, a + ic * lda + pc, lda, packed_a);
+            pack_b(pr, kc, steps, nc, pr->b + pc * pr->ldb + jc, packed_b);
+            for (size_t ic = 0; ic < pr->m; ic += MC) {
+                size_t mc = least(pr->m - ic, MC);
+                pack_a(pr, mc, kc, steps, pr->a + ic * pr->lda + pc, packed_a);
                 for (size_t j = 0; j < nc; j += kernel->columns) {
                     for (size_t i = 0; i < mc; i += kernel->rows) {
-                        kernel->strip(p, steps, packed_a + i * steps, packed_b + j * steps,
-                                      c + (ic + i) * ldc + jc + j, ldc,
-                                      least(mc - i, kernel->rows),
-                                      least(nc - j, kernel->columns));
+                        kernel->strip(pr->p, steps, packed_a + i * KC, packed_b + j * steps,
+                                      pr->c + (ic + i) * pr->ldc + jc + j, pr->ldc,
+                                      least(mc - i, kernel->rows), least(nc - j, kernel->columns));
                     }
                 }
             }
         }
     }
+}
+
+/* ---- shared products ------------------------------------------------------------------------- */
+
+static void multiply_share(void *user, uint32_t member, size_t task)
+{
+    product pr = *(const product *)user;
+    size_t from = task * pr.share;
+
+    if (member > 0) {
+        pr.work = &pr.work->others[member - 1];
+    }
+    if (pr.by_rows) {
+        pr.m = least(pr.m - from, pr.share);
+        pr.a += from * pr.lda;
+        pr.c += from * pr.ldc;
+    } else {
+        pr.n = least(pr.n - from, pr.share);
+        pr.b += from;
+        pr.c += from;
+    }
+    multiply(&pr);
+}
+
+void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, size_t k,
+                        const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
+                        size_t ldc)
+{
+    product pr = {work, idsi_kernel_choose(), p, m, n, k, a, lda, b, ldb, c, ldc, 0, false};
+    uint32_t members = idsi_team_size(work->team);
+
+    if (members == 1 || (double)m * (double)n * (double)k < LEAST_SHARED) {
+        multiply(&pr);
+        return;
+    }
+    pr.by_rows = m > 2 * n;
+    size_t length = pr.by_rows ? m : n;
+    size_t unit = pr.by_rows ? MC : 64u;
+    size_t units = (length + unit - 1) / unit;
+    size_t tasks = least(units, members * SHARES);
+    pr.share = (units + tasks - 1) / tasks * unit;
+    idsi_team_run(work->team, (length + pr.share - 1) / pr.share, multiply_share, &pr);
 }

@@ -3,6 +3,7 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "field/rewrite_private.h"
 #include "field_matrix.h"
 
 /* A row as entries; some entries are cut in two, since columns may repeat. */
@@ -158,8 +159,28 @@ START_TEST(test_work)
 }
 END_TEST
 
-/* Rows of the second half, rewritten by the rules of the first. */
-static void try_lanes(uint32_t p, size_t columns, field_kind kind, idsi_random *random)
+/* What a fold makes of the rest of a row, twice the row. */
+static void fold_rest(const idsi_fold *fold, uint32_t p, size_t columns, const uint32_t *rest,
+                      uint32_t *folded)
+{
+    memset(folded, 0, fold->width * sizeof *folded);
+    for (size_t c = 0; c < columns; c++) {
+        uint32_t value = (uint32_t)(2 * (uint64_t)rest[c] % p);
+        if (fold->place[c] == UINT32_MAX) {
+            continue;
+        }
+        for (uint32_t k = 0; k < fold->mixed; k++) {
+            uint32_t mix = fold->mix[c * IDSI_FOLD_MIXED + k];
+            folded[k] = (folded[k] + idsi_mod_mul(value, mix, p)) % p;
+        }
+        uint32_t *at = &folded[fold->place[c]];
+        *at = (*at + value) % p;
+    }
+}
+
+/* Rows of the second half, rewritten by the rules of the first; width 0: not folded. */
+static void try_lanes(uint32_t p, size_t columns, size_t width, field_kind kind,
+                      idsi_random *random)
 {
     const uint32_t lanes_count = idsi_lanes_count();
     const size_t rules = columns / 2;
@@ -167,51 +188,53 @@ static void try_lanes(uint32_t p, size_t columns, field_kind kind, idsi_random *
     field_matrix half;
     field_reduced wanted;
     ids_ctx *ctx = test_ctx();
+    idsi_fold fold;
+    idsi_rewriter *rewriter = NULL;
     idsi_lanes *lanes = NULL;
-    uint32_t *place = calloc(columns, sizeof *place);
     uint32_t *rest = calloc(columns, sizeof *rest);
+    uint32_t *folded = calloc(columns, sizeof *folded);
     uint32_t *out = calloc(lanes_count * columns, sizeof *out);
     idsi_entry *entries = malloc((2 * columns + 1) * sizeof *entries);
-    size_t used = 0;
 
-    ck_assert(place != NULL && rest != NULL && out != NULL && entries != NULL);
+    ck_assert(rest != NULL && folded != NULL && out != NULL && entries != NULL);
     field_matrix_init(&matrix, p, rules + lanes_count, columns);
     field_matrix_random(&matrix, kind, random);
     half = matrix;
     half.rows = rules;
     field_reduce(&half, &wanted);
     idsi_echelon *echelon = make_form(ctx, &matrix, rules, random);
-    for (size_t c = 0; c < columns; c++) {
-        place[c] = (uint32_t)used;
-        used += !wanted.is_pivot[c];
-    }
-    TEST_OK(ctx, idsi_lanes_create(ctx, p, (uint32_t)columns, &lanes));
-    for (int twice = 0; twice < 2; twice++) { /* the second time on the same, cleared sums */
+    TEST_OK(ctx, idsi_fold_init(&fold, ctx, echelon, p, (uint32_t)columns, width, random));
+    ck_assert_uint_eq(fold.width, width > 0 ? width : columns - wanted.rank);
+    TEST_OK(ctx, idsi_rewriter_create(ctx, echelon, p, (uint32_t)columns, &fold, &rewriter));
+    TEST_OK(ctx, idsi_lanes_create(ctx, rewriter, &lanes));
+    for (int twice = 0; twice < 2; twice++) { /* the second time on the same, cleared lanes */
+        uint32_t used = lanes_count - (uint32_t)twice;
         memset(out, 0, lanes_count * columns * sizeof *out);
-        for (uint32_t lane = 0; lane < lanes_count; lane++) {
+        for (uint32_t lane = 0; lane < used; lane++) {
             size_t count = entries_of(&matrix, rules + lane, random, entries);
-            idsi_lanes_load(lanes, lane, entries, count, 1);
-            idsi_lanes_load(lanes, lane, entries, count, 1);
+            idsi_lanes_load(lanes, lane, entries, count, 1, out + lane * fold.width);
+            idsi_lanes_load(lanes, lane, entries, count, 1, out + lane * fold.width);
         }
-        idsi_lanes_rewrite(lanes, echelon, place, out, columns);
-        for (uint32_t lane = 0; lane < lanes_count; lane++) {
+        idsi_lanes_solve(lanes);
+        idsi_lanes_apply(lanes, used, fold.width / 2, fold.width, out, fold.width);
+        idsi_lanes_apply(lanes, used, 0, fold.width / 2, out, fold.width);
+        for (uint32_t lane = 0; lane < used; lane++) {
             field_reduced_rest(&wanted, p, field_matrix_row(&matrix, rules + lane), rest);
-            for (size_t c = 0; c < columns; c++) {
-                if (!wanted.is_pivot[c]) {
-                    ck_assert_uint_eq(out[lane * columns + place[c]],
-                                      (uint32_t)(2 * (uint64_t)rest[c] % p));
-                }
-            }
+            fold_rest(&fold, p, columns, rest, folded);
+            ck_assert_int_eq(
+                memcmp(out + lane * fold.width, folded, fold.width * sizeof *folded), 0);
         }
     }
     idsi_lanes_free(lanes);
+    idsi_rewriter_free(rewriter);
+    idsi_fold_clear(&fold);
     idsi_echelon_free(echelon);
     field_reduced_clear(&wanted);
     field_matrix_clear(&matrix);
     free(entries);
     free(out);
+    free(folded);
     free(rest);
-    free(place);
     test_ctx_free(ctx);
 }
 
@@ -222,8 +245,9 @@ START_TEST(test_lanes)
 
     test_random(&random, 400 + (uint64_t)_i);
     for (int kind = 0; kind < FIELD_KINDS; kind++) {
-        try_lanes(p, 20, (field_kind)kind, &random);
-        try_lanes(p, 130, (field_kind)kind, &random);
+        try_lanes(p, 20, 0, (field_kind)kind, &random);
+        try_lanes(p, 130, 0, (field_kind)kind, &random);
+        try_lanes(p, 130, 30, (field_kind)kind, &random);
     }
 }
 END_TEST
