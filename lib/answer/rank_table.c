@@ -129,6 +129,7 @@ static ids_status start_towers(job *j, uint32_t primes)
         table->primes[k] =
             table->field != 0 ? table->field : idsi_prime_draw(&j->random, table->primes, k);
         idsi_tower_init(&j->towers[k], j->ctx, j->laws, table->primes[k]);
+        j->towers[k].count_only = j->laws->count == 0;
     }
     table->prime_count = primes;
     j->tower_count = primes;
@@ -162,7 +163,7 @@ static ids_status fill_table(job *j)
         for (size_t k = 0; k < j->tower_count; k++) {
             IDSI_TRY(idsi_tower_grow(&j->towers[k], degree < j->to || j->proof != NULL));
         }
-        if (j->proof != NULL) {
+        if (j->proof != NULL && j->laws->count > 0) {
             IDSI_TRY(idsi_proof_degree(j->proof, &j->towers[0], &j->random));
         }
         if (degree >= j->from) {

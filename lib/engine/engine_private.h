@@ -99,6 +99,7 @@ typedef struct idsi_tower {
     const ids_signature *sig;
     uint32_t prime;
     idsi_random random; /* for what elimination chooses at random */
+    bool count_only; /* there are no laws and no tables are wanted: columns are only counted */
     uint32_t height;
     idsi_level level[IDS_MAX_DEGREE + 1]; /* level[1 .. height] */
     /* Shares of the whole work at the beginning and end of the next degree; 0, 0: unknown. */

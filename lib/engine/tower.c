@@ -132,7 +132,7 @@ ids_status idsi_level_plan(const idsi_tower *tower, idsi_level *level)
     for (plan.op = 0; plan.op < sig->count; plan.op++) {
         IDSI_TRY(idsi_degrees_each(&sig->ops[plan.op].group, level->degree, add_block, &plan));
     }
-    if (level->columns >= UINT32_MAX) {
+    if (!tower->count_only && level->columns >= UINT32_MAX) {
         st = idsi_fail(tower->ctx, IDS_ERR_LIMIT,
                        "degree %u has %llu monomials; in the quotient by the consequences of "
                        "lower degrees it still has %llu columns, and 4294967294 are possible",
@@ -255,7 +255,9 @@ ids_status idsi_tower_grow(idsi_tower *tower, bool tables)
     idsi_level *level = &tower->level[tower->height + 1];
 
     IDSI_TRY(idsi_level_plan(tower, level));
-    if (level->degree > 1 && level->columns > 0) {
+    if (tower->count_only) {
+        level->dimension = level->degree > 1 ? level->columns : level->dimension;
+    } else if (level->degree > 1 && level->columns > 0) {
         IDSI_TRY(solve_level(tower, level, tables));
     }
     tower->height++;

@@ -49,6 +49,26 @@ static uint64_t quotient(const ids_rank_table *table, size_t index)
     return row.quotient;
 }
 
+/* ---- no identities ------------------------------------------------------------------------ */
+
+/* Degrees with more columns than an elimination could take: there is nothing to eliminate. */
+START_TEST(test_no_identities)
+{
+    /* (2n-3)!!, OEIS A001147: degree 12 and 14 */
+    ids_ctx *ctx = NULL;
+    ids_rank_row row = {0};
+
+    ck_assert_int_eq(ids_ctx_create(NULL, &ctx), IDS_OK);
+    ids_rank_table *table = table_of(ctx, "operation a*b commutative\n", 14, NULL);
+    ck_assert_uint_eq(quotient(table, 11), UINT64_C(13749310575));
+    ck_assert_uint_eq(quotient(table, 13), UINT64_C(7905853580625));
+    ck_assert_int_eq(ids_rank_table_row(table, 13, &row), IDS_OK);
+    ck_assert_int_eq(row.certainty, IDS_CERTAINTY_EXACT);
+    ids_rank_table_free(table);
+    ids_ctx_free(ctx);
+}
+END_TEST
+
 /* ---- fields ------------------------------------------------------------------------------ */
 
 typedef struct over_field {
@@ -375,6 +395,7 @@ int main(void)
 
     tcase_set_timeout(tcase, 30);
     tcase_add_loop_test(tcase, test_fields, 0, (int)(sizeof over_fields / sizeof *over_fields));
+    tcase_add_test(tcase, test_no_identities);
     tcase_add_test(tcase, test_weakened);
     tcase_add_test(tcase, test_bad_options);
     tcase_add_test(tcase, test_primes);
