@@ -10,6 +10,7 @@
 #include <idspan/core.h>
 #include <idspan/draw.h>
 #include <idspan/engine.h>
+#include <idspan/follows.h>
 #include <idspan/identity.h>
 #include <idspan/render.h>
 #include <idspan/tree.h>

@@ -15,13 +15,14 @@ rooms=(core tree identity young field engine model answer run render)
 
 # Place of a room in the list; a public header carries the name of its room. The generated
 # headers stand before all rooms; gmp.h speaks of the numbers of types and monomials, draw.h belongs
-# to render.
+# to render, follows.h to answer.
 declare -A place=([export]=0 [version]=0)
 for number in "${!rooms[@]}"; do
     place[${rooms[number]}]=$number
 done
 place[gmp]=${place[tree]}
 place[draw]=${place[render]}
+place[follows]=${place[answer]}
 
 # Lines "file <header>" or "file "header"" of the files given.
 includes_of() {

@@ -105,13 +105,13 @@ void help_general(FILE *to)
           "Tasks:\n",
           to);
     for (size_t i = 0; task_list[i] != NULL; i++) {
-        fprintf(to, "  %-6s FILE%s\n          %s\n", task_list[i]->name, task_list[i]->usage,
+        fprintf(to, "  %-7s FILE%s\n          %s\n", task_list[i]->name, task_list[i]->usage,
                 task_list[i]->summary);
     }
     fputs("\nOptions of every task:\n", to);
     print_options(to, COMMON_OPTIONS);
     fputs("\n"
-          "Exit status: 0 done, 2 the command line, the input or the output is not in order,\n"
+          "Exit status: 0 done, 1 does not follow, 2 the command line, the input or the output is not in order,\n"
           "3 a limit was hit, 4 interrupted.\n"
           "\n"
           "Examples:\n"

@@ -6,7 +6,7 @@ _idspan()
 {
     local word=${COMP_WORDS[COMP_CWORD]}
     local previous=${COMP_WORDS[COMP_CWORD - 1]}
-    local tasks="show types basis count rank draw matrix"
+    local tasks="show types basis count rank follows check draw matrix"
     local common="--format --output --memory --threads --help --version"
     local task="" own="" i
 
@@ -22,7 +22,7 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "text csv json latex ascii svg tikz mtx" -- "$word")
         return
         ;;
-    --output)
+    --output | --proof | --witness)
         mapfile -t COMPREPLY < <(compgen -f -- "$word")
         return
         ;;
@@ -34,14 +34,14 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "partition" -- "$word")
         return
         ;;
-    --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads)
+    --candidate | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads)
         return
         ;;
     esac
 
     for ((i = 1; i < COMP_CWORD; i++)); do
         case ${COMP_WORDS[i]} in
-        show | types | basis | count | rank | draw | matrix)
+        show | types | basis | count | rank | follows | check | draw | matrix)
             task=${COMP_WORDS[i]}
             break
             ;;
@@ -51,6 +51,7 @@ _idspan()
     types) own="--degree --degrees" ;;
     basis) own="--degree --from --count" ;;
     count) own="--degree --degrees --split" ;;
+    follows) own="--candidate --all --proof --witness --primes --seed" ;;
     draw) own="--degree --monomials --index --from --count" ;;
     matrix) own="--degree --plain --field --seed" ;;
     rank) own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field" ;;
@@ -63,7 +64,11 @@ _idspan()
     else
         compopt -o filenames 2>/dev/null
         mapfile -t COMPREPLY < <(
-            compgen -f -X '!*.pres' -- "$word"
+            if [[ $task == check ]]; then
+                compgen -f -- "$word"
+            else
+                compgen -f -X '!*.pres' -- "$word"
+            fi
             compgen -d -- "$word"
         )
     fi

@@ -11,8 +11,8 @@
 
 #include "tool.h"
 
-const task *const task_list[] = {&task_show, &task_types, &task_basis,  &task_count,
-                                 &task_rank, &task_draw,  &task_matrix, NULL};
+const task *const task_list[] = {&task_show, &task_types,   &task_basis, &task_count,  &task_rank,
+                                 &task_draw, &task_follows, &task_check, &task_matrix, NULL};
 
 const task *task_find(const char *name)
 {
@@ -75,20 +75,25 @@ static void explain(const session *s, ids_status status)
     }
 }
 
-static ids_status read_presentation(session *s)
+const char *session_source(const session *s)
 {
-    bool standard = strcmp(s->set->file, "-") == 0;
-    char *text = NULL;
-    size_t length = 0;
+    return strcmp(s->set->file, "-") == 0 ? "standard input" : s->set->file;
+}
+
+static ids_status read_file(session *s)
+{
     ids_status st = IDS_OK;
 
-    if (!input_read(s->set->file, &text, &length)) {
+    if (!input_read(s->set->file, &s->text, &s->length)) {
         return IDS_ERR_IO;
     }
     interrupt_watch(s->ctx);
-    st = ids_presentation_read(s->ctx, text, length, standard ? "standard input" : s->set->file,
-                               &s->pres);
-    free(text);
+    if (s->set->task->wants_text) {
+        return IDS_OK;
+    }
+    st = ids_presentation_read(s->ctx, s->text, s->length, session_source(s), &s->pres);
+    free(s->text);
+    s->text = NULL;
     return st;
 }
 
@@ -106,7 +111,7 @@ static int run(const settings *set)
         complain("%s", ids_status_text(st));
         return exit_status(st);
     }
-    st = read_presentation(&s);
+    st = read_file(&s);
     if (st != IDS_OK) {
         explain(&s, st);
         result = exit_status(st);
@@ -117,7 +122,7 @@ static int run(const settings *set)
     }
     progress_start(set->task->name);
     st = set->task->run(&s);
-    result = exit_status(st);
+    result = st == IDS_OK && s.no ? EXIT_NO : exit_status(st);
     progress_clear();
     if (st != IDS_OK) {
         explain(&s, st);
@@ -128,6 +133,7 @@ static int run(const settings *set)
 done:
     interrupt_watch(NULL);
     ids_presentation_free(s.pres);
+    free(s.text);
     ids_ctx_free(s.ctx);
     return result;
 }

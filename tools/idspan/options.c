@@ -33,6 +33,10 @@ const option option_list[OPTION_END] = {
     [OPTION_CROSS_CHECK] = {"cross-check", NULL,
                             "compute the totals by monomials too and compare"},
     [OPTION_PLAIN] = {"plain", NULL, "all consequences in all monomials, with integers"},
+    [OPTION_CANDIDATE] = {"candidate", "NAME", "the candidate NAME of the file"},
+    [OPTION_ALL] = {"all", NULL, "all candidates of the file"},
+    [OPTION_PROOF] = {"proof", "FILE", "if it follows, write a derivation to FILE"},
+    [OPTION_WITNESS] = {"witness", "FILE", "if it does not, write a witness to FILE"},
     [OPTION_FORMAT] = {"format", "F",
                        "text (for people, the default), csv, json or latex;\n"
                        "of draw: text, ascii, svg or tikz; of matrix: mtx"},
@@ -184,6 +188,15 @@ static bool read_value(option_id id, const char *value, settings *read)
         return true;
     case OPTION_PARTITION:
         read->partition_text = value;
+        return true;
+    case OPTION_CANDIDATE:
+        read->candidate = value;
+        return true;
+    case OPTION_PROOF:
+        read->proof = value;
+        return true;
+    case OPTION_WITNESS:
+        read->witness = value;
         return true;
     case OPTION_FORMAT:
         read->format_name = value; /* which there are depends on the task */
@@ -379,7 +392,8 @@ static bool check_pairs(const settings *read)
         {OPTION_DEGREE, OPTION_DEGREES}, {OPTION_FIELD, OPTION_EXACT},
         {OPTION_FIELD, OPTION_PRIMES},   {OPTION_FIELD, OPTION_SEED},
         {OPTION_PLAIN, OPTION_FIELD},    {OPTION_PLAIN, OPTION_SEED},
-        {OPTION_PARTITION, OPTION_CROSS_CHECK}};
+        {OPTION_CANDIDATE, OPTION_ALL},  {OPTION_PROOF, OPTION_ALL},
+        {OPTION_WITNESS, OPTION_ALL},    {OPTION_PARTITION, OPTION_CROSS_CHECK}};
 
     for (size_t i = 0; i < sizeof pairs / sizeof *pairs; i++) {
         unsigned both = BIT(pairs[i][0]) | BIT(pairs[i][1]);
@@ -407,9 +421,10 @@ static bool check(settings *read)
         return false;
     }
     if (read->file == NULL) {
-        complain("\"%s\" wants a presentation file, or - for standard input:\n"
+        complain("\"%s\" wants a %s file, or - for standard input:\n"
                  "        idspan %s FILE%s",
-                 chosen->name, chosen->name, chosen->usage);
+                 chosen->name, chosen->wants_text ? "proof or witness" : "presentation",
+                 chosen->name, chosen->usage);
         return false;
     }
     if (chosen->wanted != 0 && (read->seen & chosen->wanted) == 0) {

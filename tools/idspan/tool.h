@@ -18,8 +18,8 @@
 #define PRINTF_LIKE(text, first)
 #endif
 
-/* Exit status; 1 is kept for the answer "does not follow". */
-enum { EXIT_DONE = 0, EXIT_INPUT = 2, EXIT_LIMIT = 3, EXIT_INTERRUPTED = 4 };
+/* Exit status. */
+enum { EXIT_DONE = 0, EXIT_NO = 1, EXIT_INPUT = 2, EXIT_LIMIT = 3, EXIT_INTERRUPTED = 4 };
 
 /* ---- options ------------------------------------------------------------------------- */
 
@@ -39,6 +39,10 @@ typedef enum option_id {
     OPTION_PARTITION,
     OPTION_CROSS_CHECK,
     OPTION_PLAIN,
+    OPTION_CANDIDATE,
+    OPTION_ALL,
+    OPTION_PROOF,
+    OPTION_WITNESS,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -81,6 +85,9 @@ typedef struct settings {
     const char *by;             /* value of --by, as written */
     const char *partition_text; /* value of --partition, as written */
     ids_partition partition;    /* and as read by rank_check() */
+    const char *candidate;      /* value of --candidate, NULL: none */
+    const char *proof;          /* value of --proof, NULL: none */
+    const char *witness;        /* value of --witness, NULL: none */
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
@@ -104,7 +111,10 @@ typedef struct output {
 typedef struct session {
     const settings *set;
     ids_ctx *ctx;
-    ids_presentation *pres;
+    ids_presentation *pres; /* NULL for a task that wants text */
+    char *text;             /* the file, for a task that wants text */
+    size_t length;
+    bool no; /* the answer is "does not follow" */
     output out;
     char failure[2048]; /* explanation of a failure, "" to use the library's */
 } session;
@@ -119,6 +129,7 @@ typedef struct task {
     unsigned options;     /* BIT() of its own options, without the common ones */
     unsigned wanted;      /* of these, at least one must be given; 0: none need be */
     uint32_t most_degree; /* 0: IDS_MAX_DEGREE */
+    bool wants_text;      /* the file is no presentation: the task reads it itself */
     const char *const *formats; /* NULL at the end; NULL: those of tables */
     bool (*check)(settings *read); /* what else the options must be, with a message; or NULL */
     ids_status (*run)(session *s);
@@ -131,6 +142,8 @@ extern const task task_count;
 extern const task task_rank;
 extern const task task_draw;
 extern const task task_matrix;
+extern const task task_follows;
+extern const task task_check;
 
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
@@ -156,6 +169,8 @@ void primes_append(char *text, uint64_t prime);
 
 /* Explains a failure in the tool's own words, in place of the library's; returns status. */
 ids_status session_fail(session *s, ids_status status, const char *format, ...) PRINTF_LIKE(3, 4);
+/* Name of the input for messages. */
+const char *session_source(const session *s);
 /* IDS_ERR_CANCELLED after Ctrl-C, for loops that the library does not see. */
 ids_status session_poll(void);
 
