@@ -83,7 +83,7 @@ done:
 
 START_TEST(test_decide)
 {
-    TEST_OOM(decide, fourth);
+    TEST_OOM(decide, wrong);
 }
 END_TEST
 

@@ -232,8 +232,8 @@ START_TEST(test_notations)
     static const theorem list[] = {
         {"prefix and fence",
          "operation t(a,b,c)\noperation (a,b,c) commutative\noperation a o b\noperation <a,b>\n"
-         "identity t(a,b,c) = (a,b,c)\nidentity two words: <a,b> = a o b\n"
-         "candidate c: t(<_,y1>,y2 o y3,(y4,y5,y6)) = t(y2 o y3,_ o y1,(y6,y5,y4))\n",
+         "identity t(a,b,c) = (a,b,c)\nidentity two_words: <a,b> = a o b\n"
+         "candidate c: t(<_,y'>,_,y') = (y',_ o y',_)\n",
          true},
         {"witness in words", "operation a o b\nidentity a o b = b o a\n"
                              "candidate c: (x o x') o x = x o (x o x')\n",
