@@ -6,7 +6,7 @@ here=$(dirname "$(readlink -f "$0")")
 # shellcheck source=tests/cli/common.sh
 . "$here/common.sh"
 
-tasks="show types basis count rank draw"
+tasks="show types basis count rank follows check draw"
 
 # ---- help and version ------------------------------------------------------------------
 
@@ -37,6 +37,8 @@ common="format output memory threads help version"
     own_basis="degree from count"
     own_count="degree degrees split"
     own_rank="degree degrees by partition cross-check exact primes seed field"
+    own_follows="candidate all proof witness primes seed"
+    own_check=""
     own_draw="degree monomials index from count"
 }
 for task in $tasks; do

@@ -1,0 +1,112 @@
+#!/bin/bash
+# SPDX-License-Identifier: BSD-2-Clause
+#
+# follows and check. Answers from outside:
+#   alternative: flexible, Moufang   Schafer, An Introduction to Nonassociative Algebras, III
+#   Jordan: not associative          textbook
+#   the examples of data/crosses     data/reference/candidates.csv: recomputed only
+here=$(dirname "$(readlink -f "$0")")
+# shellcheck source=tests/cli/common.sh
+. "$here/common.sh"
+
+python=$(command -v python3 || true)
+
+cat >alternative.pres <<'END'
+operation a*b
+define ass(a,b,c) = (a*b)*c - a*(b*c)
+identity left: ass(a,a,b) = 0
+identity right: ass(a,b,b) = 0
+candidate flexible: ass(a,b,a) = 0
+candidate moufang: (a*x)*(y*a) = (a*(x*y))*a
+candidate assoc: ass(a,b,c) = 0
+candidate ass(a,b,c) = -ass(b,a,c)
+END
+
+# ---- answers -----------------------------------------------------------------------------
+
+run 1 follows alternative.pres --all --format csv
+is_empty err
+[ "$(cut -d , -f 1-3 out | paste -s -d ' ')" = "candidate,degree,follows flexible,3,yes \
+moufang,4,yes assoc,3,no #4,3,yes" ] || complain "$last: $(cat out)"
+[ "$(head -n 1 out)" = "candidate,degree,follows,certainty" ] || complain "$last: $(head -n 1 out)"
+tail -n +2 out | cut -d , -f 4 | grep -qvE '^(exact|2\^-[0-9]+)$' && complain "$last: $(cat out)"
+run 0 follows alternative.pres --candidate moufang
+has out "moufang follows (wrong with probability at most 2^-"
+run 0 follows alternative.pres --candidate '#4' --format csv
+run 1 follows alternative.pres --candidate assoc --format json
+has out '"assoc fails for": "1+1+1"'
+[ -z "$python" ] || "$python" -m json.tool <out >json || complain "$last: not JSON"
+printf 'candidate assoc: (a*b)*c = a*(b*c)\ncandidate zero: a*b = b*a\n' >>jordan.pres
+run 1 follows jordan.pres --candidate assoc
+has out "assoc does not follow (proved)."
+run 0 follows jordan.pres --candidate zero --proof zero.proof
+has out "zero follows (proved)."
+run 0 check zero.proof
+
+while IFS=, read -r file candidate degree follows _; do
+    [ "$file" != file ] || continue
+    status=0
+    [ "$follows" = yes ] || status=1
+    rm -f proof witness
+    run $status follows "$source_dir/data/$file" --candidate "$candidate" --format csv \
+        --proof proof --witness witness
+    [ "$(tail -n 1 out)" = "$candidate,$degree,$follows,exact" ] || complain "$last: $(cat out)"
+    if [ "$follows" = yes ]; then
+        [ ! -e witness ] || complain "$last: a witness for what follows"
+        run 0 check proof --format csv
+    else
+        [ ! -e proof ] || complain "$last: a proof of what does not follow"
+        run 0 check witness --format csv
+    fi
+    [ "$(tail -n 1 out | cut -d , -f 1-3)" = "$candidate,$degree,$follows" ] ||
+        complain "$last: $(cat out)"
+done <"$source_dir/data/reference/candidates.csv"
+
+# ---- files -------------------------------------------------------------------------------
+
+run 0 follows alternative.pres --candidate flexible --proof flexible.proof
+has out "flexible follows (proved)."
+run 0 check flexible.proof
+is_empty err
+has out "Verified: the candidate flexible of degree 3 follows."
+run 0 check - --format csv <flexible.proof
+run 1 follows alternative.pres --candidate assoc --witness assoc.witness
+run 0 check assoc.witness
+has out "Verified: the candidate assoc of degree 3 does not follow."
+run 0 follows alternative.pres --candidate moufang --proof moufang.tex --format latex
+grep -q '\\begin{eqnarray\*}' moufang.tex || complain "$last: $(head moufang.tex)"
+run 2 check moufang.tex
+has err "moufang.tex:1:1: expected \"idspan proof 1\""
+
+sed 's/^terms 2/terms 3/' flexible.proof >bad
+run 2 check bad
+has err "the mark at the end does not fit the file"
+is_empty out
+head -c 100 flexible.proof >bad
+run 2 check bad
+: >bad
+run 2 check bad
+has err "bad:1:1: the file ends too early"
+run 2 check nowhere.proof
+has err "there is no file"
+
+# ---- the command line --------------------------------------------------------------------
+
+run 2 follows alternative.pres
+has err "wants a candidate, or --all"
+run 2 follows alternative.pres --candidate flexibel
+has err "did you mean \"flexible\"?"
+run 2 follows alternative.pres --candidate x --all
+has err "exclude each other"
+run 2 follows alternative.pres --all --proof p
+has err "exclude each other"
+run 2 follows commutative.pres --all
+has err "has no candidates"
+run 2 follows alternative.pres --candidate flexible --proof alternative.pres
+has err "would overwrite"
+run 2 follows alternative.pres --candidate flexible --proof /nowhere/p
+has err "cannot write"
+run 2 check
+has err "wants a proof or witness file"
+
+finish
