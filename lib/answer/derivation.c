@@ -11,62 +11,28 @@
  * the consequences, chosen greedily from the last column to the first; with the others set to 0 a
  * pivot's unknown is the entry of its rule in column 0. Where column 0 is a pivot itself, there
  * is no solution. The order of the columns decides which basis it is, and how many of its elements
- * occur: columns with few monomials go last. To shorten, one consequence of the best solution
+ * occur: columns near the candidate and with few monomials go last, and far ones are left out as
+ * long as there is a solution without them. To shorten, one consequence of the best solution
  * goes to the front, the rest of it goes to the end in random order, and a solution that is no
  * longer replaces the best one.
  *
  * The residues are lifted to fractions with up to four primes and the sum is made exactly, or it
  * does not count.
  */
-#include <stdlib.h>
 #include <string.h>
 
-#include "follows_private.h"
+#include "derivation_private.h"
 
 #define MOST_PRIMES 4u
 #define MOST_TRIALS 400u
-/* Entries that all trials together may read, roughly. */
-#define TRIAL_WORK 40000000u
 
-typedef struct solver {
-    ids_ctx *ctx;
-    const idsi_component *c;
-    idsi_system *system;
-    idsi_random random;
-    uint32_t prime;
-    size_t monomials;
-    size_t pool_count; /* consequences that take part */
-    uint32_t *pool;
-    size_t *row_start; /* by monomial: pool consequences */
-    uint32_t *row_item;
-    const idsi_cell **row_cell;
-    uint32_t *order;  /* pool numbers from the first column to the last */
-    uint32_t *place;  /* column of each pool number, 0: left out */
-    uint32_t columns; /* in use, column 0 included */
-    idsi_entry *row;
-    size_t best_count;
-    uint32_t *best; /* pool numbers of the best solution */
-    uint32_t *best_value;
-    size_t trial_count;
-    uint32_t *trial;
-    uint32_t *trial_value;
-    bool *in_best;
-} solver;
-
-static void solver_clear(solver *s)
+static void solver_clear(idsi_solver *s)
 {
+    idsi_pool_clear(s);
     idsi_free(s->ctx, s->pool);
-    idsi_free(s->ctx, s->row_start);
-    idsi_free(s->ctx, s->row_item);
-    idsi_free(s->ctx, s->row_cell);
-    idsi_free(s->ctx, s->order);
-    idsi_free(s->ctx, s->place);
-    idsi_free(s->ctx, s->row);
-    idsi_free(s->ctx, s->best);
-    idsi_free(s->ctx, s->best_value);
-    idsi_free(s->ctx, s->trial);
-    idsi_free(s->ctx, s->trial_value);
-    idsi_free(s->ctx, s->in_best);
+    idsi_free(s->ctx, s->distance);
+    idsi_free(s->ctx, s->cells);
+    idsi_echelon_free(s->echelon);
     idsi_system_free(s->system);
 }
 
@@ -74,7 +40,7 @@ static void solver_clear(solver *s)
 
 static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
 {
-    solver *s = user;
+    idsi_solver *s = user;
     ids_status st = IDS_OK;
 
     for (size_t m = 0; m < s->monomials; m++) {
@@ -98,7 +64,7 @@ done:
 }
 
 /* Solves with the places as they are; *found is false when there is no solution. */
-static ids_status solve(solver *s, bool *found)
+static ids_status solve(idsi_solver *s, bool *found)
 {
     ids_status st = IDS_OK;
     idsi_result result = {0};
@@ -133,7 +99,7 @@ done:
 }
 
 /* Gives the consequences of `order` their columns. */
-static void place_all(solver *s)
+static void place_all(idsi_solver *s)
 {
     for (size_t i = 0; i < s->pool_count; i++) {
         s->place[s->order[i]] = (uint32_t)i + 1;
@@ -141,7 +107,7 @@ static void place_all(solver *s)
     s->columns = (uint32_t)s->pool_count + 1;
 }
 
-static void keep_trial(solver *s)
+static void keep_trial(idsi_solver *s)
 {
     for (size_t i = 0; i < s->best_count; i++) {
         s->in_best[s->best[i]] = false;
@@ -154,95 +120,9 @@ static void keep_trial(solver *s)
     }
 }
 
-/* ---- the pool -------------------------------------------------------------------------------------- */
-
-/* A basis of the consequences, the short ones first; all, when there are few. */
-static ids_status choose_pool(solver *s)
-{
-    ids_status st = IDS_OK;
-    const idsi_system *system = s->system;
-    idsi_echelon *echelon = NULL;
-    size_t spare = TRIAL_WORK / 40 / (s->monomials + 1);
-    size_t most = 0;
-
-    for (size_t i = 0; i < system->count; i++) {
-        size_t cells = system->start[i + 1] - system->start[i];
-        most = cells > most ? cells : most;
-    }
-    IDSI_TRY(idsi_alloc_array(s->ctx, system->count, sizeof *s->pool, &s->pool));
-    IDSI_TRY(idsi_alloc_array(s->ctx, most + 1, sizeof *s->row, &s->row));
-    IDSI_TRY(idsi_echelon_create(s->ctx, system->prime, (uint32_t)s->monomials, &echelon));
-    for (size_t cells = 1; cells <= most; cells++) {
-        for (size_t i = 0; i < system->count; i++) {
-            idsi_verdict verdict = IDSI_DEPENDENT;
-            size_t start = system->start[i];
-            if (system->start[i + 1] - start != cells) {
-                continue;
-            }
-            IDSI_TRY(idsi_poll(s->ctx, NULL));
-            if (system->count > spare) {
-                for (size_t k = 0; k < cells; k++) {
-                    const idsi_cell *cell = &system->cells[start + k];
-                    s->row[k] =
-                        (idsi_entry){cell->monomial, idsi_system_value(system, i, cell)};
-                }
-                idsi_echelon_load(echelon, s->row, cells, 1);
-                IDSI_TRY(idsi_echelon_settle(echelon, UINT64_MAX, &verdict));
-                if (verdict == IDSI_DEPENDENT) {
-                    continue;
-                }
-            }
-            s->pool[s->pool_count++] = (uint32_t)i;
-        }
-    }
-done:
-    idsi_echelon_free(echelon);
-    return st;
-}
-
-/* The pool's entries by monomial, and room for solutions. */
-static ids_status index_pool(solver *s)
-{
-    ids_status st = IDS_OK;
-    const idsi_system *system = s->system;
-    size_t total = 0;
-
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials + 2, sizeof *s->row_start, &s->row_start));
-    for (size_t j = 0; j < s->pool_count; j++) {
-        for (size_t k = system->start[s->pool[j]]; k < system->start[s->pool[j] + 1]; k++) {
-            s->row_start[system->cells[k].monomial + 2]++;
-            total++;
-        }
-    }
-    for (size_t m = 0; m < s->monomials; m++) {
-        s->row_start[m + 2] += s->row_start[m + 1];
-    }
-    IDSI_TRY(idsi_alloc_array(s->ctx, total, sizeof *s->row_item, &s->row_item));
-    IDSI_TRY(idsi_alloc_array(s->ctx, total, sizeof *s->row_cell, &s->row_cell));
-    for (size_t j = 0; j < s->pool_count; j++) {
-        for (size_t k = system->start[s->pool[j]]; k < system->start[s->pool[j] + 1]; k++) {
-            size_t at = s->row_start[system->cells[k].monomial + 1]++;
-            s->row_item[at] = (uint32_t)j;
-            s->row_cell[at] = &system->cells[k];
-        }
-    }
-    idsi_free(s->ctx, s->row);
-    s->row = NULL;
-    IDSI_TRY(idsi_alloc_array(s->ctx, total + 1, sizeof *s->row, &s->row));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->order, &s->order));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->place, &s->place));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->best, &s->best));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->best_value, &s->best_value));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->trial, &s->trial));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->trial_value, &s->trial_value));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->pool_count, sizeof *s->in_best, &s->in_best));
-done:
-    return st;
-}
-
 /* ---- making it short --------------------------------------------------------------------------------- */
 
-static void shuffle(solver *s, size_t from, size_t to)
+static void shuffle(idsi_solver *s, size_t from, size_t to)
 {
     for (size_t i = to; i > from + 1; i--) {
         size_t j = from + (size_t)idsi_random_below(&s->random, i - from);
@@ -253,7 +133,7 @@ static void shuffle(solver *s, size_t from, size_t to)
 }
 
 /* The best solution but for one of it at the end; every other time the rest is shuffled too. */
-static void order_trial(solver *s, size_t number)
+static void order_trial(idsi_solver *s, size_t number)
 {
     size_t rest = 0;
     size_t end = s->pool_count - s->best_count;
@@ -278,11 +158,11 @@ static void order_trial(solver *s, size_t number)
     place_all(s);
 }
 
-static ids_status shorten(solver *s)
+static ids_status run_trials(idsi_solver *s)
 {
     ids_status st = IDS_OK;
     size_t entries = s->row_start[s->monomials] + s->monomials + 10;
-    size_t trials = TRIAL_WORK / 20 / entries;
+    size_t trials = IDSI_TRIAL_WORK / 10 / entries;
 
     trials = trials > MOST_TRIALS ? MOST_TRIALS : trials;
     for (size_t k = 0; k < trials && s->best_count > 1; k++) {
@@ -298,10 +178,27 @@ done:
     return st;
 }
 
+/* Near the solution, far away where that is possible, and near the new one. */
+static ids_status shorten(idsi_solver *s)
+{
+    ids_status st = IDS_OK;
+
+    IDSI_TRY(idsi_pool_renew(s, false));
+    IDSI_TRY(run_trials(s));
+    if (s->system->count <= s->spare) {
+        IDSI_TRY(idsi_pool_renew(s, true));
+        IDSI_TRY(run_trials(s));
+        IDSI_TRY(idsi_pool_renew(s, false));
+        IDSI_TRY(run_trials(s));
+    }
+done:
+    return st;
+}
+
 /* ---- exact coefficients --------------------------------------------------------------------------------- */
 
 /* Whether the coefficients of the best solution give the candidate, exactly. */
-static ids_status adds_up(const solver *s, mpq_t *coefficients, bool *good)
+static ids_status adds_up(const idsi_solver *s, mpq_t *coefficients, bool *good)
 {
     ids_status st = IDS_OK;
     mpq_t *sums = NULL;
@@ -343,7 +240,7 @@ done:
 }
 
 /* Solves with the best solution's consequences alone; their order is kept. */
-static ids_status solve_again(solver *s, uint32_t prime, bool *good)
+static ids_status solve_again(idsi_solver *s, uint32_t prime, bool *good)
 {
     ids_status st = IDS_OK;
 
@@ -375,7 +272,7 @@ static bool reconstruct_all(mpz_t *residues, size_t count, mpz_srcptr modulus,
     return true;
 }
 
-static ids_status lift(solver *s, mpq_t *coefficients)
+static ids_status lift(idsi_solver *s, mpq_t *coefficients)
 {
     ids_status st = IDS_OK;
     mpz_t modulus;
@@ -421,7 +318,7 @@ done:
 /* ---- the derivation ---------------------------------------------------------------------------------------- */
 
 /* Consequences are numbered by law, larger ones inside first, which is the order for reading. */
-static void sort_best(solver *s)
+static void sort_best(idsi_solver *s)
 {
     for (size_t i = 1; i < s->best_count; i++) {
         for (size_t j = i; j > 0 && s->pool[s->best[j]] < s->pool[s->best[j - 1]]; j--) {
@@ -432,7 +329,7 @@ static void sort_best(solver *s)
     }
 }
 
-static ids_status take_solution(solver *s, ids_derivation *made)
+static ids_status take_solution(idsi_solver *s, ids_derivation *made)
 {
     ids_status st = IDS_OK;
 
@@ -449,7 +346,7 @@ done:
     return st;
 }
 
-static ids_status find(solver *s, ids_derivation *made)
+static ids_status find(idsi_solver *s, ids_derivation *made)
 {
     ids_status st = IDS_OK;
     bool good = true;
@@ -460,13 +357,17 @@ static ids_status find(solver *s, ids_derivation *made)
         s->prime = idsi_prime_draw(&s->random, NULL, 0);
         IDSI_TRY(idsi_system_reduce(s->system, s->prime, &good));
     } while (!good);
-    IDSI_TRY(choose_pool(s));
-    IDSI_TRY(index_pool(s));
-    for (size_t j = 0; j < s->pool_count; j++) {
-        s->order[j] = (uint32_t)(s->pool_count - 1 - j);
+    IDSI_TRY(idsi_pool_prepare(s));
+    good = false;
+    for (uint32_t distance = 1; !good && distance <= s->farthest; distance++) {
+        IDSI_TRY(idsi_pool_extend(s, distance));
+        IDSI_TRY(idsi_pool_index(s));
+        for (size_t j = 0; j < s->pool_count; j++) {
+            s->order[j] = (uint32_t)(s->pool_count - 1 - j);
+        }
+        place_all(s);
+        IDSI_TRY(solve(s, &good));
     }
-    place_all(s);
-    IDSI_TRY(solve(s, &good));
     if (!good) {
         st = idsi_fail(s->ctx, IDS_ERR_DOMAIN,
                        "there is no derivation: the candidate does not follow (modulo %u)",
@@ -486,7 +387,7 @@ ids_status ids_derivation_find(ids_ctx *ctx, const ids_presentation *presentatio
 {
     ids_status st = IDS_OK;
     ids_derivation *made = NULL;
-    solver s = {.ctx = ctx};
+    idsi_solver s = {.ctx = ctx};
 
     if (ctx == NULL || derivation == NULL || presentation == NULL ||
         idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index) == NULL) {
