@@ -77,7 +77,7 @@ IDS_API IDS_MUST_USE ids_status ids_follows_partition(const ids_follows *follows
                                                       ids_partition *partition,
                                                       uint64_t *multiplicity);
 
-/* ---- derivations ------------------------------------------------------------------------------ */
+/* ---- derivations ----------------------------------------------------------------------------- */
 
 /**
  * A derivation: the candidate, in its own variables, as a sum of rational multiples of
@@ -139,7 +139,7 @@ IDS_API IDS_MUST_USE ids_status ids_derivation_write(ids_ctx *ctx, const ids_der
 IDS_API IDS_MUST_USE ids_status ids_derivation_latex(ids_ctx *ctx, const ids_derivation *derivation,
                                                      ids_sink_fn sink, void *sink_user);
 
-/* ---- witnesses --------------------------------------------------------------------------------- */
+/* ---- witnesses ------------------------------------------------------------------------------- */
 
 /**
  * A witness: an integer for each monomial in the variables of the candidate as written, each as
@@ -172,7 +172,7 @@ IDS_API size_t ids_witness_count(const ids_witness *witness);
 IDS_API IDS_MUST_USE ids_status ids_witness_write(ids_ctx *ctx, const ids_witness *witness,
                                                   ids_sink_fn sink, void *sink_user);
 
-/* ---- checking ---------------------------------------------------------------------------------- */
+/* ---- checking -------------------------------------------------------------------------------- */
 
 /** What ids_certificate_check() has verified. */
 typedef struct ids_check_report {
@@ -203,8 +203,7 @@ typedef struct ids_check_report {
  * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length,
-                                                      const char *source,
-                                                      ids_check_report *report);
+                                                      const char *source, ids_check_report *report);
 
 #ifdef __cplusplus
 }

@@ -60,8 +60,8 @@ static ids_status write_head(const idsi_component *c, const char *header, const 
     IDSI_TRY(ids_presentation_print(text->ctx, &reduced, &presentation));
     IDSI_TRY(idsi_text_printf(text, "%s\n%s\n%s%s\nclaim%s%s\ndegree %u\n%s %zu\n", header,
                               IDSI_BEGIN_PRESENTATION, presentation, IDSI_END_PRESENTATION,
-                              c->claim->name[0] == '\0' ? "" : " ", c->claim->name, c->degree,
-                              what, count));
+                              c->claim->name[0] == '\0' ? "" : " ", c->claim->name, c->degree, what,
+                              count));
 done:
     ids_string_free(text->ctx, presentation);
     idsi_free(text->ctx, reduced.list);
@@ -72,8 +72,8 @@ static ids_status write_number(idsi_text *text, mpq_srcptr number)
 {
     ids_status st = IDS_OK;
     void *room = NULL;
-    size_t digits = mpz_sizeinbase(mpq_numref(number), 10) +
-                    mpz_sizeinbase(mpq_denref(number), 10) + 3;
+    size_t digits =
+        mpz_sizeinbase(mpq_numref(number), 10) + mpz_sizeinbase(mpq_denref(number), 10) + 3;
 
     IDSI_TRY(idsi_alloc(text->ctx, digits, &room));
     IDSI_TRY(idsi_text_puts(text, mpq_get_str(room, 10, number)));
@@ -146,8 +146,8 @@ ids_status ids_derivation_write(ids_ctx *ctx, const ids_derivation *derivation, 
     }
     idsi_text_init(&text, ctx);
     idsi_certificate_names(derivation->component->sig, derivation->component->claim, hole, names);
-    IDSI_TRY(write_head(derivation->component, IDSI_PROOF_HEADER, "terms", derivation->count,
-                        &text));
+    IDSI_TRY(
+        write_head(derivation->component, IDSI_PROOF_HEADER, "terms", derivation->count, &text));
     for (size_t i = 0; i < derivation->count; i++) {
         IDSI_TRY(write_term(derivation, i, names, &text));
     }
@@ -157,7 +157,7 @@ done:
     return st;
 }
 
-/* ---- witnesses --------------------------------------------------------------------------------- */
+/* ---- witnesses ------------------------------------------------------------------------------- */
 
 typedef struct valued {
     const idsi_token *tree;

@@ -97,9 +97,8 @@ typedef struct idsi_certificate {
 
 /* Puts `inside[label - 1]` for the labels of a tree, but copies those that have none (NULL).
  * Returns the tokens written. */
-size_t idsi_check_substitute(const idsi_token *tree, size_t length,
-                             const idsi_token *const *inside, const size_t *inside_length,
-                             size_t insides, idsi_token *out);
+size_t idsi_check_substitute(const idsi_token *tree, size_t length, const idsi_token *const *inside,
+                             const size_t *inside_length, size_t insides, idsi_token *out);
 
 /* (check_witness.c) Evaluates values, sorted by monomial, on all consequences and the claim. */
 typedef struct idsi_value_list {

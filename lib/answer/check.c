@@ -18,9 +18,8 @@
 /* Terms that are collected before equal ones are joined. */
 #define JOIN_AFTER 16384u
 
-size_t idsi_check_substitute(const idsi_token *tree, size_t length,
-                             const idsi_token *const *inside, const size_t *inside_length,
-                             size_t insides, idsi_token *out)
+size_t idsi_check_substitute(const idsi_token *tree, size_t length, const idsi_token *const *inside,
+                             const size_t *inside_length, size_t insides, idsi_token *out)
 {
     size_t used = 0;
 
@@ -36,7 +35,7 @@ size_t idsi_check_substitute(const idsi_token *tree, size_t length,
     return used;
 }
 
-/* ---- head and end ---------------------------------------------------------------------------------- */
+/* ---- head and end ---------------------------------------------------------------------------- */
 
 /* The last line is a mark of all before it; *end becomes the begin of that line. */
 static ids_status check_mark(idsi_cursor *cursor)
@@ -88,8 +87,8 @@ static ids_status read_presentation(idsi_cursor *cursor, idsi_certificate *made)
     IDSI_TRY(idsi_alloc_array(cursor->ctx, before + length, 1, &text));
     memset(text, '\n', before);
     memcpy(text + before, begin, length);
-    IDSI_TRY(ids_presentation_read(cursor->ctx, text, before + length, cursor->source,
-                                   &made->pres));
+    IDSI_TRY(
+        ids_presentation_read(cursor->ctx, text, before + length, cursor->source, &made->pres));
     made->claim = idsi_presentation_get(made->pres, IDS_ROLE_CANDIDATE, 0);
     if (made->claim == NULL || ids_presentation_count(made->pres, IDS_ROLE_CANDIDATE) != 1) {
         st = idsi_cursor_fail(cursor, IDS_ERR_PARSE,
@@ -129,7 +128,7 @@ done:
     return st;
 }
 
-/* ---- derivations -------------------------------------------------------------------------------------- */
+/* ---- derivations ----------------------------------------------------------------------------- */
 
 typedef struct term {
     mpq_t coefficient;
@@ -300,7 +299,7 @@ done:
     return st;
 }
 
-/* ---- witnesses --------------------------------------------------------------------------------------------- */
+/* ---- witnesses ------------------------------------------------------------------------------- */
 
 /* Each variable as often as in the claim. */
 static bool has_content(const idsi_certificate *made, const idsi_token *tree, size_t length)
@@ -382,7 +381,7 @@ done:
     return st;
 }
 
-/* ---- the whole file ------------------------------------------------------------------------------------------ */
+/* ---- the whole file -------------------------------------------------------------------------- */
 
 static ids_status check_file(idsi_cursor *cursor, idsi_certificate *made, ids_check_report *report)
 {
@@ -392,8 +391,8 @@ static ids_status check_file(idsi_cursor *cursor, idsi_certificate *made, ids_ch
     IDSI_TRY(idsi_cursor_next(cursor));
     proof = idsi_cursor_expect(cursor, IDSI_PROOF_HEADER) == IDS_OK;
     if (!proof && idsi_cursor_expect(cursor, IDSI_WITNESS_HEADER) != IDS_OK) {
-        st = idsi_cursor_fail(cursor, IDS_ERR_PARSE, "expected \"%s\" or \"%s\"",
-                              IDSI_PROOF_HEADER, IDSI_WITNESS_HEADER);
+        st = idsi_cursor_fail(cursor, IDS_ERR_PARSE, "expected \"%s\" or \"%s\"", IDSI_PROOF_HEADER,
+                              IDSI_WITNESS_HEADER);
         goto done;
     }
     IDSI_TRY(idsi_cursor_expect_end(cursor));
@@ -425,8 +424,8 @@ done:
     return st;
 }
 
-ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length,
-                                 const char *source, ids_check_report *report)
+ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length, const char *source,
+                                 ids_check_report *report)
 {
     ids_status st = IDS_OK;
     ids_check_report found = {0};

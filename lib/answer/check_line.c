@@ -52,8 +52,7 @@ ids_status idsi_cursor_expect(idsi_cursor *cursor, const char *text)
 {
     size_t length = strlen(text);
 
-    if ((size_t)(cursor->line_end - cursor->at) < length ||
-        memcmp(cursor->at, text, length) != 0) {
+    if ((size_t)(cursor->line_end - cursor->at) < length || memcmp(cursor->at, text, length) != 0) {
         return idsi_cursor_fail(cursor, IDS_ERR_PARSE, "expected \"%s\"", text);
     }
     cursor->at += length;

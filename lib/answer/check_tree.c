@@ -90,9 +90,9 @@ static ids_status read_fenced(parser *p, ids_notation notation, const char *name
     for (uint32_t op = 0; op < sig->count; op++) {
         const idsi_op *known = &sig->ops[op];
         const char *close = notation == IDS_NOTATION_FENCE ? known->close : ")";
-        if (known->notation == notation && known->arity == count &&
-            strlen(known->open) == length && memcmp(known->open, name, length) == 0 &&
-            p->in->at < p->in->line_end && *close == *p->in->at) {
+        if (known->notation == notation && known->arity == count && strlen(known->open) == length &&
+            memcmp(known->open, name, length) == 0 && p->in->at < p->in->line_end &&
+            *close == *p->in->at) {
             p->in->at++;
             return put(p, begin, idsi_node(op));
         }
@@ -143,8 +143,7 @@ static bool read_symbol(parser *p, uint32_t *op)
     for (uint32_t i = 0; i < sig->count; i++) {
         size_t length = strlen(sig->ops[i].open);
         if (sig->ops[i].notation == IDS_NOTATION_INFIX && length > longest &&
-            (size_t)(p->in->line_end - at) >= length &&
-            memcmp(at, sig->ops[i].open, length) == 0) {
+            (size_t)(p->in->line_end - at) >= length && memcmp(at, sig->ops[i].open, length) == 0) {
             longest = length;
             *op = i;
         }

@@ -40,7 +40,7 @@ typedef struct evaluation {
     uint64_t consequences;
 } evaluation;
 
-/* ---- monomials ---------------------------------------------------------------------------------- */
+/* ---- monomials ------------------------------------------------------------------------------- */
 
 static ids_status fill_shelf(ids_ctx *ctx, const ids_types *types, uint32_t degree, shelf *made)
 {
@@ -52,8 +52,8 @@ static ids_status fill_shelf(ids_ctx *ctx, const ids_types *types, uint32_t degr
     IDSI_TRY(ids_basis_create(ctx, types, degree, &basis));
     made->count = (size_t)ids_basis_size(basis);
     made->length = 2 * (size_t)degree - 1;
-    IDSI_TRY(idsi_alloc_array(ctx, made->count, made->length * sizeof *made->tokens,
-                              &made->tokens));
+    IDSI_TRY(
+        idsi_alloc_array(ctx, made->count, made->length * sizeof *made->tokens, &made->tokens));
     IDSI_TRY(idsi_alloc_array(ctx, made->count, 1, &made->lengths));
     IDSI_TRY(ids_iter_create(ctx, basis, 0, made->count, &iter));
     for (size_t i = 0; (view = ids_iter_next(iter)) != NULL; i++) {
@@ -96,7 +96,7 @@ done:
     return st;
 }
 
-/* ---- values -------------------------------------------------------------------------------------- */
+/* ---- values ---------------------------------------------------------------------------------- */
 
 /* Adds coefficient * value of a tree to the sum. */
 static void add_value(evaluation *e, mpq_srcptr coefficient, idsi_token *tree, size_t length)
@@ -160,7 +160,7 @@ done:
     return st;
 }
 
-/* ---- all consequences ------------------------------------------------------------------------------ */
+/* ---- all consequences ------------------------------------------------------------------------ */
 
 /* Every monomial for the places from `place` on, on the labels that these have. */
 static ids_status choose_trees(evaluation *e, uint32_t place)

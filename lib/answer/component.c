@@ -15,7 +15,7 @@
 
 #include "follows_private.h"
 
-/* ---- contents ---------------------------------------------------------------------------------- */
+/* ---- contents -------------------------------------------------------------------------------- */
 
 /* Whether each label occurs in `part` at most as often as in `whole`. */
 static bool content_within(const idsi_component *c, uint32_t part, uint32_t whole)
@@ -41,7 +41,7 @@ static uint32_t content_degree(const idsi_component *c, uint32_t content)
     return degree + content;
 }
 
-/* ---- monomials --------------------------------------------------------------------------------- */
+/* ---- monomials ------------------------------------------------------------------------------- */
 
 static ids_status forest_add(ids_ctx *ctx, idsi_forest *forest, const idsi_token *tree,
                              size_t length)
@@ -52,8 +52,7 @@ static ids_status forest_add(ids_ctx *ctx, idsi_forest *forest, const idsi_token
         IDSI_TRY(idsi_grow(ctx, forest->token_capacity, &forest->token_capacity,
                            sizeof *forest->tokens, &forest->tokens));
     }
-    IDSI_TRY(idsi_grow(ctx, forest->count, &forest->capacity, sizeof *forest->list,
-                       &forest->list));
+    IDSI_TRY(idsi_grow(ctx, forest->count, &forest->capacity, sizeof *forest->list, &forest->list));
     memcpy(forest->tokens + forest->used, tree, length * sizeof *tree);
     forest->list[forest->count] = (idsi_planted){forest->used, length};
     forest->used += length;
@@ -185,7 +184,7 @@ size_t idsi_component_find(const idsi_component *component, const idsi_token *tr
     return SIZE_MAX;
 }
 
-/* ---- the component ------------------------------------------------------------------------------- */
+/* ---- the component --------------------------------------------------------------------------- */
 
 static void measure(idsi_component *c)
 {
@@ -222,8 +221,8 @@ ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, siz
     IDSI_TRY(idsi_laws_create(ctx, pres, &made->laws));
     if (made->goal->count > 0) {
         measure(made);
-        IDSI_TRY(idsi_alloc_array(ctx, 2 * (size_t)made->contents, sizeof *made->trees,
-                                  &made->trees));
+        IDSI_TRY(
+            idsi_alloc_array(ctx, 2 * (size_t)made->contents, sizeof *made->trees, &made->trees));
         for (uint32_t content = 1; content <= made->top + made->contents; content++) {
             /* The whole content beside a hole would be a degree too high. */
             if (content_degree(made, content) <= made->degree) {
@@ -255,7 +254,7 @@ void idsi_component_free(idsi_component *component)
     idsi_free(ctx, component);
 }
 
-/* ---- consequences ---------------------------------------------------------------------------------- */
+/* ---- consequences ---------------------------------------------------------------------------- */
 
 typedef struct walk {
     const idsi_component *c;

@@ -36,7 +36,7 @@ static void solver_clear(idsi_solver *s)
     idsi_system_free(s->system);
 }
 
-/* ---- one solution --------------------------------------------------------------------------------- */
+/* ---- one solution ---------------------------------------------------------------------------- */
 
 static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
 {
@@ -120,7 +120,7 @@ static void keep_trial(idsi_solver *s)
     }
 }
 
-/* ---- making it short --------------------------------------------------------------------------------- */
+/* ---- making it short ------------------------------------------------------------------------- */
 
 static void shuffle(idsi_solver *s, size_t from, size_t to)
 {
@@ -195,7 +195,7 @@ done:
     return st;
 }
 
-/* ---- exact coefficients --------------------------------------------------------------------------------- */
+/* ---- exact coefficients ---------------------------------------------------------------------- */
 
 /* Whether the coefficients of the best solution give the candidate, exactly. */
 static ids_status adds_up(const idsi_solver *s, mpq_t *coefficients, bool *good)
@@ -261,8 +261,7 @@ done:
     return st;
 }
 
-static bool reconstruct_all(mpz_t *residues, size_t count, mpz_srcptr modulus,
-                            mpq_t *coefficients)
+static bool reconstruct_all(mpz_t *residues, size_t count, mpz_srcptr modulus, mpq_t *coefficients)
 {
     for (size_t j = 0; j < count; j++) {
         if (!idsi_border_reconstruct(coefficients[j], residues[j], modulus)) {
@@ -315,7 +314,7 @@ done:
     return st;
 }
 
-/* ---- the derivation ---------------------------------------------------------------------------------------- */
+/* ---- the derivation -------------------------------------------------------------------------- */
 
 /* Consequences are numbered by law, larger ones inside first, which is the order for reading. */
 static void sort_best(idsi_solver *s)
@@ -335,8 +334,8 @@ static ids_status take_solution(idsi_solver *s, ids_derivation *made)
 
     sort_best(s);
     IDSI_TRY(idsi_alloc_array(s->ctx, s->best_count, sizeof *made->instances, &made->instances));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->best_count, sizeof *made->coefficients,
-                              &made->coefficients));
+    IDSI_TRY(
+        idsi_alloc_array(s->ctx, s->best_count, sizeof *made->coefficients, &made->coefficients));
     for (; made->count < s->best_count; made->count++) {
         mpq_init(made->coefficients[made->count]);
         made->instances[made->count] = s->system->instances[s->pool[s->best[made->count]]];

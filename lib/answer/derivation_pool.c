@@ -107,8 +107,7 @@ ids_status idsi_pool_extend(idsi_solver *s, uint32_t distance)
     for (size_t cells = 1; cells <= s->most; cells++) {
         for (size_t i = 0; i < system->count; i++) {
             bool wanted = true;
-            if (s->distance[i] != distance ||
-                system->start[i + 1] - system->start[i] != cells) {
+            if (s->distance[i] != distance || system->start[i + 1] - system->start[i] != cells) {
                 continue;
             }
             IDSI_TRY(idsi_poll(s->ctx, NULL));

@@ -61,8 +61,8 @@ size_t ids_follows_count(const ids_follows *follows)
     return follows == NULL ? 0 : follows->count;
 }
 
-ids_status ids_follows_partition(const ids_follows *follows, size_t index,
-                                 ids_partition *partition, uint64_t *multiplicity)
+ids_status ids_follows_partition(const ids_follows *follows, size_t index, ids_partition *partition,
+                                 uint64_t *multiplicity)
 {
     if (follows == NULL || partition == NULL || multiplicity == NULL || index >= follows->count) {
         return IDS_ERR_ARG;
@@ -141,9 +141,8 @@ ids_status ids_follows_decide(ids_ctx *ctx, const ids_presentation *presentation
         return idsi_fail_arg(ctx, "struct_size");
     }
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
-    *made = (ids_follows){.ctx = ctx,
-                          .degree = candidate->degree,
-                          .certainty = IDS_CERTAINTY_EXACT};
+    *made =
+        (ids_follows){.ctx = ctx, .degree = candidate->degree, .certainty = IDS_CERTAINTY_EXACT};
     if (candidate->linear.count > 0) {
         IDSI_TRY(decide(presentation, candidate, options, made));
     }

@@ -55,7 +55,7 @@ typedef struct idsi_component {
  * in context number `context` of the contexts around `hole`. */
 typedef struct idsi_instance {
     uint32_t law;
-    uint32_t hole;    /* content of what stands in the context's hole */
+    uint32_t hole; /* content of what stands in the context's hole */
     uint32_t context;
     uint32_t content[IDSI_MAX_IDENTITY_DEGREE];
     uint32_t argument[IDSI_MAX_IDENTITY_DEGREE];
@@ -89,7 +89,7 @@ const idsi_token *idsi_component_argument(const idsi_component *component,
 const idsi_token *idsi_component_context(const idsi_component *component,
                                          const idsi_instance *instance);
 
-/* ---- all consequences (system.c) --------------------------------------------------------------- */
+/* ---- all consequences (system.c) ------------------------------------------------------------- */
 
 /* An entry of a consequence: coefficient of the law's term |code| - 1, times the sign of code. */
 typedef struct idsi_cell {
@@ -122,12 +122,11 @@ ids_status idsi_system_reduce(idsi_system *system, uint32_t prime, bool *ok);
 /* Residue of a cell of instance i. */
 uint32_t idsi_system_value(const idsi_system *system, size_t i, const idsi_cell *cell);
 /* Its exact coefficient; sign of it in *sign. */
-mpq_srcptr idsi_system_exact(const idsi_system *system, size_t i, const idsi_cell *cell,
-                             int *sign);
+mpq_srcptr idsi_system_exact(const idsi_system *system, size_t i, const idsi_cell *cell, int *sign);
 /* Joins a residue to those mod the product of earlier primes, which grows by p. */
 void idsi_residue_join(mpz_ptr value, mpz_srcptr modulus, uint32_t residue, uint32_t p);
 
-/* ---- results ----------------------------------------------------------------------------------- */
+/* ---- results --------------------------------------------------------------------------------- */
 
 struct ids_derivation {
     ids_ctx *ctx;
@@ -141,7 +140,7 @@ struct ids_derivation {
 struct ids_witness {
     ids_ctx *ctx;
     idsi_component *component;
-    size_t count; /* values that are not 0 */
+    size_t count;  /* values that are not 0 */
     mpz_t *values; /* of all monomials */
 };
 

@@ -21,14 +21,14 @@ static ids_status keep_instance(void *user, const idsi_instance *instance)
     if (parts == 0) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_grow(s->ctx, s->count, &s->instance_capacity, sizeof *s->instances,
-                       &s->instances));
+    IDSI_TRY(
+        idsi_grow(s->ctx, s->count, &s->instance_capacity, sizeof *s->instances, &s->instances));
     IDSI_TRY(idsi_grow(s->ctx, s->count + 1, &s->start_capacity, sizeof *s->start, &s->start));
     for (size_t k = 0; k < parts; k++) {
         int32_t code = (int32_t)s->parts[k].term + 1;
         IDSI_TRY(idsi_grow(s->ctx, used, &s->cell_capacity, sizeof *s->cells, &s->cells));
-        s->cells[used] = (idsi_cell){(uint32_t)s->parts[k].monomial,
-                                     s->parts[k].sign < 0 ? -code : code};
+        s->cells[used] =
+            (idsi_cell){(uint32_t)s->parts[k].monomial, s->parts[k].sign < 0 ? -code : code};
         used++;
     }
     if (s->count == UINT32_MAX - 8) {
@@ -60,14 +60,13 @@ ids_status idsi_system_create(const idsi_component *component, idsi_system **sys
     IDSI_TRY(idsi_grow(ctx, 0, &made->start_capacity, sizeof *made->start, &made->start));
     made->start[0] = 0;
     IDSI_TRY(idsi_component_each(component, keep_instance, made));
-    IDSI_TRY(idsi_alloc_array(ctx, component->laws->count, sizeof *made->residue,
-                              &made->residue));
+    IDSI_TRY(idsi_alloc_array(ctx, component->laws->count, sizeof *made->residue, &made->residue));
     for (size_t i = 0; i < component->laws->count; i++) {
-        IDSI_TRY(idsi_alloc_array(ctx, component->laws->law[i].poly->count,
-                                  sizeof **made->residue, &made->residue[i]));
+        IDSI_TRY(idsi_alloc_array(ctx, component->laws->law[i].poly->count, sizeof **made->residue,
+                                  &made->residue[i]));
     }
-    IDSI_TRY(idsi_alloc_array(ctx, idsi_component_monomials(component)->count,
-                              sizeof *made->goal, &made->goal));
+    IDSI_TRY(idsi_alloc_array(ctx, idsi_component_monomials(component)->count, sizeof *made->goal,
+                              &made->goal));
     *system = made;
     made = NULL;
 done:
@@ -127,8 +126,7 @@ uint32_t idsi_system_value(const idsi_system *system, size_t i, const idsi_cell 
     return cell->code < 0 ? idsi_mod_neg(value, system->prime) : value;
 }
 
-mpq_srcptr idsi_system_exact(const idsi_system *system, size_t i, const idsi_cell *cell,
-                             int *sign)
+mpq_srcptr idsi_system_exact(const idsi_system *system, size_t i, const idsi_cell *cell, int *sign)
 {
     const idsi_poly *poly = system->component->laws->law[system->instances[i].law].poly;
     *sign = cell->code < 0 ? -1 : 1;

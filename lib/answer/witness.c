@@ -26,15 +26,15 @@ typedef struct seeker {
     idsi_system *system;
     idsi_random random;
     size_t monomials;
-    size_t most; /* cells of a consequence */
+    size_t most;     /* cells of a consequence */
     uint32_t *place; /* column of each monomial */
     uint32_t *best_place;
     uint32_t best_column;
     size_t best_count;
     idsi_entry *row;
-    uint32_t *rest;     /* of the candidate, by column */
-    uint32_t *uses;     /* values of the functional of each column */
-    uint32_t *value;    /* of the functional, by monomial */
+    uint32_t *rest;  /* of the candidate, by column */
+    uint32_t *uses;  /* values of the functional of each column */
+    uint32_t *value; /* of the functional, by monomial */
 } seeker;
 
 static void seeker_clear(seeker *s)
@@ -58,8 +58,8 @@ static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
         size_t count = s->system->start[i + 1] - start;
         for (size_t k = 0; k < count; k++) {
             const idsi_cell *cell = &s->system->cells[start + k];
-            s->row[k] = (idsi_entry){s->place[cell->monomial],
-                                     idsi_system_value(s->system, i, cell)};
+            s->row[k] =
+                (idsi_entry){s->place[cell->monomial], idsi_system_value(s->system, i, cell)};
         }
         IDSI_TRY(row(row_user, s->row, count));
     }
@@ -147,8 +147,7 @@ static ids_status choose(seeker *s)
     IDSI_TRY(try_order(s));
     if (s->best_count == 0) {
         st = idsi_fail(s->ctx, IDS_ERR_DOMAIN,
-                       "there is no witness: the candidate follows (modulo %u)",
-                       s->system->prime);
+                       "there is no witness: the candidate follows (modulo %u)", s->system->prime);
         goto done;
     }
     for (size_t k = 0; k < trials; k++) {
@@ -160,7 +159,7 @@ done:
     return st;
 }
 
-/* ---- exact values ---------------------------------------------------------------------------------- */
+/* ---- exact values ---------------------------------------------------------------------------- */
 
 /* Values of the chosen functional mod one prime. */
 static ids_status read_values(seeker *s, uint32_t prime, bool *good)
@@ -284,8 +283,8 @@ static ids_status lift(seeker *s, mpz_t *residues, mpz_ptr modulus, mpz_t *value
             idsi_residue_join(residues[m], modulus, s->value[m], primes[k]);
         }
         mpz_mul_ui(modulus, modulus, primes[k]);
-        proved = make_integers(residues, s->monomials, modulus, values) &&
-                 holds(s, values, &negative);
+        proved =
+            make_integers(residues, s->monomials, modulus, values) && holds(s, values, &negative);
         for (size_t m = 0; negative && m < s->monomials; m++) {
             mpz_neg(values[m], values[m]);
         }
@@ -400,7 +399,10 @@ void ids_witness_free(ids_witness *witness)
         return;
     }
     ids_ctx *ctx = witness->ctx;
-    size_t count = witness->values == NULL ? 0 : idsi_component_monomials(witness->component)->count;
+    size_t count = 0;
+    if (witness->values != NULL) {
+        count = idsi_component_monomials(witness->component)->count;
+    }
     for (size_t m = 0; m < count; m++) {
         mpz_clear(witness->values[m]);
     }

@@ -54,8 +54,8 @@ static ids_status put_coefficient(idsi_text *out, mpq_srcptr number, bool first)
 {
     ids_status st = IDS_OK;
     void *room = NULL;
-    size_t digits = mpz_sizeinbase(mpq_numref(number), 10) +
-                    mpz_sizeinbase(mpq_denref(number), 10) + 3;
+    size_t digits =
+        mpz_sizeinbase(mpq_numref(number), 10) + mpz_sizeinbase(mpq_denref(number), 10) + 3;
     idsi_text text;
 
     idsi_text_init(&text, out->ctx);
@@ -151,7 +151,8 @@ ids_status ids_derivation_latex(ids_ctx *ctx, const ids_derivation *derivation, 
     idsi_text_init(&out, ctx);
     idsi_text_init(&text, ctx);
     const idsi_component *c = derivation->component;
-    IDSI_TRY(idsi_text_printf(&out, "%% idspan: a derivation of degree %u, %zu terms\n"
+    IDSI_TRY(idsi_text_printf(&out,
+                              "%% idspan: a derivation of degree %u, %zu terms\n"
                               "\\begin{eqnarray*}\n",
                               c->degree, derivation->count));
     IDSI_TRY(put_laws(derivation, &out));

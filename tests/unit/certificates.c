@@ -4,7 +4,7 @@
  *   Schafer          R. D. Schafer, An Introduction to Nonassociative Algebras (1966), chapters III
  *                    (alternative: flexible, Moufang identities, Artin's theorem) and V (power
  *                    associativity)
- *   Jacobson         N. Jacobson, Structure and Representations of Jordan Algebras (1968), chapter I
+ *   Jacobson         N. Jacobson, Structure and Representations of Jordan Algebras (1968), I
  *                    (powers associate; the linearised operator identity)
  *   Albert           A. A. Albert, Power-associative rings, Trans. Amer. Math. Soc. 64 (1948)
  *   Malcev           A. I. Mal'cev, Analytic loops, Mat. Sb. 36 (1955): the commutator of an
@@ -29,10 +29,9 @@
 #define LIE "operation [a,b] alternating\nidentity [[a,b],c] + [[b,c],a] + [[c,a],b] = 0\n"
 
 const theorem theorem_list[] = {
-    {"Jordan: fourth powers (Jacobson)",
-     JORDAN "candidate c: ((x*x)*x)*x = (x*x)*(x*x)\n", true},
-    {"Jordan: fifth powers (Jacobson)",
-     JORDAN "candidate c: (((x*x)*x)*x)*x = ((x*x)*x)*(x*x)\n", true},
+    {"Jordan: fourth powers (Jacobson)", JORDAN "candidate c: ((x*x)*x)*x = (x*x)*(x*x)\n", true},
+    {"Jordan: fifth powers (Jacobson)", JORDAN "candidate c: (((x*x)*x)*x)*x = ((x*x)*x)*(x*x)\n",
+     true},
     {"Jordan: sixth powers (Jacobson)",
      JORDAN "candidate c: ((((x*x)*x)*x)*x)*x = ((x*x)*x)*((x*x)*x)\n", true},
     {"Jordan: operators of x^2 and x^3 commute (Jacobson)",
@@ -42,10 +41,10 @@ const theorem theorem_list[] = {
             " = (a*b)*(d*c) + (b*c)*(d*a) + (c*a)*(d*b)\n",
      true},
     {"alternative: flexible (Schafer)", ALTERNATIVE "candidate c: ass(a,b,a) = 0\n", true},
-    {"alternative: left Moufang (Schafer)",
-     ALTERNATIVE "candidate c: ((a*x)*a)*y = a*(x*(a*y))\n", true},
-    {"alternative: right Moufang (Schafer)",
-     ALTERNATIVE "candidate c: ((y*a)*x)*a = y*(a*(x*a))\n", true},
+    {"alternative: left Moufang (Schafer)", ALTERNATIVE "candidate c: ((a*x)*a)*y = a*(x*(a*y))\n",
+     true},
+    {"alternative: right Moufang (Schafer)", ALTERNATIVE "candidate c: ((y*a)*x)*a = y*(a*(x*a))\n",
+     true},
     {"alternative: middle Moufang (Schafer)",
      ALTERNATIVE "candidate c: (a*x)*(y*a) = (a*(x*y))*a\n", true},
     {"alternative: two generators associate, a case (Artin; Schafer)",
@@ -155,8 +154,8 @@ void certificate_damage(uint64_t salt, uint64_t rounds)
             idsi_text_init(&bad, ctx);
             damage(&random, &file, &bad);
             /* A cut can only be at a place before the last byte, so no damage leaves the file. */
-            ids_status st = ids_certificate_check(ctx, bad.data == NULL ? "" : bad.data,
-                                                  bad.length, "bad", &report);
+            ids_status st = ids_certificate_check(ctx, bad.data == NULL ? "" : bad.data, bad.length,
+                                                  "bad", &report);
             ck_assert_msg(st == IDS_ERR_PARSE || st == IDS_ERR_DOMAIN, "%s: accepted\n%s",
                           theorem_list[i].name, bad.data);
             idsi_text_clear(&bad);

@@ -59,8 +59,7 @@ START_TEST(test_certificates)
         TEST_STATUS(ctx, ids_witness_find(ctx, pres, 0, NULL, &witness), IDS_ERR_DOMAIN);
         TEST_OK(ctx, ids_derivation_find(ctx, pres, 0, NULL, &derivation));
         ck_assert_uint_eq(ids_derivation_count(derivation), report.terms);
-        ck_assert_uint_le(ids_derivation_count(derivation),
-                          ids_derivation_first_count(derivation));
+        ck_assert_uint_le(ids_derivation_count(derivation), ids_derivation_first_count(derivation));
         idsi_text_clear(&file);
         TEST_OK(ctx, ids_derivation_latex(ctx, derivation, receive, &file));
         ck_assert_ptr_nonnull(strstr(file.data, "\\begin{eqnarray*}\n"));
@@ -120,24 +119,42 @@ static const bad_file bad_files[] = {
     {"claim c\ndegree 3\nterms 0\n", IDS_ERR_DOMAIN, {9, 8}, "do not add up"},
     {"claim d\ndegree 3\nterms 0\n", IDS_ERR_PARSE, {7, 7}, "expected \"c\""},
     {"claim c\ndegree 4\nterms 0\n", IDS_ERR_DOMAIN, {8, 9}, "degree 3"},
-    {"claim c\ndegree 3\nterms 2\n1 : left : a, b, c : _\n", IDS_ERR_PARSE, {11, 1},
+    {"claim c\ndegree 3\nterms 2\n1 : left : a, b, c : _\n",
+     IDS_ERR_PARSE,
+     {11, 1},
      "ends too early"},
-    {"claim c\ndegree 3\nterms 0\n1 : left : a, b, c : _\n", IDS_ERR_DOMAIN, {9, 8},
+    {"claim c\ndegree 3\nterms 0\n1 : left : a, b, c : _\n",
+     IDS_ERR_DOMAIN,
+     {9, 8},
      "do not add up"},
     {"claim c\ndegree 3\nterms 1\n0 : left : a, b, c : _\n", IDS_ERR_PARSE, {10, 2}, "of 0"},
-    {"claim c\ndegree 3\nterms 1\n2/4 : left : a, b, c : _\n", IDS_ERR_PARSE, {10, 4},
+    {"claim c\ndegree 3\nterms 1\n2/4 : left : a, b, c : _\n",
+     IDS_ERR_PARSE,
+     {10, 4},
      "lowest terms"},
-    {"claim c\ndegree 3\nterms 1\n1 : left : a, b, a*b : _\n", IDS_ERR_DOMAIN, {10, 25},
+    {"claim c\ndegree 3\nterms 1\n1 : left : a, b, a*b : _\n",
+     IDS_ERR_DOMAIN,
+     {10, 25},
      "the term has degree 4"},
-    {"claim c\ndegree 3\nterms 1\n1 : left : a, b, c : a\n", IDS_ERR_PARSE, {10, 23},
+    {"claim c\ndegree 3\nterms 1\n1 : left : a, b, c : a\n",
+     IDS_ERR_PARSE,
+     {10, 23},
      "expected _ once"},
-    {"claim c\ndegree 3\nterms 1\n1 : left : a, b : _\n", IDS_ERR_PARSE, {10, 16},
+    {"claim c\ndegree 3\nterms 1\n1 : left : a, b : _\n",
+     IDS_ERR_PARSE,
+     {10, 16},
      "expected \", \""},
-    {"claim c\ndegree 3\nterms 1\n1 : right : a, b, c : _\n", IDS_ERR_PARSE, {10, 5},
+    {"claim c\ndegree 3\nterms 1\n1 : right : a, b, c : _\n",
+     IDS_ERR_PARSE,
+     {10, 5},
      "no identity of that name"},
-    {"claim c\ndegree 3\nterms 1\n1 : #1 : a, b, c : _\n", IDS_ERR_PARSE, {10, 7},
+    {"claim c\ndegree 3\nterms 1\n1 : #1 : a, b, c : _\n",
+     IDS_ERR_PARSE,
+     {10, 7},
      "no such identity"},
-    {"claim c\ndegree 3\nterms 1\n1 : left : a, b, x : _\n", IDS_ERR_PARSE, {10, 18},
+    {"claim c\ndegree 3\nterms 1\n1 : left : a, b, x : _\n",
+     IDS_ERR_PARSE,
+     {10, 18},
      "no variable of the claim"},
 };
 
@@ -156,8 +173,7 @@ START_TEST(test_bad_files)
     TEST_STATUS(ctx, ids_certificate_check(ctx, file.data, file.length, "f", &report),
                 IDS_ERR_PARSE);
     certificate_mark(&file);
-    TEST_STATUS(ctx, ids_certificate_check(ctx, file.data, file.length, "f", &report),
-                bad->status);
+    TEST_STATUS(ctx, ids_certificate_check(ctx, file.data, file.length, "f", &report), bad->status);
     ck_assert_msg(strstr(ids_ctx_message(ctx), bad->message) != NULL, "%s", ids_ctx_message(ctx));
     ck_assert_msg(ids_ctx_last_place(ctx).line == bad->place.line &&
                       ids_ctx_last_place(ctx).column == bad->place.column,
@@ -235,8 +251,9 @@ START_TEST(test_notations)
          "identity t(a,b,c) = (a,b,c)\nidentity two_words: <a,b> = a o b\n"
          "candidate c: t(<_,y'>,_,y') = (y',_ o y',_)\n",
          true},
-        {"witness in words", "operation a o b\nidentity a o b = b o a\n"
-                             "candidate c: (x o x') o x = x o (x o x')\n",
+        {"witness in words",
+         "operation a o b\nidentity a o b = b o a\n"
+         "candidate c: (x o x') o x = x o (x o x')\n",
          true},
         {"signs", "operation [a,b] alternating\ncandidate c: [[a,b],[a,c]] = 0\n", false},
     };

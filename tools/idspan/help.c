@@ -111,8 +111,8 @@ void help_general(FILE *to)
     fputs("\nOptions of every task:\n", to);
     print_options(to, COMMON_OPTIONS);
     fputs("\n"
-          "Exit status: 0 done, 1 does not follow, 2 the command line, the input or the output is not in order,\n"
-          "3 a limit was hit, 4 interrupted.\n"
+          "Exit status: 0 done, 1 does not follow, 2 the command line, the input or the output is\n"
+          "not in order, 3 a limit was hit, 4 interrupted.\n"
           "\n"
           "Examples:\n"
           "  idspan show pair.pres\n"

@@ -66,8 +66,8 @@ const task task_check = {
     .usage = "",
     .summary = "verify a proof or witness file",
     .details =
-        "FILE is a derivation or a witness, as \"follows\" writes them; it contains the identities\n"
-        "and the candidate. A derivation is multiplied out, and its terms must add up to the\n"
+        "FILE is a derivation or a witness, as \"follows\" writes them; it has the identities and\n"
+        "the candidate in it. A derivation is multiplied out, and its terms must add up to the\n"
         "candidate. A witness must be 0 on every consequence of the identities in the variables\n"
         "of the candidate, and not on the candidate. All of it is recomputed exactly, by code\n"
         "that has nothing in common with the search.\n"

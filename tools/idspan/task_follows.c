@@ -66,7 +66,7 @@ static ids_status find_candidate(session *s, size_t *index)
                         count == 0 ? ": write one as \"candidate NAME: ...\"" : " others");
 }
 
-/* ---- proofs and witnesses ---------------------------------------------------------------------- */
+/* ---- proofs and witnesses -------------------------------------------------------------------- */
 
 static ids_status write_proof(session *s, size_t index, const ids_follows_options *options)
 {
@@ -132,7 +132,7 @@ static ids_status write_certificate(session *s, size_t index, const ids_follows_
     return st;
 }
 
-/* ---- answers ------------------------------------------------------------------------------------ */
+/* ---- answers --------------------------------------------------------------------------------- */
 
 /* A note with the partitions for which a candidate fails. */
 static ids_status write_failures(session *s, const ids_follows *follows, tally *t)
@@ -221,12 +221,14 @@ static ids_status run(session *s)
         TRY(find_candidate(s, &from));
         count = from + 1;
     } else if (count == 0) {
-        st = session_fail(s, IDS_ERR_ARG, "%s has no candidates: write one as \"candidate NAME: "
-                          "...\"", session_source(s));
+        st = session_fail(s, IDS_ERR_ARG,
+                          "%s has no candidates: write one as \"candidate NAME: "
+                          "...\"",
+                          session_source(s));
         goto done;
     }
-    TRY(ids_writer_create(s->ctx, s->set->format, "follows", columns, COLUMNS, output_sink,
-                          &s->out, &t.writer));
+    TRY(ids_writer_create(s->ctx, s->set->format, "follows", columns, COLUMNS, output_sink, &s->out,
+                          &t.writer));
     for (size_t i = from; i < count; i++) {
         TRY(answer_one(s, i, &t));
     }
@@ -270,8 +272,9 @@ const task task_follows = {
         "\n"
         "--proof writes a derivation: the candidate as a sum of consequences, a line a term, with\n"
         "coefficient, identity, what its variables stand for, and the monomial around it; `_` is\n"
-        "where the consequence stands. With --format latex it is a LaTeX formula. --witness writes\n"
-        "a refutation: an integer for each monomial, such that all consequences get 0 and the\n"
+        "where the consequence stands. With --format latex it is a LaTeX formula. --witness\n"
+        "writes a refutation: an integer for each monomial, such that all consequences get 0 and "
+        "the\n"
         "candidate does not. Both make the answer exact, and \"check\" verifies them.\n"
         "\n"
         "Exit status: 0 it follows, all of them with --all; 1 it does not.\n"
