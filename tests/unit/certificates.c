@@ -75,6 +75,14 @@ const theorem theorem_list[] = {
 };
 const size_t theorem_count = sizeof theorem_list / sizeof *theorem_list;
 
+const theorem theorem_glennie = {
+    "Glennie",
+    JORDAN "define tri(a,b,c) = 2*((a*b)*c) + 2*((b*c)*a) - 2*((a*c)*b)\n"
+           "define u(a,b) = 2*(a*(a*b)) - (a*a)*b\n"
+           "define h(x,y,z) = tri(u(x,u(y,z)),z,2*(x*y)) - u(x,u(y,u(z,2*(x*y))))\n"
+           "candidate c: h(x,y,z) - h(y,x,z) = 0\n",
+    false};
+
 int receive(void *user, const char *bytes, size_t length)
 {
     return idsi_text_append(user, bytes, length) != IDS_OK;

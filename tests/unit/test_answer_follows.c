@@ -74,6 +74,28 @@ START_TEST(test_certificates)
 }
 END_TEST
 
+START_TEST(test_glennie)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_presentation *pres = read(ctx, theorem_glennie.text);
+    ids_follows *follows = NULL;
+    ids_partition partition = {0};
+    uint64_t more = 0;
+    char *text = NULL;
+
+    TEST_OK(ctx, ids_follows_decide(ctx, pres, 0, NULL, &follows));
+    ck_assert_uint_eq(ids_follows_count(follows), 1);
+    TEST_OK(ctx, ids_follows_partition(follows, 0, &partition, &more));
+    TEST_OK(ctx, ids_partition_print(ctx, &partition, &text));
+    ck_assert_str_eq(text, "3+3+2");
+    ck_assert_uint_eq(more, 1);
+    ids_string_free(ctx, text);
+    ids_follows_free(follows);
+    ids_presentation_free(pres);
+    test_ctx_free(ctx);
+}
+END_TEST
+
 /* Another coefficient in any term of a derivation, under a right mark: the sum must fail. */
 START_TEST(test_wrong_sum)
 {
@@ -308,6 +330,7 @@ int main(void)
     tcase_add_loop_test(tcase, test_theorems, 0, (int)theorem_count);
     tcase_add_loop_test(tcase, test_certificates, 0, (int)theorem_count);
     tcase_add_loop_test(tcase, test_bad_files, 0, bad);
+    tcase_add_test(tcase, test_glennie);
     tcase_add_test(tcase, test_wrong_sum);
     tcase_add_test(tcase, test_hand_witness);
     tcase_add_test(tcase, test_wrong_witness);
