@@ -21,7 +21,8 @@ extern const size_t theorem_count;
 /*
  * Glennie's identity of degree 8, which special Jordan algebras satisfy and the free one does not:
  * the difference is one module of partition 3+3+2 (C. M. Glennie, Pacific J. Math. 16 (1966); in
- * the form of K. McCrimmon, A Taste of Jordan Algebras (2004), from memory). Large: not in the list.
+ * the form of K. McCrimmon, A Taste of Jordan Algebras (2004), from memory). Not in the list:
+ * it is large.
  */
 extern const theorem theorem_glennie;
 
