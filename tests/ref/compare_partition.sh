@@ -28,7 +28,8 @@ trap 'rm -rf "$work"' EXIT
 reach()
 {
     "$tool" count "$1" --degrees "1..$degree" --format csv |
-        awk -F, -v limit="$2" 'NR > 1 { if ($3 + 0 > limit) exit; last = $1 } END { print last + 0 }'
+        awk -F, -v limit="$2" \
+            'NR > 1 { if ($3 + 0 > limit) exit; last = $1 } END { print last + 0 }'
 }
 
 # compare FILE LIMIT LABEL
@@ -56,7 +57,8 @@ if [ "$random" != - ]; then
     echo "random presentations: seeds $seed to $last_seed"
     while [ "$seed" -le "$last_seed" ]; do
         "$random" "$seed" > "$work/random.pres" || exit 1
-        compare "$work/random.pres" "${IDS_TEST_LIMIT:-2000}" "seed $seed" || cat "$work/random.pres"
+        compare "$work/random.pres" "${IDS_TEST_LIMIT:-2000}" "seed $seed" ||
+            cat "$work/random.pres"
         seed=$((seed + 1))
     done
 fi

@@ -331,7 +331,7 @@ START_TEST(test_mutations)
 }
 END_TEST
 
-/* ---- stopping early --------------------------------------------------------------------------- */
+/* ---- stopping early ------------------------------------------------------------------------ */
 
 typedef struct watch {
     uint32_t cancel_at; /* degree, 0: never */

@@ -1,7 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
  * Inside the partition engine: forms, unknowns, generators, solutions that do not depend on the
- * threads. Its results are compared in test_answer_partition.c and in tests/published and tests/ref.
+ * threads. Its results are compared in test_answer_partition.c, tests/published and tests/ref.
  */
 #include <string.h>
 
@@ -13,7 +13,8 @@
 
 static const char commutative[] = "operation a*b commutative\n";
 static const char jordan[] = "operation a*b commutative\nidentity ((x*x)*y)*x = (x*x)*(y*x)\n";
-static const char lie[] = "operation [a,b] alternating\nidentity [[a,b],c] + [[b,c],a] + [[c,a],b]\n";
+static const char lie[] =
+    "operation [a,b] alternating\nidentity [[a,b],c] + [[b,c],a] + [[c,a],b]\n";
 static const char associative[] = "operation a*b\nidentity (a*b)*c = a*(b*c)\n";
 
 typedef struct fixture {
@@ -151,9 +152,9 @@ START_TEST(test_generators)
 }
 END_TEST
 
-/* ---- solutions -------------------------------------------------------------------------------- */
+/* ---- solutions ------------------------------------------------------------------------ */
 
-/* The bases themselves, which later degrees are built on, are the same for every number of threads. */
+/* The bases, which later degrees are built on, are the same for every number of threads. */
 START_TEST(test_threads)
 {
     const uint32_t threads = (uint32_t)_i;

@@ -136,7 +136,7 @@ END_TEST
 
 /* ---- characters ------------------------------------------------------------------------------ */
 
-/* A permutation of a cycle type: on 1, 2, .. in turn; a cycle of k is a product of k-1 exchanges. */
+/* A permutation of a cycle type, 1, 2, .. in turn; a cycle of k is a product of k-1 exchanges. */
 static size_t cycle_word(const ids_partition *type, uint8_t *word)
 {
     size_t length = 0;
@@ -266,7 +266,7 @@ START_TEST(test_branching)
 }
 END_TEST
 
-/* ---- inner loops --------------------------------------------------------------------------------- */
+/* ---- inner loops ------------------------------------------------------------------------ */
 
 #define MOST_WIDTH 70u
 
