@@ -109,6 +109,7 @@ static ids_status need_shape(planner *plan, uint32_t shape)
     if (plan->planned[shape]) {
         return IDS_OK;
     }
+    IDSI_TRY(idsi_poll(engine->ctx, NULL));
     plan->planned[shape] = true;
     uint32_t cells = engine->skews.list[shape]->shape.cells;
     idsi_degree *degree = &engine->degree[cells];

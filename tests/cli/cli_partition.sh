@@ -88,9 +88,9 @@ has err 'raise it with --memory'
 set -m
 got=0
 last="idspan rank --by partition (INT)"
-timeout 60 "$tool" rank jordan.pres --degrees 1..13 --by partition --memory none >out 2>err &
+timeout 60 "$tool" rank jordan.pres --degrees 1..12 --by partition --memory none >out 2>err &
 job=$!
-sleep 4
+sleep 8
 kill -INT "$job" 2>/dev/null
 wait "$job" || got=$?
 expect "exit status" "$got" 4
