@@ -56,6 +56,8 @@ void idsi_feed_free(idsi_feed *feed);
  */
 ids_status idsi_feed_run(idsi_feed *feed, const idsi_deferred *only, idsi_feed_fn row,
                          idsi_feed_block_fn block, void *user, uint64_t *rows);
+/* No more rows are wanted in a pass that is not the first. */
+void idsi_feed_stop(idsi_feed *feed);
 
 /* ---- stages 2 and 3 (lib/field/finish.c) ----------------------------------------------------- */
 

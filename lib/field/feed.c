@@ -60,6 +60,7 @@ struct idsi_feed {
     size_t *order;         /* piece at each place */
     uint64_t *piece_first; /* number of the first row of the piece at each place */
     bool numbered;         /* from the first pass on */
+    bool stopped;          /* no more rows are wanted in this pass */
     /* of the pass at work */
     size_t *place_of; /* each buffer: place of its piece */
     idsi_feed_fn row;
@@ -262,6 +263,9 @@ static ids_status source_row(void *user, const idsi_entry *row, size_t count)
     idsi_feed *feed = user;
     buffer *b = &feed->buffers[0];
 
+    if (feed->stopped) {
+        return IDS_OK;
+    }
     IDSI_TRY(keep_row(b, row, count));
     if (b->entry_count >= BLOCK_ENTRIES || b->row_count >= BLOCK_ENTRIES) {
         IDSI_TRY(flush_source(feed));
@@ -315,7 +319,7 @@ static ids_status run_pieces(idsi_feed *feed, const idsi_deferred *only, uint64_
     ids_status st = IDS_OK;
     size_t place = 0;
 
-    while (place < feed->matrix->pieces) {
+    while (place < feed->matrix->pieces && !feed->stopped) {
         size_t count = 0;
         while (place < feed->matrix->pieces && count < feed->buffer_count) {
             if (piece_is_wanted(feed, place, only)) {
@@ -337,7 +341,7 @@ static ids_status run_pieces(idsi_feed *feed, const idsi_deferred *only, uint64_
         }
         IDSI_TRY(end_block(feed));
     }
-    feed->numbered = true;
+    feed->numbered = feed->numbered || !feed->stopped;
     *rows = feed->piece_first[feed->matrix->pieces];
 done:
     return st;
@@ -349,5 +353,11 @@ ids_status idsi_feed_run(idsi_feed *feed, const idsi_deferred *only, idsi_feed_f
     feed->row = row;
     feed->block = block;
     feed->user = user;
+    feed->stopped = false;
     return feed->matrix->pieces > 0 ? run_pieces(feed, only, rows) : run_source(feed, only, rows);
+}
+
+void idsi_feed_stop(idsi_feed *feed)
+{
+    feed->stopped = true;
 }

@@ -12,7 +12,7 @@
  * most 1/p: if a deferred row is independent, the lane that holds it is so but for one value of its
  * factor.
  *
- * When only the rank is wanted, dense rows are folded (fold.c) into a quarter of the columns; if
+ * When only the rank is wanted, dense rows are folded (fold.c) into about a fifth of the columns; if
  * the rank turns out to be too large for that, the stage begins again with twice as many.
  */
 #include <math.h>
@@ -23,15 +23,15 @@
 /* Dense rows that are eliminated at a time: a panel of the dense form. */
 #define BLOCK 256u
 /* Bytes that lanes may take. */
-#define LANES_BYTES (UINT64_C(64) << 20)
+#define LANES_BYTES (UINT64_C(32) << 20)
 /* Fewer columns are not folded. */
 #define LEAST_FOLDED 2048u
 /* Most rows of a lane to begin with. */
 #define MOST_TOGETHER 8u
-/* Random rows of the first check. */
-#define CHECK_ROWS 16u
-/* Tasks that the columns of one group of lanes are shared into. */
-#define SHARES 4u
+/* Random rows of the first check: two groups of lanes, so that two threads load them. */
+#define CHECK_ROWS 32u
+/* Tasks that the columns are shared into. */
+#define SHARES 16u
 
 /* A row that is to be loaded into a lane. */
 typedef struct load {
@@ -47,6 +47,7 @@ typedef struct finish {
     idsi_lanes *groups[BLOCK / 16];
     uint32_t group_count;
     uint32_t lane_count; /* of all groups */
+    uint32_t in_use;     /* lanes that take rows */
     load *loads;
     size_t load_count;
     size_t load_capacity;
@@ -68,7 +69,7 @@ typedef struct finish {
 static size_t first_width(const idsi_elimination *e)
 {
     uint64_t columns = e->columns - idsi_echelon_rank(e->echelon);
-    uint64_t width = columns / 4 + 512;
+    uint64_t width = columns / 5 + 512;
     uint64_t most = e->deferred.count + e->deferred.count / 8 + 64;
 
     if (e->matrix->tables || e->prime < IDSI_LEAST_RANDOM_PRIME || columns < LEAST_FOLDED) {
@@ -125,13 +126,14 @@ static ids_status begin(finish *f, size_t width)
     uint32_t wanted = groups_for(e);
 
     IDSI_TRY(idsi_fold_init(&e->fold, e->ctx, e->echelon, e->prime, e->columns, width, e->random));
-    IDSI_TRY(
-        idsi_rewriter_create(e->ctx, e->echelon, e->prime, e->columns, &e->fold, &f->rewriter));
+    IDSI_TRY(idsi_rewriter_create(e->ctx, e->echelon, e->prime, e->columns, &e->fold, e->team,
+                                  &f->rewriter));
     while (f->group_count < wanted) {
         IDSI_TRY(idsi_lanes_create(e->ctx, f->rewriter, &f->groups[f->group_count]));
         f->group_count++;
     }
     f->lane_count = f->group_count * idsi_lanes_count();
+    f->in_use = f->lane_count;
     f->together = 1;
     f->share = (e->fold.width / SHARES / 16 + 1) * 16;
     IDSI_TRY(idsi_alloc_array(e->ctx, BLOCK * e->fold.width, sizeof *f->block, &f->block));
@@ -204,13 +206,20 @@ static void load_group(void *user, uint32_t member, size_t group)
     }
 }
 
+/* Groups of lanes that have rows. */
+static size_t groups_used(const finish *f)
+{
+    uint64_t lanes = f->taken < f->in_use ? f->taken : f->in_use;
+    return (lanes + idsi_lanes_count() - 1) / idsi_lanes_count();
+}
+
 /* The rows that were handed out go: load them. */
 static ids_status load_rows(void *user)
 {
     finish *f = user;
 
     if (f->load_count > 0) {
-        idsi_team_run(f->e->team, f->group_count, load_group, f);
+        idsi_team_run(f->e->team, groups_used(f), load_group, f);
         f->load_count = 0;
     }
     return idsi_poll(f->e->ctx, NULL);
@@ -224,21 +233,23 @@ static void solve_group(void *user, uint32_t member, size_t group)
     idsi_lanes_solve(f->groups[group]);
 }
 
-static void apply_group(void *user, uint32_t member, size_t task)
+/* Some columns of all groups: the rules' entries there are read from memory once. */
+static void apply_columns(void *user, uint32_t member, size_t task)
 {
     finish *f = user;
     uint32_t each = idsi_lanes_count();
-    uint32_t group = (uint32_t)(task / SHARES);
-    size_t from = task % SHARES * f->share;
+    size_t from = task * f->share;
     size_t width = f->e->fold.width;
-    uint32_t used = (uint32_t)(f->taken < f->lane_count ? f->taken : f->lane_count);
+    size_t to = width - from < f->share ? width : from + f->share;
+    uint32_t used = (uint32_t)(f->taken < f->in_use ? f->taken : f->in_use);
 
     (void)member;
-    if (from < width && group * each < used) {
-        uint32_t count = used - group * each < each ? used - group * each : each;
-        idsi_lanes_apply(f->groups[group], count, from,
-                         width - from < f->share ? width : from + f->share,
-                         rest_of(f, group * each), width);
+    for (uint32_t chunk = 0; chunk < idsi_rewriter_chunks(f->rewriter); chunk++) {
+        for (uint32_t lane = 0; lane < used; lane += each) {
+            uint32_t count = used - lane < each ? used - lane : each;
+            idsi_lanes_apply(f->groups[lane / each], chunk, count, from, to, rest_of(f, lane),
+                             width);
+        }
     }
 }
 
@@ -251,10 +262,10 @@ static ids_status flush_lanes(finish *f)
     if (f->taken == 0) {
         return IDS_OK;
     }
-    idsi_team_run(f->e->team, f->group_count, solve_group, f);
+    idsi_team_run(f->e->team, groups_used(f), solve_group, f);
     IDSI_TRY(idsi_poll(f->e->ctx, NULL));
-    idsi_team_run(f->e->team, (size_t)f->group_count * SHARES, apply_group, f);
-    f->block_rows += f->taken < f->lane_count ? f->taken : f->lane_count;
+    idsi_team_run(f->e->team, (f->e->fold.width + f->share - 1) / f->share, apply_columns, f);
+    f->block_rows += f->taken < f->in_use ? f->taken : f->in_use;
     f->taken = 0;
     if (f->block_rows + f->lane_count > BLOCK) {
         IDSI_TRY(flush_block(f));
@@ -268,10 +279,11 @@ static ids_status take_row(void *user, uint64_t number, const idsi_entry *row, s
     ids_status st = IDS_OK;
     finish *f = user;
     idsi_elimination *e = f->e;
-    load next = {row, count, (uint32_t)(f->taken % f->lane_count), 1};
+    load next = {row, count, (uint32_t)(f->taken % f->in_use), 1};
 
     (void)number;
     if (f->is_at_end || is_over(f)) {
+        idsi_feed_stop(e->feed);
         return IDS_OK;
     }
     if (f->together > 1) {
@@ -282,7 +294,7 @@ static ids_status take_row(void *user, uint64_t number, const idsi_entry *row, s
     f->loads[f->load_count] = next;
     f->load_count++;
     f->taken++;
-    if (f->taken == f->together * f->lane_count) {
+    if (f->taken == f->together * f->in_use) {
         IDSI_TRY(flush_lanes(f));
     }
 done:
@@ -315,13 +327,12 @@ static ids_status all_passes(finish *f)
     f->is_at_end = false;
     while (f->was_combined && !is_over(f)) {
         f->together = (f->e->deferred.count + slots - 1) / slots;
+        f->in_use = slots < f->lane_count ? (uint32_t)slots : f->lane_count;
         IDSI_TRY(pass(f));
         if (f->added == 0) {
             break;
         }
-        if (4 * f->added > 3 * slots) {
-            slots *= 16;
-        }
+        slots = 4 * f->added > 3 * slots ? 4 * slots : CHECK_ROWS;
     }
 done:
     return st;

@@ -26,7 +26,7 @@ uint64_t idsi_fold_bytes(uint64_t columns)
 void idsi_fold_clear(idsi_fold *fold)
 {
     idsi_free(fold->ctx, fold->place);
-    idsi_free(fold->ctx, fold->mix);
+    idsi_free(fold->ctx, fold->mix_room);
     memset(fold, 0, sizeof *fold);
 }
 
@@ -58,8 +58,9 @@ ids_status idsi_fold_init(idsi_fold *fold, ids_ctx *ctx, const idsi_echelon *ech
     IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *fold->place, &fold->place));
     if (width > 0) {
         fold->mixed = IDSI_FOLD_MIXED;
-        IDSI_TRY(idsi_alloc_array(ctx, (size_t)columns * IDSI_FOLD_MIXED, sizeof *fold->mix,
-                                  &fold->mix));
+        IDSI_TRY(idsi_alloc_array(ctx, ((size_t)columns + 1) * IDSI_FOLD_MIXED, sizeof *fold->mix,
+                                  &fold->mix_room));
+        fold->mix = idsi_kernel_align(fold->mix_room);
     }
     for (uint32_t c = 0; c < columns; c++) {
         if (idsi_echelon_is_pivot(echelon, c)) {

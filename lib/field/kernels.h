@@ -62,6 +62,13 @@ extern const idsi_kernel idsi_kernel_avx2;
 extern const idsi_kernel idsi_kernel_avx512;
 #endif
 
+/* The first line of the cache that begins at a pointer or after; 64 bytes of room are needed. */
+static inline void *idsi_kernel_align(void *pointer)
+{
+    uintptr_t past = (uintptr_t)pointer & 63u;
+    return (char *)pointer + (past == 0 ? 0 : 64u - past);
+}
+
 /* Place of a lane among the sums of a column: the even lanes first. */
 static inline size_t idsi_kernel_slot(size_t lane)
 {

@@ -13,8 +13,10 @@
  *
  *     sums[i * LANES + slot]    what rows have at pivot i, < 4 p^2
  *     factors[i * LANES + lane]
- *     start[t] .. start[t+1]    entries at pivot t, for t < R, or at dense column t - R; ascending
- *                               rules, whose number stands in place of the column
+ *
+ * The entries at a pivot, or those of CHUNK rules at a dense column, make a list, ascending; the
+ * number of the rule stands in place of the column. So the factors that the lists of a chunk need
+ * stay in the second cache.
  */
 #include <assert.h>
 #include <string.h>
@@ -24,115 +26,177 @@
 
 static const uint64_t zeros[IDSI_LANES] = {0};
 
+/* Rules of a chunk: their factors take 256 KiB. */
+#define CHUNK 4096u
+
+/* Lists, one after the other. */
+typedef struct lists {
+    size_t count;
+    size_t *start; /* count + 1 */
+    idsi_entry *entries;
+} lists;
+
 struct idsi_rewriter {
     ids_ctx *ctx;
     uint32_t prime;
     uint32_t rank;
+    uint32_t chunk_count;
     const idsi_kernel *kernel;
     const idsi_fold *fold;
     uint32_t *number; /* of a column that is a pivot */
-    size_t *start;    /* rank + width + 1 */
-    idsi_entry *entries;
+    uint32_t *pivot;  /* the inverse */
+    lists at_pivots;
+    lists *at_columns; /* dense columns, of each chunk */
 };
 
 struct idsi_lanes {
     ids_ctx *ctx;
     const idsi_rewriter *rewriter;
-    uint64_t *sums;
-    uint32_t *factors;
+    void *room;
+    uint64_t *sums;    /* in room, from a line of the cache on */
+    uint32_t *factors; /* likewise */
 };
 
 /* ---- the rules by columns -------------------------------------------------------------------- */
 
 uint64_t idsi_rewriter_bytes(uint64_t columns, uint64_t rank, uint64_t fill)
 {
-    return columns * (sizeof(uint32_t) + sizeof(size_t)) + fill * sizeof(idsi_entry) +
-           rank * sizeof(size_t);
+    uint64_t width = columns - rank;
+    return columns * sizeof(uint32_t) + rank * (sizeof(uint32_t) + sizeof(size_t)) +
+           (rank / CHUNK + 1) * width * sizeof(size_t) + fill * sizeof(idsi_entry);
+}
+
+static void free_lists(ids_ctx *ctx, lists *old)
+{
+    idsi_free(ctx, old->start);
+    idsi_free(ctx, old->entries);
 }
 
 void idsi_rewriter_free(idsi_rewriter *rewriter)
 {
-    if (rewriter != NULL) {
-        idsi_free(rewriter->ctx, rewriter->number);
-        idsi_free(rewriter->ctx, rewriter->start);
-        idsi_free(rewriter->ctx, rewriter->entries);
-        idsi_free(rewriter->ctx, rewriter);
+    if (rewriter == NULL) {
+        return;
     }
+    ids_ctx *ctx = rewriter->ctx;
+    free_lists(ctx, &rewriter->at_pivots);
+    for (uint32_t k = 0; rewriter->at_columns != NULL && k < rewriter->chunk_count; k++) {
+        free_lists(ctx, &rewriter->at_columns[k]);
+    }
+    idsi_free(ctx, rewriter->at_columns);
+    idsi_free(ctx, rewriter->number);
+    idsi_free(ctx, rewriter->pivot);
+    idsi_free(ctx, rewriter);
 }
 
-/* Where the entries at a column stand. */
-static size_t list_of(const idsi_rewriter *r, uint32_t column)
+typedef struct arranging {
+    const idsi_rewriter *rewriter;
+    const idsi_echelon *echelon;
+    lists *at_pivots;
+    ids_status *status; /* of each task: the chunks, then the pivots */
+} arranging;
+
+static bool list_of(const idsi_rewriter *r, uint32_t column, bool at_pivots, size_t *list)
 {
     uint32_t place = r->fold->place[column];
-    return place == UINT32_MAX ? r->number[column] : (size_t)r->rank + place;
+    *list = at_pivots ? r->number[column] : place;
+    return at_pivots == (place == UINT32_MAX);
 }
 
-/* Counts the entries of every list into start[list + 1]; a pivot's rule has its number then. */
-static void count_entries(idsi_rewriter *r, const idsi_echelon *echelon, uint32_t columns)
+/* Puts the rules first .. end-1 into lists: at pivots, or at dense columns. */
+static ids_status arrange(const arranging *a, uint32_t first, uint32_t end, bool at_pivots,
+                          lists *out)
 {
+    ids_status st = IDS_OK;
+    const idsi_rewriter *r = a->rewriter;
     const idsi_entry *rule = NULL;
     uint32_t count = 0;
-    uint32_t number = 0;
+    size_t list = 0;
 
-    for (uint32_t c = columns; c-- > 0;) {
-        if (!idsi_echelon_rule(echelon, c, &rule, &count)) {
-            continue;
-        }
-        r->number[c] = number++;
-    }
-    for (uint32_t c = columns; c-- > 0;) {
-        if (!idsi_echelon_rule(echelon, c, &rule, &count)) {
-            continue;
-        }
+    out->count = at_pivots ? r->rank : r->fold->width;
+    IDSI_TRY(idsi_alloc_array(r->ctx, out->count + 2, sizeof *out->start, &out->start));
+    for (uint32_t k = first; k < end; k++) {
+        (void)idsi_echelon_rule(a->echelon, r->pivot[k], &rule, &count);
         for (uint32_t i = 0; i < count; i++) {
-            r->start[list_of(r, rule[i].column) + 1]++;
+            if (list_of(r, rule[i].column, at_pivots, &list)) {
+                out->start[list + 2]++;
+            }
         }
     }
+    for (size_t t = 2; t < out->count + 2; t++) {
+        out->start[t] += out->start[t - 1];
+    }
+    IDSI_TRY(
+        idsi_alloc_array(r->ctx, out->start[out->count + 1], sizeof *out->entries, &out->entries));
+    /* start[list + 1] moves from the begin to the end of the list. */
+    for (uint32_t k = first; k < end; k++) {
+        (void)idsi_echelon_rule(a->echelon, r->pivot[k], &rule, &count);
+        for (uint32_t i = 0; i < count; i++) {
+            if (list_of(r, rule[i].column, at_pivots, &list)) {
+                out->entries[out->start[list + 1]++] = (idsi_entry){k, rule[i].value};
+            }
+        }
+    }
+done:
+    return st;
 }
 
-/* Puts the entries into the lists; start[list] moves to the end of the list. */
-static void fill_lists(idsi_rewriter *r, const idsi_echelon *echelon, uint32_t columns)
+static void arrange_task(void *user, uint32_t member, size_t task)
 {
-    const idsi_entry *rule = NULL;
-    uint32_t count = 0;
-    uint32_t number = 0;
+    arranging *a = user;
+    const idsi_rewriter *r = a->rewriter;
+    uint32_t first = (uint32_t)task * CHUNK;
+    uint32_t end = task + 1 < r->chunk_count ? first + CHUNK : r->rank;
 
-    for (uint32_t c = columns; c-- > 0;) {
-        if (!idsi_echelon_rule(echelon, c, &rule, &count)) {
-            continue;
-        }
-        for (uint32_t i = 0; i < count; i++) {
-            size_t list = list_of(r, rule[i].column);
-            r->entries[r->start[list]++] = (idsi_entry){number, rule[i].value};
-        }
-        number++;
+    (void)member;
+    if (task == r->chunk_count) {
+        a->status[task] = arrange(a, 0, r->rank, true, a->at_pivots);
+        return;
     }
+    a->status[task] = arrange(a, first, end, false, &r->at_columns[task]);
+}
+
+static ids_status arrange_all(idsi_rewriter *r, const idsi_echelon *echelon, idsi_team *team)
+{
+    ids_status st = IDS_OK;
+    arranging a = {.rewriter = r, .echelon = echelon, .at_pivots = &r->at_pivots};
+    size_t tasks = (size_t)r->chunk_count + 1;
+
+    IDSI_TRY(idsi_alloc_array(r->ctx, tasks, sizeof *a.status, &a.status));
+    idsi_team_run(team, tasks, arrange_task, &a);
+    for (size_t k = 0; k < tasks; k++) {
+        IDSI_TRY(a.status[k]);
+    }
+done:
+    idsi_free(r->ctx, a.status);
+    return st;
 }
 
 ids_status idsi_rewriter_create(ids_ctx *ctx, const idsi_echelon *echelon, uint32_t prime,
-                                uint32_t columns, const idsi_fold *fold, idsi_rewriter **rewriter)
+                                uint32_t columns, const idsi_fold *fold, idsi_team *team,
+                                idsi_rewriter **rewriter)
 {
     ids_status st = IDS_OK;
     idsi_rewriter *made = NULL;
+    uint32_t number = 0;
 
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     made->prime = prime;
     made->rank = idsi_echelon_rank(echelon);
+    made->chunk_count = (made->rank + CHUNK - 1) / CHUNK;
     made->kernel = idsi_kernel_choose();
     made->fold = fold;
-    size_t lists = made->rank + fold->width;
     IDSI_TRY(idsi_alloc_array(ctx, columns, sizeof *made->number, &made->number));
-    IDSI_TRY(idsi_alloc_array(ctx, lists + 2, sizeof *made->start, &made->start));
-    IDSI_TRY(
-        idsi_alloc_array(ctx, idsi_echelon_fill(echelon), sizeof *made->entries, &made->entries));
-    count_entries(made, echelon, columns);
-    for (size_t t = 0; t < lists; t++) {
-        made->start[t + 1] += made->start[t];
+    IDSI_TRY(idsi_alloc_array(ctx, made->rank, sizeof *made->pivot, &made->pivot));
+    IDSI_TRY(idsi_alloc_array(ctx, made->chunk_count, sizeof *made->at_columns, &made->at_columns));
+    for (uint32_t c = columns; c-- > 0;) {
+        if (idsi_echelon_is_pivot(echelon, c)) {
+            made->number[c] = number;
+            made->pivot[number] = c;
+            number++;
+        }
     }
-    fill_lists(made, echelon, columns);
-    memmove(made->start + 1, made->start, lists * sizeof *made->start);
-    made->start[0] = 0;
+    IDSI_TRY(arrange_all(made, echelon, team));
     *rewriter = made;
     made = NULL;
 done:
@@ -161,8 +225,10 @@ ids_status idsi_lanes_create(ids_ctx *ctx, const idsi_rewriter *rewriter, idsi_l
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     made->rewriter = rewriter;
-    IDSI_TRY(idsi_alloc_array(ctx, size, sizeof *made->sums, &made->sums));
-    IDSI_TRY(idsi_alloc_array(ctx, size, sizeof *made->factors, &made->factors));
+    IDSI_TRY(
+        idsi_alloc_array(ctx, size + 8, sizeof *made->sums + sizeof *made->factors, &made->room));
+    made->sums = idsi_kernel_align(made->room);
+    made->factors = (uint32_t *)(made->sums + size);
     *lanes = made;
     made = NULL;
 done:
@@ -173,8 +239,7 @@ done:
 void idsi_lanes_free(idsi_lanes *lanes)
 {
     if (lanes != NULL) {
-        idsi_free(lanes->ctx, lanes->sums);
-        idsi_free(lanes->ctx, lanes->factors);
+        idsi_free(lanes->ctx, lanes->room);
         idsi_free(lanes->ctx, lanes);
     }
 }
@@ -221,29 +286,36 @@ void idsi_lanes_load(idsi_lanes *lanes, uint32_t lane, const idsi_entry *row, si
 void idsi_lanes_solve(idsi_lanes *lanes)
 {
     const idsi_rewriter *r = lanes->rewriter;
+    const lists *at = &r->at_pivots;
 
     for (size_t i = 0; i < r->rank; i++) {
         uint64_t *sums = lanes->sums + i * IDSI_LANES;
-        (void)r->kernel->gather(r->prime, r->entries + r->start[i], r->start[i + 1] - r->start[i],
-                                lanes->factors, sums, lanes->factors + i * IDSI_LANES);
+        (void)r->kernel->gather(r->prime, at->entries + at->start[i],
+                                at->start[i + 1] - at->start[i], lanes->factors, sums,
+                                lanes->factors + i * IDSI_LANES);
         memset(sums, 0, IDSI_LANES * sizeof *sums);
     }
 }
 
-void idsi_lanes_apply(const idsi_lanes *lanes, uint32_t count, size_t from, size_t to,
-                      uint32_t *rest, size_t stride)
+uint32_t idsi_rewriter_chunks(const idsi_rewriter *rewriter)
+{
+    return rewriter->chunk_count;
+}
+
+void idsi_lanes_apply(const idsi_lanes *lanes, uint32_t chunk, uint32_t count, size_t from,
+                      size_t to, uint32_t *rest, size_t stride)
 {
     const idsi_rewriter *r = lanes->rewriter;
+    const lists *at = &r->at_columns[chunk];
     uint32_t tile[IDSI_LANES][IDSI_LANES]; /* so that rows are written a line of the cache a time */
 
     while (from < to) {
         size_t width = to - from < IDSI_LANES ? to - from : IDSI_LANES;
         bool any = false;
         for (size_t j = 0; j < width; j++) {
-            size_t list = r->rank + from + j;
-            any |= r->kernel->gather(r->prime, r->entries + r->start[list],
-                                     r->start[list + 1] - r->start[list], lanes->factors, zeros,
-                                     tile[j]);
+            const size_t *start = at->start + from + j;
+            any |= r->kernel->gather(r->prime, at->entries + start[0], start[1] - start[0],
+                                     lanes->factors, zeros, tile[j]);
         }
         for (uint32_t lane = 0; any && lane < count; lane++) {
             uint32_t *row = rest + lane * stride + from;

@@ -80,4 +80,27 @@ static inline bool idsi_marks_pop(idsi_marks *marks, size_t *top, uint32_t *colu
     return true;
 }
 
+/*
+ * Takes out all elements of the last word that has some: *low times 64 is added to the numbers of
+ * the bits. *top as above.
+ */
+static inline bool idsi_marks_pop_word(idsi_marks *marks, size_t *top, size_t *low, uint64_t *word)
+{
+    while (marks->bits[2][*top] == 0) {
+        if (*top == 0) {
+            return false;
+        }
+        (*top)--;
+    }
+    size_t middle = *top * 64 + idsi_marks_top_bit(marks->bits[2][*top]);
+    *low = middle * 64 + idsi_marks_top_bit(marks->bits[1][middle]);
+    *word = marks->bits[0][*low];
+    marks->bits[0][*low] = 0;
+    marks->bits[1][middle] &= ~(UINT64_C(1) << (*low & 63));
+    if (marks->bits[1][middle] == 0) {
+        marks->bits[2][*top] &= ~(UINT64_C(1) << (middle & 63));
+    }
+    return true;
+}
+
 #endif

@@ -89,13 +89,6 @@ void idsi_workspace_clear(idsi_workspace *work)
     memset(work, 0, sizeof *work);
 }
 
-/* The packed operands begin at a line of the cache. */
-static int32_t *aligned(int32_t *pointer)
-{
-    uintptr_t past = (uintptr_t)pointer & 63u;
-    return past == 0 ? pointer : pointer + (64u - past) / sizeof *pointer;
-}
-
 /* ---- one thread's product -------------------------------------------------------------------- */
 
 typedef struct product {
@@ -160,8 +153,8 @@ static size_t least(size_t a, size_t b)
 static void multiply(const product *pr)
 {
     const idsi_kernel *kernel = pr->kernel;
-    int32_t *packed_a = aligned(pr->work->packed_a);
-    int32_t *packed_b = aligned(pr->work->packed_b);
+    int32_t *packed_a = idsi_kernel_align(pr->work->packed_a);
+    int32_t *packed_b = idsi_kernel_align(pr->work->packed_b);
 
     for (size_t jc = 0; jc < pr->n; jc += NC) {
         size_t nc = least(pr->n - jc, NC);

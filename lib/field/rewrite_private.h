@@ -6,6 +6,7 @@
 #ifndef IDSI_REWRITE_PRIVATE_H
 #define IDSI_REWRITE_PRIVATE_H
 
+#include "../core/team_private.h"
 #include "field_private.h"
 
 /* Random combinations of all columns that a folded row begins with. */
@@ -24,7 +25,8 @@ typedef struct idsi_fold {
     uint32_t mixed;  /* 0 or IDSI_FOLD_MIXED */
     uint32_t *place; /* of a column; UINT32_MAX for a pivot */
     /* Its IDSI_FOLD_MIXED factors in the combinations of all; for a pivot, those of its rule. */
-    uint32_t *mix;
+    uint32_t *mix; /* in mix_room */
+    void *mix_room;
 } idsi_fold;
 
 /* width == 0: no folding. */
@@ -40,7 +42,10 @@ uint64_t idsi_fold_bytes(uint64_t columns);
 typedef struct idsi_rewriter idsi_rewriter;
 
 ids_status idsi_rewriter_create(ids_ctx *ctx, const idsi_echelon *echelon, uint32_t prime,
-                                uint32_t columns, const idsi_fold *fold, idsi_rewriter **rewriter);
+                                uint32_t columns, const idsi_fold *fold, idsi_team *team,
+                                idsi_rewriter **rewriter);
+/* The rules are applied in so many chunks. */
+uint32_t idsi_rewriter_chunks(const idsi_rewriter *rewriter);
 void idsi_rewriter_free(idsi_rewriter *rewriter);
 uint64_t idsi_rewriter_bytes(uint64_t columns, uint64_t rank, uint64_t fill);
 
@@ -61,9 +66,9 @@ void idsi_lanes_load(idsi_lanes *lanes, uint32_t lane, const idsi_entry *row, si
 void idsi_lanes_solve(idsi_lanes *lanes);
 /*
  * Then adds to dense columns from .. to-1 of the first `count` lanes' rows, rest + lane * stride,
- * what the rules leave there. Threads may share the lanes for this.
+ * what the rules of a chunk leave there. Threads may share the lanes for this.
  */
-void idsi_lanes_apply(const idsi_lanes *lanes, uint32_t count, size_t from, size_t to,
-                      uint32_t *rest, size_t stride);
+void idsi_lanes_apply(const idsi_lanes *lanes, uint32_t chunk, uint32_t count, size_t from,
+                      size_t to, uint32_t *rest, size_t stride);
 
 #endif

@@ -111,11 +111,54 @@ static void apply_rule(idsi_echelon *e, const rule *r, uint32_t factor)
 static void drop_row(idsi_echelon *e)
 {
     size_t top = e->marks.top_words - 1;
-    uint32_t column = 0;
+    size_t low = 0;
+    uint64_t word = 0;
 
-    while (idsi_marks_pop(&e->marks, &top, &column)) {
-        e->sum[column] = 0;
+    while (idsi_marks_pop_word(&e->marks, &top, &low, &word)) {
+        for (; word != 0; word &= word - 1) {
+            e->sum[low * 64 + (size_t)__builtin_ctzll(word)] = 0;
+        }
     }
+}
+
+/* Takes the residue at a column of the row at work. */
+static inline uint32_t take_residue(idsi_echelon *e, uint32_t column)
+{
+    uint64_t sum = e->sum[column];
+    e->sum[column] = 0;
+    return (uint32_t)(sum < e->prime ? sum : sum % e->prime);
+}
+
+static ids_status keep_entry(idsi_echelon *e, size_t *count, uint32_t column, uint32_t value)
+{
+    ids_status st = IDS_OK;
+    IDSI_TRY(idsi_grow(e->ctx, *count, &e->gathered_capacity, sizeof *e->gathered, &e->gathered));
+    e->gathered[*count] = (idsi_entry){column, value};
+    (*count)++;
+done:
+    return st;
+}
+
+/* Gathers what is left below the top column, which is no pivot; nothing of it is rewritten. */
+static ids_status gather_rest(idsi_echelon *e, size_t *top, size_t *count)
+{
+    ids_status st = IDS_OK;
+    size_t low = 0;
+    uint64_t word = 0;
+
+    while (idsi_marks_pop_word(&e->marks, top, &low, &word)) {
+        while (word != 0) {
+            uint32_t bit = idsi_marks_top_bit(word);
+            uint32_t column = (uint32_t)(low * 64 + bit);
+            uint32_t value = take_residue(e, column);
+            word ^= UINT64_C(1) << bit;
+            if (value != 0) {
+                IDSI_TRY(keep_entry(e, count, column, value));
+            }
+        }
+    }
+done:
+    return st;
 }
 
 /*
@@ -128,32 +171,30 @@ static ids_status gather(idsi_echelon *e, bool all, uint64_t work, size_t *count
     ids_status st = IDS_OK;
     size_t top = e->marks.top_words - 1;
     uint32_t column = 0;
-    bool stopped = false;
 
     *count = 0;
     *over = false;
     while (idsi_marks_pop(&e->marks, &top, &column)) {
-        uint32_t value = (uint32_t)(e->sum[column] % e->prime);
-        e->sum[column] = 0;
+        uint32_t value = take_residue(e, column);
+        uint32_t number = e->rule_of[column];
         if (value == 0) {
             continue;
         }
-        uint32_t number = e->rule_of[column];
-        if (number != 0 && (all || !stopped)) {
-            const rule *r = &e->rules[number - 1];
-            if (r->count > work) {
-                *over = true;
+        if (number == 0) {
+            IDSI_TRY(keep_entry(e, count, column, value));
+            if (!all) {
+                IDSI_TRY(gather_rest(e, &top, count));
                 break;
             }
-            work -= r->count;
-            apply_rule(e, r, value);
             continue;
         }
-        stopped = true;
-        IDSI_TRY(idsi_grow(e->ctx, *count, &e->gathered_capacity, sizeof *e->gathered,
-                           &e->gathered));
-        e->gathered[*count] = (idsi_entry){column, value};
-        (*count)++;
+        const rule *r = &e->rules[number - 1];
+        if (r->count > work) {
+            *over = true;
+            break;
+        }
+        work -= r->count;
+        apply_rule(e, r, value);
     }
 done:
     if (st != IDS_OK || *over) {
@@ -196,8 +237,7 @@ ids_status idsi_echelon_store(idsi_echelon *echelon, const idsi_entry *row, size
     IDSI_TRY(chunk_take(e, count - 1, &entries));
     uint32_t factor = idsi_mod_neg(idsi_mod_inverse(row[0].value, e->prime), e->prime);
     for (size_t i = 1; i < count; i++) {
-        entries[i - 1] =
-            (idsi_entry){row[i].column, idsi_mod_mul(row[i].value, factor, e->prime)};
+        entries[i - 1] = (idsi_entry){row[i].column, idsi_mod_mul(row[i].value, factor, e->prime)};
     }
     e->rules[e->rule_count] = (rule){row[0].column, (uint32_t)(count - 1), entries};
     e->rule_count++;
@@ -207,8 +247,7 @@ done:
     return st;
 }
 
-void idsi_echelon_load(idsi_echelon *echelon, const idsi_entry *row, size_t count,
-                       uint32_t factor)
+void idsi_echelon_load(idsi_echelon *echelon, const idsi_entry *row, size_t count, uint32_t factor)
 {
     for (size_t i = 0; i < count; i++) {
         accumulate(echelon, row[i].column, (uint64_t)row[i].value * factor);

@@ -205,7 +205,7 @@ static void try_lanes(uint32_t p, size_t columns, size_t width, field_kind kind,
     idsi_echelon *echelon = make_form(ctx, &matrix, rules, random);
     TEST_OK(ctx, idsi_fold_init(&fold, ctx, echelon, p, (uint32_t)columns, width, random));
     ck_assert_uint_eq(fold.width, width > 0 ? width : columns - wanted.rank);
-    TEST_OK(ctx, idsi_rewriter_create(ctx, echelon, p, (uint32_t)columns, &fold, &rewriter));
+    TEST_OK(ctx, idsi_rewriter_create(ctx, echelon, p, (uint32_t)columns, &fold, NULL, &rewriter));
     TEST_OK(ctx, idsi_lanes_create(ctx, rewriter, &lanes));
     for (int twice = 0; twice < 2; twice++) { /* the second time on the same, cleared lanes */
         uint32_t used = lanes_count - (uint32_t)twice;
@@ -216,8 +216,10 @@ static void try_lanes(uint32_t p, size_t columns, size_t width, field_kind kind,
             idsi_lanes_load(lanes, lane, entries, count, 1, out + lane * fold.width);
         }
         idsi_lanes_solve(lanes);
-        idsi_lanes_apply(lanes, used, fold.width / 2, fold.width, out, fold.width);
-        idsi_lanes_apply(lanes, used, 0, fold.width / 2, out, fold.width);
+        for (uint32_t chunk = 0; chunk < idsi_rewriter_chunks(rewriter); chunk++) {
+            idsi_lanes_apply(lanes, chunk, used, fold.width / 2, fold.width, out, fold.width);
+            idsi_lanes_apply(lanes, chunk, used, 0, fold.width / 2, out, fold.width);
+        }
         for (uint32_t lane = 0; lane < used; lane++) {
             field_reduced_rest(&wanted, p, field_matrix_row(&matrix, rules + lane), rest);
             fold_rest(&fold, p, columns, rest, folded);
