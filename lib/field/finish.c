@@ -8,12 +8,12 @@
  * are full, the team rewrites them, 16 at a time, and then the block is eliminated. How many rows
  * are taken together follows the yield, so that rows that add nothing cost next to nothing. When
  * blocks add less than half of their rows, or at the end, all deferred rows are combined into a few
- * random rows, once more, until these add nothing. This check passes wrongly with probability at
- * most 1/p: if a deferred row is independent, the lane that holds it is so but for one value of its
- * factor.
+ * random rows, once more, until these add nothing. One such pass is wrong with probability at most
+ * 1/(p-1): if a deferred row is independent, the lane that holds it is so but for one value of its
+ * factor, which is not 0.
  *
- * When only the rank is wanted, dense rows are folded (fold.c) into about a fifth of the columns; if
- * the rank turns out to be too large for that, the stage begins again with twice as many.
+ * When only the rank is wanted, dense rows are folded (fold.c) into about a fifth of the columns;
+ * if the rank turns out to be too large for that, the stage begins again with twice as many.
  */
 #include <math.h>
 #include <string.h>
@@ -58,6 +58,7 @@ typedef struct finish {
     size_t share;      /* columns of one task */
     bool adapt;        /* `together` follows the yield */
     bool is_at_end;    /* blocks add so little that the check is to tell what is left */
+    uint32_t checks;   /* passes that tested whether anything was missed */
     bool was_combined; /* some lane held several rows, or some rows were left out */
     uint64_t added;    /* in this pass over the rows */
     uint32_t mixed_pivots;
@@ -329,6 +330,7 @@ static ids_status all_passes(finish *f)
         f->together = (f->e->deferred.count + slots - 1) / slots;
         f->in_use = slots < f->lane_count ? (uint32_t)slots : f->lane_count;
         IDSI_TRY(pass(f));
+        f->checks++;
         if (f->added == 0) {
             break;
         }
@@ -351,7 +353,7 @@ ids_status idsi_finish(idsi_elimination *e)
         clear(&f);
         if (st != IDS_OK || width == 0 || f.mixed_pivots + 1 < IDSI_FOLD_MIXED) {
             uint32_t random_columns = e->fold.mixed - f.mixed_pivots;
-            e->error = f.was_combined ? 1.0 / e->prime : 0.0;
+            e->error = (double)f.checks / ((double)e->prime - 1.0);
             e->error += e->fold.mixed > 0 ? 2.0 * pow(e->prime, -(double)random_columns) : 0.0;
             return st;
         }
