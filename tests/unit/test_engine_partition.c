@@ -43,7 +43,7 @@ static void close_engine(fixture *f)
     test_ctx_free(f->ctx);
 }
 
-/* ---- plan -------------------------------------------------------------------------------- */
+/* ---- plan ---------------------------------------------------------------------------- */
 
 START_TEST(test_forms)
 {
@@ -112,7 +112,7 @@ START_TEST(test_unknowns)
 }
 END_TEST
 
-/* ---- generators ------------------------------------------------------------------------------ */
+/* ---- generators ---------------------------------------------------------------------- */
 
 /*
  * A free algebra needs one monomial of every association type: Wedderburn-Etherington numbers
@@ -152,7 +152,7 @@ START_TEST(test_generators)
 }
 END_TEST
 
-/* ---- solutions ------------------------------------------------------------------------ */
+/* ---- solutions ----------------------------------------------------------------------- */
 
 /* The bases, which later degrees are built on, are the same for every number of threads. */
 START_TEST(test_threads)

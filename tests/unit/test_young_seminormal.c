@@ -57,7 +57,7 @@ static uint32_t *word_matrix(form *f, const idsi_skew *skew, const uint8_t *word
     return matrix;
 }
 
-/* ---- relations ------------------------------------------------------------------------------- */
+/* ---- relations ----------------------------------------------------------------------- */
 
 static void check_equal(form *f, const idsi_skew *skew, const uint8_t *a, size_t a_length,
                         const uint8_t *b, size_t b_length)
@@ -134,7 +134,7 @@ START_TEST(test_relations)
 }
 END_TEST
 
-/* ---- characters ------------------------------------------------------------------------------ */
+/* ---- characters ---------------------------------------------------------------------- */
 
 /* A permutation of a cycle type, 1, 2, .. in turn; a cycle of k is a product of k-1 exchanges. */
 static size_t cycle_word(const ids_partition *type, uint8_t *word)
@@ -266,7 +266,7 @@ START_TEST(test_branching)
 }
 END_TEST
 
-/* ---- inner loops ------------------------------------------------------------------------ */
+/* ---- inner loops --------------------------------------------------------------------- */
 
 #define MOST_WIDTH 70u
 
