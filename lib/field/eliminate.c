@@ -13,7 +13,13 @@
 
 #include "eliminate_private.h"
 
+/* Work that a row may take in the first pass. */
 #define FIRST_WORK 1024u
+/* With few columns a row may take more, as long as all rows together took less than SMALL_WORK:
+ * small matrices need no dense stage. */
+#define SMALL_COLUMNS 2048u
+#define SMALL_WORK 4000000u
+#define SMALL_ROW 16384u
 /* Smaller matrices are not worth waking a team. */
 #define LEAST_SHARED 256u
 
@@ -56,12 +62,16 @@ static ids_status sparse_row(void *user, uint64_t number, const idsi_entry *row,
     idsi_elimination *e = s->e;
     idsi_verdict verdict = IDSI_DEPENDENT;
     bool again = e->rows > 0;
+    uint64_t work = s->work;
 
     if (total_rank(e) == e->columns) {
         return IDS_OK;
     }
+    if (e->columns <= SMALL_COLUMNS && idsi_echelon_work(e->echelon) < SMALL_WORK) {
+        work = work < SMALL_ROW ? SMALL_ROW : work;
+    }
     idsi_echelon_load(e->echelon, row, count, 1);
-    IDSI_TRY(idsi_echelon_settle(e->echelon, s->work, &verdict));
+    IDSI_TRY(idsi_echelon_settle(e->echelon, work, &verdict));
     if (again && verdict != IDSI_DEFERRED) {
         e->deferred.bits[number / 64] &= ~(UINT64_C(1) << (number % 64));
         e->deferred.count--;

@@ -94,6 +94,8 @@ bool idsi_echelon_rule(const idsi_echelon *echelon, uint32_t column, const idsi_
                        uint32_t *count);
 /* Entries in all rules. */
 uint64_t idsi_echelon_fill(const idsi_echelon *echelon);
+/* Entries of rules that were applied to rows so far. */
+uint64_t idsi_echelon_work(const idsi_echelon *echelon);
 
 /* ---- elimination (lib/field/eliminate.c) ----------------------------------------------------- */
 

@@ -22,7 +22,8 @@
 
 /* Dense rows that are eliminated at a time: a panel of the dense form. */
 #define BLOCK 256u
-/* Bytes that lanes may take. */
+/* Groups of lanes, and bytes that they may take. */
+#define MOST_GROUPS 8u
 #define LANES_BYTES (UINT64_C(32) << 20)
 /* Fewer columns are not folded. */
 #define LEAST_FOLDED 2048u
@@ -44,7 +45,7 @@ typedef struct load {
 typedef struct finish {
     idsi_elimination *e;
     idsi_rewriter *rewriter;
-    idsi_lanes *groups[BLOCK / 16];
+    idsi_lanes *groups[MOST_GROUPS];
     uint32_t group_count;
     uint32_t lane_count; /* of all groups */
     uint32_t in_use;     /* lanes that take rows */
@@ -85,14 +86,14 @@ static size_t wider(const idsi_elimination *e, size_t width)
     return 2 * width <= e->dense_columns / 2 ? 2 * width : 0;
 }
 
-/* Groups of lanes: as many as there are rows for and have room, at most a block. */
+/* Groups of lanes: as many as there are rows for and have room. */
 static uint32_t groups_for(const idsi_elimination *e)
 {
     uint64_t room = LANES_BYTES / (idsi_lanes_bytes(idsi_echelon_rank(e->echelon)) + 1);
     uint64_t count = e->deferred.count / idsi_lanes_count() + 1;
 
     count = count < room ? count : room;
-    return count < 1 ? 1 : count > BLOCK / 16 ? BLOCK / 16 : (uint32_t)count;
+    return count < 1 ? 1 : count > MOST_GROUPS ? MOST_GROUPS : (uint32_t)count;
 }
 
 uint64_t idsi_finish_bytes(const idsi_elimination *e)

@@ -90,8 +90,8 @@ static bool is_known(uint32_t prime, const uint32_t *known, size_t count)
 uint32_t idsi_prime_draw(idsi_random *random, const uint32_t *known, size_t count)
 {
     for (;;) {
-        uint32_t n = IDSI_PRIME_LOW +
-                     (uint32_t)idsi_random_below(random, IDSI_PRIME_HIGH - IDSI_PRIME_LOW);
+        uint32_t n =
+            IDSI_PRIME_LOW + (uint32_t)idsi_random_below(random, IDSI_PRIME_HIGH - IDSI_PRIME_LOW);
         if ((n & 1u) && idsi_is_prime(n) && !is_known(n, known, count)) {
             return n;
         }

@@ -46,6 +46,7 @@ struct idsi_echelon {
     idsi_entry *gathered; /* a row after rewriting */
     size_t gathered_capacity;
     uint64_t fill;
+    uint64_t work; /* entries of rules applied so far */
 };
 
 uint64_t idsi_echelon_base_bytes(uint64_t columns)
@@ -194,6 +195,7 @@ static ids_status gather(idsi_echelon *e, bool all, uint64_t work, size_t *count
             break;
         }
         work -= r->count;
+        e->work += r->count;
         apply_rule(e, r, value);
     }
 done:
@@ -282,6 +284,11 @@ uint32_t idsi_echelon_rank(const idsi_echelon *echelon)
 uint64_t idsi_echelon_fill(const idsi_echelon *echelon)
 {
     return echelon->fill;
+}
+
+uint64_t idsi_echelon_work(const idsi_echelon *echelon)
+{
+    return echelon->work;
 }
 
 ids_status idsi_echelon_complete(idsi_echelon *echelon)

@@ -294,9 +294,9 @@ START_TEST(test_combine)
                 source[i] = i % 5 == 0 ? p - 1 : (uint32_t)idsi_random_below(&random, p);
                 expected[i] = target[i];
                 if (i < count) {
-                    expected[i] = (idsi_mod_mul(scale, target[i], p) +
-                                   idsi_mod_mul(factor, source[i], p)) %
-                                  p;
+                    expected[i] =
+                        (idsi_mod_mul(scale, target[i], p) + idsi_mod_mul(factor, source[i], p)) %
+                        p;
                 }
             }
             kernel->combine(p, target, scale, source, factor, count);
@@ -335,8 +335,8 @@ START_TEST(test_team)
         expect(&a, &b, &wanted);
         TEST_OK(ctx, idsi_workspace_init(&work, ctx));
         TEST_OK(ctx, idsi_workspace_share(&work, team));
-        idsi_dense_mul_sub(&work, p, a.rows, b.columns, a.columns, a.entries, a.columns,
-                           b.entries, b.columns, c.entries, c.columns);
+        idsi_dense_mul_sub(&work, p, a.rows, b.columns, a.columns, a.entries, a.columns, b.entries,
+                           b.columns, c.entries, c.columns);
         idsi_workspace_clear(&work);
         compare("shared", &c, &wanted);
         field_matrix_clear(&a);

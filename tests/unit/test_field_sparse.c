@@ -223,8 +223,8 @@ static void try_lanes(uint32_t p, size_t columns, size_t width, field_kind kind,
         for (uint32_t lane = 0; lane < used; lane++) {
             field_reduced_rest(&wanted, p, field_matrix_row(&matrix, rules + lane), rest);
             fold_rest(&fold, p, columns, rest, folded);
-            ck_assert_int_eq(
-                memcmp(out + lane * fold.width, folded, fold.width * sizeof *folded), 0);
+            ck_assert_int_eq(memcmp(out + lane * fold.width, folded, fold.width * sizeof *folded),
+                             0);
         }
     }
     idsi_lanes_free(lanes);
