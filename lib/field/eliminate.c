@@ -82,13 +82,17 @@ done:
     return st;
 }
 
-/* Whether the dense stage has room: half of what the budget leaves, or 4 GiB without a budget. */
+/*
+ * Whether the dense stage has room: in what the budget leaves, less an eighth for rows at work, or
+ * in half of it when the dense rows will become sparse rules; in 4 GiB without a budget.
+ */
 static bool dense_fits(const idsi_elimination *e)
 {
     ids_memory memory = ids_ctx_memory(e->ctx);
     uint64_t room = UINT64_C(4) << 30;
     if (memory.budget > 0) {
-        room = memory.budget > memory.live ? (memory.budget - memory.live) / 2 : 0;
+        uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
+        room = e->matrix->tables ? left / 2 : left - left / 8;
     }
     return idsi_finish_bytes(e) <= room;
 }

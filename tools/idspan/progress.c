@@ -111,10 +111,25 @@ void progress_clear(void)
 
 /* ---- interruption -------------------------------------------------------------------- */
 
+/*
+ * The first signal asks for a clean stop; one that comes a second or more later ends the program at
+ * once. In between they are one signal: timeout(1) and terminals send it twice, to the program and
+ * to its group.
+ */
 static void on_signal(int number)
 {
-    caught = number;
-    ids_ctx_cancel(watched);
+    static struct timespec first;
+    struct timespec now;
+
+    clock_gettime(CLOCK_MONOTONIC, &now);
+    if (caught == 0) {
+        first = now;
+        caught = number;
+        ids_ctx_cancel(watched);
+    } else if (now.tv_sec - first.tv_sec > 1) {
+        signal(number, SIG_DFL);
+        raise(number);
+    }
 }
 
 /* A signal that is ignored already, as in a job of a script in the background, stays ignored. */
@@ -126,7 +141,7 @@ static void catch_signal(int number)
     memset(&action, 0, sizeof action);
     memset(&old, 0, sizeof old);
     action.sa_handler = on_signal;
-    action.sa_flags = (int)(SA_RESETHAND | SA_RESTART);
+    action.sa_flags = SA_RESTART;
     sigemptyset(&action.sa_mask);
     if (sigaction(number, NULL, &old) == 0 && old.sa_handler != SIG_IGN) {
         sigaction(number, &action, NULL);
