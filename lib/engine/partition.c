@@ -10,6 +10,10 @@
 
 #include "partition_private.h"
 
+/* The shape that is solved first has so many tableaux at least, and this part of the most. */
+#define PILOT_LEAST 40u
+#define PILOT_RATIO 6u
+
 /* ---- one degree -------------------------------------------------------------------------- */
 
 /* Degrees that arguments of a law or equal arguments of an operation can have. */
@@ -49,7 +53,7 @@ typedef struct crew {
     bool basis; /* solutions are wanted, not only their number */
     _Atomic double cost_done; /* in this degree */
     atomic_size_t next;
-    atomic_uint_least64_t blocks;
+    const double *share;
     atomic_bool stop;
 } crew;
 
@@ -104,12 +108,10 @@ static void work(worker *w, bool first)
     crew *c = w->crew;
     while (w->st == IDS_OK && !atomic_load(&c->stop)) {
         size_t k = atomic_fetch_add(&c->next, 1);
-        uint64_t blocks = 0;
         if (k >= c->count) {
             return;
         }
-        w->st = idsi_shape_solve(&w->scratch, c->shapes[k], c->basis, &c->stop, &blocks);
-        atomic_fetch_add(&c->blocks, blocks);
+        w->st = idsi_shape_solve(&w->scratch, c->shapes[k], c->basis, &c->stop, c->share, NULL);
         add_cost(c, shape_cost(c->engine, c->shapes[k]));
         if (w->st == IDS_OK && first) {
             w->st = report_crew(c);
@@ -167,12 +169,6 @@ done:
     return st;
 }
 
-static void note_error(idsi_partition_engine *engine, uint64_t blocks)
-{
-    double p = engine->prime;
-    engine->error += 2.0 * (double)blocks / (p * p);
-}
-
 static ids_status make_equations(idsi_partition_engine *engine, uint32_t degree)
 {
     ids_status st = IDS_OK;
@@ -209,6 +205,41 @@ static void sort_shapes(const idsi_partition_engine *engine, uint32_t *shapes, s
     }
 }
 
+/*
+ * Solves a shape of middle size, so that the others know what to expect. It should be so large that
+ * the shares are not chance, and so small that nobody has to wait for it.
+ */
+static ids_status learn_shares(idsi_partition_engine *engine, uint32_t degree, bool basis,
+                               const uint32_t *shapes, size_t count)
+{
+    ids_status st = IDS_OK;
+    idsi_degree *entry = &engine->degree[degree];
+    idsi_scratch scratch = {.ctx = engine->ctx, .engine = engine};
+    double *share = NULL;
+    atomic_bool stop = false;
+    size_t at = 0;
+
+    while (at + 1 < count && PILOT_RATIO * (uint64_t)engine->skews.list[shapes[at + 1]]->count >=
+                                 engine->skews.list[shapes[0]]->count) {
+        at++;
+    }
+    if (entry->share != NULL || engine->spaces[shapes[at]].solved ||
+        engine->skews.list[shapes[at]]->count < PILOT_LEAST) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_workspace_init(&scratch.work, engine->ctx));
+    IDSI_TRY(idsi_alloc_array(engine->ctx, entry->equation_count, sizeof *share, &share));
+    IDSI_TRY(idsi_shape_solve(&scratch, shapes[at], basis, &stop, NULL, share));
+    entry->share = share;
+    share = NULL;
+done:
+    if (scratch.work.ctx != NULL) {
+        idsi_workspace_clear(&scratch.work);
+    }
+    idsi_free(engine->ctx, share);
+    return st;
+}
+
 static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, uint32_t *shapes,
                                size_t count)
 {
@@ -219,11 +250,20 @@ static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, u
                   .count = count,
                   .basis = degree < engine->top};
 
+    if (count == 0) {
+        return IDS_OK;
+    }
     IDSI_TRY(make_equations(engine, degree));
     sort_shapes(engine, shapes, count);
+    if (count > 1) {
+        IDSI_TRY(learn_shares(engine, degree, hands.basis, shapes, count));
+    }
+    hands.share = engine->degree[degree].share;
     st = run_crew(&hands);
     engine->cost_done += atomic_load(&hands.cost_done);
-    note_error(engine, atomic_load(&hands.blocks));
+    for (size_t k = 0; k < count; k++) {
+        engine->error += idsi_shape_error(engine, shapes[k]);
+    }
 done:
     return st;
 }
@@ -312,15 +352,19 @@ void idsi_partition_free(idsi_partition_engine *engine)
     }
     ids_ctx *ctx = engine->ctx;
     for (size_t i = 0; i < engine->value_slots; i++) {
-        idsi_free(ctx, engine->values[i].matrix);
+        if (engine->values[i].matrix != NULL) {
+            idsi_left_clear(ctx, engine->values[i].matrix);
+            idsi_free(ctx, engine->values[i].matrix);
+        }
     }
     for (size_t i = 0; i < engine->space_count; i++) {
-        idsi_free(ctx, engine->spaces[i].solution);
+        idsi_left_clear(ctx, &engine->spaces[i].solution);
         idsi_free(ctx, engine->spaces[i].offset);
     }
     for (uint32_t d = 0; d <= IDSI_SHAPE_MAX; d++) {
         idsi_degree *degree = &engine->degree[d];
         idsi_equations_clear(ctx, degree);
+        idsi_free(ctx, degree->share);
         idsi_free(ctx, degree->forms);
         idsi_free(ctx, degree->generators);
         idsi_free(ctx, degree->shapes);

@@ -32,7 +32,8 @@
 static size_t value_place(const idsi_partition_engine *engine, uint32_t shape, uint32_t expr)
 {
     uint64_t hash = ((uint64_t)shape << 32 | expr) * UINT64_C(0x9E3779B97F4A7C15);
-    size_t at = (size_t)(hash >> 20) & (engine->value_slots - 1);
+    /* the high bits, which the whole key enters */
+    size_t at = (size_t)(hash >> 32) & (engine->value_slots - 1);
     while (engine->values[at].matrix != NULL &&
            (engine->values[at].shape != shape || engine->values[at].expr != expr)) {
         at = (at + 1) & (engine->value_slots - 1);
@@ -61,9 +62,9 @@ done:
     return st;
 }
 
-static const uint32_t *find_value(idsi_partition_engine *engine, uint32_t shape, uint32_t expr)
+static const idsi_left *find_value(idsi_partition_engine *engine, uint32_t shape, uint32_t expr)
 {
-    const uint32_t *matrix = NULL;
+    const idsi_left *matrix = NULL;
     pthread_mutex_lock(&engine->lock);
     if (engine->value_slots > 0) {
         matrix = engine->values[value_place(engine, shape, expr)].matrix;
@@ -72,9 +73,17 @@ static const uint32_t *find_value(idsi_partition_engine *engine, uint32_t shape,
     return matrix;
 }
 
+static void free_value(ids_ctx *ctx, idsi_left *value)
+{
+    if (value != NULL) {
+        idsi_left_clear(ctx, value);
+        idsi_free(ctx, value);
+    }
+}
+
 /* Stores a matrix unless another thread was first; *matrix is then the stored one. */
 static ids_status store_value(idsi_partition_engine *engine, uint32_t shape, uint32_t expr,
-                              uint64_t bytes, uint32_t **matrix)
+                              idsi_left **matrix)
 {
     ids_status st = IDS_OK;
 
@@ -84,58 +93,73 @@ static ids_status store_value(idsi_partition_engine *engine, uint32_t shape, uin
     }
     idsi_value *value = &engine->values[value_place(engine, shape, expr)];
     if (value->matrix != NULL) {
-        idsi_free(engine->ctx, *matrix);
+        free_value(engine->ctx, *matrix);
         *matrix = value->matrix;
     } else {
         *value = (idsi_value){shape, expr, *matrix};
         engine->value_count++;
-        engine->value_bytes += bytes;
+        engine->value_bytes += idsi_left_bytes((*matrix)->m, (*matrix)->k);
     }
 done:
     pthread_mutex_unlock(&engine->lock);
     return st;
 }
 
-static void negate(uint32_t *v, size_t count, uint32_t p)
-{
-    for (size_t i = 0; i < count; i++) {
-        v[i] = idsi_mod_neg(v[i], p);
-    }
-}
-
-/* Values on an expression as a matrix, computed when it is not stored; *owned: to be freed. */
-static ids_status get_value(idsi_scratch *s, uint32_t shape, uint32_t expr,
-                            const uint32_t **matrix, uint32_t **owned)
+/* Values on an expression, computed from its product. */
+static ids_status make_value(idsi_scratch *s, uint32_t shape, uint32_t expr, idsi_left **value)
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = s->engine;
     uint32_t tableaux = engine->skews.list[shape]->count;
-    uint64_t entries = (uint64_t)engine->spaces[shape].dimension * tableaux;
+    uint32_t dimension = engine->spaces[shape].dimension;
+    size_t entries = (size_t)dimension * tableaux;
     uint32_t *identity = NULL;
-    uint32_t *made = NULL;
+    uint32_t *values = NULL;
+    idsi_left *made = NULL;
+
+    IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)tableaux * tableaux, sizeof *identity, &identity));
+    IDSI_TRY(idsi_alloc_array(s->ctx, entries, sizeof *values, &values));
+    IDSI_TRY(idsi_alloc_array(s->ctx, 1, sizeof *made, &made));
+    for (size_t i = 0; i < tableaux; i++) {
+        identity[i * tableaux + i] = 1;
+    }
+    IDSI_TRY(idsi_contract_values(s, shape, expr, identity, tableaux, values));
+    for (size_t i = 0; i < entries; i++) {
+        values[i] = idsi_mod_neg(values[i], engine->prime);
+    }
+    IDSI_TRY(idsi_left_init(s->ctx, engine->prime, dimension, tableaux, values, tableaux, made));
+    *value = made;
+    made = NULL;
+done:
+    idsi_free(s->ctx, identity);
+    idsi_free(s->ctx, values);
+    idsi_free(s->ctx, made);
+    return st;
+}
+
+/* Values on an expression as a matrix, computed when it is not stored; *owned: to be freed. */
+static ids_status get_value(idsi_scratch *s, uint32_t shape, uint32_t expr,
+                            const idsi_left **matrix, idsi_left **owned)
+{
+    ids_status st = IDS_OK;
+    idsi_partition_engine *engine = s->engine;
+    idsi_left *made = NULL;
 
     *owned = NULL;
     *matrix = find_value(engine, shape, expr);
     if (*matrix != NULL) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)tableaux * tableaux, sizeof *identity, &identity));
-    IDSI_TRY(idsi_alloc_array(s->ctx, entries, sizeof *made, &made));
-    for (size_t i = 0; i < tableaux; i++) {
-        identity[i * tableaux + i] = 1;
-    }
-    IDSI_TRY(idsi_contract_values(s, shape, expr, identity, tableaux, made));
-    negate(made, entries, engine->prime);
-    if (entries <= STORE_ENTRIES && engine->value_bytes < STORE_BYTES) {
-        IDSI_TRY(store_value(engine, shape, expr, entries * sizeof *made, &made));
+    IDSI_TRY(make_value(s, shape, expr, &made));
+    if (made->m * made->k <= STORE_ENTRIES && engine->value_bytes < STORE_BYTES) {
+        IDSI_TRY(store_value(engine, shape, expr, &made));
     } else {
         *owned = made;
     }
     *matrix = made;
     made = NULL;
 done:
-    idsi_free(s->ctx, identity);
-    idsi_free(s->ctx, made);
+    free_value(s->ctx, made);
     return st;
 }
 
@@ -181,19 +205,18 @@ static ids_status apply_value(contraction *c, uint32_t piece, uint32_t expr,
     ids_status st = IDS_OK;
     idsi_scratch *s = c->s;
     idsi_partition_engine *engine = s->engine;
-    size_t count = engine->skews.list[piece]->count;
     size_t dimension = engine->spaces[piece].dimension;
-    const uint32_t *value = NULL;
-    uint32_t *owned = NULL;
+    const idsi_left *value = NULL;
+    idsi_left *owned = NULL;
     uint32_t *product = NULL;
 
     IDSI_TRY(get_value(s, piece, expr, &value, &owned));
     IDSI_TRY(idsi_alloc_array(s->ctx, dimension * rest * width, sizeof *product, &product));
-    idsi_dense_mul_sub(&s->work, engine->prime, dimension, rest * width, count, value, count,
-                       gathered, rest * width, product, rest * width);
+    idsi_left_mul_sub(&s->work, engine->prime, value, rest * width, gathered, rest * width,
+                      product, rest * width);
     exchange_indices(product, rest, dimension, width, wide);
 done:
-    idsi_free(s->ctx, owned);
+    free_value(s->ctx, owned);
     idsi_free(s->ctx, product);
     return st;
 }
@@ -251,6 +274,7 @@ static ids_status map_image(contraction *c, uint32_t shape, const uint32_t **ima
     idsi_scratch *s = c->s;
     const idsi_space *space = &s->engine->spaces[shape];
     idsi_maps *maps = c->maps;
+    uint32_t *solution = NULL;
 
     for (size_t i = 0; i < maps->image_count; i++) {
         if (maps->images[i].at == c->at) {
@@ -265,11 +289,17 @@ static ids_status map_image(contraction *c, uint32_t shape, const uint32_t **ima
     maps->image_count++;
     IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)IDSI_MAP_COUNT * space->unknowns,
                               sizeof *made->values, &made->values));
+    IDSI_TRY(idsi_resize_array(s->ctx, (size_t)space->dimension * space->unknowns,
+                               sizeof *solution, &solution));
+    for (size_t i = 0; i < space->dimension; i++) {
+        idsi_left_row(&space->solution, s->engine->prime, i, solution + i * space->unknowns);
+    }
     idsi_dense_mul_sub(&s->work, s->engine->prime, IDSI_MAP_COUNT, space->unknowns,
-                       space->dimension, maps->values + c->at, maps->unknowns, space->solution,
+                       space->dimension, maps->values + c->at, maps->unknowns, solution,
                        space->unknowns, made->values, space->unknowns);
     *image = made->values;
 done:
+    idsi_free(s->ctx, solution);
     return st;
 }
 
@@ -399,7 +429,6 @@ ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t 
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = scratch->engine;
     const idsi_space *space = &engine->spaces[shape];
-    size_t tableaux = engine->skews.list[shape]->count;
     uint32_t *product = NULL;
 
     if (is_letter(engine, expr)) {
@@ -407,17 +436,16 @@ ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t 
         return IDS_OK;
     }
     memset(out, 0, space->dimension * width * sizeof *out);
-    const uint32_t *value = find_value(engine, shape, expr);
+    const idsi_left *value = find_value(engine, shape, expr);
     if (value != NULL) {
-        idsi_dense_mul_sub(&scratch->work, engine->prime, space->dimension, width, tableaux, value,
-                           tableaux, block, width, out, width);
+        idsi_left_mul_sub(&scratch->work, engine->prime, value, width, block, width, out, width);
         return IDS_OK;
     }
     IDSI_TRY(idsi_alloc_array(scratch->ctx, (size_t)space->unknowns * width, sizeof *product,
                               &product));
     IDSI_TRY(idsi_contract_product(scratch, shape, expr, block, width, product));
-    idsi_dense_mul_sub(&scratch->work, engine->prime, space->dimension, width, space->unknowns,
-                       space->solution, space->unknowns, product, width, out, width);
+    idsi_left_mul_sub(&scratch->work, engine->prime, &space->solution, width, product, width, out,
+                      width);
 done:
     idsi_free(scratch->ctx, product);
     return st;

@@ -66,7 +66,7 @@ typedef struct idsi_space {
     bool solved;
     uint32_t dimension; /* of M(t) */
     uint32_t unknowns;  /* dim U(t) */
-    uint32_t *solution; /* dimension x unknowns, negated residues; NULL for the single cell */
+    idsi_left solution; /* dimension x unknowns, negated; empty for the single cell */
     uint32_t *offset;   /* first unknown of each form of the degree */
 } idsi_space;
 
@@ -76,6 +76,7 @@ typedef struct idsi_degree {
     size_t equation_count;
     idsi_equation *equations;
     bool equations_made;
+    double *share; /* of each equation: rank it added / tableaux, in a shape that was solved first */
     size_t generator_count; /* expressions that generate F(d)/I(d) as S_d-module */
     uint32_t *generators;
     bool generators_made;
@@ -87,7 +88,7 @@ typedef struct idsi_degree {
 typedef struct idsi_value {
     uint32_t shape;
     uint32_t expr;
-    uint32_t *matrix; /* negated residues */
+    idsi_left *matrix; /* negated */
 } idsi_value;
 
 typedef struct idsi_partition_engine {
@@ -190,14 +191,47 @@ ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t
 ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
                                 const uint32_t *block, size_t width, uint32_t *out);
 
+/* ---- partition_words.c ------------------------------------------------------------------- */
+
+/* A block of covectors (`tableaux` x width), and what words make of it. */
+typedef struct idsi_moved {
+    const idsi_term *term; /* that has the word */
+    uint32_t *block;
+} idsi_moved;
+
+typedef struct idsi_words {
+    ids_ctx *ctx;
+    const idsi_partition_engine *engine;
+    const idsi_skew *skew;
+    size_t most_width;
+    size_t width;
+    uint32_t *start;
+    idsi_moved *moved;
+    size_t limit; /* how many may be kept, */
+    size_t made;  /* have memory, */
+    size_t count; /* are valid */
+    size_t next;  /* to be replaced */
+} idsi_words;
+
+ids_status idsi_words_init(idsi_words *words, idsi_scratch *scratch, uint32_t shape,
+                           size_t most_width);
+void idsi_words_clear(idsi_words *words);
+/* Draws a new block of random covectors, width <= most_width. */
+void idsi_words_draw(idsi_words *words, idsi_random *random, size_t width);
+/* The block with a term's word applied; valid until the next call for the same words. */
+ids_status idsi_words_get(idsi_words *words, const idsi_term *term, const uint32_t **block);
+
 /* ---- partition_solve.c, partition_generators.c ------------------------------------------- */
 
 /*
- * Solves a shape whose pieces are solved; without `basis` only its dimension is wanted. Adds the
- * number of blocks of random covectors to *blocks. Leaves the shape unsolved when *stop is set.
+ * Solves a shape whose pieces are solved; without `basis` only its dimension is wanted. Leaves the
+ * shape unsolved when *stop is set. `share` is the degree's, or NULL; the shares that are seen go
+ * to `shown` unless it is NULL.
  */
 ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
-                            const atomic_bool *stop, uint64_t *blocks);
+                            const atomic_bool *stop, const double *share, double *shown);
+/* A bound of the probability that random covectors missed an equation of a solved shape. */
+double idsi_shape_error(const idsi_partition_engine *engine, uint32_t shape);
 /* Chooses the generators of a degree whose partitions are solved; those of lower degrees exist. */
 ids_status idsi_generators_choose(idsi_scratch *scratch, uint32_t degree);
 

@@ -8,21 +8,30 @@
  * equations, z is used up: if z still had something to add, so low a yield would have probability
  * at most 2/p^2 (two of B random vectors would lie in a space that the others do not fill).
  *
- * Cheap equations come first and are used up before the next ones are touched. After one that had
- * nothing to add, the next one is tested before it is used: two random maps that satisfy all
- * equations so far are evaluated on z, against a few covectors. If z still had something to add,
- * all values would vanish with probability at most 1/p^2 + 1/p^PROBE, about. A test is much
- * cheaper than a block, because two maps are evaluated and not a basis.
+ * Cheap equations come first and are used up before the next ones are touched. Rows that add
+ * nothing cost as much as those that do, so a block should be as wide as what z has to add. That
+ * is nearly the same share of the tableaux for all shapes of a degree; a shape of middle size is
+ * solved first to learn the shares.
+ *
+ * An equation that is expected to add nothing is tested before it is used: two random maps that
+ * satisfy all equations so far are evaluated on z, against a few covectors. If z still had
+ * something to add, all values would vanish with probability at most 1/p^2 + 1/p^PROBE, about. A
+ * test is much cheaper than a block, because two maps are evaluated and not a basis. All tests of a
+ * shape use the same covectors: up to the first test that errs, what is tested does not depend on
+ * them, so the probabilities add up all the same.
  *
  * The random vectors of a shape come from a seed of its own, and the solution space's basis is
- * that of the reduced echelon form.
+ * that of the reduced echelon form; neither depends on the order in which threads take the shapes.
  */
 #include <string.h>
 
 #include "partition_private.h"
 
 #define PROBE 16u
-#define BATCH 192u
+#define BATCH 96u
+/* Rows beyond what is expected: a few, and a share. */
+#define SPARE_ROWS 4u
+#define SPARE_SHARE 0.06
 
 typedef struct solver {
     idsi_scratch *s;
@@ -30,108 +39,70 @@ typedef struct solver {
     uint32_t shape;
     idsi_random random;
     idsi_dense_echelon *echelon;
-    uint32_t *start;   /* tableaux x width: random covectors */
-    uint32_t *moved;   /* the same with a word applied */
-    uint32_t *product; /* unknowns x width */
+    idsi_words words;  /* covectors for the equations that are used */
+    idsi_words probes; /* covectors for tests */
+    uint32_t *product; /* unknowns x width: of one term, zeros in between */
+    uint32_t *sum;     /* unknowns x width: of the terms so far */
     uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
-    size_t row_count;
     bool independent[BATCH];
     const atomic_bool *stop; /* set when another thread failed */
-    uint64_t blocks;
+    const double *share;     /* expected; NULL: nothing is known */
+    double *shown;           /* the share that each equation had here; NULL: not wanted */
 } solver;
 
 static void clear_solver(solver *v)
 {
     idsi_dense_echelon_free(v->echelon);
-    idsi_free(v->s->ctx, v->start);
-    idsi_free(v->s->ctx, v->moved);
+    idsi_words_clear(&v->words);
+    idsi_words_clear(&v->probes);
     idsi_free(v->s->ctx, v->product);
+    idsi_free(v->s->ctx, v->sum);
     idsi_free(v->s->ctx, v->rows);
 }
 
-static void apply_word(const solver *v, const idsi_term *term, size_t width)
+/* The sums of the terms become rows: rows[b][u] = sum[u][b]. */
+static void turn_sums(const solver *v, size_t width)
 {
-    const idsi_skew *skew = v->engine->skews.list[v->shape];
-    memcpy(v->moved, v->start, (size_t)skew->count * width * sizeof *v->moved);
-    for (size_t i = 0; i < term->word_length; i++) {
-        idsi_seminormal_exchange(skew, term->word[i], v->engine->prime, v->engine->inverse,
-                                 v->moved, width);
-    }
-}
+    size_t unknowns = v->engine->spaces[v->shape].unknowns;
 
-static bool same_word(const idsi_term *a, const idsi_term *b)
-{
-    return a->word_length == b->word_length && memcmp(a->word, b->word, a->word_length) == 0;
-}
-
-/* rows[b][u] += coefficient * product[u][b] for the unknowns of one form. */
-static void add_product(const solver *v, uint32_t coefficient, uint32_t from, uint32_t to,
-                        size_t width)
-{
-    uint32_t p = v->engine->prime;
-    uint32_t unknowns = v->engine->spaces[v->shape].unknowns;
-
-    for (uint32_t u = from; u < to; u++) {
-        uint32_t *product = v->product + (size_t)u * width;
+    for (size_t from = 0; from < unknowns; from += 16) {
+        size_t to = from + 16 < unknowns ? from + 16 : unknowns;
         for (size_t b = 0; b < width; b++) {
-            uint32_t *row = &v->rows[(v->row_count + b) * unknowns + u];
-            *row = (uint32_t)((*row + (uint64_t)coefficient * product[b]) % p);
-            product[b] = 0;
+            for (size_t u = from; u < to; u++) {
+                v->rows[b * unknowns + u] = v->sum[u * width + b];
+            }
         }
     }
 }
 
-static ids_status flush_batch(solver *v)
+/* One block of covectors for one equation, into the rows. */
+static ids_status use_equation(solver *v, const idsi_equation *equation, size_t width)
 {
     ids_status st = IDS_OK;
-
-    IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, v->row_count, v->independent));
-    memset(v->rows, 0,
-           v->row_count * v->engine->spaces[v->shape].unknowns * sizeof *v->rows);
-    v->row_count = 0;
-done:
-    return st;
-}
-
-/* One block of covectors for one equation, into the batch. */
-static ids_status use_equation(solver *v, const idsi_equation *equation, uint32_t width)
-{
-    ids_status st = IDS_OK;
-    idsi_partition_engine *engine = v->engine;
+    const idsi_partition_engine *engine = v->engine;
     const idsi_space *space = &engine->spaces[v->shape];
-    uint32_t tableaux = engine->skews.list[v->shape]->count;
-    const idsi_term *applied = NULL; /* whose word `moved` has */
 
-    for (size_t i = 0; i < (size_t)tableaux * width; i++) {
-        v->start[i] = idsi_random_residue(&v->random, engine->prime);
-    }
+    memset(v->sum, 0, width * space->unknowns * sizeof *v->sum);
+    idsi_words_draw(&v->words, &v->random, width);
     for (size_t t = 0; t < equation->count; t++) {
         const idsi_term *term = &equation->terms[t];
+        const uint32_t *block = NULL;
         uint32_t form = idsi_form_find(engine, &engine->exprs[term->expr]);
         if (form == UINT32_MAX || space->offset[form] == space->offset[form + 1]) {
             continue;
         }
-        if (applied == NULL || !same_word(term, applied)) {
-            apply_word(v, term, width);
-            applied = term;
-        }
-        IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, v->moved, width, v->product));
-        add_product(v, term->coefficient, space->offset[form], space->offset[form + 1], width);
+        IDSI_TRY(idsi_words_get(&v->words, term, &block));
+        IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, block, width, v->product));
+        size_t from = space->offset[form] * width;
+        size_t count = space->offset[form + 1] * width - from;
+        idsi_dense_combine(engine->prime, v->sum + from, 1, v->product + from, term->coefficient,
+                           count);
+        memset(v->product + from, 0, count * sizeof *v->product);
     }
-    v->row_count += width;
-    v->blocks++;
+    turn_sums(v, width);
     IDSI_TRY(idsi_poll(engine->ctx, NULL));
 done:
     return st;
-}
-
-static uint32_t yield(const solver *v, size_t from, uint32_t width)
-{
-    uint32_t count = 0;
-    for (size_t i = from; i < from + width; i++) {
-        count += v->independent[i];
-    }
-    return count;
 }
 
 static bool is_done(const solver *v)
@@ -140,20 +111,23 @@ static bool is_done(const solver *v)
            atomic_load(v->stop);
 }
 
-/* Uses an equation in growing blocks until it has nothing to add. */
-static ids_status drain_equation(solver *v, const idsi_equation *equation)
+/* Uses an equation in blocks until it has nothing to add; `expected` rows are worth taking. */
+static ids_status drain_equation(solver *v, const idsi_equation *equation, size_t expected)
 {
     ids_status st = IDS_OK;
-    uint32_t width = PROBE;
+    size_t used = 0;
 
     while (!is_done(v)) {
+        size_t before = idsi_dense_echelon_rank(v->echelon);
+        size_t width = expected > used ? expected - used : used / 2;
+        width = width < PROBE ? PROBE : width;
+        width = width > BATCH ? BATCH : width;
         IDSI_TRY(use_equation(v, equation, width));
-        IDSI_TRY(flush_batch(v));
-        uint32_t count = yield(v, 0, width);
-        if (count + 2 <= width) {
+        IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, width, v->independent));
+        used += width;
+        if (idsi_dense_echelon_rank(v->echelon) - before + 2 <= width) {
             break;
         }
-        width = 3 * width <= BATCH / 2 ? 3 * width : width;
     }
 done:
     return st;
@@ -170,8 +144,7 @@ static ids_status draw_maps(solver *v, idsi_maps *maps)
     IDSI_TRY(idsi_alloc_array(v->s->ctx, (size_t)IDSI_MAP_COUNT * unknowns, sizeof *maps->values,
                               &maps->values));
     for (uint32_t k = 0; k < IDSI_MAP_COUNT; k++) {
-        idsi_dense_echelon_solution(v->echelon, v->engine->prime, unknowns, &v->random,
-                                    maps->values + (size_t)k * unknowns);
+        idsi_dense_echelon_solution(v->echelon, &v->random, maps->values + (size_t)k * unknowns);
     }
 done:
     return st;
@@ -183,21 +156,14 @@ static ids_status test_equation(solver *v, const idsi_equation *equation, idsi_m
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = v->engine;
-    uint32_t tableaux = engine->skews.list[v->shape]->count;
-    const idsi_term *applied = NULL;
     uint64_t total[IDSI_MAP_COUNT * PROBE] = {0};
 
-    for (size_t i = 0; i < (size_t)tableaux * PROBE; i++) {
-        v->start[i] = idsi_random_residue(&v->random, engine->prime);
-    }
     for (size_t t = 0; t < equation->count; t++) {
         const idsi_term *term = &equation->terms[t];
         uint32_t sums[IDSI_MAP_COUNT * PROBE] = {0};
-        if (applied == NULL || !same_word(term, applied)) {
-            apply_word(v, term, PROBE);
-            applied = term;
-        }
-        IDSI_TRY(idsi_contract_maps(v->s, v->shape, term->expr, v->moved, PROBE, maps, sums));
+        const uint32_t *block = NULL;
+        IDSI_TRY(idsi_words_get(&v->probes, term, &block));
+        IDSI_TRY(idsi_contract_maps(v->s, v->shape, term->expr, block, PROBE, maps, sums));
         for (size_t i = 0; i < IDSI_MAP_COUNT * PROBE; i++) {
             total[i] = (total[i] + (uint64_t)term->coefficient * sums[i]) % engine->prime;
         }
@@ -206,10 +172,18 @@ static ids_status test_equation(solver *v, const idsi_equation *equation, idsi_m
     for (size_t i = 0; i < IDSI_MAP_COUNT * PROBE; i++) {
         *more = *more || total[i] != 0;
     }
-    v->blocks++;
     IDSI_TRY(idsi_poll(engine->ctx, NULL));
 done:
     return st;
+}
+
+/* Rows that an equation is expected to add, with some to spare; 0: it may well add nothing. */
+static size_t expected_rows(const solver *v, size_t equation)
+{
+    double rows = v->share == NULL
+                      ? 0
+                      : v->share[equation] * v->engine->skews.list[v->shape]->count;
+    return rows < 1 ? 0 : (size_t)(rows * (1 + SPARE_SHARE)) + SPARE_ROWS;
 }
 
 static ids_status use_equations(solver *v)
@@ -217,24 +191,30 @@ static ids_status use_equations(solver *v)
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = v->engine;
     const idsi_degree *degree = &engine->degree[engine->skews.list[v->shape]->shape.cells];
+    double tableaux = engine->skews.list[v->shape]->count;
     idsi_maps maps = {0};
-    bool testing = false;
+    bool testing = v->share != NULL;
 
     for (size_t i = 0; i < degree->equation_count && !is_done(v); i++) {
         const idsi_equation *equation = &degree->equations[i];
-        bool more = true;
         size_t before = idsi_dense_echelon_rank(v->echelon);
-        if (testing) {
+        size_t expected = expected_rows(v, i);
+        bool more = true;
+        if (testing && expected == 0) {
             if (maps.values == NULL) {
                 IDSI_TRY(draw_maps(v, &maps));
             }
             IDSI_TRY(test_equation(v, equation, &maps, &more));
         }
         if (more) {
-            IDSI_TRY(drain_equation(v, equation));
+            IDSI_TRY(drain_equation(v, equation, expected));
             idsi_maps_clear(v->s->ctx, &maps);
         }
-        testing = idsi_dense_echelon_rank(v->echelon) < before + PROBE;
+        size_t added = idsi_dense_echelon_rank(v->echelon) - before;
+        testing = v->share != NULL || added < PROBE;
+        if (v->shown != NULL) {
+            v->shown[i] = (double)added / tableaux;
+        }
     }
 done:
     idsi_maps_clear(v->s->ctx, &maps);
@@ -246,42 +226,20 @@ static ids_status make_solution(solver *v)
 {
     ids_status st = IDS_OK;
     idsi_space *space = &v->engine->spaces[v->shape];
-    size_t rank = idsi_dense_echelon_rank(v->echelon);
-    uint32_t *free_of = NULL; /* 1 + number among the columns without pivot */
-    uint32_t p = v->engine->prime;
-    uint32_t count = 0;
+    uint32_t *solutions = NULL;
 
-    space->dimension = space->unknowns - (uint32_t)rank;
+    space->dimension = space->unknowns - (uint32_t)idsi_dense_echelon_rank(v->echelon);
     if (space->dimension == 0) {
         return IDS_OK;
     }
     IDSI_TRY(idsi_dense_echelon_complete(v->echelon));
-    IDSI_TRY(idsi_alloc_array(v->s->ctx, space->unknowns, sizeof *free_of, &free_of));
     IDSI_TRY(idsi_alloc_array(v->s->ctx, (size_t)space->dimension * space->unknowns,
-                              sizeof *space->solution, &space->solution));
-    for (size_t i = 0; i < rank; i++) {
-        free_of[idsi_dense_echelon_pivot(v->echelon, i)] = UINT32_MAX;
-    }
-    for (uint32_t u = 0; u < space->unknowns; u++) {
-        if (free_of[u] == 0) {
-            space->solution[(size_t)count * space->unknowns + u] = p - 1;
-            count++;
-            free_of[u] = count;
-        } else {
-            free_of[u] = 0;
-        }
-    }
-    for (size_t i = 0; i < rank; i++) {
-        const uint32_t *row = idsi_dense_echelon_row(v->echelon, i);
-        uint32_t pivot = idsi_dense_echelon_pivot(v->echelon, i);
-        for (uint32_t u = 0; u < pivot; u++) {
-            if (row[u] != 0 && free_of[u] != 0) {
-                space->solution[(size_t)(free_of[u] - 1) * space->unknowns + pivot] = row[u];
-            }
-        }
-    }
+                              sizeof *solutions, &solutions));
+    idsi_dense_echelon_solutions(v->echelon, solutions);
+    IDSI_TRY(idsi_left_init(v->s->ctx, v->engine->prime, space->dimension, space->unknowns,
+                            solutions, space->unknowns, &space->solution));
 done:
-    idsi_free(v->s->ctx, free_of);
+    idsi_free(v->s->ctx, solutions);
     return st;
 }
 
@@ -301,7 +259,7 @@ static ids_status check_budget(const idsi_partition_engine *engine, uint32_t sha
     uint64_t unknowns = engine->spaces[shape].unknowns;
     uint64_t tableaux = engine->skews.list[shape]->count;
     ids_memory memory = ids_ctx_memory(engine->ctx);
-    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + 2 * BATCH * (unknowns + tableaux));
+    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + BATCH * (3 * unknowns + 7 * tableaux));
     uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
 
     if (memory.budget == 0 || need <= left) {
@@ -316,14 +274,54 @@ static ids_status check_budget(const idsi_partition_engine *engine, uint32_t sha
                      (unsigned long long)memory.budget);
 }
 
+double idsi_shape_error(const idsi_partition_engine *engine, uint32_t shape)
+{
+    uint32_t degree = engine->skews.list[shape]->shape.cells;
+    double p = engine->prime;
+    /* Every equation is given up once; every block before that added a row at least. */
+    double blocks = (double)engine->degree[degree].equation_count + engine->spaces[shape].unknowns;
+
+    return 2.0 * blocks / (p * p);
+}
+
+static ids_status solve_unknowns(solver *v, bool basis)
+{
+    ids_status st = IDS_OK;
+    ids_ctx *ctx = v->s->ctx;
+    idsi_space *space = &v->engine->spaces[v->shape];
+
+    IDSI_TRY(check_budget(v->engine, v->shape));
+    idsi_random_seed(&v->random, shape_seed(v->engine, v->shape));
+    IDSI_TRY(idsi_dense_echelon_create(ctx, v->engine->prime, space->unknowns, &v->echelon));
+    IDSI_TRY(idsi_words_init(&v->words, v->s, v->shape, BATCH));
+    IDSI_TRY(idsi_words_init(&v->probes, v->s, v->shape, PROBE));
+    idsi_words_draw(&v->probes, &v->random, PROBE);
+    IDSI_TRY(idsi_alloc_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->product,
+                              &v->product));
+    IDSI_TRY(idsi_resize_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->sum, &v->sum));
+    IDSI_TRY(idsi_resize_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->rows, &v->rows));
+    IDSI_TRY(use_equations(v));
+    if (basis) {
+        IDSI_TRY(make_solution(v));
+    } else {
+        space->dimension = space->unknowns - (uint32_t)idsi_dense_echelon_rank(v->echelon);
+    }
+done:
+    return st;
+}
+
 ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
-                            const atomic_bool *stop, uint64_t *blocks)
+                            const atomic_bool *stop, const double *share, double *shown)
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = scratch->engine;
     idsi_space *space = &engine->spaces[shape];
-    solver v = {.s = scratch, .engine = engine, .shape = shape, .stop = stop};
-    size_t tableaux = engine->skews.list[shape]->count;
+    solver v = {.s = scratch,
+                .engine = engine,
+                .shape = shape,
+                .stop = stop,
+                .share = share,
+                .shown = shown};
 
     if (space->solved) {
         return IDS_OK;
@@ -335,21 +333,7 @@ ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
     }
     IDSI_TRY(idsi_plan_unknowns(engine, shape));
     if (space->unknowns > 0) {
-        ids_ctx *ctx = scratch->ctx;
-        IDSI_TRY(check_budget(engine, shape));
-        idsi_random_seed(&v.random, shape_seed(engine, shape));
-        IDSI_TRY(idsi_dense_echelon_create(ctx, engine->prime, space->unknowns, &v.echelon));
-        IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.start, &v.start));
-        IDSI_TRY(idsi_resize_array(ctx, tableaux * BATCH, sizeof *v.moved, &v.moved));
-        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.product, &v.product));
-        IDSI_TRY(idsi_alloc_array(ctx, space->unknowns * BATCH, sizeof *v.rows, &v.rows));
-        IDSI_TRY(use_equations(&v));
-        if (basis) {
-            IDSI_TRY(make_solution(&v));
-        } else {
-            space->dimension = space->unknowns - (uint32_t)idsi_dense_echelon_rank(v.echelon);
-        }
-        *blocks += v.blocks;
+        IDSI_TRY(solve_unknowns(&v, basis));
     }
     space->solved = !atomic_load(stop);
 done:

@@ -14,43 +14,16 @@
  * brought to reduced echelon form by itself: half by half, each half clearing the other by a
  * product, down to SLICE rows. Then it becomes part of the last panel. So all but a small share of
  * the work is products. Cost for as many rows as the rank r: r^2 c / 2 - r^3 / 6 multiplications.
- *
- * Completed, a panel is left with the columns that are pivots of no panel at all.
  */
 #include <stdlib.h>
 #include <string.h>
 
-#include "dense_private.h"
-#include "kernels.h"
+#include "dense_form.h"
 
-#define PANEL 256u
+#define PANEL IDSI_PANEL
 #define SLICE 16u
 
-typedef struct panel {
-    size_t used;
-    size_t width;            /* number of its columns */
-    uint32_t *column;        /* its columns, ascending */
-    uint32_t *rows;          /* PANEL x width */
-    uint32_t pivot[PANEL];   /* of each row: a place among its columns */
-    uint32_t dropped[PANEL]; /* the pivots, ascending, when it is full */
-} panel;
-
-struct idsi_dense_echelon {
-    ids_ctx *ctx;
-    const idsi_kernel *kernel;
-    uint32_t p;
-    size_t columns;
-    size_t count;
-    size_t capacity;
-    panel **panels;
-    uint32_t *factor; /* PANEL x PANEL: entries of rows at pivots */
-    idsi_workspace work;
-    idsi_team *team;
-    bool complete;
-    size_t width;     /* complete: columns that are no pivots */
-    uint32_t *column; /* complete: which, ascending */
-    uint32_t *whole;  /* the row that is looked at, all columns */
-};
+typedef idsi_panel panel;
 
 /* Rows at work: from one block, with the columns of the panel that they will go to. */
 typedef struct block {
@@ -151,8 +124,7 @@ const uint32_t *idsi_dense_echelon_row(const idsi_dense_echelon *echelon, size_t
 
 /* ---- clearing -------------------------------------------------------------------------------- */
 
-/* What products need is made when the first one is: many forms are so small that none is. */
-static ids_status prepare_products(idsi_dense_echelon *e)
+ids_status idsi_dense_prepare_products(idsi_dense_echelon *e)
 {
     ids_status st = IDS_OK;
     void *room = NULL;
@@ -182,7 +154,7 @@ static ids_status clear_rows(idsi_dense_echelon *e, uint32_t *target, size_t tar
     if (m == 0 || k == 0) {
         return IDS_OK;
     }
-    IDSI_TRY(prepare_products(e));
+    IDSI_TRY(idsi_dense_prepare_products(e));
     for (size_t i = 0; i < m; i++) {
         for (size_t j = 0; j < k; j++) {
             e->factor[i * k + j] = target[i * target_stride + pivot[j]];
@@ -409,84 +381,5 @@ ids_status idsi_dense_echelon_add(idsi_dense_echelon *echelon, uint32_t *rows, s
         IDSI_TRY(store_rows(e, &b, kept));
     }
 done:
-    return st;
-}
-
-/* ---- completion ------------------------------------------------------------------------------ */
-
-/* Finds the columns that are no pivots. */
-static ids_status find_free_columns(idsi_dense_echelon *e)
-{
-    ids_status st = IDS_OK;
-    size_t rank = idsi_dense_echelon_rank(e);
-    bool *is_pivot = NULL;
-
-    IDSI_TRY(idsi_alloc_array(e->ctx, e->columns, sizeof *is_pivot, &is_pivot));
-    IDSI_TRY(idsi_alloc_array(e->ctx, e->columns - rank, sizeof *e->column, &e->column));
-    for (size_t i = 0; i < rank; i++) {
-        is_pivot[idsi_dense_echelon_pivot(e, i)] = true;
-    }
-    for (size_t j = 0; j < e->columns; j++) {
-        if (!is_pivot[j]) {
-            e->column[e->width++] = (uint32_t)j;
-        }
-    }
-done:
-    idsi_free(e->ctx, is_pivot);
-    return st;
-}
-
-/* Completes panel k; later panels are complete and have shed their pivots. */
-static ids_status complete_panel(idsi_dense_echelon *e, size_t k, uint32_t *place)
-{
-    ids_status st = IDS_OK;
-    panel *at = e->panels[k];
-    void *made = NULL;
-
-    IDSI_TRY(prepare_products(e));
-    IDSI_TRY(idsi_alloc(e->ctx, (at->used * e->width + 1) * sizeof *at->rows, &made));
-    uint32_t *rows = made;
-    for (size_t j = 0; j < at->width; j++) {
-        place[at->column[j]] = (uint32_t)j;
-    }
-    for (size_t i = 0; i < at->used; i++) {
-        for (size_t j = 0; j < e->width; j++) {
-            rows[i * e->width + j] = at->rows[i * at->width + place[e->column[j]]];
-        }
-    }
-    for (size_t later = k + 1; later < e->count; later++) {
-        const panel *by = e->panels[later];
-        for (size_t i = 0; i < at->used; i++) {
-            for (size_t j = 0; j < by->used; j++) {
-                uint32_t column = by->column[by->pivot[j]];
-                e->factor[i * by->used + j] = at->rows[i * at->width + place[column]];
-            }
-        }
-        idsi_dense_mul_sub(&e->work, e->p, at->used, e->width, by->used, e->factor, by->used,
-                           by->rows, e->width, rows, e->width);
-        IDSI_TRY(idsi_poll(e->ctx, NULL));
-    }
-    idsi_free(e->ctx, at->rows);
-    at->rows = rows;
-    made = NULL;
-done:
-    idsi_free(e->ctx, made);
-    return st;
-}
-
-ids_status idsi_dense_echelon_complete(idsi_dense_echelon *echelon)
-{
-    ids_status st = IDS_OK;
-    idsi_dense_echelon *e = echelon;
-    uint32_t *place = NULL; /* of a column among those of a panel */
-
-    IDSI_TRY(idsi_alloc_array(e->ctx, e->columns, sizeof *place, &place));
-    IDSI_TRY(find_free_columns(e));
-    for (size_t k = e->count; k-- > 0;) {
-        IDSI_TRY(complete_panel(e, k, place));
-    }
-    e->complete = true;
-done:
-    idsi_free(e->ctx, place);
     return st;
 }

@@ -31,6 +31,32 @@ void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, si
                         const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
                         size_t ldc);
 
+/* target = scale * target + factor * source mod p, entry by entry. */
+void idsi_dense_combine(uint32_t p, uint32_t *target, uint32_t scale, const uint32_t *source,
+                        uint32_t factor, size_t count);
+
+/*
+ * A left factor that is prepared once, for many products: m x k, centred, in the order in which the
+ * kernels read it.
+ */
+typedef struct idsi_left {
+    size_t m;
+    size_t k;
+    int32_t *values;
+} idsi_left;
+
+/* Copies residues mod p; idsi_left_clear() frees. A cleared one is 0 x 0. */
+ids_status idsi_left_init(ids_ctx *ctx, uint32_t p, size_t m, size_t k, const uint32_t *a,
+                          size_t lda, idsi_left *left);
+void idsi_left_clear(ids_ctx *ctx, idsi_left *left);
+/* Bytes of one. */
+uint64_t idsi_left_bytes(uint64_t m, uint64_t k);
+/* Row i as residues. */
+void idsi_left_row(const idsi_left *left, uint32_t p, size_t i, uint32_t *row);
+/* As idsi_dense_mul_sub() with a prepared A; never shared by a team. */
+void idsi_left_mul_sub(idsi_workspace *work, uint32_t p, const idsi_left *left, size_t n,
+                       const uint32_t *b, size_t ldb, uint32_t *c, size_t ldc);
+
 /* Name of the kernel that this processor gets: "avx512", "avx2" or "portable". */
 const char *idsi_dense_kernel_name(void);
 

@@ -2,6 +2,8 @@
 /*
  * The kernels for AVX2. Products: strips of 4 rows and 8 columns, 8 accumulators of 4 sums.
  */
+#include <string.h>
+
 #include "kernels.h"
 
 #if defined(__x86_64__)
@@ -88,8 +90,10 @@ AVX2 static void store(uint32_t p, __m256i sum[ROWS][2], uint32_t *c, size_t ldc
     }
 }
 
-AVX2 static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
-                       size_t ldc, size_t m, size_t n)
+/* Entry k of row i of A is a[i * row_step + k * k_step]; both are constants where this is used. */
+AVX2 static inline __attribute__((always_inline)) void
+multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_step,
+         const int32_t *b, uint32_t *c, size_t ldc, size_t m, size_t n)
 {
     __m256i sum[ROWS][2];
     __m256i zero = _mm256_setzero_si256();
@@ -106,11 +110,11 @@ AVX2 static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t
             __m256i odd = _mm256_srli_epi64(even, 32);
 #pragma GCC unroll 4
             for (size_t i = 0; i < ROWS; i++) {
-                __m256i x = _mm256_set1_epi32(a[i * IDSI_KERNEL_DEPTH]);
+                __m256i x = _mm256_set1_epi32(a[i * row_step]);
                 sum[i][0] = _mm256_add_epi64(sum[i][0], _mm256_mul_epi32(x, even));
                 sum[i][1] = _mm256_add_epi64(sum[i][1], _mm256_mul_epi32(x, odd));
             }
-            a++;
+            a += k_step;
             b += COLUMNS;
         }
 #pragma GCC unroll 4
@@ -123,6 +127,18 @@ AVX2 static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t
         }
     }
     store(p, sum, c, ldc, m, n);
+}
+
+AVX2 static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
+                       size_t ldc, size_t m, size_t n)
+{
+    multiply(p, steps, a, IDSI_KERNEL_DEPTH, 1, b, c, ldc, m, n);
+}
+
+AVX2 static void left_strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b,
+                            uint32_t *c, size_t ldc, size_t m, size_t n)
+{
+    multiply(p, steps, a, 1, IDSI_LEFT_ROWS, b, c, ldc, m, n);
 }
 
 AVX2 static void centre(uint32_t p, const uint32_t *values, size_t count, int32_t *out)
@@ -138,6 +154,25 @@ AVX2 static void centre(uint32_t p, const uint32_t *values, size_t count, int32_
     }
     for (; j < count; j++) {
         out[j] = idsi_kernel_centred(values[j], p);
+    }
+}
+
+AVX2 static void pack(uint32_t p, size_t k, size_t n, const uint32_t *b, size_t ldb, size_t width,
+                 int32_t *out)
+{
+    size_t steps = idsi_kernel_whole_steps(k);
+
+    for (size_t j = 0; j < n; j += width) {
+        size_t real = n - j < width ? n - j : width;
+        for (size_t s = 0; s < k; s++) {
+            centre(p, b + s * ldb + j, real, out);
+            for (size_t i = real; i < width; i++) {
+                out[i] = 0;
+            }
+            out += width;
+        }
+        memset(out, 0, (steps - k) * width * sizeof *out);
+        out += (steps - k) * width;
     }
 }
 
@@ -201,6 +236,34 @@ AVX2 static bool gather(uint32_t p, const idsi_entry *entries, size_t count,
     return _mm256_testz_si256(any, any) == 0;
 }
 
-const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS, COLUMNS, strip, centre, combine, gather};
+AVX2 static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+{
+    modulus mod = modulus_of(p);
+    __m256i back = _mm256_slli_epi64(mod.square, 2);
+    __m256i sum[2] = {_mm256_setzero_si256(), _mm256_setzero_si256()};
+    uint64_t lanes[4];
+    size_t j = 0;
+
+    for (size_t steps = 1; j + 8 <= count; j += 8, steps++) {
+        __m256i x = _mm256_loadu_si256((const __m256i *)(const void *)(a + j));
+        __m256i y = _mm256_loadu_si256((const __m256i *)(const void *)(b + j));
+        sum[0] = _mm256_add_epi64(sum[0], _mm256_mul_epu32(x, y));
+        x = _mm256_srli_epi64(x, 32);
+        y = _mm256_srli_epi64(y, 32);
+        sum[1] = _mm256_add_epi64(sum[1], _mm256_mul_epu32(x, y));
+        if (steps % 4 == 0) {
+            sum[0] = less_once(sum[0], back);
+            sum[1] = less_once(sum[1], back);
+        }
+    }
+    __m256i both = _mm256_add_epi64(residues_of(less_once(sum[0], back), &mod),
+                                    residues_of(less_once(sum[1], back), &mod));
+    _mm256_storeu_si256((__m256i *)(void *)lanes, both);
+    uint64_t rest = idsi_kernel_portable.dot(p, a + j, b + j, count - j);
+    return (uint32_t)((lanes[0] + lanes[1] + lanes[2] + lanes[3] + rest) % p);
+}
+
+const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS,   COLUMNS, strip,  left_strip,
+                                      NULL,   centre, pack, combine, gather, dot};
 
 #endif

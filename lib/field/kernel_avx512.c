@@ -1,13 +1,15 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The kernels for AVX-512 (F and DQ). Products: strips of 6 rows and 32 columns, so that 24
- * accumulators, 4 vectors of columns and a broadcast fill the registers. A step is 24 products of
- * 8 pairs and 24 sums.
+ * The kernels for AVX-512 (F and DQ). Products: strips of 6 rows and 32 columns, or 12 rows and 16
+ * columns, so that 24 accumulators, the vectors of columns and a broadcast fit the registers. A
+ * step is 24 products of 8 pairs and 24 sums.
  *
  * Sums of at most 4 p^2 are reduced with a quotient by p in double precision. It is at most 4 p, so
  * rounded to an integer it is off by less than 1/2 + 4 p * 2^-51 < 1: the remainder lies in
  * (-p, p), and one correction brings it to [0, p).
  */
+#include <string.h>
+
 #include "kernels.h"
 
 #if defined(__x86_64__)
@@ -35,22 +37,68 @@ AVX512 static inline __m512i settle(__m512i c, __m512i sum, __m512i prime, __m51
     return _mm512_min_epu64(value, _mm512_add_epi64(value, prime));
 }
 
-AVX512 static void store(uint32_t p, __m512i sum[ROWS][VECTORS], uint32_t *c, size_t ldc, size_t m,
-                         size_t n)
+/* Stores the sums of m rows, each of `vectors` registers at sum[i * vectors]. */
+AVX512 static inline __attribute__((always_inline)) void
+store(uint32_t p, const __m512i *sum, size_t vectors, uint32_t *c, size_t ldc, size_t m, size_t n)
 {
     __m512i prime = _mm512_set1_epi64((int64_t)p);
     __m512i low = _mm512_set1_epi64(UINT32_MAX);
     __m512d inverse = _mm512_set1_pd(1.0 / (double)p);
 
     for (size_t i = 0; i < m; i++) {
-        for (size_t v = 0; v < VECTORS / 2 && 16 * v < n; v++) {
+        const __m512i *row = sum + i * vectors;
+        for (size_t v = 0; v < vectors / 2 && 16 * v < n; v++) {
             uint32_t *at = c + i * ldc + 16 * v;
             size_t left = n - 16 * v;
             __mmask16 mask = (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
             __m512i old = _mm512_maskz_loadu_epi32(mask, at);
-            __m512i even = settle(_mm512_and_si512(old, low), sum[i][2 * v], prime, inverse);
-            __m512i odd = settle(_mm512_srli_epi64(old, 32), sum[i][2 * v + 1], prime, inverse);
+            __m512i even = settle(_mm512_and_si512(old, low), row[2 * v], prime, inverse);
+            __m512i odd = settle(_mm512_srli_epi64(old, 32), row[2 * v + 1], prime, inverse);
             _mm512_mask_storeu_epi32(at, mask, _mm512_or_si512(even, _mm512_slli_epi64(odd, 32)));
+        }
+    }
+}
+
+/*
+ * A strip of rows x (8 vectors) columns; all sizes but `steps` are constants where this is used.
+ * Entry k of row i of A is a[i * row_step + k * k_step].
+ */
+AVX512 static inline __attribute__((always_inline)) void
+multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_step,
+         const int32_t *b, __m512i *sum, size_t rows, size_t vectors)
+{
+    __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
+    __m512i twice = _mm512_add_epi64(back, back);
+
+#pragma GCC unroll 24
+    for (size_t i = 0; i < rows * vectors; i++) {
+        sum[i] = _mm512_setzero_si512();
+    }
+    for (size_t s = 0; s < steps; s += IDSI_KERNEL_STEPS) {
+        for (size_t k = 0; k < IDSI_KERNEL_STEPS; k++) {
+            __m512i column[VECTORS];
+#pragma GCC unroll 2
+            for (size_t v = 0; v < vectors; v += 2) {
+                column[v] = _mm512_loadu_si512(b + 8 * v);
+                column[v + 1] = _mm512_srli_epi64(column[v], 32);
+            }
+#pragma GCC unroll 12
+            for (size_t i = 0; i < rows; i++) {
+                __m512i x = _mm512_set1_epi32(a[i * row_step]);
+#pragma GCC unroll 4
+                for (size_t v = 0; v < vectors; v++) {
+                    sum[i * vectors + v] = _mm512_add_epi64(sum[i * vectors + v],
+                                                            _mm512_mul_epi32(x, column[v]));
+                }
+            }
+            a += k_step;
+            b += 8 * vectors;
+        }
+#pragma GCC unroll 24
+        for (size_t i = 0; i < rows * vectors; i++) {
+            __mmask8 negative = _mm512_movepi64_mask(sum[i]);
+            __m512i less = _mm512_sub_epi64(sum[i], back);
+            sum[i] = _mm512_mask_add_epi64(less, negative, less, twice);
         }
     }
 }
@@ -58,59 +106,63 @@ AVX512 static void store(uint32_t p, __m512i sum[ROWS][VECTORS], uint32_t *c, si
 AVX512 static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
                          size_t ldc, size_t m, size_t n)
 {
-    __m512i sum[ROWS][VECTORS];
-    __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
-    __m512i twice = _mm512_add_epi64(back, back);
+    __m512i sum[ROWS * VECTORS];
 
-#pragma GCC unroll 6
-    for (size_t i = 0; i < ROWS; i++) {
-#pragma GCC unroll 4
-        for (size_t v = 0; v < VECTORS; v++) {
-            sum[i][v] = _mm512_setzero_si512();
-        }
-    }
-    for (size_t s = 0; s < steps; s += IDSI_KERNEL_STEPS) {
-        for (size_t k = 0; k < IDSI_KERNEL_STEPS; k++) {
-            __m512i column[VECTORS];
-            column[0] = _mm512_loadu_si512(b);
-            column[2] = _mm512_loadu_si512(b + 16);
-            column[1] = _mm512_srli_epi64(column[0], 32);
-            column[3] = _mm512_srli_epi64(column[2], 32);
-#pragma GCC unroll 6
-            for (size_t i = 0; i < ROWS; i++) {
-                __m512i x = _mm512_set1_epi32(a[i * IDSI_KERNEL_DEPTH]);
-#pragma GCC unroll 4
-                for (size_t v = 0; v < VECTORS; v++) {
-                    sum[i][v] = _mm512_add_epi64(sum[i][v], _mm512_mul_epi32(x, column[v]));
-                }
-            }
-            a++;
-            b += COLUMNS;
-        }
-#pragma GCC unroll 6
-        for (size_t i = 0; i < ROWS; i++) {
-#pragma GCC unroll 4
-            for (size_t v = 0; v < VECTORS; v++) {
-                __mmask8 negative = _mm512_movepi64_mask(sum[i][v]);
-                __m512i less = _mm512_sub_epi64(sum[i][v], back);
-                sum[i][v] = _mm512_mask_add_epi64(less, negative, less, twice);
-            }
-        }
-    }
-    store(p, sum, c, ldc, m, n);
+    multiply(p, steps, a, IDSI_KERNEL_DEPTH, 1, b, sum, ROWS, VECTORS);
+    store(p, sum, VECTORS, c, ldc, m, n);
+}
+
+AVX512 static void left_strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b,
+                              uint32_t *c, size_t ldc, size_t m, size_t n)
+{
+    __m512i sum[ROWS * VECTORS];
+
+    multiply(p, steps, a, 1, IDSI_LEFT_ROWS, b, sum, ROWS, VECTORS);
+    store(p, sum, VECTORS, c, ldc, m, n);
+}
+
+AVX512 static void narrow_strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b,
+                                uint32_t *c, size_t ldc, size_t m, size_t n)
+{
+    __m512i sum[IDSI_LEFT_ROWS * 2];
+
+    multiply(p, steps, a, 1, IDSI_LEFT_ROWS, b, sum, IDSI_LEFT_ROWS, 2);
+    store(p, sum, 2, c, ldc, m, n);
+}
+
+AVX512 static inline __m512i centred(__m512i v, uint32_t p)
+{
+    __mmask16 above = _mm512_cmpgt_epi32_mask(v, _mm512_set1_epi32((int32_t)(p / 2)));
+    return _mm512_mask_sub_epi32(v, above, v, _mm512_set1_epi32((int32_t)p));
 }
 
 AVX512 static void centre(uint32_t p, const uint32_t *values, size_t count, int32_t *out)
 {
-    __m512i prime = _mm512_set1_epi32((int32_t)p);
-    __m512i half = _mm512_set1_epi32((int32_t)(p / 2));
-
     for (size_t j = 0; j < count; j += 16) {
         size_t left = count - j;
         __mmask16 mask = (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
         __m512i v = _mm512_maskz_loadu_epi32(mask, values + j);
-        v = _mm512_mask_sub_epi32(v, _mm512_cmpgt_epi32_mask(v, half), v, prime);
-        _mm512_mask_storeu_epi32(out + j, mask, v);
+        _mm512_mask_storeu_epi32(out + j, mask, centred(v, p));
+    }
+}
+
+AVX512 static void pack(uint32_t p, size_t k, size_t n, const uint32_t *b, size_t ldb, size_t width,
+                        int32_t *out)
+{
+    size_t steps = idsi_kernel_whole_steps(k);
+
+    for (size_t j = 0; j < n; j += width) {
+        for (size_t s = 0; s < k; s++) {
+            for (size_t i = 0; i < width; i += 16) {
+                size_t left = j + i < n ? n - j - i : 0;
+                __mmask16 mask = (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
+                __m512i v = _mm512_maskz_loadu_epi32(mask, b + s * ldb + j + i);
+                _mm512_storeu_si512(out + i, centred(v, p));
+            }
+            out += width;
+        }
+        memset(out, 0, (steps - k) * width * sizeof *out);
+        out += (steps - k) * width;
     }
 }
 
@@ -171,6 +223,32 @@ AVX512 static bool gather(uint32_t p, const idsi_entry *entries, size_t count,
     return _mm512_test_epi64_mask(all, all) != 0;
 }
 
-const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip, centre, combine, gather};
+AVX512 static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+{
+    __m512i prime = _mm512_set1_epi64((int64_t)p);
+    __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
+    __m512d inverse = _mm512_set1_pd(1.0 / (double)p);
+    __m512i sum[2] = {_mm512_setzero_si512(), _mm512_setzero_si512()};
+
+    for (size_t j = 0; j < count; j += 128) {
+        size_t end = j + 128 < count ? j + 128 : count;
+        for (size_t k = j; k < end; k += 16) {
+            __mmask16 mask = (__mmask16)(end - k >= 16 ? 0xffffu : (1u << (end - k)) - 1u);
+            __m512i x = _mm512_maskz_loadu_epi32(mask, a + k);
+            __m512i y = _mm512_maskz_loadu_epi32(mask, b + k);
+            sum[0] = _mm512_add_epi64(sum[0], _mm512_mul_epu32(x, y));
+            sum[1] = _mm512_add_epi64(
+                sum[1], _mm512_mul_epu32(_mm512_srli_epi64(x, 32), _mm512_srli_epi64(y, 32)));
+        }
+        sum[0] = bring_back(sum[0], back);
+        sum[1] = bring_back(sum[1], back);
+    }
+    __m512i both = _mm512_add_epi64(residues_of(sum[0], prime, inverse),
+                                    residues_of(sum[1], prime, inverse));
+    return (uint32_t)((uint64_t)_mm512_reduce_add_epi64(both) % p);
+}
+
+const idsi_kernel idsi_kernel_avx512 = {"avx512",     ROWS,   COLUMNS, strip,  left_strip,
+                                        narrow_strip, centre, pack,    combine, gather, dot};
 
 #endif

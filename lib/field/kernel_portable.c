@@ -2,13 +2,16 @@
 /*
  * The kernels in plain C, for processors without their own, and for what vectors leave over.
  */
+#include <string.h>
+
 #include "kernels.h"
 
 #define ROWS 4u
 #define COLUMNS 8u
 
-static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
-                  size_t ldc, size_t m, size_t n)
+/* Entry k of row i of A is a[i * row_step + k * k_step]. */
+static void multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_step,
+                     const int32_t *b, uint32_t *c, size_t ldc, size_t m, size_t n)
 {
     int64_t sum[ROWS][COLUMNS] = {{0}};
     int64_t back = (int64_t)(4 * (uint64_t)p * p);
@@ -17,7 +20,7 @@ static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, 
         for (size_t k = 0; k < IDSI_KERNEL_STEPS; k++) {
             for (size_t i = 0; i < ROWS; i++) {
                 for (size_t j = 0; j < COLUMNS; j++) {
-                    sum[i][j] += (int64_t)a[i * IDSI_KERNEL_DEPTH + s + k] * b[j];
+                    sum[i][j] += (int64_t)a[i * row_step + (s + k) * k_step] * b[j];
                 }
             }
             b += COLUMNS;
@@ -36,10 +39,41 @@ static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, 
     }
 }
 
+static void strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
+                  size_t ldc, size_t m, size_t n)
+{
+    multiply(p, steps, a, IDSI_KERNEL_DEPTH, 1, b, c, ldc, m, n);
+}
+
+static void left_strip(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
+                       size_t ldc, size_t m, size_t n)
+{
+    multiply(p, steps, a, 1, IDSI_LEFT_ROWS, b, c, ldc, m, n);
+}
+
 static void centre(uint32_t p, const uint32_t *values, size_t count, int32_t *out)
 {
     for (size_t j = 0; j < count; j++) {
         out[j] = idsi_kernel_centred(values[j], p);
+    }
+}
+
+static void pack(uint32_t p, size_t k, size_t n, const uint32_t *b, size_t ldb, size_t width,
+                 int32_t *out)
+{
+    size_t steps = idsi_kernel_whole_steps(k);
+
+    for (size_t j = 0; j < n; j += width) {
+        size_t real = n - j < width ? n - j : width;
+        for (size_t s = 0; s < k; s++) {
+            centre(p, b + s * ldb + j, real, out);
+            for (size_t i = real; i < width; i++) {
+                out[i] = 0;
+            }
+            out += width;
+        }
+        memset(out, 0, (steps - k) * width * sizeof *out);
+        out += (steps - k) * width;
     }
 }
 
@@ -75,5 +109,20 @@ static bool gather(uint32_t p, const idsi_entry *entries, size_t count, const ui
     return any != 0;
 }
 
-const idsi_kernel idsi_kernel_portable = {"portable", ROWS,    COLUMNS, strip,
-                                          centre,     combine, gather};
+static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+{
+    uint64_t sum = 0;
+
+    for (size_t j = 0; j < count;) {
+        /* 8 products are below 2^63 */
+        size_t end = j + 8 < count ? j + 8 : count;
+        for (; j < end; j++) {
+            sum += (uint64_t)a[j] * b[j];
+        }
+        sum %= p;
+    }
+    return (uint32_t)sum;
+}
+
+const idsi_kernel idsi_kernel_portable = {"portable", ROWS,   COLUMNS, strip,  left_strip,
+                                          NULL,       centre, pack, combine, gather, dot};

@@ -8,6 +8,9 @@
  *     A   `rows` rows, each of IDSI_KERNEL_DEPTH entries, one after the other
  *     B   step by step of k, `columns` entries each
  *
+ * and a left factor that is prepared once for many products (idsi_left) in groups of IDSI_LEFT_ROWS
+ * rows, step by step of k, an entry of each row.
+ *
  * So a product is below 2^58, and a sum is brought back by 4 p^2 after every 16 of them: with
  * |sum| <= 4 p^2 before, |sum| < 4 p^2 + 16 ((p-1)/2)^2 < 8 p^2 < 2^63 after 16 steps, and adding
  * or subtracting 4 p^2, whichever is towards zero, leaves |sum| <= 4 p^2.
@@ -27,6 +30,10 @@
 
 #define IDSI_KERNEL_STEPS 16u
 #define IDSI_KERNEL_DEPTH 256u
+/* Columns of B that are packed at a time. */
+#define IDSI_KERNEL_WIDTH 512u
+/* Rows of a prepared left factor that stand together; a multiple of every kernel's rows. */
+#define IDSI_LEFT_ROWS 12u
 /* Rows that are rewritten side by side. */
 #define IDSI_LANES 16u
 
@@ -40,8 +47,20 @@ typedef struct idsi_kernel {
      */
     void (*strip)(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
                   size_t ldc, size_t m, size_t n);
+    /* The same for rows of a prepared left factor. */
+    void (*left_strip)(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
+                       size_t ldc, size_t m, size_t n);
+    /* The same for a whole group and at most 16 columns; NULL when it would be no faster. */
+    void (*narrow_strip)(uint32_t p, size_t steps, const int32_t *a, const int32_t *b, uint32_t *c,
+                         size_t ldc, size_t m, size_t n);
     /* Centres residues. */
     void (*centre)(uint32_t p, const uint32_t *values, size_t count, int32_t *out);
+    /*
+     * Packs k x n of B into strips of `width` columns, a multiple of 8; k <= IDSI_KERNEL_DEPTH. Pads
+     * with zeros to whole strips and steps.
+     */
+    void (*pack)(uint32_t p, size_t k, size_t n, const uint32_t *b, size_t ldb, size_t width,
+                 int32_t *out);
     /* target = scale * target + factor * source mod p, entry by entry; all residues. */
     void (*combine)(uint32_t p, uint32_t *target, uint32_t scale, const uint32_t *source,
                     uint32_t factor, size_t count);
@@ -51,6 +70,8 @@ typedef struct idsi_kernel {
      */
     bool (*gather)(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factors,
                    const uint64_t *sums, uint32_t *residues);
+    /* sum of a[j] b[j] mod p, of residues */
+    uint32_t (*dot)(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count);
 } idsi_kernel;
 
 /* The kernel for this processor. */
@@ -61,6 +82,11 @@ extern const idsi_kernel idsi_kernel_portable;
 extern const idsi_kernel idsi_kernel_avx2;
 extern const idsi_kernel idsi_kernel_avx512;
 #endif
+
+static inline size_t idsi_kernel_whole_steps(size_t k)
+{
+    return (k + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
+}
 
 /* The first line of the cache that begins at a pointer or after; 64 bytes of room are needed. */
 static inline void *idsi_kernel_align(void *pointer)

@@ -19,7 +19,7 @@
 
 #define KC IDSI_KERNEL_DEPTH
 #define MC 96u
-#define NC 512u
+#define NC IDSI_KERNEL_WIDTH
 /* Multiplications below which a team is not worth waking. */
 #define LEAST_SHARED 2000000u
 /* Tasks for each member of a team, so that one who is held up is not waited for. */
@@ -41,6 +41,12 @@ const idsi_kernel *idsi_kernel_choose(void)
 const char *idsi_dense_kernel_name(void)
 {
     return idsi_kernel_choose()->name;
+}
+
+void idsi_dense_combine(uint32_t p, uint32_t *target, uint32_t scale, const uint32_t *source,
+                        uint32_t factor, size_t count)
+{
+    idsi_kernel_choose()->combine(p, target, scale, source, factor, count);
 }
 
 /* ---- workspaces ------------------------------------------------------------------------------ */
@@ -108,27 +114,6 @@ typedef struct product {
     bool by_rows;
 } product;
 
-/* Packs k x n of B into strips; pads with zeros to whole strips and steps. */
-static void pack_b(const product *pr, size_t k, size_t steps, size_t n, const uint32_t *b,
-                   int32_t *out)
-{
-    size_t width = pr->kernel->columns;
-
-    for (size_t j = 0; j < n; j += width) {
-        size_t real = n - j < width ? n - j : width;
-        for (size_t s = 0; s < steps; s++) {
-            size_t from = s < k ? real : 0;
-            if (from > 0) {
-                pr->kernel->centre(pr->p, b + s * pr->ldb + j, from, out);
-            }
-            if (from < width) {
-                memset(out + from, 0, (width - from) * sizeof *out);
-            }
-            out += width;
-        }
-    }
-}
-
 /* Packs m x k of A row by row, padded likewise. */
 static void pack_a(const product *pr, size_t m, size_t k, size_t steps, const uint32_t *a,
                    int32_t *out)
@@ -160,8 +145,9 @@ static void multiply(const product *pr)
         size_t nc = least(pr->n - jc, NC);
         for (size_t pc = 0; pc < pr->k; pc += KC) {
             size_t kc = least(pr->k - pc, KC);
-            size_t steps = (kc + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
-            pack_b(pr, kc, steps, nc, pr->b + pc * pr->ldb + jc, packed_b);
+            size_t steps = idsi_kernel_whole_steps(kc);
+            kernel->pack(pr->p, kc, nc, pr->b + pc * pr->ldb + jc, pr->ldb, kernel->columns,
+                         packed_b);
             for (size_t ic = 0; ic < pr->m; ic += MC) {
                 size_t mc = least(pr->m - ic, MC);
                 pack_a(pr, mc, kc, steps, pr->a + ic * pr->lda + pc, packed_a);

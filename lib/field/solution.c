@@ -2,35 +2,38 @@
 /*
  * Random solutions of the equations that a dense echelon form holds.
  *
- * The free unknowns are drawn, and the pivots are solved for from the last row to the first: a row
- * has entries at the pivots of later rows only.
+ * The free unknowns are drawn, and the pivots are solved for, panel by panel from the last to the
+ * first: a row has entries at pivots of later panels, and at none of its own but its pivot.
  */
+#include <string.h>
+
+#include "dense_form.h"
 #include "solution_private.h"
 
-/* sum of a[j] b[j] mod p */
-static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+/* The unknowns that are pivots of one panel; `part` has room for its columns. */
+static void solve_panel(const idsi_dense_echelon *e, const idsi_panel *at, uint32_t *part,
+                        uint32_t *solution)
 {
-    uint64_t sum = 0;
-    for (size_t j = 0; j < count;) {
-        /* 8 products are below 2^63 */
-        size_t end = j + 8 < count ? j + 8 : count;
-        for (; j < end; j++) {
-            sum += (uint64_t)a[j] * b[j];
-        }
-        sum %= p;
+    for (size_t j = 0; j < at->width; j++) {
+        part[j] = solution[at->column[j]];
     }
-    return (uint32_t)sum;
+    for (size_t i = 0; i < at->used; i++) {
+        part[at->pivot[i]] = 0;
+    }
+    for (size_t i = 0; i < at->used; i++) {
+        uint32_t pivot = at->pivot[i];
+        uint32_t sum = e->kernel->dot(e->p, at->rows + i * at->width, part, pivot);
+        solution[at->column[pivot]] = idsi_mod_neg(sum, e->p);
+    }
 }
 
-void idsi_dense_echelon_solution(const idsi_dense_echelon *echelon, uint32_t p, size_t columns,
-                                 idsi_random *random, uint32_t *solution)
+void idsi_dense_echelon_solution(idsi_dense_echelon *echelon, idsi_random *random,
+                                 uint32_t *solution)
 {
-    for (size_t j = 0; j < columns; j++) {
-        solution[j] = idsi_random_residue(random, p);
+    for (size_t j = 0; j < echelon->columns; j++) {
+        solution[j] = idsi_random_residue(random, echelon->p);
     }
-    for (size_t i = idsi_dense_echelon_rank(echelon); i-- > 0;) {
-        uint32_t pivot = idsi_dense_echelon_pivot(echelon, i);
-        const uint32_t *row = idsi_dense_echelon_row(echelon, i);
-        solution[pivot] = idsi_mod_neg(dot(p, row, solution, pivot), p);
+    for (size_t k = echelon->count; k-- > 0;) {
+        solve_panel(echelon, echelon->panels[k], echelon->whole, solution);
     }
 }

@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The inner loop of the seminormal action, for different processors.
+ * The exchange of two neighbouring labels on a block of vectors, for different processors.
  */
 #ifndef IDSI_MIX_H
 #define IDSI_MIX_H
@@ -22,12 +22,26 @@ typedef struct idsi_mix {
     uint32_t shoup_c;
 } idsi_mix;
 
-typedef void (*idsi_mix_fn)(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width);
+/*
+ * What an exchange does to each of `count` tableaux: partner[t] == t keeps it, with its sign changed
+ * when distance[t] < 0; partner[t] > t makes (t, partner[t]) a pair for mix[distance[t] + centre].
+ * The block has a row of `width` residues for each tableau.
+ */
+typedef struct idsi_exchange {
+    uint32_t p;
+    uint32_t count;
+    const uint32_t *partner;
+    const int8_t *distance;
+    const idsi_mix *mix;
+    int centre;
+} idsi_exchange;
 
-void idsi_mix_portable(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width);
+typedef void (*idsi_exchange_fn)(const idsi_exchange *exchange, uint32_t *block, size_t width);
+
+void idsi_exchange_portable(const idsi_exchange *exchange, uint32_t *block, size_t width);
 #if defined(__x86_64__)
-void idsi_mix_avx2(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width);
-void idsi_mix_avx512(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width);
+void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t width);
+void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t width);
 #endif
 
 /* f u mod p, plus 0 or p (Shoup's multiplication by a constant): below 2p. */
@@ -49,6 +63,11 @@ static inline void idsi_mix_one(const idsi_mix *mix, uint32_t *x, uint32_t *y)
     t = t >= 2 * p ? t - 2 * p : t;
     *x = s >= p ? s - p : s;
     *y = t >= p ? t - p : t;
+}
+
+static inline uint32_t idsi_mix_negate(uint32_t u, uint32_t p)
+{
+    return u == 0 ? 0 : p - u;
 }
 
 #endif

@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The seminormal inner loop for AVX2: 8 places at once.
+ * The seminormal exchange for AVX2: 8 places at once.
  */
 #include "mix.h"
 
@@ -23,7 +23,7 @@ AVX2 static inline __m256i reduce(__m256i x, __m256i bound)
     return _mm256_min_epu32(x, _mm256_sub_epi32(x, bound));
 }
 
-AVX2 void idsi_mix_avx2(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width)
+AVX2 static inline void mix_rows(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width)
 {
     __m256i p = _mm256_set1_epi32((int)mix->p);
     __m256i twice = _mm256_add_epi32(p, p);
@@ -45,6 +45,22 @@ AVX2 void idsi_mix_avx2(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t wi
     }
     for (; j < width; j++) {
         idsi_mix_one(mix, &x[j], &y[j]);
+    }
+}
+
+AVX2 void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t width)
+{
+    for (size_t t = 0; t < exchange->count; t++) {
+        size_t partner = exchange->partner[t];
+        uint32_t *row = block + t * width;
+        if (partner > t) {
+            mix_rows(&exchange->mix[exchange->distance[t] + exchange->centre], row,
+                     block + partner * width, width);
+        } else if (partner == t && exchange->distance[t] < 0) {
+            for (size_t j = 0; j < width; j++) {
+                row[j] = idsi_mix_negate(row[j], exchange->p);
+            }
+        }
     }
 }
 

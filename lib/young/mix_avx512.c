@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The seminormal inner loop for AVX-512: 16 places at once.
+ * The seminormal exchange for AVX-512: 16 places at once, the last ones by a mask.
  */
 #include "mix.h"
 
@@ -23,7 +23,12 @@ AVX512 static inline __m512i reduce(__m512i x, __m512i bound)
     return _mm512_min_epu32(x, _mm512_sub_epi32(x, bound));
 }
 
-AVX512 void idsi_mix_avx512(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width)
+AVX512 static inline __mmask16 mask_of(size_t left)
+{
+    return (__mmask16)(left >= 16 ? 0xffffu : (1u << left) - 1u);
+}
+
+AVX512 static inline void mix_rows(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_t width)
 {
     __m512i p = _mm512_set1_epi32((int)mix->p);
     __m512i twice = _mm512_add_epi32(p, p);
@@ -33,18 +38,39 @@ AVX512 void idsi_mix_avx512(const idsi_mix *mix, uint32_t *x, uint32_t *y, size_
     __m512i shoup_a = _mm512_set1_epi32((int)mix->shoup_a);
     __m512i shoup_b = _mm512_set1_epi32((int)mix->shoup_b);
     __m512i shoup_c = _mm512_set1_epi32((int)mix->shoup_c);
-    size_t j = 0;
 
-    for (; j + 16 <= width; j += 16) {
-        __m512i u = _mm512_loadu_si512(x + j);
-        __m512i v = _mm512_loadu_si512(y + j);
+    for (size_t j = 0; j < width; j += 16) {
+        __mmask16 mask = mask_of(width - j);
+        __m512i u = _mm512_maskz_loadu_epi32(mask, x + j);
+        __m512i v = _mm512_maskz_loadu_epi32(mask, y + j);
         __m512i s = _mm512_add_epi32(times(u, a, shoup_a, p), v);
         __m512i t = _mm512_add_epi32(times(u, b, shoup_b, p), times(v, c, shoup_c, p));
-        _mm512_storeu_si512(x + j, reduce(reduce(s, twice), p));
-        _mm512_storeu_si512(y + j, reduce(reduce(t, twice), p));
+        _mm512_mask_storeu_epi32(x + j, mask, reduce(reduce(s, twice), p));
+        _mm512_mask_storeu_epi32(y + j, mask, reduce(reduce(t, twice), p));
     }
-    for (; j < width; j++) {
-        idsi_mix_one(mix, &x[j], &y[j]);
+}
+
+AVX512 static inline void negate_row(uint32_t p, uint32_t *x, size_t width)
+{
+    __m512i prime = _mm512_set1_epi32((int)p);
+
+    for (size_t j = 0; j < width; j += 16) {
+        __mmask16 mask = mask_of(width - j);
+        __m512i u = _mm512_maskz_loadu_epi32(mask, x + j);
+        _mm512_mask_storeu_epi32(x + j, mask, reduce(_mm512_sub_epi32(prime, u), prime));
+    }
+}
+
+AVX512 void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t width)
+{
+    for (size_t t = 0; t < exchange->count; t++) {
+        size_t partner = exchange->partner[t];
+        if (partner > t) {
+            mix_rows(&exchange->mix[exchange->distance[t] + exchange->centre], block + t * width,
+                     block + partner * width, width);
+        } else if (partner == t && exchange->distance[t] < 0) {
+            negate_row(exchange->p, block + t * width, width);
+        }
     }
 }
 

@@ -16,6 +16,9 @@
 #include "mix.h"
 #include "skew_private.h"
 
+/* Contents differ by no more. */
+#define FARTHEST (2 * (int)IDSI_SHAPE_MAX)
+
 static inline uint32_t mul(uint32_t a, uint32_t b, uint32_t p)
 {
     return (uint32_t)((uint64_t)a * b % p);
@@ -26,24 +29,17 @@ static uint32_t shoup(uint32_t f, uint32_t p)
     return (uint32_t)(((uint64_t)f << 32) / p);
 }
 
-static idsi_mix_fn choose_mix(void)
+static idsi_exchange_fn choose_exchange(void)
 {
 #if defined(__x86_64__)
     if (__builtin_cpu_supports("avx512f")) {
-        return idsi_mix_avx512;
+        return idsi_exchange_avx512;
     }
     if (__builtin_cpu_supports("avx2")) {
-        return idsi_mix_avx2;
+        return idsi_exchange_avx2;
     }
 #endif
-    return idsi_mix_portable;
-}
-
-static void negate(uint32_t *v, size_t width, uint32_t p)
-{
-    for (size_t j = 0; j < width; j++) {
-        v[j] = v[j] == 0 ? 0 : p - v[j];
-    }
+    return idsi_exchange_portable;
 }
 
 /* The constants of the action for a distance d of contents. */
@@ -61,27 +57,22 @@ static idsi_mix constants(int d, uint32_t p, const uint32_t *inverse)
 void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
                               const uint32_t *inverse, uint32_t *block, size_t width)
 {
-    const uint32_t *swap = skew->swap + (size_t)i * skew->count;
-    const int8_t *distance = skew->distance + (size_t)i * skew->count;
-    uint32_t n = skew->shape.cells;
-    idsi_mix_fn mix_pair = choose_mix();
-    idsi_mix mix[4 * IDSI_SHAPE_MAX + 1];           /* by distance + 2 * IDSI_SHAPE_MAX */
-    bool known[4 * IDSI_SHAPE_MAX + 1] = {false};
+    idsi_mix mix[2 * FARTHEST + 1]; /* by distance + FARTHEST */
+    bool known[2 * FARTHEST + 1] = {false};
+    idsi_exchange exchange = {.p = p,
+                              .count = skew->count,
+                              .partner = skew->swap + (size_t)i * skew->count,
+                              .distance = skew->distance + (size_t)i * skew->count,
+                              .mix = mix,
+                              .centre = FARTHEST};
 
+    /* The tableau that comes first of a pair has i in a higher row: they stand in this order. */
     for (uint32_t t = 0; t < skew->count; t++) {
-        int d = distance[t];
-        const uint8_t *row = skew->row + (size_t)t * n;
-        if (swap[t] == t) {
-            if (d < 0) {
-                negate(block + (size_t)t * width, width, p);
-            }
-        } else if (row[i] < row[i + 1]) {
-            size_t k = (size_t)(d + 2 * (int)IDSI_SHAPE_MAX);
-            if (!known[k]) {
-                mix[k] = constants(d, p, inverse);
-                known[k] = true;
-            }
-            mix_pair(&mix[k], block + (size_t)t * width, block + (size_t)swap[t] * width, width);
+        int d = exchange.distance[t];
+        if (exchange.partner[t] > t && !known[d + FARTHEST]) {
+            mix[d + FARTHEST] = constants(d, p, inverse);
+            known[d + FARTHEST] = true;
         }
     }
+    choose_exchange()(&exchange, block, width);
 }

@@ -270,26 +270,40 @@ END_TEST
 
 #define MOST_WIDTH 70u
 
-static void check_mix(idsi_mix_fn mix_pair, const idsi_mix *mix, const uint32_t *x,
-                      const uint32_t *y, size_t width)
+static void check_exchange(idsi_exchange_fn run, const idsi_mix *mix, const uint32_t *x,
+                           const uint32_t *y, size_t width)
 {
-    uint32_t got_x[MOST_WIDTH + 1];
-    uint32_t got_y[MOST_WIDTH + 1];
+    /* a pair, one that is kept, one that changes its sign, and what must not be touched */
+    static const uint32_t partner[4] = {3, 1, 2, 0};
+    static const int8_t distance[4] = {2, 1, -1, -2};
+    idsi_mix by_distance[5] = {{0}};
+    idsi_exchange exchange = {.p = mix->p,
+                              .count = 4,
+                              .partner = partner,
+                              .distance = distance,
+                              .mix = by_distance,
+                              .centre = 2};
+    uint32_t block[4 * MOST_WIDTH + 1];
 
-    memcpy(got_x, x, sizeof got_x);
-    memcpy(got_y, y, sizeof got_y);
-    mix_pair(mix, got_x, got_y, width);
+    by_distance[4] = *mix;
+    for (size_t t = 0; t < 4; t++) {
+        memcpy(block + t * width, t < 2 ? x : y, width * sizeof *x);
+    }
+    block[4 * width] = 12345;
+    run(&exchange, block, width);
     for (size_t j = 0; j < width; j++) {
         uint64_t u = x[j];
         uint64_t v = y[j];
-        ck_assert_uint_eq(got_x[j], (mix->a * u + v) % mix->p);
-        ck_assert_uint_eq(got_y[j], (mix->b * u % mix->p + mix->c * v % mix->p) % mix->p);
+        ck_assert_uint_eq(block[j], (mix->a * u + v) % mix->p);
+        ck_assert_uint_eq(block[width + j], u);
+        ck_assert_uint_eq(block[2 * width + j], (mix->p - v) % mix->p);
+        ck_assert_uint_eq(block[3 * width + j],
+                          (mix->b * u % mix->p + mix->c * v % mix->p) % mix->p);
     }
-    ck_assert_uint_eq(got_x[width], x[width]); /* nothing beyond the width */
-    ck_assert_uint_eq(got_y[width], y[width]);
+    ck_assert_uint_eq(block[4 * width], 12345);
 }
 
-static void check_widths(idsi_random *random, idsi_mix_fn mix_pair, uint32_t p)
+static void check_widths(idsi_random *random, idsi_exchange_fn run, uint32_t p)
 {
     uint32_t x[MOST_WIDTH + 1];
     uint32_t y[MOST_WIDTH + 1];
@@ -309,22 +323,22 @@ static void check_widths(idsi_random *random, idsi_mix_fn mix_pair, uint32_t p)
             kind = idsi_random_below(random, 8);
             y[j] = kind == 0 ? p - 1 : kind == 1 ? 0 : (uint32_t)idsi_random_below(random, p);
         }
-        check_mix(mix_pair, &mix, x, y, width);
+        check_exchange(run, &mix, x, y, width);
     }
 }
 
 START_TEST(test_mix)
 {
     static const uint32_t primes[] = {2, 3, SMALL, 65537, 536870923, LARGE};
-    idsi_mix_fn functions[3] = {idsi_mix_portable, NULL, NULL};
+    idsi_exchange_fn functions[3] = {idsi_exchange_portable, NULL, NULL};
     idsi_random random;
 
 #if defined(__x86_64__)
     if (__builtin_cpu_supports("avx2")) {
-        functions[1] = idsi_mix_avx2;
+        functions[1] = idsi_exchange_avx2;
     }
     if (__builtin_cpu_supports("avx512f")) {
-        functions[2] = idsi_mix_avx512;
+        functions[2] = idsi_exchange_avx512;
     }
 #endif
     test_random(&random, 77);
