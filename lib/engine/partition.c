@@ -141,9 +141,7 @@ static ids_status run_crew(crew *c)
     IDSI_TRY(idsi_alloc_array(ctx, count, sizeof *threads, &threads));
     for (uint32_t i = 0; i < count; i++) {
         workers[i].crew = c;
-        workers[i].scratch.ctx = ctx;
-        workers[i].scratch.engine = c->engine;
-        IDSI_TRY(idsi_workspace_init(&workers[i].scratch.work, ctx));
+        IDSI_TRY(idsi_scratch_init(&workers[i].scratch, c->engine));
     }
     for (uint32_t i = 1; i < count; i++) {
         if (pthread_create(&threads[i], NULL, work_in_thread, &workers[i]) != 0) {
@@ -160,9 +158,7 @@ static ids_status run_crew(crew *c)
     }
 done:
     for (uint32_t i = 0; workers != NULL && i < count; i++) {
-        if (workers[i].scratch.work.ctx != NULL) {
-            idsi_workspace_clear(&workers[i].scratch.work);
-        }
+        idsi_scratch_clear(&workers[i].scratch);
     }
     idsi_free(ctx, workers);
     idsi_free(ctx, threads);
@@ -172,21 +168,19 @@ done:
 static ids_status make_equations(idsi_partition_engine *engine, uint32_t degree)
 {
     ids_status st = IDS_OK;
-    idsi_scratch scratch = {.ctx = engine->ctx, .engine = engine};
+    idsi_scratch scratch = {0};
 
     if (engine->degree[degree].equations_made) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_workspace_init(&scratch.work, engine->ctx));
+    IDSI_TRY(idsi_scratch_init(&scratch, engine));
     uint32_t largest = largest_argument(engine, degree);
     for (uint32_t d = 1; d <= largest && d < degree; d++) {
         IDSI_TRY(idsi_generators_choose(&scratch, d));
     }
     IDSI_TRY(idsi_equations_make(engine, degree));
 done:
-    if (scratch.work.ctx != NULL) {
-        idsi_workspace_clear(&scratch.work);
-    }
+    idsi_scratch_clear(&scratch);
     return st;
 }
 
@@ -214,7 +208,7 @@ static ids_status learn_shares(idsi_partition_engine *engine, uint32_t degree, b
 {
     ids_status st = IDS_OK;
     idsi_degree *entry = &engine->degree[degree];
-    idsi_scratch scratch = {.ctx = engine->ctx, .engine = engine};
+    idsi_scratch scratch = {0};
     double *share = NULL;
     atomic_bool stop = false;
     size_t at = 0;
@@ -227,15 +221,13 @@ static ids_status learn_shares(idsi_partition_engine *engine, uint32_t degree, b
         engine->skews.list[shapes[at]]->count < PILOT_LEAST) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_workspace_init(&scratch.work, engine->ctx));
+    IDSI_TRY(idsi_scratch_init(&scratch, engine));
     IDSI_TRY(idsi_alloc_array(engine->ctx, entry->equation_count, sizeof *share, &share));
     IDSI_TRY(idsi_shape_solve(&scratch, shapes[at], basis, &stop, NULL, share));
     entry->share = share;
     share = NULL;
 done:
-    if (scratch.work.ctx != NULL) {
-        idsi_workspace_clear(&scratch.work);
-    }
+    idsi_scratch_clear(&scratch);
     idsi_free(engine->ctx, share);
     return st;
 }

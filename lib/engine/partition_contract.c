@@ -113,12 +113,13 @@ static ids_status make_value(idsi_scratch *s, uint32_t shape, uint32_t expr, ids
     uint32_t tableaux = engine->skews.list[shape]->count;
     uint32_t dimension = engine->spaces[shape].dimension;
     size_t entries = (size_t)dimension * tableaux;
+    idsi_scratch_mark mark = s->top;
     uint32_t *identity = NULL;
     uint32_t *values = NULL;
     idsi_left *made = NULL;
 
-    IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)tableaux * tableaux, sizeof *identity, &identity));
-    IDSI_TRY(idsi_alloc_array(s->ctx, entries, sizeof *values, &values));
+    IDSI_TRY(idsi_scratch_take_zero(s, (size_t)tableaux * tableaux, &identity));
+    IDSI_TRY(idsi_scratch_take(s, entries, &values));
     IDSI_TRY(idsi_alloc_array(s->ctx, 1, sizeof *made, &made));
     for (size_t i = 0; i < tableaux; i++) {
         identity[i * tableaux + i] = 1;
@@ -131,8 +132,7 @@ static ids_status make_value(idsi_scratch *s, uint32_t shape, uint32_t expr, ids
     *value = made;
     made = NULL;
 done:
-    idsi_free(s->ctx, identity);
-    idsi_free(s->ctx, values);
+    s->top = mark;
     idsi_free(s->ctx, made);
     return st;
 }
@@ -208,16 +208,17 @@ static ids_status apply_value(contraction *c, uint32_t piece, uint32_t expr,
     size_t dimension = engine->spaces[piece].dimension;
     const idsi_left *value = NULL;
     idsi_left *owned = NULL;
+    idsi_scratch_mark mark = s->top;
     uint32_t *product = NULL;
 
     IDSI_TRY(get_value(s, piece, expr, &value, &owned));
-    IDSI_TRY(idsi_alloc_array(s->ctx, dimension * rest * width, sizeof *product, &product));
+    IDSI_TRY(idsi_scratch_take_zero(s, dimension * rest * width, &product));
     idsi_left_mul_sub(&s->work, engine->prime, value, rest * width, gathered, rest * width,
                       product, rest * width);
     exchange_indices(product, rest, dimension, width, wide);
 done:
+    s->top = mark;
     free_value(s->ctx, owned);
-    idsi_free(s->ctx, product);
     return st;
 }
 
@@ -234,13 +235,14 @@ static ids_status peel(contraction *c, const idsi_cut *cut, bool upper, uint32_t
     size_t count = upper ? cut->high_count : cut->low_count;
     size_t rest = upper ? cut->low_count : cut->high_count;
     size_t dimension = engine->spaces[piece].dimension;
+    idsi_scratch_mark mark = s->top;
     uint32_t *gathered = NULL; /* count x rest x width */
     uint32_t *wide = NULL;     /* rest x dimension x width */
 
     if (dimension == 0) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_resize_array(s->ctx, count * rest * width, sizeof *gathered, &gathered));
+    IDSI_TRY(idsi_scratch_take(s, count * rest * width, &gathered));
     for (size_t i = 0; i < cut->low_count; i++) {
         const uint32_t *from = block + (size_t)cut->start[i] * width;
         if (upper) {
@@ -256,14 +258,12 @@ static ids_status peel(contraction *c, const idsi_cut *cut, bool upper, uint32_t
     if (is_letter(engine, expr)) {
         IDSI_TRY(contract(c, rest_shape, next_first, next_last, gathered, width));
     } else {
-        IDSI_TRY(
-            idsi_resize_array(s->ctx, rest * dimension * width, sizeof *wide, &wide));
+        IDSI_TRY(idsi_scratch_take(s, rest * dimension * width, &wide));
         IDSI_TRY(apply_value(c, piece, expr, gathered, rest, width, wide));
         IDSI_TRY(contract(c, rest_shape, next_first, next_last, wide, dimension * width));
     }
 done:
-    idsi_free(s->ctx, gathered);
-    idsi_free(s->ctx, wide);
+    s->top = mark;
     return st;
 }
 
@@ -274,6 +274,7 @@ static ids_status map_image(contraction *c, uint32_t shape, const uint32_t **ima
     idsi_scratch *s = c->s;
     const idsi_space *space = &s->engine->spaces[shape];
     idsi_maps *maps = c->maps;
+    idsi_scratch_mark mark = s->top;
     uint32_t *solution = NULL;
 
     for (size_t i = 0; i < maps->image_count; i++) {
@@ -289,8 +290,7 @@ static ids_status map_image(contraction *c, uint32_t shape, const uint32_t **ima
     maps->image_count++;
     IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)IDSI_MAP_COUNT * space->unknowns,
                               sizeof *made->values, &made->values));
-    IDSI_TRY(idsi_resize_array(s->ctx, (size_t)space->dimension * space->unknowns,
-                               sizeof *solution, &solution));
+    IDSI_TRY(idsi_scratch_take(s, (size_t)space->dimension * space->unknowns, &solution));
     for (size_t i = 0; i < space->dimension; i++) {
         idsi_left_row(&space->solution, s->engine->prime, i, solution + i * space->unknowns);
     }
@@ -299,7 +299,7 @@ static ids_status map_image(contraction *c, uint32_t shape, const uint32_t **ima
                        space->unknowns, made->values, space->unknowns);
     *image = made->values;
 done:
-    idsi_free(s->ctx, solution);
+    s->top = mark;
     return st;
 }
 
@@ -313,18 +313,18 @@ static ids_status core_maps(contraction *c, uint32_t shape, uint32_t expr, const
     const idsi_space *space = &engine->spaces[shape];
     size_t peeled = width / c->width;
     size_t unknowns = space->dimension * peeled;
+    idsi_scratch_mark mark = s->top;
     uint32_t *values = NULL;
     const uint32_t *image = NULL;
 
     if (peeled == 1 && !is_letter(engine, expr) && find_value(engine, shape, expr) == NULL) {
         IDSI_TRY(map_image(c, shape, &image));
-        IDSI_TRY(idsi_alloc_array(s->ctx, (size_t)space->unknowns * width, sizeof *values,
-                                  &values));
+        IDSI_TRY(idsi_scratch_take_zero(s, (size_t)space->unknowns * width, &values));
         IDSI_TRY(idsi_contract_product(s, shape, expr, block, width, values));
         idsi_dense_mul_sub(&s->work, engine->prime, IDSI_MAP_COUNT, width, space->unknowns, image,
                            space->unknowns, values, width, c->sums, width);
     } else {
-        IDSI_TRY(idsi_resize_array(s->ctx, unknowns * c->width, sizeof *values, &values));
+        IDSI_TRY(idsi_scratch_take(s, unknowns * c->width, &values));
         IDSI_TRY(idsi_contract_values(s, shape, expr, block, width, values));
         idsi_dense_mul_sub(&s->work, engine->prime, IDSI_MAP_COUNT, c->width, unknowns,
                            c->maps->values + c->at, c->maps->unknowns, values, c->width, c->sums,
@@ -332,7 +332,7 @@ static ids_status core_maps(contraction *c, uint32_t shape, uint32_t expr, const
     }
     c->at += (uint32_t)unknowns;
 done:
-    idsi_free(s->ctx, values);
+    s->top = mark;
     return st;
 }
 
@@ -429,6 +429,7 @@ ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t 
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = scratch->engine;
     const idsi_space *space = &engine->spaces[shape];
+    idsi_scratch_mark mark = scratch->top;
     uint32_t *product = NULL;
 
     if (is_letter(engine, expr)) {
@@ -441,12 +442,11 @@ ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t 
         idsi_left_mul_sub(&scratch->work, engine->prime, value, width, block, width, out, width);
         return IDS_OK;
     }
-    IDSI_TRY(idsi_alloc_array(scratch->ctx, (size_t)space->unknowns * width, sizeof *product,
-                              &product));
+    IDSI_TRY(idsi_scratch_take_zero(scratch, (size_t)space->unknowns * width, &product));
     IDSI_TRY(idsi_contract_product(scratch, shape, expr, block, width, product));
     idsi_left_mul_sub(&scratch->work, engine->prime, &space->solution, width, product, width, out,
                       width);
 done:
-    idsi_free(scratch->ctx, product);
+    scratch->top = mark;
     return st;
 }

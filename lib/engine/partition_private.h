@@ -146,16 +146,43 @@ void idsi_equations_clear(ids_ctx *ctx, idsi_degree *degree);
 /* Form of an expression among those of its degree; UINT32_MAX when it has none. */
 uint32_t idsi_form_find(const idsi_partition_engine *engine, const idsi_expr *expr);
 
-/* ---- partition_contract.c -------------------------------------------------------------------
- * A block of covectors on a Specht module has `tableaux` rows of `width` residues.
- */
+/* ---- partition_scratch.c ----------------------------------------------------------------- */
 
-/* Scratch of one thread. */
+#define IDSI_SCRATCH_CHUNKS 32u
+
+typedef struct idsi_scratch_chunk {
+    void *room;
+    char *start; /* of the room, aligned */
+    size_t size;
+} idsi_scratch_chunk;
+
+/* Where a thread's working memory ends. */
+typedef struct idsi_scratch_mark {
+    uint32_t chunk;
+    size_t used;
+} idsi_scratch_mark;
+
+/* What one thread works with. */
 typedef struct idsi_scratch {
     ids_ctx *ctx;
     idsi_partition_engine *engine;
     idsi_workspace work;
+    idsi_scratch_chunk chunks[IDSI_SCRATCH_CHUNKS];
+    idsi_scratch_mark top;
 } idsi_scratch;
+
+ids_status idsi_scratch_init(idsi_scratch *scratch, idsi_partition_engine *engine);
+void idsi_scratch_clear(idsi_scratch *scratch); /* also one that is all zeros */
+/*
+ * A block of residues, not cleared. It lasts until `top` is set back to what it was before; who
+ * takes blocks does so at the end.
+ */
+ids_status idsi_scratch_take(idsi_scratch *scratch, size_t entries, uint32_t **block);
+ids_status idsi_scratch_take_zero(idsi_scratch *scratch, size_t entries, uint32_t **block);
+
+/* ---- partition_contract.c -------------------------------------------------------------------
+ * A block of covectors on a Specht module has `tableaux` rows of `width` residues.
+ */
 
 /*
  * A few maps from F/I to the Specht module of a shape that is being solved, by their unknowns:

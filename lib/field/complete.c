@@ -43,7 +43,7 @@ static ids_status complete_panel(idsi_dense_echelon *e, size_t k, uint32_t *plac
     }
     for (size_t i = 0; i < at->used; i++) {
         for (size_t j = 0; j < e->width; j++) {
-            rows[i * e->width + j] = at->rows[i * at->width + place[e->column[j]]];
+            rows[i * e->width + j] = idsi_panel_entry(e, at, i, place[e->column[j]]);
         }
     }
     for (size_t later = k + 1; later < e->count; later++) {
@@ -51,7 +51,7 @@ static ids_status complete_panel(idsi_dense_echelon *e, size_t k, uint32_t *plac
         for (size_t i = 0; i < at->used; i++) {
             for (size_t j = 0; j < by->used; j++) {
                 uint32_t column = by->column[by->pivot[j]];
-                e->factor[i * by->used + j] = at->rows[i * at->width + place[column]];
+                e->factor[i * by->used + j] = idsi_panel_entry(e, at, i, place[column]);
             }
         }
         idsi_dense_mul_sub(&e->work, e->p, at->used, e->width, by->used, e->factor, by->used,
@@ -59,6 +59,9 @@ static ids_status complete_panel(idsi_dense_echelon *e, size_t k, uint32_t *plac
         IDSI_TRY(idsi_poll(e->ctx, NULL));
     }
     idsi_free(e->ctx, at->rows);
+    idsi_free(e->ctx, at->packed_room);
+    at->packed_room = NULL;
+    at->packed = NULL;
     at->rows = rows;
     made = NULL;
 done:

@@ -57,6 +57,7 @@ static void free_panel(ids_ctx *ctx, panel *old)
 {
     if (old != NULL) {
         idsi_free(ctx, old->rows);
+        idsi_free(ctx, old->packed_room);
         idsi_free(ctx, old->column);
         idsi_free(ctx, old);
     }
@@ -98,7 +99,8 @@ uint64_t idsi_dense_echelon_bytes(uint64_t columns, uint64_t rank)
     uint64_t panels = rank / PANEL + 1;
     uint64_t dropped = panels * (panels - 1) / 2 * PANEL; /* columns, over all panels */
     uint64_t kept = panels * columns > dropped ? panels * columns - dropped : 0;
-    return (kept * (PANEL + 1) + columns) * sizeof(uint32_t) + (UINT64_C(2) << 20);
+    /* and the last panel twice, while it is packed */
+    return (kept * (PANEL + 1) + (PANEL + 1) * columns) * sizeof(uint32_t) + (UINT64_C(2) << 20);
 }
 
 uint32_t idsi_dense_echelon_pivot(const idsi_dense_echelon *echelon, size_t i)
@@ -112,11 +114,12 @@ const uint32_t *idsi_dense_echelon_row(const idsi_dense_echelon *echelon, size_t
     const panel *from = echelon->panels[i / PANEL];
     const uint32_t *column = echelon->complete ? echelon->column : from->column;
     size_t width = echelon->complete ? echelon->width : from->width;
-    const uint32_t *row = from->rows + (i % PANEL) * width;
 
     memset(echelon->whole, 0, echelon->columns * sizeof *echelon->whole);
     for (size_t j = 0; j < width; j++) {
-        echelon->whole[column[j]] = row[j];
+        echelon->whole[column[j]] = echelon->complete
+                                        ? from->rows[(i % PANEL) * width + j]
+                                        : idsi_panel_entry(echelon, from, i % PANEL, j);
     }
     echelon->whole[idsi_dense_echelon_pivot(echelon, i)] = 1;
     return echelon->whole;
@@ -162,6 +165,28 @@ static ids_status clear_rows(idsi_dense_echelon *e, uint32_t *target, size_t tar
     }
     idsi_dense_mul_sub(&e->work, e->p, m, width, k, e->factor, k, source, source_stride, target,
                        target_stride);
+done:
+    return st;
+}
+
+/* Clears m <= PANEL rows at the pivots of a panel. */
+static ids_status clear_by_panel(idsi_dense_echelon *e, const panel *by, uint32_t *target,
+                                 size_t stride, size_t m)
+{
+    ids_status st = IDS_OK;
+
+    if (by->packed == NULL) {
+        return clear_rows(e, target, stride, m, by->rows, by->width, by->pivot, by->used,
+                          by->width);
+    }
+    IDSI_TRY(idsi_dense_prepare_products(e));
+    for (size_t i = 0; i < m; i++) {
+        for (size_t j = 0; j < PANEL; j++) {
+            e->factor[i * PANEL + j] = target[i * stride + by->pivot[j]];
+        }
+    }
+    idsi_dense_mul_sub_packed(&e->work, e->p, m, by->width, PANEL, e->factor, PANEL, by->packed,
+                              target, stride);
 done:
     return st;
 }
@@ -305,8 +330,27 @@ done:
     return st;
 }
 
+static ids_status pack_panel(idsi_dense_echelon *e, panel *full)
+{
+    ids_status st = IDS_OK;
+    size_t columns = (full->width + e->kernel->columns - 1) / e->kernel->columns *
+                     e->kernel->columns;
+    void *room = NULL;
+
+    IDSI_TRY(idsi_alloc(e->ctx, (PANEL * columns + 16u) * sizeof *full->packed, &room));
+    full->packed_room = room;
+    full->packed = idsi_kernel_align(room);
+    e->kernel->pack(e->p, PANEL, full->width, full->rows, full->width, e->kernel->columns,
+                    full->packed);
+    idsi_free(e->ctx, full->rows);
+    full->rows = NULL;
+done:
+    return st;
+}
+
 /* A panel has become full: the rest of the block, from row `from` on, loses its pivots. */
-static void close_panel(panel *full, block *b, size_t from, size_t count)
+static ids_status close_panel(idsi_dense_echelon *e, panel *full, block *b, size_t from,
+                              size_t count)
 {
     memcpy(full->dropped, full->pivot, sizeof full->dropped);
     qsort(full->dropped, PANEL, sizeof *full->dropped, compare_places);
@@ -319,6 +363,7 @@ static void close_panel(panel *full, block *b, size_t from, size_t count)
         b->pivot[i] -= below;
     }
     b->width -= PANEL;
+    return pack_panel(e, full);
 }
 
 /* Stores rows in reduced echelon form that are zero at all pivots; clears theirs in the panel. */
@@ -345,7 +390,7 @@ static ids_status store_rows(idsi_dense_echelon *e, block *b, size_t count)
         last->used += now;
         from += now;
         if (last->used == PANEL) {
-            close_panel(last, b, from, count - from);
+            IDSI_TRY(close_panel(e, last, b, from, count - from));
         }
     }
 done:
@@ -366,8 +411,7 @@ ids_status idsi_dense_echelon_add(idsi_dense_echelon *echelon, uint32_t *rows, s
         b.width = e->columns;
         for (size_t k = 0; k < e->count; k++) {
             const panel *by = e->panels[k];
-            IDSI_TRY(clear_rows(e, b.rows, b.stride, now, by->rows, by->width, by->pivot, by->used,
-                                by->width));
+            IDSI_TRY(clear_by_panel(e, by, b.rows, b.stride, now));
             if (by->used == PANEL) {
                 drop_columns(by, b.rows, b.stride, now);
                 b.width -= PANEL;

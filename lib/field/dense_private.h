@@ -31,6 +31,14 @@ void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, si
                         const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
                         size_t ldc);
 
+/*
+ * The same for a B that is packed as idsi_kernel says, in strips of the kernel's columns; k is a
+ * multiple of 16, at most 256.
+ */
+void idsi_dense_mul_sub_packed(idsi_workspace *work, uint32_t p, size_t m, size_t n, size_t k,
+                               const uint32_t *a, size_t lda, const int32_t *packed, uint32_t *c,
+                               size_t ldc);
+
 /* target = scale * target + factor * source mod p, entry by entry. */
 void idsi_dense_combine(uint32_t p, uint32_t *target, uint32_t scale, const uint32_t *source,
                         uint32_t factor, size_t count);

@@ -64,6 +64,14 @@ AVX2 static inline __m256i residues_of(__m256i x, const modulus *m)
     return remainder_of(less_once(x, m->square), m);
 }
 
+/* Brings a sum between -8 p^2 and 8 p^2 between half of them; back = 4 p^2. */
+AVX2 static inline __m256i bring_back(__m256i sum, __m256i back)
+{
+    __m256i negative = _mm256_cmpgt_epi64(_mm256_setzero_si256(), sum);
+    __m256i up = _mm256_and_si256(negative, _mm256_slli_epi64(back, 1));
+    return _mm256_add_epi64(_mm256_sub_epi64(sum, back), up);
+}
+
 AVX2 static void store(uint32_t p, __m256i sum[ROWS][2], uint32_t *c, size_t ldc, size_t m,
                        size_t n)
 {
@@ -98,7 +106,6 @@ multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_s
     __m256i sum[ROWS][2];
     __m256i zero = _mm256_setzero_si256();
     __m256i back = _mm256_set1_epi64x((int64_t)(4 * (uint64_t)p * p));
-    __m256i twice = _mm256_add_epi64(back, back);
 
     for (size_t i = 0; i < ROWS; i++) {
         sum[i][0] = zero;
@@ -120,9 +127,7 @@ multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_s
 #pragma GCC unroll 4
         for (size_t i = 0; i < ROWS; i++) {
             for (size_t j = 0; j < 2; j++) {
-                __m256i negative = _mm256_cmpgt_epi64(zero, sum[i][j]);
-                __m256i up = _mm256_and_si256(negative, twice);
-                sum[i][j] = _mm256_add_epi64(_mm256_sub_epi64(sum[i][j], back), up);
+                sum[i][j] = bring_back(sum[i][j], back);
             }
         }
     }
@@ -236,7 +241,8 @@ AVX2 static bool gather(uint32_t p, const idsi_entry *entries, size_t count,
     return _mm256_testz_si256(any, any) == 0;
 }
 
-AVX2 static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+AVX2 static uint32_t dot(uint32_t p, const uint32_t *a, size_t stride, const int32_t *b,
+                         size_t count)
 {
     modulus mod = modulus_of(p);
     __m256i back = _mm256_slli_epi64(mod.square, 2);
@@ -244,22 +250,23 @@ AVX2 static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_
     uint64_t lanes[4];
     size_t j = 0;
 
-    for (size_t steps = 1; j + 8 <= count; j += 8, steps++) {
-        __m256i x = _mm256_loadu_si256((const __m256i *)(const void *)(a + j));
+    for (size_t steps = 1; j + COLUMNS <= count; j += COLUMNS, steps++) {
+        const uint32_t *strip = a + j / COLUMNS * stride;
+        __m256i x = _mm256_loadu_si256((const __m256i *)(const void *)strip);
         __m256i y = _mm256_loadu_si256((const __m256i *)(const void *)(b + j));
-        sum[0] = _mm256_add_epi64(sum[0], _mm256_mul_epu32(x, y));
+        sum[0] = _mm256_add_epi64(sum[0], _mm256_mul_epi32(x, y));
         x = _mm256_srli_epi64(x, 32);
         y = _mm256_srli_epi64(y, 32);
-        sum[1] = _mm256_add_epi64(sum[1], _mm256_mul_epu32(x, y));
-        if (steps % 4 == 0) {
-            sum[0] = less_once(sum[0], back);
-            sum[1] = less_once(sum[1], back);
+        sum[1] = _mm256_add_epi64(sum[1], _mm256_mul_epi32(x, y));
+        for (size_t i = 0; steps % 8 == 0 && i < 2; i++) {
+            sum[i] = bring_back(sum[i], back);
         }
     }
-    __m256i both = _mm256_add_epi64(residues_of(less_once(sum[0], back), &mod),
-                                    residues_of(less_once(sum[1], back), &mod));
-    _mm256_storeu_si256((__m256i *)(void *)lanes, both);
-    uint64_t rest = idsi_kernel_portable.dot(p, a + j, b + j, count - j);
+    for (size_t i = 0; i < 2; i++) {
+        sum[i] = residues_of(_mm256_add_epi64(bring_back(sum[i], back), back), &mod);
+    }
+    _mm256_storeu_si256((__m256i *)(void *)lanes, _mm256_add_epi64(sum[0], sum[1]));
+    uint64_t rest = idsi_kernel_portable.dot(p, a + j / COLUMNS * stride, 0, b + j, count - j);
     return (uint32_t)((lanes[0] + lanes[1] + lanes[2] + lanes[3] + rest) % p);
 }
 

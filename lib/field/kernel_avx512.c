@@ -223,25 +223,30 @@ AVX512 static bool gather(uint32_t p, const idsi_entry *entries, size_t count,
     return _mm512_test_epi64_mask(all, all) != 0;
 }
 
-AVX512 static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+AVX512 static uint32_t dot(uint32_t p, const uint32_t *a, size_t stride, const int32_t *b,
+                           size_t count)
 {
     __m512i prime = _mm512_set1_epi64((int64_t)p);
     __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
     __m512d inverse = _mm512_set1_pd(1.0 / (double)p);
     __m512i sum[2] = {_mm512_setzero_si512(), _mm512_setzero_si512()};
 
-    for (size_t j = 0; j < count; j += 128) {
-        size_t end = j + 128 < count ? j + 128 : count;
-        for (size_t k = j; k < end; k += 16) {
-            __mmask16 mask = (__mmask16)(end - k >= 16 ? 0xffffu : (1u << (end - k)) - 1u);
-            __m512i x = _mm512_maskz_loadu_epi32(mask, a + k);
-            __m512i y = _mm512_maskz_loadu_epi32(mask, b + k);
-            sum[0] = _mm512_add_epi64(sum[0], _mm512_mul_epu32(x, y));
+    for (size_t j = 0; j < count;) {
+        /* 4 strips: 8 products in each place */
+        size_t end = j + 4 * COLUMNS < count ? j + 4 * COLUMNS : count;
+        for (; j < end; j += 16) {
+            __mmask16 mask = (__mmask16)(end - j >= 16 ? 0xffffu : (1u << (end - j)) - 1u);
+            __m512i x = _mm512_maskz_loadu_epi32(mask, a + j / COLUMNS * stride + j % COLUMNS);
+            __m512i y = _mm512_maskz_loadu_epi32(mask, b + j);
+            sum[0] = _mm512_add_epi64(sum[0], _mm512_mul_epi32(x, y));
             sum[1] = _mm512_add_epi64(
-                sum[1], _mm512_mul_epu32(_mm512_srli_epi64(x, 32), _mm512_srli_epi64(y, 32)));
+                sum[1], _mm512_mul_epi32(_mm512_srli_epi64(x, 32), _mm512_srli_epi64(y, 32)));
         }
-        sum[0] = bring_back(sum[0], back);
-        sum[1] = bring_back(sum[1], back);
+        for (size_t i = 0; i < 2; i++) {
+            __mmask8 negative = _mm512_movepi64_mask(sum[i]);
+            __m512i less = _mm512_sub_epi64(sum[i], back);
+            sum[i] = _mm512_mask_add_epi64(less, negative, sum[i], back);
+        }
     }
     __m512i both = _mm512_add_epi64(residues_of(sum[0], prime, inverse),
                                     residues_of(sum[1], prime, inverse));

@@ -109,19 +109,19 @@ static bool gather(uint32_t p, const idsi_entry *entries, size_t count, const ui
     return any != 0;
 }
 
-static uint32_t dot(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count)
+static uint32_t dot(uint32_t p, const uint32_t *a, size_t stride, const int32_t *b, size_t count)
 {
-    uint64_t sum = 0;
+    int64_t sum = 0;
 
-    for (size_t j = 0; j < count;) {
-        /* 8 products are below 2^63 */
-        size_t end = j + 8 < count ? j + 8 : count;
-        for (; j < end; j++) {
-            sum += (uint64_t)a[j] * b[j];
+    for (size_t j = 0; j < count; j += COLUMNS) {
+        const uint32_t *strip = a + j / COLUMNS * stride;
+        size_t end = count - j < COLUMNS ? count - j : COLUMNS;
+        for (size_t i = 0; i < end; i++) {
+            sum += (int64_t)(int32_t)strip[i] * b[j + i];
         }
-        sum %= p;
+        sum %= (int64_t)p;
     }
-    return (uint32_t)sum;
+    return (uint32_t)(sum < 0 ? sum + (int64_t)p : sum);
 }
 
 const idsi_kernel idsi_kernel_portable = {"portable", ROWS,   COLUMNS, strip,  left_strip,

@@ -15,6 +15,8 @@
  * |sum| <= 4 p^2 before, |sum| < 4 p^2 + 16 ((p-1)/2)^2 < 8 p^2 < 2^63 after 16 steps, and adding
  * or subtracting 4 p^2, whichever is towards zero, leaves |sum| <= 4 p^2.
  *
+ * Sums of products of a residue and a centred one are brought back after every 8 of them.
+ *
  * Vector units multiply the even 32-bit places of two registers. The odd places are shifted down,
  * so even and odd columns have sums of their own until they are stored side by side. The sums of
  * IDSI_LANES rows keep this order in memory: idsi_kernel_slot().
@@ -70,8 +72,11 @@ typedef struct idsi_kernel {
      */
     bool (*gather)(uint32_t p, const idsi_entry *entries, size_t count, const uint32_t *factors,
                    const uint64_t *sums, uint32_t *residues);
-    /* sum of a[j] b[j] mod p, of residues */
-    uint32_t (*dot)(uint32_t p, const uint32_t *a, const uint32_t *b, size_t count);
+    /*
+     * sum of a_j b_j mod p, j < count. The a_j are residues, or centred (as int32_t), in strips of
+     * `columns` that begin `stride` entries apart; the b_j are centred.
+     */
+    uint32_t (*dot)(uint32_t p, const uint32_t *a, size_t stride, const int32_t *b, size_t count);
 } idsi_kernel;
 
 /* The kernel for this processor. */

@@ -108,6 +108,7 @@ typedef struct product {
     size_t lda;
     const uint32_t *b;
     size_t ldb;
+    const int32_t *packed; /* B, when it is packed; NULL otherwise */
     uint32_t *c;
     size_t ldc;
     size_t share; /* columns, or with by_rows rows, of one task */
@@ -139,15 +140,20 @@ static void multiply(const product *pr)
 {
     const idsi_kernel *kernel = pr->kernel;
     int32_t *packed_a = idsi_kernel_align(pr->work->packed_a);
-    int32_t *packed_b = idsi_kernel_align(pr->work->packed_b);
+    int32_t *room = idsi_kernel_align(pr->work->packed_b);
 
     for (size_t jc = 0; jc < pr->n; jc += NC) {
         size_t nc = least(pr->n - jc, NC);
         for (size_t pc = 0; pc < pr->k; pc += KC) {
             size_t kc = least(pr->k - pc, KC);
             size_t steps = idsi_kernel_whole_steps(kc);
-            kernel->pack(pr->p, kc, nc, pr->b + pc * pr->ldb + jc, pr->ldb, kernel->columns,
-                         packed_b);
+            const int32_t *packed_b = room;
+            if (pr->packed != NULL) {
+                packed_b = pr->packed + jc * steps;
+            } else {
+                kernel->pack(pr->p, kc, nc, pr->b + pc * pr->ldb + jc, pr->ldb, kernel->columns,
+                             room);
+            }
             for (size_t ic = 0; ic < pr->m; ic += MC) {
                 size_t mc = least(pr->m - ic, MC);
                 pack_a(pr, mc, kc, steps, pr->a + ic * pr->lda + pc, packed_a);
@@ -179,28 +185,66 @@ static void multiply_share(void *user, uint32_t member, size_t task)
         pr.c += from * pr.ldc;
     } else {
         pr.n = least(pr.n - from, pr.share);
-        pr.b += from;
+        if (pr.packed != NULL) {
+            pr.packed += from * pr.k;
+        } else {
+            pr.b += from;
+        }
         pr.c += from;
     }
     multiply(&pr);
+}
+
+static void run(product *pr)
+{
+    uint32_t members = idsi_team_size(pr->work->team);
+
+    if (members == 1 || (double)pr->m * (double)pr->n * (double)pr->k < LEAST_SHARED) {
+        multiply(pr);
+        return;
+    }
+    pr->by_rows = pr->m > 2 * pr->n;
+    size_t length = pr->by_rows ? pr->m : pr->n;
+    size_t unit = pr->by_rows ? MC : 64u;
+    size_t units = (length + unit - 1) / unit;
+    size_t tasks = least(units, members * SHARES);
+    pr->share = (units + tasks - 1) / tasks * unit;
+    idsi_team_run(pr->work->team, (length + pr->share - 1) / pr->share, multiply_share, pr);
 }
 
 void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, size_t k,
                         const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
                         size_t ldc)
 {
-    product pr = {work, idsi_kernel_choose(), p, m, n, k, a, lda, b, ldb, c, ldc, 0, false};
-    uint32_t members = idsi_team_size(work->team);
+    product pr = {.work = work,
+                  .kernel = idsi_kernel_choose(),
+                  .p = p,
+                  .m = m,
+                  .n = n,
+                  .k = k,
+                  .a = a,
+                  .lda = lda,
+                  .b = b,
+                  .ldb = ldb,
+                  .c = c,
+                  .ldc = ldc};
+    run(&pr);
+}
 
-    if (members == 1 || (double)m * (double)n * (double)k < LEAST_SHARED) {
-        multiply(&pr);
-        return;
-    }
-    pr.by_rows = m > 2 * n;
-    size_t length = pr.by_rows ? m : n;
-    size_t unit = pr.by_rows ? MC : 64u;
-    size_t units = (length + unit - 1) / unit;
-    size_t tasks = least(units, members * SHARES);
-    pr.share = (units + tasks - 1) / tasks * unit;
-    idsi_team_run(work->team, (length + pr.share - 1) / pr.share, multiply_share, &pr);
+void idsi_dense_mul_sub_packed(idsi_workspace *work, uint32_t p, size_t m, size_t n, size_t k,
+                               const uint32_t *a, size_t lda, const int32_t *packed, uint32_t *c,
+                               size_t ldc)
+{
+    product pr = {.work = work,
+                  .kernel = idsi_kernel_choose(),
+                  .p = p,
+                  .m = m,
+                  .n = n,
+                  .k = k,
+                  .a = a,
+                  .lda = lda,
+                  .packed = packed,
+                  .c = c,
+                  .ldc = ldc};
+    run(&pr);
 }
