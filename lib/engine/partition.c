@@ -308,6 +308,7 @@ ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t p
 {
     ids_status st = IDS_OK;
     idsi_partition_engine *made = NULL;
+    uint32_t inverse[IDSI_DISTANCE_MAX + 1] = {0};
 
     if (top > IDSI_SHAPE_MAX || prime <= 2 * IDSI_SHAPE_MAX) {
         return idsi_fail(ctx, IDS_ERR_LIMIT,
@@ -322,9 +323,10 @@ ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t p
     made->top = top;
     pthread_mutex_init(&made->lock, NULL);
     idsi_random_seed(&made->random, prime);
-    for (uint32_t d = 1; d <= 2 * IDSI_SHAPE_MAX; d++) {
-        made->inverse[d] = idsi_mod_inverse(d, prime);
+    for (uint32_t d = 1; d <= (uint32_t)IDSI_DISTANCE_MAX; d++) {
+        inverse[d] = idsi_mod_inverse(d, prime);
     }
+    idsi_seminormal_init(&made->seminormal, prime, inverse);
     idsi_skews_init(&made->skews, ctx);
     IDSI_TRY(idsi_plan_forms(made));
     IDSI_TRY(idsi_plan_shapes(made));

@@ -103,7 +103,7 @@ typedef struct idsi_partition_engine {
     double share_from; /* progress is reported from here on, */
     double share_part; /* and this far: parts of a longer work; 0 and 1 unless set */
     idsi_random random;
-    uint32_t inverse[2 * IDSI_SHAPE_MAX + 1];
+    idsi_seminormal seminormal;
     idsi_skews skews;
     size_t space_count;
     idsi_space *spaces; /* one a shape that was known when planning ended */

@@ -13,7 +13,7 @@
  * is nearly the same share of the tableaux for all shapes of a degree; a shape of middle size is
  * solved first to learn the shares.
  *
- * An equation that is expected to add nothing is tested before it is used: two random maps that
+ * An equation that may well add nothing is tested before it is used: two random maps that
  * satisfy all equations so far are evaluated on z, against a few covectors. If z still had
  * something to add, all values would vanish with probability at most 1/p^2 + 1/p^PROBE, about. A
  * test is much cheaper than a block, because two maps are evaluated and not a basis. All tests of a
@@ -28,6 +28,8 @@
 #include "partition_private.h"
 
 #define PROBE 16u
+/* Equations that should add fewer rows are tested first. */
+#define TESTED_ROWS 16u
 #define BATCH 96u
 /* Rows beyond what is expected: a few, and a share. */
 #define SPARE_ROWS 4u
@@ -177,13 +179,13 @@ done:
     return st;
 }
 
-/* Rows that an equation is expected to add, with some to spare; 0: it may well add nothing. */
+/* Rows that an equation is expected to add, with some to spare; 0 when nothing is known. */
 static size_t expected_rows(const solver *v, size_t equation)
 {
     double rows = v->share == NULL
                       ? 0
                       : v->share[equation] * v->engine->skews.list[v->shape]->count;
-    return rows < 1 ? 0 : (size_t)(rows * (1 + SPARE_SHARE)) + SPARE_ROWS;
+    return (size_t)(rows * (1 + SPARE_SHARE)) + (rows < 1 ? 0 : SPARE_ROWS);
 }
 
 static ids_status use_equations(solver *v)
@@ -200,7 +202,7 @@ static ids_status use_equations(solver *v)
         size_t before = idsi_dense_echelon_rank(v->echelon);
         size_t expected = expected_rows(v, i);
         bool more = true;
-        if (testing && expected == 0) {
+        if (testing && expected < TESTED_ROWS) {
             if (maps.values == NULL) {
                 IDSI_TRY(draw_maps(v, &maps));
             }

@@ -107,7 +107,6 @@ done:
 ids_status idsi_words_get(idsi_words *words, const idsi_term *term, const uint32_t **block)
 {
     ids_status st = IDS_OK;
-    const idsi_partition_engine *engine = words->engine;
     size_t length = 0;
     size_t place = 0;
     size_t source = longest_beginning(words, term, &length);
@@ -122,10 +121,8 @@ ids_status idsi_words_get(idsi_words *words, const idsi_term *term, const uint32
     if (to != from) {
         memcpy(to, from, (size_t)words->skew->count * words->width * sizeof *to);
     }
-    for (size_t i = length; i < term->word_length; i++) {
-        idsi_seminormal_exchange(words->skew, term->word[i], engine->prime, engine->inverse, to,
-                                 words->width);
-    }
+    idsi_seminormal_apply(&words->engine->seminormal, words->skew, term->word + length,
+                          term->word_length - length, to, words->width);
     words->moved[place].term = term;
     *block = to;
 done:

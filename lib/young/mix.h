@@ -25,7 +25,8 @@ typedef struct idsi_mix {
 /*
  * What an exchange does to each of `count` tableaux: partner[t] == t keeps it, with its sign changed
  * when distance[t] < 0; partner[t] > t makes (t, partner[t]) a pair for mix[distance[t] + centre].
- * The block has a row of `width` residues for each tableau.
+ * The block has a row for each tableau, `stride` residues from the last; the first `width` of them
+ * are changed.
  */
 typedef struct idsi_exchange {
     uint32_t p;
@@ -36,12 +37,16 @@ typedef struct idsi_exchange {
     int centre;
 } idsi_exchange;
 
-typedef void (*idsi_exchange_fn)(const idsi_exchange *exchange, uint32_t *block, size_t width);
+typedef void (*idsi_exchange_fn)(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                                 size_t width);
 
-void idsi_exchange_portable(const idsi_exchange *exchange, uint32_t *block, size_t width);
+void idsi_exchange_portable(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                             size_t width);
 #if defined(__x86_64__)
-void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t width);
-void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t width);
+void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                         size_t width);
+void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                           size_t width);
 #endif
 
 /* f u mod p, plus 0 or p (Shoup's multiplication by a constant): below 2p. */

@@ -48,14 +48,15 @@ AVX2 static inline void mix_rows(const idsi_mix *mix, uint32_t *x, uint32_t *y, 
     }
 }
 
-AVX2 void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t width)
+AVX2 void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                             size_t width)
 {
     for (size_t t = 0; t < exchange->count; t++) {
         size_t partner = exchange->partner[t];
-        uint32_t *row = block + t * width;
+        uint32_t *row = block + t * stride;
         if (partner > t) {
             mix_rows(&exchange->mix[exchange->distance[t] + exchange->centre], row,
-                     block + partner * width, width);
+                     block + partner * stride, width);
         } else if (partner == t && exchange->distance[t] < 0) {
             for (size_t j = 0; j < width; j++) {
                 row[j] = idsi_mix_negate(row[j], exchange->p);

@@ -61,15 +61,16 @@ AVX512 static inline void negate_row(uint32_t p, uint32_t *x, size_t width)
     }
 }
 
-AVX512 void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t width)
+AVX512 void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                                 size_t width)
 {
     for (size_t t = 0; t < exchange->count; t++) {
         size_t partner = exchange->partner[t];
         if (partner > t) {
-            mix_rows(&exchange->mix[exchange->distance[t] + exchange->centre], block + t * width,
-                     block + partner * width, width);
+            mix_rows(&exchange->mix[exchange->distance[t] + exchange->centre], block + t * stride,
+                     block + partner * stride, width);
         } else if (partner == t && exchange->distance[t] < 0) {
-            negate_row(exchange->p, block + t * width, width);
+            negate_row(exchange->p, block + t * stride, width);
         }
     }
 }

@@ -4,12 +4,13 @@
  */
 #include "mix.h"
 
-void idsi_exchange_portable(const idsi_exchange *exchange, uint32_t *block, size_t width)
+void idsi_exchange_portable(const idsi_exchange *exchange, uint32_t *block, size_t stride,
+                            size_t width)
 {
     for (size_t t = 0; t < exchange->count; t++) {
         size_t partner = exchange->partner[t];
-        uint32_t *x = block + t * width;
-        uint32_t *y = block + partner * width;
+        uint32_t *x = block + t * stride;
+        uint32_t *y = block + partner * stride;
         const idsi_mix *mix = &exchange->mix[exchange->distance[t] + exchange->centre];
 
         for (size_t j = 0; partner > t && j < width; j++) {

@@ -13,11 +13,9 @@
  * basis vector. It needs p larger than all |d|. (Young 1931; for skew shapes Ram, "Skew shape
  * representations are irreducible", 1998.)
  */
-#include "mix.h"
 #include "skew_private.h"
 
-/* Contents differ by no more. */
-#define FARTHEST (2 * (int)IDSI_SHAPE_MAX)
+#define COLUMNS 32u
 
 static inline uint32_t mul(uint32_t a, uint32_t b, uint32_t p)
 {
@@ -54,25 +52,32 @@ static idsi_mix constants(int d, uint32_t p, const uint32_t *inverse)
     return mix;
 }
 
-void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
-                              const uint32_t *inverse, uint32_t *block, size_t width)
+void idsi_seminormal_init(idsi_seminormal *seminormal, uint32_t p, const uint32_t *inverse)
 {
-    idsi_mix mix[2 * FARTHEST + 1]; /* by distance + FARTHEST */
-    bool known[2 * FARTHEST + 1] = {false};
-    idsi_exchange exchange = {.p = p,
-                              .count = skew->count,
-                              .partner = skew->swap + (size_t)i * skew->count,
-                              .distance = skew->distance + (size_t)i * skew->count,
-                              .mix = mix,
-                              .centre = FARTHEST};
+    seminormal->p = p;
+    for (int d = 1; d <= IDSI_DISTANCE_MAX; d++) {
+        seminormal->mix[IDSI_DISTANCE_MAX + d] = constants(d, p, inverse);
+        seminormal->mix[IDSI_DISTANCE_MAX - d] = constants(-d, p, inverse);
+    }
+}
 
-    /* The tableau that comes first of a pair has i in a higher row: they stand in this order. */
-    for (uint32_t t = 0; t < skew->count; t++) {
-        int d = exchange.distance[t];
-        if (exchange.partner[t] > t && !known[d + FARTHEST]) {
-            mix[d + FARTHEST] = constants(d, p, inverse);
-            known[d + FARTHEST] = true;
+void idsi_seminormal_apply(const idsi_seminormal *seminormal, const idsi_skew *skew,
+                           const uint8_t *word, size_t length, uint32_t *block, size_t width)
+{
+    idsi_exchange_fn run = choose_exchange();
+
+    /* Some columns after the others, so that they stay in the cache for the whole word. */
+    for (size_t from = 0; from < width; from += COLUMNS) {
+        size_t columns = width - from < COLUMNS ? width - from : COLUMNS;
+        for (size_t i = 0; i < length; i++) {
+            /* The tableau that comes first of a pair has the label in a higher row. */
+            idsi_exchange exchange = {.p = seminormal->p,
+                                      .count = skew->count,
+                                      .partner = skew->swap + (size_t)word[i] * skew->count,
+                                      .distance = skew->distance + (size_t)word[i] * skew->count,
+                                      .mix = seminormal->mix,
+                                      .centre = IDSI_DISTANCE_MAX};
+            run(&exchange, block + from, width, columns);
         }
     }
-    choose_exchange()(&exchange, block, width);
 }

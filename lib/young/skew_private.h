@@ -6,9 +6,12 @@
 #define IDSI_SKEW_PRIVATE_H
 
 #include "../core/core_private.h"
+#include "mix.h"
 
 /* Most rows and cells of a shape. */
 #define IDSI_SHAPE_MAX 16u
+/* No two contents differ by more. */
+#define IDSI_DISTANCE_MAX (2 * (int)IDSI_SHAPE_MAX - 1)
 
 /* A shape outer/inner, moved as far up and left as it goes; rows without cells between remain. */
 typedef struct idsi_shape {
@@ -62,11 +65,21 @@ ids_status idsi_skews_get(idsi_skews *skews, const uint8_t *outer, const uint8_t
 /* Fills the cuts of a shape at `at` cells, 0 < at < cells. Their order is that of the middles. */
 ids_status idsi_skews_cut(idsi_skews *skews, uint32_t number, uint32_t at);
 
+/* Constants of the seminormal form mod p. */
+typedef struct idsi_seminormal {
+    uint32_t p;
+    idsi_mix mix[2 * IDSI_DISTANCE_MAX + 1]; /* by distance + IDSI_DISTANCE_MAX; 0 is unused */
+} idsi_seminormal;
+
+/* inverse[d] is the inverse of d mod p, for 0 < d <= IDSI_DISTANCE_MAX below p. */
+void idsi_seminormal_init(idsi_seminormal *seminormal, uint32_t p, const uint32_t *inverse);
+
 /*
- * Transposed action of the exchange of i+1 and i+2 (0 <= i < cells-1) on covectors: block has
- * `count` rows of `width` residues. inverse[d] is the inverse of d mod p for 0 < d < 2 * max.
+ * Transposed action on covectors of the exchanges of i+1 and i+2, 0 <= i < cells-1, for the i of a
+ * word, from left to right: block has `count` rows of `width` residues. All distances of contents
+ * in the shape must be less than p.
  */
-void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
-                              const uint32_t *inverse, uint32_t *block, size_t width);
+void idsi_seminormal_apply(const idsi_seminormal *seminormal, const idsi_skew *skew,
+                           const uint8_t *word, size_t length, uint32_t *block, size_t width);
 
 #endif

@@ -23,22 +23,25 @@
 typedef struct form {
     idsi_skews skews;
     uint32_t p;
-    uint32_t inverse[2 * IDSI_SHAPE_MAX + 1];
+    idsi_seminormal seminormal;
 } form;
 
 static void open_form(form *f, ids_ctx *ctx, uint32_t p)
 {
+    uint32_t inverse_of[IDSI_DISTANCE_MAX + 1] = {0};
+
     memset(f, 0, sizeof *f);
     idsi_skews_init(&f->skews, ctx);
     f->p = p;
-    for (uint32_t d = 1; d <= 2 * IDSI_SHAPE_MAX; d++) {
+    for (uint32_t d = 1; d <= IDSI_DISTANCE_MAX; d++) {
         uint64_t inverse = 1; /* d^(p-2) */
         uint64_t base = d;
         for (uint32_t e = p - 2; e > 0; e /= 2, base = base * base % p) {
             inverse = e % 2 == 1 ? inverse * base % p : inverse;
         }
-        f->inverse[d] = (uint32_t)inverse;
+        inverse_of[d] = (uint32_t)inverse;
     }
+    idsi_seminormal_init(&f->seminormal, p, inverse_of);
 }
 
 /* Matrix of a word in exchanges, transposed: f x f. */
@@ -51,9 +54,7 @@ static uint32_t *word_matrix(form *f, const idsi_skew *skew, const uint8_t *word
     for (size_t t = 0; t < count; t++) {
         matrix[t * count + t] = 1;
     }
-    for (size_t i = 0; i < length; i++) {
-        idsi_seminormal_exchange(skew, word[i], f->p, f->inverse, matrix, count);
-    }
+    idsi_seminormal_apply(&f->seminormal, skew, word, length, matrix, count);
     return matrix;
 }
 
@@ -290,7 +291,7 @@ static void check_exchange(idsi_exchange_fn run, const idsi_mix *mix, const uint
         memcpy(block + t * width, t < 2 ? x : y, width * sizeof *x);
     }
     block[4 * width] = 12345;
-    run(&exchange, block, width);
+    run(&exchange, block, width, width);
     for (size_t j = 0; j < width; j++) {
         uint64_t u = x[j];
         uint64_t v = y[j];
