@@ -7,6 +7,7 @@
  * random covectors, a block at a time. When a block of B covectors adds B-2 or fewer independent
  * equations, z is used up: if z still had something to add, so low a yield would have probability
  * at most 2/p^2 (two of B random vectors would lie in a space that the others do not fill).
+ * The rows of a wide block are eliminated few by few, and what follows such few is left out.
  *
  * Cheap equations come first and are used up before the next ones are touched. Rows that add
  * nothing cost as much as those that do, so a block should be as wide as what z has to add. That
@@ -31,6 +32,10 @@
 /* Equations that should add fewer rows are tested first. */
 #define TESTED_ROWS 16u
 #define BATCH 96u
+/* Covectors come in multiples of so many, for the sake of the cache; BATCH is a multiple. */
+#define LINE 16u
+/* Rows that are eliminated at a time: two strips of the kernels. */
+#define FEED 12u
 /* Rows beyond what is expected: a few, and a share. */
 #define SPARE_ROWS 4u
 #define SPARE_SHARE 0.06
@@ -46,7 +51,6 @@ typedef struct solver {
     uint32_t *product; /* unknowns x width: of one term, zeros in between */
     uint32_t *sum;     /* unknowns x width: of the terms so far */
     uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
-    bool independent[BATCH];
     const atomic_bool *stop; /* set when another thread failed */
     const double *share;     /* expected; NULL: nothing is known */
     double *shown;           /* the share that each equation had here; NULL: not wanted */
@@ -113,23 +117,41 @@ static bool is_done(const solver *v)
            atomic_load(v->stop);
 }
 
+/*
+ * Adds the rows to the echelon form, some after the others, until some add nothing to speak of:
+ * then *more is false.
+ */
+static ids_status add_rows(solver *v, size_t width, bool *more)
+{
+    ids_status st = IDS_OK;
+    size_t unknowns = v->engine->spaces[v->shape].unknowns;
+
+    *more = true;
+    for (size_t from = 0; *more && from < width; from += FEED) {
+        size_t count = width - from < FEED ? width - from : FEED;
+        size_t before = idsi_dense_echelon_rank(v->echelon);
+        IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows + from * unknowns, count, NULL));
+        *more = idsi_dense_echelon_rank(v->echelon) - before + 2 > count;
+    }
+done:
+    return st;
+}
+
 /* Uses an equation in blocks until it has nothing to add; `expected` rows are worth taking. */
 static ids_status drain_equation(solver *v, const idsi_equation *equation, size_t expected)
 {
     ids_status st = IDS_OK;
     size_t used = 0;
+    bool more = true;
 
-    while (!is_done(v)) {
-        size_t before = idsi_dense_echelon_rank(v->echelon);
+    while (more && !is_done(v)) {
         size_t width = expected > used ? expected - used : used / 2;
         width = width < PROBE ? PROBE : width;
         width = width > BATCH ? BATCH : width;
+        width = (width + LINE - 1) / LINE * LINE;
         IDSI_TRY(use_equation(v, equation, width));
-        IDSI_TRY(idsi_dense_echelon_add(v->echelon, v->rows, width, v->independent));
+        IDSI_TRY(add_rows(v, width, &more));
         used += width;
-        if (idsi_dense_echelon_rank(v->echelon) - before + 2 <= width) {
-            break;
-        }
     }
 done:
     return st;
