@@ -208,10 +208,14 @@ done:
     return st;
 }
 
-static int compare_words(const void *a, const void *b)
+/* By expression, then by word. */
+static int compare_terms(const void *a, const void *b)
 {
     const idsi_term *x = a;
     const idsi_term *y = b;
+    if (x->expr != y->expr) {
+        return x->expr < y->expr ? -1 : 1;
+    }
     if (x->word_length != y->word_length) {
         return x->word_length < y->word_length ? -1 : 1;
     }
@@ -235,7 +239,7 @@ static ids_status store_equation(maker *m)
     }
     equation->count = kept;
     if (kept > 0) {
-        qsort(equation->terms, kept, sizeof *equation->terms, compare_words);
+        qsort(equation->terms, kept, sizeof *equation->terms, compare_terms);
         for (size_t i = 0; i < kept; i++) {
             const idsi_expr *expr = &m->engine->exprs[equation->terms[i].expr];
             uint32_t largest = 1;

@@ -40,7 +40,10 @@ typedef struct idsi_term {
     uint8_t *word;
 } idsi_term;
 
-/* A linear combination of monomials that every map must send to zero. Terms of one word adjoin. */
+/*
+ * A linear combination of monomials that every map must send to zero. Terms of one expression
+ * adjoin.
+ */
 typedef struct idsi_equation {
     size_t count;
     idsi_term *terms;

@@ -48,6 +48,7 @@ typedef struct solver {
     idsi_dense_echelon *echelon;
     idsi_words words;  /* covectors for the equations that are used */
     idsi_words probes; /* covectors for tests */
+    uint32_t *gathered; /* tableaux x width: covectors of several terms, added up */
     uint32_t *product; /* unknowns x width: of one term, zeros in between */
     uint32_t *sum;     /* unknowns x width: of the terms so far */
     uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
@@ -61,6 +62,7 @@ static void clear_solver(solver *v)
     idsi_dense_echelon_free(v->echelon);
     idsi_words_clear(&v->words);
     idsi_words_clear(&v->probes);
+    idsi_free(v->s->ctx, v->gathered);
     idsi_free(v->s->ctx, v->product);
     idsi_free(v->s->ctx, v->sum);
     idsi_free(v->s->ctx, v->rows);
@@ -81,6 +83,44 @@ static void turn_sums(const solver *v, size_t width)
     }
 }
 
+/*
+ * The covectors for the terms of an equation from number *t on that have one expression, added up,
+ * since values are linear in the covectors. They are to be multiplied by *coefficient. *t goes to
+ * the next expression.
+ */
+static ids_status gather_terms(solver *v, idsi_words *words, const idsi_equation *equation,
+                               size_t *t, const uint32_t **block, uint32_t *coefficient)
+{
+    ids_status st = IDS_OK;
+    size_t entries = (size_t)words->skew->count * words->width;
+    uint32_t p = v->engine->prime;
+    size_t first = *t;
+    size_t end = first;
+
+    while (end < equation->count && equation->terms[end].expr == equation->terms[first].expr) {
+        end++;
+    }
+    *t = end;
+    *coefficient = 1;
+    if (end == first + 1) {
+        *coefficient = equation->terms[first].coefficient;
+        return idsi_words_get(words, &equation->terms[first], block);
+    }
+    for (size_t i = first; i < end; i++) {
+        const uint32_t *moved = NULL;
+        IDSI_TRY(idsi_words_get(words, &equation->terms[i], &moved));
+        if (i == first) {
+            memcpy(v->gathered, moved, entries * sizeof *moved);
+            idsi_dense_combine(p, v->gathered, equation->terms[i].coefficient, moved, 0, entries);
+        } else {
+            idsi_dense_combine(p, v->gathered, 1, moved, equation->terms[i].coefficient, entries);
+        }
+    }
+    *block = v->gathered;
+done:
+    return st;
+}
+
 /* One block of covectors for one equation, into the rows. */
 static ids_status use_equation(solver *v, const idsi_equation *equation, size_t width)
 {
@@ -90,19 +130,20 @@ static ids_status use_equation(solver *v, const idsi_equation *equation, size_t 
 
     memset(v->sum, 0, width * space->unknowns * sizeof *v->sum);
     idsi_words_draw(&v->words, &v->random, width);
-    for (size_t t = 0; t < equation->count; t++) {
-        const idsi_term *term = &equation->terms[t];
+    for (size_t t = 0; t < equation->count;) {
+        uint32_t expr = equation->terms[t].expr;
+        uint32_t coefficient = 0;
         const uint32_t *block = NULL;
-        uint32_t form = idsi_form_find(engine, &engine->exprs[term->expr]);
+        uint32_t form = idsi_form_find(engine, &engine->exprs[expr]);
         if (form == UINT32_MAX || space->offset[form] == space->offset[form + 1]) {
+            t++;
             continue;
         }
-        IDSI_TRY(idsi_words_get(&v->words, term, &block));
-        IDSI_TRY(idsi_contract_product(v->s, v->shape, term->expr, block, width, v->product));
+        IDSI_TRY(gather_terms(v, &v->words, equation, &t, &block, &coefficient));
+        IDSI_TRY(idsi_contract_product(v->s, v->shape, expr, block, width, v->product));
         size_t from = space->offset[form] * width;
         size_t count = space->offset[form + 1] * width - from;
-        idsi_dense_combine(engine->prime, v->sum + from, 1, v->product + from, term->coefficient,
-                           count);
+        idsi_dense_combine(engine->prime, v->sum + from, 1, v->product + from, coefficient, count);
         memset(v->product + from, 0, count * sizeof *v->product);
     }
     turn_sums(v, width);
@@ -182,14 +223,15 @@ static ids_status test_equation(solver *v, const idsi_equation *equation, idsi_m
     idsi_partition_engine *engine = v->engine;
     uint64_t total[IDSI_MAP_COUNT * PROBE] = {0};
 
-    for (size_t t = 0; t < equation->count; t++) {
-        const idsi_term *term = &equation->terms[t];
+    for (size_t t = 0; t < equation->count;) {
+        uint32_t expr = equation->terms[t].expr;
+        uint32_t coefficient = 0;
         uint32_t sums[IDSI_MAP_COUNT * PROBE] = {0};
         const uint32_t *block = NULL;
-        IDSI_TRY(idsi_words_get(&v->probes, term, &block));
-        IDSI_TRY(idsi_contract_maps(v->s, v->shape, term->expr, block, PROBE, maps, sums));
+        IDSI_TRY(gather_terms(v, &v->probes, equation, &t, &block, &coefficient));
+        IDSI_TRY(idsi_contract_maps(v->s, v->shape, expr, block, PROBE, maps, sums));
         for (size_t i = 0; i < IDSI_MAP_COUNT * PROBE; i++) {
-            total[i] = (total[i] + (uint64_t)term->coefficient * sums[i]) % engine->prime;
+            total[i] = (total[i] + (uint64_t)coefficient * sums[i]) % engine->prime;
         }
     }
     *more = false;
@@ -283,7 +325,7 @@ static ids_status check_budget(const idsi_partition_engine *engine, uint32_t sha
     uint64_t unknowns = engine->spaces[shape].unknowns;
     uint64_t tableaux = engine->skews.list[shape]->count;
     ids_memory memory = ids_ctx_memory(engine->ctx);
-    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + BATCH * (3 * unknowns + 7 * tableaux));
+    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + BATCH * (3 * unknowns + 8 * tableaux));
     uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
 
     if (memory.budget == 0 || need <= left) {
@@ -320,6 +362,8 @@ static ids_status solve_unknowns(solver *v, bool basis)
     IDSI_TRY(idsi_words_init(&v->words, v->s, v->shape, BATCH));
     IDSI_TRY(idsi_words_init(&v->probes, v->s, v->shape, PROBE));
     idsi_words_draw(&v->probes, &v->random, PROBE);
+    IDSI_TRY(idsi_resize_array(ctx, (size_t)v->words.skew->count * BATCH, sizeof *v->gathered,
+                               &v->gathered));
     IDSI_TRY(idsi_alloc_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->product,
                               &v->product));
     IDSI_TRY(idsi_resize_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->sum, &v->sum));
