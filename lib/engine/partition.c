@@ -12,7 +12,7 @@
 
 /* The shape that is solved first has so many tableaux at least, and this part of the most. */
 #define PILOT_LEAST 40u
-#define PILOT_RATIO 6u
+#define PILOT_RATIO 3u
 
 /* ---- one degree -------------------------------------------------------------------------- */
 

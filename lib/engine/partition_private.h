@@ -79,7 +79,7 @@ typedef struct idsi_degree {
     size_t equation_count;
     idsi_equation *equations;
     bool equations_made;
-    double *share; /* of each equation: rank it added / tableaux, in a shape that was solved first */
+    double *share; /* of each equation: rank it added / tableaux, in the shape solved first */
     size_t generator_count; /* expressions that generate F(d)/I(d) as S_d-module */
     uint32_t *generators;
     bool generators_made;

@@ -30,7 +30,7 @@
 
 #define PROBE 16u
 /* Equations that should add fewer rows are tested first. */
-#define TESTED_ROWS 16u
+#define TESTED_ROWS 8u
 #define BATCH 96u
 /* Covectors come in multiples of so many, for the sake of the cache; BATCH is a multiple. */
 #define LINE 16u
@@ -325,7 +325,8 @@ static ids_status check_budget(const idsi_partition_engine *engine, uint32_t sha
     uint64_t unknowns = engine->spaces[shape].unknowns;
     uint64_t tableaux = engine->skews.list[shape]->count;
     ids_memory memory = ids_ctx_memory(engine->ctx);
-    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + BATCH * (3 * unknowns + 8 * tableaux));
+    uint64_t blocks = BATCH * (3 * unknowns + 8 * tableaux);
+    uint64_t need = sizeof(uint32_t) * (unknowns * unknowns + blocks);
     uint64_t left = memory.budget > memory.live ? memory.budget - memory.live : 0;
 
     if (memory.budget == 0 || need <= left) {
@@ -344,8 +345,9 @@ double idsi_shape_error(const idsi_partition_engine *engine, uint32_t shape)
 {
     uint32_t degree = engine->skews.list[shape]->shape.cells;
     double p = engine->prime;
+    double equations = (double)engine->degree[degree].equation_count;
     /* Every equation is given up once; every block before that added a row at least. */
-    double blocks = (double)engine->degree[degree].equation_count + engine->spaces[shape].unknowns;
+    double blocks = equations > 0 ? equations + engine->spaces[shape].unknowns : 0;
 
     return 2.0 * blocks / (p * p);
 }

@@ -58,8 +58,8 @@ typedef struct idsi_kernel {
     /* Centres residues. */
     void (*centre)(uint32_t p, const uint32_t *values, size_t count, int32_t *out);
     /*
-     * Packs k x n of B into strips of `width` columns, a multiple of 8; k <= IDSI_KERNEL_DEPTH. Pads
-     * with zeros to whole strips and steps.
+     * Packs k x n of B into strips of `width` columns, a multiple of 8, with zeros up to whole
+     * strips and steps; k <= IDSI_KERNEL_DEPTH.
      */
     void (*pack)(uint32_t p, size_t k, size_t n, const uint32_t *b, size_t ldb, size_t width,
                  int32_t *out);

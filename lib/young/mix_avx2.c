@@ -28,18 +28,14 @@ AVX2 static inline void mix_rows(const idsi_mix *mix, uint32_t *x, uint32_t *y, 
     __m256i p = _mm256_set1_epi32((int)mix->p);
     __m256i twice = _mm256_add_epi32(p, p);
     __m256i a = _mm256_set1_epi32((int)mix->a);
-    __m256i b = _mm256_set1_epi32((int)mix->b);
-    __m256i c = _mm256_set1_epi32((int)mix->c);
-    __m256i shoup_a = _mm256_set1_epi32((int)mix->shoup_a);
-    __m256i shoup_b = _mm256_set1_epi32((int)mix->shoup_b);
-    __m256i shoup_c = _mm256_set1_epi32((int)mix->shoup_c);
+    __m256i shoup = _mm256_set1_epi32((int)mix->shoup);
     size_t j = 0;
 
     for (; j + 8 <= width; j += 8) {
         __m256i u = _mm256_loadu_si256((const __m256i *)(x + j));
         __m256i v = _mm256_loadu_si256((const __m256i *)(y + j));
-        __m256i s = _mm256_add_epi32(times(u, a, shoup_a, p), v);
-        __m256i t = _mm256_add_epi32(times(u, b, shoup_b, p), times(v, c, shoup_c, p));
+        __m256i s = _mm256_add_epi32(times(u, a, shoup, p), v);
+        __m256i t = _mm256_sub_epi32(_mm256_add_epi32(u, twice), times(s, a, shoup, p));
         _mm256_storeu_si256((__m256i *)(x + j), reduce(reduce(s, twice), p));
         _mm256_storeu_si256((__m256i *)(y + j), reduce(reduce(t, twice), p));
     }

@@ -33,18 +33,14 @@ AVX512 static inline void mix_rows(const idsi_mix *mix, uint32_t *x, uint32_t *y
     __m512i p = _mm512_set1_epi32((int)mix->p);
     __m512i twice = _mm512_add_epi32(p, p);
     __m512i a = _mm512_set1_epi32((int)mix->a);
-    __m512i b = _mm512_set1_epi32((int)mix->b);
-    __m512i c = _mm512_set1_epi32((int)mix->c);
-    __m512i shoup_a = _mm512_set1_epi32((int)mix->shoup_a);
-    __m512i shoup_b = _mm512_set1_epi32((int)mix->shoup_b);
-    __m512i shoup_c = _mm512_set1_epi32((int)mix->shoup_c);
+    __m512i shoup = _mm512_set1_epi32((int)mix->shoup);
 
     for (size_t j = 0; j < width; j += 16) {
         __mmask16 mask = mask_of(width - j);
         __m512i u = _mm512_maskz_loadu_epi32(mask, x + j);
         __m512i v = _mm512_maskz_loadu_epi32(mask, y + j);
-        __m512i s = _mm512_add_epi32(times(u, a, shoup_a, p), v);
-        __m512i t = _mm512_add_epi32(times(u, b, shoup_b, p), times(v, c, shoup_c, p));
+        __m512i s = _mm512_add_epi32(times(u, a, shoup, p), v);
+        __m512i t = _mm512_sub_epi32(_mm512_add_epi32(u, twice), times(s, a, shoup, p));
         _mm512_mask_storeu_epi32(x + j, mask, reduce(reduce(s, twice), p));
         _mm512_mask_storeu_epi32(y + j, mask, reduce(reduce(t, twice), p));
     }

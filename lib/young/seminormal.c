@@ -17,16 +17,6 @@
 
 #define COLUMNS 32u
 
-static inline uint32_t mul(uint32_t a, uint32_t b, uint32_t p)
-{
-    return (uint32_t)((uint64_t)a * b % p);
-}
-
-static uint32_t shoup(uint32_t f, uint32_t p)
-{
-    return (uint32_t)(((uint64_t)f << 32) / p);
-}
-
 static idsi_exchange_fn choose_exchange(void)
 {
 #if defined(__x86_64__)
@@ -43,13 +33,9 @@ static idsi_exchange_fn choose_exchange(void)
 /* The constants of the action for a distance d of contents. */
 static idsi_mix constants(int d, uint32_t p, const uint32_t *inverse)
 {
-    idsi_mix mix = {.p = p, .a = d > 0 ? inverse[d] : p - inverse[-d]};
-    mix.b = (1 + p - mul(mix.a, mix.a, p)) % p;
-    mix.c = p - mix.a;
-    mix.shoup_a = shoup(mix.a, p);
-    mix.shoup_b = shoup(mix.b, p);
-    mix.shoup_c = shoup(mix.c, p);
-    return mix;
+    uint32_t a = d > 0 ? inverse[d] : p - inverse[-d];
+
+    return (idsi_mix){.p = p, .a = a, .shoup = (uint32_t)(((uint64_t)a << 32) / p)};
 }
 
 void idsi_seminormal_init(idsi_seminormal *seminormal, uint32_t p, const uint32_t *inverse)

@@ -177,3 +177,54 @@ void field_reduced_rest(const field_reduced *reduced, uint32_t p, const uint32_t
         }
     }
 }
+
+const idsi_kernel *field_kernel(size_t number)
+{
+    if (number == 0) {
+        return &idsi_kernel_portable;
+    }
+#if defined(__x86_64__)
+    if (number == 1 && __builtin_cpu_supports("avx2")) {
+        return &idsi_kernel_avx2;
+    }
+    if (number == 2 && __builtin_cpu_supports("avx512f") && __builtin_cpu_supports("avx512dq")) {
+        return &idsi_kernel_avx512;
+    }
+#endif
+    return NULL;
+}
+
+void field_matrix_expect(const field_matrix *a, const field_matrix *b, field_matrix *c)
+{
+    const uint32_t p = c->p;
+    nmod_mat_t left;
+    nmod_mat_t right;
+    nmod_mat_t product;
+
+    nmod_mat_init(left, (slong)a->rows, (slong)a->columns, p);
+    nmod_mat_init(right, (slong)b->rows, (slong)b->columns, p);
+    nmod_mat_init(product, (slong)c->rows, (slong)c->columns, p);
+    for (size_t i = 0; i < a->rows * a->columns; i++) {
+        left->entries[i] = a->entries[i];
+    }
+    for (size_t i = 0; i < b->rows * b->columns; i++) {
+        right->entries[i] = b->entries[i];
+    }
+    nmod_mat_mul(product, left, right);
+    for (size_t i = 0; i < c->rows * c->columns; i++) {
+        c->entries[i] = (uint32_t)((c->entries[i] + p - product->entries[i]) % p);
+    }
+    nmod_mat_clear(left);
+    nmod_mat_clear(right);
+    nmod_mat_clear(product);
+}
+
+void field_matrix_compare(const char *name, const field_matrix *got, const field_matrix *wanted)
+{
+    for (size_t i = 0; i < got->rows * got->columns; i++) {
+        if (got->entries[i] != wanted->entries[i]) { /* an assertion each would take long */
+            ck_abort_msg("%s: entry %zu of a %zu x %zu product mod %u is %u, not %u", name, i,
+                         got->rows, got->columns, got->p, got->entries[i], wanted->entries[i]);
+        }
+    }
+}

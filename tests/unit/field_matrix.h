@@ -13,6 +13,7 @@
 #include <flint/nmod_mat.h>
 
 #include "field/field_private.h"
+#include "field/kernels.h"
 #include "support.h"
 
 typedef struct field_matrix {
@@ -59,5 +60,13 @@ size_t field_reduced_find(const field_reduced *reduced, uint32_t pivot);
 /* What is left of a row when all pivots are rewritten: columns that are no pivots. */
 void field_reduced_rest(const field_reduced *reduced, uint32_t p, const uint32_t *row,
                         uint32_t *rest);
+
+/* Kernel number 0 .. FIELD_KERNELS-1; NULL when this processor can't run it. */
+#define FIELD_KERNELS 3u
+const idsi_kernel *field_kernel(size_t number);
+
+/* C - A B by FLINT. */
+void field_matrix_expect(const field_matrix *a, const field_matrix *b, field_matrix *c);
+void field_matrix_compare(const char *name, const field_matrix *got, const field_matrix *wanted);
 
 #endif

@@ -5,6 +5,7 @@
  */
 #include <string.h>
 
+#include <stdlib.h>
 #include "engine/partition_private.h"
 #include "support.h"
 #include "young/young_private.h"
@@ -137,8 +138,8 @@ START_TEST(test_generators)
     for (size_t k = 0; k < sizeof cases / sizeof *cases; k++) {
         fixture f;
         open_engine(&f, cases[k].text, cases[k].top, 1);
-        idsi_scratch scratch = {.ctx = f.ctx, .engine = f.engine};
-        TEST_OK(f.ctx, idsi_workspace_init(&scratch.work, f.ctx));
+        idsi_scratch scratch;
+        TEST_OK(f.ctx, idsi_scratch_init(&scratch, f.engine));
         TEST_OK(f.ctx, idsi_partition_solve(f.engine, cases[k].top - 1));
         for (uint32_t d = 1; d < cases[k].top; d++) {
             TEST_OK(f.ctx, idsi_generators_choose(&scratch, d));
@@ -146,7 +147,7 @@ START_TEST(test_generators)
                           "%sdegree %u: %zu generators, not %zu", cases[k].text, d,
                           f.engine->degree[d].generator_count, cases[k].count[d - 1]);
         }
-        idsi_workspace_clear(&scratch.work);
+        idsi_scratch_clear(&scratch);
         close_engine(&f);
     }
 }
@@ -155,6 +156,17 @@ END_TEST
 /* ---- solutions ----------------------------------------------------------------------- */
 
 /* The bases, which later degrees are built on, are the same for every number of threads. */
+static void check_row(uint32_t prime, const idsi_left *a, const idsi_left *b, size_t row)
+{
+    uint32_t *x = calloc(2 * a->k, sizeof *x);
+
+    ck_assert_ptr_nonnull(x);
+    idsi_left_row(a, prime, row, x);
+    idsi_left_row(b, prime, row, x + a->k);
+    ck_assert_mem_eq(x, x + a->k, a->k * sizeof *x);
+    free(x);
+}
+
 START_TEST(test_threads)
 {
     const uint32_t threads = (uint32_t)_i;
@@ -172,10 +184,10 @@ START_TEST(test_threads)
         ck_assert(a->solved && b->solved);
         ck_assert_uint_eq(a->dimension, b->dimension);
         ck_assert_uint_eq(a->unknowns, b->unknowns);
-        ck_assert((a->solution == NULL) == (b->solution == NULL));
-        if (a->solution != NULL) {
-            ck_assert_mem_eq(a->solution, b->solution,
-                             (size_t)a->dimension * a->unknowns * sizeof *a->solution);
+        ck_assert_uint_eq(a->solution.m, b->solution.m);
+        ck_assert_uint_eq(a->solution.k, b->solution.k);
+        for (size_t row = 0; row < a->solution.m; row++) {
+            check_row(one.engine->prime, &a->solution, &b->solution, row);
         }
     }
     ck_assert_double_eq(one.engine->error, many.engine->error);

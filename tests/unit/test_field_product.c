@@ -10,50 +10,6 @@
 #include "field/kernels.h"
 #include "field_matrix.h"
 
-static const idsi_kernel *kernel_number(size_t number)
-{
-    if (number == 0) {
-        return &idsi_kernel_portable;
-    }
-#if defined(__x86_64__)
-    if (number == 1 && __builtin_cpu_supports("avx2")) {
-        return &idsi_kernel_avx2;
-    }
-    if (number == 2 && __builtin_cpu_supports("avx512f") && __builtin_cpu_supports("avx512dq")) {
-        return &idsi_kernel_avx512;
-    }
-#endif
-    return NULL;
-}
-
-#define KERNELS 3u
-
-/* C - A B by FLINT. */
-static void expect(const field_matrix *a, const field_matrix *b, field_matrix *c)
-{
-    const uint32_t p = c->p;
-    nmod_mat_t left;
-    nmod_mat_t right;
-    nmod_mat_t product;
-
-    nmod_mat_init(left, (slong)a->rows, (slong)a->columns, p);
-    nmod_mat_init(right, (slong)b->rows, (slong)b->columns, p);
-    nmod_mat_init(product, (slong)c->rows, (slong)c->columns, p);
-    for (size_t i = 0; i < a->rows * a->columns; i++) {
-        left->entries[i] = a->entries[i];
-    }
-    for (size_t i = 0; i < b->rows * b->columns; i++) {
-        right->entries[i] = b->entries[i];
-    }
-    nmod_mat_mul(product, left, right);
-    for (size_t i = 0; i < c->rows * c->columns; i++) {
-        c->entries[i] = (uint32_t)((c->entries[i] + p - product->entries[i]) % p);
-    }
-    nmod_mat_clear(left);
-    nmod_mat_clear(right);
-    nmod_mat_clear(product);
-}
-
 /* A as kernels.h describes: row by row, IDSI_KERNEL_DEPTH entries each. */
 static int32_t *pack_a(const field_matrix *matrix, size_t from, size_t steps, size_t height)
 {
@@ -86,6 +42,21 @@ static int32_t *pack_b(const field_matrix *matrix, size_t from, size_t steps, si
     return packed;
 }
 
+static void check_pack(const idsi_kernel *kernel, const field_matrix *b, size_t from, size_t depth,
+                       const int32_t *wanted)
+{
+    size_t steps = idsi_kernel_whole_steps(depth);
+    size_t strips = (b->columns + kernel->columns - 1) / kernel->columns;
+    size_t count = strips * kernel->columns * steps;
+    int32_t *packed = malloc(count * sizeof *packed);
+
+    ck_assert_ptr_nonnull(packed);
+    kernel->pack(b->p, depth, b->columns, field_matrix_row(b, from), b->columns, kernel->columns,
+                 packed);
+    ck_assert_mem_eq(packed, wanted, count * sizeof *packed);
+    free(packed);
+}
+
 static void run_kernel(const idsi_kernel *kernel, const field_matrix *a, const field_matrix *b,
                        field_matrix *c)
 {
@@ -95,6 +66,7 @@ static void run_kernel(const idsi_kernel *kernel, const field_matrix *a, const f
         size_t steps = (depth + IDSI_KERNEL_STEPS - 1) / IDSI_KERNEL_STEPS * IDSI_KERNEL_STEPS;
         int32_t *left_strips = pack_a(a, from, depth, kernel->rows);
         int32_t *right_strips = pack_b(b, from, steps, kernel->columns);
+        check_pack(kernel, b, from, depth, right_strips);
 
         for (size_t i = 0; i < c->rows; i += kernel->rows) {
             for (size_t j = 0; j < c->columns; j += kernel->columns) {
@@ -107,16 +79,6 @@ static void run_kernel(const idsi_kernel *kernel, const field_matrix *a, const f
         }
         free(left_strips);
         free(right_strips);
-    }
-}
-
-static void compare(const char *name, const field_matrix *got, const field_matrix *wanted)
-{
-    for (size_t i = 0; i < got->rows * got->columns; i++) {
-        if (got->entries[i] != wanted->entries[i]) { /* an assertion each would take long */
-            ck_abort_msg("%s: entry %zu of a %zu x %zu product mod %u is %u, not %u", name, i,
-                         got->rows, got->columns, got->p, got->entries[i], wanted->entries[i]);
-        }
     }
 }
 
@@ -139,7 +101,7 @@ static void try_product(const idsi_kernel *kernel, uint32_t p, const size_t size
     field_matrix_random(&b, kind, random);
     field_matrix_random(&c, FIELD_EXTREME, random);
     memcpy(wanted.entries, c.entries, c.rows * c.columns * sizeof *c.entries);
-    expect(&a, &b, &wanted);
+    field_matrix_expect(&a, &b, &wanted);
     if (kernel != NULL) {
         run_kernel(kernel, &a, &b, &c);
     } else {
@@ -148,7 +110,7 @@ static void try_product(const idsi_kernel *kernel, uint32_t p, const size_t size
                            b.columns, c.entries, c.columns);
         idsi_workspace_clear(&work);
     }
-    compare(kernel == NULL ? "blocked" : kernel->name, &c, &wanted);
+    field_matrix_compare(kernel == NULL ? "blocked" : kernel->name, &c, &wanted);
     field_matrix_clear(&a);
     field_matrix_clear(&b);
     field_matrix_clear(&c);
@@ -162,8 +124,8 @@ static const size_t sizes[][3] = {{1, 1, 1},   {1, 32, 16}, {6, 32, 16},  {5, 31
 
 START_TEST(test_kernels)
 {
-    const idsi_kernel *kernel = kernel_number((size_t)_i % KERNELS);
-    const uint32_t p = field_primes[(size_t)_i / KERNELS];
+    const idsi_kernel *kernel = field_kernel((size_t)_i % FIELD_KERNELS);
+    const uint32_t p = field_primes[(size_t)_i / FIELD_KERNELS];
     idsi_random random;
 
     if (kernel == NULL) {
@@ -182,8 +144,8 @@ START_TEST(test_largest_sums)
 {
     const uint32_t p = 1073741789;
 
-    for (size_t number = 0; number < KERNELS; number++) {
-        const idsi_kernel *kernel = kernel_number(number);
+    for (size_t number = 0; number < FIELD_KERNELS; number++) {
+        const idsi_kernel *kernel = field_kernel(number);
         for (uint32_t sign = 0; kernel != NULL && sign < 2; sign++) {
             field_matrix a;
             field_matrix b;
@@ -199,9 +161,9 @@ START_TEST(test_largest_sums)
                     a.entries[i * 7 + j % 7] = sign == 0 ? (p - 1) / 2 : (p + 1) / 2;
                 }
             }
-            expect(&a, &b, &wanted);
+            field_matrix_expect(&a, &b, &wanted);
             run_kernel(kernel, &a, &b, &c);
-            compare(kernel->name, &c, &wanted);
+            field_matrix_compare(kernel->name, &c, &wanted);
             field_matrix_clear(&a);
             field_matrix_clear(&b);
             field_matrix_clear(&c);
@@ -236,8 +198,8 @@ START_TEST(test_gather)
     enum { COLUMNS = 5, COUNT = 43 };
 
     test_random(&random, 70 + (uint64_t)_i);
-    for (size_t number = 0; number < KERNELS; number++) {
-        const idsi_kernel *kernel = kernel_number(number);
+    for (size_t number = 0; number < FIELD_KERNELS; number++) {
+        const idsi_kernel *kernel = field_kernel(number);
         for (size_t count = 0; kernel != NULL && count <= COUNT; count++) {
             uint64_t sums[IDSI_LANES];
             uint32_t factors[COLUMNS * IDSI_LANES];
@@ -280,8 +242,8 @@ START_TEST(test_combine)
     enum { COUNT = 37 };
 
     test_random(&random, 80 + (uint64_t)_i);
-    for (size_t number = 0; number < KERNELS; number++) {
-        const idsi_kernel *kernel = kernel_number(number);
+    for (size_t number = 0; number < FIELD_KERNELS; number++) {
+        const idsi_kernel *kernel = field_kernel(number);
         for (size_t count = 0; kernel != NULL && count <= COUNT; count++) {
             uint32_t target[COUNT];
             uint32_t source[COUNT];
@@ -332,13 +294,13 @@ START_TEST(test_team)
         field_matrix_init(&wanted, p, large[i][0], large[i][1]);
         field_matrix_random(&a, FIELD_DENSE, &random);
         field_matrix_random(&b, FIELD_DENSE, &random);
-        expect(&a, &b, &wanted);
+        field_matrix_expect(&a, &b, &wanted);
         TEST_OK(ctx, idsi_workspace_init(&work, ctx));
         TEST_OK(ctx, idsi_workspace_share(&work, team));
         idsi_dense_mul_sub(&work, p, a.rows, b.columns, a.columns, a.entries, a.columns, b.entries,
                            b.columns, c.entries, c.columns);
         idsi_workspace_clear(&work);
-        compare("shared", &c, &wanted);
+        field_matrix_compare("shared", &c, &wanted);
         field_matrix_clear(&a);
         field_matrix_clear(&b);
         field_matrix_clear(&c);
@@ -355,8 +317,8 @@ START_TEST(test_choice)
     bool known = false;
 
     ck_assert_str_eq(chosen->name, idsi_dense_kernel_name());
-    for (size_t number = 0; number < KERNELS; number++) {
-        known = known || chosen == kernel_number(number);
+    for (size_t number = 0; number < FIELD_KERNELS; number++) {
+        known = known || chosen == field_kernel(number);
     }
     ck_assert(known);
 }
@@ -368,7 +330,7 @@ int main(void)
     TCase *tcase = tcase_create("products");
 
     tcase_set_timeout(tcase, 20);
-    tcase_add_loop_test(tcase, test_kernels, 0, (int)(field_prime_count * KERNELS));
+    tcase_add_loop_test(tcase, test_kernels, 0, (int)(field_prime_count * FIELD_KERNELS));
     tcase_add_test(tcase, test_largest_sums);
     tcase_add_loop_test(tcase, test_blocked, 0, (int)field_prime_count);
     tcase_add_loop_test(tcase, test_gather, 0, (int)field_prime_count);

@@ -299,7 +299,8 @@ static void check_exchange(idsi_exchange_fn run, const idsi_mix *mix, const uint
         ck_assert_uint_eq(block[width + j], u);
         ck_assert_uint_eq(block[2 * width + j], (mix->p - v) % mix->p);
         ck_assert_uint_eq(block[3 * width + j],
-                          (mix->b * u % mix->p + mix->c * v % mix->p) % mix->p);
+                          ((mix->p + 1 - (uint64_t)mix->a * mix->a % mix->p) % mix->p * u +
+                           (uint64_t)(mix->p - mix->a) * v) % mix->p);
     }
     ck_assert_uint_eq(block[4 * width], 12345);
 }
@@ -311,12 +312,8 @@ static void check_widths(idsi_random *random, idsi_exchange_fn run, uint32_t p)
 
     for (size_t width = 0; width <= MOST_WIDTH; width++) {
         idsi_mix mix = {.p = p,
-                        .a = (uint32_t)idsi_random_below(random, p),
-                        .b = (uint32_t)idsi_random_below(random, p),
-                        .c = width % 3 == 0 ? p - 1 : (uint32_t)idsi_random_below(random, p)};
-        mix.shoup_a = (uint32_t)(((uint64_t)mix.a << 32) / p);
-        mix.shoup_b = (uint32_t)(((uint64_t)mix.b << 32) / p);
-        mix.shoup_c = (uint32_t)(((uint64_t)mix.c << 32) / p);
+                        .a = width % 3 == 0 ? p - 1 : (uint32_t)idsi_random_below(random, p)};
+        mix.shoup = (uint32_t)(((uint64_t)mix.a << 32) / p);
         for (size_t j = 0; j <= MOST_WIDTH; j++) {
             /* often the borders */
             uint64_t kind = idsi_random_below(random, 8);
