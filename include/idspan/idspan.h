@@ -6,6 +6,7 @@
 #ifndef IDSPAN_IDSPAN_H
 #define IDSPAN_IDSPAN_H
 
+#include <idspan/algebra.h>
 #include <idspan/answer.h>
 #include <idspan/core.h>
 #include <idspan/draw.h>

@@ -88,6 +88,8 @@ struct ids_presentation {
 ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
                                   const char *source, bool operations_follow,
                                   ids_presentation **presentation);
+/* The same operations, written in the same way, with the same symmetries, in the same order. */
+bool idsi_signature_equal(const ids_signature *a, const ids_signature *b);
 /* The index-th identity of a role, NULL when out of range. */
 const idsi_identity *idsi_presentation_get(const ids_presentation *pres, ids_role role,
                                            size_t index);

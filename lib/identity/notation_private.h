@@ -1,7 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
  * The reader of presentation files, from characters to identities. Only the files of this
- * folder include it.
+ * folder include it, and lib/model, whose algebra files have the same lexemes and operations.
  */
 #ifndef IDSI_NOTATION_PRIVATE_H
 #define IDSI_NOTATION_PRIVATE_H
@@ -135,6 +135,11 @@ typedef struct idsi_reader {
     ids_presentation *presentation; /* being built */
     size_t identity_capacity;
 } idsi_reader;
+
+/* (presentation.c) Frees everything that the reader has, the presentation included. */
+void idsi_reader_clear(idsi_reader *reader);
+/* The signature of the operations that were read; fails when there are none. */
+ids_status idsi_reader_signature(idsi_reader *reader, ids_signature **sig);
 
 /* (lexer.c) Splits the text into lexemes; a line ends in an END. */
 ids_status idsi_reader_lex(idsi_reader *reader);
