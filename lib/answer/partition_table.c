@@ -192,9 +192,12 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
     ids_status st = IDS_OK;
     ids_partition_row *row = &j->table->rows[i];
     uint32_t multiplicity = 0;
+    idsi_account account = {0};
 
     IDSI_TRY(idsi_partition_multiplicity(engine, row->partition.part, row->partition.length,
                                          &multiplicity));
+    IDSI_TRY(idsi_partition_account(engine, row->partition.part, row->partition.length,
+                                    &account));
     if (multiplicity > row->free) {
         st = idsi_fail(j->ctx, IDS_ERR_INTERNAL,
                        "degree %u: a multiplicity is %u in the quotient, %llu in the free "
@@ -203,7 +206,7 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
         goto done;
     }
     row->quotient = multiplicity < row->quotient ? multiplicity : row->quotient;
-    j->error[i] = fmax(j->error[i], engine->error);
+    j->error[i] = fmax(j->error[i], idsi_blocks_error(account.blocks));
 done:
     return st;
 }

@@ -7,6 +7,7 @@
  * The values that are stored on the way may be computed twice, by two threads, and are the same.
  */
 #include <string.h>
+#include <time.h>
 
 #include "partition_private.h"
 
@@ -49,7 +50,6 @@ typedef struct crew {
     bool basis; /* solutions are wanted, not only their number */
     _Atomic double cost_done; /* in this degree */
     atomic_size_t next;
-    atomic_uint_least64_t blocks;
     atomic_bool stop;
 } crew;
 
@@ -99,6 +99,17 @@ static ids_status report_crew(crew *c)
     return idsi_poll(c->engine->ctx, &progress);
 }
 
+/* Processor time of the thread that asks; 0 where the system does not tell. */
+static double thread_seconds(void)
+{
+    struct timespec now = {0};
+
+    if (clock_gettime(CLOCK_THREAD_CPUTIME_ID, &now) != 0) {
+        return 0;
+    }
+    return (double)now.tv_sec + 1e-9 * (double)now.tv_nsec;
+}
+
 static void work(worker *w, bool first)
 {
     crew *c = w->crew;
@@ -108,8 +119,11 @@ static void work(worker *w, bool first)
         if (k >= c->count) {
             return;
         }
+        idsi_space *space = &c->engine->spaces[c->shapes[k]];
+        double start = thread_seconds();
         w->st = idsi_shape_solve(&w->scratch, c->shapes[k], c->basis, &c->stop, &blocks);
-        atomic_fetch_add(&c->blocks, blocks);
+        space->blocks += blocks;
+        space->seconds += thread_seconds() - start;
         add_cost(c, shape_cost(c->engine, c->shapes[k]));
         if (w->st == IDS_OK && first) {
             w->st = report_crew(c);
@@ -167,12 +181,6 @@ done:
     return st;
 }
 
-static void note_error(idsi_partition_engine *engine, uint64_t blocks)
-{
-    double p = engine->prime;
-    engine->error += 2.0 * (double)blocks / (p * p);
-}
-
 static ids_status make_equations(idsi_partition_engine *engine, uint32_t degree)
 {
     ids_status st = IDS_OK;
@@ -223,7 +231,6 @@ static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, u
     sort_shapes(engine, shapes, count);
     st = run_crew(&hands);
     engine->cost_done += atomic_load(&hands.cost_done);
-    note_error(engine, atomic_load(&hands.blocks));
 done:
     return st;
 }
@@ -265,6 +272,60 @@ ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint
         IDSI_TRY(solve_shapes(engine, degree, &shape, 1));
     }
     *multiplicity = engine->spaces[shape].dimension;
+done:
+    return st;
+}
+
+ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree)
+{
+    ids_status st = IDS_OK;
+
+    IDSI_TRY(idsi_partition_solve(engine, degree - 1));
+    IDSI_TRY(make_equations(engine, degree));
+done:
+    return st;
+}
+
+/* Number of the straight shape of a partition; UINT32_MAX where its degree has no monomial. */
+static ids_status straight_shape(idsi_partition_engine *engine, const uint8_t *parts,
+                                 uint32_t rows, uint32_t *shape)
+{
+    ids_status st = IDS_OK;
+    static const uint8_t empty[IDSI_SHAPE_MAX] = {0};
+
+    IDSI_TRY(idsi_skews_get(&engine->skews, parts, empty, rows, shape));
+    if (*shape >= engine->space_count) {
+        *shape = UINT32_MAX;
+    }
+done:
+    return st;
+}
+
+ids_status idsi_partition_account(idsi_partition_engine *engine, const uint8_t *parts,
+                                  uint32_t rows, idsi_account *account)
+{
+    ids_status st = IDS_OK;
+    uint32_t shape = 0;
+
+    *account = (idsi_account){0};
+    IDSI_TRY(straight_shape(engine, parts, rows, &shape));
+    if (shape == UINT32_MAX) {
+        return IDS_OK;
+    }
+    uint32_t degree = engine->skews.list[shape]->shape.cells;
+    account->tableaux = engine->skews.list[shape]->count;
+    account->seconds = engine->spaces[shape].seconds;
+    account->blocks = engine->spaces[shape].blocks;
+    for (size_t i = 0; i < engine->space_count; i++) {
+        if (engine->skews.list[i]->shape.cells < degree && engine->since[i] > 0 &&
+            engine->since[i] <= degree) {
+            account->blocks += engine->spaces[i].blocks;
+        }
+    }
+    if (degree > 1 && engine->solved + 1 >= degree) {
+        IDSI_TRY(idsi_plan_unknowns(engine, shape));
+        account->unknowns = engine->spaces[shape].unknowns;
+    }
 done:
     return st;
 }
@@ -325,6 +386,7 @@ void idsi_partition_free(idsi_partition_engine *engine)
         idsi_free(ctx, degree->generators);
         idsi_free(ctx, degree->shapes);
     }
+    idsi_free(ctx, engine->since);
     idsi_free(ctx, engine->values);
     idsi_free(ctx, engine->spaces);
     idsi_free(ctx, engine->exprs);

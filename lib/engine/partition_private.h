@@ -68,6 +68,8 @@ typedef struct idsi_space {
     uint32_t unknowns;  /* dim U(t) */
     uint32_t *solution; /* dimension x unknowns, negated residues; NULL for the single cell */
     uint32_t *offset;   /* first unknown of each form of the degree */
+    uint64_t blocks;    /* of random covectors that solving it took */
+    double seconds;     /* and processor time */
 } idsi_space;
 
 typedef struct idsi_degree {
@@ -117,7 +119,7 @@ typedef struct idsi_partition_engine {
     size_t value_slots;
     size_t value_count;
     uint64_t value_bytes;
-    double error; /* probability that random vectors missed an equation, so far */
+    uint8_t *since; /* of each planned shape: the lowest degree asked for that needs it; else 0 */
 } idsi_partition_engine;
 
 ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t prime, uint32_t top,
@@ -128,6 +130,29 @@ ids_status idsi_partition_solve(idsi_partition_engine *engine, uint32_t degree);
 /* Multiplicity of a partition in F/I; solves the lower degrees and this shape when needed. */
 ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint8_t *parts,
                                        uint32_t rows, uint32_t *multiplicity);
+
+/* Solves the lower degrees, and makes what all shapes of this one need. */
+ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree);
+
+/* What the work for a partition comes to; zeros where its degree has no monomial. */
+typedef struct idsi_account {
+    uint64_t tableaux;
+    uint64_t unknowns; /* once the lower degrees are solved; else 0 */
+    uint64_t blocks;   /* of random covectors, its own and those of all lower shapes that a table
+                          which ends with its degree needs */
+    double seconds;    /* its own */
+} idsi_account;
+
+ids_status idsi_partition_account(idsi_partition_engine *engine, const uint8_t *parts,
+                                  uint32_t rows, idsi_account *account);
+/*
+ * Probability that random covectors have missed an equation: 2/p^2 for every block, where no prime
+ * that is drawn is below 2^29.
+ */
+static inline double idsi_blocks_error(uint64_t blocks)
+{
+    return (double)blocks * 0x1p-57;
+}
 
 /* ---- partition_plan.c -------------------------------------------------------------------- */
 
