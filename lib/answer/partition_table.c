@@ -14,6 +14,7 @@
 
 #include "../engine/partition_private.h"
 #include "../young/young_private.h"
+#include "rank_private.h"
 
 struct ids_partition_table {
     ids_ctx *ctx;
@@ -70,7 +71,7 @@ typedef struct job {
     ids_cocharacter *free;
     idsi_random random;
     ids_partition_table *table;
-    double *error; /* of each row, mod one prime */
+    uint64_t *blocks; /* of random covectors behind each row, mod the prime that took the most */
 } job;
 
 /* ---- rows -------------------------------------------------------------------------------- */
@@ -102,7 +103,7 @@ static ids_status lay_out(job *j)
         room += (size_t)ids_partition_count(d) + 1;
     }
     IDSI_TRY(idsi_alloc_array(j->ctx, room, sizeof *j->table->rows, &j->table->rows));
-    IDSI_TRY(idsi_alloc_array(j->ctx, room, sizeof *j->error, &j->error));
+    IDSI_TRY(idsi_alloc_array(j->ctx, room, sizeof *j->blocks, &j->blocks));
     for (uint32_t d = j->from; d <= j->to; d++) {
         for (uint64_t i = 0; i < ids_partition_count(d); i++) {
             IDSI_TRY(lay_out_row(j, d, i, &j->table->rows[j->table->count]));
@@ -134,11 +135,10 @@ static double group_bits(const ids_partition *partition)
     return bits / log(2.0) + 1e-6;
 }
 
-/* What the number in a row claims after `primes` primes; *error is its error probability. */
-static void certify(const job *j, size_t i, uint32_t primes, double *error)
+void idsi_partition_certify(const idsi_laws *laws, uint64_t blocks, uint32_t primes,
+                            ids_partition_row *row, double *error)
 {
-    ids_partition_row *row = &j->table->rows[i];
-    double bits = idsi_laws_norm_bits(j->laws, row->degree);
+    double bits = idsi_laws_norm_bits(laws, row->degree);
 
     row->consequences = row->free - row->quotient;
     row->certainty = IDS_CERTAINTY_EXACT;
@@ -146,10 +146,16 @@ static void certify(const job *j, size_t i, uint32_t primes, double *error)
     *error = 0;
     if (bits >= 0 && row->quotient > 0) {
         double minor = (double)row->free * (group_bits(&row->partition) + bits);
-        *error = idsi_prime_error(minor, j->error[i], primes);
+        *error = idsi_prime_error(minor, idsi_blocks_error(blocks), primes);
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(*error);
     }
+}
+
+/* What the number in a row claims after `primes` primes; *error is its error probability. */
+static void certify(const job *j, size_t i, uint32_t primes, double *error)
+{
+    idsi_partition_certify(j->laws, j->blocks[i], primes, &j->table->rows[i], error);
 }
 
 /* Sums up the rows of a degree, which end with the total. */
@@ -206,7 +212,7 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
         goto done;
     }
     row->quotient = multiplicity < row->quotient ? multiplicity : row->quotient;
-    j->error[i] = fmax(j->error[i], idsi_blocks_error(account.blocks));
+    j->blocks[i] = account.blocks > j->blocks[i] ? account.blocks : j->blocks[i];
 done:
     return st;
 }
@@ -334,7 +340,7 @@ ids_status ids_partition_table_create(ids_ctx *ctx, const ids_presentation *pres
 done:
     ids_cocharacter_free(j.free);
     idsi_laws_free(j.laws);
-    idsi_free(ctx, j.error);
+    idsi_free(ctx, j.blocks);
     if (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED) {
         *table = j.table;
     } else {
