@@ -14,6 +14,7 @@
 #include <idspan/follows.h>
 #include <idspan/identity.h>
 #include <idspan/render.h>
+#include <idspan/report.h>
 #include <idspan/run.h>
 #include <idspan/tree.h>
 #include <idspan/young.h>

@@ -24,6 +24,12 @@ ids_status idsi_utf8_append(idsi_text *text, uint32_t character);
 /* Columns that a terminal uses for a text: 2 for wide characters, 0 for combining ones. */
 size_t idsi_utf8_width(const char *text);
 
+/* ---- XML ----------------------------------------------------------------------------- */
+
+/* Appends text as character data; control characters are replaced but those of `kept`. */
+ids_status idsi_xml_words(idsi_text *out, const char *text, size_t bytes, const char *kept);
+ids_status idsi_xml_string(idsi_text *out, const char *text);
+
 /* ---- the table ----------------------------------------------------------------------- */
 
 typedef struct idsi_column {

@@ -82,8 +82,6 @@ const char *session_source(const session *s)
 
 static ids_status read_file(session *s)
 {
-    ids_status st = IDS_OK;
-
     if (!input_read(s->set->file, &s->text, &s->length)) {
         return IDS_ERR_IO;
     }
@@ -91,10 +89,7 @@ static ids_status read_file(session *s)
     if (s->set->task->wants_text) {
         return IDS_OK;
     }
-    st = ids_presentation_read(s->ctx, s->text, s->length, session_source(s), &s->pres);
-    free(s->text);
-    s->text = NULL;
-    return st;
+    return ids_presentation_read(s->ctx, s->text, s->length, session_source(s), &s->pres);
 }
 
 static int run(const settings *set)

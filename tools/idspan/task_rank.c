@@ -11,6 +11,8 @@
 
 enum { DEGREE, FREE, CONSEQUENCES, QUOTIENT, CERTAINTY, COLUMNS };
 
+const char *const rank_formats[] = {"text", "csv", "json", "latex", "svg", "html", NULL};
+
 static ids_status write_row(const ids_rank_table *table, size_t index, ids_writer *writer)
 {
     ids_status st = IDS_OK;
@@ -67,10 +69,7 @@ static ids_status write_notes(session *s, const ids_rank_table *table, ids_statu
         TRY(ids_writer_note(writer, "seed", digits_of(s->set->seed).text));
     }
     if (ids_rank_table_weakened(table)) {
-        TRY(ids_writer_note(writer, "warning",
-                            "some variable occurs in a term at least as often as the field has "
-                            "elements; the linearised identities, which are what counts here, "
-                            "can be weaker than the identities as written"));
+        TRY(ids_writer_note(writer, "warning", WEAKENED_WARNING));
     }
     if (stopped != IDS_OK) {
         TRY(ids_writer_note(writer, "stopped", s->failure));
@@ -203,7 +202,7 @@ static ids_status run(session *s)
 
     keep_reason(s, table, st);
     if (table != NULL) {
-        written = write_table(s, table, st);
+        written = is_report_format(set) ? report_ranks(s, table) : write_table(s, table, st);
     }
     ids_rank_table_free(table);
     return written != IDS_OK ? written : st;
@@ -245,6 +244,7 @@ const task task_rank = {
                BIT(OPTION_SEED) | BIT(OPTION_FIELD) | BIT(OPTION_BY) | BIT(OPTION_PARTITION) |
                BIT(OPTION_CROSS_CHECK),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_PARTITION),
+    .formats = rank_formats,
     .check = rank_check,
     .run = run,
 };

@@ -312,7 +312,7 @@ ids_status rank_by_partition(session *s)
 
     keep_reason(s, table, st);
     if (table != NULL) {
-        written = write_table(s, table, st);
+        written = is_report_format(set) ? report_partitions(s, table) : write_table(s, table, st);
     }
     ids_partition_table_free(table);
     return written != IDS_OK ? written : st;

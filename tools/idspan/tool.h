@@ -112,7 +112,7 @@ typedef struct session {
     const settings *set;
     ids_ctx *ctx;
     ids_presentation *pres; /* NULL for a task that wants text */
-    char *text;             /* the file, for a task that wants text */
+    char *text;             /* the file as it was read */
     size_t length;
     bool no; /* the answer is "does not follow" */
     output out;
@@ -157,6 +157,27 @@ ids_status rank_by_partition(session *s);
  * rest. The text has PRIMES_CHARS characters. */
 #define PRIMES_CHARS 4096u
 void primes_append(char *text, uint64_t prime);
+
+/* The formats of `rank` and `report` beyond those of tables: numbers that go on from ids_format,
+ * in the order of their names in rank_formats. */
+enum { FORMAT_SVG = IDS_FORMAT_LATEX + 1, FORMAT_HTML };
+extern const char *const rank_formats[];
+/* Whether --format asks for a picture or a page. */
+bool is_report_format(const settings *set);
+/* Makes a report about the presentation `text` (NULL: not shown) from `source`; the caller frees
+ * it. The second writes it in the format of --format. */
+ids_status report_start(session *s, const char *source, const char *text, size_t length,
+                        ids_report **report);
+ids_status report_finish(session *s, ids_report *report);
+/* Writes a table as picture or page; degrees that are not in it are shown as missing. */
+ids_status report_ranks(session *s, const ids_rank_table *table);
+ids_status report_partitions(session *s, const ids_partition_table *table);
+
+/* Said of ranks over a small field. */
+#define WEAKENED_WARNING                                                                \
+    "some variable occurs in a term at least as often as the field has elements; the "  \
+    "linearised identities, which are what counts here, can be weaker than the identities " \
+    "as written"
 
 /* Sends a function to its `done:` label when a call fails. */
 #define TRY(call)           \
