@@ -19,8 +19,8 @@
 #define RIGHT 112 /* room for the names of the lines */
 #define TOP 14
 #define PLOT 236
-#define ZERO 26  /* from the value 1 down to the line of the zeros */
-#define FOOT 40  /* below that line */
+#define ZERO 26 /* from the value 1 down to the line of the zeros */
+#define FOOT 40 /* below that line */
 #define NAME_GAP 16
 #define LOG_BITS 12
 #define LOG_TEN 13607 /* log2(10) * 2^LOG_BITS */
@@ -119,13 +119,15 @@ static int32_t x_of(const scale *s, uint32_t degree)
 
 static int32_t y_of(const scale *s, uint64_t value)
 {
+    int64_t height = s->decades * LOG_TEN;
+
     if (value == 0) {
         return TOP + PLOT + ZERO;
     }
-    return TOP + PLOT - (int32_t)((int64_t)PLOT * logarithm(value) / (s->decades * LOG_TEN));
+    return TOP + PLOT - (int32_t)((PLOT * (int64_t)logarithm(value) + height / 2) / height);
 }
 
-/* ---- axes ------------------------------------------------------------------------------------ */
+/* ---- axes -------------------------------------------------------------------------------- */
 
 static ids_status put_level(idsi_text *out, int32_t y, const char *class)
 {
@@ -174,7 +176,7 @@ done:
     return st;
 }
 
-/* ---- lines ----------------------------------------------------------------------------------- */
+/* ---- lines ------------------------------------------------------------------------------- */
 
 static const char *const names[SERIES] = {"free", "consequences", "quotient"};
 static const char *const classes[SERIES] = {"free", "cons", "quot"};
@@ -228,8 +230,8 @@ static ids_status put_marks(idsi_text *out, const scale *s, uint32_t series)
 
     while (next_total(s->report, &at, &degree)) {
         uint64_t value = value_of(degree.total, series);
-        IDSI_TRY(idsi_text_printf(out, "<g class=\"point\"><title>degree %u: %s %" PRIu64
-                                       "</title>",
+        IDSI_TRY(idsi_text_printf(out,
+                                  "<g class=\"point\"><title>degree %u: %s %" PRIu64 "</title>",
                                   (unsigned)degree.degree, names[series], value));
         IDSI_TRY(put_mark(out, series, x_of(s, degree.degree), y_of(s, value)));
         IDSI_TRY(idsi_text_puts(out, "</g>\n"));

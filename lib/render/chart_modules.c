@@ -137,8 +137,8 @@ static ids_status put_line_title(idsi_text *out, const idsi_report_row *row)
     IDSI_TRY(idsi_put_partition(out, &numbers->partition));
     if (idsi_report_is_done(row)) {
         IDSI_TRY(idsi_text_printf(out,
-                                  ": dimension %" PRIu64 ", free %" PRIu64
-                                  ", consequences %" PRIu64 ", quotient %" PRIu64 ", ",
+                                  ": dimension %" PRIu64 ", free %" PRIu64 ", consequences %" PRIu64
+                                  ", quotient %" PRIu64 ", ",
                                   numbers->dimension, numbers->free, numbers->consequences,
                                   numbers->quotient));
         IDSI_TRY(idsi_put_certainty(out, numbers));
@@ -162,8 +162,8 @@ static ids_status put_line(idsi_text *out, const panels *p, const idsi_report_ro
     IDSI_TRY(idsi_text_printf(out, "<rect class=\"%s\" y=\"%d\" width=\"%d\" height=\"%d\"/>",
                               (y - HEAD) / LINE % 2 == 1 ? "band" : "clear", (int)y,
                               IDSI_CHART_WIDTH, LINE));
-    IDSI_TRY(idsi_text_printf(out, "<text class=\"num\" x=\"%d\" y=\"%d\">", EDGE,
-                              (int)(y + BASE)));
+    IDSI_TRY(
+        idsi_text_printf(out, "<text class=\"num\" x=\"%d\" y=\"%d\">", EDGE, (int)(y + BASE)));
     IDSI_TRY(idsi_put_exponents(out, &numbers->partition));
     IDSI_TRY(idsi_text_puts(out, "</text>"));
     if (numbers->free > 0 || idsi_report_is_done(row)) {

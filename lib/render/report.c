@@ -70,7 +70,7 @@ done:
     return st;
 }
 
-/* ---- rows ----------------------------------------------------------------------------------- */
+/* ---- rows -------------------------------------------------------------------------------- */
 
 static ids_status check_numbers(ids_ctx *ctx, const ids_partition_row *numbers)
 {
@@ -182,7 +182,7 @@ done:
     return st;
 }
 
-/* ---- reading it back ---------------------------------------------------------------------- */
+/* ---- reading it back --------------------------------------------------------------------- */
 
 bool idsi_report_is_done(const idsi_report_row *row)
 {
@@ -233,7 +233,7 @@ bool idsi_report_next_note(const ids_report *report, size_t *at, const char **na
     return true;
 }
 
-/* ---- writing -------------------------------------------------------------------------------- */
+/* ---- writing ----------------------------------------------------------------------------- */
 
 ids_status idsi_press_pour(idsi_press *press)
 {

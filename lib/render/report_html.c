@@ -5,7 +5,7 @@
  *     heading, what came out, how far it is; contents
  *     Presentation    the text as it was given
  *     Dimensions      growth as a chart, table
- *     Degree n ...    multiplicities as a chart, table (by partition only)
+ *     Multiplicities  degree by degree, as a chart and a table (by partition only)
  *     Not done        cells that are missing or failed, with reasons
  *     Certainty       what the column says
  *     Provenance      version, primes, seed, ...
@@ -21,15 +21,15 @@
 
 /* What the heading and the sections need to know of the whole. */
 typedef struct summary {
-    size_t cells;  /* rows that are computed on their own: a total beside partitions is not */
+    size_t cells; /* rows that are computed on their own: a total beside partitions is not */
     size_t done;
     size_t failed;
-    size_t totals;      /* degrees whose total is known */
-    uint32_t first;     /* the first of them, */
-    uint32_t last;      /* the last, */
-    bool gapless;       /* and whether all between are known */
-    bool modular;       /* some row is not exact */
-    uint32_t least;     /* the smallest bits of those */
+    size_t totals;  /* degrees whose total is known */
+    uint32_t first; /* the first of them, */
+    uint32_t last;  /* the last, */
+    bool gapless;   /* and whether all between are known */
+    bool modular;   /* some row is not exact */
+    uint32_t least; /* the smallest bits of those */
 } summary;
 
 static void count_cell(summary *sum, const idsi_report_row *row)
@@ -73,7 +73,7 @@ static summary sum_up(const ids_report *report)
     return sum;
 }
 
-/* ---- heading ------------------------------------------------------------------------------------ */
+/* ---- heading ----------------------------------------------------------------------------- */
 
 static ids_status put_head(idsi_press *press)
 {
@@ -163,6 +163,9 @@ static ids_status put_contents(idsi_press *press, const summary *sum)
         IDSI_TRY(idsi_text_puts(out, "<li><a href=\"#presentation\">Presentation</a></li>\n"));
     }
     IDSI_TRY(idsi_text_puts(out, "<li><a href=\"#dimensions\">Dimensions</a></li>\n"));
+    if (idsi_report_by_partition(press->report)) {
+        IDSI_TRY(idsi_text_puts(out, "<li><a href=\"#modules\">Multiplicities</a></li>\n"));
+    }
     for (size_t at = 0; idsi_report_next_degree(press->report, &at, &degree);) {
         if (degree.partitions > 0) {
             IDSI_TRY(idsi_text_printf(out, "<li><a href=\"#degree-%u\">Degree %u</a></li>\n",
@@ -179,7 +182,7 @@ done:
     return st;
 }
 
-/* ---- sections ------------------------------------------------------------------------------------- */
+/* ---- sections ---------------------------------------------------------------------------- */
 
 static ids_status put_presentation(idsi_press *press)
 {
@@ -249,25 +252,45 @@ static ids_status put_degree(idsi_press *press, const idsi_degree *degree)
 
     snprintf(name, sizeof name, "modules-%u", n);
     snprintf(title, sizeof title, "Multiplicities in degree %u", n);
-    IDSI_TRY(idsi_text_printf(out,
-                              "<section id=\"degree-%u\">\n<h2>Degree %u</h2>\n<p>How often each "
-                              "irreducible module of the symmetric group of %u letters occurs.",
-                              n, n, n));
+    IDSI_TRY(idsi_text_printf(out, "<section id=\"degree-%u\">\n<h3>Degree %u</h3>\n", n, n));
     if (degree->done < degree->partitions) {
-        IDSI_TRY(idsi_text_printf(out, " <strong>%zu of %zu</strong> are computed.", degree->done,
-                                  degree->partitions));
+        IDSI_TRY(idsi_text_printf(out, "<p>%zu of %zu multiplicities are computed.</p>\n",
+                                  degree->done, degree->partitions));
     }
-    IDSI_TRY(idsi_text_puts(out, "</p>\n"));
     IDSI_TRY(open_chart(out, name, idsi_modules_height(degree), title,
                         "Bars of the multiplicities in the consequences and in the quotient, by "
                         "partition. The table below has the numbers."));
     IDSI_TRY(idsi_put_modules(out, degree));
-    IDSI_TRY(idsi_text_puts(out, "</svg>\n</div>\n<figcaption>Consequences and quotient have "
-                                 "scales of their own. A raised number counts equal parts: 3 2 "
-                                 "1\u00B3 is 3+2+1+1+1.</figcaption>\n</figure>\n"));
+    IDSI_TRY(idsi_text_puts(out, "</svg>\n</div>\n</figure>\n"));
     IDSI_TRY(idsi_put_modules_table(press, degree));
     IDSI_TRY(idsi_text_puts(out, "</section>\n"));
     IDSI_TRY(idsi_press_pour(press));
+done:
+    return st;
+}
+
+static ids_status put_degrees(idsi_press *press)
+{
+    ids_status st = IDS_OK;
+    idsi_text *out = &press->out;
+    idsi_degree degree = {0};
+
+    if (!idsi_report_by_partition(press->report)) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_text_puts(out,
+                            "<section id=\"modules\">\n<h2>Multiplicities</h2>\n<p>How often "
+                            "each irreducible module of the symmetric group, named by its "
+                            "partition, occurs in the three spaces. The row <em>total</em> has "
+                            "dimensions.</p>\n<p class=\"quiet\">In the charts a raised number "
+                            "counts equal parts: 3 2 1\u00B3 is 3+2+1+1+1. Consequences and "
+                            "quotient have scales of their own.</p>\n"));
+    for (size_t at = 0; idsi_report_next_degree(press->report, &at, &degree);) {
+        if (degree.partitions > 0) {
+            IDSI_TRY(put_degree(press, &degree));
+        }
+    }
+    IDSI_TRY(idsi_text_puts(out, "</section>\n"));
 done:
     return st;
 }
@@ -326,8 +349,8 @@ static ids_status put_provenance(idsi_press *press)
     size_t at = 0;
 
     IDSI_TRY(idsi_text_puts(out, "<section id=\"provenance\">\n<h2>Provenance</h2>\n<dl>\n"));
-    IDSI_TRY(idsi_text_puts(out, "<dt>page written by</dt><dd>idspan " IDS_VERSION_STRING
-                                 "</dd>\n"));
+    IDSI_TRY(
+        idsi_text_puts(out, "<dt>page written by</dt><dd>idspan " IDS_VERSION_STRING "</dd>\n"));
     while (idsi_report_next_note(press->report, &at, &name, &value)) {
         IDSI_TRY(idsi_text_puts(out, "<dt>"));
         IDSI_TRY(idsi_xml_string(out, name));
@@ -344,8 +367,6 @@ ids_status idsi_report_html(idsi_press *press)
 {
     ids_status st = IDS_OK;
     summary sum = sum_up(press->report);
-    idsi_degree degree = {0};
-    size_t at = 0;
 
     IDSI_TRY(put_head(press));
     IDSI_TRY(put_verdict(press, &sum));
@@ -353,11 +374,7 @@ ids_status idsi_report_html(idsi_press *press)
     IDSI_TRY(put_contents(press, &sum));
     IDSI_TRY(put_presentation(press));
     IDSI_TRY(put_dimensions(press));
-    while (idsi_report_next_degree(press->report, &at, &degree)) {
-        if (degree.partitions > 0) {
-            IDSI_TRY(put_degree(press, &degree));
-        }
-    }
+    IDSI_TRY(put_degrees(press));
     IDSI_TRY(put_gaps(press, &sum));
     IDSI_TRY(put_certainty(press, &sum));
     IDSI_TRY(put_provenance(press));

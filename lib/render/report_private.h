@@ -19,7 +19,7 @@ typedef struct idsi_report_row {
 struct ids_report {
     ids_ctx *ctx;
     char *title;
-    char *presentation; /* NULL: none; without NUL bytes */
+    char *presentation;    /* NULL: none; without NUL bytes */
     idsi_report_row *rows; /* by degree, then by index */
     size_t count;
     size_t capacity;
@@ -31,7 +31,7 @@ typedef struct idsi_degree {
     uint32_t degree;
     const idsi_report_row *rows;
     size_t partitions;
-    size_t done; /* of the partitions */
+    size_t done;                  /* of the partitions */
     const idsi_report_row *total; /* NULL: none */
 } idsi_degree;
 

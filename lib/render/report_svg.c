@@ -9,10 +9,10 @@
 #include "report_private.h"
 
 #define MARGIN 32
-#define HEADING 88   /* of the sheet, down to the first chart */
-#define SECTION 46   /* of a degree, down to its chart */
-#define BELOW 30     /* from a chart to the next heading */
-#define LINE 18      /* of the table of dimensions */
+#define HEADING 88 /* of the sheet, down to the first chart */
+#define SECTION 46 /* of a degree, down to its chart */
+#define BELOW 30   /* from a chart to the next heading */
+#define LINE 18    /* of the table of dimensions */
 #define TABLE_SKIP 26
 
 /* Right edges of its columns. */
@@ -93,7 +93,7 @@ done:
     return st;
 }
 
-/* ---- the numbers of every degree ------------------------------------------------------------- */
+/* ---- the numbers of every degree --------------------------------------------------------- */
 
 static ids_status put_cell(idsi_text *out, const char *class, size_t column, int32_t y)
 {
@@ -152,7 +152,7 @@ done:
     return st;
 }
 
-/* ---- degrees ------------------------------------------------------------------------------------ */
+/* ---- degrees ----------------------------------------------------------------------------- */
 
 static ids_status put_degree(idsi_press *press, const idsi_degree *degree, int32_t y)
 {
@@ -167,8 +167,8 @@ static ids_status put_degree(idsi_press *press, const idsi_degree *degree, int32
     IDSI_TRY(idsi_text_puts(out, "Multiplicities of the irreducible modules; each kind has a scale "
                                  "of its own"));
     if (degree->done < degree->partitions) {
-        IDSI_TRY(idsi_text_printf(out, "; %zu of %zu are computed", degree->done,
-                                  degree->partitions));
+        IDSI_TRY(
+            idsi_text_printf(out, "; %zu of %zu are computed", degree->done, degree->partitions));
     }
     IDSI_TRY(idsi_text_printf(out, "</text>\n<g transform=\"translate(%d %d)\">\n", MARGIN,
                               (int)(y + SECTION)));

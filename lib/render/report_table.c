@@ -103,7 +103,7 @@ done:
     return st;
 }
 
-/* ---- dimensions -------------------------------------------------------------------------------- */
+/* ---- dimensions -------------------------------------------------------------------------- */
 
 static ids_status put_dimensions_row(idsi_text *out, const idsi_degree *degree, extras shown)
 {
@@ -148,7 +148,7 @@ done:
     return st;
 }
 
-/* ---- one degree -------------------------------------------------------------------------------- */
+/* ---- one degree -------------------------------------------------------------------------- */
 
 static ids_status put_module_row(idsi_text *out, const idsi_report_row *row, extras shown)
 {
@@ -203,7 +203,7 @@ done:
     return st;
 }
 
-/* ---- what is not done ---------------------------------------------------------------------------- */
+/* ---- what is not done -------------------------------------------------------------------- */
 
 static ids_status put_gap_row(idsi_text *out, const idsi_report_row *row)
 {
@@ -240,8 +240,8 @@ ids_status idsi_put_gaps_table(idsi_press *press)
                                  "<th scope=\"col\">reason</th></tr></thead>\n<tbody>\n"));
     for (size_t i = 0; i < report->count; i++) {
         const idsi_report_row *row = &report->rows[i];
-        bool alone = i == 0 || report->rows[i - 1].given.numbers.degree !=
-                                   row->given.numbers.degree;
+        bool alone =
+            i == 0 || report->rows[i - 1].given.numbers.degree != row->given.numbers.degree;
         /* The total of a degree that is split is no cell of its own. */
         if (!idsi_report_is_done(row) && (!row->given.numbers.total || alone)) {
             IDSI_TRY(put_gap_row(out, row));

@@ -47,7 +47,7 @@ int32_t idsi_number_width(uint64_t number)
     return DIGIT_WIDTH * length + (length < (int32_t)FIRST_GROUPED ? 0 : (length - 1) / 3 * 2);
 }
 
-/* ---- partitions ----------------------------------------------------------------------------- */
+/* ---- partitions -------------------------------------------------------------------------- */
 
 ids_status idsi_put_partition(idsi_text *out, const ids_partition *partition)
 {
@@ -93,7 +93,7 @@ done:
     return st;
 }
 
-/* ---- the rest --------------------------------------------------------------------------------- */
+/* ---- the rest ---------------------------------------------------------------------------- */
 
 ids_status idsi_put_certainty(idsi_text *out, const ids_partition_row *numbers)
 {

@@ -29,8 +29,8 @@ done:
 
 ids_status report_finish(session *s, ids_report *report)
 {
-    ids_report_form form = (unsigned)s->set->format == FORMAT_SVG ? IDS_REPORT_SVG
-                                                                  : IDS_REPORT_HTML;
+    ids_report_form form =
+        (unsigned)s->set->format == FORMAT_SVG ? IDS_REPORT_SVG : IDS_REPORT_HTML;
 
     return ids_report_write(report, form, output_sink, &s->out);
 }
