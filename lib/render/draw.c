@@ -11,7 +11,7 @@
 
 #include "draw_private.h"
 
-/* ---- trees ------------------------------------------------------------------------------- */
+/* ---- trees -------------------------------------------------------------------------------- */
 
 /* Writes the prefix code of a type with label 0 for every leaf. */
 static void spell_type(const ids_types *types, uint32_t root, idsi_tree_picture *tree)
@@ -78,7 +78,7 @@ done:
     return st;
 }
 
-/* ---- words ------------------------------------------------------------------------------- */
+/* ---- words -------------------------------------------------------------------------------- */
 
 /* Number of monomials of all types of the degree; 0 when it is beyond 64 bits. */
 static uint64_t total_monomials(const idsi_sheet *sheet)
@@ -176,7 +176,7 @@ ids_status idsi_sheet_pour(idsi_sheet *sheet)
     return IDS_OK;
 }
 
-/* ---- the public calls -------------------------------------------------------------------- */
+/* ---- the public calls --------------------------------------------------------------------- */
 
 static ids_status draw(idsi_sheet *sheet, uint64_t count, const ids_draw_options *options)
 {

@@ -77,7 +77,7 @@ static int32_t larger(int32_t a, int32_t b)
     return a > b ? a : b;
 }
 
-/* ---- measuring --------------------------------------------------------------------------- */
+/* ---- measuring ---------------------------------------------------------------------------- */
 
 static void arrange(idsi_sheet *sheet)
 {
@@ -193,7 +193,7 @@ static void choose_columns(svg *s)
     s->sheet_width = 2 * MARGIN + (int32_t)s->columns * step - CELL_GAP;
 }
 
-/* ---- marks and trees --------------------------------------------------------------------- */
+/* ---- marks and trees ---------------------------------------------------------------------- */
 
 /* Appends a length given in tenths, without a useless ".0". */
 static ids_status put_tenths(idsi_text *out, int32_t tenths)
@@ -325,7 +325,7 @@ done:
     return st;
 }
 
-/* ---- heading ----------------------------------------------------------------------------- */
+/* ---- heading ------------------------------------------------------------------------------ */
 
 /* Places the entries of the legend, in lines; draws them too when `drawn`. */
 static ids_status legend(svg *s, bool drawn)

@@ -45,7 +45,7 @@ static int32_t larger(int32_t a, int32_t b)
     return a > b ? a : b;
 }
 
-/* ---- what stands at a node --------------------------------------------------------------- */
+/* ---- what stands at a node ---------------------------------------------------------------- */
 
 /* Symbol, fences or name of an operation; with its number when an other one looks the same. */
 static void node_sign(const ids_signature *sig, uint32_t op, char sign[NODE_CHARS])
@@ -87,7 +87,7 @@ static void arrange(idsi_sheet *sheet)
     idsi_layout_tree(sheet->sig, sheet->tree.tokens, sheet->tree.length, sheet->layout);
 }
 
-/* ---- the canvas -------------------------------------------------------------------------- */
+/* ---- the canvas --------------------------------------------------------------------------- */
 
 static ids_status reserve_lines(canvas *c, int32_t lines)
 {
@@ -160,7 +160,7 @@ done:
     return st;
 }
 
-/* ---- trees and captions ------------------------------------------------------------------ */
+/* ---- trees and captions ------------------------------------------------------------------- */
 
 /* Draws the tree that was fetched and arranged, with its left edge at x. */
 static void put_tree(canvas *c, int32_t x)
@@ -219,7 +219,7 @@ done:
     return st;
 }
 
-/* ---- the sheet --------------------------------------------------------------------------- */
+/* ---- the sheet ---------------------------------------------------------------------------- */
 
 static ids_status measure(canvas *c)
 {
