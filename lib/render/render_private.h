@@ -64,7 +64,8 @@ struct ids_writer {
     uint64_t rows;   /* rows taken so far */
     idsi_text notes; /* name NUL value NUL, note after note */
     idsi_text line;  /* what goes to the sink next */
-    idsi_text held;  /* text format: cells of the rows held back, each with its NUL */
+    idsi_text held;  /* text format: cells of the rows held back, each with its NUL; LaTeX: the
+                        first cell of a group of rows */
     size_t held_rows;
     bool flowing; /* text format: the heading is out, rows go straight through */
     bool ended;

@@ -19,7 +19,7 @@ _idspan()
     COMPREPLY=()
     case $previous in
     --format)
-        mapfile -t COMPREPLY < <(compgen -W "text csv json latex ascii svg tikz mtx" -- "$word")
+        mapfile -t COMPREPLY < <(compgen -W "text csv json latex svg html ascii tikz mtx" -- "$word")
         return
         ;;
     --output | --proof | --witness)

@@ -232,6 +232,9 @@ const task task_rank = {
         "\n"
         "When a limit is hit, or after Ctrl-C, the degrees that were finished are shown.\n"
         "\n"
+        "--format svg draws the growth of the dimensions and, by partition, the multiplicities;\n"
+        "--format html writes one page with tables, charts, presentation and provenance.\n"
+        "\n"
         "Columns: degree,free,consequences,quotient,certainty\n"
         "by partition: degree,partition,dimension,free,consequences,quotient,certainty",
     .examples = "  idspan rank pair.pres --degrees 1..6\n"
@@ -239,6 +242,8 @@ const task task_rank = {
                 "  idspan rank pair.pres --degrees 1..7 --primes 2 --seed 17 --format json\n"
                 "  idspan rank pair.pres --degrees 1..6 --field 3\n"
                 "  idspan rank pair.pres --degree 8 --by partition\n"
+                "  idspan rank pair.pres --degrees 1..8 --by partition --format html "
+                "--output pair.html\n"
                 "  idspan rank pair.pres --partition 4+3+1",
     .options = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) |
                BIT(OPTION_SEED) | BIT(OPTION_FIELD) | BIT(OPTION_BY) | BIT(OPTION_PARTITION) |
