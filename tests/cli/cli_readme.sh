@@ -55,7 +55,8 @@ for file in shown/*; do
     count=$((count + 1))
     command=$(head -n 1 "$file")
     # Empty lines at the end belong to the text around.
-    printf '%s\n' "$(tail -n +2 "$file")" >expected
+    expected=$(tail -n +2 "$file")
+    printf '%s' "${expected:+$expected$'\n'}" >expected
     (cd "$source_dir/data/crosses" && eval "$command") >got 2>&1
     matches expected got || complain "README.md: $command gives: $(cat got)"
 done

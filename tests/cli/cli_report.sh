@@ -63,7 +63,7 @@ has out "Not finished:"
 has out "not yet computed"
 has out "budget"
 
-# ---- refusals --------------------------------------------------------------------------------------
+# ---- refusals ------------------------------------------------------------------------------
 
 run 2 rank jordan.pres --degree 4 --format hmtl
 has err "did you mean html"

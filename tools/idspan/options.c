@@ -39,7 +39,8 @@ const option option_list[OPTION_END] = {
     [OPTION_WITNESS] = {"witness", "FILE", "if it does not, write a witness to FILE"},
     [OPTION_FORMAT] = {"format", "F",
                        "text (for people, the default), csv, json or latex;\n"
-                       "of rank also svg and html; of draw: text, ascii, svg or tikz; of matrix: mtx"},
+                       "of rank also svg and html; of draw: text, ascii, svg or\n"
+                       "tikz; of matrix: mtx"},
     [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
     [OPTION_MEMORY] = {"memory", "SIZE",
                        "use at most SIZE, such as 500M or 8G (default 4G);\n"
