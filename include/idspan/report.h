@@ -50,21 +50,36 @@ typedef struct ids_report ids_report;
  *
  * @param ctx     borrowed now, kept.
  * @param title   borrowed: what the tables are of, such as the name of the presentation's file.
- * @param report  out, owned: ids_report_free().
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @param report  out, owned: ids_report_free(); written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a copy of the title. Threads: one a ctx. Cancel: not polled. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_create(ids_ctx *ctx, const char *title,
                                                   ids_report **report);
 
-/** Frees a report; NULL is fine. Since: 0.1 */
+/**
+ * Frees a report.
+ *
+ * @param report  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `report` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_report_free(ids_report *report);
 
 /**
  * Sets the text of the presentation, which the page shows as it is; a second call replaces it.
  *
- * @param text    borrowed; bytes that are not UTF-8 are shown as U+FFFD.
+ * @param report  borrowed.
+ * @param text    borrowed, copied; bytes that are not UTF-8 are shown as U+FFFD.
  * @param length  bytes of text.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a copy. Threads: one a report. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_set_presentation(ids_report *report, const char *text,
                                                             size_t length);
@@ -74,18 +89,31 @@ IDS_API IDS_MUST_USE ids_status ids_report_set_presentation(ids_report *report, 
  * ids_partition_rank() and the total last. A degree can have only its total, or only some of its
  * partitions: nothing is added up, and a degree without a total is shown as not finished.
  *
- * @param row  borrowed now, copied.
- * @return IDS_OK; IDS_ERR_ARG (NULL, struct_size, unknown state, a degree over IDS_MAX_DEGREE, a
- *         partition that is not well formed or of another degree, numbers of which `free` is not
- *         the sum of the others, a row that is there already); IDS_ERR_NOMEM; IDS_ERR_LIMIT.
- *         After a failure the report is as before. Since: 0.1
+ * After a failure the report is as before.
+ *
+ * @param report  borrowed.
+ * @param row     borrowed now, copied.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, struct_size, unknown state, a degree over IDS_MAX_DEGREE, a
+ *                        partition that is not well formed or of another degree, numbers of which
+ *                        `free` is not the sum of the others, a row that is there already
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a copy, sometimes of the whole list. Threads: one a report. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_add(ids_report *report, const ids_report_row *row);
 
 /**
  * Adds a name and value to the provenance, shown in the order they come: version, primes, seed.
  *
- * @return IDS_OK, IDS_ERR_ARG (NULL, empty name), IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @param report  borrowed.
+ * @param name    borrowed, copied.
+ * @param value   borrowed, copied.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, empty name
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a copy. Threads: one a report. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_note(ids_report *report, const char *name,
                                                 const char *value);
@@ -95,9 +123,14 @@ IDS_API IDS_MUST_USE ids_status ids_report_note(ids_report *report, const char *
  *
  * @param report     borrowed.
  * @param form       page or picture.
- * @param sink       receives the output in pieces; sink_user is passed to it.
- * @return IDS_OK, IDS_ERR_ARG (NULL, unknown form), IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO
- * Cost: linear in the rows. Threads: one a ctx. Cancel: not polled. Since: 0.1
+ * @param sink       receives the output in pieces; called from this thread.
+ * @param sink_user  passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, unknown form
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_IO     the sink refused
+ * Cost: linear in the rows. Threads: one a report. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_write(ids_report *report, ids_report_form form,
                                                  ids_sink_fn sink, void *sink_user);

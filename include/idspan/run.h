@@ -66,17 +66,24 @@ typedef struct ids_run_options {
  * @param ctx      borrowed now, kept.
  * @param folder   borrowed.
  * @param text     borrowed: the presentation, `length` bytes.
+ * @param length   bytes of text.
  * @param source   borrowed: name of the text for messages; NULL: "input".
  * @param options  borrowed.
  * @param access   IDS_RUN_SHARED or IDS_RUN_ALONE; others are kept out until ids_run_free().
  * @param run      out, owned: ids_run_free(); written only on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG      NULL, degrees, struct_size, options that exclude each other; or the
- *                          folder holds another run (the message says what differs)
- *         IDS_ERR_UNABLE   somebody else works in the folder (the message says who)
- *         IDS_ERR_IO       the system refused something (the message says what and why)
- *         as ids_presentation_read(); IDS_ERR_NOMEM; IDS_ERR_LIMIT
- * Cost: reads all files of the folder. Source: SHA-256, FIPS 180-4. Since: 0.1
+ *         IDS_ERR_ARG        NULL, degrees, struct_size, options that exclude each other; or the
+ *                            folder holds another run: the message says what differs
+ *         IDS_ERR_UNABLE     somebody else works in the folder: the message says who
+ *         IDS_ERR_IO         the system refused something: the message says what and why
+ *         IDS_ERR_PARSE      the presentation, as ids_presentation_read()
+ *         IDS_ERR_DOMAIN     likewise
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget, a limit of presentations
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: reads all files of the folder. Threads: one a ctx.
+ * Cancel: polled while the presentation is read. Border: GMP (numbers as they are read).
+ * Source: SHA-256, FIPS 180-4. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_create(ids_ctx *ctx, const char *folder, const char *text,
                                                size_t length, const char *source,
@@ -90,18 +97,39 @@ IDS_API IDS_MUST_USE ids_status ids_run_create(ids_ctx *ctx, const char *folder,
  * @param folder  borrowed.
  * @param access  what for; IDS_RUN_SHARED and IDS_RUN_ALONE also want the same version.
  * @param run     out, owned: ids_run_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, another version); IDS_ERR_PARSE (run.txt or presentation.pres
- *         is damaged); IDS_ERR_UNABLE (somebody else works in it); IDS_ERR_IO (no such run, or the
- *         system refused something); IDS_ERR_NOMEM; IDS_ERR_LIMIT. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG     NULL, another version
+ *         IDS_ERR_PARSE   run.txt or presentation.pres is damaged
+ *         IDS_ERR_UNABLE  somebody else works in it
+ *         IDS_ERR_IO      no such run, or the system refused something
+ *         IDS_ERR_NOMEM   the allocator refused
+ *         IDS_ERR_LIMIT   byte budget
+ * Cost: reads all files of the folder. Threads: one a ctx. Cancel: not polled.
+ * Border: GMP (numbers as they are read). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_open(ids_ctx *ctx, const char *folder,
                                              ids_run_access access, ids_run **run);
 
-/** Closes a run and lets others in; NULL is fine. Since: 0.1 */
+/**
+ * Closes a run and lets others in.
+ *
+ * @param run  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `run` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_run_free(ids_run *run);
 
-/** Reads the cells again, which other processes may have stored. @return as ids_run_open().
- * Since: 0.1 */
+/**
+ * Reads the cells again, which other processes may have stored.
+ *
+ * @param run  borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the system refused something
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: reads all files of the folder. Threads: one a run. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_run_refresh(ids_run *run);
 
 /** What is known of a run. Strings and the presentation are borrowed from it. */
@@ -124,13 +152,34 @@ typedef struct ids_run_info {
     size_t failed;                         /**< cells that could not be computed */
 } ids_run_info;
 
-/** Describes a run. @return IDS_OK, IDS_ERR_ARG (NULL). Since: 0.1 */
+/**
+ * Describes a run.
+ *
+ * @param run   borrowed.
+ * @param info  out, written only on IDS_OK; what it points to is borrowed from the run.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL
+ * Cost: constant, no allocation. Threads: one a run. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_run_describe(const ids_run *run, ids_run_info *info);
 
-/** Number of primes that the run works modulo; 0 over a field of its own. Since: 0.1 */
+/**
+ * Number of primes that the run works modulo.
+ *
+ * @param run  borrowed; NULL gives 0.
+ * @return how many; 0 over a field of its own.
+ * Cost: constant, no allocation. Threads: one a run. Since: 0.1
+ */
 IDS_API size_t ids_run_prime_count(const ids_run *run);
 
-/** The index-th of them; 0 when out of range. Since: 0.1 */
+/**
+ * One of the primes that the run works modulo.
+ *
+ * @param run    borrowed; NULL gives 0.
+ * @param index  0 .. ids_run_prime_count()-1.
+ * @return the prime; 0 when the index is out of range.
+ * Cost: constant, no allocation. Threads: one a run. Since: 0.1
+ */
 IDS_API uint32_t ids_run_prime(const ids_run *run, size_t index);
 
 /* ---- cells ----------------------------------------------------------------------------------- */
@@ -172,18 +221,36 @@ typedef struct ids_cell {
     uint64_t memory;         /**< estimated bytes beside those of the lower degrees, likewise */
 } ids_cell;
 
-/** Number of cells: by degree, and in a degree in the order of ids_partition_rank(). Since: 0.1 */
+/**
+ * Number of cells: by degree, and in a degree in the order of ids_partition_rank().
+ *
+ * @param run  borrowed; NULL gives 0.
+ * @return number of cells.
+ * Cost: constant, no allocation. Threads: one a run. Since: 0.1
+ */
 IDS_API size_t ids_run_cell_count(const ids_run *run);
 
-/** Copies cell `index`. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+/**
+ * Describes a cell.
+ *
+ * @param run    borrowed.
+ * @param index  0 .. ids_run_cell_count()-1.
+ * @param cell   out, written only on IDS_OK; its strings are borrowed from the run.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: one a run. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_run_cell(const ids_run *run, size_t index, ids_cell *cell);
 
 /**
  * Index of the cell with an ID.
  *
+ * @param run    borrowed.
  * @param id     borrowed.
  * @param index  out, written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, no such cell: the message says so). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, no such cell: the message says so
+ * Cost: linear in the cells, no allocation. Threads: one a run. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_cell_find(const ids_run *run, const char *id,
                                                   size_t *index);
@@ -199,13 +266,27 @@ typedef struct ids_run_line {
 
 /**
  * Number of rows of the table, finished or not: a row a cell and, by partition, a total a degree.
+ *
  * A finished one has the rows of ids_partition_table_create(), or of ids_rank_table_create() with
- * `total` set. Since: 0.1
+ * `total` set.
+ *
+ * @param run  borrowed; NULL gives 0.
+ * @return number of rows.
+ * Cost: constant, no allocation. Threads: one a run. Since: 0.1
  */
 IDS_API size_t ids_run_line_count(const ids_run *run);
 
-/** Copies row `index`. @return IDS_OK; IDS_ERR_ARG; IDS_ERR_LIMIT (a total of more than 64 bits).
- * Since: 0.1 */
+/**
+ * A row of the table.
+ *
+ * @param run    borrowed.
+ * @param index  0 .. ids_run_line_count()-1.
+ * @param line   out, written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, index out of range
+ *         IDS_ERR_LIMIT  a total of more than 64 bits
+ * Cost: linear in the cells of the degree, no allocation. Threads: one a run. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_run_line_get(const ids_run *run, size_t index,
                                                  ids_run_line *line);
 
@@ -216,7 +297,15 @@ IDS_API IDS_MUST_USE ids_status ids_run_line_get(const ids_run *run, size_t inde
  *
  * By partition the lowest degrees are computed, which takes some tenths of a second at most, and
  * the dimensions of the others are extrapolated.
- * @return IDS_OK, IDS_ERR_ARG (NULL), IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_CANCELLED. Since: 0.1
+ *
+ * @param run  borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: as a table by partition of the lowest degrees. Threads: one a run. Cancel: polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_plan(ids_run *run);
 
@@ -229,7 +318,13 @@ typedef struct ids_run_work ids_run_work;
  * @param run   kept: must outlive the work; its context serves both.
  * @param top   a degree of the run.
  * @param work  out, owned: ids_run_work_free(); written only on IDS_OK.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_CANCELLED. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, `top` out of range
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: the identities are compiled. Threads: one a run. Cancel: polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_work_create(ids_run *run, uint32_t top,
                                                     ids_run_work **work);
@@ -238,10 +333,15 @@ IDS_API IDS_MUST_USE ids_status ids_run_work_create(ids_run *run, uint32_t top,
  * By partition: computes all that cells of a degree need, which includes the cells of all lower
  * degrees. Otherwise nothing. Calls with growing degrees go on where the last one ended.
  *
+ * @param work    borrowed.
  * @param degree  1 .. top.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_CANCELLED
- * Cost: as ids_partition_table_create() for the lower degrees, once a prime. Threads: up to the
- * context's number. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, degree out of range
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: as ids_partition_table_create() for the lower degrees, once a prime.
+ * Threads: up to the context's number. Cancel: polled. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_work_grow(ids_run_work *work, uint32_t degree);
 
@@ -249,7 +349,15 @@ IDS_API IDS_MUST_USE ids_status ids_run_work_grow(ids_run_work *work, uint32_t d
  * As the estimate of ids_run_plan(), for a cell whose lower degrees are there: `memory` is what
  * the elimination takes at most.
  *
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @param work     borrowed.
+ * @param cell     index of a cell whose degree is at most `top`.
+ * @param seconds  out, written only on IDS_OK.
+ * @param memory   out, written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, out of range
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: no more than the sizes of the spaces. Threads: one a run. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_work_estimate(ids_run_work *work, size_t cell,
                                                       double *seconds, uint64_t *memory);
@@ -259,24 +367,46 @@ IDS_API IDS_MUST_USE ids_status ids_run_work_estimate(ids_run_work *work, size_t
  *
  * The result depends on the question alone: not on the other cells that were computed with `work`,
  * nor on threads. `memory` is the context's peak.
+ *
+ * @param work    borrowed.
  * @param cell    index of a cell whose degree is at most `top`.
  * @param result  out, written only on IDS_OK.
- * @return as ids_run_work_grow(), and for whole degrees as ids_rank_table_create()
- * Threads: up to the context's number. Cancel: polled. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, out of range
+ *         IDS_ERR_UNABLE     `exact`: the coefficients do not fit the proof
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget, as ids_rank_table_create() and
+ *                            ids_partition_table_create()
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: as the cell of ids_rank_table_create() or ids_partition_table_create().
+ * Threads: up to the context's number. Cancel: polled.
+ * Border: FLINT, GMP, as ids_rank_table_create(). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_work_cell(ids_run_work *work, size_t cell,
                                                   ids_cell_result *result);
 
-/** Frees what cells are computed with; NULL is fine. Since: 0.1 */
+/**
+ * Frees what cells are computed with.
+ *
+ * @param work  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `work` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_run_work_free(ids_run_work *work);
 
 /**
  * Puts a finished cell on disk, and takes a note of its failure away. When the call has returned
  * IDS_OK the cell survives a crash of the system.
  *
- * @param run     opened with IDS_RUN_SHARED or IDS_RUN_ALONE.
+ * @param run     borrowed; opened with IDS_RUN_SHARED or IDS_RUN_ALONE.
+ * @param cell    index of the cell.
  * @param result  borrowed; host and time are filled in anew.
- * @return IDS_OK; IDS_ERR_ARG; IDS_ERR_IO (the message says why); IDS_ERR_NOMEM. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, index out of range, a run that is open for reading
+ *         IDS_ERR_IO     the message says why
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: two files are written and synced. Threads: one a run. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_store(ids_run *run, size_t cell,
                                               const ids_cell_result *result);
@@ -284,8 +414,15 @@ IDS_API IDS_MUST_USE ids_status ids_run_store(ids_run *run, size_t cell,
 /**
  * Notes on disk that a cell could not be computed.
  *
+ * @param run     borrowed; opened with IDS_RUN_SHARED or IDS_RUN_ALONE.
+ * @param cell    index of the cell.
  * @param reason  borrowed; one line; a longer one is cut.
- * @return as ids_run_store(). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, index out of range, a run that is open for reading
+ *         IDS_ERR_IO     the message says why
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a file is written and synced. Threads: one a run. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_store_failure(ids_run *run, size_t cell,
                                                       const char *reason);
