@@ -16,7 +16,7 @@
 extern "C" {
 #endif
 
-/** A signature, its identities and its candidates. Immutable once read, shareable. */
+/** A signature, its identities, candidates and models. Immutable once read, shareable. */
 typedef struct ids_presentation ids_presentation;
 
 /** Whether an identity is imposed or only to be tested. */
@@ -43,7 +43,6 @@ typedef enum ids_role {
  *                            place
  *         IDS_ERR_DOMAIN     a sign character that forces an operation to be zero; with place
  *         IDS_ERR_LIMIT      degree, number of terms or byte budget; with place where there is one
- *         IDS_ERR_UNABLE     a `model` statement; with place
  *         IDS_ERR_CANCELLED  cancelled
  *         IDS_ERR_ARG        NULL
  *         IDS_ERR_NOMEM      the allocator refused
@@ -111,6 +110,28 @@ IDS_API IDS_MUST_USE ids_status ids_presentation_info(const ids_presentation *pr
                                                       ids_role role, size_t index,
                                                       ids_identity_info *info);
 
+/** What the operations of a model are realised in. */
+typedef enum ids_model_kind {
+    IDS_MODEL_ASSOCIATIVE = 0, /**< words in associative letters, perhaps with an involution */
+    IDS_MODEL_ALGEBRA = 1,     /**< an algebra given by structure constants, in a file */
+    IDS_MODEL_OVER = 2         /**< polynomials in the operations of another presentation */
+} ids_model_kind;
+
+/** What is known of one model before its files are read. */
+typedef struct ids_model_info {
+    const char *name;    /**< borrowed */
+    ids_model_kind kind; /**< kind */
+    const char *file;    /**< borrowed; the file as written, "" when there is none */
+    uint32_t line;       /**< line of the text where it begins */
+} ids_model_info;
+
+/** Number of models; 0 for NULL. Since: 0.1 */
+IDS_API size_t ids_presentation_model_count(const ids_presentation *presentation);
+
+/** Describes a model, in the order of the text. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+IDS_API IDS_MUST_USE ids_status ids_presentation_model(const ids_presentation *presentation,
+                                                       size_t index, ids_model_info *info);
+
 /** Which form of an identity ids_presentation_print_identity() writes. */
 typedef enum ids_form {
     IDS_FORM_WRITTEN = 0, /**< as written, in its own letters, definitions expanded, monomials
@@ -160,8 +181,8 @@ IDS_API IDS_MUST_USE ids_status ids_presentation_print(ids_ctx *ctx,
                                                        char **text);
 
 /**
- * Whether two presentations have the same operations, identities and candidates, in the same
- * order. The names of identities count, those of variables only in so far as they order them.
+ * Whether two presentations have the same operations, identities, candidates and models, in the
+ * same order. The names of identities count, those of variables only in so far as they order them.
  *
  * @param a  borrowed, or NULL.
  * @param b  borrowed, or NULL.

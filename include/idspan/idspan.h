@@ -54,6 +54,7 @@
 #include <idspan/engine.h>
 #include <idspan/follows.h>
 #include <idspan/identity.h>
+#include <idspan/model.h>
 #include <idspan/render.h>
 #include <idspan/report.h>
 #include <idspan/run.h>

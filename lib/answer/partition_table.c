@@ -14,6 +14,7 @@
 
 #include "../engine/partition_private.h"
 #include "../young/young_private.h"
+#include "fresh_private.h"
 #include "rank_private.h"
 
 struct ids_partition_table {
@@ -118,7 +119,7 @@ done:
 }
 
 /* log2 of the orders of the row and the column group of a partition, together. */
-static double group_bits(const ids_partition *partition)
+double idsi_partition_group_bits(const ids_partition *partition)
 {
     double bits = 0;
     ids_partition conjugate = *partition;
@@ -145,7 +146,7 @@ void idsi_partition_certify(const idsi_laws *laws, uint64_t blocks, uint32_t pri
     row->bits = 0;
     *error = 0;
     if (bits >= 0 && row->quotient > 0) {
-        double minor = (double)row->free * (group_bits(&row->partition) + bits);
+        double minor = (double)row->free * (idsi_partition_group_bits(&row->partition) + bits);
         *error = idsi_prime_error(minor, idsi_blocks_error(blocks), primes);
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(*error);

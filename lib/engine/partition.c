@@ -225,7 +225,7 @@ static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, u
                   .degree = degree,
                   .shapes = shapes,
                   .count = count,
-                  .basis = degree < engine->top};
+                  .basis = degree < engine->top || engine->top_basis};
 
     IDSI_TRY(make_equations(engine, degree));
     sort_shapes(engine, shapes, count);

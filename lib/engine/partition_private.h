@@ -98,6 +98,7 @@ typedef struct idsi_partition_engine {
     const ids_signature *sig;
     uint32_t prime;
     uint32_t top;    /* largest degree */
+    bool top_basis;  /* bases are wanted for the shapes of the largest degree too */
     uint32_t solved; /* degrees of which all shapes are solved */
     double cost;       /* estimated, of all shapes that are wanted */
     double cost_done;  /* of them, in degrees that are finished */

@@ -102,6 +102,16 @@ typedef struct idsi_declared {
     size_t lexeme; /* index of its first lexeme after the word `operation` */
 } idsi_declared;
 
+/* An operation with names for its arguments; the numbers are those of lexemes. */
+typedef struct idsi_pattern {
+    ids_notation notation;
+    size_t first;
+    size_t open;
+    size_t close;
+    uint32_t count;
+    size_t argument[IDS_MAX_ARITY];
+} idsi_pattern;
+
 typedef struct idsi_definition {
     size_t lexeme; /* index of its name */
     uint32_t arity;
@@ -134,6 +144,7 @@ typedef struct idsi_reader {
 
     ids_presentation *presentation; /* being built */
     size_t identity_capacity;
+    size_t model_capacity;
 } idsi_reader;
 
 /* (presentation.c) Frees everything that the reader has, the presentation included. */
@@ -185,7 +196,9 @@ ids_status idsi_reader_end(idsi_reader *reader, const char *expected);
 /* (group.c) Joins lines to statements, checks that fences match, reads the operations. */
 ids_status idsi_reader_group(idsi_reader *reader);
 
-/* (operation.c) Reads what follows the word `operation`. */
+/* (operation.c) Reads an operation with different names as arguments. */
+ids_status idsi_reader_pattern(idsi_reader *reader, idsi_pattern *pattern);
+/* Reads what follows the word `operation`. */
 ids_status idsi_reader_declare(idsi_reader *reader);
 void idsi_declared_clear(ids_ctx *ctx, idsi_declared *declared);
 
@@ -194,6 +207,13 @@ ids_status idsi_reader_coefficient(idsi_reader *reader, mpq_ptr coefficient, boo
 
 /* (expression.c) Reads a sum; `value` must be new. */
 ids_status idsi_reader_sum(idsi_reader *reader, idsi_value *value);
+/* An operation is used: fails unless it is declared above. */
+ids_status idsi_reader_check_declared(idsi_reader *reader, size_t op, size_t use);
+
+/* (model.c) Reads what follows the word `model`. */
+ids_status idsi_reader_model(idsi_reader *reader);
+/* Fails when a model leaves an operation out. */
+ids_status idsi_reader_check_models(idsi_reader *reader);
 
 /* (identity.c) Fills in everything but role, name and line; takes the polynomial of `value`. */
 ids_status idsi_identity_finish(idsi_reader *reader, idsi_identity *identity, idsi_value *value);

@@ -30,6 +30,10 @@ void ids_presentation_free(ids_presentation *presentation)
     for (size_t i = 0; i < presentation->count; i++) {
         identity_clear(ctx, &presentation->list[i]);
     }
+    for (size_t i = 0; i < presentation->model_count; i++) {
+        idsi_model_clear(ctx, &presentation->models[i]);
+    }
+    idsi_free(ctx, presentation->models);
     idsi_free(ctx, presentation->list);
     ids_signature_free(presentation->sig);
     idsi_free(ctx, presentation);
@@ -158,6 +162,25 @@ ids_status ids_presentation_info(const ids_presentation *presentation, ids_role 
     return IDS_OK;
 }
 
+size_t ids_presentation_model_count(const ids_presentation *presentation)
+{
+    return presentation == NULL ? 0 : presentation->model_count;
+}
+
+ids_status ids_presentation_model(const ids_presentation *presentation, size_t index,
+                                  ids_model_info *info)
+{
+    if (presentation == NULL || info == NULL || index >= presentation->model_count) {
+        return IDS_ERR_ARG;
+    }
+    const idsi_model *model = &presentation->models[index];
+    *info = (ids_model_info){.name = model->name,
+                             .kind = model->kind,
+                             .file = model->file == NULL ? "" : model->file,
+                             .line = model->line};
+    return IDS_OK;
+}
+
 /* ---- equality -------------------------------------------------------------------------------- */
 
 static bool has_element(const idsi_group *group, const ids_signed_order *order)
@@ -210,11 +233,17 @@ bool ids_presentation_equal(const ids_presentation *a, const ids_presentation *b
     if (a == NULL || b == NULL) {
         return a == b;
     }
-    if (a->count != b->count || !idsi_signature_equal(a->sig, b->sig)) {
+    if (a->count != b->count || a->model_count != b->model_count ||
+        !idsi_signature_equal(a->sig, b->sig)) {
         return false;
     }
     for (size_t i = 0; i < a->count; i++) {
         if (!same_identity(&a->list[i], &b->list[i])) {
+            return false;
+        }
+    }
+    for (size_t i = 0; i < a->model_count; i++) {
+        if (!idsi_model_equal(&a->models[i], &b->models[i])) {
             return false;
         }
     }

@@ -68,5 +68,10 @@ ids_status idsi_skews_cut(idsi_skews *skews, uint32_t number, uint32_t at);
  */
 void idsi_seminormal_exchange(const idsi_skew *skew, uint32_t i, uint32_t p,
                               const uint32_t *inverse, uint32_t *block, size_t width);
+/*
+ * Exchanges, to be applied to covectors in turn, for the permutation place j -> label[j]; label is
+ * sorted by that. `word` has room for n * n; returns how many there are.
+ */
+size_t idsi_seminormal_word(uint8_t *label, uint32_t n, uint8_t *word);
 
 #endif

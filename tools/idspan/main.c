@@ -12,7 +12,8 @@
 #include "tool.h"
 
 const task *const task_list[] = {&task_show, &task_types,   &task_basis, &task_count,  &task_rank,
-                                 &task_draw, &task_follows, &task_check, &task_matrix, NULL};
+                                 &task_draw, &task_follows, &task_check, &task_fresh,
+                                 &task_matrix, NULL};
 
 const task *task_find(const char *name)
 {

@@ -37,6 +37,9 @@ const option option_list[OPTION_END] = {
     [OPTION_ALL] = {"all", NULL, "all candidates of the file"},
     [OPTION_PROOF] = {"proof", "FILE", "if it follows, write a derivation to FILE"},
     [OPTION_WITNESS] = {"witness", "FILE", "if it does not, write a witness to FILE"},
+    [OPTION_MODEL] = {"model", "NAME", "the model NAME of the file"},
+    [OPTION_TABLE] = {"table", NULL, "only count, and write no identities down"},
+    [OPTION_SAVE] = {"save", "FILE", "write a presentation with what is found to FILE"},
     [OPTION_FORMAT] = {"format", "F",
                        "text (for people, the default), csv, json or latex;\n"
                        "of rank also svg and html; of draw: text, ascii, svg or\n"
@@ -198,6 +201,12 @@ static bool read_value(option_id id, const char *value, settings *read)
         return true;
     case OPTION_WITNESS:
         read->witness = value;
+        return true;
+    case OPTION_MODEL:
+        read->model = value;
+        return true;
+    case OPTION_SAVE:
+        read->save = value;
         return true;
     case OPTION_FORMAT:
         read->format_name = value; /* which there are depends on the task */
@@ -394,7 +403,8 @@ static bool check_pairs(const settings *read)
         {OPTION_FIELD, OPTION_PRIMES},   {OPTION_FIELD, OPTION_SEED},
         {OPTION_PLAIN, OPTION_FIELD},    {OPTION_PLAIN, OPTION_SEED},
         {OPTION_CANDIDATE, OPTION_ALL},  {OPTION_PROOF, OPTION_ALL},
-        {OPTION_WITNESS, OPTION_ALL},    {OPTION_PARTITION, OPTION_CROSS_CHECK}};
+        {OPTION_WITNESS, OPTION_ALL},    {OPTION_PARTITION, OPTION_CROSS_CHECK},
+        {OPTION_TABLE, OPTION_SAVE}};
 
     for (size_t i = 0; i < sizeof pairs / sizeof *pairs; i++) {
         unsigned both = BIT(pairs[i][0]) | BIT(pairs[i][1]);

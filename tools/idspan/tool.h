@@ -43,6 +43,9 @@ typedef enum option_id {
     OPTION_ALL,
     OPTION_PROOF,
     OPTION_WITNESS,
+    OPTION_MODEL,
+    OPTION_TABLE,
+    OPTION_SAVE,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -88,6 +91,8 @@ typedef struct settings {
     const char *candidate;      /* value of --candidate, NULL: none */
     const char *proof;          /* value of --proof, NULL: none */
     const char *witness;        /* value of --witness, NULL: none */
+    const char *model;          /* value of --model, NULL: none */
+    const char *save;           /* value of --save, NULL: none */
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
@@ -144,6 +149,7 @@ extern const task task_draw;
 extern const task task_matrix;
 extern const task task_follows;
 extern const task task_check;
+extern const task task_fresh;
 
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
