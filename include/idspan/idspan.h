@@ -53,6 +53,7 @@
 #include <idspan/draw.h>
 #include <idspan/engine.h>
 #include <idspan/follows.h>
+#include <idspan/fresh.h>
 #include <idspan/identity.h>
 #include <idspan/model.h>
 #include <idspan/render.h>

@@ -1,8 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /**
  * @file model.h
- * Models: something in which the operations of a presentation are realised, and the identities
- * that hold there and do not follow from those of the presentation.
+ * Models: something in which the operations of a presentation are realised.
  *
  * A model is declared by `model` statements of the presentation: in associative words, perhaps with
  * an involution; in an algebra given by structure constants; or by polynomials in the operations of
@@ -11,13 +10,11 @@
 #ifndef IDSPAN_MODEL_H
 #define IDSPAN_MODEL_H
 
-#include <idspan/answer.h>
+#include <idspan/algebra.h>
 
 #ifdef __cplusplus
 extern "C" {
 #endif
-
-/* ---- opening --------------------------------------------------------------------------------- */
 
 /**
  * Brings a file that a model names: hands its bytes to `sink`, in pieces, with sink_user.
@@ -60,83 +57,14 @@ IDS_API void ids_model_free(ids_model *model);
  * Words are multiplied out, and algebras evaluated on all tuples of basis elements; that is exact.
  * Over another presentation it is decided modulo a prime; then "holds" is wrong with probability
  * 2^-bits at most.
- * @param ctx        borrowed.
- * @param holds      out.
- * @param certainty  out.
- * @param bits       out, may be NULL: as in ids_partition_row.
+ * @param ctx    borrowed.
+ * @param holds  out.
+ * @param bits   out, may be NULL: 0 when that is exact, else as above.
  * @return IDS_OK; IDS_ERR_ARG (NULL, no such identity); IDS_ERR_NOMEM, IDS_ERR_LIMIT,
  *         IDS_ERR_CANCELLED. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_model_holds(ids_ctx *ctx, const ids_model *model, ids_role role,
-                                                size_t index, bool *holds,
-                                                ids_certainty *certainty, uint32_t *bits);
-
-/* ---- new identities -------------------------------------------------------------------------- */
-
-/** Options of ids_fresh_create(); set struct_size, the rest to 0 for the defaults. */
-typedef struct ids_fresh_options {
-    size_t struct_size; /**< sizeof(ids_fresh_options) */
-    uint32_t primes;    /**< number of random primes to compute with; 0: one */
-    uint64_t seed;      /**< seed that primes and points are drawn from */
-    bool table_only;    /**< only count; no identities are written down, and none become known */
-} ids_fresh_options;
-
-/** One row of the table: a partition, or the whole degree. */
-typedef struct ids_fresh_row {
-    uint32_t degree;         /**< degree */
-    bool total;              /**< the row of the whole degree: then numbers are dimensions */
-    ids_partition partition; /**< partition, unless total */
-    uint64_t dimension;      /**< of its irreducible module; 0 for a total */
-    uint64_t free;           /**< multiplicity in the free algebra */
-    uint64_t holding;        /**< in the identities that hold in the model */
-    uint64_t consequences;   /**< in what follows from the identities that are known */
-    uint64_t fresh;          /**< holding - consequences */
-    ids_certainty certainty; /**< EXACT: `fresh` is proved */
-    uint32_t bits;           /**< MODULAR: `fresh` is wrong with probability at most 2^-bits */
-} ids_fresh_row;
-
-/** The identities of a model that are new, degree by degree. Immutable, shareable. */
-typedef struct ids_fresh ids_fresh;
-
-/**
- * Finds what holds in a model and does not follow from what is known, in a range of degrees.
- *
- * In each degree and for each partition, `holding` and `consequences` are computed modulo random
- * primes. The identities of the presentation must hold in the model, which is verified first; so
- * where both numbers agree they are exact. Where they do not, one identity is found for each new
- * irreducible module, unless only the table is wanted, and what is found counts as known in all
- * higher degrees.
- * @param ctx      borrowed now, kept.
- * @param model    kept: must outlive the result.
- * @param from,to  1 <= from <= to <= 16.
- * @param options  borrowed; NULL for the defaults.
- * @param fresh    out, owned: ids_fresh_free(). Also written with IDS_ERR_LIMIT and
- *                 IDS_ERR_CANCELLED: then it has the degrees that were finished.
- * @return IDS_OK; IDS_ERR_DOMAIN (an identity of the presentation does not hold in the model; the
- *         message names it); IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_CANCELLED
- * Cost: a table by partition for the consequences; for words about as much; for an algebra
- * degree! evaluations at some points. Threads: up to the context's number, for the table by
- * partition. Border: GMP, FLINT (lattices). Since: 0.1
- */
-IDS_API IDS_MUST_USE ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model,
-                                                 uint32_t from, uint32_t to,
-                                                 const ids_fresh_options *options,
-                                                 ids_fresh **fresh);
-
-/** Frees a result; NULL is fine. Since: 0.1 */
-IDS_API void ids_fresh_free(ids_fresh *fresh);
-
-/** Number of rows; 0 for NULL. Since: 0.1 */
-IDS_API size_t ids_fresh_count(const ids_fresh *fresh);
-
-/** Row number `index`. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
-IDS_API IDS_MUST_USE ids_status ids_fresh_row_get(const ids_fresh *fresh, size_t index,
-                                                  ids_fresh_row *row);
-
-/** Number of primes that were used, and prime number `index`; 0 when there is none. Since: 0.1 */
-IDS_API size_t ids_fresh_prime_count(const ids_fresh *fresh);
-/** See ids_fresh_prime_count(). Since: 0.1 */
-IDS_API uint64_t ids_fresh_prime(const ids_fresh *fresh, size_t index);
+                                                size_t index, bool *holds, uint32_t *bits);
 
 #ifdef __cplusplus
 }

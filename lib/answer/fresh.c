@@ -48,12 +48,11 @@ static ids_status check_identities(ids_ctx *ctx, const ids_model *model, uint32_
 
     for (size_t i = 0; i < count; i++) {
         const idsi_identity *identity = idsi_presentation_get(model->pres, IDS_ROLE_IDENTITY, i);
-        ids_certainty certainty = IDS_CERTAINTY_EXACT;
         bool holds = true;
         if (identity->degree > to) {
             continue;
         }
-        IDSI_TRY(ids_model_holds(ctx, model, IDS_ROLE_IDENTITY, i, &holds, &certainty, NULL));
+        IDSI_TRY(ids_model_holds(ctx, model, IDS_ROLE_IDENTITY, i, &holds, NULL));
         if (!holds) {
             st = idsi_fail(ctx, IDS_ERR_DOMAIN,
                            "the identity %s%s of line %u does not hold in the model %s; new "

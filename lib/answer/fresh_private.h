@@ -5,6 +5,8 @@
 #ifndef IDSI_FRESH_PRIVATE_H
 #define IDSI_FRESH_PRIVATE_H
 
+#include <idspan/fresh.h>
+
 #include "../model/realize_private.h"
 
 struct ids_fresh {

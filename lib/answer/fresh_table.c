@@ -21,8 +21,8 @@ typedef struct job {
     uint32_t degree;
     idsi_laws *laws;
     ids_cocharacter *free;
-    size_t count;        /* partitions */
-    ids_fresh_row *rows; /* and the total */
+    size_t count;           /* partitions */
+    ids_fresh_row *rows;    /* and the total */
     double *quotient_error; /* of each row mod one prime, the largest */
     double *image_error;
     double image_bits;
@@ -56,8 +56,8 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, idsi_image *im
     uint32_t quotient = 0;
     uint32_t rank = 0;
 
-    IDSI_TRY(idsi_partition_multiplicity(engine, row->partition.part, row->partition.length,
-                                         &quotient));
+    IDSI_TRY(
+        idsi_partition_multiplicity(engine, row->partition.part, row->partition.length, &quotient));
     if (quotient > row->free) {
         st = idsi_fail(j->ctx, IDS_ERR_INTERNAL,
                        "degree %u: a multiplicity is %u in the quotient, %llu in the free algebra",
@@ -71,8 +71,8 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, idsi_image *im
     if (row->free - rank < row->holding) {
         row->holding = row->free - rank;
     }
-    j->quotient_error[i] = engine->error > j->quotient_error[i] ? engine->error
-                                                                : j->quotient_error[i];
+    j->quotient_error[i] =
+        engine->error > j->quotient_error[i] ? engine->error : j->quotient_error[i];
     j->image_error[i] = image->error > j->image_error[i] ? image->error : j->image_error[i];
 done:
     return st;
@@ -159,8 +159,8 @@ static ids_status hand_over(job *j)
     ids_fresh *fresh = j->fresh;
 
     for (size_t i = 0; i <= j->count; i++) {
-        IDSI_TRY(idsi_grow(j->ctx, fresh->count, &fresh->capacity, sizeof *fresh->rows,
-                           &fresh->rows));
+        IDSI_TRY(
+            idsi_grow(j->ctx, fresh->count, &fresh->capacity, sizeof *fresh->rows, &fresh->rows));
         fresh->rows[fresh->count++] = j->rows[i];
     }
 done:

@@ -48,6 +48,9 @@ ids_status idsi_poly_normalize(idsi_poly *poly);
 /* Multiplies by a rational so that coefficients are integers with content 1, the first positive.
  * IDS_ERR_LIMIT, the polynomial unchanged, when the common denominator is enormous. */
 ids_status idsi_poly_primitive(idsi_poly *poly);
+/* out, without terms, becomes body with label i replaced by arguments[i-1], expanded. */
+ids_status idsi_poly_substitute(idsi_poly *out, const idsi_poly *body, uint32_t count,
+                                const idsi_poly *arguments);
 bool idsi_poly_equal(const idsi_poly *a, const idsi_poly *b);
 /* names as in idsi_tree_print(). Writes "0" for no terms. */
 ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi_text *text);

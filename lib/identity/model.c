@@ -348,8 +348,8 @@ static ids_status read_realization(idsi_reader *reader, idsi_model *model)
         goto done;
     }
     reader->at++;
-    IDSI_TRY(idsi_grow(reader->ctx, model->count, &model->capacity, sizeof *model->list,
-                       &model->list));
+    IDSI_TRY(
+        idsi_grow(reader->ctx, model->count, &model->capacity, sizeof *model->list, &model->list));
     idsi_realization *made = &model->list[model->count++];
     *made = (idsi_realization){.op = op,
                                .arity = pattern.count,

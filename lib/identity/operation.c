@@ -185,7 +185,8 @@ static ids_status read_order(idsi_reader *reader, const idsi_pattern *base, ids_
     return IDS_OK;
 }
 
-static ids_status read_equations(idsi_reader *reader, const idsi_pattern *base, idsi_declared *declared)
+static ids_status read_equations(idsi_reader *reader, const idsi_pattern *base,
+                                 idsi_declared *declared)
 {
     ids_operation *op = &declared->operation;
     ids_status st = IDS_OK;
@@ -203,7 +204,8 @@ done:
     return st;
 }
 
-static ids_status read_symmetry(idsi_reader *reader, const idsi_pattern *base, idsi_declared *declared)
+static ids_status read_symmetry(idsi_reader *reader, const idsi_pattern *base,
+                                idsi_declared *declared)
 {
     static const char *const words[3] = {"none", "commutative", "alternating"};
     static const ids_symmetry kinds[3] = {IDS_SYMMETRY_NONE, IDS_SYMMETRY_COMMUTATIVE,

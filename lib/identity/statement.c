@@ -294,11 +294,12 @@ static ids_status fail_word(idsi_reader *reader, size_t word)
 {
     const idsi_shown found = idsi_reader_show(reader, word);
     if (reader->lexemes[word].kind != IDSI_LEX_NAME) {
-        return idsi_reader_fail(reader, IDS_ERR_PARSE, word,
-                                "expected a statement word (operation, define, identity, "
-                                "candidate, model), found %s; to go on with the statement above, end "
-                                "its line in an operator",
-                                found.text);
+        return idsi_reader_fail(
+            reader, IDS_ERR_PARSE, word,
+            "expected a statement word (operation, define, identity, "
+            "candidate, model), found %s; to go on with the statement above, end "
+            "its line in an operator",
+            found.text);
     }
     const char *near = idsi_reader_nearest(reader, word, idsi_statement_words, 5);
     return idsi_reader_fail(reader, IDS_ERR_PARSE, word,

@@ -129,26 +129,116 @@ done:
     return st;
 }
 
+/* ---- over another presentation --------------------------------------------------------------- */
+
+#define OVER_PRIMES 2u
+
+/* The polynomial that an identity is there. */
+static ids_status expand_over(const ids_model *model, const idsi_poly *poly, idsi_poly *sum)
+{
+    ids_status st = IDS_OK;
+    idsi_poly value;
+    mpq_t product;
+
+    mpq_init(product);
+    idsi_poly_init(&value, model->ctx, model->base->sig);
+    for (size_t i = 0; i < poly->count; i++) {
+        IDSI_TRY(idsi_over_tree(model, poly->tokens + poly->start[i], &value));
+        for (size_t t = 0; t < value.count; t++) {
+            const size_t begin = value.start[t];
+            mpq_mul(product, poly->coefficients[i], value.coefficients[t]);
+            IDSI_TRY(
+                idsi_poly_append(sum, product, value.tokens + begin, value.start[t + 1] - begin));
+        }
+        idsi_poly_clear(&value);
+        IDSI_TRY(idsi_poll(model->ctx, NULL));
+    }
+    sum->variables = poly->degree;
+    IDSI_TRY(idsi_poly_normalize(sum));
+done:
+    idsi_poly_clear(&value);
+    mpq_clear(product);
+    return st;
+}
+
+/*
+ * "Does not hold" is as sure as the primes are: a prime can make a polynomial that is 0 only look
+ * like another when it divides a denominator in its derivation. "Holds" can come from a prime that
+ * divides a value, or from covectors that see nothing.
+ */
+static ids_status holds_over(ids_ctx *ctx, const ids_model *model, const idsi_poly *poly,
+                             bool *holds, uint32_t *bits)
+{
+    ids_status st = IDS_OK;
+    idsi_laws *laws = NULL;
+    idsi_partition_engine *base = NULL;
+    uint32_t primes[OVER_PRIMES] = {0};
+    idsi_random random;
+    idsi_poly sum;
+
+    idsi_random_seed(&random, poly->degree);
+    idsi_poly_init(&sum, ctx, model->base->sig);
+    *holds = true;
+    *bits = 0;
+    IDSI_TRY(expand_over(model, poly, &sum));
+    for (uint32_t k = 0; sum.count > 0 && *holds && k < OVER_PRIMES; k++) {
+        primes[k] = idsi_prime_draw(&random, primes, k);
+        IDSI_TRY(idsi_image_over_open(ctx, model, primes[k], sum.degree, &laws, &base));
+        IDSI_TRY(idsi_over_vanishes(ctx, base, &sum, holds));
+        idsi_partition_free(base);
+        idsi_laws_free(laws);
+        base = NULL;
+        laws = NULL;
+    }
+    if (sum.count > 0) {
+        const double minor = 64.0 * poly->degree * poly->degree * (double)(sum.count + 1);
+        *bits = idsi_prime_error_bits(minor, 1e-12, OVER_PRIMES);
+    }
+done:
+    idsi_poly_clear(&sum);
+    idsi_partition_free(base);
+    idsi_laws_free(laws);
+    return st;
+}
+
+/* ---- in an algebra --------------------------------------------------------------------------- */
+
+static ids_status holds_in_algebra(ids_ctx *ctx, const ids_model *model, ids_role role,
+                                   size_t index, bool *holds)
+{
+    return ids_algebra_holds(ctx, model->algebra, model->pres, role, index, holds, NULL, 0);
+}
+
 /* ---- all kinds ------------------------------------------------------------------------------- */
 
 ids_status ids_model_holds(ids_ctx *ctx, const ids_model *model, ids_role role, size_t index,
-                           bool *holds, ids_certainty *certainty, uint32_t *bits)
+                           bool *holds, uint32_t *bits)
 {
     ids_status st = IDS_OK;
     const idsi_identity *identity =
         model == NULL ? NULL : idsi_presentation_get(model->pres, role, index);
     bool found = true;
+    uint32_t claimed = 0;
 
-    if (ctx == NULL || identity == NULL || holds == NULL || certainty == NULL) {
+    if (ctx == NULL || identity == NULL || holds == NULL) {
         return idsi_fail_arg(ctx, "context, model, identity or result");
     }
     if (identity->linear.count > 0) {
-        IDSI_TRY(holds_in_words(ctx, model, &identity->linear, &found));
+        switch (model->decl->kind) {
+        case IDS_MODEL_ASSOCIATIVE:
+            IDSI_TRY(holds_in_words(ctx, model, &identity->linear, &found));
+            break;
+        case IDS_MODEL_ALGEBRA:
+            IDSI_TRY(holds_in_algebra(ctx, model, role, index, &found));
+            break;
+        case IDS_MODEL_OVER:
+            IDSI_TRY(holds_over(ctx, model, &identity->linear, &found, &claimed));
+            break;
+        }
     }
     *holds = found;
-    *certainty = IDS_CERTAINTY_EXACT;
     if (bits != NULL) {
-        *bits = 0;
+        *bits = claimed;
     }
 done:
     return st;

@@ -132,8 +132,8 @@ static ids_status apply_tree(state *s, const idsi_token **at, uint32_t *place)
     }
     start[made->arity] = *place;
     for (size_t w = 0; w < made->count; w++) {
-        IDSI_TRY(apply_word(s, &made->words[w], made->arity, s->image->words.coefficient[op][w],
-                            start));
+        IDSI_TRY(
+            apply_word(s, &made->words[w], made->arity, s->image->words.coefficient[op][w], start));
     }
     clear_blocks(s->image->ctx, s->block, s->sets);
     uint32_t **swap = s->block;

@@ -9,12 +9,22 @@
 
 #include "../engine/partition_private.h"
 #include "../young/young_private.h"
+#include "model_private.h"
 
 struct ids_model {
     ids_ctx *ctx;
     const ids_presentation *pres;
     const idsi_model *decl;
+    ids_algebra *algebra;                   /* of an algebra: owned */
+    uint32_t operation[IDS_MAX_OPERATIONS]; /* index of each operation there */
+    ids_presentation *base;                 /* over another presentation: owned */
+    idsi_poly *value; /* each operation as a polynomial there, label i being argument i */
 };
+
+/* A multilinear tree as a polynomial over the other presentation; `value` has no terms. (over.c) */
+ids_status idsi_over_tree(const ids_model *model, const idsi_token *tree, idsi_poly *value);
+/* Reads the polynomials; the other presentation is there. */
+ids_status idsi_over_open(ids_model *model);
 
 /* ---- sums of words (words.c) ------------------------------------------------------------------
  * A word is a number with five bits a letter, the first letter lowest: the letter, from 0, and
@@ -83,7 +93,13 @@ typedef struct idsi_image {
     idsi_random random;
     idsi_workspace work;
     double error; /* probability that random choices have missed a map, of the last rank */
-    idsi_word_operations words;
+    idsi_word_operations words; /* in words */
+    idsi_residues *residues;    /* in an algebra, */
+    size_t point_count;         /* and the values at points that were drawn so far */
+    size_t point_capacity;
+    uint32_t **points; /* degree! x generators x dimension residues */
+    idsi_laws *laws;   /* over a presentation: its laws, and all its maps */
+    idsi_partition_engine *base;
 } idsi_image;
 
 /* *good is false, and there is no result, when the prime divides a denominator of the model. */
@@ -102,5 +118,17 @@ ids_status idsi_image_eliminate(idsi_image *image, uint32_t *rows, size_t count,
 /* (image_words.c) */
 ids_status idsi_image_words(idsi_image *image, const idsi_skew *skew, uint32_t bound,
                             uint32_t *rank);
+
+/* (image_algebra.c) */
+ids_status idsi_image_algebra(idsi_image *image, const idsi_skew *skew, uint32_t bound,
+                              uint32_t *rank);
+
+/* (image_over.c) Solves the other presentation; then ranks, and whether a polynomial there is 0. */
+ids_status idsi_image_over_open(ids_ctx *ctx, const ids_model *model, uint32_t prime,
+                                uint32_t degree, idsi_laws **laws, idsi_partition_engine **base);
+ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, uint32_t bound,
+                           uint32_t *rank);
+ids_status idsi_over_vanishes(ids_ctx *ctx, idsi_partition_engine *base, const idsi_poly *poly,
+                              bool *zero);
 
 #endif

@@ -23,8 +23,8 @@ ids_status idsi_words_init(idsi_word_operations *words, ids_ctx *ctx, const ids_
     *good = true;
     for (size_t i = 0; i < model->decl->count; i++) {
         const idsi_realization *made = &model->decl->list[i];
-        IDSI_TRY(idsi_alloc_array(ctx, made->count, sizeof(uint32_t),
-                                  &words->coefficient[made->op]));
+        IDSI_TRY(
+            idsi_alloc_array(ctx, made->count, sizeof(uint32_t), &words->coefficient[made->op]));
         for (size_t w = 0; w < made->count; w++) {
             *good = *good && idsi_mod_rational(made->words[w].coefficient, prime,
                                                &words->coefficient[made->op][w]);
@@ -118,7 +118,8 @@ static ids_status collect(ids_ctx *ctx, uint32_t p, entry *list, size_t count, i
         } else {
             list[kept++] = list[i];
         }
-        if (list[kept - 1].value == 0 && (i + 1 == count || list[i + 1].key != list[kept - 1].key)) {
+        if (list[kept - 1].value == 0 &&
+            (i + 1 == count || list[i + 1].key != list[kept - 1].key)) {
             kept--;
         }
     }
@@ -190,8 +191,7 @@ ids_status idsi_words_product(const idsi_word_operations *words, uint32_t op,
 {
     ids_status st = IDS_OK;
     const idsi_realization *made = idsi_model_realization(words->model->decl, op);
-    product t = {
-        .words = words, .arity = made->arity, .arguments = arguments, .length = length};
+    product t = {.words = words, .arity = made->arity, .arguments = arguments, .length = length};
     uint64_t room = made->count;
 
     for (uint32_t i = 0; i < t.arity; i++) {

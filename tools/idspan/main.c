@@ -60,7 +60,7 @@ static void explain(const session *s, ids_status status)
 {
     const char *message = s->failure[0] != '\0' ? s->failure : ids_ctx_message(s->ctx);
 
-    if (status == IDS_ERR_IO) {
+    if (status == IDS_ERR_IO && s->failure[0] == '\0') {
         return; /* output_close() knows the reason */
     }
     if (status == IDS_ERR_CANCELLED && s->failure[0] == '\0') {

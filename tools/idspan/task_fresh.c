@@ -14,17 +14,7 @@
 /* The limit of ids_fresh_create(). */
 #define MOST_DEGREE 16u
 
-enum {
-    DEGREE,
-    PARTITION,
-    DIMENSION,
-    FREE,
-    HOLDING,
-    CONSEQUENCES,
-    FRESH,
-    CERTAINTY,
-    COLUMNS
-};
+enum { DEGREE, PARTITION, DIMENSION, FREE, HOLDING, CONSEQUENCES, FRESH, CERTAINTY, COLUMNS };
 
 /* ---- the model ----------------------------------------------------------------------- */
 
@@ -267,13 +257,22 @@ static bool check(settings *read)
 
 const task task_fresh = {
     .name = "fresh",
-    .usage = " --model NAME --degree N | --degrees A..B [--table] [--save FILE]\n"
+    .usage = " --model NAME --degree N | --degrees A..B [--table]\n"
              "          [--primes K] [--seed S]",
     .summary = "find identities of a model that the presentation does not imply",
-    .details = "x",
+    .details =
+        "A model is made by `model NAME ...` statements of the file. For each partition, what "
+        "holds\n"
+        "in the model is compared with what follows from the identities of the file, which must\n"
+        "hold there.\n"
+        "\n"
+        "`free`, `holding`, `consequences` and `fresh` are multiplicities of irreducible modules,\n"
+        "in the row `total` dimensions; `fresh` is holding - consequences. Where it is 0 that is\n"
+        "exact, elsewhere `certainty` bounds the probability that it is wrong.\n"
+        "Columns: degree,partition,dimension,free,holding,consequences,fresh,certainty",
     .examples = "  idspan fresh jordan.pres --model special --degree 8",
     .options = BIT(OPTION_MODEL) | BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_TABLE) |
-               BIT(OPTION_SAVE) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
+               BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
     .most_degree = MOST_DEGREE,
     .check = check,
