@@ -18,7 +18,6 @@ typedef struct ids_fresh_options {
     size_t struct_size; /**< sizeof(ids_fresh_options) */
     uint32_t primes;    /**< number of random primes to compute with; 0: one */
     uint64_t seed;      /**< seed that primes and points are drawn from */
-    bool table_only;    /**< only count; no identities are written down, and none become known */
 } ids_fresh_options;
 
 /** One row of the table: a partition, or the whole degree. */
@@ -43,39 +42,81 @@ typedef struct ids_fresh ids_fresh;
  *
  * In each degree and for each partition, `holding` and `consequences` are computed modulo random
  * primes. The identities of the presentation must hold in the model, which is verified first; so
- * where both numbers agree they are exact. Where they do not, one identity is found for each new
- * irreducible module, unless only the table is wanted, and what is found counts as known in all
- * higher degrees.
+ * where both numbers agree they are exact.
+ *
  * @param ctx      borrowed now, kept.
  * @param model    kept: must outlive the result.
- * @param from,to  1 <= from <= to <= 16.
+ * @param from     first degree, at least 1.
+ * @param to       last degree, from .. 16.
  * @param options  borrowed; NULL for the defaults.
  * @param fresh    out, owned: ids_fresh_free(). Also written with IDS_ERR_LIMIT and
  *                 IDS_ERR_CANCELLED: then it has the degrees that were finished.
- * @return IDS_OK; IDS_ERR_DOMAIN (an identity of the presentation does not hold in the model; the
- *         message names it); IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_CANCELLED
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size
+ *         IDS_ERR_DOMAIN     an identity of the presentation does not hold in the model; the
+ *                            message names it
+ *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra
+ *         IDS_ERR_CANCELLED  cancelled
  * Cost: a table by partition for the consequences; for words about as much; for an algebra
- * degree! evaluations at some points. Threads: up to the context's number, for the table by
- * partition. Border: GMP, FLINT (lattices). Since: 0.1
+ * degree! evaluations at some points.
+ * Threads: up to the context's number, for the table by partition. Cancel: polled.
+ * Border: GMP (coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model,
                                                  uint32_t from, uint32_t to,
                                                  const ids_fresh_options *options,
                                                  ids_fresh **fresh);
 
-/** Frees a result; NULL is fine. Since: 0.1 */
+/**
+ * Frees a result.
+ *
+ * @param fresh  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `fresh` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_fresh_free(ids_fresh *fresh);
 
-/** Number of rows; 0 for NULL. Since: 0.1 */
+/**
+ * Number of rows: in each degree one a partition, then the total.
+ *
+ * @param fresh  borrowed; NULL gives 0.
+ * @return how many.
+ * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
+ */
 IDS_API size_t ids_fresh_count(const ids_fresh *fresh);
 
-/** Row number `index`. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+/**
+ * Copies a row.
+ *
+ * @param fresh  borrowed.
+ * @param index  0 .. ids_fresh_count()-1.
+ * @param row    out, written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_fresh_row_get(const ids_fresh *fresh, size_t index,
                                                   ids_fresh_row *row);
 
-/** Number of primes that were used, and prime number `index`; 0 when there is none. Since: 0.1 */
+/**
+ * Number of primes that were used.
+ *
+ * @param fresh  borrowed; NULL gives 0.
+ * @return how many.
+ * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
+ */
 IDS_API size_t ids_fresh_prime_count(const ids_fresh *fresh);
-/** See ids_fresh_prime_count(). Since: 0.1 */
+
+/**
+ * A prime that was used.
+ *
+ * @param fresh  borrowed; NULL gives 0.
+ * @param index  0 .. ids_fresh_prime_count()-1; 0 is given beyond.
+ * @return the prime.
+ * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
+ */
 IDS_API uint64_t ids_fresh_prime(const ids_fresh *fresh, size_t index);
 
 #ifdef __cplusplus

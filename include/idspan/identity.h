@@ -125,10 +125,25 @@ typedef struct ids_model_info {
     uint32_t line;       /**< line of the text where it begins */
 } ids_model_info;
 
-/** Number of models; 0 for NULL. Since: 0.1 */
+/**
+ * Number of models.
+ *
+ * @param presentation  borrowed; NULL gives 0.
+ * @return how many.
+ * Cost: constant, no allocation. Threads: any number may share `presentation`. Since: 0.1
+ */
 IDS_API size_t ids_presentation_model_count(const ids_presentation *presentation);
 
-/** Describes a model, in the order of the text. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+/**
+ * Describes a model, in the order of the text.
+ *
+ * @param presentation  borrowed.
+ * @param index         0 .. ids_presentation_model_count()-1.
+ * @param info          out, written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: any number may share `presentation`. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_presentation_model(const ids_presentation *presentation,
                                                        size_t index, ids_model_info *info);
 

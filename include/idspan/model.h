@@ -36,32 +36,56 @@ typedef struct ids_model ids_model;
  * @param presentation  kept: must outlive the model.
  * @param index         0 .. ids_presentation_model_count()-1.
  * @param load          brings files; NULL: there are none, and models that need one are refused.
- * @param load_user     passed to load; not kept.
+ * @param load_user     borrowed: passed to load.
  * @param model         out, owned: ids_model_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_IO (the file was not brought); IDS_ERR_PARSE (the file, or a polynomial
- *         over its presentation, is not in order; the message says where); IDS_ERR_DOMAIN (the
- *         model lacks an operation, or its symmetry); IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT,
- *         IDS_ERR_CANCELLED
- * Border: GMP. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, index out of range
+ *         IDS_ERR_IO         the file was not brought
+ *         IDS_ERR_PARSE      the file, or a polynomial over its presentation, is not in order; the
+ *                            message says where
+ *         IDS_ERR_DOMAIN     the model lacks an operation, or its symmetry
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget, or a limit of the file's reader
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: linear in the file; over a presentation, its tables by partition in the degrees of the
+ * operations.
+ * Threads: one a ctx. Cancel: polled. Border: GMP (coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_model_open(ids_ctx *ctx, const ids_presentation *presentation,
                                                size_t index, ids_load_fn load, void *load_user,
                                                ids_model **model);
 
-/** Frees a model; NULL is fine. Since: 0.1 */
+/**
+ * Frees a model.
+ *
+ * @param model  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `model` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_model_free(ids_model *model);
 
 /**
  * Whether an identity or candidate of the model's presentation holds in the model.
  *
  * Words are multiplied out, and algebras evaluated on all tuples of basis elements; that is exact.
- * Over another presentation it is decided modulo a prime; then "holds" is wrong with probability
+ * Over another presentation it is decided modulo two primes; then "holds" is wrong with probability
  * 2^-bits at most.
+ *
  * @param ctx    borrowed.
+ * @param model  borrowed.
+ * @param role   whether `index` counts identities or candidates.
+ * @param index  0 .. ids_presentation_count()-1.
  * @param holds  out.
  * @param bits   out, may be NULL: 0 when that is exact, else as above.
- * @return IDS_OK; IDS_ERR_ARG (NULL, no such identity); IDS_ERR_NOMEM, IDS_ERR_LIMIT,
- *         IDS_ERR_CANCELLED. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, no such identity
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: the terms of the linearisation times the words of each; dimension^degree products; a table
+ * by partition of the other presentation.
+ * Threads: any number may share `model`, each with a ctx of its own. Cancel: polled.
+ * Border: GMP (coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_model_holds(ids_ctx *ctx, const ids_model *model, ids_role role,
                                                 size_t index, bool *holds, uint32_t *bits);

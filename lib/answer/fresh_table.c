@@ -14,6 +14,7 @@
 #include <string.h>
 
 #include "fresh_private.h"
+#include "rank_private.h"
 
 typedef struct job {
     ids_fresh *fresh;
@@ -21,10 +22,10 @@ typedef struct job {
     uint32_t degree;
     idsi_laws *laws;
     ids_cocharacter *free;
-    size_t count;           /* partitions */
-    ids_fresh_row *rows;    /* and the total */
-    double *quotient_error; /* of each row mod one prime, the largest */
-    double *image_error;
+    size_t count;        /* partitions */
+    ids_fresh_row *rows; /* and the total */
+    uint64_t *blocks; /* of random covectors behind each quotient, mod the prime that took most */
+    double *image_error; /* of each row mod one prime, the largest */
     double image_bits;
 } job;
 
@@ -34,7 +35,7 @@ static ids_status lay_out(job *j)
 
     j->count = (size_t)ids_partition_count(j->degree);
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count + 1, sizeof *j->rows, &j->rows));
-    IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof(double), &j->quotient_error));
+    IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof *j->blocks, &j->blocks));
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof(double), &j->image_error));
     for (size_t i = 0; i < j->count; i++) {
         ids_fresh_row *row = &j->rows[i];
@@ -55,6 +56,7 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, idsi_image *im
     ids_fresh_row *row = &j->rows[i];
     uint32_t quotient = 0;
     uint32_t rank = 0;
+    idsi_account account = {0};
 
     IDSI_TRY(
         idsi_partition_multiplicity(engine, row->partition.part, row->partition.length, &quotient));
@@ -71,8 +73,7 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, idsi_image *im
     if (row->free - rank < row->holding) {
         row->holding = row->free - rank;
     }
-    j->quotient_error[i] =
-        engine->error > j->quotient_error[i] ? engine->error : j->quotient_error[i];
+    j->blocks[i] = account.blocks > j->blocks[i] ? account.blocks : j->blocks[i];
     j->image_error[i] = image->error > j->image_error[i] ? image->error : j->image_error[i];
 done:
     return st;
@@ -105,19 +106,19 @@ done:
 static double certify(const job *j, size_t i, uint32_t primes)
 {
     ids_fresh_row *row = &j->rows[i];
-    const double group = idsi_partition_group_bits(&row->partition);
-    const double norm = idsi_laws_norm_bits(j->laws, row->degree);
-    const double quotient = (double)row->free * (group + (norm > 0 ? norm : 0));
-    const double image = (double)(row->free - row->holding) * (group + j->image_bits);
+    ids_partition_row quotient = {.degree = row->degree,
+                                  .partition = row->partition,
+                                  .free = row->free,
+                                  .quotient = row->free - row->consequences};
+    const double image = (double)(row->free - row->holding) *
+                         (idsi_partition_group_bits(&row->partition) + j->image_bits);
     double error = 0;
 
     row->fresh = row->holding - row->consequences;
     row->certainty = IDS_CERTAINTY_EXACT;
     row->bits = 0;
     if (row->fresh > 0) {
-        if (row->consequences > 0) {
-            error += idsi_prime_error(quotient, j->quotient_error[i], primes);
-        }
+        idsi_partition_certify(j->laws, j->blocks[i], primes, &quotient, &error);
         error += idsi_prime_error(image, j->image_error[i], primes);
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(error);
@@ -197,7 +198,7 @@ done:
     ids_cocharacter_free(j.free);
     idsi_laws_free(j.laws);
     idsi_free(j.ctx, j.rows);
-    idsi_free(j.ctx, j.quotient_error);
+    idsi_free(j.ctx, j.blocks);
     idsi_free(j.ctx, j.image_error);
     return st;
 }

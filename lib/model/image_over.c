@@ -168,6 +168,7 @@ ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, ui
     idsi_poly value;
     uint32_t shape = 0;
     uint32_t dimension = 0;
+    idsi_account account = {0};
 
     idsi_poly_init(&value, image->ctx, image->model->base->sig);
     IDSI_TRY(find_shape(image->base, partition, &shape, &dimension));
@@ -183,7 +184,8 @@ ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, ui
         IDSI_TRY(idsi_poll(image->ctx, NULL));
     }
     IDSI_TRY(idsi_image_eliminate(image, r.sum, r.dimension, r.width, rank));
-    image->error = image->base->error + 4.0 / ((double)image->prime * image->prime);
+    IDSI_TRY(idsi_partition_account(image->base, partition->part, partition->length, &account));
+    image->error = idsi_blocks_error(account.blocks) + 4.0 / ((double)image->prime * image->prime);
 done:
     idsi_poly_clear(&value);
     reader_clear(&r);

@@ -214,10 +214,8 @@ done:
 static ids_status run(session *s)
 {
     ids_status st = IDS_OK;
-    ids_fresh_options options = {.struct_size = sizeof options,
-                                 .primes = s->set->primes,
-                                 .seed = s->set->seed,
-                                 .table_only = (s->set->seen & BIT(OPTION_TABLE)) != 0};
+    ids_fresh_options options = {
+        .struct_size = sizeof options, .primes = s->set->primes, .seed = s->set->seed};
     ids_model *model = NULL;
     ids_fresh *fresh = NULL;
     ids_status computed = IDS_OK;
