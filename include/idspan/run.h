@@ -295,16 +295,17 @@ IDS_API IDS_MUST_USE ids_status ids_run_line_get(const ids_run *run, size_t inde
 /**
  * Estimates time and memory of every cell, for ids_cell.seconds and ids_cell.memory.
  *
- * By partition the lowest degrees are computed, which takes some tenths of a second at most, and
+ * The lowest degrees are computed, which takes some tenths of a second at most, and
  * the dimensions of the others are extrapolated.
  *
  * @param run  borrowed.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL
  *         IDS_ERR_NOMEM      the allocator refused
- *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_LIMIT      byte budget; if it was reached after some degrees, the estimates are
+ *                            there, extrapolated from fewer
  *         IDS_ERR_CANCELLED  cancelled
- * Cost: as a table by partition of the lowest degrees. Threads: one a run. Cancel: polled.
+ * Cost: as a rank table of the lowest degrees. Threads: one a run. Cancel: polled.
  * Border: GMP (coefficients of the identities). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_plan(ids_run *run);

@@ -76,6 +76,22 @@ static void sign(int file)
     (void)written;
 }
 
+/* Processes that were killed need a moment to end, so it is tried for a second. */
+static bool take_lock(int file, int how)
+{
+    const struct timespec pause = {0, 50000000};
+
+    for (int i = 0; flock(file, how) != 0; i++) {
+        if (errno != EWOULDBLOCK || i == 20) {
+            return false;
+        }
+        int error = errno;
+        nanosleep(&pause, NULL);
+        errno = error;
+    }
+    return true;
+}
+
 ids_status idsi_folder_lock(ids_ctx *ctx, idsi_folder *folder, bool alone)
 {
     int file = openat(folder->fd, IDSI_LOCK_FILE, O_RDWR | O_CREAT | O_CLOEXEC, 0666);
@@ -88,7 +104,7 @@ ids_status idsi_folder_lock(ids_ctx *ctx, idsi_folder *folder, bool alone)
         return idsi_fail(ctx, IDS_ERR_IO, "cannot write in the folder \"%s\": %s", folder->path,
                          reason);
     }
-    if (flock(file, (alone ? LOCK_EX : LOCK_SH) | LOCK_NB) != 0) {
+    if (!take_lock(file, (alone ? LOCK_EX : LOCK_SH) | LOCK_NB)) {
         bool busy = errno == EWOULDBLOCK;
         ids_status st = busy ? fail_busy(ctx, folder)
                              : idsi_fail(ctx, IDS_ERR_IO,

@@ -16,8 +16,8 @@
 /* As far as the lowest degrees go: columns of the monomial engine. */
 #define QUICK_COLUMNS 3000.0
 /* Entries of an elimination by the partition engine, and of words and contractions, per second. */
-#define ELIMINATION_RATE 4e9
-#define CONTRACTION_RATE 2e7
+#define ELIMINATION_RATE 2e10
+#define CONTRACTION_RATE 1e7
 /* Products of the monomial engine's cost per second. */
 #define MONOMIAL_RATE 3e7
 /* Covectors in a block of the partition engine. */
@@ -68,15 +68,15 @@ static void plan_degree(const ids_run *run, const idsi_forecast_degree *degrees,
     cell->memory = (uint64_t)(primes * bytes);
 }
 
-/* The bases that the last degree needs: of skew shapes too, which come to about as much again. */
+/* The bases that the last degree needs. Skew shapes add to them, and the extrapolation is high. */
 static double lower_bytes(const ids_run *run, const idsi_forecast_degree *degrees)
 {
     double bytes = 0;
 
     for (uint32_t n = 2; n < run->options.to; n++) {
-        bytes += 2 * 4 * degrees[n].dimension * degrees[n].columns / factorial(n);
+        bytes += 4 * degrees[n].dimension * degrees[n].columns / factorial(n);
     }
-    return bytes * (double)run->prime_count;
+    return bytes / 2 * (double)run->prime_count;
 }
 
 ids_status ids_run_plan(ids_run *run)
@@ -86,6 +86,7 @@ ids_status ids_run_plan(ids_run *run)
     idsi_tower tower = {0};
     idsi_forecast_degree degrees[IDS_MAX_DEGREE + 1] = {{0}};
     uint32_t known = 0;
+    ids_status limit = IDS_OK;
 
     if (run == NULL) {
         return IDS_ERR_ARG;
@@ -99,7 +100,11 @@ ids_status ids_run_plan(ids_run *run)
         if (degrees[known + 1].columns > QUICK_COLUMNS) {
             break;
         }
-        IDSI_TRY(idsi_tower_grow(&tower, true));
+        limit = idsi_tower_grow(&tower, true);
+        if (limit == IDS_ERR_LIMIT) {
+            break; /* less is known then */
+        }
+        IDSI_TRY(limit);
         known++;
     }
     idsi_forecast_degrees(&tower, known, run->options.to, degrees);
@@ -115,5 +120,5 @@ ids_status ids_run_plan(ids_run *run)
 done:
     idsi_tower_clear(&tower);
     idsi_laws_free(laws);
-    return st;
+    return st != IDS_OK ? st : limit;
 }

@@ -22,6 +22,10 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "text csv json latex svg html ascii tikz mtx" -- "$word")
         return
         ;;
+    --run)
+        mapfile -t COMPREPLY < <(compgen -d -- "$word")
+        return
+        ;;
     --output | --proof | --witness)
         mapfile -t COMPREPLY < <(compgen -f -- "$word")
         return
@@ -34,7 +38,7 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "partition" -- "$word")
         return
         ;;
-    --candidate | --model | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads)
+    --candidate | --model | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads | --jobs | --cell)
         return
         ;;
     esac
@@ -55,7 +59,10 @@ _idspan()
     fresh) own="--model --degree --degrees --table --primes --seed" ;;
     draw) own="--degree --monomials --index --from --count" ;;
     matrix) own="--degree --plain --field --seed" ;;
-    rank) own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field" ;;
+    rank)
+        own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field"
+        own+=" --run --jobs --plan --list-cells --cell"
+        ;;
     esac
 
     if [[ $word == -* ]]; then

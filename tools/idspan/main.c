@@ -78,11 +78,18 @@ static void explain(const session *s, ids_status status)
 
 const char *session_source(const session *s)
 {
+    if (s->set->file == NULL) {
+        return "";
+    }
     return strcmp(s->set->file, "-") == 0 ? "standard input" : s->set->file;
 }
 
 static ids_status read_file(session *s)
 {
+    if (s->set->file == NULL) {
+        interrupt_watch(s->ctx);
+        return IDS_OK; /* the task knows where to look */
+    }
     if (!input_read(s->set->file, &s->text, &s->length)) {
         return IDS_ERR_IO;
     }
