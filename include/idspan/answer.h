@@ -71,12 +71,19 @@ typedef struct ids_rank_row {
  * @param options       borrowed; NULL for the defaults.
  * @param table         out, owned: ids_rank_table_free(). On IDS_ERR_LIMIT and IDS_ERR_CANCELLED
  *                      it holds the degrees that were finished (maybe none) and must be freed too.
- * @return IDS_OK; IDS_ERR_ARG (NULL, degrees, struct_size, a field that is no prime below 2^30, or
- *         together with `exact` or `primes` > 1); IDS_ERR_NOMEM; IDS_ERR_LIMIT (the message says
- *         how many monomials and columns a degree has, what they need and what the budget is);
- *         IDS_ERR_UNABLE (`exact`: the coefficients do not fit the proof); IDS_ERR_CANCELLED
- * Cost: see DEVELOPERS.md, "Monomial engine". Threads: up to the context's number; results do not
- * depend on it. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a `field` that is no
+ *                            prime below 2^30, or together with `exact` or `primes` > 1
+ *         IDS_ERR_NOMEM      the allocator refused; *table is then NULL
+ *         IDS_ERR_LIMIT      byte budget, 64 bits of monomials, 32 bits of columns; the message
+ *                            says how many monomials and columns a degree has, what they need and
+ *                            what the budget is
+ *         IDS_ERR_UNABLE     `exact`: the coefficients do not fit the proof
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: see DEVELOPERS.md, "Monomial engine".
+ * Threads: up to the context's number; results do not depend on it. Cancel: polled.
+ * Border: FLINT, GMP (`exact`: rational reconstruction; before, coefficients of the identities).
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_rank_table_create(ids_ctx *ctx,
                                                       const ids_presentation *presentation,
@@ -84,29 +91,73 @@ IDS_API IDS_MUST_USE ids_status ids_rank_table_create(ids_ctx *ctx,
                                                       const ids_rank_options *options,
                                                       ids_rank_table **table);
 
-/** Frees a rank table; NULL is fine. Since: 0.1 */
+/**
+ * Frees a rank table.
+ *
+ * @param table  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `table` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_rank_table_free(ids_rank_table *table);
 
-/** Number of rows; 0 for NULL. Since: 0.1 */
+/**
+ * Number of rows.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @return one for each degree that was finished.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API size_t ids_rank_table_count(const ids_rank_table *table);
 
-/** Copies row `index`. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+/**
+ * Copies row `index`.
+ *
+ * @param table  borrowed.
+ * @param index  0 .. ids_rank_table_count()-1.
+ * @param row    out, written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_rank_table_row(const ids_rank_table *table, size_t index,
                                                    ids_rank_row *row);
 
-/** Number of primes that were used. Since: 0.1 */
+/**
+ * Number of primes that were used.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @return how many primes ids_rank_table_prime() knows; over GF(p): 1.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API size_t ids_rank_table_prime_count(const ids_rank_table *table);
 
-/** The index-th prime that was used; 0 when out of range. Since: 0.1 */
+/**
+ * The index-th prime that was used; 0 when out of range.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @param index  0 .. ids_rank_table_prime_count()-1.
+ * @return the prime; 0 when the index is out of range.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API uint64_t ids_rank_table_prime(const ids_rank_table *table, size_t index);
 
-/** The prime p when the ranks are those over GF(p); 0 over the rational numbers. Since: 0.1 */
+/**
+ * The prime p when the ranks are those over GF(p); 0 over the rational numbers.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @return p, or 0.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API uint32_t ids_rank_table_field(const ids_rank_table *table);
 
 /**
  * Whether, over the field of the table, some identity of a degree in it can differ from its
  * linearisation: p is at most the number of times that a variable occurs in each of its terms.
- * False over the rational numbers and for NULL. Since: 0.1
+ * False over the rational numbers and for NULL.
+ *
+ * @param table  borrowed; NULL gives false.
+ * @return true when some row is about a linearisation that can be weaker.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
  */
 IDS_API bool ids_rank_table_weakened(const ids_rank_table *table);
 
@@ -156,13 +207,18 @@ typedef struct ids_partition_row {
  * @param table         out, owned: ids_partition_table_free(). On IDS_ERR_LIMIT and
  *                      IDS_ERR_CANCELLED it holds the degrees that were finished with the first
  *                      prime (maybe none) and must be freed too.
- * @return IDS_OK; IDS_ERR_ARG (NULL, degrees, struct_size, a partition of another degree);
- *         IDS_ERR_NOMEM; IDS_ERR_LIMIT (the message says how many unknowns a partition has, what
- *         they need and what the budget is); IDS_ERR_CANCELLED; IDS_ERR_INTERNAL (the cross-check
- *         failed: the message gives both numbers)
- * Cost: see DEVELOPERS.md, "Partition engine". Threads: up to the context's number; results do not
- * depend on it. Source: Young's seminormal form; equivariant maps to skew Specht modules.
- * Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a partition that is
+ *                            not well formed or of another degree
+ *         IDS_ERR_NOMEM      the allocator refused; *table is then NULL
+ *         IDS_ERR_LIMIT      byte budget; the message says how many unknowns a partition has, what
+ *                            they need and what the budget is
+ *         IDS_ERR_CANCELLED  cancelled
+ *         IDS_ERR_INTERNAL   the cross-check failed: the message gives both numbers
+ * Cost: see DEVELOPERS.md, "Partition engine".
+ * Threads: up to the context's number; results do not depend on it. Cancel: polled.
+ * Border: GMP (coefficients of the identities; with `cross_check` as ids_rank_table_create()).
+ * Source: Young's seminormal form; equivariant maps to skew Specht modules. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_table_create(ids_ctx *ctx,
                                                            const ids_presentation *presentation,
@@ -170,20 +226,54 @@ IDS_API IDS_MUST_USE ids_status ids_partition_table_create(ids_ctx *ctx,
                                                            const ids_partition_options *options,
                                                            ids_partition_table **table);
 
-/** Frees a table; NULL is fine. Since: 0.1 */
+/**
+ * Frees a table.
+ *
+ * @param table  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `table` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_partition_table_free(ids_partition_table *table);
 
-/** Number of rows; 0 for NULL. Since: 0.1 */
+/**
+ * Number of rows.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @return number of rows, totals included.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API size_t ids_partition_table_count(const ids_partition_table *table);
 
-/** Copies row `index`. @return IDS_OK, IDS_ERR_ARG. Since: 0.1 */
+/**
+ * Copies row `index`.
+ *
+ * @param table  borrowed.
+ * @param index  0 .. ids_partition_table_count()-1.
+ * @param row    out, written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_partition_table_row(const ids_partition_table *table,
                                                         size_t index, ids_partition_row *row);
 
-/** Number of primes that were used. Since: 0.1 */
+/**
+ * Number of primes that were used.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @return how many primes ids_partition_table_prime() knows.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API size_t ids_partition_table_prime_count(const ids_partition_table *table);
 
-/** The index-th prime that was used; 0 when out of range. Since: 0.1 */
+/**
+ * The index-th prime that was used; 0 when out of range.
+ *
+ * @param table  borrowed; NULL gives 0.
+ * @param index  0 .. ids_partition_table_prime_count()-1.
+ * @return the prime; 0 when the index is out of range.
+ * Cost: constant, no allocation. Threads: any number may share `table`. Since: 0.1
+ */
 IDS_API uint64_t ids_partition_table_prime(const ids_partition_table *table, size_t index);
 
 #ifdef __cplusplus

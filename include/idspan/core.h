@@ -105,9 +105,13 @@ typedef struct ids_ctx_options {
  * Makes a context.
  *
  * @param options  borrowed; NULL for the defaults (malloc, no budget, no progress, one thread).
- * @param ctx      out, owned: free with ids_ctx_free() after every object made with it.
- * @return IDS_OK, IDS_ERR_ARG (ctx NULL, struct_size unknown), IDS_ERR_NOMEM
- * Cost: one allocation. Threads: any; one context serves one thread at a time. Since: 0.1
+ * @param ctx      out, owned: free with ids_ctx_free() after every object made with it; written
+ *                 only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    `ctx` is NULL, struct_size is unknown
+ *         IDS_ERR_NOMEM  the allocator refused
+ * Cost: one allocation. Threads: any; one context serves one thread at a time. Cancel: not polled.
+ * Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_ctx_create(const ids_ctx_options *options, ids_ctx **ctx);
 
@@ -115,7 +119,8 @@ IDS_API IDS_MUST_USE ids_status ids_ctx_create(const ids_ctx_options *options, i
  * Frees a context. Objects made with it must have been freed before.
  *
  * @param ctx  owned; NULL is fine.
- * Since: 0.1
+ * Cost: the memory goes back to the allocator.
+ * Threads: one, after all calls with `ctx` have returned. Since: 0.1
  */
 IDS_API void ids_ctx_free(ids_ctx *ctx);
 
@@ -123,8 +128,9 @@ IDS_API void ids_ctx_free(ids_ctx *ctx);
  * Asks the call that runs with this context to stop with IDS_ERR_CANCELLED.
  *
  * Sets an atomic flag and nothing else. The flag is cleared when a call has answered it.
+ *
  * @param ctx  borrowed; NULL is fine.
- * Threads: any, and signal handlers. Since: 0.1
+ * Cost: one atomic store, no allocation. Threads: any, and signal handlers. Since: 0.1
  */
 IDS_API void ids_ctx_cancel(ids_ctx *ctx);
 
@@ -132,9 +138,9 @@ IDS_API void ids_ctx_cancel(ids_ctx *ctx);
  * Explanation of the last failure in this context, "" when there was none.
  *
  * @param ctx  borrowed; NULL gives "".
- * @return a string that lives until the next call with ctx. UTF-8, without a final newline;
- *         it can have several lines (a parse error shows the source line with a caret).
- * Since: 0.1
+ * @return a string that lives until the next call with ctx. UTF-8, without a final newline; it can
+ *         have several lines (a parse error shows the source line with a caret).
+ * Cost: constant, no allocation. Threads: the one that uses `ctx`. Since: 0.1
  */
 IDS_API const char *ids_ctx_message(const ids_ctx *ctx);
 
@@ -142,7 +148,8 @@ IDS_API const char *ids_ctx_message(const ids_ctx *ctx);
  * Status of the last failure in this context, IDS_OK when there was none.
  *
  * @param ctx  borrowed; NULL gives IDS_ERR_ARG.
- * Since: 0.1
+ * @return that status.
+ * Cost: constant, no allocation. Threads: the one that uses `ctx`. Since: 0.1
  */
 IDS_API ids_status ids_ctx_last_status(const ids_ctx *ctx);
 
@@ -156,7 +163,8 @@ typedef struct ids_place {
  * Place in the input of the last failure, {0, 0} when it has none.
  *
  * @param ctx  borrowed; NULL gives {0, 0}.
- * Since: 0.1
+ * @return line and column, both 0 when there is none.
+ * Cost: constant, no allocation. Threads: the one that uses `ctx`. Since: 0.1
  */
 IDS_API ids_place ids_ctx_last_place(const ids_ctx *ctx);
 
@@ -171,15 +179,17 @@ typedef struct ids_memory {
  * Memory in use through this context. Memory inside GMP and FLINT is not in it.
  *
  * @param ctx  borrowed; NULL gives zeros.
- * Since: 0.1
+ * @return bytes live and at most live, and the budget.
+ * Cost: constant, no allocation. Threads: any. Since: 0.1
  */
 IDS_API ids_memory ids_ctx_memory(const ids_ctx *ctx);
 
 /**
- * Sets the most threads that later calls may use.
+ * Sets the most threads that later calls may use. Results do not depend on it.
  *
- * Results do not depend on it. @param ctx borrowed; NULL is fine. @param threads 0 counts as 1.
- * Since: 0.1
+ * @param ctx      borrowed; NULL is fine.
+ * @param threads  with the calling one; 0 counts as 1.
+ * Cost: constant, no allocation. Threads: the one that uses `ctx`. Since: 0.1
  */
 IDS_API void ids_ctx_set_threads(ids_ctx *ctx, uint32_t threads);
 
@@ -189,9 +199,9 @@ typedef int (*ids_sink_fn)(void *user, const char *bytes, size_t length);
 /**
  * Frees a string that the library handed out as owned.
  *
- * @param ctx     borrowed: the context that made the string.
+ * @param ctx     borrowed: the context that made the string; NULL only with a NULL string.
  * @param string  owned; NULL is fine.
- * Since: 0.1
+ * Cost: the memory goes back to the allocator. Threads: the one that uses `ctx`. Since: 0.1
  */
 IDS_API void ids_string_free(ids_ctx *ctx, char *string);
 

@@ -12,7 +12,7 @@
 #define IDSPAN_DRAW_H
 
 #include <idspan/render.h>
-#include <idspan/tree.h>
+#include <idspan/basis.h>
 
 #ifdef __cplusplus
 extern "C" {
@@ -48,17 +48,20 @@ typedef struct ids_draw_options {
  * @param first      index of the first type to draw.
  * @param count      how many; fewer when the list ends before.
  * @param options    borrowed; NULL for text, 80 columns wide.
- * @param sink       receives the sheet tree by tree; sink_user is passed to it.
+ * @param sink       receives the sheet tree by tree; called from this thread.
+ * @param sink_user  passed to `sink`; borrowed.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degree or first out of range, unknown options
  *         IDS_ERR_LIMIT      more than IDS_MAX_PICTURES trees; byte budget
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_IO         the sink refused
  *         IDS_ERR_CANCELLED  cancelled
- * Cost: two passes over the trees; a few bytes of memory for each, and the text of one (of one
- * row in text). Threads: one a ctx. Cancel: polled at every tree. Border: none.
- * Source: tidy layout by contours, Reingold and Tilford, IEEE Trans. Software Eng. 7 (1981);
- * inner subtrees halfway between their two extreme places. Since: 0.1
+ * Cost: two passes over the trees; a few bytes of memory for each, and the text of one (of one row
+ * in text).
+ * Threads: one a ctx. Cancel: polled at every tree. Border: none.
+ * Source: tidy layout by contours, Reingold and Tilford, IEEE Trans. Software Eng. 7 (1981); inner
+ * subtrees halfway between their two extreme places.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_types_draw(ids_ctx *ctx, const ids_types *types,
                                                uint32_t degree, uint64_t first, uint64_t count,
@@ -68,9 +71,22 @@ IDS_API IDS_MUST_USE ids_status ids_types_draw(ids_ctx *ctx, const ids_types *ty
 /**
  * Draws multilinear monomials with their labels, each captioned with index and notation.
  *
+ * @param ctx        borrowed.
  * @param basis      borrowed; an empty one gives a sheet that says so.
- * @param first      index of the first monomial to draw.
- * Everything else is as for ids_types_draw(). Since: 0.1
+ * @param first      index of the first monomial to draw. Everything else is as for
+ *                   ids_types_draw().
+ * @param count      how many; fewer when the basis ends before.
+ * @param options    borrowed; NULL for text, 80 columns wide.
+ * @param sink       receives the sheet tree by tree; called from this thread.
+ * @param sink_user  passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, first out of range, unknown options
+ *         IDS_ERR_LIMIT      more than IDS_MAX_PICTURES trees; byte budget
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_IO         the sink refused
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: as ids_types_draw(). Threads: one a ctx. Cancel: polled at every tree. Border: none.
+ * Source: as ids_types_draw(). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_basis_draw(ids_ctx *ctx, const ids_basis *basis, uint64_t first,
                                                uint64_t count, const ids_draw_options *options,

@@ -44,15 +44,16 @@ typedef struct ids_normal_forms ids_normal_forms;
  * @param options       borrowed; NULL for the defaults.
  * @param forms         out, owned: ids_normal_forms_free(); written only on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL, degree out of range, unknown struct_size, `field` no prime below
- *                            2^30 or together with `exact`
+ *         IDS_ERR_ARG        NULL, degree out of range, unknown struct_size, `field` no prime
+ *                            below 2^30 or together with `exact`
  *         IDS_ERR_UNABLE     `exact`: some coefficient does not fit 62 bits above and below
  *         IDS_ERR_LIMIT      byte budget, 2^32 products of normal forms in a degree
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_CANCELLED  cancelled
  * Cost: an elimination a degree; memory 8 bytes for each coefficient of each product (24 with
- * `exact`). Threads: up to the context's number. Cancel: polled. Border: FLINT, GMP (`exact`:
- * rational reconstruction, a few numbers at a time). Since: 0.1
+ * `exact`).
+ * Threads: up to the context's number. Cancel: polled.
+ * Border: FLINT, GMP (`exact`: rational reconstruction, a few numbers at a time). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_normal_forms_create(ids_ctx *ctx,
                                                         const ids_presentation *presentation,
@@ -60,16 +61,40 @@ IDS_API IDS_MUST_USE ids_status ids_normal_forms_create(ids_ctx *ctx,
                                                         const ids_normal_options *options,
                                                         ids_normal_forms **forms);
 
-/** Frees normal forms, after all combinations of them; NULL is fine. Since: 0.1 */
+/**
+ * Frees normal forms, after all combinations of them.
+ *
+ * @param forms  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `forms` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_normal_forms_free(ids_normal_forms *forms);
 
-/** The max_degree of normal forms; 0 for NULL. Since: 0.1 */
+/**
+ * The max_degree of normal forms.
+ *
+ * @param forms  borrowed; NULL gives 0.
+ * @return the max_degree that they were made with.
+ * Cost: constant, no allocation. Threads: any number may share `forms`. Since: 0.1
+ */
 IDS_API uint32_t ids_normal_forms_max_degree(const ids_normal_forms *forms);
 
-/** The prime that coefficients are taken modulo; 0 over the rational numbers. Since: 0.1 */
+/**
+ * The prime that coefficients are taken modulo; 0 over the rational numbers.
+ *
+ * @param forms  borrowed; NULL gives 0.
+ * @return the prime, or 0.
+ * Cost: constant, no allocation. Threads: any number may share `forms`. Since: 0.1
+ */
 IDS_API uint32_t ids_normal_forms_prime(const ids_normal_forms *forms);
 
-/** Number of normal forms of a degree; 0 where there is none or the degree is too large. Since: 0.1
+/**
+ * Number of normal forms of a degree; 0 where there is none or the degree is too large.
+ *
+ * @param forms   borrowed; NULL gives 0.
+ * @param degree  any.
+ * @return how many; 0 where there is none, in degree 0 and over max_degree.
+ * Cost: constant, no allocation. Threads: any number may share `forms`. Since: 0.1
  */
 IDS_API uint64_t ids_normal_forms_count(const ids_normal_forms *forms, uint32_t degree);
 
@@ -84,9 +109,13 @@ IDS_API uint64_t ids_normal_forms_count(const ids_normal_forms *forms, uint32_t 
  * @param degree  1 .. max_degree.
  * @param index   0 .. ids_normal_forms_count()-1.
  * @param mono    out, owned: ids_mono_free(); written only on IDS_OK.
- * @return IDS_OK, IDS_ERR_ARG (NULL, no such normal form), IDS_ERR_NOMEM, IDS_ERR_LIMIT
- * Cost: O(degree^2) word operations and one allocation. Threads: any number may share `forms`,
- * with a ctx each. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, no such normal form
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: O(degree^2) word operations and one allocation.
+ * Threads: any number may share `forms`, with a ctx each. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_normal_forms_mono(ids_ctx *ctx, const ids_normal_forms *forms,
                                                       uint32_t degree, uint64_t index,
@@ -95,7 +124,18 @@ IDS_API IDS_MUST_USE ids_status ids_normal_forms_mono(ids_ctx *ctx, const ids_no
 /**
  * A normal form in the notation of the presentation, label i as the i-th letter.
  *
- * @param text  out, owned: ids_string_free(); otherwise as ids_normal_forms_mono(). Since: 0.1
+ * @param ctx     borrowed.
+ * @param forms   borrowed.
+ * @param degree  1 .. max_degree.
+ * @param index   0 .. ids_normal_forms_count()-1.
+ * @param text    out, owned: ids_string_free(); otherwise as ids_normal_forms_mono().
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, no such normal form
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: as ids_normal_forms_mono(), and the text.
+ * Threads: any number may share `forms`, with a ctx each. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_normal_forms_print(ids_ctx *ctx, const ids_normal_forms *forms,
                                                        uint32_t degree, uint64_t index,
@@ -124,9 +164,13 @@ typedef struct ids_combination ids_combination;
  *         IDS_ERR_PARSE      as ids_presentation_read(); the place counts from the text, where the
  *                            first line begins with the word `candidate` and a blank
  *         IDS_ERR_DOMAIN     not multilinear; a coefficient has no residue modulo the prime
- *         IDS_ERR_LIMIT, IDS_ERR_NOMEM, IDS_ERR_CANCELLED
+ *         IDS_ERR_LIMIT      byte budget, a limit of presentations
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_CANCELLED  cancelled
  * Cost: for each product in each term, the number of coefficients of the products of normal forms
- * that it takes. Border: GMP (the coefficients). Since: 0.1
+ * that it takes.
+ * Threads: any number may share `forms`, with a ctx each. Cancel: polled.
+ * Border: GMP (the coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_normal_forms_reduce_text(ids_ctx *ctx,
                                                              const ids_normal_forms *forms,
@@ -144,9 +188,14 @@ IDS_API IDS_MUST_USE ids_status ids_normal_forms_reduce_text(ids_ctx *ctx,
  * @param coefficients  borrowed; count integers; NULL: all 1.
  * @param count         at least 1.
  * @param combination   out, owned: ids_combination_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, no monomial, other signature, degrees that differ or exceed
- *         max_degree, not multilinear); IDS_ERR_LIMIT, IDS_ERR_NOMEM, IDS_ERR_CANCELLED
- * Cost, border: as ids_normal_forms_reduce_text(). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, no monomial, other signature, degrees that differ or exceed
+ *                            max_degree, not multilinear
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: as ids_normal_forms_reduce_text(). Threads: any number may share `forms`, with a ctx each.
+ * Cancel: polled. Border: GMP (the coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_normal_forms_reduce(ids_ctx *ctx,
                                                         const ids_normal_forms *forms,
@@ -172,9 +221,13 @@ typedef struct ids_factor {
  *                     labels together are 1 .. n, each once, n at most max_degree.
  * @param count        number of factors.
  * @param combination  out, owned: ids_combination_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, no such operation, number of factors, labels or normal form);
- *         IDS_ERR_LIMIT, IDS_ERR_NOMEM
- * Cost: proportional to the result; the product is looked up. Border: GMP. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, no such operation, number of factors, labels or normal form
+ *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_NOMEM  the allocator refused
+ * Cost: proportional to the result; the product is looked up.
+ * Threads: any number may share `forms`, with a ctx each. Cancel: not polled.
+ * Border: GMP (the coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_normal_forms_product(ids_ctx *ctx,
                                                          const ids_normal_forms *forms,
@@ -182,13 +235,31 @@ IDS_API IDS_MUST_USE ids_status ids_normal_forms_product(ids_ctx *ctx,
                                                          const ids_factor *factors, size_t count,
                                                          ids_combination **combination);
 
-/** Frees a combination; NULL is fine. Since: 0.1 */
+/**
+ * Frees a combination.
+ *
+ * @param combination  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator.
+ * Threads: one; nobody may use `combination` any more. Since: 0.1
+ */
 IDS_API void ids_combination_free(ids_combination *combination);
 
-/** Degree of the polynomial that was reduced; 0 for NULL. Since: 0.1 */
+/**
+ * Degree of the polynomial that was reduced.
+ *
+ * @param combination  borrowed; NULL gives 0.
+ * @return the degree.
+ * Cost: constant, no allocation. Threads: any number may share `combination`. Since: 0.1
+ */
 IDS_API uint32_t ids_combination_degree(const ids_combination *combination);
 
-/** Number of terms, all with coefficients that are not 0; 0 for NULL. Since: 0.1 */
+/**
+ * Number of terms, all with coefficients that are not 0.
+ *
+ * @param combination  borrowed; NULL gives 0.
+ * @return the number of terms; 0 when the polynomial is zero.
+ * Cost: constant, no allocation. Threads: any number may share `combination`. Since: 0.1
+ */
 IDS_API size_t ids_combination_count(const ids_combination *combination);
 
 /**
@@ -196,10 +267,16 @@ IDS_API size_t ids_combination_count(const ids_combination *combination);
  * terms stand by increasing index. Modulo a prime p the denominator is 1 and the numerator the
  * residue of least absolute value.
  *
- * @param term  0 .. ids_combination_count()-1.
- * @param index, numerator, denominator  out; the denominator is positive.
- * @return IDS_OK, IDS_ERR_ARG (NULL, out of range), IDS_ERR_LIMIT (a coefficient of more than 64
- *         bits: ids_combination_coefficient() gives it). Since: 0.1
+ * @param combination  borrowed.
+ * @param term         0 .. ids_combination_count()-1.
+ * @param index        out, written only on IDS_OK: number of the normal form.
+ * @param numerator    out, written only on IDS_OK.
+ * @param denominator  out, written only on IDS_OK; positive.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, out of range
+ *         IDS_ERR_LIMIT  a coefficient of more than 64 bits: ids_combination_coefficient() gives
+ *                        it
+ * Cost: constant, no allocation. Threads: any number may share `combination`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_combination_term(const ids_combination *combination,
                                                      size_t term, uint64_t *index,
@@ -208,8 +285,16 @@ IDS_API IDS_MUST_USE ids_status ids_combination_term(const ids_combination *comb
 /**
  * Coefficient of term number `term` in decimal digits, such as "-3/2", at any size.
  *
- * @param text  out, owned: ids_string_free().
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @param ctx          borrowed.
+ * @param combination  borrowed.
+ * @param term         0 .. ids_combination_count()-1.
+ * @param text         out, owned: ids_string_free().
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, out of range
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: proportional to the text. Threads: any number may share `combination`, with a ctx each.
+ * Cancel: not polled. Border: GMP (digits of the coefficient). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_combination_coefficient(ids_ctx *ctx,
                                                             const ids_combination *combination,
@@ -218,8 +303,15 @@ IDS_API IDS_MUST_USE ids_status ids_combination_coefficient(ids_ctx *ctx,
 /**
  * A combination as a polynomial in the notation of the presentation, "0" when it has no terms.
  *
- * @param text  out, owned: ids_string_free().
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @param ctx          borrowed.
+ * @param combination  borrowed.
+ * @param text         out, owned: ids_string_free().
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: proportional to the text. Threads: any number may share `combination`, with a ctx each.
+ * Cancel: not polled. Border: GMP (digits of the coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_combination_print(ids_ctx *ctx,
                                                       const ids_combination *combination,
@@ -256,11 +348,16 @@ typedef struct ids_matrix ids_matrix;
  * @param degree        1 .. IDS_MAX_DEGREE.
  * @param options       borrowed; NULL for the defaults.
  * @param matrix        out, owned: ids_matrix_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, degree, unknown struct_size, `field` no prime below 2^30 or
- *         together with `plain`); IDS_ERR_LIMIT (byte budget, 64 bits); IDS_ERR_NOMEM;
- *         IDS_ERR_CANCELLED
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, degree, unknown struct_size, `field` no prime below 2^30 or
+ *                            together with `plain`
+ *         IDS_ERR_LIMIT      byte budget, 64 bits
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_CANCELLED  cancelled
  * Cost: plain: the association types, then arithmetic only; quotient step: all lower degrees, and
- * once through the rows to count them. Memory does not grow with the number of rows. Since: 0.1
+ * once through the rows to count them. Memory does not grow with the number of rows.
+ * Threads: up to the context's number (quotient step). Cancel: polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_matrix_create(ids_ctx *ctx,
                                                   const ids_presentation *presentation,
@@ -268,19 +365,49 @@ IDS_API IDS_MUST_USE ids_status ids_matrix_create(ids_ctx *ctx,
                                                   const ids_matrix_options *options,
                                                   ids_matrix **matrix);
 
-/** Frees a matrix; NULL is fine. Since: 0.1 */
+/**
+ * Frees a matrix.
+ *
+ * @param matrix  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `matrix` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_matrix_free(ids_matrix *matrix);
 
-/** Number of rows; 0 for NULL. Since: 0.1 */
+/**
+ * Number of rows.
+ *
+ * @param matrix  borrowed; NULL gives 0.
+ * @return number of rows.
+ * Cost: constant, no allocation. Threads: any number may share `matrix`. Since: 0.1
+ */
 IDS_API uint64_t ids_matrix_rows(const ids_matrix *matrix);
 
-/** Number of columns; 0 for NULL. Since: 0.1 */
+/**
+ * Number of columns.
+ *
+ * @param matrix  borrowed; NULL gives 0.
+ * @return number of columns.
+ * Cost: constant, no allocation. Threads: any number may share `matrix`. Since: 0.1
+ */
 IDS_API uint64_t ids_matrix_columns(const ids_matrix *matrix);
 
-/** Number of entries that are not 0; 0 for NULL. Since: 0.1 */
+/**
+ * Number of entries that are not 0.
+ *
+ * @param matrix  borrowed; NULL gives 0.
+ * @return number of entries.
+ * Cost: constant, no allocation. Threads: any number may share `matrix`. Since: 0.1
+ */
 IDS_API uint64_t ids_matrix_entries(const ids_matrix *matrix);
 
-/** The prime that entries are taken modulo; 0 for integers. Since: 0.1 */
+/**
+ * The prime that entries are taken modulo; 0 for integers.
+ *
+ * @param matrix  borrowed; NULL gives 0.
+ * @return the prime, or 0.
+ * Cost: constant, no allocation. Threads: any number may share `matrix`. Since: 0.1
+ */
 IDS_API uint32_t ids_matrix_prime(const ids_matrix *matrix);
 
 /**
@@ -288,12 +415,18 @@ IDS_API uint32_t ids_matrix_prime(const ids_matrix *matrix);
  * lines name what it is and, for the quotient step, the prime. Indices count from 1 there. Entries
  * stand row by row, by increasing column.
  *
- * @param ctx     borrowed: that of the matrix.
- * @param matrix  borrowed.
- * @param sink    receives the text piece by piece; sink_user is passed to it.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_IO (the sink stopped), IDS_ERR_NOMEM, IDS_ERR_LIMIT,
- *         IDS_ERR_CANCELLED
+ * @param ctx        borrowed: that of the matrix.
+ * @param matrix     borrowed.
+ * @param sink       receives the text piece by piece; called from this thread.
+ * @param sink_user  passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL
+ *         IDS_ERR_IO         the sink stopped
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_CANCELLED  cancelled
  * Cost: plain: O(degree^2) an entry; quotient step: as one pass of elimination over the rows.
+ * Threads: one a ctx. Cancel: polled. Border: none.
  * Source: Boisvert, Pozo, Remington, The Matrix Market Exchange Formats, NISTIR 5935 (1996).
  * Since: 0.1
  */
@@ -304,7 +437,17 @@ IDS_API IDS_MUST_USE ids_status ids_matrix_write(ids_ctx *ctx, const ids_matrix 
  * Writes the names of the columns, one a line: a monomial in the notation of the presentation; for
  * the quotient step the product of normal forms, multiplied out.
  *
- * @return as ids_matrix_write(). Since: 0.1
+ * @param ctx        borrowed: that of the matrix.
+ * @param matrix     borrowed.
+ * @param sink       receives the text piece by piece; called from this thread.
+ * @param sink_user  passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL
+ *         IDS_ERR_IO         the sink stopped
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: proportional to the text. Threads: one a ctx. Cancel: polled. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_matrix_write_columns(ids_ctx *ctx, const ids_matrix *matrix,
                                                          ids_sink_fn sink, void *sink_user);

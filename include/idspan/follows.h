@@ -35,43 +35,83 @@ typedef struct ids_follows ids_follows;
  * that are too small, and the probability of either is bounded by the bound of that table.
  *
  * A candidate that cancels to 0 follows, and that is exact.
+ *
  * @param ctx           borrowed now, kept.
  * @param presentation  borrowed.
  * @param index         0 .. ids_presentation_count(presentation, IDS_ROLE_CANDIDATE)-1.
  * @param options       borrowed; NULL for the defaults.
  * @param follows       out, owned: ids_follows_free(); written only on IDS_OK.
- * @return IDS_OK, IDS_ERR_ARG (NULL, index, struct_size), IDS_ERR_NOMEM, IDS_ERR_LIMIT,
- *         IDS_ERR_CANCELLED
- * Cost: as two tables by partition in the degree of the candidate. Threads: up to the context's
- * number. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget, a candidate of degree over 16
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: as two tables by partition in the degree of the candidate.
+ * Threads: up to the context's number. Cancel: polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_follows_decide(ids_ctx *ctx,
                                                    const ids_presentation *presentation,
                                                    size_t index, const ids_follows_options *options,
                                                    ids_follows **follows);
 
-/** Frees an answer; NULL is fine. Since: 0.1 */
+/**
+ * Frees an answer.
+ *
+ * @param follows  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `follows` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_follows_free(ids_follows *follows);
 
-/** Whether the candidate follows; false for NULL. Since: 0.1 */
+/**
+ * Whether the candidate follows.
+ *
+ * @param follows  borrowed; NULL gives false.
+ * @return true: it follows.
+ * Cost: constant, no allocation. Threads: any number may share `follows`. Since: 0.1
+ */
 IDS_API bool ids_follows_answer(const ids_follows *follows);
 
-/** Degree of the candidate; 0 for NULL. Since: 0.1 */
+/**
+ * Degree of the candidate.
+ *
+ * @param follows  borrowed; NULL gives 0.
+ * @return the degree.
+ * Cost: constant, no allocation. Threads: any number may share `follows`. Since: 0.1
+ */
 IDS_API uint32_t ids_follows_degree(const ids_follows *follows);
 
-/** What the answer claims; *bits (may be NULL) as in ids_partition_row. Since: 0.1 */
+/**
+ * What the answer claims.
+ *
+ * @param follows  borrowed; NULL gives IDS_CERTAINTY_MODULAR with 0 bits.
+ * @param bits     out, may be NULL: as in ids_partition_row.
+ * @return IDS_CERTAINTY_EXACT or IDS_CERTAINTY_MODULAR.
+ * Cost: constant, no allocation. Threads: any number may share `follows`. Since: 0.1
+ */
 IDS_API ids_certainty ids_follows_certainty(const ids_follows *follows, uint32_t *bits);
 
-/** Number of partitions for which the candidate fails: 0 when it follows. Since: 0.1 */
+/**
+ * Number of partitions for which the candidate fails: 0 when it follows.
+ *
+ * @param follows  borrowed; NULL gives 0.
+ * @return how many partitions ids_follows_partition() knows.
+ * Cost: constant, no allocation. Threads: any number may share `follows`. Since: 0.1
+ */
 IDS_API size_t ids_follows_count(const ids_follows *follows);
 
 /**
  * One partition for which the candidate fails.
  *
- * @param partition     out.
+ * @param follows       borrowed.
+ * @param index         0 .. ids_follows_count()-1.
+ * @param partition     out, written only on IDS_OK.
  * @param multiplicity  out: how much larger the multiplicity in the consequences becomes when the
  *                      candidate is imposed too, at least 1.
- * @return IDS_OK, IDS_ERR_ARG (NULL, index out of range). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: any number may share `follows`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_follows_partition(const ids_follows *follows, size_t index,
                                                       ids_partition *partition,
@@ -92,16 +132,23 @@ typedef struct ids_derivation ids_derivation;
  * The search is among the consequences with the variables of the candidate as written, each as
  * often as there; over the rational numbers that is as good as the linearised candidate, and
  * smaller. The result has been added up exactly.
+ *
  * @param ctx           borrowed now, kept.
  * @param presentation  kept: must outlive the derivation.
- * @param index         of the candidate.
+ * @param index         0 .. ids_presentation_count(presentation, IDS_ROLE_CANDIDATE)-1.
  * @param options       borrowed; NULL for the defaults.
  * @param derivation    out, owned: ids_derivation_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_DOMAIN (there is none: the candidate does not follow, modulo the prime
- *         that was drawn); IDS_ERR_UNABLE (coefficients too large); IDS_ERR_ARG, IDS_ERR_NOMEM,
- *         IDS_ERR_LIMIT, IDS_ERR_CANCELLED
+ * @return IDS_OK
+ *         IDS_ERR_DOMAIN     there is none: the candidate does not follow, modulo the prime that
+ *                            was drawn
+ *         IDS_ERR_UNABLE     coefficients too large
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget, 2^32 consequences
+ *         IDS_ERR_CANCELLED  cancelled
  * Cost: one elimination with a row a monomial and a column a consequence, then up to some hundred
- * to shorten, less when they are large. Border: GMP, FLINT (the coefficients). Since: 0.1
+ * to shorten, less when they are large.
+ * Threads: one a ctx. Cancel: polled. Border: GMP, FLINT (the coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_derivation_find(ids_ctx *ctx,
                                                     const ids_presentation *presentation,
@@ -109,13 +156,31 @@ IDS_API IDS_MUST_USE ids_status ids_derivation_find(ids_ctx *ctx,
                                                     const ids_follows_options *options,
                                                     ids_derivation **derivation);
 
-/** Frees a derivation; NULL is fine. Since: 0.1 */
+/**
+ * Frees a derivation.
+ *
+ * @param derivation  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `derivation` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_derivation_free(ids_derivation *derivation);
 
-/** Number of terms; 0 for NULL. Since: 0.1 */
+/**
+ * Number of terms.
+ *
+ * @param derivation  borrowed; NULL gives 0.
+ * @return the number of terms.
+ * Cost: constant, no allocation. Threads: any number may share `derivation`. Since: 0.1
+ */
 IDS_API size_t ids_derivation_count(const ids_derivation *derivation);
 
-/** Number of terms of the solution that was found first, before it was made short. Since: 0.1 */
+/**
+ * Number of terms of the solution that was found first, before it was made short.
+ *
+ * @param derivation  borrowed; NULL gives 0.
+ * @return the number of terms; 0 for NULL.
+ * Cost: constant, no allocation. Threads: any number may share `derivation`. Since: 0.1
+ */
 IDS_API size_t ids_derivation_first_count(const ids_derivation *derivation);
 
 /**
@@ -123,18 +188,34 @@ IDS_API size_t ids_derivation_first_count(const ids_derivation *derivation);
  *
  * @param ctx         borrowed.
  * @param derivation  borrowed.
- * @param sink        receives the text; sink_user is passed to it.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_IO (the sink stopped), IDS_ERR_NOMEM, IDS_ERR_LIMIT.
- * Since: 0.1
+ * @param sink        receives the text piece by piece; called from this thread.
+ * @param sink_user   passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: proportional to the text. Threads: any number may share `derivation`, with a ctx each.
+ * Cancel: not polled. Border: GMP (digits of coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_derivation_write(ids_ctx *ctx, const ids_derivation *derivation,
                                                      ids_sink_fn sink, void *sink_user);
 
 /**
  * Writes a derivation as LaTeX: the linearised identities that are used, then one formula, a line
- * a term, to be read with \input into a document. No package is needed.
+ * a term, to be read with \\input into a document. No package is needed.
  *
- * @return as ids_derivation_write(). Since: 0.1
+ * @param ctx         borrowed.
+ * @param derivation  borrowed.
+ * @param sink        receives the text piece by piece; called from this thread.
+ * @param sink_user   passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: proportional to the text. Threads: any number may share `derivation`, with a ctx each.
+ * Cancel: not polled. Border: GMP (digits of coefficients). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_derivation_latex(ids_ctx *ctx, const ids_derivation *derivation,
                                                      ids_sink_fn sink, void *sink_user);
@@ -152,23 +233,59 @@ typedef struct ids_witness ids_witness;
  * Finds a witness against a candidate, with few and small values.
  *
  * It has been evaluated on all consequences, with integers.
+ *
+ * @param ctx           borrowed now, kept.
  * @param presentation  kept: must outlive the witness.
+ * @param index         0 .. ids_presentation_count(presentation, IDS_ROLE_CANDIDATE)-1.
+ * @param options       borrowed; NULL for the defaults.
  * @param witness       out, owned: ids_witness_free(); written only on IDS_OK.
- * @return as ids_derivation_find(); IDS_ERR_DOMAIN: the candidate follows.
- * Cost: an elimination with a column a monomial and a row a consequence. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_DOMAIN     there is none: the candidate follows, modulo the prime that was drawn
+ *         IDS_ERR_UNABLE     values too large
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_LIMIT      byte budget, 2^32 consequences
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: an elimination with a column a monomial and a row a consequence. Threads: one a ctx.
+ * Cancel: polled. Border: GMP, FLINT (the values). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_witness_find(ids_ctx *ctx, const ids_presentation *presentation,
                                                  size_t index, const ids_follows_options *options,
                                                  ids_witness **witness);
 
-/** Frees a witness; NULL is fine. Since: 0.1 */
+/**
+ * Frees a witness.
+ *
+ * @param witness  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `witness` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_witness_free(ids_witness *witness);
 
-/** Number of values that are not 0; 0 for NULL. Since: 0.1 */
+/**
+ * Number of values that are not 0.
+ *
+ * @param witness  borrowed; NULL gives 0.
+ * @return the number of values.
+ * Cost: constant, no allocation. Threads: any number may share `witness`. Since: 0.1
+ */
 IDS_API size_t ids_witness_count(const ids_witness *witness);
 
-/** Writes a witness as a file that ids_certificate_check() reads. @return as
- * ids_derivation_write(). Since: 0.1 */
+/**
+ * Writes a witness as a file that ids_certificate_check() reads.
+ *
+ * @param ctx        borrowed.
+ * @param witness    borrowed.
+ * @param sink       receives the text piece by piece; called from this thread.
+ * @param sink_user  passed to `sink`; borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: proportional to the text. Threads: any number may share `witness`, with a ctx each.
+ * Cancel: not polled. Border: GMP (digits of values). Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_witness_write(ids_ctx *ctx, const ids_witness *witness,
                                                   ids_sink_fn sink, void *sink_user);
 
@@ -191,16 +308,22 @@ typedef struct ids_check_report {
  * A derivation is multiplied out and added up, exactly. A witness is evaluated on every identity
  * with all monomials for its variables in all contexts, and on the candidate. The code shares the
  * reader of presentations and the canonical form of monomials with the solvers, nothing else.
+ *
  * @param ctx     borrowed.
  * @param text    borrowed; any bytes are safe.
  * @param length  bytes of text.
  * @param source  borrowed: name of the text for messages; NULL: "input".
  * @param report  out, written only on IDS_OK: then all of it is verified.
- * @return IDS_OK; IDS_ERR_PARSE (not such a file, or damaged; with place); IDS_ERR_DOMAIN (the
- *         claim is not shown by what the file says); IDS_ERR_LIMIT, IDS_ERR_NOMEM, IDS_ERR_ARG,
- *         IDS_ERR_CANCELLED
+ * @return IDS_OK
+ *         IDS_ERR_PARSE      not such a file, or damaged; with place
+ *         IDS_ERR_DOMAIN     the claim is not shown by what the file says
+ *         IDS_ERR_LIMIT      byte budget, a limit of presentations
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_ARG        NULL
+ *         IDS_ERR_CANCELLED  cancelled
  * Cost: derivation: linear in the terms when multiplied out; witness: the number of consequences.
- * Since: 0.1
+ * Threads: one a ctx. Cancel: polled.
+ * Border: GMP (exact sums; numbers in the file have at most 10,000 digits). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length,
                                                       const char *source, ids_check_report *report);

@@ -42,13 +42,22 @@ typedef struct ids_writer ids_writer;
  * Starts a table. Rows are written as they come; text format holds back some hundred rows to
  * align them. Memory does not grow with the number of rows.
  *
- * @param ctx      borrowed now, kept.
- * @param format   output format.
- * @param task     borrowed: name of the table in JSON, in a comment in LaTeX.
- * @param columns  borrowed now, names copied; count of them, at least 1, no two with one name.
- * @param sink     receives the output; sink_user is kept and passed to it.
- * @param writer   out, owned: ids_writer_free(), after ids_writer_end() for a complete table.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO. Since: 0.1
+ * @param ctx        borrowed now, kept.
+ * @param format     output format.
+ * @param task       borrowed: name of the table in JSON, in a comment in LaTeX.
+ * @param columns    borrowed now, names copied.
+ * @param count      number of columns, at least 1, no two with one name.
+ * @param sink       kept; receives the output; called from the thread that writes.
+ * @param sink_user  kept; passed to `sink`.
+ * @param writer     out, owned: ids_writer_free(), after ids_writer_end() for a complete table.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, unknown format or kind of column, no columns, no name, two of one
+ *                        name
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_IO     the sink refused
+ * Cost: proportional to the headings. Threads: one a ctx. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_create(ids_ctx *ctx, ids_format format, const char *task,
                                                   const ids_column *columns, size_t count,
@@ -59,7 +68,14 @@ IDS_API IDS_MUST_USE ids_status ids_writer_create(ids_ctx *ctx, ids_format forma
  * Adds a name and value that JSON keeps beside the rows and text shows as a line after them
  * (CSV leaves it out, LaTeX makes it a comment). Call it before ids_writer_end(), once a name.
  *
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT. Since: 0.1
+ * @param writer  borrowed.
+ * @param name    borrowed, copied; no two notes of one name.
+ * @param value   borrowed, copied.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, the name is taken, after ids_writer_end()
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a copy. Threads: one a writer. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *name,
                                                 const char *value);
@@ -69,14 +85,38 @@ IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *
  *
  * A row that is refused with IDS_ERR_ARG leaves the table as it was. After any other failure the
  * table is broken off: later calls answer with the same status and nothing more is written.
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT, IDS_ERR_IO. Since: 0.1
+ *
+ * @param writer  borrowed.
+ * @param cells   borrowed, none of them NULL.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, no number in a number column, after ids_writer_end()
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_IO     the sink refused
+ * Cost: proportional to the row. Threads: one a writer. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_row(ids_writer *writer, const char *const *cells);
 
-/** Writes what is held back, the notes and the end. @return as ids_writer_row(). Since: 0.1 */
+/**
+ * Writes what is held back, the notes and the end.
+ *
+ * @param writer  borrowed.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, called twice
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_IO     the sink refused
+ * Cost: proportional to what is held back. Threads: one a writer. Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_writer_end(ids_writer *writer);
 
-/** Frees a writer; NULL is fine. Since: 0.1 */
+/**
+ * Frees a writer.
+ *
+ * @param writer  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use `writer` any more.
+ * Since: 0.1
+ */
 IDS_API void ids_writer_free(ids_writer *writer);
 
 #ifdef __cplusplus

@@ -37,10 +37,13 @@ typedef struct ids_partition {
  * @param ctx        borrowed.
  * @param text       borrowed.
  * @param partition  out, written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL); IDS_ERR_PARSE (not such a text, a part 0, a part larger
- *         than the one before it, degree over IDS_MAX_PARTITION_DEGREE; the message says which,
- *         ids_ctx_last_place() where)
- * Cost: O(length of text), no allocation. Border: none. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_PARSE  not such a text, a part 0, a part larger than the one before it, degree
+ *                        over IDS_MAX_PARTITION_DEGREE; the message says which,
+ *                        ids_ctx_last_place() where
+ * Cost: O(length of text), no allocation. Threads: one a ctx. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_parse(ids_ctx *ctx, const char *text,
                                                     ids_partition *partition);
@@ -51,16 +54,21 @@ IDS_API IDS_MUST_USE ids_status ids_partition_parse(ids_ctx *ctx, const char *te
  * @param ctx        borrowed.
  * @param partition  borrowed.
  * @param text       out, owned: ids_string_free().
- * @return IDS_OK, IDS_ERR_ARG, IDS_ERR_NOMEM, IDS_ERR_LIMIT (byte budget). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, not well formed
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: proportional to the text. Threads: one a ctx. Cancel: not polled. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_print(ids_ctx *ctx, const ids_partition *partition,
                                                     char **text);
 
 /**
- * Number of partitions of a degree; 0 when it is over IDS_MAX_PARTITION_DEGREE.
+ * Number of partitions of a degree.
  *
- * Cost: O(IDS_MAX_PARTITION_DEGREE^2) additions, no allocation; as for the calls that follow.
- * Threads: any. Since: 0.1
+ * @param degree  any.
+ * @return how many; 0 when it is over IDS_MAX_PARTITION_DEGREE.
+ * Cost: O(IDS_MAX_PARTITION_DEGREE^2) additions, no allocation. Threads: any. Since: 0.1
  */
 IDS_API uint64_t ids_partition_count(uint32_t degree);
 
@@ -69,7 +77,9 @@ IDS_API uint64_t ids_partition_count(uint32_t degree);
  *
  * @param partition  borrowed.
  * @param index      out: 0 .. ids_partition_count(degree)-1, written only on IDS_OK.
- * @return IDS_OK, IDS_ERR_ARG (NULL, not well formed). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, not well formed
+ * Cost: as ids_partition_count(). Threads: any number may share `partition`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_rank(const ids_partition *partition, uint64_t *index);
 
@@ -79,7 +89,9 @@ IDS_API IDS_MUST_USE ids_status ids_partition_rank(const ids_partition *partitio
  * @param degree     0 .. IDS_MAX_PARTITION_DEGREE.
  * @param index      0 .. ids_partition_count(degree)-1.
  * @param partition  out, written only on IDS_OK.
- * @return IDS_OK, IDS_ERR_ARG (NULL, out of range). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, out of range
+ * Cost: as ids_partition_count(). Threads: any. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_unrank(uint32_t degree, uint64_t index,
                                                      ids_partition *partition);
@@ -90,7 +102,9 @@ IDS_API IDS_MUST_USE ids_status ids_partition_unrank(uint32_t degree, uint64_t i
  *
  * @param partition  borrowed.
  * @param conjugate  out, written only on IDS_OK; it may be `partition` itself.
- * @return IDS_OK, IDS_ERR_ARG (NULL, not well formed). Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, not well formed
+ * Cost: O(degree), no allocation. Threads: any number may share `partition`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_conjugate(const ids_partition *partition,
                                                         ids_partition *conjugate);
@@ -100,11 +114,13 @@ IDS_API IDS_MUST_USE ids_status ids_partition_conjugate(const ids_partition *par
  *
  * @param partition  borrowed.
  * @param dimension  out, written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, not well formed); IDS_ERR_LIMIT (it passes 64 bits, which
- *         can happen from degree 36 on)
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, not well formed
+ *         IDS_ERR_LIMIT  it passes 64 bits, which can happen from degree 36 on
  * Cost: O(degree^2) greatest common divisors, no allocation. Threads: any.
  * Source: degree! / product of the hook lengths (Frame, Robinson, Thrall, Canad. J. Math. 6
- * (1954)). Since: 0.1
+ * (1954)).
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_partition_dimension(const ids_partition *partition,
                                                         uint64_t *dimension);
@@ -120,12 +136,13 @@ typedef struct ids_cocharacter ids_cocharacter;
  *
  * The signs of the operations count. The result is exact: characters of the symmetric groups, no
  * monomial is looked at.
+ *
  * @param ctx          borrowed now, kept by the cocharacter.
  * @param signature    borrowed.
  * @param max_degree   1 .. IDS_MAX_PARTITION_DEGREE.
  * @param cocharacter  out, owned: ids_cocharacter_free(); written only on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL pointer, max_degree out of range
+ *         IDS_ERR_ARG        NULL, max_degree out of range
  *         IDS_ERR_LIMIT      byte budget
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_CANCELLED  cancelled
@@ -133,19 +150,32 @@ typedef struct ids_cocharacter ids_cocharacter;
  * Cost: grows with the square of the number of partitions. One binary operation takes milliseconds
  * and less than a megabyte to degree 20, seconds and 100 MB to degree 40; an operation of arity k
  * up to k times that.
- * Threads: one a ctx. Cancel: polled. Border: none (GMP's functions on limbs, which take no
- * memory).
+ * Threads: one a ctx. Cancel: polled.
+ * Border: none (GMP's functions on limbs, which take no memory).
  * Source: M = h1 + sum of Z[M] over the operations, Z the cycle index of the symmetry with signs
- * and [ ] plethysm (Macdonald, Symmetric Functions and Hall Polynomials, I.7, I.8). Since: 0.1
+ * and [ ] plethysm (Macdonald, Symmetric Functions and Hall Polynomials, I.7, I.8).
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_cocharacter_create(ids_ctx *ctx, const ids_signature *signature,
                                                        uint32_t max_degree,
                                                        ids_cocharacter **cocharacter);
 
-/** Frees a cocharacter; NULL is fine. Since: 0.1 */
+/**
+ * Frees a cocharacter.
+ *
+ * @param cocharacter  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator.
+ * Threads: one; nobody may use `cocharacter` any more. Since: 0.1
+ */
 IDS_API void ids_cocharacter_free(ids_cocharacter *cocharacter);
 
-/** The max_degree of a cocharacter; 0 for NULL. Since: 0.1 */
+/**
+ * The max_degree of a cocharacter.
+ *
+ * @param cocharacter  borrowed; NULL gives 0.
+ * @return the max_degree that it was made with.
+ * Cost: constant, no allocation. Threads: any number may share `cocharacter`. Since: 0.1
+ */
 IDS_API uint32_t ids_cocharacter_max_degree(const ids_cocharacter *cocharacter);
 
 /**
@@ -155,7 +185,9 @@ IDS_API uint32_t ids_cocharacter_max_degree(const ids_cocharacter *cocharacter);
  * @param degree        1 .. ids_cocharacter_max_degree().
  * @param index         0 .. ids_partition_count(degree)-1, as ids_partition_rank() gives it.
  * @param multiplicity  out, written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_ARG (NULL, out of range); IDS_ERR_LIMIT (it passes 64 bits)
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, out of range
+ *         IDS_ERR_LIMIT  it passes 64 bits
  * Cost: constant, no allocation. Threads: any number may share `cocharacter`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_cocharacter_multiplicity(const ids_cocharacter *cocharacter,

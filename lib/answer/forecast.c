@@ -75,29 +75,39 @@ static double rows_of(const idsi_tower *tower, const series *s, uint32_t n)
     return sum * factorial(n);
 }
 
-void idsi_forecast(const idsi_tower *tower, uint32_t degree, uint32_t to, double *begin,
-                   double *end)
+void idsi_forecast_degrees(const idsi_tower *tower, uint32_t known, uint32_t to,
+                           idsi_forecast_degree *degrees)
 {
     series s = {{0}};
     double kept = 1; /* dimension over columns */
+
+    for (uint32_t n = 1; n <= to; n++) {
+        idsi_forecast_degree *d = &degrees[n];
+        d->columns = n == 1 ? 1 : columns_of(tower, &s, n);
+        d->cost = (rows_of(tower, &s, n) + 1) * d->columns;
+        if (n <= known) {
+            d->dimension = (double)tower->level[n].dimension;
+            kept = d->columns > 0 ? d->dimension / d->columns : kept;
+        } else {
+            d->dimension = n == 1 ? 1 : kept * d->columns;
+        }
+        s.d[n] = d->dimension / factorial(n);
+    }
+}
+
+void idsi_forecast(const idsi_tower *tower, uint32_t degree, uint32_t to, double *begin,
+                   double *end)
+{
+    idsi_forecast_degree degrees[IDS_MAX_DEGREE + 1] = {{0}};
     double before = 0;
     double here = 0;
     double all = 0;
 
-    s.d[1] = 1;
+    idsi_forecast_degrees(tower, degree - 1, to, degrees);
     for (uint32_t n = 1; n <= to; n++) {
-        double columns = n == 1 ? 1 : columns_of(tower, &s, n);
-        double cost = (rows_of(tower, &s, n) + 1) * columns;
-        if (n < degree) {
-            double dimension = (double)tower->level[n].dimension;
-            kept = columns > 0 ? dimension / columns : kept;
-            s.d[n] = dimension / factorial(n);
-            before += cost;
-        } else {
-            s.d[n] = n == 1 ? 1 : kept * columns / factorial(n);
-            here += n == degree ? cost : 0;
-        }
-        all += cost;
+        before += n < degree ? degrees[n].cost : 0;
+        here += n == degree ? degrees[n].cost : 0;
+        all += degrees[n].cost;
     }
     *begin = all > 0 ? before / all : 0;
     *end = all > 0 ? (before + here) / all : 1;

@@ -5,6 +5,16 @@
 
 #include "../engine/engine_private.h"
 
+/* What a degree is expected to be like. */
+typedef struct idsi_forecast_degree {
+    double columns;
+    double dimension; /* of F(n)/I(n) */
+    double cost;
+} idsi_forecast_degree;
+
+/* Fills degrees[1 .. to], from a tower that has the degrees 1 .. known. */
+void idsi_forecast_degrees(const idsi_tower *tower, uint32_t known, uint32_t to,
+                           idsi_forecast_degree *degrees);
 /*
  * The shares of the estimated cost of the degrees 1 .. to that are below `degree` and below
  * degree + 1, where the tower has the degrees below `degree`.

@@ -14,6 +14,8 @@
 
 #include "../engine/partition_private.h"
 #include "../young/young_private.h"
+#include "fresh_private.h"
+#include "rank_private.h"
 
 struct ids_partition_table {
     ids_ctx *ctx;
@@ -70,7 +72,7 @@ typedef struct job {
     ids_cocharacter *free;
     idsi_random random;
     ids_partition_table *table;
-    double *error; /* of each row, mod one prime */
+    uint64_t *blocks; /* of random covectors behind each row, mod the prime that took the most */
 } job;
 
 /* ---- rows -------------------------------------------------------------------------------- */
@@ -102,7 +104,7 @@ static ids_status lay_out(job *j)
         room += (size_t)ids_partition_count(d) + 1;
     }
     IDSI_TRY(idsi_alloc_array(j->ctx, room, sizeof *j->table->rows, &j->table->rows));
-    IDSI_TRY(idsi_alloc_array(j->ctx, room, sizeof *j->error, &j->error));
+    IDSI_TRY(idsi_alloc_array(j->ctx, room, sizeof *j->blocks, &j->blocks));
     for (uint32_t d = j->from; d <= j->to; d++) {
         for (uint64_t i = 0; i < ids_partition_count(d); i++) {
             IDSI_TRY(lay_out_row(j, d, i, &j->table->rows[j->table->count]));
@@ -117,7 +119,7 @@ done:
 }
 
 /* log2 of the orders of the row and the column group of a partition, together. */
-static double group_bits(const ids_partition *partition)
+double idsi_partition_group_bits(const ids_partition *partition)
 {
     double bits = 0;
     ids_partition conjugate = *partition;
@@ -134,22 +136,27 @@ static double group_bits(const ids_partition *partition)
     return bits / log(2.0) + 1e-6;
 }
 
-/* What the number in a row claims after `primes` primes; *error is its error probability. */
-static void certify(const job *j, size_t i, uint32_t primes, double *error)
+void idsi_partition_certify(const idsi_laws *laws, uint64_t blocks, uint32_t primes,
+                            ids_partition_row *row, double *error)
 {
-    ids_partition_row *row = &j->table->rows[i];
-    double bits = idsi_laws_norm_bits(j->laws, row->degree);
+    double bits = idsi_laws_norm_bits(laws, row->degree);
 
     row->consequences = row->free - row->quotient;
     row->certainty = IDS_CERTAINTY_EXACT;
     row->bits = 0;
     *error = 0;
     if (bits >= 0 && row->quotient > 0) {
-        double minor = (double)row->free * (group_bits(&row->partition) + bits);
-        *error = idsi_prime_error(minor, j->error[i], primes);
+        double minor = (double)row->free * (idsi_partition_group_bits(&row->partition) + bits);
+        *error = idsi_prime_error(minor, idsi_blocks_error(blocks), primes);
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(*error);
     }
+}
+
+/* What the number in a row claims after `primes` primes; *error is its error probability. */
+static void certify(const job *j, size_t i, uint32_t primes, double *error)
+{
+    idsi_partition_certify(j->laws, j->blocks[i], primes, &j->table->rows[i], error);
 }
 
 /* Sums up the rows of a degree, which end with the total. */
@@ -192,9 +199,12 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
     ids_status st = IDS_OK;
     ids_partition_row *row = &j->table->rows[i];
     uint32_t multiplicity = 0;
+    idsi_account account = {0};
 
     IDSI_TRY(idsi_partition_multiplicity(engine, row->partition.part, row->partition.length,
                                          &multiplicity));
+    IDSI_TRY(idsi_partition_account(engine, row->partition.part, row->partition.length,
+                                    &account));
     if (multiplicity > row->free) {
         st = idsi_fail(j->ctx, IDS_ERR_INTERNAL,
                        "degree %u: a multiplicity is %u in the quotient, %llu in the free "
@@ -203,7 +213,7 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
         goto done;
     }
     row->quotient = multiplicity < row->quotient ? multiplicity : row->quotient;
-    j->error[i] = fmax(j->error[i], engine->error);
+    j->blocks[i] = account.blocks > j->blocks[i] ? account.blocks : j->blocks[i];
 done:
     return st;
 }
@@ -331,7 +341,7 @@ ids_status ids_partition_table_create(ids_ctx *ctx, const ids_presentation *pres
 done:
     ids_cocharacter_free(j.free);
     idsi_laws_free(j.laws);
-    idsi_free(ctx, j.error);
+    idsi_free(ctx, j.blocks);
     if (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED) {
         *table = j.table;
     } else {

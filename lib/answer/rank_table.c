@@ -18,6 +18,7 @@
 #include <idspan/answer.h>
 
 #include "forecast_private.h"
+#include "rank_private.h"
 
 struct ids_rank_table {
     ids_ctx *ctx;
@@ -192,7 +193,7 @@ static uint32_t multiplicity(const idsi_identity *identity)
     return most;
 }
 
-static bool is_weakened(const ids_presentation *pres, uint32_t field, uint32_t degree)
+bool idsi_rank_weakened(const ids_presentation *pres, uint32_t field, uint32_t degree)
 {
     for (size_t i = 0; field > 0 && i < ids_presentation_count(pres, IDS_ROLE_IDENTITY); i++) {
         const idsi_identity *identity = idsi_presentation_get(pres, IDS_ROLE_IDENTITY, i);
@@ -249,7 +250,7 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *j.table, &j.table));
     j.table->ctx = ctx;
     j.table->field = chosen.field;
-    j.table->weakened = is_weakened(presentation, chosen.field, to);
+    j.table->weakened = idsi_rank_weakened(presentation, chosen.field, to);
     IDSI_TRY(idsi_alloc_array(ctx, to - from + 1u, sizeof *j.table->rows, &j.table->rows));
     IDSI_TRY(idsi_laws_create(ctx, presentation, &j.laws));
     if (chosen.exact) {

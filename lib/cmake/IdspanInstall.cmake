@@ -45,3 +45,26 @@ install(FILES "${PROJECT_BINARY_DIR}/idspan-config.cmake"
         DESTINATION "${idspan_cmakedir}"
 )
 install(EXPORT idspan-targets NAMESPACE idspan:: DESTINATION "${idspan_cmakedir}")
+
+add_custom_target(
+    uninstall
+    COMMAND "${CMAKE_COMMAND}" "-DMANIFEST=${PROJECT_BINARY_DIR}/install_manifest.txt" -P
+            "${CMAKE_CURRENT_LIST_DIR}/IdspanUninstall.cmake"
+    VERBATIM
+)
+
+# `cpack -G DEB` in the build folder: one Debian package with the tool and both libraries.
+set(CPACK_PACKAGE_NAME "${PROJECT_NAME}")
+set(CPACK_PACKAGE_VENDOR "idspan contributors")
+set(CPACK_PACKAGE_CONTACT "idspan contributors <idspan@localhost>")
+set(CPACK_PACKAGE_DESCRIPTION_SUMMARY "${PROJECT_DESCRIPTION}")
+set(CPACK_PACKAGING_INSTALL_PREFIX /usr)
+set(CPACK_GENERATOR DEB)
+set(CPACK_STRIP_FILES ON)
+set(CPACK_DEBIAN_FILE_NAME DEB-DEFAULT)
+set(CPACK_DEBIAN_PACKAGE_SECTION math)
+set(CPACK_DEBIAN_PACKAGE_SHLIBDEPS ON)
+set(CPACK_DEBIAN_PACKAGE_GENERATE_SHLIBS ON)
+set(CPACK_DEBIAN_PACKAGE_RECOMMENDS "libgmp-dev, libflint-dev, pkg-config")
+set(CPACK_DEBIAN_PACKAGE_CONTROL_STRICT_PERMISSION ON)
+include(CPack)

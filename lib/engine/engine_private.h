@@ -76,6 +76,10 @@ typedef struct idsi_laws {
     idsi_law *law;
 } idsi_laws;
 
+/* One law, from a linearised polynomial with terms, which it borrows; `law` is zeroed before and
+ * cleared after, also on failure. */
+ids_status idsi_law_compile(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law);
+void idsi_law_clear(ids_ctx *ctx, idsi_law *law);
 ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_laws **laws);
 void idsi_laws_free(idsi_laws *laws);
 /* Whether some law says x = 0. */

@@ -127,7 +127,7 @@ static double norm_bits(const idsi_poly *poly)
     return isfinite(sum) ? 0.5 * log2(sum) * (1 + 1e-9) + 1e-9 : INFINITY;
 }
 
-static ids_status compile_law(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law)
+ids_status idsi_law_compile(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law)
 {
     ids_status st = IDS_OK;
     size_t capacity = 0;
@@ -161,7 +161,7 @@ ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_law
         const idsi_identity *identity = &pres->list[i];
         if (identity->role == IDS_ROLE_IDENTITY && identity->linear.count > 0) {
             made->count++;
-            IDSI_TRY(compile_law(ctx, &identity->linear, &made->law[made->count - 1]));
+            IDSI_TRY(idsi_law_compile(ctx, &identity->linear, &made->law[made->count - 1]));
         }
     }
     *laws = made;
@@ -171,12 +171,17 @@ done:
     return st;
 }
 
+void idsi_law_clear(ids_ctx *ctx, idsi_law *law)
+{
+    idsi_free(ctx, law->nodes);
+    idsi_free(ctx, law->root);
+}
+
 void idsi_laws_free(idsi_laws *laws)
 {
     if (laws != NULL) {
         for (size_t i = 0; i < laws->count; i++) {
-            idsi_free(laws->ctx, laws->law[i].nodes);
-            idsi_free(laws->ctx, laws->law[i].root);
+            idsi_law_clear(laws->ctx, &laws->law[i]);
         }
         idsi_free(laws->ctx, laws->law);
         idsi_free(laws->ctx, laws);

@@ -7,6 +7,7 @@
  * The values that are stored on the way may be computed twice, by two threads, and are the same.
  */
 #include <string.h>
+#include <time.h>
 
 #include "partition_private.h"
 
@@ -50,7 +51,7 @@ typedef struct crew {
     uint32_t degree;
     uint32_t *shapes; /* largest first */
     size_t count;
-    bool basis; /* solutions are wanted, not only their number */
+    bool basis;               /* solutions are wanted, not only their number */
     _Atomic double cost_done; /* in this degree */
     atomic_size_t next;
     const double *share;
@@ -103,6 +104,17 @@ static ids_status report_crew(crew *c)
     return idsi_poll(c->engine->ctx, &progress);
 }
 
+/* Processor time of the thread that asks; 0 where the system does not tell. */
+static double thread_seconds(void)
+{
+    struct timespec now = {0};
+
+    if (clock_gettime(CLOCK_THREAD_CPUTIME_ID, &now) != 0) {
+        return 0;
+    }
+    return (double)now.tv_sec + 1e-9 * (double)now.tv_nsec;
+}
+
 static void work(worker *w, bool first)
 {
     crew *c = w->crew;
@@ -111,7 +123,10 @@ static void work(worker *w, bool first)
         if (k >= c->count) {
             return;
         }
+        idsi_space *space = &c->engine->spaces[c->shapes[k]];
+        double start = thread_seconds();
         w->st = idsi_shape_solve(&w->scratch, c->shapes[k], c->basis, &c->stop, c->share, NULL);
+        space->seconds += thread_seconds() - start;
         add_cost(c, shape_cost(c->engine, c->shapes[k]));
         if (w->st == IDS_OK && first) {
             w->st = report_crew(c);
@@ -217,13 +232,16 @@ static ids_status learn_shares(idsi_partition_engine *engine, uint32_t degree, b
                                  engine->skews.list[shapes[0]]->count) {
         at++;
     }
-    if (entry->share != NULL || engine->spaces[shapes[at]].solved ||
+    idsi_space *pilot = count > 0 ? &engine->spaces[shapes[at]] : NULL;
+    if (count < 2 || entry->share != NULL || pilot->solved ||
         engine->skews.list[shapes[at]]->count < PILOT_LEAST) {
         return IDS_OK;
     }
+    double start = thread_seconds();
     IDSI_TRY(idsi_scratch_init(&scratch, engine));
     IDSI_TRY(idsi_alloc_array(engine->ctx, entry->equation_count, sizeof *share, &share));
     IDSI_TRY(idsi_shape_solve(&scratch, shapes[at], basis, &stop, NULL, share));
+    pilot->seconds += thread_seconds() - start;
     entry->share = share;
     share = NULL;
 done:
@@ -240,22 +258,17 @@ static ids_status solve_shapes(idsi_partition_engine *engine, uint32_t degree, u
                   .degree = degree,
                   .shapes = shapes,
                   .count = count,
-                  .basis = degree < engine->top};
+                  .basis = degree < engine->top || engine->top_basis};
 
     if (count == 0) {
         return IDS_OK;
     }
     IDSI_TRY(make_equations(engine, degree));
     sort_shapes(engine, shapes, count);
-    if (count > 1) {
-        IDSI_TRY(learn_shares(engine, degree, hands.basis, shapes, count));
-    }
+    IDSI_TRY(learn_shares(engine, degree, hands.basis, shapes, count));
     hands.share = engine->degree[degree].share;
     st = run_crew(&hands);
     engine->cost_done += atomic_load(&hands.cost_done);
-    for (size_t k = 0; k < count; k++) {
-        engine->error += idsi_shape_error(engine, shapes[k]);
-    }
 done:
     return st;
 }
@@ -297,6 +310,64 @@ ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint
         IDSI_TRY(solve_shapes(engine, degree, &shape, 1));
     }
     *multiplicity = engine->spaces[shape].dimension;
+done:
+    return st;
+}
+
+ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree)
+{
+    ids_status st = IDS_OK;
+
+    IDSI_TRY(idsi_partition_solve(engine, degree - 1));
+    IDSI_TRY(make_equations(engine, degree));
+    idsi_degree *entry = &engine->degree[degree];
+    sort_shapes(engine, entry->shapes, entry->shape_count);
+    IDSI_TRY(learn_shares(engine, degree, degree < engine->top || engine->top_basis, entry->shapes,
+                          entry->shape_count));
+done:
+    return st;
+}
+
+/* Number of the straight shape of a partition; UINT32_MAX where its degree has no monomial. */
+static ids_status straight_shape(idsi_partition_engine *engine, const uint8_t *parts, uint32_t rows,
+                                 uint32_t *shape)
+{
+    ids_status st = IDS_OK;
+    static const uint8_t empty[IDSI_SHAPE_MAX] = {0};
+
+    IDSI_TRY(idsi_skews_get(&engine->skews, parts, empty, rows, shape));
+    if (*shape >= engine->space_count) {
+        *shape = UINT32_MAX;
+    }
+done:
+    return st;
+}
+
+ids_status idsi_partition_account(idsi_partition_engine *engine, const uint8_t *parts,
+                                  uint32_t rows, idsi_account *account)
+{
+    ids_status st = IDS_OK;
+    uint32_t shape = 0;
+
+    *account = (idsi_account){0};
+    IDSI_TRY(straight_shape(engine, parts, rows, &shape));
+    if (shape == UINT32_MAX) {
+        return IDS_OK;
+    }
+    uint32_t degree = engine->skews.list[shape]->shape.cells;
+    account->tableaux = engine->skews.list[shape]->count;
+    account->seconds = engine->spaces[shape].seconds;
+    account->blocks = engine->spaces[shape].blocks;
+    for (size_t i = 0; i < engine->space_count; i++) {
+        if (engine->skews.list[i]->shape.cells < degree && engine->since[i] > 0 &&
+            engine->since[i] <= degree) {
+            account->blocks += engine->spaces[i].blocks;
+        }
+    }
+    if (degree > 1 && engine->solved + 1 >= degree) {
+        IDSI_TRY(idsi_plan_unknowns(engine, shape));
+        account->unknowns = engine->spaces[shape].unknowns;
+    }
 done:
     return st;
 }
@@ -363,6 +434,7 @@ void idsi_partition_free(idsi_partition_engine *engine)
         idsi_free(ctx, degree->generators);
         idsi_free(ctx, degree->shapes);
     }
+    idsi_free(ctx, engine->since);
     idsi_free(ctx, engine->values);
     idsi_free(ctx, engine->spaces);
     idsi_free(ctx, engine->exprs);

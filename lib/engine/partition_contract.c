@@ -213,8 +213,8 @@ static ids_status apply_value(contraction *c, uint32_t piece, uint32_t expr,
 
     IDSI_TRY(get_value(s, piece, expr, &value, &owned));
     IDSI_TRY(idsi_scratch_take_zero(s, dimension * rest * width, &product));
-    idsi_left_mul_sub(&s->work, engine->prime, value, rest * width, gathered, rest * width,
-                      product, rest * width);
+    idsi_left_mul_sub(&s->work, engine->prime, value, rest * width, gathered, rest * width, product,
+                      rest * width);
     exchange_indices(product, rest, dimension, width, wide);
 done:
     s->top = mark;
@@ -366,8 +366,8 @@ static ids_status contract(contraction *c, uint32_t shape, uint32_t first, uint3
         return contract_core(c, shape, c->arg[first], block, width);
     }
     bool upper = last > c->form->core;
-    uint32_t at = upper ? skew->shape.cells - (uint32_t)c->form->degree[last]
-                        : c->form->degree[first];
+    uint32_t at =
+        upper ? skew->shape.cells - (uint32_t)c->form->degree[last] : c->form->degree[first];
     for (size_t k = 0; k < skew->cut_count[at]; k++) {
         IDSI_TRY(peel(c, &skew->cut[at][k], upper, first, last, block, width));
     }
@@ -403,8 +403,7 @@ void idsi_maps_clear(ids_ctx *ctx, idsi_maps *maps)
 }
 
 ids_status idsi_contract_maps(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
-                              const uint32_t *block, size_t width, idsi_maps *maps,
-                              uint32_t *sums)
+                              const uint32_t *block, size_t width, idsi_maps *maps, uint32_t *sums)
 {
     idsi_partition_engine *engine = scratch->engine;
     const idsi_expr *entry = &engine->exprs[expr];

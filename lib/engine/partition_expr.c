@@ -140,33 +140,6 @@ void idsi_equations_clear(ids_ctx *ctx, idsi_degree *degree)
     degree->equation_count = 0;
 }
 
-/*
- * Word for the permutation position j -> label[j]: exchanges, to be applied to covectors in turn.
- * Sorting by exchanges of neighbours gives them last to first.
- */
-static size_t make_word(uint8_t *label, uint32_t n, uint8_t *word)
-{
-    size_t length = 0;
-    for (bool sorted = false; !sorted;) {
-        sorted = true;
-        for (uint32_t j = 0; j + 1 < n; j++) {
-            if (label[j] > label[j + 1]) {
-                uint8_t other = label[j];
-                label[j] = label[j + 1];
-                label[j + 1] = other;
-                word[length++] = (uint8_t)j;
-                sorted = false;
-            }
-        }
-    }
-    for (size_t i = 0; i < length / 2; i++) {
-        uint8_t other = word[i];
-        word[i] = word[length - 1 - i];
-        word[length - 1 - i] = other;
-    }
-    return length;
-}
-
 /* Adds coefficient * expr with the arguments' blocks of labels in the given order. */
 static ids_status add_term(maker *m, uint32_t coefficient, uint32_t expr, const uint8_t *order)
 {
@@ -188,7 +161,7 @@ static ids_status add_term(maker *m, uint32_t coefficient, uint32_t expr, const 
             label[n++] = (uint8_t)(start[order[i]] + k);
         }
     }
-    size_t length = make_word(label, n, word);
+    size_t length = idsi_seminormal_word(label, n, word);
     for (size_t i = 0; i < equation->count; i++) {
         idsi_term *term = &equation->terms[i];
         if (term->expr == expr && term->word_length == length &&

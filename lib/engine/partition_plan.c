@@ -6,6 +6,9 @@
  * A shape needs the pieces of all its chains, for all forms of its degree. Only partitions of the
  * degrees that are asked for, and of all lower degrees for the generators, are put in from
  * outside; the skew shapes are those that these need.
+ *
+ * Degrees are planned upwards, so that the plan for a degree begins like that for any lower one:
+ * what comes out for a degree does not depend on how far the table goes.
  */
 #include <string.h>
 
@@ -60,11 +63,10 @@ done:
 
 /* ---- shapes ------------------------------------------------------------------------------ */
 
-/* Marks of the shapes that are in some degree's list, by number. */
 typedef struct planner {
     idsi_partition_engine *engine;
-    bool *planned;
-    size_t planned_capacity;
+    uint8_t asked; /* the degree whose partitions are put in */
+    size_t since_capacity;
     size_t list_capacity[IDSI_SHAPE_MAX + 1];
 } planner;
 
@@ -100,17 +102,17 @@ static ids_status need_shape(planner *plan, uint32_t shape)
     ids_status st = IDS_OK;
     idsi_partition_engine *engine = plan->engine;
 
-    if (shape >= plan->planned_capacity) {
+    if (shape >= plan->since_capacity) {
         size_t capacity = 2 * (size_t)shape + 64;
-        IDSI_TRY(idsi_resize_array(engine->ctx, capacity, sizeof *plan->planned, &plan->planned));
-        memset(plan->planned + plan->planned_capacity, 0, capacity - plan->planned_capacity);
-        plan->planned_capacity = capacity;
+        IDSI_TRY(idsi_resize_array(engine->ctx, capacity, sizeof *engine->since, &engine->since));
+        memset(engine->since + plan->since_capacity, 0, capacity - plan->since_capacity);
+        plan->since_capacity = capacity;
     }
-    if (plan->planned[shape]) {
+    if (engine->since[shape] > 0) {
         return IDS_OK;
     }
     IDSI_TRY(idsi_poll(engine->ctx, NULL));
-    plan->planned[shape] = true;
+    engine->since[shape] = plan->asked;
     uint32_t cells = engine->skews.list[shape]->shape.cells;
     idsi_degree *degree = &engine->degree[cells];
     IDSI_TRY(idsi_grow(engine->ctx, degree->shape_count, &plan->list_capacity[cells],
@@ -150,7 +152,8 @@ ids_status idsi_plan_shapes(idsi_partition_engine *engine)
     planner plan = {.engine = engine};
     uint8_t parts[IDSI_SHAPE_MAX] = {0};
 
-    for (uint32_t d = engine->top; d > 0; d--) {
+    for (uint32_t d = 1; d <= engine->top; d++) {
+        plan.asked = (uint8_t)d;
         if (d == 1 || engine->degree[d].form_count > 0) {
             IDSI_TRY(need_partitions(&plan, parts, 0, d, d));
         }
@@ -158,8 +161,14 @@ ids_status idsi_plan_shapes(idsi_partition_engine *engine)
     IDSI_TRY(idsi_alloc_array(engine->ctx, engine->skews.count, sizeof *engine->spaces,
                               &engine->spaces));
     engine->space_count = engine->skews.count;
+    /* Shapes that planning came across without needing them are known, and have no place yet. */
+    if (engine->space_count > plan.since_capacity) {
+        IDSI_TRY(idsi_resize_array(engine->ctx, engine->space_count, sizeof *engine->since,
+                                   &engine->since));
+        memset(engine->since + plan.since_capacity, 0,
+               engine->space_count - plan.since_capacity);
+    }
 done:
-    idsi_free(engine->ctx, plan.planned);
     return st;
 }
 

@@ -71,6 +71,8 @@ typedef struct idsi_space {
     uint32_t unknowns;  /* dim U(t) */
     idsi_left solution; /* dimension x unknowns, negated; empty for the single cell */
     uint32_t *offset;   /* first unknown of each form of the degree */
+    uint64_t blocks;    /* of random covectors that solving it took, at most */
+    double seconds;     /* and processor time */
 } idsi_space;
 
 typedef struct idsi_degree {
@@ -99,8 +101,9 @@ typedef struct idsi_partition_engine {
     const idsi_laws *laws;
     const ids_signature *sig;
     uint32_t prime;
-    uint32_t top;    /* largest degree */
-    uint32_t solved; /* degrees of which all shapes are solved */
+    uint32_t top;      /* largest degree */
+    bool top_basis;    /* bases are wanted for the shapes of the largest degree too */
+    uint32_t solved;   /* degrees of which all shapes are solved */
     double cost;       /* estimated, of all shapes that are wanted */
     double cost_done;  /* of them, in degrees that are finished */
     double share_from; /* progress is reported from here on, */
@@ -121,7 +124,7 @@ typedef struct idsi_partition_engine {
     size_t value_slots;
     size_t value_count;
     uint64_t value_bytes;
-    double error; /* probability that random vectors missed an equation, so far */
+    uint8_t *since; /* of each planned shape: the lowest degree asked for that needs it; else 0 */
 } idsi_partition_engine;
 
 ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t prime, uint32_t top,
@@ -132,6 +135,29 @@ ids_status idsi_partition_solve(idsi_partition_engine *engine, uint32_t degree);
 /* Multiplicity of a partition in F/I; solves the lower degrees and this shape when needed. */
 ids_status idsi_partition_multiplicity(idsi_partition_engine *engine, const uint8_t *parts,
                                        uint32_t rows, uint32_t *multiplicity);
+
+/* Solves the lower degrees, and makes what all shapes of this one need. */
+ids_status idsi_partition_prepare(idsi_partition_engine *engine, uint32_t degree);
+
+/* What the work for a partition comes to; zeros where its degree has no monomial. */
+typedef struct idsi_account {
+    uint64_t tableaux;
+    uint64_t unknowns; /* once the lower degrees are solved; else 0 */
+    uint64_t blocks;   /* of random covectors, its own and those of all lower shapes that a table
+                          which ends with its degree needs */
+    double seconds;    /* its own */
+} idsi_account;
+
+ids_status idsi_partition_account(idsi_partition_engine *engine, const uint8_t *parts,
+                                  uint32_t rows, idsi_account *account);
+/*
+ * Probability that random covectors have missed an equation: 2/p^2 for every block, where no prime
+ * that is drawn is below 2^29.
+ */
+static inline double idsi_blocks_error(uint64_t blocks)
+{
+    return (double)blocks * 0x1p-57;
+}
 
 /* ---- partition_plan.c -------------------------------------------------------------------- */
 
@@ -212,8 +238,7 @@ void idsi_maps_clear(ids_ctx *ctx, idsi_maps *maps);
  * idsi_contract_product(), since no basis of solutions is gone through.
  */
 ids_status idsi_contract_maps(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
-                              const uint32_t *block, size_t width, idsi_maps *maps,
-                              uint32_t *sums);
+                              const uint32_t *block, size_t width, idsi_maps *maps, uint32_t *sums);
 /* Coefficients of the unknowns of `shape`: out (unknowns x width, added to) for a product. */
 ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
                                  const uint32_t *block, size_t width, uint32_t *out);
@@ -221,7 +246,7 @@ ids_status idsi_contract_product(idsi_scratch *scratch, uint32_t shape, uint32_t
 ids_status idsi_contract_values(idsi_scratch *scratch, uint32_t shape, uint32_t expr,
                                 const uint32_t *block, size_t width, uint32_t *out);
 
-/* ---- partition_words.c ------------------------------------------------------------------- */
+/* ---- partition_covectors.c ----------------------------------------------------------------- */
 
 /* A block of covectors (`tableaux` x width), and what words make of it. */
 typedef struct idsi_moved {
@@ -229,7 +254,7 @@ typedef struct idsi_moved {
     uint32_t *block;
 } idsi_moved;
 
-typedef struct idsi_words {
+typedef struct idsi_covectors {
     ids_ctx *ctx;
     const idsi_partition_engine *engine;
     const idsi_skew *skew;
@@ -241,15 +266,16 @@ typedef struct idsi_words {
     size_t made;  /* have memory, */
     size_t count; /* are valid */
     size_t next;  /* to be replaced */
-} idsi_words;
+} idsi_covectors;
 
-ids_status idsi_words_init(idsi_words *words, idsi_scratch *scratch, uint32_t shape,
-                           size_t most_width);
-void idsi_words_clear(idsi_words *words);
+ids_status idsi_covectors_init(idsi_covectors *covectors, idsi_scratch *scratch, uint32_t shape,
+                               size_t most_width);
+void idsi_covectors_clear(idsi_covectors *covectors);
 /* Draws a new block of random covectors, width <= most_width. */
-void idsi_words_draw(idsi_words *words, idsi_random *random, size_t width);
-/* The block with a term's word applied; valid until the next call for the same words. */
-ids_status idsi_words_get(idsi_words *words, const idsi_term *term, const uint32_t **block);
+void idsi_covectors_draw(idsi_covectors *covectors, idsi_random *random, size_t width);
+/* The block with a term's word applied; valid until the next call for the same covectors. */
+ids_status idsi_covectors_get(idsi_covectors *covectors, const idsi_term *term,
+                              const uint32_t **block);
 
 /* ---- partition_solve.c, partition_generators.c ------------------------------------------- */
 
@@ -260,8 +286,7 @@ ids_status idsi_words_get(idsi_words *words, const idsi_term *term, const uint32
  */
 ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
                             const atomic_bool *stop, const double *share, double *shown);
-/* A bound of the probability that random covectors missed an equation of a solved shape. */
-double idsi_shape_error(const idsi_partition_engine *engine, uint32_t shape);
+
 /* Chooses the generators of a degree whose partitions are solved; those of lower degrees exist. */
 ids_status idsi_generators_choose(idsi_scratch *scratch, uint32_t degree);
 

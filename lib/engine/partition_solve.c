@@ -46,22 +46,22 @@ typedef struct solver {
     uint32_t shape;
     idsi_random random;
     idsi_dense_echelon *echelon;
-    idsi_words words;  /* covectors for the equations that are used */
-    idsi_words probes; /* covectors for tests */
-    uint32_t *gathered; /* tableaux x width: covectors of several terms, added up */
-    uint32_t *product; /* unknowns x width: of one term, zeros in between */
-    uint32_t *sum;     /* unknowns x width: of the terms so far */
-    uint32_t *rows;    /* BATCH x unknowns: equations to be eliminated */
-    const atomic_bool *stop; /* set when another thread failed */
-    const double *share;     /* expected; NULL: nothing is known */
-    double *shown;           /* the share that each equation had here; NULL: not wanted */
+    idsi_covectors covectors; /* for the equations that are used */
+    idsi_covectors probes;    /* for tests */
+    uint32_t *gathered;       /* tableaux x width: covectors of several terms, added up */
+    uint32_t *product;        /* unknowns x width: of one term, zeros in between */
+    uint32_t *sum;            /* unknowns x width: of the terms so far */
+    uint32_t *rows;           /* BATCH x unknowns: equations to be eliminated */
+    const atomic_bool *stop;  /* set when another thread failed */
+    const double *share;      /* expected; NULL: nothing is known */
+    double *shown;            /* the share that each equation had here; NULL: not wanted */
 } solver;
 
 static void clear_solver(solver *v)
 {
     idsi_dense_echelon_free(v->echelon);
-    idsi_words_clear(&v->words);
-    idsi_words_clear(&v->probes);
+    idsi_covectors_clear(&v->covectors);
+    idsi_covectors_clear(&v->probes);
     idsi_free(v->s->ctx, v->gathered);
     idsi_free(v->s->ctx, v->product);
     idsi_free(v->s->ctx, v->sum);
@@ -88,11 +88,11 @@ static void turn_sums(const solver *v, size_t width)
  * since values are linear in the covectors. They are to be multiplied by *coefficient. *t goes to
  * the next expression.
  */
-static ids_status gather_terms(solver *v, idsi_words *words, const idsi_equation *equation,
+static ids_status gather_terms(solver *v, idsi_covectors *covectors, const idsi_equation *equation,
                                size_t *t, const uint32_t **block, uint32_t *coefficient)
 {
     ids_status st = IDS_OK;
-    size_t entries = (size_t)words->skew->count * words->width;
+    size_t entries = (size_t)covectors->skew->count * covectors->width;
     uint32_t p = v->engine->prime;
     size_t first = *t;
     size_t end = first;
@@ -104,11 +104,11 @@ static ids_status gather_terms(solver *v, idsi_words *words, const idsi_equation
     *coefficient = 1;
     if (end == first + 1) {
         *coefficient = equation->terms[first].coefficient;
-        return idsi_words_get(words, &equation->terms[first], block);
+        return idsi_covectors_get(covectors, &equation->terms[first], block);
     }
     for (size_t i = first; i < end; i++) {
         const uint32_t *moved = NULL;
-        IDSI_TRY(idsi_words_get(words, &equation->terms[i], &moved));
+        IDSI_TRY(idsi_covectors_get(covectors, &equation->terms[i], &moved));
         if (i == first) {
             memcpy(v->gathered, moved, entries * sizeof *moved);
             idsi_dense_combine(p, v->gathered, equation->terms[i].coefficient, moved, 0, entries);
@@ -129,7 +129,7 @@ static ids_status use_equation(solver *v, const idsi_equation *equation, size_t 
     const idsi_space *space = &engine->spaces[v->shape];
 
     memset(v->sum, 0, width * space->unknowns * sizeof *v->sum);
-    idsi_words_draw(&v->words, &v->random, width);
+    idsi_covectors_draw(&v->covectors, &v->random, width);
     for (size_t t = 0; t < equation->count;) {
         uint32_t expr = equation->terms[t].expr;
         uint32_t coefficient = 0;
@@ -139,7 +139,7 @@ static ids_status use_equation(solver *v, const idsi_equation *equation, size_t 
             t++;
             continue;
         }
-        IDSI_TRY(gather_terms(v, &v->words, equation, &t, &block, &coefficient));
+        IDSI_TRY(gather_terms(v, &v->covectors, equation, &t, &block, &coefficient));
         IDSI_TRY(idsi_contract_product(v->s, v->shape, expr, block, width, v->product));
         size_t from = space->offset[form] * width;
         size_t count = space->offset[form + 1] * width - from;
@@ -246,9 +246,8 @@ done:
 /* Rows that an equation is expected to add, with some to spare; 0 when nothing is known. */
 static size_t expected_rows(const solver *v, size_t equation)
 {
-    double rows = v->share == NULL
-                      ? 0
-                      : v->share[equation] * v->engine->skews.list[v->shape]->count;
+    double rows =
+        v->share == NULL ? 0 : v->share[equation] * v->engine->skews.list[v->shape]->count;
     return (size_t)(rows * (1 + SPARE_SHARE)) + (rows < 1 ? 0 : SPARE_ROWS);
 }
 
@@ -335,21 +334,20 @@ static ids_status check_budget(const idsi_partition_engine *engine, uint32_t sha
     return idsi_fail(engine->ctx, IDS_ERR_LIMIT,
                      "a partition of degree %u with %llu tableaux has %llu unknowns; they need up "
                      "to %llu bytes, %llu of the budget of %llu bytes are left",
-                     (unsigned)engine->skews.list[shape]->shape.cells,
-                     (unsigned long long)tableaux, (unsigned long long)unknowns,
-                     (unsigned long long)need, (unsigned long long)left,
-                     (unsigned long long)memory.budget);
+                     (unsigned)engine->skews.list[shape]->shape.cells, (unsigned long long)tableaux,
+                     (unsigned long long)unknowns, (unsigned long long)need,
+                     (unsigned long long)left, (unsigned long long)memory.budget);
 }
 
-double idsi_shape_error(const idsi_partition_engine *engine, uint32_t shape)
+/*
+ * Every equation is given up once, and every block before that adds a row at least. (How many
+ * blocks it was depends on what was learned from other shapes; a bound should not.)
+ */
+static uint64_t most_blocks(const idsi_partition_engine *engine, uint32_t shape)
 {
-    uint32_t degree = engine->skews.list[shape]->shape.cells;
-    double p = engine->prime;
-    double equations = (double)engine->degree[degree].equation_count;
-    /* Every equation is given up once; every block before that added a row at least. */
-    double blocks = equations > 0 ? equations + engine->spaces[shape].unknowns : 0;
+    uint64_t equations = engine->degree[engine->skews.list[shape]->shape.cells].equation_count;
 
-    return 2.0 * blocks / (p * p);
+    return equations > 0 ? equations + engine->spaces[shape].unknowns : 0;
 }
 
 static ids_status solve_unknowns(solver *v, bool basis)
@@ -361,13 +359,13 @@ static ids_status solve_unknowns(solver *v, bool basis)
     IDSI_TRY(check_budget(v->engine, v->shape));
     idsi_random_seed(&v->random, shape_seed(v->engine, v->shape));
     IDSI_TRY(idsi_dense_echelon_create(ctx, v->engine->prime, space->unknowns, &v->echelon));
-    IDSI_TRY(idsi_words_init(&v->words, v->s, v->shape, BATCH));
-    IDSI_TRY(idsi_words_init(&v->probes, v->s, v->shape, PROBE));
-    idsi_words_draw(&v->probes, &v->random, PROBE);
-    IDSI_TRY(idsi_resize_array(ctx, (size_t)v->words.skew->count * BATCH, sizeof *v->gathered,
+    IDSI_TRY(idsi_covectors_init(&v->covectors, v->s, v->shape, BATCH));
+    IDSI_TRY(idsi_covectors_init(&v->probes, v->s, v->shape, PROBE));
+    idsi_covectors_draw(&v->probes, &v->random, PROBE);
+    IDSI_TRY(idsi_resize_array(ctx, (size_t)v->covectors.skew->count * BATCH, sizeof *v->gathered,
                                &v->gathered));
-    IDSI_TRY(idsi_alloc_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->product,
-                              &v->product));
+    IDSI_TRY(
+        idsi_alloc_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->product, &v->product));
     IDSI_TRY(idsi_resize_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->sum, &v->sum));
     IDSI_TRY(idsi_resize_array(ctx, (size_t)space->unknowns * BATCH, sizeof *v->rows, &v->rows));
     IDSI_TRY(use_equations(v));
@@ -404,6 +402,7 @@ ids_status idsi_shape_solve(idsi_scratch *scratch, uint32_t shape, bool basis,
     IDSI_TRY(idsi_plan_unknowns(engine, shape));
     if (space->unknowns > 0) {
         IDSI_TRY(solve_unknowns(&v, basis));
+        space->blocks = most_blocks(engine, shape);
     }
     space->solved = !atomic_load(stop);
 done:

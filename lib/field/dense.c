@@ -333,8 +333,8 @@ done:
 static ids_status pack_panel(idsi_dense_echelon *e, panel *full)
 {
     ids_status st = IDS_OK;
-    size_t columns = (full->width + e->kernel->columns - 1) / e->kernel->columns *
-                     e->kernel->columns;
+    size_t columns =
+        (full->width + e->kernel->columns - 1) / e->kernel->columns * e->kernel->columns;
     void *room = NULL;
 
     IDSI_TRY(idsi_alloc(e->ctx, (PANEL * columns + 16u) * sizeof *full->packed, &room));

@@ -140,6 +140,8 @@ ids_status idsi_eliminate(const idsi_matrix *matrix, idsi_random *random, idsi_r
 
 /* Deterministic primality of a 64-bit number. */
 bool idsi_border_is_prime(uint64_t n);
+/* Version of FLINT that is at work. */
+const char *idsi_border_version(void);
 /*
  * The fraction num/den = residue mod modulus with 2 * |num| * den < modulus, both below the
  * square root of modulus/2; false when there is none.

@@ -18,6 +18,11 @@ bool idsi_border_is_prime(uint64_t n)
     return n_is_prime((mp_limb_t)n) != 0;
 }
 
+const char *idsi_border_version(void)
+{
+    return flint_version;
+}
+
 bool idsi_border_reconstruct(mpq_ptr fraction, mpz_srcptr residue, mpz_srcptr modulus)
 {
     fmpz_t a;

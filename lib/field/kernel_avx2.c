@@ -99,9 +99,11 @@ AVX2 static void store(uint32_t p, __m256i sum[ROWS][2], uint32_t *c, size_t ldc
 }
 
 /* Entry k of row i of A is a[i * row_step + k * k_step]; both are constants where this is used. */
-AVX2 static inline __attribute__((always_inline)) void
-multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_step,
-         const int32_t *b, uint32_t *c, size_t ldc, size_t m, size_t n)
+AVX2 static inline __attribute__((always_inline)) void multiply(uint32_t p, size_t steps,
+                                                                const int32_t *a, size_t row_step,
+                                                                size_t k_step, const int32_t *b,
+                                                                uint32_t *c, size_t ldc, size_t m,
+                                                                size_t n)
 {
     __m256i sum[ROWS][2];
     __m256i zero = _mm256_setzero_si256();
@@ -163,7 +165,7 @@ AVX2 static void centre(uint32_t p, const uint32_t *values, size_t count, int32_
 }
 
 AVX2 static void pack(uint32_t p, size_t k, size_t n, const uint32_t *b, size_t ldb, size_t width,
-                 int32_t *out)
+                      int32_t *out)
 {
     size_t steps = idsi_kernel_whole_steps(k);
 
@@ -270,7 +272,7 @@ AVX2 static uint32_t dot(uint32_t p, const uint32_t *a, size_t stride, const int
     return (uint32_t)((lanes[0] + lanes[1] + lanes[2] + lanes[3] + rest) % p);
 }
 
-const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS,   COLUMNS, strip,  left_strip,
-                                      NULL,   centre, pack, combine, gather, dot};
+const idsi_kernel idsi_kernel_avx2 = {"avx2", ROWS, COLUMNS, strip,  left_strip, NULL,
+                                      centre, pack, combine, gather, dot};
 
 #endif

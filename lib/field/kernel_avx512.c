@@ -38,8 +38,9 @@ AVX512 static inline __m512i settle(__m512i c, __m512i sum, __m512i prime, __m51
 }
 
 /* Stores the sums of m rows, each of `vectors` registers at sum[i * vectors]. */
-AVX512 static inline __attribute__((always_inline)) void
-store(uint32_t p, const __m512i *sum, size_t vectors, uint32_t *c, size_t ldc, size_t m, size_t n)
+AVX512 static inline __attribute__((always_inline)) void store(uint32_t p, const __m512i *sum,
+                                                               size_t vectors, uint32_t *c,
+                                                               size_t ldc, size_t m, size_t n)
 {
     __m512i prime = _mm512_set1_epi64((int64_t)p);
     __m512i low = _mm512_set1_epi64(UINT32_MAX);
@@ -63,9 +64,11 @@ store(uint32_t p, const __m512i *sum, size_t vectors, uint32_t *c, size_t ldc, s
  * A strip of rows x (8 vectors) columns; all sizes but `steps` are constants where this is used.
  * Entry k of row i of A is a[i * row_step + k * k_step].
  */
-AVX512 static inline __attribute__((always_inline)) void
-multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_step,
-         const int32_t *b, __m512i *sum, size_t rows, size_t vectors)
+AVX512 static inline __attribute__((always_inline)) void multiply(uint32_t p, size_t steps,
+                                                                  const int32_t *a, size_t row_step,
+                                                                  size_t k_step, const int32_t *b,
+                                                                  __m512i *sum, size_t rows,
+                                                                  size_t vectors)
 {
     __m512i back = _mm512_set1_epi64((int64_t)(4 * (uint64_t)p * p));
     __m512i twice = _mm512_add_epi64(back, back);
@@ -87,8 +90,8 @@ multiply(uint32_t p, size_t steps, const int32_t *a, size_t row_step, size_t k_s
                 __m512i x = _mm512_set1_epi32(a[i * row_step]);
 #pragma GCC unroll 4
                 for (size_t v = 0; v < vectors; v++) {
-                    sum[i * vectors + v] = _mm512_add_epi64(sum[i * vectors + v],
-                                                            _mm512_mul_epi32(x, column[v]));
+                    sum[i * vectors + v] =
+                        _mm512_add_epi64(sum[i * vectors + v], _mm512_mul_epi32(x, column[v]));
                 }
             }
             a += k_step;
@@ -248,12 +251,12 @@ AVX512 static uint32_t dot(uint32_t p, const uint32_t *a, size_t stride, const i
             sum[i] = _mm512_mask_add_epi64(less, negative, sum[i], back);
         }
     }
-    __m512i both = _mm512_add_epi64(residues_of(sum[0], prime, inverse),
-                                    residues_of(sum[1], prime, inverse));
+    __m512i both =
+        _mm512_add_epi64(residues_of(sum[0], prime, inverse), residues_of(sum[1], prime, inverse));
     return (uint32_t)((uint64_t)_mm512_reduce_add_epi64(both) % p);
 }
 
-const idsi_kernel idsi_kernel_avx512 = {"avx512",     ROWS,   COLUMNS, strip,  left_strip,
-                                        narrow_strip, centre, pack,    combine, gather, dot};
+const idsi_kernel idsi_kernel_avx512 = {"avx512", ROWS, COLUMNS, strip,  left_strip, narrow_strip,
+                                        centre,   pack, combine, gather, dot};
 
 #endif

@@ -124,5 +124,5 @@ static uint32_t dot(uint32_t p, const uint32_t *a, size_t stride, const int32_t 
     return (uint32_t)(sum < 0 ? sum + (int64_t)p : sum);
 }
 
-const idsi_kernel idsi_kernel_portable = {"portable", ROWS,   COLUMNS, strip,  left_strip,
-                                          NULL,       centre, pack, combine, gather, dot};
+const idsi_kernel idsi_kernel_portable = {"portable", ROWS, COLUMNS, strip,  left_strip, NULL,
+                                          centre,     pack, combine, gather, dot};

@@ -82,8 +82,8 @@ static void multiply_block(const idsi_kernel *kernel, bool narrow, uint32_t p,
         for (size_t i = 0; i < left->m; i += rows) {
             const int32_t *a = group_of(left, i / GROUP) + from * GROUP + i % GROUP;
             size_t high = left->m - i < rows ? left->m - i : rows;
-            (narrow ? kernel->narrow_strip : kernel->left_strip)(
-                p, steps, a, packed + j * steps, c + i * ldc + j, ldc, high, wide);
+            (narrow ? kernel->narrow_strip : kernel->left_strip)(p, steps, a, packed + j * steps,
+                                                                 c + i * ldc + j, ldc, high, wide);
         }
     }
 }

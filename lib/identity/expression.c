@@ -58,8 +58,7 @@ done:
     return st;
 }
 
-/* An operation is used: it must be declared above. */
-static ids_status check_declared(idsi_reader *reader, size_t op, size_t use)
+ids_status idsi_reader_check_declared(idsi_reader *reader, size_t op, size_t use)
 {
     const size_t declared = reader->operations[op].lexeme;
     if (declared < use || reader->operations_follow) {
@@ -117,7 +116,7 @@ static ids_status read_fence(idsi_reader *reader, idsi_value *value)
         st = fail_fence(reader, open, args.count);
         goto done;
     }
-    IDSI_TRY(check_declared(reader, op, open));
+    IDSI_TRY(idsi_reader_check_declared(reader, op, open));
     st = idsi_value_product(value, (uint32_t)op, args.value);
     st = idsi_reader_place(reader, st, open);
 done:
@@ -193,7 +192,7 @@ static ids_status read_application(idsi_reader *reader, idsi_value *value)
         st = fail_argument_count(reader, name, reader->operations[any].operation.arity, args.count);
         goto done;
     }
-    IDSI_TRY(check_declared(reader, op, name));
+    IDSI_TRY(idsi_reader_check_declared(reader, op, name));
     st = idsi_value_product(value, (uint32_t)op, args.value);
     st = idsi_reader_place(reader, st, name);
 done:
@@ -394,7 +393,7 @@ static ids_status read_product(idsi_reader *reader, idsi_value *value)
         *value = factors[0];
         idsi_value_init(&factors[0], reader->ctx, reader->presentation->sig);
     } else {
-        IDSI_TRY(check_declared(reader, op, symbol));
+        IDSI_TRY(idsi_reader_check_declared(reader, op, symbol));
         reader->at++;
         IDSI_TRY(read_second_factor(reader, &factors[1]));
         st = idsi_value_product(value, (uint32_t)op, factors);

@@ -48,6 +48,9 @@ ids_status idsi_poly_normalize(idsi_poly *poly);
 /* Multiplies by a rational so that coefficients are integers with content 1, the first positive.
  * IDS_ERR_LIMIT, the polynomial unchanged, when the common denominator is enormous. */
 ids_status idsi_poly_primitive(idsi_poly *poly);
+/* out, without terms, becomes body with label i replaced by arguments[i-1], expanded. */
+ids_status idsi_poly_substitute(idsi_poly *out, const idsi_poly *body, uint32_t count,
+                                const idsi_poly *arguments);
 bool idsi_poly_equal(const idsi_poly *a, const idsi_poly *b);
 /* names as in idsi_tree_print(). Writes "0" for no terms. */
 ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi_text *text);
@@ -74,9 +77,44 @@ typedef struct idsi_identity {
     idsi_token trivial[2u * IDSI_MAX_IDENTITY_DEGREE]; /* a tree that was written, if trivial */
 } idsi_identity;
 
+/* Marks a letter of a word that the involution is applied to. */
+#define IDSI_STARRED 0x80u
+
+/* A word in the arguments of an operation: letter[i] is the number of one, from 0, or starred. */
+typedef struct idsi_word {
+    mpq_t coefficient;
+    uint8_t letter[IDS_MAX_ARITY]; /* as many as the operation has arguments */
+} idsi_word;
+
+/* How a model realises one operation. */
+typedef struct idsi_realization {
+    uint32_t op;
+    uint32_t arity;
+    uint32_t line; /* of the text on the right, and its column */
+    uint32_t column;
+    char *letters[IDS_MAX_ARITY]; /* names of the arguments */
+    size_t count;                 /* associative: words, sorted, none twice, no coefficient 0 */
+    size_t capacity;
+    idsi_word *words;
+    char *text; /* over: the polynomial as written, blanks and comments aside; else NULL */
+} idsi_realization;
+
+typedef struct idsi_model {
+    char *name;
+    ids_model_kind kind;
+    char *file; /* as written; NULL for associative */
+    uint32_t line;
+    size_t lexeme; /* of its name, while the text is read */
+    size_t count;  /* algebra: none */
+    size_t capacity;
+    idsi_realization *list;
+} idsi_model;
+
 struct ids_presentation {
     ids_ctx *ctx;
     ids_signature *sig;
+    size_t model_count;
+    idsi_model *models;
     size_t count; /* identities and candidates in the order of the text */
     idsi_identity *list;
 };
@@ -88,6 +126,15 @@ struct ids_presentation {
 ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
                                   const char *source, bool operations_follow,
                                   ids_presentation **presentation);
+/* The same operations, written in the same way, with the same symmetries, in the same order. */
+bool idsi_signature_equal(const ids_signature *a, const ids_signature *b);
+void idsi_model_clear(ids_ctx *ctx, idsi_model *model);
+bool idsi_model_equal(const idsi_model *a, const idsi_model *b);
+/* The realisation of an operation, NULL when there is none. */
+const idsi_realization *idsi_model_realization(const idsi_model *model, uint32_t op);
+ids_status idsi_model_print(const ids_signature *sig, const idsi_model *model, idsi_text *text);
+/* The absolute value of a coefficient and "*"; nothing for 1. */
+ids_status idsi_coefficient_print(idsi_text *text, mpq_srcptr value);
 /* The index-th identity of a role, NULL when out of range. */
 const idsi_identity *idsi_presentation_get(const ids_presentation *pres, ids_role role,
                                            size_t index);

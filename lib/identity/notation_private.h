@@ -1,7 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
  * The reader of presentation files, from characters to identities. Only the files of this
- * folder include it.
+ * folder include it, and lib/model, whose algebra files have the same lexemes and operations.
  */
 #ifndef IDSI_NOTATION_PRIVATE_H
 #define IDSI_NOTATION_PRIVATE_H
@@ -102,6 +102,16 @@ typedef struct idsi_declared {
     size_t lexeme; /* index of its first lexeme after the word `operation` */
 } idsi_declared;
 
+/* An operation with names for its arguments; the numbers are those of lexemes. */
+typedef struct idsi_pattern {
+    ids_notation notation;
+    size_t first;
+    size_t open;
+    size_t close;
+    uint32_t count;
+    size_t argument[IDS_MAX_ARITY];
+} idsi_pattern;
+
 typedef struct idsi_definition {
     size_t lexeme; /* index of its name */
     uint32_t arity;
@@ -134,7 +144,13 @@ typedef struct idsi_reader {
 
     ids_presentation *presentation; /* being built */
     size_t identity_capacity;
+    size_t model_capacity;
 } idsi_reader;
+
+/* (presentation.c) Frees everything that the reader has, the presentation included. */
+void idsi_reader_clear(idsi_reader *reader);
+/* The signature of the operations that were read; fails when there are none. */
+ids_status idsi_reader_signature(idsi_reader *reader, ids_signature **sig);
 
 /* (lexer.c) Splits the text into lexemes; a line ends in an END. */
 ids_status idsi_reader_lex(idsi_reader *reader);
@@ -180,7 +196,9 @@ ids_status idsi_reader_end(idsi_reader *reader, const char *expected);
 /* (group.c) Joins lines to statements, checks that fences match, reads the operations. */
 ids_status idsi_reader_group(idsi_reader *reader);
 
-/* (operation.c) Reads what follows the word `operation`. */
+/* (operation.c) Reads an operation with different names as arguments. */
+ids_status idsi_reader_pattern(idsi_reader *reader, idsi_pattern *pattern);
+/* Reads what follows the word `operation`. */
 ids_status idsi_reader_declare(idsi_reader *reader);
 void idsi_declared_clear(ids_ctx *ctx, idsi_declared *declared);
 
@@ -189,6 +207,13 @@ ids_status idsi_reader_coefficient(idsi_reader *reader, mpq_ptr coefficient, boo
 
 /* (expression.c) Reads a sum; `value` must be new. */
 ids_status idsi_reader_sum(idsi_reader *reader, idsi_value *value);
+/* An operation is used: fails unless it is declared above. */
+ids_status idsi_reader_check_declared(idsi_reader *reader, size_t op, size_t use);
+
+/* (model.c) Reads what follows the word `model`. */
+ids_status idsi_reader_model(idsi_reader *reader);
+/* Fails when a model leaves an operation out. */
+ids_status idsi_reader_check_models(idsi_reader *reader);
 
 /* (identity.c) Fills in everything but role, name and line; takes the polynomial of `value`. */
 ids_status idsi_identity_finish(idsi_reader *reader, idsi_identity *identity, idsi_value *value);

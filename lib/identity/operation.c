@@ -12,15 +12,6 @@
  */
 #include "notation_private.h"
 
-typedef struct pattern {
-    ids_notation notation;
-    size_t first; /* lexemes */
-    size_t open;
-    size_t close;
-    uint32_t count;
-    size_t argument[IDS_MAX_ARITY];
-} pattern;
-
 void idsi_declared_clear(ids_ctx *ctx, idsi_declared *declared)
 {
     idsi_free(ctx, declared->open);
@@ -36,7 +27,7 @@ static ids_status expected(idsi_reader *reader, const char *what)
 }
 
 /* Reads the name of an argument, which must be new in this pattern. */
-static ids_status read_argument(idsi_reader *reader, pattern *p)
+static ids_status read_argument(idsi_reader *reader, idsi_pattern *p)
 {
     if (reader->lexemes[reader->at].kind != IDSI_LEX_NAME) {
         return expected(reader, "the name of an argument");
@@ -63,7 +54,7 @@ static ids_status read_argument(idsi_reader *reader, pattern *p)
 }
 
 /* Reads the arguments from the opening to the closing fence. */
-static ids_status read_fence(idsi_reader *reader, pattern *p)
+static ids_status read_fence(idsi_reader *reader, idsi_pattern *p)
 {
     const size_t open = reader->at;
     ids_status st = IDS_OK;
@@ -86,7 +77,7 @@ done:
     return st;
 }
 
-static ids_status read_infix(idsi_reader *reader, pattern *p)
+static ids_status read_infix(idsi_reader *reader, idsi_pattern *p)
 {
     ids_status st = IDS_OK;
     IDSI_TRY(read_argument(reader, p));
@@ -124,11 +115,11 @@ done:
     return st;
 }
 
-static ids_status read_pattern(idsi_reader *reader, pattern *p)
+ids_status idsi_reader_pattern(idsi_reader *reader, idsi_pattern *p)
 {
     ids_status st = IDS_OK;
     const idsi_lexeme *at = &reader->lexemes[reader->at];
-    *p = (pattern){.first = reader->at, .open = reader->at};
+    *p = (idsi_pattern){.first = reader->at, .open = reader->at};
     if (at->kind == IDSI_LEX_OPEN) {
         p->notation = IDS_NOTATION_FENCE;
         IDSI_TRY(read_fence(reader, p));
@@ -159,15 +150,15 @@ done:
 }
 
 /* Turns a pattern into a generator: position i of it holds argument image[i] of the first. */
-static ids_status read_order(idsi_reader *reader, const pattern *base, ids_signed_order *order)
+static ids_status read_order(idsi_reader *reader, const idsi_pattern *base, ids_signed_order *order)
 {
-    pattern p = {0};
+    idsi_pattern p = {0};
     const idsi_lexeme_kind kind = reader->lexemes[reader->at].kind;
     *order = (ids_signed_order){.sign = kind == IDSI_LEX_MINUS ? -1 : 1};
     if (kind == IDSI_LEX_MINUS || kind == IDSI_LEX_PLUS) {
         reader->at++;
     }
-    ids_status st = read_pattern(reader, &p);
+    ids_status st = idsi_reader_pattern(reader, &p);
     if (st != IDS_OK) {
         return st;
     }
@@ -194,7 +185,8 @@ static ids_status read_order(idsi_reader *reader, const pattern *base, ids_signe
     return IDS_OK;
 }
 
-static ids_status read_equations(idsi_reader *reader, const pattern *base, idsi_declared *declared)
+static ids_status read_equations(idsi_reader *reader, const idsi_pattern *base,
+                                 idsi_declared *declared)
 {
     ids_operation *op = &declared->operation;
     ids_status st = IDS_OK;
@@ -212,7 +204,8 @@ done:
     return st;
 }
 
-static ids_status read_symmetry(idsi_reader *reader, const pattern *base, idsi_declared *declared)
+static ids_status read_symmetry(idsi_reader *reader, const idsi_pattern *base,
+                                idsi_declared *declared)
 {
     static const char *const words[3] = {"none", "commutative", "alternating"};
     static const ids_symmetry kinds[3] = {IDS_SYMMETRY_NONE, IDS_SYMMETRY_COMMUTATIVE,
@@ -244,7 +237,7 @@ static ids_status read_symmetry(idsi_reader *reader, const pattern *base, idsi_d
     return idsi_reader_end(reader, "commutative, alternating, none, '=' or the end of the line");
 }
 
-static ids_status check_new(idsi_reader *reader, const pattern *base)
+static ids_status check_new(idsi_reader *reader, const idsi_pattern *base)
 {
     const size_t known = idsi_reader_operation(reader, base->notation, base->open, base->count);
     if (known != SIZE_MAX) {
@@ -265,9 +258,9 @@ ids_status idsi_reader_declare(idsi_reader *reader)
 {
     idsi_declared declared = {0};
     ids_signature *trial = NULL;
-    pattern base = {0};
+    idsi_pattern base = {0};
     ids_status st = IDS_OK;
-    IDSI_TRY(read_pattern(reader, &base));
+    IDSI_TRY(idsi_reader_pattern(reader, &base));
     IDSI_TRY(check_new(reader, &base));
     declared.lexeme = base.first;
     IDSI_TRY(idsi_lexeme_copy(reader, base.open, &declared.open));

@@ -30,6 +30,10 @@ void ids_presentation_free(ids_presentation *presentation)
     for (size_t i = 0; i < presentation->count; i++) {
         identity_clear(ctx, &presentation->list[i]);
     }
+    for (size_t i = 0; i < presentation->model_count; i++) {
+        idsi_model_clear(ctx, &presentation->models[i]);
+    }
+    idsi_free(ctx, presentation->models);
     idsi_free(ctx, presentation->list);
     ids_signature_free(presentation->sig);
     idsi_free(ctx, presentation);
@@ -37,7 +41,7 @@ void ids_presentation_free(ids_presentation *presentation)
 
 /* ---- reading --------------------------------------------------------------------------------- */
 
-static void reader_clear(idsi_reader *reader)
+void idsi_reader_clear(idsi_reader *reader)
 {
     for (size_t i = 0; i < reader->operation_count; i++) {
         idsi_declared_clear(reader->ctx, &reader->operations[i]);
@@ -51,7 +55,7 @@ static void reader_clear(idsi_reader *reader)
     ids_presentation_free(reader->presentation);
 }
 
-static ids_status make_signature(idsi_reader *reader)
+ids_status idsi_reader_signature(idsi_reader *reader, ids_signature **sig)
 {
     ids_operation *list = NULL;
     ids_status st = IDS_OK;
@@ -69,8 +73,7 @@ static ids_status make_signature(idsi_reader *reader)
     for (size_t i = 0; i < reader->operation_count; i++) {
         list[i] = reader->operations[i].operation;
     }
-    IDSI_TRY(ids_signature_create(reader->ctx, list, reader->operation_count,
-                                  &reader->presentation->sig));
+    IDSI_TRY(ids_signature_create(reader->ctx, list, reader->operation_count, sig));
 done:
     idsi_free(reader->ctx, list);
     return st;
@@ -103,12 +106,12 @@ ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
     reader.presentation->ctx = ctx;
     IDSI_TRY(idsi_reader_lex(&reader));
     IDSI_TRY(idsi_reader_group(&reader));
-    IDSI_TRY(make_signature(&reader));
+    IDSI_TRY(idsi_reader_signature(&reader, &reader.presentation->sig));
     IDSI_TRY(idsi_reader_statements(&reader));
     *presentation = reader.presentation;
     reader.presentation = NULL;
 done:
-    reader_clear(&reader);
+    idsi_reader_clear(&reader);
     return st;
 }
 
@@ -159,6 +162,25 @@ ids_status ids_presentation_info(const ids_presentation *presentation, ids_role 
     return IDS_OK;
 }
 
+size_t ids_presentation_model_count(const ids_presentation *presentation)
+{
+    return presentation == NULL ? 0 : presentation->model_count;
+}
+
+ids_status ids_presentation_model(const ids_presentation *presentation, size_t index,
+                                  ids_model_info *info)
+{
+    if (presentation == NULL || info == NULL || index >= presentation->model_count) {
+        return IDS_ERR_ARG;
+    }
+    const idsi_model *model = &presentation->models[index];
+    *info = (ids_model_info){.name = model->name,
+                             .kind = model->kind,
+                             .file = model->file == NULL ? "" : model->file,
+                             .line = model->line};
+    return IDS_OK;
+}
+
 /* ---- equality -------------------------------------------------------------------------------- */
 
 static bool has_element(const idsi_group *group, const ids_signed_order *order)
@@ -193,21 +215,35 @@ static bool same_identity(const idsi_identity *a, const idsi_identity *b)
            idsi_poly_equal(&a->written, &b->written);
 }
 
+bool idsi_signature_equal(const ids_signature *a, const ids_signature *b)
+{
+    if (a->count != b->count) {
+        return false;
+    }
+    for (size_t i = 0; i < a->count; i++) {
+        if (!same_operation(&a->ops[i], &b->ops[i])) {
+            return false;
+        }
+    }
+    return true;
+}
+
 bool ids_presentation_equal(const ids_presentation *a, const ids_presentation *b)
 {
     if (a == NULL || b == NULL) {
         return a == b;
     }
-    if (a->sig->count != b->sig->count || a->count != b->count) {
+    if (a->count != b->count || a->model_count != b->model_count ||
+        !idsi_signature_equal(a->sig, b->sig)) {
         return false;
-    }
-    for (size_t i = 0; i < a->sig->count; i++) {
-        if (!same_operation(&a->sig->ops[i], &b->sig->ops[i])) {
-            return false;
-        }
     }
     for (size_t i = 0; i < a->count; i++) {
         if (!same_identity(&a->list[i], &b->list[i])) {
+            return false;
+        }
+    }
+    for (size_t i = 0; i < a->model_count; i++) {
+        if (!idsi_model_equal(&a->models[i], &b->models[i])) {
             return false;
         }
     }

@@ -21,8 +21,7 @@ done:
     return st;
 }
 
-/* The absolute value of a coefficient and "*"; nothing for 1. */
-static ids_status print_coefficient(idsi_text *text, mpq_srcptr value)
+ids_status idsi_coefficient_print(idsi_text *text, mpq_srcptr value)
 {
     ids_status st = IDS_OK;
     mpz_srcptr numerator = mpq_numref(value);
@@ -53,7 +52,7 @@ ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi
         } else if (negative) {
             IDSI_TRY(idsi_text_puts(text, "-"));
         }
-        IDSI_TRY(print_coefficient(text, poly->coefficients[i]));
+        IDSI_TRY(idsi_coefficient_print(text, poly->coefficients[i]));
         IDSI_TRY(idsi_tree_print(poly->sig, poly->tokens + poly->start[i], names, text));
     }
 done:
@@ -149,6 +148,9 @@ ids_status ids_presentation_print(ids_ctx *ctx, const ids_presentation *presenta
     }
     for (size_t i = 0; i < presentation->count; i++) {
         IDSI_TRY(print_identity(presentation, &presentation->list[i], &out));
+    }
+    for (size_t i = 0; i < presentation->model_count; i++) {
+        IDSI_TRY(idsi_model_print(presentation->sig, &presentation->models[i], &out));
     }
     IDSI_TRY(idsi_text_take(&out, text));
 done:

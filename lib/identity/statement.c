@@ -294,16 +294,17 @@ static ids_status fail_word(idsi_reader *reader, size_t word)
 {
     const idsi_shown found = idsi_reader_show(reader, word);
     if (reader->lexemes[word].kind != IDSI_LEX_NAME) {
-        return idsi_reader_fail(reader, IDS_ERR_PARSE, word,
-                                "expected a statement word (operation, define, identity, "
-                                "candidate), found %s; to go on with the statement above, end "
-                                "its line in an operator",
-                                found.text);
+        return idsi_reader_fail(
+            reader, IDS_ERR_PARSE, word,
+            "expected a statement word (operation, define, identity, "
+            "candidate, model), found %s; to go on with the statement above, end "
+            "its line in an operator",
+            found.text);
     }
-    const char *near = idsi_reader_nearest(reader, word, idsi_statement_words, 4);
+    const char *near = idsi_reader_nearest(reader, word, idsi_statement_words, 5);
     return idsi_reader_fail(reader, IDS_ERR_PARSE, word,
-                            "unknown statement %s; expected operation, define, identity or "
-                            "candidate%s%s%s",
+                            "unknown statement %s; expected operation, define, identity, "
+                            "candidate or model%s%s%s",
                             found.text, near == NULL ? "" : " (did you mean '",
                             near == NULL ? "" : near, near == NULL ? "" : "'?)");
 }
@@ -329,9 +330,7 @@ static ids_status read_statement(idsi_reader *reader)
         return read_identity(reader, IDS_ROLE_CANDIDATE);
     }
     if (idsi_lexeme_is(reader, word, "model")) {
-        return idsi_reader_fail(reader, IDS_ERR_UNABLE, word,
-                                "this version does not read models; expected operation, define, "
-                                "identity or candidate");
+        return idsi_reader_model(reader);
     }
     return fail_word(reader, word);
 }
@@ -344,6 +343,7 @@ ids_status idsi_reader_statements(idsi_reader *reader)
         IDSI_TRY(read_statement(reader));
         IDSI_TRY(idsi_poll(reader->ctx, NULL));
     }
+    IDSI_TRY(idsi_reader_check_models(reader));
 done:
     return st;
 }

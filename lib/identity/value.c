@@ -255,3 +255,25 @@ ids_status idsi_value_substitute(idsi_value *value, const idsi_value *body,
 done:
     return st;
 }
+
+ids_status idsi_poly_substitute(idsi_poly *out, const idsi_poly *body, uint32_t count,
+                                const idsi_poly *arguments)
+{
+    ids_status st = IDS_OK;
+    void *room = NULL;
+    /* Shallow copies, which are not cleared. */
+    IDSI_TRY(idsi_alloc_zero(out->ctx, count * sizeof(idsi_value), &room));
+    idsi_value *values = room;
+    for (uint32_t i = 0; i < count; i++) {
+        values[i].poly = arguments[i];
+    }
+    for (size_t i = 0; i < body->count; i++) {
+        const size_t begin = body->start[i];
+        IDSI_TRY(expand_term(out, body->coefficients[i], body->tokens + begin,
+                             body->start[i + 1] - begin, values));
+    }
+    IDSI_TRY(idsi_poly_normalize(out));
+done:
+    idsi_free(out->ctx, room);
+    return st;
+}

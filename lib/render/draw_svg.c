@@ -67,36 +67,6 @@ static const char style[] =
     "}\n"
     "</style>\n";
 
-/* Appends text as character data: markup escaped, what XML forbids replaced. */
-static ids_status put_words(idsi_text *out, const char *text, size_t bytes)
-{
-    ids_status st = IDS_OK;
-    const char *end = text + bytes;
-
-    while (text < end) {
-        uint32_t character = idsi_utf8_next(&text);
-        const char *entity = character == '<'    ? "&lt;"
-                             : character == '>'  ? "&gt;"
-                             : character == '&'  ? "&amp;"
-                             : character == '"'  ? "&quot;"
-                             : character == '\'' ? "&#39;"
-                                                 : NULL;
-        if (entity != NULL) {
-            IDSI_TRY(idsi_text_puts(out, entity));
-        } else {
-            bool forbidden = character < 0x20 || character == 0xFFFE || character == 0xFFFF;
-            IDSI_TRY(idsi_utf8_append(out, forbidden ? IDSI_BAD_CHARACTER : character));
-        }
-    }
-done:
-    return st;
-}
-
-static ids_status put_string(idsi_text *out, const char *text)
-{
-    return put_words(out, text, strlen(text));
-}
-
 static int32_t text_width(const char *text, int32_t tenths)
 {
     return ((int32_t)idsi_utf8_width(text) * tenths + 9) / 10;
@@ -335,7 +305,7 @@ static ids_status put_captions(idsi_sheet *sheet, int32_t left, int32_t top, int
         size_t bytes = idsi_line_break(text, LONGEST_LINE);
         IDSI_TRY(idsi_text_printf(out, "<text class=\"ink code middle\" x=\"%d\" y=\"%d\">", (int)x,
                                   (int)y));
-        IDSI_TRY(put_words(out, text, bytes));
+        IDSI_TRY(idsi_xml_words(out, text, bytes, ""));
         IDSI_TRY(idsi_text_puts(out, "</text>\n"));
         text += bytes;
     }
@@ -343,7 +313,7 @@ static ids_status put_captions(idsi_sheet *sheet, int32_t left, int32_t top, int
         IDSI_TRY(idsi_sheet_group_line(sheet, &line));
         IDSI_TRY(idsi_text_printf(out, "<text class=\"quiet middle\" x=\"%d\" y=\"%d\">", (int)x,
                                   (int)y));
-        IDSI_TRY(put_string(out, line.data));
+        IDSI_TRY(idsi_xml_string(out, line.data));
         IDSI_TRY(idsi_text_printf(out,
                                   "</text>\n<text class=\"quiet middle\" x=\"%d\" y=\"%d\">%s "
                                   "%s</text>\n",
@@ -379,7 +349,7 @@ static ids_status legend(svg *s, bool drawn)
             IDSI_TRY(put_mark(&sheet->out, op, x + 6, y - 4));
             IDSI_TRY(idsi_text_printf(&sheet->out, "<text class=\"ink code\" x=\"%d\" y=\"%d\">",
                                       (int)x + 18, (int)y));
-            IDSI_TRY(put_string(&sheet->out, text));
+            IDSI_TRY(idsi_xml_string(&sheet->out, text));
             IDSI_TRY(idsi_text_puts(&sheet->out, "</text>\n"));
         }
         x += width + CELL_GAP;

@@ -3,8 +3,11 @@
  * LaTeX: a tabular with the rules of the booktabs package, to be taken in with \input.
  *
  * Knows which characters TeX reads as commands. Formulas are formula.c's business. Characters
- * outside ASCII are kept in words, where LaTeX reads UTF-8. Notes become comments.
+ * outside ASCII are kept in words, where LaTeX reads UTF-8. Notes become comments. Rows whose first
+ * number is the same (a degree) form a group; some space sets off what follows a group.
  */
+#include <string.h>
+
 #include "render_private.h"
 
 static const char *escape(uint32_t character)
@@ -120,10 +123,33 @@ done:
     return st;
 }
 
+/* Keeps the first cell of the group in `held` and the number of its rows so far. */
+static ids_status follow_groups(ids_writer *writer, const char *first, idsi_text *line)
+{
+    ids_status st = IDS_OK;
+
+    if (writer->columns[0].kind != IDS_COLUMN_NUMBER) {
+        return IDS_OK;
+    }
+    if (writer->held_rows > 0 && strcmp(writer->held.data, first) == 0) {
+        writer->held_rows++;
+        return IDS_OK;
+    }
+    if (writer->held_rows > 1) {
+        IDSI_TRY(idsi_text_puts(line, "\\addlinespace\n"));
+    }
+    writer->held.length = 0;
+    IDSI_TRY(idsi_text_append(&writer->held, first, strlen(first) + 1));
+    writer->held_rows = 1;
+done:
+    return st;
+}
+
 static ids_status latex_row(ids_writer *writer, const char *const *cells, idsi_text *line)
 {
     ids_status st = IDS_OK;
 
+    IDSI_TRY(follow_groups(writer, cells[0], line));
     for (size_t i = 0; i < writer->count; i++) {
         IDSI_TRY(idsi_text_puts(line, i > 0 ? " & " : ""));
         IDSI_TRY(append_cell(&writer->columns[i], cells[i], line));

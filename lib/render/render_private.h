@@ -24,6 +24,12 @@ ids_status idsi_utf8_append(idsi_text *text, uint32_t character);
 /* Columns that a terminal uses for a text: 2 for wide characters, 0 for combining ones. */
 size_t idsi_utf8_width(const char *text);
 
+/* ---- XML ----------------------------------------------------------------------------- */
+
+/* Appends text as character data; control characters are replaced but those of `kept`. */
+ids_status idsi_xml_words(idsi_text *out, const char *text, size_t bytes, const char *kept);
+ids_status idsi_xml_string(idsi_text *out, const char *text);
+
 /* ---- the table ----------------------------------------------------------------------- */
 
 typedef struct idsi_column {
@@ -58,7 +64,8 @@ struct ids_writer {
     uint64_t rows;   /* rows taken so far */
     idsi_text notes; /* name NUL value NUL, note after note */
     idsi_text line;  /* what goes to the sink next */
-    idsi_text held;  /* text format: cells of the rows held back, each with its NUL */
+    idsi_text held;  /* text format: cells of the rows held back, each with its NUL; LaTeX: the
+                        first cell of a group of rows */
     size_t held_rows;
     bool flowing; /* text format: the heading is out, rows go straight through */
     bool ended;

@@ -6,7 +6,7 @@
 #ifndef IDSI_TREE_PRIVATE_H
 #define IDSI_TREE_PRIVATE_H
 
-#include <idspan/tree.h>
+#include <idspan/basis.h>
 
 #include "../core/core_private.h"
 

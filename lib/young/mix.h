@@ -37,12 +37,12 @@ typedef void (*idsi_exchange_fn)(const idsi_exchange *exchange, uint32_t *block,
                                  size_t width);
 
 void idsi_exchange_portable(const idsi_exchange *exchange, uint32_t *block, size_t stride,
-                             size_t width);
+                            size_t width);
 #if defined(__x86_64__)
 void idsi_exchange_avx2(const idsi_exchange *exchange, uint32_t *block, size_t stride,
-                         size_t width);
+                        size_t width);
 void idsi_exchange_avx512(const idsi_exchange *exchange, uint32_t *block, size_t stride,
-                           size_t width);
+                          size_t width);
 #endif
 
 /* a u mod p, plus 0 or p (Shoup's multiplication by a constant), for any u: below 2p. */
@@ -60,7 +60,7 @@ static inline uint32_t idsi_mix_less(uint32_t u, uint32_t bound)
 static inline void idsi_mix_one(const idsi_mix *mix, uint32_t *x, uint32_t *y)
 {
     uint32_t p = mix->p;
-    uint32_t s = idsi_mix_times(mix, *x) + *y;         /* < 3p < 2^32 */
+    uint32_t s = idsi_mix_times(mix, *x) + *y;        /* < 3p < 2^32 */
     uint32_t t = *x + 2 * p - idsi_mix_times(mix, s); /* < 3p */
 
     *x = idsi_mix_less(idsi_mix_less(s, 2 * p), p);

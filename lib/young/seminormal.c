@@ -67,3 +67,27 @@ void idsi_seminormal_apply(const idsi_seminormal *seminormal, const idsi_skew *s
         }
     }
 }
+
+/* Sorting by exchanges of neighbours gives the word last to first. */
+size_t idsi_seminormal_word(uint8_t *label, uint32_t n, uint8_t *word)
+{
+    size_t length = 0;
+    for (bool sorted = false; !sorted;) {
+        sorted = true;
+        for (uint32_t j = 0; j + 1 < n; j++) {
+            if (label[j] > label[j + 1]) {
+                uint8_t other = label[j];
+                label[j] = label[j + 1];
+                label[j + 1] = other;
+                word[length++] = (uint8_t)j;
+                sorted = false;
+            }
+        }
+    }
+    for (size_t i = 0; i < length / 2; i++) {
+        uint8_t other = word[i];
+        word[i] = word[length - 1 - i];
+        word[length - 1 - i] = other;
+    }
+    return length;
+}

@@ -81,5 +81,10 @@ void idsi_seminormal_init(idsi_seminormal *seminormal, uint32_t p, const uint32_
  */
 void idsi_seminormal_apply(const idsi_seminormal *seminormal, const idsi_skew *skew,
                            const uint8_t *word, size_t length, uint32_t *block, size_t width);
+/*
+ * Exchanges, to be applied to covectors in turn, for the permutation place j -> label[j]; label is
+ * sorted by that. `word` has room for n * n; returns how many there are.
+ */
+size_t idsi_seminormal_word(uint8_t *label, uint32_t n, uint8_t *word);
 
 #endif

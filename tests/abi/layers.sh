@@ -14,15 +14,19 @@ cd "$1"
 rooms=(core tree identity young field engine model answer run render)
 
 # Place of a room in the list; a public header carries the name of its room. The generated
-# headers stand before all rooms; gmp.h speaks of the numbers of types and monomials, draw.h belongs
-# to render, follows.h to answer.
+# headers stand before all rooms; basis.h and gmp.h belong to tree, algebra.h to model, draw.h and
+# report.h to render, follows.h and fresh.h to answer.
 declare -A place=([export]=0 [version]=0)
 for number in "${!rooms[@]}"; do
     place[${rooms[number]}]=$number
 done
 place[gmp]=${place[tree]}
+place[algebra]=${place[model]}
 place[draw]=${place[render]}
+place[report]=${place[render]}
 place[follows]=${place[answer]}
+place[basis]=${place[tree]}
+place[fresh]=${place[answer]}
 
 # Lines "file <header>" or "file "header"" of the files given.
 includes_of() {

@@ -2,8 +2,8 @@
 # SPDX-License-Identifier: BSD-2-Clause
 #
 # What README.md shows is what the tool says: every command "    $ idspan ..." (or one that ends in
-# "| idspan ...") is run in data/crosses, and its output and messages must be the indented lines
-# that follow. A line "..." stands for any lines.
+# "| idspan ...") is run in a copy of data/crosses, and its output and messages must be the indented
+# lines that follow. A line "..." stands for any lines.
 here=$(cd "$(dirname "${BASH_SOURCE[0]}")" && pwd)
 # shellcheck source-path=SCRIPTDIR source=common.sh
 . "$here/common.sh"
@@ -47,6 +47,7 @@ matches() {
     ' "$1" "$2"
 }
 
+cp -r "$source_dir/data" data
 mkdir bin
 ln -s "$tool" bin/idspan
 PATH=$PWD/bin:$PATH
@@ -55,8 +56,9 @@ for file in shown/*; do
     count=$((count + 1))
     command=$(head -n 1 "$file")
     # Empty lines at the end belong to the text around.
-    printf '%s\n' "$(tail -n +2 "$file")" >expected
-    (cd "$source_dir/data/crosses" && eval "$command") >got 2>&1
+    expected=$(tail -n +2 "$file")
+    printf '%s' "${expected:+$expected$'\n'}" >expected
+    (cd data/crosses && eval "$command") >got 2>&1
     matches expected got || complain "README.md: $command gives: $(cat got)"
 done
 [ "$count" -ge 8 ] || complain "only $count commands were found in README.md"

@@ -22,8 +22,8 @@ has out "Examples:"
 for task in $tasks; do
     has out "  $task "
 done
-for option in degree degrees from count index monomials split by partition cross-check \
-    exact primes seed field format output memory threads help version; do
+for option in degree degrees from count index monomials split by partition cross-check run \
+    jobs plan list-cells cell exact primes seed field format output memory threads help version; do
     has out "--$option"
 done
 run 0 -h
@@ -37,6 +37,7 @@ common="format output memory threads help version"
     own_basis="degree from count"
     own_count="degree degrees split"
     own_rank="degree degrees by partition cross-check exact primes seed field"
+    own_rank+=" run jobs plan list-cells cell"
     own_follows="candidate all proof witness primes seed"
     own_check=""
     own_draw="degree monomials index from count"

@@ -64,7 +64,14 @@ START_TEST(test_read)
                   "operation t(a,b)\n"
                   "define f(x,y) = (x*x)*y - 1/2*x*(x*y) + {x,x,y}\n"
                   "identity long-name: f(x,y+z)*x - f(x,z)*x = (x*x)*t(x,y)\n"
-                  "candidate 0*(x*y)\n";
+                  "candidate 0*(x*y)\n"
+                  "model w associative: a*b = 1/2 a b + 1/2 b a\n"
+                  "model w associative: {a,b,c} = a b c - c b a\n"
+                  "model w associative: t(a,b) = a b'\n"
+                  "model g algebra \"g.alg\"\n"
+                  "model o over \"o.pres\": a*b = [a,b]\n"
+                  "model o over \"o.pres\": {a,b,c} = 0\n"
+                  "model o over \"o.pres\": t(a,b) = [b,a] - 1/3 [a,b]\n";
     TEST_OOM(read_and_print, text);
 }
 END_TEST

@@ -163,7 +163,7 @@ START_TEST(test_cocharacters_add_up)
 }
 END_TEST
 
-static const char *const folders[] = {"varieties", "signatures", "crosses"};
+static const char *const folders[] = {"varieties", "signatures", "crosses", "models"};
 
 static void check_round_trip(const char *path)
 {

@@ -10,7 +10,7 @@
 #include "field/solution_private.h"
 #include "field_matrix.h"
 
-static const size_t sizes[][3] = {{1, 1, 1},   {12, 16, 16}, {13, 17, 15}, {5, 31, 300},
+static const size_t sizes[][3] = {{1, 1, 1},     {12, 16, 16}, {13, 17, 15},   {5, 31, 300},
                                   {25, 16, 257}, {7, 515, 33}, {40, 600, 520}, {24, 3, 1}};
 #define SIZES (sizeof sizes / sizeof *sizes)
 
@@ -58,8 +58,8 @@ START_TEST(test_left)
         idsi_left left = {0};
         uint32_t row[600];
         open_problem(&w, p, sizes[i], &random);
-        TEST_OK(ctx, idsi_left_init(ctx, p, w.a.rows, w.a.columns, w.a.entries, w.a.columns,
-                                    &left));
+        TEST_OK(ctx,
+                idsi_left_init(ctx, p, w.a.rows, w.a.columns, w.a.entries, w.a.columns, &left));
         idsi_left_mul_sub(&work, p, &left, w.b.columns, w.b.entries, w.b.columns, w.c.entries,
                           w.c.columns);
         field_matrix_compare("prepared", &w.c, &w.wanted);
@@ -105,9 +105,9 @@ START_TEST(test_strips)
             for (size_t j = 0; j < size[1]; j += width) {
                 size_t m = size[0] - i < height ? size[0] - i : height;
                 size_t n = size[1] - j < width ? size[1] - j : width;
-                (narrow ? kernel->narrow_strip : kernel->left_strip)(
-                    p, steps, left.values + i, packed + j * steps,
-                    field_matrix_row(&w.c, i) + j, size[1], m, n);
+                (narrow ? kernel->narrow_strip
+                        : kernel->left_strip)(p, steps, left.values + i, packed + j * steps,
+                                              field_matrix_row(&w.c, i) + j, size[1], m, n);
             }
         }
         field_matrix_compare(kernel->name, &w.c, &w.wanted);

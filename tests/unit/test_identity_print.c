@@ -29,6 +29,15 @@ static const printed presentations[] = {
      "operation a q b\noperation a.b\nidentity -x q (y.z) + (x q y).z = 0\n"},
     {"operation x*y none\nidentity trivial: y*x - y*x\n",
      "operation a*b\nidentity trivial: 0*y*x = 0\n"},
+    {"operation x*y commutative\nmodel m-1 associative: u*v = 2/4 u v + v u - 1/2*v u\n",
+     "operation a*b commutative\nmodel m-1 associative: u*v = 1/2*u v + 1/2*v u\n"},
+    {"operation {x,y,z} = {z,y,x}\noperation x*y\nmodel m associative: {x,y,z} = x y' z + z y' x\n"
+     "model n algebra \"../a b.alg\"\nmodel m associative: x*y = 0\n",
+     "operation {a,b,c} = {c,b,a}\noperation a*b\n"
+     "model m associative: {x,y,z} = x y' z + z y' x\nmodel m associative: x*y = 0\n"
+     "model n algebra \"../a b.alg\"\n"},
+    {"operation x*y\nmodel m over \"o.pres\": x*y = [x,  y] - # so\n 2 {x,y,y}\n",
+     "operation a*b\nmodel m over \"o.pres\": x*y = [x, y] - 2 {x,y,y}\n"},
     {"operation (x,y)\noperation <x,y>\nidentity (<x,y>,x) - 10/4*<(y,x),x>\n",
      "operation (a,b)\noperation <a,b>\nidentity (<x,y>,x) - 5/2*<(y,x),x> = 0\n"},
 };

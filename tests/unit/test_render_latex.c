@@ -29,6 +29,27 @@ START_TEST(test_tabular)
 }
 END_TEST
 
+/* Rows of one degree stand together; a degree of one row needs no space of its own. */
+START_TEST(test_groups)
+{
+    static const ids_column numbers[] = {{"degree", IDS_COLUMN_NUMBER, 0}};
+    static const ids_column words[] = {{"degree", IDS_COLUMN_TEXT, 0}};
+    static const char *const cells[] = {"1", "2", "2", "3", "3", "4"};
+
+    expect_table(IDS_FORMAT_LATEX, numbers, 1, cells, 6, NULL,
+                 "% Table: rank; the preamble needs \\usepackage{booktabs}.\n"
+                 "\\begin{tabular}{r}\n\\toprule\ndegree \\\\\n\\midrule\n"
+                 "1 \\\\\n2 \\\\\n2 \\\\\n\\addlinespace\n"
+                 "3 \\\\\n3 \\\\\n\\addlinespace\n4 \\\\\n"
+                 "\\bottomrule\n\\end{tabular}\n");
+    expect_table(IDS_FORMAT_LATEX, words, 1, cells + 1, 3, NULL,
+                 "% Table: rank; the preamble needs \\usepackage{booktabs}.\n"
+                 "\\begin{tabular}{l}\n\\toprule\ndegree \\\\\n\\midrule\n"
+                 "2 \\\\\n2 \\\\\n3 \\\\\n"
+                 "\\bottomrule\n\\end{tabular}\n");
+}
+END_TEST
+
 typedef struct pair {
     const char *text;
     const char *latex;
@@ -142,6 +163,7 @@ int main(void)
     TCase *tcase = tcase_create("latex");
 
     tcase_add_test(tcase, test_tabular);
+    tcase_add_test(tcase, test_groups);
     tcase_add_loop_test(tcase, test_words, 0, (int)(sizeof words / sizeof words[0]));
     tcase_add_loop_test(tcase, test_formulas, 0, (int)(sizeof formulas / sizeof formulas[0]));
     tcase_add_test(tcase, test_any_bytes);

@@ -35,8 +35,7 @@ static const char *const bad[] = {
     "\xff",             /* never a start */
     "\xc3",             /* cut off */
     "\xe4\xb8",         /* cut off */
-    "\xe4"
-    "a", /* broken by a letter */
+    "\xe4\x61",         /* broken by the letter a */
 };
 
 START_TEST(test_good)

@@ -69,7 +69,7 @@ const char *help_nearest(const char *word, const char *const *names)
 
 /* ---- help texts ---------------------------------------------------------------------- */
 
-static void print_options(FILE *to, unsigned which)
+static void print_options(FILE *to, uint64_t which)
 {
     for (unsigned id = 0; id < OPTION_END; id++) {
         const option *shown = &option_list[id];

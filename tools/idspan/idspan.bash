@@ -6,7 +6,7 @@ _idspan()
 {
     local word=${COMP_WORDS[COMP_CWORD]}
     local previous=${COMP_WORDS[COMP_CWORD - 1]}
-    local tasks="show types basis count rank follows check draw matrix"
+    local tasks="show types basis count rank follows fresh check draw matrix"
     local common="--format --output --memory --threads --help --version"
     local task="" own="" i
 
@@ -19,7 +19,11 @@ _idspan()
     COMPREPLY=()
     case $previous in
     --format)
-        mapfile -t COMPREPLY < <(compgen -W "text csv json latex ascii svg tikz mtx" -- "$word")
+        mapfile -t COMPREPLY < <(compgen -W "text csv json latex svg html ascii tikz mtx" -- "$word")
+        return
+        ;;
+    --run)
+        mapfile -t COMPREPLY < <(compgen -d -- "$word")
         return
         ;;
     --output | --proof | --witness)
@@ -34,14 +38,14 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "partition" -- "$word")
         return
         ;;
-    --candidate | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads)
+    --candidate | --model | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads | --jobs | --cell)
         return
         ;;
     esac
 
     for ((i = 1; i < COMP_CWORD; i++)); do
         case ${COMP_WORDS[i]} in
-        show | types | basis | count | rank | follows | check | draw | matrix)
+        show | types | basis | count | rank | follows | fresh | check | draw | matrix)
             task=${COMP_WORDS[i]}
             break
             ;;
@@ -52,9 +56,13 @@ _idspan()
     basis) own="--degree --from --count" ;;
     count) own="--degree --degrees --split" ;;
     follows) own="--candidate --all --proof --witness --primes --seed" ;;
+    fresh) own="--model --degree --degrees --table --primes --seed" ;;
     draw) own="--degree --monomials --index --from --count" ;;
     matrix) own="--degree --plain --field --seed" ;;
-    rank) own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field" ;;
+    rank)
+        own="--degree --degrees --by --partition --cross-check --exact --primes --seed --field"
+        own+=" --run --jobs --plan --list-cells --cell"
+        ;;
     esac
 
     if [[ $word == -* ]]; then

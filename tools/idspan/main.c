@@ -12,7 +12,8 @@
 #include "tool.h"
 
 const task *const task_list[] = {&task_show, &task_types,   &task_basis, &task_count,  &task_rank,
-                                 &task_draw, &task_follows, &task_check, &task_matrix, NULL};
+                                 &task_draw, &task_follows, &task_check, &task_fresh,
+                                 &task_matrix, NULL};
 
 const task *task_find(const char *name)
 {
@@ -59,7 +60,7 @@ static void explain(const session *s, ids_status status)
 {
     const char *message = s->failure[0] != '\0' ? s->failure : ids_ctx_message(s->ctx);
 
-    if (status == IDS_ERR_IO) {
+    if (status == IDS_ERR_IO && s->failure[0] == '\0') {
         return; /* output_close() knows the reason */
     }
     if (status == IDS_ERR_CANCELLED && s->failure[0] == '\0') {
@@ -77,13 +78,18 @@ static void explain(const session *s, ids_status status)
 
 const char *session_source(const session *s)
 {
+    if (s->set->file == NULL) {
+        return "";
+    }
     return strcmp(s->set->file, "-") == 0 ? "standard input" : s->set->file;
 }
 
 static ids_status read_file(session *s)
 {
-    ids_status st = IDS_OK;
-
+    if (s->set->file == NULL) {
+        interrupt_watch(s->ctx);
+        return IDS_OK; /* the task knows where to look */
+    }
     if (!input_read(s->set->file, &s->text, &s->length)) {
         return IDS_ERR_IO;
     }
@@ -91,10 +97,7 @@ static ids_status read_file(session *s)
     if (s->set->task->wants_text) {
         return IDS_OK;
     }
-    st = ids_presentation_read(s->ctx, s->text, s->length, session_source(s), &s->pres);
-    free(s->text);
-    s->text = NULL;
-    return st;
+    return ids_presentation_read(s->ctx, s->text, s->length, session_source(s), &s->pres);
 }
 
 static int run(const settings *set)

@@ -119,7 +119,7 @@ bool output_open(output *out, const char *name, const char *source)
         out->name = "standard output";
         return true;
     }
-    if (same_file(name, source)) {
+    if (source != NULL && same_file(name, source)) {
         complain("--output would overwrite \"%s\", the file that is read", source);
         return false;
     }

@@ -3,8 +3,8 @@
  * The command line: TASK FILE and long options, in any order.
  *
  * `--name value` and `--name=value` are the same; `--` ends the options. Every option is in
- * option_list with its help, every task says which of them are its own, so a misplaced or
- * mistyped word can be answered with what was probably meant.
+ * option_list (option_list.c) with its help, every task says which of them are its own, so a
+ * misplaced or mistyped word can be answered with what was probably meant.
  */
 #include <stdlib.h>
 #include <string.h>
@@ -13,43 +13,6 @@
 #include "tool.h"
 
 #define DEFAULT_MEMORY ((uint64_t)4 << 30)
-
-const option option_list[OPTION_END] = {
-    [OPTION_DEGREE] = {"degree", "N", "the degree N, from 1 to 64; count goes to 1000000"},
-    [OPTION_DEGREES] = {"degrees", "A..B", "all degrees from A to B"},
-    [OPTION_FROM] = {"from", "I", "begin with index I; indices count from 0"},
-    [OPTION_COUNT] = {"count", "K", "list at most K of them"},
-    [OPTION_INDEX] = {"index", "I", "only the one of index I; indices count from 0"},
-    [OPTION_MONOMIALS] = {"monomials", NULL, "the multilinear monomials, with their labels"},
-    [OPTION_SPLIT] = {"split", NULL, "split the numbers by the uses of each operation"},
-    [OPTION_EXACT] = {"exact", NULL, "prove the ranks over the rational numbers"},
-    [OPTION_PRIMES] = {"primes", "K", "compute modulo K random primes (default 1)"},
-    [OPTION_SEED] = {"seed", "S",
-                     "draw the primes from seed S (default 0); the same seed\n"
-                     "gives the same primes on every machine"},
-    [OPTION_FIELD] = {"field", "P", "work over the field of P elements, P a prime below 2^30"},
-    [OPTION_BY] = {"by", "partition", "one row a partition and a total, up to degree 16"},
-    [OPTION_PARTITION] = {"partition", "P", "only the partition P, written as 4+3+1"},
-    [OPTION_CROSS_CHECK] = {"cross-check", NULL,
-                            "compute the totals by monomials too and compare"},
-    [OPTION_PLAIN] = {"plain", NULL, "all consequences in all monomials, with integers"},
-    [OPTION_CANDIDATE] = {"candidate", "NAME", "the candidate NAME of the file"},
-    [OPTION_ALL] = {"all", NULL, "all candidates of the file"},
-    [OPTION_PROOF] = {"proof", "FILE", "if it follows, write a derivation to FILE"},
-    [OPTION_WITNESS] = {"witness", "FILE", "if it does not, write a witness to FILE"},
-    [OPTION_FORMAT] = {"format", "F",
-                       "text (for people, the default), csv, json or latex;\n"
-                       "of draw: text, ascii, svg or tikz; of matrix: mtx"},
-    [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
-    [OPTION_MEMORY] = {"memory", "SIZE",
-                       "use at most SIZE, such as 500M or 8G (default 4G);\n"
-                       "none for no limit"},
-    [OPTION_THREADS] = {"threads", "N",
-                        "use at most N threads (default: one a processor);\n"
-                        "results do not depend on it"},
-    [OPTION_HELP] = {"help", NULL, "show this help"},
-    [OPTION_VERSION] = {"version", NULL, "show the version"},
-};
 
 /* ---- values -------------------------------------------------------------------------- */
 
@@ -189,6 +152,18 @@ static bool read_value(option_id id, const char *value, settings *read)
     case OPTION_PARTITION:
         read->partition_text = value;
         return true;
+    case OPTION_RUN:
+        read->run = value;
+        return true;
+    case OPTION_JOBS:
+        if (!read_number(id, value, 1, 1024, &number)) {
+            return false;
+        }
+        read->jobs = (uint32_t)number;
+        return true;
+    case OPTION_CELL:
+        read->cells = value;
+        return true;
     case OPTION_CANDIDATE:
         read->candidate = value;
         return true;
@@ -197,6 +172,12 @@ static bool read_value(option_id id, const char *value, settings *read)
         return true;
     case OPTION_WITNESS:
         read->witness = value;
+        return true;
+    case OPTION_MODEL:
+        read->model = value;
+        return true;
+    case OPTION_SAVE:
+        read->save = value;
         return true;
     case OPTION_FORMAT:
         read->format_name = value; /* which there are depends on the task */
@@ -393,10 +374,14 @@ static bool check_pairs(const settings *read)
         {OPTION_FIELD, OPTION_PRIMES},   {OPTION_FIELD, OPTION_SEED},
         {OPTION_PLAIN, OPTION_FIELD},    {OPTION_PLAIN, OPTION_SEED},
         {OPTION_CANDIDATE, OPTION_ALL},  {OPTION_PROOF, OPTION_ALL},
-        {OPTION_WITNESS, OPTION_ALL},    {OPTION_PARTITION, OPTION_CROSS_CHECK}};
+        {OPTION_WITNESS, OPTION_ALL},    {OPTION_PARTITION, OPTION_CROSS_CHECK},
+        {OPTION_TABLE, OPTION_SAVE},
+        {OPTION_RUN, OPTION_PARTITION},  {OPTION_RUN, OPTION_CROSS_CHECK},
+        {OPTION_RUN, OPTION_THREADS},    {OPTION_PLAN, OPTION_LIST_CELLS},
+        {OPTION_PLAN, OPTION_CELL},      {OPTION_CELL, OPTION_LIST_CELLS}};
 
     for (size_t i = 0; i < sizeof pairs / sizeof *pairs; i++) {
-        unsigned both = BIT(pairs[i][0]) | BIT(pairs[i][1]);
+        uint64_t both = BIT(pairs[i][0]) | BIT(pairs[i][1]);
         if ((read->seen & both) == both) {
             complain("--%s and --%s exclude each other", option_list[pairs[i][0]].name,
                      option_list[pairs[i][1]].name);
@@ -420,14 +405,17 @@ static bool check(settings *read)
     if (!check_own_options(read)) {
         return false;
     }
-    if (read->file == NULL) {
+    if (!rank_check_run(read)) {
+        return false;
+    }
+    if (read->file == NULL && read->run == NULL) {
         complain("\"%s\" wants a %s file, or - for standard input:\n"
                  "        idspan %s FILE%s",
                  chosen->name, chosen->wants_text ? "proof or witness" : "presentation",
                  chosen->name, chosen->usage);
         return false;
     }
-    if (chosen->wanted != 0 && (read->seen & chosen->wanted) == 0) {
+    if (chosen->wanted != 0 && (read->seen & chosen->wanted) == 0 && read->file != NULL) {
         complain("\"%s\" wants a degree:\n        idspan %s %s%s", chosen->name, chosen->name,
                  read->file, chosen->usage);
         return false;

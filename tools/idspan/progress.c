@@ -25,6 +25,11 @@ static struct {
     struct timespec stage_start;
 } line;
 
+static struct {
+    ids_progress_fn fn; /* NULL: the line above */
+    void *user;
+} diverted;
+
 static ids_ctx *volatile watched;
 static volatile sig_atomic_t caught;
 
@@ -45,21 +50,29 @@ void progress_start(const char *name)
     clock_gettime(CLOCK_MONOTONIC, &line.start);
 }
 
+void duration_print(double seconds, char text[DURATION_CHARS])
+{
+    if (seconds < 1) {
+        snprintf(text, DURATION_CHARS, "less than 1 s");
+    } else if (seconds < 90) {
+        snprintf(text, DURATION_CHARS, "about %.0f s", seconds + 0.5);
+    } else if (seconds < 5400) {
+        snprintf(text, DURATION_CHARS, "about %.0f min", seconds / 60);
+    } else {
+        snprintf(text, DURATION_CHARS, "about %.1f h", seconds < 3.6e9 ? seconds / 3600 : 1e6);
+    }
+}
+
 /* "  35 %, about 40 s left" and the like; the time only once the share says enough. */
 static void print_share(double elapsed, double share, const char *of)
 {
     double left = share > 0.001 ? elapsed / share - elapsed : -1;
+    char text[DURATION_CHARS] = "";
 
     fprintf(stderr, "  %.0f %%%s", 100 * share, of);
-    if (left < 0 || left > 1e7) {
-        return;
-    }
-    if (left < 90) {
-        fprintf(stderr, ", about %.0f s left", left + 0.5);
-    } else if (left < 5400) {
-        fprintf(stderr, ", about %.0f min left", left / 60);
-    } else {
-        fprintf(stderr, ", about %.1f h left", left / 3600);
+    if (left >= 0 && left <= 1e7) {
+        duration_print(left, text);
+        fprintf(stderr, ", %s left", text);
     }
 }
 
@@ -79,6 +92,9 @@ int progress_hook(void *user, const ids_progress *progress)
     double elapsed = 0;
 
     (void)user;
+    if (diverted.fn != NULL) {
+        return diverted.fn(diverted.user, progress);
+    }
     if (!line.on) {
         return 0;
     }
@@ -98,6 +114,24 @@ int progress_hook(void *user, const ids_progress *progress)
     fflush(stderr);
     line.shown = true;
     return 0;
+}
+
+void progress_divert(ids_progress_fn fn, void *user)
+{
+    diverted.fn = fn;
+    diverted.user = user;
+}
+
+bool progress_is_shown(void)
+{
+    return line.on;
+}
+
+void progress_print(const char *text)
+{
+    fprintf(stderr, "\r\033[K%s", text);
+    fflush(stderr);
+    line.shown = true;
 }
 
 void progress_clear(void)

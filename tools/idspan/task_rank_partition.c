@@ -5,14 +5,13 @@
  *
  * The degrees that were finished when the work stops early are written all the same.
  */
+#include <stdlib.h>
 #include <string.h>
 
 #include "tool.h"
 
 /* The limit of ids_partition_table_create(). */
 #define MOST_DEGREE 16u
-
-enum { DEGREE, PARTITION, DIMENSION, FREE, CONSEQUENCES, QUOTIENT, CERTAINTY, COLUMNS };
 
 /* ---- command line -------------------------------------------------------------------- */
 
@@ -100,169 +99,6 @@ bool rank_check(settings *read)
     return true;
 }
 
-/* ---- table --------------------------------------------------------------------------- */
-
-static ids_status write_row(session *s, const ids_partition_row *row, ids_writer *writer)
-{
-    ids_status st = IDS_OK;
-    digits numbers[COLUMNS] = {{{0}}};
-    char certainty[24] = "exact";
-    char *partition = NULL;
-    const char *cells[COLUMNS] = {0};
-
-    if (row->certainty == IDS_CERTAINTY_MODULAR) {
-        snprintf(certainty, sizeof certainty, "2^-%u", (unsigned)row->bits);
-    }
-    numbers[DEGREE] = digits_of(row->degree);
-    numbers[FREE] = digits_of(row->free);
-    numbers[CONSEQUENCES] = digits_of(row->consequences);
-    numbers[QUOTIENT] = digits_of(row->quotient);
-    if (!row->total) {
-        numbers[DIMENSION] = digits_of(row->dimension);
-        TRY(ids_partition_print(s->ctx, &row->partition, &partition));
-    }
-    for (size_t i = 0; i < COLUMNS; i++) {
-        cells[i] = numbers[i].text;
-    }
-    cells[PARTITION] = row->total ? "total" : partition;
-    cells[CERTAINTY] = certainty;
-    TRY(ids_writer_row(writer, cells));
-done:
-    ids_string_free(s->ctx, partition);
-    return st;
-}
-
-static ids_status write_notes(session *s, const ids_partition_table *table, ids_status stopped,
-                              ids_writer *writer)
-{
-    ids_status st = IDS_OK;
-    char primes[PRIMES_CHARS] = "";
-    size_t count = ids_partition_table_prime_count(table);
-
-    for (size_t i = 0; i < count; i++) {
-        primes_append(primes, ids_partition_table_prime(table, i));
-    }
-    if (count > 0) {
-        TRY(ids_writer_note(writer, "primes", primes));
-        TRY(ids_writer_note(writer, "seed", digits_of(s->set->seed).text));
-    }
-    if (is_given(s->set, OPTION_CROSS_CHECK) && stopped == IDS_OK) {
-        TRY(ids_writer_note(writer, "cross-check", "the monomial engine gives the same totals"));
-    }
-    if (stopped != IDS_OK) {
-        TRY(ids_writer_note(writer, "stopped", s->failure));
-    }
-done:
-    return st;
-}
-
-/* How sure the numbers of the verdict are: the totals, or the one partition. */
-static ids_status write_certainty(session *s, const ids_partition_table *table, size_t numbers)
-{
-    size_t count = ids_partition_table_count(table);
-    uint32_t bits = UINT32_MAX;
-
-    for (size_t i = 0; i < count; i++) {
-        ids_partition_row row = {0};
-        ids_status st = ids_partition_table_row(table, i, &row);
-        if (st != IDS_OK) {
-            return st;
-        }
-        if ((row.total || count == 1) && row.certainty == IDS_CERTAINTY_MODULAR) {
-            bits = row.bits < bits ? row.bits : bits;
-        }
-    }
-    if (bits == UINT32_MAX) {
-        return output_printf(&s->out, " (proved).\n");
-    }
-    return output_printf(&s->out, " (%stoo large with probability at most 2^-%u).\n",
-                         numbers == 1 ? "" : "each ", (unsigned)bits);
-}
-
-static ids_status write_multiplicity(session *s, const ids_partition_table *table)
-{
-    ids_status st = IDS_OK;
-    ids_partition_row row = {0};
-
-    TRY(ids_partition_table_row(table, 0, &row));
-    TRY(output_printf(&s->out,
-                      "\nPartition %s of degree %u: multiplicity %s in the quotient, %s in the "
-                      "free algebra",
-                      s->set->partition_text, (unsigned)row.degree, digits_of(row.quotient).text,
-                      digits_of(row.free).text));
-    TRY(write_certainty(s, table, 1));
-done:
-    return st;
-}
-
-static ids_status write_verdict(session *s, const ids_partition_table *table)
-{
-    ids_status st = IDS_OK;
-    size_t count = ids_partition_table_count(table);
-    ids_partition_row last = {0};
-    size_t numbers = 0;
-
-    if (is_given(s->set, OPTION_PARTITION)) {
-        return write_multiplicity(s, table);
-    }
-    TRY(ids_partition_table_row(table, count - 1, &last));
-    if (last.degree == s->set->first_degree) {
-        TRY(output_printf(&s->out, "\nDegree %u: a quotient of dimension ",
-                          (unsigned)last.degree));
-    } else {
-        TRY(output_printf(&s->out, "\nDegrees %u to %u: quotients of dimension ",
-                          (unsigned)s->set->first_degree, (unsigned)last.degree));
-    }
-    for (size_t i = 0; i < count; i++) {
-        ids_partition_row row = {0};
-        TRY(ids_partition_table_row(table, i, &row));
-        if (row.total) {
-            TRY(output_printf(&s->out, "%s%s", numbers > 0 ? ", " : "",
-                              digits_of(row.quotient).text));
-            numbers++;
-        }
-    }
-    TRY(write_certainty(s, table, numbers));
-done:
-    return st;
-}
-
-static ids_status write_table(session *s, const ids_partition_table *table, ids_status stopped)
-{
-    static const ids_column columns[COLUMNS] = {
-        [DEGREE] = {"degree", IDS_COLUMN_NUMBER, 0},
-        [PARTITION] = {"partition", IDS_COLUMN_TEXT, 0},
-        [DIMENSION] = {"dimension", IDS_COLUMN_NUMBER, 0},
-        [FREE] = {"free", IDS_COLUMN_NUMBER, 0},
-        [CONSEQUENCES] = {"consequences", IDS_COLUMN_NUMBER, 0},
-        [QUOTIENT] = {"quotient", IDS_COLUMN_NUMBER, 0},
-        [CERTAINTY] = {"certainty", IDS_COLUMN_MATH, 0},
-    };
-    bool text = s->set->format == IDS_FORMAT_TEXT;
-    size_t count = ids_partition_table_count(table);
-    ids_writer *writer = NULL;
-    ids_status st = IDS_OK;
-
-    if (text && count == 0) {
-        return IDS_OK;
-    }
-    TRY(ids_writer_create(s->ctx, s->set->format, "rank", columns, COLUMNS, output_sink, &s->out,
-                          &writer));
-    for (size_t i = 0; i < count; i++) {
-        ids_partition_row row = {0};
-        TRY(ids_partition_table_row(table, i, &row));
-        TRY(write_row(s, &row, writer));
-    }
-    TRY(write_notes(s, table, stopped, writer));
-    TRY(ids_writer_end(writer));
-    if (text) {
-        TRY(write_verdict(s, table));
-    }
-done:
-    ids_writer_free(writer);
-    return st;
-}
-
 /* ---- run ----------------------------------------------------------------------------- */
 
 /* What was not finished: a degree, or with all degrees in the table a later prime. */
@@ -296,6 +132,36 @@ static void keep_reason(session *s, const ids_partition_table *table, ids_status
     }
 }
 
+static ids_status write_table(session *s, const ids_partition_table *table, ids_status stopped)
+{
+    ids_status st = IDS_OK;
+    char primes[PRIMES_CHARS] = "";
+    size_t count = ids_partition_table_count(table);
+    ids_partition_row *rows = calloc(count + 1, sizeof *rows);
+    rank_view view = {.count = count,
+                      .rows = rows,
+                      .by_partition = true,
+                      .verdict = true,
+                      .primes = primes,
+                      .seed = s->set->seed,
+                      .cross_checked = is_given(s->set, OPTION_CROSS_CHECK) && stopped == IDS_OK,
+                      .stopped = stopped != IDS_OK ? s->failure : NULL};
+
+    if (rows == NULL) {
+        return IDS_ERR_NOMEM;
+    }
+    for (size_t i = 0; i < count; i++) {
+        TRY(ids_partition_table_row(table, i, &rows[i]));
+    }
+    for (size_t i = 0; i < ids_partition_table_prime_count(table); i++) {
+        primes_append(primes, ids_partition_table_prime(table, i));
+    }
+    TRY(rank_write(s, &view));
+done:
+    free(rows);
+    return st;
+}
+
 ids_status rank_by_partition(session *s)
 {
     const settings *set = s->set;
@@ -312,7 +178,7 @@ ids_status rank_by_partition(session *s)
 
     keep_reason(s, table, st);
     if (table != NULL) {
-        written = write_table(s, table, st);
+        written = is_report_format(set) ? report_partitions(s, table) : write_table(s, table, st);
     }
     ids_partition_table_free(table);
     return written != IDS_OK ? written : st;

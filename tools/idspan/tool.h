@@ -38,11 +38,19 @@ typedef enum option_id {
     OPTION_BY,
     OPTION_PARTITION,
     OPTION_CROSS_CHECK,
+    OPTION_RUN,
+    OPTION_JOBS,
+    OPTION_PLAN,
+    OPTION_LIST_CELLS,
+    OPTION_CELL,
     OPTION_PLAIN,
     OPTION_CANDIDATE,
     OPTION_ALL,
     OPTION_PROOF,
     OPTION_WITNESS,
+    OPTION_MODEL,
+    OPTION_TABLE,
+    OPTION_SAVE,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -52,7 +60,7 @@ typedef enum option_id {
     OPTION_END
 } option_id;
 
-#define BIT(id) (1u << (unsigned)(id))
+#define BIT(id) (UINT64_C(1) << (unsigned)(id))
 #define COMMON_OPTIONS                                                                    \
     (BIT(OPTION_FORMAT) | BIT(OPTION_OUTPUT) | BIT(OPTION_MEMORY) | BIT(OPTION_THREADS) | \
      BIT(OPTION_HELP) | BIT(OPTION_VERSION))
@@ -72,7 +80,7 @@ struct task;
 typedef struct settings {
     const struct task *task; /* NULL for `idspan --help` and `idspan --version` */
     const char *file;        /* "-": standard input */
-    unsigned seen;           /* BIT() of the options that were given */
+    uint64_t seen;           /* BIT() of the options that were given */
     const char *degrees;     /* value of --degree or --degrees, as written */
     uint32_t first_degree;
     uint32_t last_degree;
@@ -85,9 +93,14 @@ typedef struct settings {
     const char *by;             /* value of --by, as written */
     const char *partition_text; /* value of --partition, as written */
     ids_partition partition;    /* and as read by rank_check() */
+    const char *run;            /* value of --run, NULL: none */
+    uint32_t jobs;              /* value of --jobs, 0: not given */
+    const char *cells;          /* value of --cell, NULL: none */
     const char *candidate;      /* value of --candidate, NULL: none */
     const char *proof;          /* value of --proof, NULL: none */
     const char *witness;        /* value of --witness, NULL: none */
+    const char *model;          /* value of --model, NULL: none */
+    const char *save;           /* value of --save, NULL: none */
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
@@ -111,8 +124,8 @@ typedef struct output {
 typedef struct session {
     const settings *set;
     ids_ctx *ctx;
-    ids_presentation *pres; /* NULL for a task that wants text */
-    char *text;             /* the file, for a task that wants text */
+    ids_presentation *pres; /* NULL for a task that wants text, and without a file */
+    char *text;             /* the file; NULL when there is none */
     size_t length;
     bool no; /* the answer is "does not follow" */
     output out;
@@ -126,8 +139,8 @@ typedef struct task {
     const char *summary; /* one line */
     const char *details; /* for --help */
     const char *examples;
-    unsigned options;     /* BIT() of its own options, without the common ones */
-    unsigned wanted;      /* of these, at least one must be given; 0: none need be */
+    uint64_t options;     /* BIT() of its own options, without the common ones */
+    uint64_t wanted;      /* of these, at least one must be given; 0: none need be */
     uint32_t most_degree; /* 0: IDS_MAX_DEGREE */
     bool wants_text;      /* the file is no presentation: the task reads it itself */
     const char *const *formats; /* NULL at the end; NULL: those of tables */
@@ -144,6 +157,7 @@ extern const task task_draw;
 extern const task task_matrix;
 extern const task task_follows;
 extern const task task_check;
+extern const task task_fresh;
 
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
@@ -152,11 +166,56 @@ const task *task_find(const char *name);
 /* The part of `rank` that works by partition. */
 bool rank_check(settings *read);
 ids_status rank_by_partition(session *s);
+/* The part that keeps a table in a folder (--run). */
+bool rank_check_run(const settings *read);
+ids_status rank_in_folder(session *s);
+
+/*
+ * A rank table to be written. Of rows whose text in `missing` is not NULL there are no numbers, and
+ * the text stands for their certainty.
+ */
+typedef struct rank_view {
+    size_t count;
+    const ids_partition_row *rows;
+    const char *const *missing; /* NULL: all are there */
+    bool by_partition;
+    bool verdict;       /* text: a sentence at the end */
+    const char *primes; /* for the notes; "" without */
+    uint64_t seed;
+    uint32_t field;     /* 0: the rational numbers */
+    bool weakened;
+    bool cross_checked;
+    const char *stopped; /* why there is no more; NULL: there is */
+} rank_view;
+
+ids_status rank_write(session *s, const rank_view *view);
 
 /* Appends a prime to a list with blanks between; a long list is cut, since the seed tells the
  * rest. The text has PRIMES_CHARS characters. */
 #define PRIMES_CHARS 4096u
 void primes_append(char *text, uint64_t prime);
+
+/* The formats of `rank` and `report` beyond those of tables: numbers that go on from ids_format,
+ * in the order of their names in rank_formats. */
+enum { FORMAT_SVG = IDS_FORMAT_LATEX + 1, FORMAT_HTML };
+extern const char *const rank_formats[];
+/* Whether --format asks for a picture or a page. */
+bool is_report_format(const settings *set);
+/* Makes a report about the presentation `text` (NULL: not shown) from `source`; the caller frees
+ * it. The second writes it in the format of --format. */
+ids_status report_start(session *s, const char *source, const char *text, size_t length,
+                        ids_report **report);
+ids_status report_finish(session *s, ids_report *report);
+/* Writes a table as picture or page; degrees that are not in it are shown as missing. */
+ids_status report_ranks(session *s, const ids_rank_table *table);
+ids_status report_partitions(session *s, const ids_partition_table *table);
+ids_status report_run(session *s, const ids_run *run);
+
+/* Said of ranks over a small field. */
+#define WEAKENED_WARNING                                                                \
+    "some variable occurs in a term at least as often as the field has elements; the "  \
+    "linearised identities, which are what counts here, can be weaker than the identities " \
+    "as written"
 
 /* Sends a function to its `done:` label when a call fails. */
 #define TRY(call)           \
@@ -203,6 +262,14 @@ bool output_close(output *out);
 void progress_start(const char *name);
 /* An ids_progress_fn. */
 int progress_hook(void *user, const ids_progress *progress);
+/* From now on another function is told, in this process. */
+void progress_divert(ids_progress_fn fn, void *user);
+/* Whether there is somebody to see a line, and a line in place of the usual one. */
+bool progress_is_shown(void);
+void progress_print(const char *text);
+/* "about 40 s", "about 3 min", "about 2.5 h". */
+#define DURATION_CHARS 32u
+void duration_print(double seconds, char text[DURATION_CHARS]);
 /* Takes the progress line away; called before anything else is written. */
 void progress_clear(void);
 /* Ctrl-C and SIGTERM cancel what runs with ctx from now on; NULL: they are only noted. */

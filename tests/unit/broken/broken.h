@@ -1,7 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * Broken presentations: each one with the status, the place and a part of the message that the
- * reader must answer. The places were counted by hand in the texts, in characters.
+ * Broken presentations and algebra files: each one with the status, the place and a part of the
+ * message that the reader must answer. The places were counted by hand in the texts, in characters.
  */
 #ifndef IDSPAN_TEST_BROKEN_H
 #define IDSPAN_TEST_BROKEN_H
@@ -19,5 +19,7 @@ typedef struct broken {
 
 extern const broken broken_table[];
 extern const size_t broken_count;
+extern const broken broken_algebras[];
+extern const size_t broken_algebra_count;
 
 #endif

@@ -1,0 +1,118 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * The new identities of a model, degree by degree.
+ */
+#include <string.h>
+
+#include "fresh_private.h"
+
+void ids_fresh_free(ids_fresh *fresh)
+{
+    if (fresh != NULL) {
+        ids_ctx *ctx = fresh->ctx;
+        idsi_free(ctx, fresh->rows);
+        idsi_free(ctx, fresh->primes);
+        idsi_free(ctx, fresh);
+    }
+}
+
+size_t ids_fresh_count(const ids_fresh *fresh)
+{
+    return fresh == NULL ? 0 : fresh->count;
+}
+
+ids_status ids_fresh_row_get(const ids_fresh *fresh, size_t index, ids_fresh_row *row)
+{
+    if (fresh == NULL || row == NULL || index >= fresh->count) {
+        return IDS_ERR_ARG;
+    }
+    *row = fresh->rows[index];
+    return IDS_OK;
+}
+
+size_t ids_fresh_prime_count(const ids_fresh *fresh)
+{
+    return fresh == NULL ? 0 : fresh->prime_count;
+}
+
+uint64_t ids_fresh_prime(const ids_fresh *fresh, size_t index)
+{
+    return fresh == NULL || index >= fresh->prime_count ? 0 : fresh->primes[index];
+}
+
+/* The identities of the presentation must hold, or nothing that is computed means anything. */
+static ids_status check_identities(ids_ctx *ctx, const ids_model *model, uint32_t to)
+{
+    ids_status st = IDS_OK;
+    const size_t count = ids_presentation_count(model->pres, IDS_ROLE_IDENTITY);
+
+    for (size_t i = 0; i < count; i++) {
+        const idsi_identity *identity = idsi_presentation_get(model->pres, IDS_ROLE_IDENTITY, i);
+        bool holds = true;
+        if (identity->degree > to) {
+            continue;
+        }
+        IDSI_TRY(ids_model_holds(ctx, model, IDS_ROLE_IDENTITY, i, &holds, NULL));
+        if (!holds) {
+            st = idsi_fail(ctx, IDS_ERR_DOMAIN,
+                           "the identity %s%s of line %u does not hold in the model %s; new "
+                           "identities can only be told from identities that hold",
+                           identity->name[0] == '\0' ? "without name" : identity->name, "",
+                           identity->line, model->decl->name);
+            goto done;
+        }
+    }
+done:
+    return st;
+}
+
+static ids_status draw_primes(ids_fresh *made, const ids_fresh_options *options)
+{
+    ids_status st = IDS_OK;
+    idsi_random random;
+    const uint32_t count = options->primes == 0 ? 1 : options->primes;
+
+    idsi_random_seed(&random, options->seed);
+    IDSI_TRY(idsi_alloc_array(made->ctx, count, sizeof *made->primes, &made->primes));
+    for (uint32_t k = 0; k < count; k++) {
+        made->primes[k] = idsi_prime_draw(&random, made->primes, k);
+        made->prime_count = k + 1;
+    }
+done:
+    return st;
+}
+
+ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from, uint32_t to,
+                            const ids_fresh_options *options, ids_fresh **fresh)
+{
+    ids_status st = IDS_OK;
+    ids_fresh *made = NULL;
+    ids_fresh_options chosen = {.struct_size = sizeof chosen};
+
+    if (ctx == NULL || model == NULL || fresh == NULL || from == 0 || from > to ||
+        to > IDSI_SHAPE_MAX) {
+        return idsi_fail_arg(ctx, "context, model, degree or result");
+    }
+    if (options != NULL && options->struct_size != sizeof *options) {
+        return idsi_fail_arg(ctx, "struct_size");
+    }
+    if (options != NULL) {
+        chosen = *options;
+    }
+    *fresh = NULL;
+    IDSI_TRY(check_identities(ctx, model, to));
+    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
+    made->ctx = ctx;
+    made->model = model;
+    IDSI_TRY(draw_primes(made, &chosen));
+    for (uint32_t d = from; d <= to; d++) {
+        IDSI_TRY(idsi_fresh_degree(made, model->pres, d));
+    }
+done:
+    if (made != NULL && (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED)) {
+        *fresh = made;
+    } else {
+        ids_fresh_free(made);
+    }
+    return st;
+}

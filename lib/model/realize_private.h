@@ -1,0 +1,134 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Models that are open, and what the answers ask of them.
+ */
+#ifndef IDSI_REALIZE_PRIVATE_H
+#define IDSI_REALIZE_PRIVATE_H
+
+#include <idspan/model.h>
+
+#include "../engine/partition_private.h"
+#include "../young/young_private.h"
+#include "model_private.h"
+
+struct ids_model {
+    ids_ctx *ctx;
+    const ids_presentation *pres;
+    const idsi_model *decl;
+    ids_algebra *algebra;                   /* of an algebra: owned */
+    uint32_t operation[IDS_MAX_OPERATIONS]; /* index of each operation there */
+    ids_presentation *base;                 /* over another presentation: owned */
+    idsi_poly *value; /* each operation as a polynomial there, label i being argument i */
+};
+
+/* A multilinear tree as a polynomial over the other presentation; `value` has no terms. (over.c) */
+ids_status idsi_over_tree(const ids_model *model, const idsi_token *tree, idsi_poly *value);
+/* Reads the polynomials; the other presentation is there. */
+ids_status idsi_over_open(ids_model *model);
+
+/* ---- sums of words (words.c) ------------------------------------------------------------------
+ * A word is a number with five bits a letter, the first letter lowest: the letter, from 0, and
+ * above it a bit for the involution. Letters can be odd: then a word with a letter c times stands
+ * for the alternating sum over all ways to put c different letters in its places.
+ */
+__extension__ typedef unsigned __int128 idsi_key;
+
+#define IDSI_KEY_BITS 5u
+#define IDSI_KEY_STAR 16u
+#define IDSI_KEY_LETTERS 16u
+
+/* Sorted by word, residues that are not 0. */
+typedef struct idsi_wordsum {
+    size_t count;
+    idsi_key *keys;
+    uint32_t *values;
+} idsi_wordsum;
+
+/* The words of all operations, with coefficients mod a prime. */
+typedef struct idsi_word_operations {
+    ids_ctx *ctx;
+    const ids_model *model;
+    uint32_t prime;
+    bool odd;
+    uint32_t *coefficient[IDS_MAX_OPERATIONS];
+} idsi_word_operations;
+
+/* *good is false, and nothing is made, when the prime divides a denominator. */
+ids_status idsi_words_init(idsi_word_operations *words, ids_ctx *ctx, const ids_model *model,
+                           uint32_t prime, bool odd, bool *good);
+void idsi_words_clear(idsi_word_operations *words);
+void idsi_wordsum_clear(ids_ctx *ctx, idsi_wordsum *sum);
+ids_status idsi_wordsum_letter(ids_ctx *ctx, uint32_t letter, idsi_wordsum *sum);
+/* How often each letter stands in a word of so many. */
+void idsi_key_content(idsi_key key, uint32_t length, uint8_t content[IDSI_KEY_LETTERS]);
+/* An operation on sums; length[i] is that of the words of argument i. `product` must be new. */
+ids_status idsi_words_product(const idsi_word_operations *words, uint32_t op,
+                              const idsi_wordsum *const *arguments, const uint32_t *length,
+                              idsi_wordsum *product);
+/* A tree with labels from 1, multiplied out. */
+ids_status idsi_words_tree(const idsi_word_operations *words, const idsi_token *tree,
+                           idsi_wordsum *sum);
+/*
+ * Bits of an integer that a sum of trees with integer coefficients is, up to sign, in any one word
+ * after multiplying out all denominators of the model. terms: log2 of the sum of the absolute
+ * values of the coefficients.
+ */
+double idsi_words_bits(const ids_model *model, uint32_t degree, double terms);
+
+/* ---- images (image.c) -------------------------------------------------------------------------
+ * How often the module of a partition occurs in the image of F(n) in a model, which is F(n) without
+ * what holds there. All S_n-maps from the image to the module are known by their values on
+ * generators of F(n)/I(n): products of the generators of lower degrees that the partition engine
+ * has chosen. For each kind of model there is a way to draw maps at random.
+ */
+typedef struct idsi_image {
+    ids_ctx *ctx;
+    const ids_model *model;
+    idsi_partition_engine *engine; /* borrowed; all shapes below `degree` are solved */
+    uint32_t prime;
+    uint32_t degree;
+    size_t count; /* generators, their labels from left to right */
+    size_t capacity;
+    idsi_token (*trees)[2 * IDSI_SHAPE_MAX];
+    idsi_random random;
+    idsi_workspace work;
+    double error; /* probability that random choices have missed a map, of the last rank */
+    idsi_word_operations words; /* in words */
+    idsi_residues *residues;    /* in an algebra, */
+    size_t point_count;         /* and the values at points that were drawn so far */
+    size_t point_capacity;
+    uint32_t **points; /* degree! x generators x dimension residues */
+    idsi_laws *laws;   /* over a presentation: its laws, and all its maps */
+    idsi_partition_engine *base;
+} idsi_image;
+
+/* *good is false, and there is no result, when the prime divides a denominator of the model. */
+ids_status idsi_image_create(ids_ctx *ctx, const ids_model *model, idsi_partition_engine *engine,
+                             uint32_t degree, bool *good, idsi_image **image);
+void idsi_image_free(idsi_image *image);
+/* The multiplicity in the image, which is at most `bound`. */
+ids_status idsi_image_rank(idsi_image *image, const ids_partition *partition, uint32_t bound,
+                           uint32_t *rank);
+/* log2 of a bound for the norm of what a generator is in the model, as integers. */
+double idsi_image_bits(const idsi_image *image);
+/* Rank of a matrix, row-major; it is used up. */
+ids_status idsi_image_eliminate(idsi_image *image, uint32_t *rows, size_t count, size_t columns,
+                                uint32_t *rank);
+
+/* (image_words.c) */
+ids_status idsi_image_words(idsi_image *image, const idsi_skew *skew, uint32_t bound,
+                            uint32_t *rank);
+
+/* (image_algebra.c) */
+ids_status idsi_image_algebra(idsi_image *image, const idsi_skew *skew, uint32_t bound,
+                              uint32_t *rank);
+
+/* (image_over.c) Solves the other presentation; then ranks, and whether a polynomial there is 0. */
+ids_status idsi_image_over_open(ids_ctx *ctx, const ids_model *model, uint32_t prime,
+                                uint32_t degree, idsi_laws **laws, idsi_partition_engine **base);
+ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, uint32_t bound,
+                           uint32_t *rank);
+ids_status idsi_over_vanishes(ids_ctx *ctx, idsi_partition_engine *base, const idsi_poly *poly,
+                              bool *zero);
+
+#endif

@@ -1,0 +1,180 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * Files in a run folder.
+ *
+ * A file is written under a temporary name that no other process uses, synced, renamed to its own
+ * name, and the folder is synced: after that it survives a crash of the system, and before it the
+ * old file is there, if there was one. Temporary files of processes that died are swept away by
+ * whoever has the folder alone.
+ */
+#include <dirent.h>
+#include <errno.h>
+#include <fcntl.h>
+#include <stdio.h>
+#include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
+
+#include "run_private.h"
+
+#define TEMPORARY "tmp-"
+
+static ids_status fail_io(ids_ctx *ctx, const char *verb, const char *folder, const char *name)
+{
+    int error = errno;
+    char reason[128] = "";
+
+    if (strerror_r(error, reason, sizeof reason) != 0) {
+        snprintf(reason, sizeof reason, "error %d", error);
+    }
+    return idsi_fail(ctx, IDS_ERR_IO, "cannot %s \"%s%s%s\": %s", verb, folder,
+                     name != NULL ? "/" : "", name != NULL ? name : "", reason);
+}
+
+ids_status idsi_folder_open(ids_ctx *ctx, const char *folder, bool make, int *fd)
+{
+    int opened = -1;
+
+    if (make && mkdir(folder, 0777) != 0 && errno != EEXIST) {
+        return fail_io(ctx, "make the folder", folder, NULL);
+    }
+    opened = open(folder, O_RDONLY | O_DIRECTORY | O_CLOEXEC);
+    if (opened < 0) {
+        return fail_io(ctx, "open the folder", folder, NULL);
+    }
+    *fd = opened;
+    return IDS_OK;
+}
+
+/* ---- reading ----------------------------------------------------------------------------- */
+
+/* All of an open file, with a NUL after it. */
+static ids_status read_all(ids_ctx *ctx, int file, char **bytes, size_t *length)
+{
+    ids_status st = IDS_OK;
+    idsi_text text;
+    char piece[4096];
+
+    idsi_text_init(&text, ctx);
+    for (;;) {
+        ssize_t got = read(file, piece, sizeof piece);
+        if (got < 0 && errno == EINTR) {
+            continue;
+        }
+        if (got < 0) {
+            st = IDS_ERR_IO;
+            goto done;
+        }
+        if (got == 0) {
+            break;
+        }
+        IDSI_TRY(idsi_text_append(&text, piece, (size_t)got));
+        if (text.length > IDSI_FILE_MAX) {
+            break; /* too long to be ours: the checksum will not fit */
+        }
+    }
+    *length = text.length;
+    IDSI_TRY(idsi_text_take(&text, bytes));
+done:
+    idsi_text_clear(&text);
+    return st;
+}
+
+ids_status idsi_folder_read(ids_ctx *ctx, const idsi_folder *folder, const char *name,
+                            char **bytes, size_t *length)
+{
+    ids_status st = IDS_OK;
+    int file = openat(folder->fd, name, O_RDONLY | O_CLOEXEC);
+
+    *bytes = NULL;
+    *length = 0;
+    if (file < 0 && errno == ENOENT) {
+        return IDS_OK;
+    }
+    if (file < 0) {
+        return fail_io(ctx, "read", folder->path, name);
+    }
+    st = read_all(ctx, file, bytes, length);
+    if (st == IDS_ERR_IO) {
+        fail_io(ctx, "read", folder->path, name);
+    }
+    close(file);
+    return st;
+}
+
+/* ---- writing ----------------------------------------------------------------------------- */
+
+static bool write_all(int file, const char *bytes, size_t length)
+{
+    while (length > 0) {
+        ssize_t put = write(file, bytes, length);
+        if (put < 0 && errno != EINTR) {
+            return false;
+        }
+        if (put > 0) {
+            bytes += put;
+            length -= (size_t)put;
+        }
+    }
+    return fsync(file) == 0;
+}
+
+ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char *name,
+                             const char *bytes, size_t length)
+{
+    ids_status st = IDS_OK;
+    char temporary[2 * IDS_RUN_NAME + 32] = "";
+    char host[IDS_RUN_NAME] = "";
+    int file = -1;
+
+    idsi_host(host);
+    snprintf(temporary, sizeof temporary, TEMPORARY "%s-%d", host, (int)getpid());
+    file = openat(folder->fd, temporary, O_WRONLY | O_CREAT | O_TRUNC | O_CLOEXEC, 0666);
+    if (file < 0) {
+        return fail_io(ctx, "write", folder->path, name);
+    }
+    bool written = write_all(file, bytes, length);
+    int error = errno;
+    if (close(file) != 0 && written) {
+        error = errno;
+        written = false;
+    }
+    if (written && renameat(folder->fd, temporary, folder->fd, name) != 0) {
+        error = errno;
+        written = false;
+    }
+    if (!written) {
+        unlinkat(folder->fd, temporary, 0);
+        errno = error;
+        return fail_io(ctx, "write", folder->path, name);
+    }
+    if (fsync(folder->fd) != 0 && errno != EINVAL) {
+        st = fail_io(ctx, "write", folder->path, name);
+    }
+    return st;
+}
+
+void idsi_folder_remove(const idsi_folder *folder, const char *name)
+{
+    (void)unlinkat(folder->fd, name, 0);
+}
+
+/* Best effort: what cannot be listed or removed does no harm. */
+void idsi_folder_sweep(const idsi_folder *folder)
+{
+    int copy = openat(folder->fd, ".", O_RDONLY | O_DIRECTORY | O_CLOEXEC);
+    DIR *directory = copy >= 0 ? fdopendir(copy) : NULL;
+
+    if (directory == NULL) {
+        if (copy >= 0) {
+            close(copy);
+        }
+        return;
+    }
+    for (struct dirent *entry = readdir(directory); entry != NULL; entry = readdir(directory)) {
+        if (strncmp(entry->d_name, TEMPORARY, sizeof TEMPORARY - 1) == 0) {
+            idsi_folder_remove(folder, entry->d_name);
+        }
+    }
+    closedir(directory);
+}

@@ -1,0 +1,73 @@
+#!/bin/bash
+# SPDX-License-Identifier: BSD-2-Clause
+#
+# fresh. Answers from outside:
+#   special Jordan, degree 8     Glennie 1966: one module, of weight 3+3+2
+#   octonions, degree 5          Racine 1988, dimensions recomputed
+#   symmetrised pre-Lie          Bergeron, Loday, Proc. AMS 139 (2011): nothing
+here=$(dirname "$(readlink -f "$0")")
+# shellcheck source=tests/cli/common.sh
+. "$here/common.sh"
+
+python=$(command -v python3 || true)
+models=$source_dir/data/models
+
+# ---- tables ------------------------------------------------------------------------------
+
+run 0 fresh "$models/special-jordan.pres" --model special --degree 8 --table --format csv
+is_empty err
+[ "$(head -n 1 out)" = "degree,partition,dimension,free,holding,consequences,fresh,certainty" ] ||
+    complain "$last: $(head -n 1 out)"
+[ "$(grep -v ,0,exact out | tail -n +2 | cut -d , -f 1-7 | paste -s -d ' ')" = \
+    "8,3+3+2,42,147,129,128,1 8,total,,135135,116088,116046,42" ] || complain "$last: $(cat out)"
+tail -n +2 out | cut -d , -f 8 | grep -qvE '^(exact|2\^-[0-9]+)$' && complain "$last: $(cat out)"
+run 0 fresh "$models/special-jordan.pres" --model special --degrees 1..7 --table
+has out "Nothing new holds in special."
+lacks out "2^-"
+run 0 fresh "$models/octonions.pres" --model octonions --degree 5 --table --format json
+has out '"partition": "1+1+1+1+1"'
+[ -z "$python" ] || "$python" -m json.tool <out >json || complain "$last: not JSON"
+run 0 fresh "$models/octonions.pres" --model octonions --degree 5 --table --format latex
+has out '\toprule'
+run 0 fresh "$models/octonions.pres" --model octonions --degree 5 --table
+has out "Degree 5: new in octonions are 3+2, 3+1+1, 2+2+1, 2+1+1+1 (2 times), 1+1+1+1+1."
+run 0 fresh "$models/symmetrised-pre-lie.pres" --model symmetrised --degrees 2..4 --table
+has out "Nothing new holds in symmetrised."
+
+# ---- mistakes ----------------------------------------------------------------------------
+
+run 2 fresh "$models/octonions.pres" --degree 5
+has err '"fresh" wants a model'
+run 2 fresh "$models/octonions.pres" --model octonions
+has err '"fresh" wants a degree'
+run 2 fresh "$models/octonions.pres" --model octonion --degree 3
+has err 'did you mean "octonions"?'
+run 2 fresh jordan.pres --model special --degree 3
+has err 'write one as "model NAME associative: ..."'
+printf 'operation a*b\nmodel m algebra "nowhere.alg"\n' >nowhere.pres
+run 2 fresh nowhere.pres --model m --degree 3
+has err 'cannot read "nowhere.alg", which the model names'
+printf 'operation a*b\nidentity flat: (a*b)*c = a*(b*c)\nmodel m associative: a*b = a b - b a\n' \
+    >wrong.pres
+run 2 fresh wrong.pres --model m --degree 3
+has err 'the identity flat of line 2 does not hold in the model m'
+mkdir other
+printf 'operation a.b\nidentity a.b - b.a\n' >other/base.pres
+printf 'operation a*b commutative\nmodel m over "base.pres": a*b = a.b\n' >other/good.pres
+run 0 fresh other/good.pres --model m --degree 3 --table
+has out "Nothing new"
+printf 'operation a*b alternating\nmodel m over "base.pres": a*b = a.b\n' >other/odd.pres
+run 2 fresh other/odd.pres --model m --degree 3
+has err 'does not have the symmetry'
+printf 'operation a*b\nmodel m over "base.pres": a*b = a.b + [a,b]\n' >other/unknown.pres
+run 2 fresh other/unknown.pres --model m --degree 3
+has err 'model m:2:39: unknown operation []'
+printf 'operation a*b\nmodel m over "base.pres": a*b = a.a\n' >other/twice.pres
+run 2 fresh other/twice.pres --model m --degree 3
+has err 'each of the 2 arguments of the operation must stand once'
+printf 'operation [a,b]\nmodel m algebra "%s"\n' "$source_dir/data/algebras/octonions.alg" \
+    >fence.pres
+run 2 fresh fence.pres --model m --degree 3
+has err '[a,b]'
+
+finish

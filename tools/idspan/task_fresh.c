@@ -1,0 +1,278 @@
+/* SPDX-License-Identifier: BSD-2-Clause */
+/*
+ * idspan fresh: identities of a model that the presentation does not imply.
+ *
+ * The library asks for the file that a model names through a function; here it is opened, relative
+ * to the folder of the presentation.
+ */
+#include <errno.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "tool.h"
+
+/* The limit of ids_fresh_create(). */
+#define MOST_DEGREE 16u
+
+enum { DEGREE, PARTITION, DIMENSION, FREE, HOLDING, CONSEQUENCES, FRESH, CERTAINTY, COLUMNS };
+
+/* ---- the model ----------------------------------------------------------------------- */
+
+static ids_status find_model(session *s, size_t *index)
+{
+    const size_t count = ids_presentation_model_count(s->pres);
+    const char *names[64] = {0};
+    const char *near = NULL;
+
+    for (size_t i = 0; i < count; i++) {
+        ids_model_info info = {0};
+        ids_status st = ids_presentation_model(s->pres, i, &info);
+        if (st != IDS_OK) {
+            return st;
+        }
+        if (strcmp(info.name, s->set->model) == 0) {
+            *index = i;
+            return IDS_OK;
+        }
+        if (i < 63) {
+            names[i] = info.name;
+        }
+    }
+    near = help_nearest(s->set->model, names);
+    if (near != NULL) {
+        return session_fail(s, IDS_ERR_ARG, "%s has no model \"%s\"; did you mean \"%s\"?",
+                            session_source(s), s->set->model, near);
+    }
+    return session_fail(s, IDS_ERR_ARG, "%s has no model \"%s\"; it has %zu%s", session_source(s),
+                        s->set->model, count,
+                        count == 0 ? ": write one as \"model NAME associative: ...\"" : " others");
+}
+
+/* Path of a file that is named in the presentation; the caller frees it. */
+static char *path_of(const session *s, const char *name)
+{
+    const char *slash = strcmp(s->set->file, "-") == 0 ? NULL : strrchr(s->set->file, '/');
+    size_t folder = slash == NULL || name[0] == '/' ? 0 : (size_t)(slash + 1 - s->set->file);
+    char *path = malloc(folder + strlen(name) + 1);
+
+    if (path != NULL) {
+        memcpy(path, s->set->file, folder);
+        strcpy(path + folder, name);
+    }
+    return path;
+}
+
+/* An ids_load_fn; a message of its own explains what went wrong. */
+static int load(void *user, const char *name, ids_sink_fn sink, void *sink_user)
+{
+    session *s = user;
+    char *path = path_of(s, name);
+    FILE *file = path == NULL ? NULL : fopen(path, "rb");
+    char bytes[4096];
+    size_t got = 0;
+    int result = 0;
+
+    if (file == NULL) {
+        session_fail(s, IDS_ERR_IO, "cannot read \"%s\", which the model names: %s",
+                     path == NULL ? name : path, strerror(errno));
+        free(path);
+        return -1;
+    }
+    while (result == 0 && (got = fread(bytes, 1, sizeof bytes, file)) > 0) {
+        result = sink(sink_user, bytes, got);
+    }
+    if (ferror(file)) {
+        session_fail(s, IDS_ERR_IO, "cannot read \"%s\": %s", path, strerror(errno));
+        result = -1;
+    }
+    fclose(file);
+    free(path);
+    return result;
+}
+
+/* ---- the table ----------------------------------------------------------------------- */
+
+static ids_status write_row(session *s, const ids_fresh_row *row, ids_writer *writer)
+{
+    ids_status st = IDS_OK;
+    digits numbers[COLUMNS] = {{{0}}};
+    char certainty[24] = "exact";
+    char *partition = NULL;
+    const char *cells[COLUMNS] = {0};
+
+    if (row->certainty == IDS_CERTAINTY_MODULAR) {
+        snprintf(certainty, sizeof certainty, "2^-%u", (unsigned)row->bits);
+    }
+    numbers[DEGREE] = digits_of(row->degree);
+    numbers[FREE] = digits_of(row->free);
+    numbers[HOLDING] = digits_of(row->holding);
+    numbers[CONSEQUENCES] = digits_of(row->consequences);
+    numbers[FRESH] = digits_of(row->fresh);
+    if (!row->total) {
+        numbers[DIMENSION] = digits_of(row->dimension);
+        TRY(ids_partition_print(s->ctx, &row->partition, &partition));
+    }
+    for (size_t i = 0; i < COLUMNS; i++) {
+        cells[i] = numbers[i].text;
+    }
+    cells[PARTITION] = row->total ? "total" : partition;
+    cells[CERTAINTY] = certainty;
+    TRY(ids_writer_row(writer, cells));
+done:
+    ids_string_free(s->ctx, partition);
+    return st;
+}
+
+static ids_status write_table(session *s, const ids_fresh *fresh)
+{
+    static const ids_column columns[COLUMNS] = {
+        [DEGREE] = {"degree", IDS_COLUMN_NUMBER, 0},
+        [PARTITION] = {"partition", IDS_COLUMN_MATH, 0},
+        [DIMENSION] = {"dimension", IDS_COLUMN_NUMBER, 0},
+        [FREE] = {"free", IDS_COLUMN_NUMBER, 0},
+        [HOLDING] = {"holding", IDS_COLUMN_NUMBER, 0},
+        [CONSEQUENCES] = {"consequences", IDS_COLUMN_NUMBER, 0},
+        [FRESH] = {"fresh", IDS_COLUMN_NUMBER, 0},
+        [CERTAINTY] = {"certainty", IDS_COLUMN_MATH, 0},
+    };
+    ids_status st = IDS_OK;
+    ids_writer *writer = NULL;
+    char primes[PRIMES_CHARS] = "";
+
+    TRY(ids_writer_create(s->ctx, s->set->format, "fresh", columns, COLUMNS, output_sink, &s->out,
+                          &writer));
+    for (size_t i = 0; i < ids_fresh_count(fresh); i++) {
+        ids_fresh_row row = {0};
+        TRY(ids_fresh_row_get(fresh, i, &row));
+        TRY(write_row(s, &row, writer));
+    }
+    for (size_t i = 0; i < ids_fresh_prime_count(fresh); i++) {
+        primes_append(primes, ids_fresh_prime(fresh, i));
+    }
+    TRY(ids_writer_note(writer, "primes", primes));
+    TRY(ids_writer_note(writer, "seed", digits_of(s->set->seed).text));
+    TRY(ids_writer_end(writer));
+done:
+    ids_writer_free(writer);
+    return st;
+}
+
+/* ---- the verdict --------------------------------------------------------------------- */
+
+/* The partitions of one degree in which something is new; none: nothing is written. */
+static ids_status write_degree(session *s, const ids_fresh *fresh, uint32_t degree, bool *any)
+{
+    ids_status st = IDS_OK;
+    char *partition = NULL;
+    bool first = true;
+
+    for (size_t i = 0; i < ids_fresh_count(fresh); i++) {
+        ids_fresh_row row = {0};
+        TRY(ids_fresh_row_get(fresh, i, &row));
+        if (row.total || row.fresh == 0 || row.degree != degree) {
+            continue;
+        }
+        TRY(ids_partition_print(s->ctx, &row.partition, &partition));
+        if (first) {
+            TRY(output_printf(&s->out, "%sDegree %u: new in %s are", *any ? "" : "\n",
+                              (unsigned)degree, s->set->model));
+        }
+        TRY(output_printf(&s->out, "%s %s", first ? "" : ",", partition));
+        if (row.fresh > 1) {
+            TRY(output_printf(&s->out, " (%s times)", digits_of(row.fresh).text));
+        }
+        ids_string_free(s->ctx, partition);
+        partition = NULL;
+        first = false;
+        *any = true;
+    }
+    if (!first) {
+        TRY(output_printf(&s->out, ".\n"));
+    }
+done:
+    ids_string_free(s->ctx, partition);
+    return st;
+}
+
+static ids_status write_verdict(session *s, const ids_fresh *fresh)
+{
+    ids_status st = IDS_OK;
+    bool any = false;
+
+    for (uint32_t d = s->set->first_degree; d <= s->set->last_degree; d++) {
+        TRY(write_degree(s, fresh, d, &any));
+    }
+    if (!any && ids_fresh_count(fresh) > 0) {
+        TRY(output_printf(&s->out, "\nNothing new holds in %s.\n", s->set->model));
+    }
+done:
+    return st;
+}
+
+/* ---- the task ------------------------------------------------------------------------ */
+
+static ids_status run(session *s)
+{
+    ids_status st = IDS_OK;
+    ids_fresh_options options = {
+        .struct_size = sizeof options, .primes = s->set->primes, .seed = s->set->seed};
+    ids_model *model = NULL;
+    ids_fresh *fresh = NULL;
+    ids_status computed = IDS_OK;
+    size_t index = 0;
+
+    TRY(find_model(s, &index));
+    TRY(ids_model_open(s->ctx, s->pres, index, load, s, &model));
+    computed = ids_fresh_create(s->ctx, model, s->set->first_degree, s->set->last_degree, &options,
+                                &fresh);
+    if (fresh == NULL) {
+        st = computed;
+        goto done;
+    }
+    if (computed != IDS_OK) {
+        session_fail(s, computed, "%s", ids_ctx_message(s->ctx));
+    }
+    TRY(write_table(s, fresh));
+    if (s->set->format == IDS_FORMAT_TEXT) {
+        TRY(write_verdict(s, fresh));
+    }
+    st = computed;
+done:
+    ids_fresh_free(fresh);
+    ids_model_free(model);
+    return st;
+}
+
+static bool check(settings *read)
+{
+    if (read->model == NULL) {
+        complain("\"fresh\" wants a model:\n        idspan fresh %s%s", read->file,
+                 task_fresh.usage);
+        return false;
+    }
+    return true;
+}
+
+const task task_fresh = {
+    .name = "fresh",
+    .usage = " --model NAME --degree N | --degrees A..B [--table]\n"
+             "          [--primes K] [--seed S]",
+    .summary = "find identities of a model that the presentation does not imply",
+    .details =
+        "A model is made by `model NAME ...` statements of the file. For each partition, what "
+        "holds\n"
+        "in the model is compared with what follows from the identities of the file, which must\n"
+        "hold there.\n"
+        "\n"
+        "`free`, `holding`, `consequences` and `fresh` are multiplicities of irreducible modules,\n"
+        "in the row `total` dimensions; `fresh` is holding - consequences. Where it is 0 that is\n"
+        "exact, elsewhere `certainty` bounds the probability that it is wrong.\n"
+        "Columns: degree,partition,dimension,free,holding,consequences,fresh,certainty",
+    .examples = "  idspan fresh jordan.pres --model special --degree 8",
+    .options = BIT(OPTION_MODEL) | BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_TABLE) |
+               BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
+    .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
+    .most_degree = MOST_DEGREE,
+    .check = check,
+    .run = run,
+};
