@@ -48,7 +48,7 @@ const char idsi_page_style[] =
     "html{-webkit-text-size-adjust:100%;scroll-padding-top:1rem}\n"
     "body{margin:0;background:var(--paper);color:var(--ink);font:16px/1.5 system-ui,"
     "-apple-system,'Segoe UI','DejaVu Sans',Helvetica,Arial,sans-serif}\n"
-    "header,nav,main,footer{max-width:47rem;margin:0 auto;padding:0 1.25rem}\n"
+    "header,nav,main,footer{max-width:50rem;margin:0 auto;padding:0 1.25rem}\n"
     "header{padding-top:2.5rem}\n"
     "h1{font-size:1.75rem;line-height:1.2;margin:0;overflow-wrap:anywhere}\n"
     "h2{font-size:1.25rem;line-height:1.3;margin:3rem 0 .75rem;padding-top:.75rem;"
