@@ -19,6 +19,7 @@ fi
 sbatch_file=$source_dir/tools/slurm/rank-table.sbatch
 tasks=6
 killed=2
+stamp=
 
 # wait_for SECONDS COMMAND...: until the command succeeds; complains when it does not.
 wait_for() {
@@ -93,7 +94,7 @@ sbatch --parsable --wait --array=3-7:2 --mem=0 "$sbatch_file" run one >id ||
     complain "tasks without cells fail"
 has rank-table-"$(cat id)"_3.log "2.2 on"
 has rank-table-"$(cat id)"_7.log "more tasks than cells"
-if sbatch --wait --array=1 --mem=0 --output=wrong.log "$sbatch_file" run; then
+if sbatch --parsable --wait --array=1 --mem=0 --output=wrong.log "$sbatch_file" run >/dev/null; then
     complain "a missing argument is no failure"
 fi
 has wrong.log "usage:"

@@ -112,7 +112,8 @@ static ids_status note_question(const ids_run *run, const ids_run_info *info, id
 
     TRY(ids_report_note(report, "presentation", info->source));
     TRY(ids_report_note(report, "digest of its operations and identities", info->digest));
-    TRY(ids_report_note(report, "computed by", info->version));
+    snprintf(text, sizeof text, "idspan %s", info->version);
+    TRY(ids_report_note(report, "computed by", text));
     TRY(ids_report_note(report, "libraries", info->libraries));
     snprintf(text, sizeof text, "%u to %u, %s", (unsigned)info->options.from,
              (unsigned)info->options.to,
@@ -120,7 +121,7 @@ static ids_status note_question(const ids_run *run, const ids_run_info *info, id
     TRY(ids_report_note(report, "degrees", text));
     if (info->options.field > 0) {
         TRY(ids_report_note(report, "field", digits_of(info->options.field).text));
-        return IDS_OK;
+        return info->weakened ? ids_report_note(report, "warning", WEAKENED_WARNING) : IDS_OK;
     }
     text[0] = '\0';
     for (size_t i = 0; i < ids_run_prime_count(run); i++) {
