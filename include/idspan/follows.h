@@ -311,9 +311,9 @@ typedef struct ids_counterexample ids_counterexample;
  * Looks for a counterexample of small dimension with small structure constants.
  *
  * A candidate that does not follow fails in a nilpotent algebra; such algebras are made of
- * functionals as in ids_witness_find(), then smaller algebras are searched constant by constant. The
- * smallest that was found is returned; there can be smaller ones. It has been tested exactly, as
- * by ids_algebra_holds(). The same options give the same algebra, whatever the machine.
+ * functionals as in ids_witness_find(), then smaller algebras are searched constant by constant.
+ * The smallest that was found is returned; there can be smaller ones. It has been tested exactly,
+ * as by ids_algebra_holds(). The same options give the same algebra, whatever the machine.
  * @param presentation    kept: must outlive the counterexample.
  * @param index           of the candidate.
  * @param options         borrowed; NULL for the defaults.
@@ -332,7 +332,7 @@ IDS_API IDS_MUST_USE ids_status ids_counterexample_find(ids_ctx *ctx,
 /** Frees a counterexample; NULL is fine. Since: 0.1 */
 IDS_API void ids_counterexample_free(ids_counterexample *counterexample);
 
-/** The algebra, borrowed; its operations are those of the presentation. NULL for NULL. Since: 0.1 */
+/** The algebra, borrowed; it has the operations of the presentation. NULL for NULL. Since: 0.1 */
 IDS_API const ids_algebra *ids_counterexample_algebra(const ids_counterexample *counterexample);
 
 /**
@@ -348,9 +348,10 @@ IDS_API IDS_MUST_USE ids_status ids_counterexample_value(const ids_counterexampl
                                                          size_t capacity);
 
 /**
- * Writes a counterexample as an algebra file that ids_algebra_read() reads. Comments before the table
- * say what it shows, so that ids_certificate_check() can verify it. @return as
- * ids_derivation_write(). Since: 0.1
+ * Writes a counterexample as an algebra file that ids_algebra_read() reads. Comments before the
+ * table say what it shows, so that ids_certificate_check() can verify it.
+ *
+ * @return as ids_derivation_write(). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_counterexample_write(ids_ctx *ctx,
                                                          const ids_counterexample *counterexample,

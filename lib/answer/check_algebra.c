@@ -4,9 +4,9 @@
  *
  * The table is read by the reader of algebra files, and used through the public calls only. A tree
  * is evaluated as it stands: vectors for its arguments, then all constants of the operation. The
- * complete linearisation of every identity is tried on all tuples of basis elements; where the first
- * elements of a tuple make a subtree of every term 0, the tuples that begin with them need no
- * further look. The candidate, as written, is evaluated at the values that the file gives.
+ * complete linearisation of every identity is tried on all tuples of basis elements; where the
+ * first elements of a tuple make a subtree of every term 0, the tuples that begin with them need
+ * no further look. The candidate, as written, is evaluated at the values that the file gives.
  */
 #include <string.h>
 

@@ -50,7 +50,7 @@ ids_status idsi_hunt_offer(idsi_hunt *hunt, ids_algebra *algebra, int64_t *value
 ids_status idsi_hunt_is_zero(const idsi_hunt *hunt, const idsi_residues *residues,
                              const idsi_poly *poly, const int64_t *values, bool *zero);
 
-/* (counterexample_graded.c) Nilpotent algebras, from functionals that vanish on all consequences. */
+/* (counterexample_graded.c) Nilpotent algebras from functionals that vanish on all consequences. */
 ids_status idsi_hunt_graded(idsi_hunt *hunt);
 /*
  * (counterexample_quotient.c) The algebra that a functional on the monomials of a component, mod

@@ -11,11 +11,11 @@
  * same construction makes a Frobenius algebra of a form in the commutative associative case
  * (F. S. Macaulay's inverse systems).
  *
- * Content by content, an element is known by its row: the values w(C[u]). Products of basis elements
- * of smaller contents span; their rows are eliminated, and those that are independent become
- * basis elements. Then each basis element is scaled by the content of what it occurs with, so that
- * the constants are integers. All of this is mod a prime, with coefficients lifted to fractions:
- * whether the result is right is tested later.
+ * Content by content, an element is known by its row: the values w(C[u]). Products of basis
+ * elements of smaller contents span; their rows are eliminated, and those that are independent
+ * become basis elements. Then each basis element is scaled by the content of what it occurs with,
+ * so that the constants are integers. All of this is mod a prime, with coefficients lifted to
+ * fractions: whether the result is right is tested later.
  */
 #include <stdlib.h>
 #include <string.h>

@@ -51,6 +51,10 @@ typedef enum option_id {
     OPTION_MODEL,
     OPTION_TABLE,
     OPTION_SAVE,
+    OPTION_ALGEBRA,
+    OPTION_DIMENSION,
+    OPTION_ENTRIES,
+    OPTION_STEPS,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -101,6 +105,10 @@ typedef struct settings {
     const char *witness;        /* value of --witness, NULL: none */
     const char *model;          /* value of --model, NULL: none */
     const char *save;           /* value of --save, NULL: none */
+    const char *algebra;        /* value of --algebra, NULL: none */
+    uint32_t dimension;         /* of --algebra; 0: the default */
+    uint64_t entries;           /* likewise */
+    uint64_t steps;             /* likewise */
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
