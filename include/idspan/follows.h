@@ -314,14 +314,26 @@ typedef struct ids_counterexample ids_counterexample;
  * functionals as in ids_witness_find(), then smaller algebras are searched constant by constant.
  * The smallest that was found is returned; there can be smaller ones. It has been tested exactly,
  * as by ids_algebra_holds(). The same options give the same algebra, whatever the machine.
+ *
+ * @param ctx             borrowed now, kept.
  * @param presentation    kept: must outlive the counterexample.
- * @param index           of the candidate.
+ * @param index           0 .. ids_presentation_count(presentation, IDS_ROLE_CANDIDATE)-1.
  * @param options         borrowed; NULL for the defaults.
  * @param counterexample  out, owned: ids_counterexample_free(); written only on IDS_OK.
- * @return IDS_OK; IDS_ERR_LIMIT (none was found within the limits, perhaps because the candidate
- *         follows; or the byte budget); IDS_ERR_DOMAIN (the candidate is 0); IDS_ERR_ARG (NULL,
- *         index, struct_size, dimension over IDS_MAX_DIMENSION); IDS_ERR_NOMEM; IDS_ERR_CANCELLED
- * Cost: the steps; at least a list of all consequences in the candidate's variables. Since: 0.1
+ * @return IDS_OK
+ *         IDS_ERR_LIMIT      none was found within the limits, perhaps because the candidate
+ *                            follows; byte budget
+ *         IDS_ERR_DOMAIN     the candidate is 0
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size, dimension over
+ *                            IDS_MAX_DIMENSION
+ *         IDS_ERR_UNABLE     a coefficient of the candidate has the denominator 2^30 - 35
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: the steps; at least a list of all consequences in the candidate's variables.
+ * Threads: one a ctx. Cancel: polled.
+ * Border: GMP and FLINT (coefficients of the identities and of trial algebras).
+ * Source: the largest ideal in the kernel of a functional, as in F. S. Macaulay's inverse systems;
+ * backtracking with watched conditions. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_counterexample_find(ids_ctx *ctx,
                                                         const ids_presentation *presentation,
@@ -329,36 +341,76 @@ IDS_API IDS_MUST_USE ids_status ids_counterexample_find(ids_ctx *ctx,
                                                         const ids_counterexample_options *options,
                                                         ids_counterexample **counterexample);
 
-/** Frees a counterexample; NULL is fine. Since: 0.1 */
+/**
+ * Frees a counterexample.
+ *
+ * @param counterexample  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use it any more.
+ * Since: 0.1
+ */
 IDS_API void ids_counterexample_free(ids_counterexample *counterexample);
 
-/** The algebra, borrowed; it has the operations of the presentation. NULL for NULL. Since: 0.1 */
+/**
+ * The algebra of a counterexample. It has the operations of the presentation.
+ *
+ * @param counterexample  borrowed; NULL gives NULL.
+ * @return borrowed: lives as long as the counterexample.
+ * Cost: constant. Threads: any. Since: 0.1
+ */
 IDS_API const ids_algebra *ids_counterexample_algebra(const ids_counterexample *counterexample);
 
 /**
  * Coordinates of the value of a variable of the candidate, which are integers.
  *
- * @param variable     from 0, in the order of the names of the candidate's variables.
- * @param coordinates  out: as many as the dimension.
- * @param capacity     entries that fit.
- * @return IDS_OK, IDS_ERR_ARG (NULL, no such variable, capacity too small). Since: 0.1
+ * @param counterexample  borrowed.
+ * @param variable        from 0, in the order of the names of the candidate's variables.
+ * @param coordinates     out: as many as the dimension.
+ * @param capacity        entries that fit.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, no such variable, capacity too small
+ * Cost: the dimension. Threads: any. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_counterexample_value(const ids_counterexample *counterexample,
                                                          uint32_t variable, int64_t *coordinates,
                                                          size_t capacity);
 
 /**
- * Writes a counterexample as an algebra file that ids_algebra_read() reads. Comments before the
- * table say what it shows, so that ids_certificate_check() can verify it.
+ * Writes a counterexample as an algebra file that ids_algebra_read() reads.
  *
- * @return as ids_derivation_write(). Since: 0.1
+ * Comments before the table say what it shows, so that ids_certificate_check() can verify it.
+ *
+ * @param ctx             borrowed.
+ * @param counterexample  borrowed.
+ * @param sink            borrowed: receives the text.
+ * @param sink_user       borrowed: passed to sink; may be NULL.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: linear in the text. Threads: one a ctx. Cancel: not polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_counterexample_write(ids_ctx *ctx,
                                                          const ids_counterexample *counterexample,
                                                          ids_sink_fn sink, void *sink_user);
 
-/** Writes the multiplication table as a LaTeX formula; no package is needed. @return as
- * ids_derivation_write(). Since: 0.1 */
+/**
+ * Writes the multiplication table of a counterexample as LaTeX, to be read with \input into a
+ * document. No package is needed.
+ *
+ * @param ctx             borrowed.
+ * @param counterexample  borrowed.
+ * @param sink            borrowed: receives the text.
+ * @param sink_user       borrowed: passed to sink; may be NULL.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: linear in the text. Threads: one a ctx. Cancel: not polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
+ */
 IDS_API IDS_MUST_USE ids_status ids_counterexample_latex(ids_ctx *ctx,
                                                          const ids_counterexample *counterexample,
                                                          ids_sink_fn sink, void *sink_user);
