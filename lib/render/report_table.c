@@ -4,6 +4,7 @@
  * without numbers says why in their place.
  */
 #include <inttypes.h>
+#include <string.h>
 
 #include "report_private.h"
 
@@ -201,15 +202,29 @@ done:
 
 /* ---- what is not done -------------------------------------------------------------------- */
 
-static bool has_reason(const idsi_report_row *row)
+/* Whether two rows are not done in the same way, with the same words about it. */
+static bool is_alike(const idsi_report_row *a, const idsi_report_row *b)
 {
-    return row->given.reason != NULL && row->given.reason[0] != '\0';
+    const char *reason = a->given.reason != NULL ? a->given.reason : "";
+    const char *other = b->given.reason != NULL ? b->given.reason : "";
+
+    return a->given.state == b->given.state && strcmp(reason, other) == 0;
 }
 
-/* Missing, and there is nothing to say about it. */
-static bool is_plainly_missing(const idsi_report_row *row)
+/* Rows from the first on that are like row `index`; 0 unless that is the first of its kind. */
+static size_t count_alike(const idsi_report_row *rows, size_t count, size_t index)
 {
-    return row->given.state == IDS_REPORT_MISSING && !has_reason(row);
+    size_t alike = 0;
+
+    for (size_t i = 0; i < count; i++) {
+        if (is_alike(&rows[i], &rows[index])) {
+            if (i < index) {
+                return 0;
+            }
+            alike++;
+        }
+    }
+    return alike;
 }
 
 static ids_status put_gap_row(idsi_text *out, const idsi_report_row *row, size_t alike)
@@ -236,26 +251,19 @@ done:
     return st;
 }
 
-/* One row each for what failed or is damaged, one for all others that are missing. The total of a
- * degree that is split is no cell of its own. */
+/* One row for all partitions of which the same is to be said. The total of a degree that is split
+ * is no cell of its own. */
 static ids_status put_degree_gaps(idsi_text *out, const idsi_degree *degree)
 {
     ids_status st = IDS_OK;
     size_t count = degree->partitions > 0 ? degree->partitions : 1;
-    const idsi_report_row *last = NULL;
-    size_t missing = 0;
 
     for (size_t i = 0; i < count; i++) {
         const idsi_report_row *row = &degree->rows[i];
-        if (is_plainly_missing(row)) {
-            missing++;
-            last = row;
-        } else if (!idsi_report_is_done(row)) {
-            IDSI_TRY(put_gap_row(out, row, 1));
+        size_t alike = idsi_report_is_done(row) ? 0 : count_alike(degree->rows, count, i);
+        if (alike > 0) {
+            IDSI_TRY(put_gap_row(out, row, alike));
         }
-    }
-    if (last != NULL) {
-        IDSI_TRY(put_gap_row(out, last, missing));
     }
 done:
     return st;

@@ -39,7 +39,7 @@ START_TEST(gaps_are_named)
 }
 END_TEST
 
-/* Many cells that are simply not there yet are counted, one of them is named. */
+/* Cells of which there is nothing new to say are counted, one that is different is named. */
 START_TEST(long_gaps_are_counted)
 {
     page p = open_page("gaps");
@@ -61,6 +61,17 @@ START_TEST(long_gaps_are_counted)
     ck_assert_ptr_nonnull(strstr(p.text, "<td>4+1</td><td>not yet computed</td><td class=\"w\">"
                                          "its checksum is wrong</td>"));
     ck_assert_ptr_nonnull(strstr(p.text, "0 of 7 cells are computed (<a"));
+    for (uint64_t i = 0; i < ids_partition_count(4); i++) {
+        ids_report_row row = {
+            .struct_size = sizeof row, .state = IDS_REPORT_FAILED, .reason = "no memory"};
+        row.numbers.degree = 4;
+        TEST_OK(p.ctx, ids_partition_unrank(4, i, &row.numbers.partition));
+        TEST_OK(p.ctx, ids_report_add(p.report, &row));
+    }
+    write_page(&p, IDS_REPORT_HTML);
+    ck_assert_ptr_nonnull(strstr(p.text, "<td class=\"n\">4</td><td>5 partitions</td>"
+                                         "<td>failed</td><td class=\"w\">no memory</td>"));
+    ck_assert_ptr_nonnull(strstr(p.text, "0 of 12 cells are computed, 5 failed (<a"));
     close_page(&p);
 }
 END_TEST
