@@ -2,11 +2,12 @@
 /**
  * @file follows.h
  * Whether a candidate follows from the identities of a presentation; derivations that prove it,
- * witnesses that refute it, and the checker of both.
+ * witnesses and counterexample algebras that refute it, and the checker of all of them.
  */
 #ifndef IDSPAN_FOLLOWS_H
 #define IDSPAN_FOLLOWS_H
 
+#include <idspan/algebra.h>
 #include <idspan/answer.h>
 
 #ifdef __cplusplus
@@ -289,25 +290,157 @@ IDS_API size_t ids_witness_count(const ids_witness *witness);
 IDS_API IDS_MUST_USE ids_status ids_witness_write(ids_ctx *ctx, const ids_witness *witness,
                                                   ids_sink_fn sink, void *sink_user);
 
+/* ---- counterexamples ------------------------------------------------------------------------- */
+
+/** Limits of a search; set struct_size, the rest to 0 for the defaults. */
+typedef struct ids_counterexample_options {
+    size_t struct_size; /**< sizeof(ids_counterexample_options) */
+    uint32_t dimension; /**< largest dimension; 0: 30 */
+    uint64_t entries;   /**< largest numerator and denominator of a structure constant; 0: 100 */
+    uint64_t steps;     /**< elementary steps, some millions a second; 0: 10,000,000 */
+    uint64_t seed;      /**< of what is chosen at random */
+} ids_counterexample_options;
+
+/**
+ * A counterexample: a finite-dimensional algebra in which the identities hold and a candidate does
+ * not, with values of the candidate's variables where it is not 0. Immutable.
+ */
+typedef struct ids_counterexample ids_counterexample;
+
+/**
+ * Looks for a counterexample of small dimension with small structure constants.
+ *
+ * A candidate that does not follow fails in a nilpotent algebra; such algebras are made of
+ * functionals as in ids_witness_find(), then smaller algebras are searched constant by constant.
+ * The smallest that was found is returned; there can be smaller ones. It has been tested exactly,
+ * as by ids_algebra_holds(). The same options give the same algebra, whatever the machine.
+ *
+ * @param ctx             borrowed now, kept.
+ * @param presentation    kept: must outlive the counterexample.
+ * @param index           0 .. ids_presentation_count(presentation, IDS_ROLE_CANDIDATE)-1.
+ * @param options         borrowed; NULL for the defaults.
+ * @param counterexample  out, owned: ids_counterexample_free(); written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_LIMIT      none was found within the limits, perhaps because the candidate
+ *                            follows; byte budget
+ *         IDS_ERR_DOMAIN     the candidate is 0
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size, dimension over
+ *                            IDS_MAX_DIMENSION
+ *         IDS_ERR_UNABLE     a coefficient of the candidate has the denominator 2^30 - 35
+ *         IDS_ERR_NOMEM      the allocator refused
+ *         IDS_ERR_CANCELLED  cancelled
+ * Cost: the steps; at least a list of all consequences in the candidate's variables.
+ * Threads: one a ctx. Cancel: polled.
+ * Border: GMP and FLINT (coefficients of the identities and of trial algebras).
+ * Source: the largest ideal in the kernel of a functional, as in F. S. Macaulay's inverse systems;
+ * backtracking with watched conditions. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_counterexample_find(ids_ctx *ctx,
+                                                        const ids_presentation *presentation,
+                                                        size_t index,
+                                                        const ids_counterexample_options *options,
+                                                        ids_counterexample **counterexample);
+
+/**
+ * Frees a counterexample.
+ *
+ * @param counterexample  owned; NULL is fine.
+ * Cost: the memory goes back to the allocator. Threads: one; nobody may use it any more.
+ * Since: 0.1
+ */
+IDS_API void ids_counterexample_free(ids_counterexample *counterexample);
+
+/**
+ * The algebra of a counterexample. It has the operations of the presentation.
+ *
+ * @param counterexample  borrowed; NULL gives NULL.
+ * @return borrowed: lives as long as the counterexample.
+ * Cost: constant. Threads: any. Since: 0.1
+ */
+IDS_API const ids_algebra *ids_counterexample_algebra(const ids_counterexample *counterexample);
+
+/**
+ * Coordinates of the value of a variable of the candidate, which are integers.
+ *
+ * @param counterexample  borrowed.
+ * @param variable        from 0, in the order of the names of the candidate's variables.
+ * @param coordinates     out: as many as the dimension.
+ * @param capacity        entries that fit.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, no such variable, capacity too small
+ * Cost: the dimension. Threads: any. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_counterexample_value(const ids_counterexample *counterexample,
+                                                         uint32_t variable, int64_t *coordinates,
+                                                         size_t capacity);
+
+/**
+ * Writes a counterexample as an algebra file that ids_algebra_read() reads.
+ *
+ * Comments before the table say what it shows, so that ids_certificate_check() can verify it.
+ *
+ * @param ctx             borrowed.
+ * @param counterexample  borrowed.
+ * @param sink            borrowed: receives the text.
+ * @param sink_user       borrowed: passed to sink; may be NULL.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: linear in the text. Threads: one a ctx. Cancel: not polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_counterexample_write(ids_ctx *ctx,
+                                                         const ids_counterexample *counterexample,
+                                                         ids_sink_fn sink, void *sink_user);
+
+/**
+ * Writes the multiplication table of a counterexample as LaTeX, to be read with \input into a
+ * document. No package is needed.
+ *
+ * @param ctx             borrowed.
+ * @param counterexample  borrowed.
+ * @param sink            borrowed: receives the text.
+ * @param sink_user       borrowed: passed to sink; may be NULL.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_IO     the sink stopped
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: linear in the text. Threads: one a ctx. Cancel: not polled.
+ * Border: GMP (coefficients of the identities). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_counterexample_latex(ids_ctx *ctx,
+                                                         const ids_counterexample *counterexample,
+                                                         ids_sink_fn sink, void *sink_user);
+
 /* ---- checking -------------------------------------------------------------------------------- */
 
 /** What ids_certificate_check() has verified. */
 typedef struct ids_check_report {
-    bool follows;          /**< a derivation: the candidate follows; else a witness: it does not */
+    bool follows;          /**< a derivation: the candidate follows; else it does not */
     char claim[64];        /**< name of the candidate, "" when it has none */
     uint32_t degree;       /**< its degree */
     uint64_t identities;   /**< identities in the file */
-    uint64_t terms;        /**< terms of the derivation, values of the witness */
+    uint64_t terms;        /**< terms of the derivation, values of the witness, constants of the
+                                counterexample */
     uint64_t monomials;    /**< derivation: monomials that were added up */
     uint64_t consequences; /**< witness: consequences that it was evaluated on */
+    uint32_t dimension;    /**< counterexample: dimension of the algebra; else 0 */
+    uint64_t tuples;       /**< counterexample: tuples of basis elements for which the identities
+                                hold */
 } ids_check_report;
 
 /**
- * Checks a derivation or witness file, from the identities that the file itself contains.
+ * Checks a derivation, witness or counterexample file, from the identities that the file itself
+ * contains.
  *
  * A derivation is multiplied out and added up, exactly. A witness is evaluated on every identity
- * with all monomials for its variables in all contexts, and on the candidate. The code shares the
- * reader of presentations and the canonical form of monomials with the solvers, nothing else.
+ * with all monomials for its variables in all contexts, and on the candidate. A counterexample is
+ * multiplied out, with fractions: the complete linearisation of every identity on all tuples of
+ * basis elements, the candidate at the values that the file names. The code shares the readers of
+ * presentations and algebras and the canonical form of monomials with the solvers, nothing else.
  *
  * @param ctx     borrowed.
  * @param text    borrowed; any bytes are safe.
@@ -321,7 +454,8 @@ typedef struct ids_check_report {
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_ARG        NULL
  *         IDS_ERR_CANCELLED  cancelled
- * Cost: derivation: linear in the terms when multiplied out; witness: the number of consequences.
+ * Cost: derivation: linear in the terms when multiplied out; witness: the number of consequences;
+ * counterexample: dimension^degree, less where products are 0.
  * Threads: one a ctx. Cancel: polled.
  * Border: GMP (exact sums; numbers in the file have at most 10,000 digits). Since: 0.1
  */

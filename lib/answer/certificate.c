@@ -40,31 +40,41 @@ void idsi_certificate_names(const ids_signature *sig, const idsi_identity *claim
     names[claim->written.variables] = hole;
 }
 
+ids_status idsi_write_presentation(ids_ctx *ctx, const ids_presentation *pres,
+                                   const idsi_identity *claim, char **text)
+{
+    ids_status st = IDS_OK;
+    ids_presentation reduced = *pres;
+
+    reduced.list = NULL;
+    reduced.count = 0;
+    IDSI_TRY(idsi_alloc_array(ctx, pres->count, sizeof *reduced.list, &reduced.list));
+    for (size_t i = 0; i < pres->count; i++) {
+        const idsi_identity *identity = &pres->list[i];
+        if (identity->role == IDS_ROLE_IDENTITY || identity == claim) {
+            reduced.list[reduced.count++] = *identity;
+        }
+    }
+    IDSI_TRY(ids_presentation_print(ctx, &reduced, text));
+done:
+    idsi_free(ctx, reduced.list);
+    return st;
+}
+
 /* The lines before the terms or values. */
 static ids_status write_head(const idsi_component *c, const char *header, const char *what,
                              size_t count, idsi_text *text)
 {
     ids_status st = IDS_OK;
-    ids_presentation reduced = *c->pres;
     char *presentation = NULL;
 
-    reduced.list = NULL;
-    reduced.count = 0;
-    IDSI_TRY(idsi_alloc_array(text->ctx, c->pres->count, sizeof *reduced.list, &reduced.list));
-    for (size_t i = 0; i < c->pres->count; i++) {
-        const idsi_identity *identity = &c->pres->list[i];
-        if (identity->role == IDS_ROLE_IDENTITY || identity == c->claim) {
-            reduced.list[reduced.count++] = *identity;
-        }
-    }
-    IDSI_TRY(ids_presentation_print(text->ctx, &reduced, &presentation));
+    IDSI_TRY(idsi_write_presentation(text->ctx, c->pres, c->claim, &presentation));
     IDSI_TRY(idsi_text_printf(text, "%s\n%s\n%s%s\nclaim%s%s\ndegree %u\n%s %zu\n", header,
                               IDSI_BEGIN_PRESENTATION, presentation, IDSI_END_PRESENTATION,
                               c->claim->name[0] == '\0' ? "" : " ", c->claim->name, c->degree, what,
                               count));
 done:
     ids_string_free(text->ctx, presentation);
-    idsi_free(text->ctx, reduced.list);
     return st;
 }
 
@@ -99,12 +109,12 @@ static ids_status write_law(const idsi_component *c, uint32_t law, idsi_text *te
                                      : idsi_text_printf(text, "#%zu", number);
 }
 
-static ids_status write_end(idsi_text *text, ids_sink_fn sink, void *sink_user)
+ids_status idsi_write_end(idsi_text *text, const char *prefix, ids_sink_fn sink, void *sink_user)
 {
     ids_status st = IDS_OK;
     uint64_t mark = idsi_certificate_mark(text->data, text->length);
 
-    IDSI_TRY(idsi_text_printf(text, "end %016" PRIx64 "\n", mark));
+    IDSI_TRY(idsi_text_printf(text, "%send %016" PRIx64 "\n", prefix, mark));
     if (sink(sink_user, text->data, text->length) != 0) {
         st = idsi_fail(text->ctx, IDS_ERR_IO, "the output was refused");
     }
@@ -151,7 +161,7 @@ ids_status ids_derivation_write(ids_ctx *ctx, const ids_derivation *derivation, 
     for (size_t i = 0; i < derivation->count; i++) {
         IDSI_TRY(write_term(derivation, i, names, &text));
     }
-    IDSI_TRY(write_end(&text, sink, sink_user));
+    IDSI_TRY(idsi_write_end(&text, "", sink, sink_user));
 done:
     idsi_text_clear(&text);
     return st;
@@ -217,7 +227,7 @@ ids_status ids_witness_write(ids_ctx *ctx, const ids_witness *witness, ids_sink_
         IDSI_TRY(idsi_tree_print(c->sig, list[i].tree, names, &text));
         IDSI_TRY(idsi_text_puts(&text, "\n"));
     }
-    IDSI_TRY(write_end(&text, sink, sink_user));
+    IDSI_TRY(idsi_write_end(&text, "", sink, sink_user));
 done:
     mpq_clear(number);
     idsi_text_clear(&text);

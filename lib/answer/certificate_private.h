@@ -19,14 +19,31 @@
  * candidate as written; in a context one leaf is the hole. MARK is a hash of all bytes before its
  * line, in 16 hexadecimal digits; it finds damage that the mathematics cannot see, such as
  * another name or a changed identity that is not used.
+ *
+ * A counterexample is an algebra file. What it shows stands in comments before and after the table:
+ *
+ *     # idspan counterexample 1
+ *     # begin presentation
+ *     # ...
+ *     # end presentation
+ *     # claim NAME
+ *     # degree N
+ *     # fails at x = SUM, y = SUM        the candidate's variables, by name; sums of basis elements
+ *     ...                                lines of an algebra file without comments
+ *     # end MARK
  */
 #ifndef IDSI_CERTIFICATE_PRIVATE_H
 #define IDSI_CERTIFICATE_PRIVATE_H
+
+#include <idspan/follows.h>
 
 #include "../identity/identity_private.h"
 
 #define IDSI_PROOF_HEADER "idspan proof 1"
 #define IDSI_WITNESS_HEADER "idspan witness 1"
+#define IDSI_COUNTEREXAMPLE_HEADER "# idspan counterexample 1"
+#define IDSI_COMMENT "# "
+#define IDSI_FAILS_AT "fails at "
 #define IDSI_BEGIN_PRESENTATION "begin presentation"
 #define IDSI_END_PRESENTATION "end presentation"
 #define IDSI_HOLE_CHARS 24u
@@ -109,5 +126,10 @@ typedef struct idsi_value_list {
 
 ids_status idsi_check_witness(const idsi_certificate *certificate, const idsi_value_list *values,
                               uint64_t *consequences);
+
+/* (check_algebra.c) Reads what follows the claim's degree in a counterexample, and the table, and
+ * multiplies everything out. */
+ids_status idsi_check_algebra(idsi_cursor *cursor, const idsi_certificate *certificate,
+                              ids_check_report *report);
 
 #endif

@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The checker: reads a derivation or a witness and verifies it from what the file itself says.
+ * The checker: reads a derivation, a witness or a counterexample and verifies it from what the file
+ * itself says.
  *
  * It includes nothing of the solvers. With them it shares the reader of presentations and the
  * collecting of polynomials (lib/identity), the canonical form (lib/tree), and the form of the
@@ -38,7 +39,7 @@ size_t idsi_check_substitute(const idsi_token *tree, size_t length, const idsi_t
 /* ---- head and end ---------------------------------------------------------------------------- */
 
 /* The last line is a mark of all before it; *end becomes the begin of that line. */
-static ids_status check_mark(idsi_cursor *cursor)
+static ids_status check_mark(idsi_cursor *cursor, const char *prefix)
 {
     const char *last = cursor->end;
     char mark[32];
@@ -49,7 +50,7 @@ static ids_status check_mark(idsi_cursor *cursor)
             last--;
         }
     }
-    (void)snprintf(mark, sizeof mark, "end %016" PRIx64 "\n",
+    (void)snprintf(mark, sizeof mark, "%send %016" PRIx64 "\n", prefix,
                    idsi_certificate_mark(cursor->text, (size_t)(last - cursor->text)));
     if ((size_t)(cursor->end - last) != strlen(mark) || memcmp(last, mark, strlen(mark)) != 0) {
         for (const char *at = cursor->text; at < last; at++) {
@@ -65,8 +66,19 @@ static ids_status check_mark(idsi_cursor *cursor)
     return IDS_OK;
 }
 
+/* Blanks in the place of the comment signs before the lines. */
+static void strip_comments(char *text, size_t length)
+{
+    for (size_t i = 0; i + 1 < length; i++) {
+        if ((i == 0 || text[i - 1] == '\n') && text[i] == IDSI_COMMENT[0]) {
+            text[i] = ' ';
+        }
+    }
+}
+
 /* Reads the presentation, behind empty lines, so that its messages have the right numbers. */
-static ids_status read_presentation(idsi_cursor *cursor, idsi_certificate *made)
+static ids_status read_presentation(idsi_cursor *cursor, const char *prefix,
+                                    idsi_certificate *made)
 {
     ids_status st = IDS_OK;
     char *text = NULL;
@@ -75,18 +87,23 @@ static ids_status read_presentation(idsi_cursor *cursor, idsi_certificate *made)
     size_t length = 0;
 
     IDSI_TRY(idsi_cursor_next(cursor));
+    IDSI_TRY(idsi_cursor_expect(cursor, prefix));
     IDSI_TRY(idsi_cursor_expect(cursor, IDSI_BEGIN_PRESENTATION));
     IDSI_TRY(idsi_cursor_expect_end(cursor));
     before = cursor->number;
     begin = cursor->line_end + 1;
     do {
         IDSI_TRY(idsi_cursor_next(cursor));
+        IDSI_TRY(idsi_cursor_expect(cursor, prefix));
         length = (size_t)(cursor->line - begin);
     } while (idsi_cursor_expect(cursor, IDSI_END_PRESENTATION) != IDS_OK);
     IDSI_TRY(idsi_cursor_expect_end(cursor));
     IDSI_TRY(idsi_alloc_array(cursor->ctx, before + length, 1, &text));
     memset(text, '\n', before);
     memcpy(text + before, begin, length);
+    if (prefix[0] != '\0') {
+        strip_comments(text + before, length);
+    }
     IDSI_TRY(
         ids_presentation_read(cursor->ctx, text, before + length, cursor->source, &made->pres));
     made->claim = idsi_presentation_get(made->pres, IDS_ROLE_CANDIDATE, 0);
@@ -100,13 +117,14 @@ done:
     return st;
 }
 
-static ids_status read_claim(idsi_cursor *cursor, idsi_certificate *made)
+static ids_status read_claim(idsi_cursor *cursor, const char *prefix, idsi_certificate *made)
 {
     ids_status st = IDS_OK;
     const idsi_identity *claim = made->claim;
     uint64_t degree = 0;
 
     IDSI_TRY(idsi_cursor_next(cursor));
+    IDSI_TRY(idsi_cursor_expect(cursor, prefix));
     IDSI_TRY(idsi_cursor_expect(cursor, "claim"));
     if (claim->name[0] != '\0') {
         IDSI_TRY(idsi_cursor_expect(cursor, " "));
@@ -114,6 +132,7 @@ static ids_status read_claim(idsi_cursor *cursor, idsi_certificate *made)
     }
     IDSI_TRY(idsi_cursor_expect_end(cursor));
     IDSI_TRY(idsi_cursor_next(cursor));
+    IDSI_TRY(idsi_cursor_expect(cursor, prefix));
     IDSI_TRY(idsi_cursor_expect(cursor, "degree "));
     IDSI_TRY(idsi_cursor_count(cursor, IDSI_MAX_IDENTITY_DEGREE, &degree));
     IDSI_TRY(idsi_cursor_expect_end(cursor));
@@ -383,22 +402,12 @@ done:
 
 /* ---- the whole file -------------------------------------------------------------------------- */
 
-static ids_status check_file(idsi_cursor *cursor, idsi_certificate *made, ids_check_report *report)
+/* The terms or values, and nothing behind them. */
+static ids_status check_lines(idsi_cursor *cursor, idsi_certificate *made, bool proof,
+                              ids_check_report *report)
 {
     ids_status st = IDS_OK;
-    bool proof = false;
 
-    IDSI_TRY(idsi_cursor_next(cursor));
-    proof = idsi_cursor_expect(cursor, IDSI_PROOF_HEADER) == IDS_OK;
-    if (!proof && idsi_cursor_expect(cursor, IDSI_WITNESS_HEADER) != IDS_OK) {
-        st = idsi_cursor_fail(cursor, IDS_ERR_PARSE, "expected \"%s\" or \"%s\"", IDSI_PROOF_HEADER,
-                              IDSI_WITNESS_HEADER);
-        goto done;
-    }
-    IDSI_TRY(idsi_cursor_expect_end(cursor));
-    IDSI_TRY(check_mark(cursor));
-    IDSI_TRY(read_presentation(cursor, made));
-    IDSI_TRY(read_claim(cursor, made));
     IDSI_TRY(idsi_cursor_next(cursor));
     IDSI_TRY(idsi_cursor_expect(cursor, proof ? "terms " : "values "));
     IDSI_TRY(idsi_cursor_count(cursor, UINT32_MAX, &made->count));
@@ -416,9 +425,39 @@ static ids_status check_file(idsi_cursor *cursor, idsi_certificate *made, ids_ch
         goto done;
     }
     report->follows = proof;
+    report->terms = made->count;
+done:
+    return st;
+}
+
+static ids_status check_file(idsi_cursor *cursor, idsi_certificate *made, ids_check_report *report)
+{
+    static const char *const headers[3] = {IDSI_PROOF_HEADER, IDSI_WITNESS_HEADER,
+                                           IDSI_COUNTEREXAMPLE_HEADER};
+    ids_status st = IDS_OK;
+    size_t kind = 0;
+
+    IDSI_TRY(idsi_cursor_next(cursor));
+    while (kind < 3 && idsi_cursor_expect(cursor, headers[kind]) != IDS_OK) {
+        kind++;
+    }
+    if (kind == 3) {
+        st = idsi_cursor_fail(cursor, IDS_ERR_PARSE, "expected \"%s\", \"%s\" or \"%s\"",
+                              headers[0], headers[1], headers[2]);
+        goto done;
+    }
+    const char *prefix = kind == 2 ? IDSI_COMMENT : "";
+    IDSI_TRY(idsi_cursor_expect_end(cursor));
+    IDSI_TRY(check_mark(cursor, prefix));
+    IDSI_TRY(read_presentation(cursor, prefix, made));
+    IDSI_TRY(read_claim(cursor, prefix, made));
+    if (kind == 2) {
+        IDSI_TRY(idsi_check_algebra(cursor, made, report));
+    } else {
+        IDSI_TRY(check_lines(cursor, made, kind == 0, report));
+    }
     report->degree = made->degree;
     report->identities = ids_presentation_count(made->pres, IDS_ROLE_IDENTITY);
-    report->terms = made->count;
     (void)snprintf(report->claim, sizeof report->claim, "%s", made->claim->name);
 done:
     return st;

@@ -17,8 +17,7 @@
 
 /* ---- contents -------------------------------------------------------------------------------- */
 
-/* Whether each label occurs in `part` at most as often as in `whole`. */
-static bool content_within(const idsi_component *c, uint32_t part, uint32_t whole)
+bool idsi_content_within(const idsi_component *c, uint32_t part, uint32_t whole)
 {
     for (uint32_t i = 0; i < c->variables; i++) {
         uint32_t radix = c->power[i] + 1;
@@ -31,7 +30,7 @@ static bool content_within(const idsi_component *c, uint32_t part, uint32_t whol
     return part <= whole;
 }
 
-static uint32_t content_degree(const idsi_component *c, uint32_t content)
+uint32_t idsi_content_degree(const idsi_component *c, uint32_t content)
 {
     uint32_t degree = 0;
     for (uint32_t i = 0; i < c->variables; i++) {
@@ -95,7 +94,7 @@ static ids_status fill_product(idsi_component *c, uint32_t content, uint32_t res
         return keep_canonical(c, content, tree, length);
     }
     for (uint32_t part = place + 1 == arity ? rest : 1; part <= rest; part++) {
-        if (part == content || !content_within(c, part, rest) ||
+        if (part == content || !idsi_content_within(c, part, rest) ||
             (part == rest && place + 1 < arity)) {
             continue;
         }
@@ -114,7 +113,7 @@ static ids_status list_content(idsi_component *c, uint32_t content)
     ids_status st = IDS_OK;
     idsi_token tree[IDSI_MAX_TOKENS];
 
-    if (content_degree(c, content) == 1) {
+    if (idsi_content_degree(c, content) == 1) {
         for (uint32_t i = 0; i <= c->variables; i++) {
             if (c->stride[i] == content) {
                 tree[0] = i + 1;
@@ -225,7 +224,7 @@ ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, siz
             idsi_alloc_array(ctx, 2 * (size_t)made->contents, sizeof *made->trees, &made->trees));
         for (uint32_t content = 1; content <= made->top + made->contents; content++) {
             /* The whole content beside a hole would be a degree too high. */
-            if (content_degree(made, content) <= made->degree) {
+            if (idsi_content_degree(made, content) <= made->degree) {
                 IDSI_TRY(list_content(made, content));
             }
         }
@@ -300,7 +299,7 @@ static ids_status walk_arguments(walk *w, uint32_t place, uint32_t rest)
         return walk_contexts(w);
     }
     for (uint32_t part = last ? rest : 1; part <= rest; part++) {
-        if (!content_within(w->c, part, rest) || (!last && part == rest)) {
+        if (!idsi_content_within(w->c, part, rest) || (!last && part == rest)) {
             continue;
         }
         w->at.content[place] = part;
@@ -324,8 +323,8 @@ ids_status idsi_component_each(const idsi_component *component, idsi_instance_fn
         w.law = &component->laws->law[law];
         w.at.law = law;
         for (uint32_t hole = component->top; hole > 0; hole--) {
-            if (content_within(component, hole, component->top) &&
-                content_degree(component, hole) >= w.law->degree) {
+            if (idsi_content_within(component, hole, component->top) &&
+                idsi_content_degree(component, hole) >= w.law->degree) {
                 w.at.hole = hole;
                 IDSI_TRY(walk_arguments(&w, 0, hole));
             }

@@ -64,6 +64,9 @@ typedef struct idsi_instance {
 ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, size_t index,
                                  idsi_component **component);
 void idsi_component_free(idsi_component *component);
+/* Whether each label occurs in `part` at most as often as in `whole`; labels of a content. */
+bool idsi_content_within(const idsi_component *c, uint32_t part, uint32_t whole);
+uint32_t idsi_content_degree(const idsi_component *c, uint32_t content);
 /* The monomials of the candidate's content. */
 const idsi_forest *idsi_component_monomials(const idsi_component *component);
 /* Index of a canonical tree among them; SIZE_MAX when it is none. */
@@ -143,5 +146,13 @@ struct ids_witness {
     size_t count;  /* values that are not 0 */
     mpz_t *values; /* of all monomials */
 };
+
+/* ---- files (certificate.c) ------------------------------------------------------------------- */
+
+/* The presentation of a file: the identities, and the claim as the only candidate. */
+ids_status idsi_write_presentation(ids_ctx *ctx, const ids_presentation *pres,
+                                   const idsi_identity *claim, char **text);
+/* Adds the last line, with the mark, and hands the text to the sink. */
+ids_status idsi_write_end(idsi_text *text, const char *prefix, ids_sink_fn sink, void *sink_user);
 
 #endif

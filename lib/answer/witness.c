@@ -2,125 +2,70 @@
 /*
  * Witnesses: linear functionals that vanish on all consequences and not on the candidate.
  *
- * The echelon form of the consequences rewrites pivot monomials to combinations of the others. For
- * a monomial c that is no pivot, "the coefficient of c after rewriting" is a functional that
- * vanishes on all consequences; it is 1 on c and read off the rules of the pivots. It serves when
- * the rewritten candidate has a coefficient there. The order of the monomials decides which are
- * pivots, so a few random orders are tried, and the functional with the fewest values is taken.
- *
- * Its residues are lifted to fractions with up to four primes, multiplied out to integers without
- * common factor, and evaluated exactly on every consequence and the candidate, or it does not
- * count.
+ * A number of random orders of the monomials are tried, then orders that prefer the monomials of
+ * the best functional so far, and the functional with the fewest values is taken, of these the one
+ * with the smallest. Its residues are lifted to fractions with up to four primes, multiplied out
+ * to integers without common factor, and evaluated exactly on every consequence and the candidate,
+ * or it does not count.
  */
 #include <string.h>
 
-#include "follows_private.h"
+#include "witness_private.h"
 
 #define MOST_PRIMES 4u
 #define MOST_TRIALS 60u
 #define TRIAL_WORK 2000000u
 
-typedef struct seeker {
-    ids_ctx *ctx;
-    const idsi_component *c;
-    idsi_system *system;
-    idsi_random random;
-    size_t monomials;
-    size_t most;     /* cells of a consequence */
-    uint32_t *place; /* column of each monomial */
+typedef struct choice {
+    idsi_seeker s;
     uint32_t *best_place;
     uint32_t best_column;
-    size_t best_count;
-    idsi_entry *row;
-    uint32_t *rest;  /* of the candidate, by column */
-    uint32_t *uses;  /* values of the functional of each column */
-    uint32_t *value; /* of the functional, by monomial */
-} seeker;
+    size_t best_count; /* 0: none yet */
+    uint64_t best_size;
+    uint32_t *best_value; /* mod the first prime */
+    uint32_t *value;      /* by monomial */
+} choice;
 
-static void seeker_clear(seeker *s)
+static void choice_clear(choice *f)
 {
-    idsi_free(s->ctx, s->place);
-    idsi_free(s->ctx, s->best_place);
-    idsi_free(s->ctx, s->row);
-    idsi_free(s->ctx, s->rest);
-    idsi_free(s->ctx, s->uses);
-    idsi_free(s->ctx, s->value);
-    idsi_system_free(s->system);
+    idsi_free(f->s.ctx, f->best_place);
+    idsi_free(f->s.ctx, f->best_value);
+    idsi_free(f->s.ctx, f->value);
+    idsi_seeker_clear(&f->s);
 }
 
-static ids_status make_rows(void *user, idsi_row_fn row, void *row_user)
+/* How large the values are, as integers next to 0 mod p; fractions count as large. */
+static uint64_t size_of(const choice *f)
 {
-    seeker *s = user;
-    ids_status st = IDS_OK;
-
-    for (size_t i = 0; i < s->system->count; i++) {
-        size_t start = s->system->start[i];
-        size_t count = s->system->start[i + 1] - start;
-        for (size_t k = 0; k < count; k++) {
-            const idsi_cell *cell = &s->system->cells[start + k];
-            s->row[k] =
-                (idsi_entry){s->place[cell->monomial], idsi_system_value(s->system, i, cell)};
-        }
-        IDSI_TRY(row(row_user, s->row, count));
+    uint64_t size = 0;
+    for (size_t m = 0; m < f->s.monomials; m++) {
+        uint32_t other = f->s.system->prime - f->value[m];
+        size += f->value[m] < other ? f->value[m] : other;
     }
-done:
-    return st;
+    return size;
 }
 
-static ids_status eliminate(seeker *s, idsi_echelon **echelon)
-{
-    idsi_result result = {0};
-    idsi_matrix matrix = {.ctx = s->ctx,
-                          .prime = s->system->prime,
-                          .columns = (uint32_t)s->monomials,
-                          .tables = true,
-                          .source = make_rows,
-                          .source_user = s};
-    ids_status st = idsi_eliminate(&matrix, &s->random, &result);
-    *echelon = result.echelon;
-    return st;
-}
-
-static void add_rest(seeker *s, uint32_t column, uint32_t value)
-{
-    uint64_t sum = (uint64_t)s->rest[column] + value;
-    s->rest[column] = (uint32_t)(sum % s->system->prime);
-}
-
-/* The candidate rewritten, and how many values each functional has. */
-static void survey(seeker *s, const idsi_echelon *echelon)
-{
-    memset(s->rest, 0, s->monomials * sizeof *s->rest);
-    memset(s->uses, 0, s->monomials * sizeof *s->uses);
-    for (size_t m = 0; m < s->monomials; m++) {
-        const idsi_entry *entries = NULL;
-        uint32_t count = 0;
-        if (!idsi_echelon_rule(echelon, s->place[m], &entries, &count)) {
-            s->uses[s->place[m]]++;
-            add_rest(s, s->place[m], s->system->goal[m]);
-            continue;
-        }
-        for (uint32_t k = 0; k < count; k++) {
-            s->uses[entries[k].column] += entries[k].value != 0;
-            add_rest(s, entries[k].column,
-                     idsi_mod_mul(entries[k].value, s->system->goal[m], s->system->prime));
-        }
-    }
-}
-
-/* One order of the monomials; keeps it when some functional has fewer values than the best. */
-static ids_status try_order(seeker *s)
+/* One order of the monomials; keeps it when some functional is better than the best. */
+static ids_status try_order(choice *f)
 {
     ids_status st = IDS_OK;
+    idsi_seeker *s = &f->s;
     idsi_echelon *echelon = NULL;
 
-    IDSI_TRY(eliminate(s, &echelon));
-    survey(s, echelon);
+    IDSI_TRY(idsi_seeker_eliminate(s, &echelon));
+    idsi_seeker_survey(s, echelon);
     for (uint32_t column = 0; column < s->monomials; column++) {
-        if (s->rest[column] != 0 && (s->best_count == 0 || s->uses[column] < s->best_count)) {
-            s->best_count = s->uses[column];
-            s->best_column = column;
-            memcpy(s->best_place, s->place, s->monomials * sizeof *s->place);
+        if (s->rest[column] == 0 || (f->best_count > 0 && s->uses[column] > f->best_count)) {
+            continue;
+        }
+        idsi_seeker_values(s, echelon, column, f->value);
+        const uint64_t size = size_of(f);
+        if (f->best_count == 0 || s->uses[column] < f->best_count || size < f->best_size) {
+            f->best_count = s->uses[column];
+            f->best_size = size;
+            f->best_column = column;
+            memcpy(f->best_place, s->place, s->monomials * sizeof *s->place);
+            memcpy(f->best_value, f->value, s->monomials * sizeof *f->value);
         }
     }
 done:
@@ -128,33 +73,28 @@ done:
     return st;
 }
 
-static void shuffle(seeker *s)
-{
-    for (size_t i = s->monomials; i > 1; i--) {
-        size_t j = (size_t)idsi_random_below(&s->random, i);
-        uint32_t swap = s->place[i - 1];
-        s->place[i - 1] = s->place[j];
-        s->place[j] = swap;
-    }
-}
-
-static ids_status choose(seeker *s)
+static ids_status choose(choice *f)
 {
     ids_status st = IDS_OK;
+    idsi_seeker *s = &f->s;
     size_t trials = TRIAL_WORK / (s->system->start[s->system->count] + s->monomials + 1);
 
     trials = trials > MOST_TRIALS ? MOST_TRIALS : trials;
-    IDSI_TRY(try_order(s));
-    if (s->best_count == 0) {
+    IDSI_TRY(try_order(f));
+    if (f->best_count == 0) {
         st = idsi_fail(s->ctx, IDS_ERR_DOMAIN,
                        "there is no witness: the candidate follows (modulo %u)", s->system->prime);
         goto done;
     }
-    for (size_t k = 0; k < trials; k++) {
-        shuffle(s);
-        IDSI_TRY(try_order(s));
+    for (size_t k = 0; k < 2 * trials; k++) {
+        if (k < trials) {
+            idsi_seeker_shuffle(s);
+        } else {
+            idsi_seeker_focus(s, f->best_value);
+        }
+        IDSI_TRY(try_order(f));
     }
-    memcpy(s->place, s->best_place, s->monomials * sizeof *s->place);
+    memcpy(s->place, f->best_place, s->monomials * sizeof *s->place);
 done:
     return st;
 }
@@ -162,27 +102,18 @@ done:
 /* ---- exact values ---------------------------------------------------------------------------- */
 
 /* Values of the chosen functional mod one prime. */
-static ids_status read_values(seeker *s, uint32_t prime, bool *good)
+static ids_status read_values(choice *f, uint32_t prime, bool *good)
 {
     ids_status st = IDS_OK;
     idsi_echelon *echelon = NULL;
 
-    IDSI_TRY(idsi_system_reduce(s->system, prime, good));
+    IDSI_TRY(idsi_system_reduce(f->s.system, prime, good));
     if (!*good) {
         return IDS_OK;
     }
-    IDSI_TRY(eliminate(s, &echelon));
-    *good = !idsi_echelon_is_pivot(echelon, s->best_column);
-    for (size_t m = 0; m < s->monomials; m++) {
-        const idsi_entry *entries = NULL;
-        uint32_t count = 0;
-        s->value[m] = s->place[m] == s->best_column;
-        if (idsi_echelon_rule(echelon, s->place[m], &entries, &count)) {
-            for (uint32_t k = 0; k < count; k++) {
-                s->value[m] = entries[k].column == s->best_column ? entries[k].value : s->value[m];
-            }
-        }
-    }
+    IDSI_TRY(idsi_seeker_eliminate(&f->s, &echelon));
+    *good = !idsi_echelon_is_pivot(echelon, f->best_column);
+    idsi_seeker_values(&f->s, echelon, f->best_column, f->value);
 done:
     idsi_echelon_free(echelon);
     return st;
@@ -204,7 +135,7 @@ static void add_value(mpq_ptr sum, mpz_srcptr value, mpq_srcptr coefficient, int
 }
 
 /* Whether the values are a witness, exactly; *negative when the candidate's value is. */
-static bool holds(const seeker *s, mpz_t *values, bool *negative)
+static bool holds(const idsi_seeker *s, mpz_t *values, bool *negative)
 {
     bool good = true;
     mpq_t sum;
@@ -265,9 +196,10 @@ static bool make_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, mpz
     return good;
 }
 
-static ids_status lift(seeker *s, mpz_t *residues, mpz_ptr modulus, mpz_t *values)
+static ids_status lift(choice *f, mpz_t *residues, mpz_ptr modulus, mpz_t *values)
 {
     ids_status st = IDS_OK;
+    idsi_seeker *s = &f->s;
     uint32_t primes[MOST_PRIMES] = {0};
     bool proved = false;
 
@@ -275,12 +207,12 @@ static ids_status lift(seeker *s, mpz_t *residues, mpz_ptr modulus, mpz_t *value
         bool good = true;
         bool negative = false;
         primes[k] = idsi_prime_draw(&s->random, primes, k);
-        IDSI_TRY(read_values(s, primes[k], &good));
+        IDSI_TRY(read_values(f, primes[k], &good));
         if (!good) {
             continue;
         }
         for (size_t m = 0; m < s->monomials; m++) {
-            idsi_residue_join(residues[m], modulus, s->value[m], primes[k]);
+            idsi_residue_join(residues[m], modulus, f->value[m], primes[k]);
         }
         mpz_mul_ui(modulus, modulus, primes[k]);
         proved =
@@ -297,9 +229,10 @@ done:
     return st;
 }
 
-static ids_status prove(seeker *s, ids_witness *made)
+static ids_status prove(choice *f, ids_witness *made)
 {
     ids_status st = IDS_OK;
+    const idsi_seeker *s = &f->s;
     mpz_t *residues = NULL;
     mpz_t modulus;
     size_t ready = 0;
@@ -311,7 +244,7 @@ static ids_status prove(seeker *s, ids_witness *made)
         mpz_init(residues[ready]);
         mpz_init(made->values[ready]);
     }
-    IDSI_TRY(lift(s, residues, modulus, made->values));
+    IDSI_TRY(lift(f, residues, modulus, made->values));
     for (size_t m = 0; m < s->monomials; m++) {
         made->count += mpz_sgn(made->values[m]) != 0;
     }
@@ -332,31 +265,17 @@ done:
     return st;
 }
 
-static ids_status seek(seeker *s, ids_witness *made)
+static ids_status seek(choice *f, ids_witness *made, uint64_t seed)
 {
     ids_status st = IDS_OK;
-    bool good = true;
+    idsi_seeker *s = &f->s;
 
-    s->monomials = idsi_component_monomials(s->c)->count;
-    IDSI_TRY(idsi_system_create(s->c, &s->system));
-    do {
-        IDSI_TRY(idsi_system_reduce(s->system, idsi_prime_draw(&s->random, NULL, 0), &good));
-    } while (!good);
-    for (size_t i = 0; i < s->system->count; i++) {
-        size_t cells = s->system->start[i + 1] - s->system->start[i];
-        s->most = cells > s->most ? cells : s->most;
-    }
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->most, sizeof *s->row, &s->row));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *s->place, &s->place));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *s->best_place, &s->best_place));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *s->rest, &s->rest));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *s->uses, &s->uses));
-    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *s->value, &s->value));
-    for (size_t m = 0; m < s->monomials; m++) {
-        s->place[m] = (uint32_t)m;
-    }
-    IDSI_TRY(choose(s));
-    IDSI_TRY(prove(s, made));
+    IDSI_TRY(idsi_seeker_init(s, made->component, seed));
+    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *f->best_place, &f->best_place));
+    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *f->best_value, &f->best_value));
+    IDSI_TRY(idsi_alloc_array(s->ctx, s->monomials, sizeof *f->value, &f->value));
+    IDSI_TRY(choose(f));
+    IDSI_TRY(prove(f, made));
 done:
     return st;
 }
@@ -366,7 +285,7 @@ ids_status ids_witness_find(ids_ctx *ctx, const ids_presentation *presentation, 
 {
     ids_status st = IDS_OK;
     ids_witness *made = NULL;
-    seeker s = {.ctx = ctx};
+    choice f = {.s.ctx = ctx};
 
     if (ctx == NULL || witness == NULL || presentation == NULL ||
         idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index) == NULL) {
@@ -375,20 +294,18 @@ ids_status ids_witness_find(ids_ctx *ctx, const ids_presentation *presentation, 
     if (options != NULL && options->struct_size != sizeof *options) {
         return idsi_fail_arg(ctx, "struct_size");
     }
-    idsi_random_seed(&s.random, options == NULL ? 0 : options->seed);
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     IDSI_TRY(idsi_component_create(ctx, presentation, index, &made->component));
-    s.c = made->component;
-    if (s.c->goal->count == 0) {
+    if (made->component->goal->count == 0) {
         st = idsi_fail(ctx, IDS_ERR_DOMAIN, "there is no witness: the candidate is 0");
         goto done;
     }
-    IDSI_TRY(seek(&s, made));
+    IDSI_TRY(seek(&f, made, options == NULL ? 0 : options->seed));
     *witness = made;
     made = NULL;
 done:
-    seeker_clear(&s);
+    choice_clear(&f);
     ids_witness_free(made);
     return st;
 }

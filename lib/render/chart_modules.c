@@ -54,8 +54,8 @@ static panels measure(const idsi_degree *degree)
     for (size_t i = 0; i < degree->partitions; i++) {
         const ids_partition_row *row = &degree->rows[i].given.numbers;
         free = larger(free, row->free);
+        dimension = larger(dimension, row->dimension);
         if (idsi_report_is_done(&degree->rows[i])) {
-            dimension = larger(dimension, row->dimension);
             p.most[0] = larger(p.most[0], row->consequences);
             p.most[1] = larger(p.most[1], row->quotient);
         }
@@ -169,8 +169,8 @@ static ids_status put_line(idsi_text *out, const panels *p, const idsi_report_ro
     if (numbers->free > 0 || idsi_report_is_done(row)) {
         IDSI_TRY(put_count(out, "quiet num end", p->free, y, numbers->free));
     }
+    IDSI_TRY(put_count(out, "quiet num end", p->dimension, y, numbers->dimension));
     if (idsi_report_is_done(row)) {
-        IDSI_TRY(put_count(out, "quiet num end", p->dimension, y, numbers->dimension));
         IDSI_TRY(put_bar(out, p, 0, numbers->consequences, y));
         IDSI_TRY(put_bar(out, p, 1, numbers->quotient, y));
     } else {

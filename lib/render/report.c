@@ -120,6 +120,18 @@ static int compare(uint32_t degree, uint64_t index, const idsi_report_row *row)
     return index == row->index ? 0 : index < row->index ? -1 : 1;
 }
 
+/* Of a row without numbers: which it is, what is free, and the dimension, which needs no work. */
+static ids_partition_row what_is_known(const ids_partition_row *row)
+{
+    ids_partition_row known = {
+        .degree = row->degree, .total = row->total, .partition = row->partition, .free = row->free};
+
+    if (row->total || ids_partition_dimension(&row->partition, &known.dimension) != IDS_OK) {
+        known.dimension = 0;
+    }
+    return known;
+}
+
 ids_status ids_report_add(ids_report *report, const ids_report_row *row)
 {
     ids_status st = IDS_OK;
@@ -154,6 +166,9 @@ ids_status ids_report_add(ids_report *report, const ids_report_row *row)
     memmove(report->rows + at + 1, report->rows + at, (report->count - at) * sizeof *report->rows);
     report->rows[at] = (idsi_report_row){.given = *row, .index = index};
     report->rows[at].given.reason = reason;
+    if (row->state != IDS_REPORT_DONE) {
+        report->rows[at].given.numbers = what_is_known(&row->numbers);
+    }
     report->count++;
     reason = NULL;
 done:

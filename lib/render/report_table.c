@@ -4,6 +4,7 @@
  * without numbers says why in their place.
  */
 #include <inttypes.h>
+#include <string.h>
 
 #include "report_private.h"
 
@@ -157,11 +158,7 @@ static ids_status put_module_row(idsi_text *out, const idsi_report_row *row, ext
     IDSI_TRY(idsi_text_puts(out, "<tr><th scope=\"row\">"));
     IDSI_TRY(idsi_put_partition(out, &row->given.numbers.partition));
     IDSI_TRY(idsi_text_puts(out, "</th>"));
-    if (idsi_report_is_done(row)) {
-        IDSI_TRY(put_number_cell(out, row->given.numbers.dimension));
-    } else {
-        IDSI_TRY(idsi_text_puts(out, "<td></td>"));
-    }
+    IDSI_TRY(put_number_cell(out, row->given.numbers.dimension));
     IDSI_TRY(put_values(out, row, shown));
 done:
     return st;
@@ -205,14 +202,41 @@ done:
 
 /* ---- what is not done -------------------------------------------------------------------- */
 
-static ids_status put_gap_row(idsi_text *out, const idsi_report_row *row)
+/* Whether two rows are not done in the same way, with the same words about it. */
+static bool is_alike(const idsi_report_row *a, const idsi_report_row *b)
+{
+    const char *reason = a->given.reason != NULL ? a->given.reason : "";
+    const char *other = b->given.reason != NULL ? b->given.reason : "";
+
+    return a->given.state == b->given.state && strcmp(reason, other) == 0;
+}
+
+/* Rows from the first on that are like row `index`; 0 unless that is the first of its kind. */
+static size_t count_alike(const idsi_report_row *rows, size_t count, size_t index)
+{
+    size_t alike = 0;
+
+    for (size_t i = 0; i < count; i++) {
+        if (is_alike(&rows[i], &rows[index])) {
+            if (i < index) {
+                return 0;
+            }
+            alike++;
+        }
+    }
+    return alike;
+}
+
+static ids_status put_gap_row(idsi_text *out, const idsi_report_row *row, size_t alike)
 {
     ids_status st = IDS_OK;
     bool failed = row->given.state == IDS_REPORT_FAILED;
 
     IDSI_TRY(idsi_text_printf(out, "<tr><td class=\"n\">%u</td><td>",
                               (unsigned)row->given.numbers.degree));
-    if (row->given.numbers.total) {
+    if (alike > 1) {
+        IDSI_TRY(idsi_text_printf(out, "%zu partitions", alike));
+    } else if (row->given.numbers.total) {
         IDSI_TRY(idsi_text_puts(out, "all"));
     } else {
         IDSI_TRY(idsi_put_partition(out, &row->given.numbers.partition));
@@ -227,25 +251,37 @@ done:
     return st;
 }
 
+/* One row for all partitions of which the same is to be said. The total of a degree that is split
+ * is no cell of its own. */
+static ids_status put_degree_gaps(idsi_text *out, const idsi_degree *degree)
+{
+    ids_status st = IDS_OK;
+    size_t count = degree->partitions > 0 ? degree->partitions : 1;
+
+    for (size_t i = 0; i < count; i++) {
+        const idsi_report_row *row = &degree->rows[i];
+        size_t alike = idsi_report_is_done(row) ? 0 : count_alike(degree->rows, count, i);
+        if (alike > 0) {
+            IDSI_TRY(put_gap_row(out, row, alike));
+        }
+    }
+done:
+    return st;
+}
+
 ids_status idsi_put_gaps_table(idsi_press *press)
 {
     ids_status st = IDS_OK;
     idsi_text *out = &press->out;
-    const ids_report *report = press->report;
+    idsi_degree degree = {0};
 
     IDSI_TRY(idsi_text_puts(out, "<div class=\"scroll table\" tabindex=\"0\" role=\"region\" "
                                  "aria-label=\"Table of the cells that are not done\">\n<table>\n"
                                  "<thead><tr><th scope=\"col\" class=\"n\">degree</th>"
                                  "<th scope=\"col\">partition</th><th scope=\"col\">state</th>"
                                  "<th scope=\"col\">reason</th></tr></thead>\n<tbody>\n"));
-    for (size_t i = 0; i < report->count; i++) {
-        const idsi_report_row *row = &report->rows[i];
-        bool alone =
-            i == 0 || report->rows[i - 1].given.numbers.degree != row->given.numbers.degree;
-        /* The total of a degree that is split is no cell of its own. */
-        if (!idsi_report_is_done(row) && (!row->given.numbers.total || alone)) {
-            IDSI_TRY(put_gap_row(out, row));
-        }
+    for (size_t at = 0; idsi_report_next_degree(press->report, &at, &degree);) {
+        IDSI_TRY(put_degree_gaps(out, &degree));
     }
     IDSI_TRY(idsi_text_puts(out, "</tbody>\n</table>\n</div>\n"));
 done:

@@ -78,6 +78,35 @@ grep -q '\\begin{eqnarray\*}' moufang.tex || complain "$last: $(head moufang.tex
 run 2 check moufang.tex
 has err "moufang.tex:1:1: expected \"idspan proof 1\""
 
+# ---- algebras ------------------------------------------------------------------------------
+
+run 1 follows alternative.pres --candidate assoc --algebra assoc.alg --witness assoc.witness
+has out "assoc does not follow (proved)."
+run 0 check assoc.alg
+is_empty err
+has out "Verified: the candidate assoc of degree 3 does not follow. The identities hold in the"
+run 0 check assoc.alg --format csv
+[ "$(tail -n 1 out | cut -d , -f 1-4)" = "assoc,3,no,2" ] || complain "$last: $(cat out)"
+run 1 follows alternative.pres --candidate assoc --algebra other.alg
+cmp -s assoc.alg other.alg || complain "the same search gave two algebras"
+run 0 follows alternative.pres --candidate flexible --algebra flexible.alg
+[ ! -e flexible.alg ] || complain "$last: an algebra against what follows"
+run 1 follows alternative.pres --candidate assoc --algebra assoc.tex --format latex
+grep -q '\\begin{eqnarray\*}' assoc.tex || complain "$last: $(head assoc.tex)"
+run 3 follows alternative.pres --candidate assoc --algebra none.alg --dimension 2 --steps 1000
+has err "no algebra was written: no counterexample of dimension at most 2"
+has out "assoc does not follow (wrong with probability at most"
+[ ! -e none.alg ] || complain "$last: a file all the same"
+run 2 follows alternative.pres --candidate assoc --dimension 3
+has err "are limits of --algebra FILE"
+run 2 follows alternative.pres --candidate assoc --algebra a.alg --dimension 256
+has err "--dimension wants a whole number from 1 to 255"
+run 2 follows alternative.pres --candidate assoc --algebra a --witness a
+has err "name the same file"
+sed 's/ = -\?e7$/ = e6/' assoc.alg >bad
+run 2 check bad
+has err "the mark at the end does not fit the file"
+
 sed 's/^terms 2/terms 3/' flexible.proof >bad
 run 2 check bad
 has err "the mark at the end does not fit the file"
@@ -107,6 +136,6 @@ has err "would overwrite"
 run 2 follows alternative.pres --candidate flexible --proof /nowhere/p
 has err "cannot write"
 run 2 check
-has err "wants a proof or witness file"
+has err "wants a proof, witness or algebra file"
 
 finish

@@ -43,8 +43,11 @@ well_formed out
 [ "$(grep -c '<g class="module">' out)" -eq 1 ] || complain "$last: not one partition"
 
 # The picture in README.md is what the tool writes today.
-run 0 rank "$source_dir/data/crosses/programme.pres" --degrees 1..6 --by partition --format svg
-cmp -s out "$source_dir/data/crosses/programme.svg" || complain "programme.svg is out of date"
+programme=$source_dir/data/crosses/programme
+run 0 rank "$programme.pres" --degrees 1..8 --by partition --format svg
+cmp -s out "$programme.svg" || complain "programme.svg is out of date"
+run 0 rank "$programme.pres" --degrees 1..8 --by partition --run night --format svg
+cmp -s out "$programme.svg" || complain "$last: the picture of the run is another one"
 
 # ---- by degree -----------------------------------------------------------------------------------
 
@@ -62,6 +65,36 @@ well_formed out
 has out "Not finished:"
 has out "not yet computed"
 has out "budget"
+
+# ---- runs ------------------------------------------------------------------------------------
+
+run 0 rank jordan.pres --degrees 2..6 --by partition --run folder --jobs 2 --format html \
+    --output run.html
+well_formed run.html
+rows_of_page run.html >rows
+tail -n +2 table.csv | cut -d, -f2-6 | diff - rows >/dev/null ||
+    complain "$last: the page of the run has other rows than the CSV: $(head -c 300 rows)"
+run 0 rank --run folder --format html
+for text in ">Complete.<" "<dd>28 of 28 finished, 0 failed, 0 damaged</dd>" "<dt>libraries</dt>" \
+    "identity jordan:" "<dt>seed</dt><dd>0</dd>" "<dt>most memory of a process</dt>" \
+    ">memory</th>"; do
+    has out "$text"
+done
+
+# One cell lost, one damaged: the page says which, and all other numbers are there.
+rm folder/cell-6.4+2.txt
+truncate -s -1 folder/cell-5.3+2.txt
+run 0 rank --run folder --format html --output run.html
+well_formed run.html
+grep -q "26 of 28 cells are computed" run.html || complain "$last: not 26 cells"
+grep -qE '<td>5</td>|>5</td><td>3\+2</td><td>not yet computed</td><td class="w">.' run.html ||
+    complain "$last: damage without a reason"
+[ "$(rows_of_page run.html | wc -l)" -eq 31 ] || complain "$last: not all rows but two totals"
+run 0 rank --run folder --format svg
+well_formed out
+[ "$(grep -c '>not yet computed</text>' out)" -eq 2 ] || complain "$last: not two gaps"
+run 2 rank --run folder --plan --format html
+has err "a plan is a table"
 
 # ---- refusals ------------------------------------------------------------------------------
 

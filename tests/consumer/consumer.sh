@@ -21,7 +21,8 @@ mkdir -p "$work/bin"
 
 "$cmake" --install "$build" --prefix "$work/first" >"$work/install.log"
 for file in bin/idspan share/man/man1/idspan.1 share/man/man3/idspan.3 share/man/man5/idspan.5 \
-    share/bash-completion/completions/idspan share/idspan/varieties/jordan.pres; do
+    share/bash-completion/completions/idspan share/idspan/varieties/jordan.pres \
+    share/idspan/rank-table.sbatch; do
     if [ ! -s "$work/first/$file" ]; then
         printf 'the installation has no %s\n' "$file" >&2
         exit 1

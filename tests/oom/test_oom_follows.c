@@ -13,6 +13,9 @@ static char fourth[] = JORDAN "candidate c: ((x*x)*x)*x = (x*x)*(x*x)\n";
 static char wrong[] = "operation a*b commutative\nidentity (a*b)*c = 0\n"
                       "candidate c: a*b = 0\n";
 
+static char square[] = "operation a*b commutative\nidentity ((a*a)*a)*a = (a*a)*(a*a)\n"
+                       "candidate c: a*b = 0\n";
+
 /* A sink that needs no memory. */
 typedef struct sheet {
     size_t length;
@@ -81,6 +84,35 @@ done:
     return st;
 }
 
+/* Both searches find something: the nilpotent one dimension 2, the direct one 1. */
+static ids_status counter(ids_ctx *ctx, void *data)
+{
+    ids_status st = IDS_OK;
+    ids_presentation *pres = NULL;
+    ids_counterexample *found = NULL;
+    ids_check_report report = {0};
+    const ids_counterexample_options limits = {.struct_size = sizeof limits, .steps = 500};
+    sheet file = {0};
+    sheet latex = {0};
+
+    IDSI_TRY(ids_presentation_read(ctx, data, strlen(data), "job", &pres));
+    IDSI_TRY(ids_counterexample_find(ctx, pres, 0, &limits, &found));
+    ck_assert_uint_eq(ids_algebra_dimension(ids_counterexample_algebra(found)), 1);
+    IDSI_TRY(ids_counterexample_latex(ctx, found, receive, &latex));
+    IDSI_TRY(ids_counterexample_write(ctx, found, receive, &file));
+    IDSI_TRY(ids_certificate_check(ctx, file.text, file.length, "file", &report));
+done:
+    ids_counterexample_free(found);
+    ids_presentation_free(pres);
+    return st;
+}
+
+START_TEST(test_counter)
+{
+    TEST_OOM(counter, square);
+}
+END_TEST
+
 START_TEST(test_decide)
 {
     TEST_OOM(decide, wrong);
@@ -105,6 +137,7 @@ int main(void)
     TCase *tcase = tcase_create("follows");
 
     tcase_set_timeout(tcase, 100);
+    tcase_add_test(tcase, test_counter);
     tcase_add_test(tcase, test_decide);
     tcase_add_test(tcase, test_derive);
     tcase_add_test(tcase, test_refute);

@@ -35,6 +35,8 @@ int receive(void *user, const char *bytes, size_t length);
 
 /* Writes the derivation or witness of a theorem into `file`, which the caller clears. */
 ids_status certificate_make(ids_ctx *ctx, const theorem *about, idsi_text *file);
+/* Writes a counterexample to a theorem that does not hold, found within few steps. */
+ids_status certificate_algebra(ids_ctx *ctx, const theorem *about, idsi_text *file);
 /* Puts the right mark at the end of a file that was changed. */
 void certificate_mark(idsi_text *file);
 /* `rounds` random damages to each theorem's file: every one must be refused. */

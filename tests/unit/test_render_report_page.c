@@ -26,12 +26,52 @@ START_TEST(gaps_are_named)
     ck_assert_ptr_nonnull(strstr(p.text, "<td>2+1</td><td>failed</td><td class=\"w\">"
                                          "out of &lt;memory&gt; &amp; time</td>"));
     ck_assert_ptr_nonnull(strstr(p.text, "<td>1+1+1</td><td>not yet computed</td>"));
+    /* dimension 2, nothing known of what is free */
+    ck_assert_ptr_nonnull(strstr(p.text, "<th scope=\"row\">2+1</th><td class=\"n\">2</td>"
+                                         "<td></td><td colspan=\"3\""));
     ck_assert_ptr_null(strstr(p.text, "a total is no cell"));
     ck_assert_ptr_null(strstr(p.text, "<tfoot>"));
     ck_assert_ptr_null(strstr(p.text, "Complete"));
     write_page(&p, IDS_REPORT_SVG);
     ck_assert_ptr_nonnull(strstr(p.text, ">not finished<"));
     ck_assert_ptr_nonnull(strstr(p.text, "1 of 3 are computed"));
+    close_page(&p);
+}
+END_TEST
+
+/* Cells of which there is nothing new to say are counted, one that is different is named. */
+START_TEST(long_gaps_are_counted)
+{
+    page p = open_page("gaps");
+    ids_report_row damaged = part_row(p.ctx, "4+1", IDS_REPORT_MISSING);
+
+    damaged.reason = "its checksum is wrong";
+    TEST_OK(p.ctx, ids_report_add(p.report, &damaged));
+    for (uint64_t i = 0; i < ids_partition_count(5); i++) {
+        ids_report_row row = {.struct_size = sizeof row, .state = IDS_REPORT_MISSING, .reason = ""};
+        row.numbers.degree = 5;
+        TEST_OK(p.ctx, ids_partition_unrank(5, i, &row.numbers.partition));
+        if (i != 1) {
+            TEST_OK(p.ctx, ids_report_add(p.report, &row));
+        }
+    }
+    write_page(&p, IDS_REPORT_HTML);
+    ck_assert_ptr_nonnull(strstr(p.text, "<td class=\"n\">5</td><td>6 partitions</td>"
+                                         "<td>not yet computed</td>"));
+    ck_assert_ptr_nonnull(strstr(p.text, "<td>4+1</td><td>not yet computed</td><td class=\"w\">"
+                                         "its checksum is wrong</td>"));
+    ck_assert_ptr_nonnull(strstr(p.text, "0 of 7 cells are computed (<a"));
+    for (uint64_t i = 0; i < ids_partition_count(4); i++) {
+        ids_report_row row = {
+            .struct_size = sizeof row, .state = IDS_REPORT_FAILED, .reason = "no memory"};
+        row.numbers.degree = 4;
+        TEST_OK(p.ctx, ids_partition_unrank(4, i, &row.numbers.partition));
+        TEST_OK(p.ctx, ids_report_add(p.report, &row));
+    }
+    write_page(&p, IDS_REPORT_HTML);
+    ck_assert_ptr_nonnull(strstr(p.text, "<td class=\"n\">4</td><td>5 partitions</td>"
+                                         "<td>failed</td><td class=\"w\">no memory</td>"));
+    ck_assert_ptr_nonnull(strstr(p.text, "0 of 12 cells are computed, 5 failed (<a"));
     close_page(&p);
 }
 END_TEST
@@ -178,6 +218,7 @@ int main(void)
     TCase *tcase = tcase_create("report");
 
     tcase_add_test(tcase, gaps_are_named);
+    tcase_add_test(tcase, long_gaps_are_counted);
     tcase_add_test(tcase, nothing_is_something_to_report);
     tcase_add_test(tcase, everything_is_escaped);
     tcase_add_loop_test(tcase, the_page_stands_alone, 0, 2);

@@ -26,7 +26,7 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -d -- "$word")
         return
         ;;
-    --output | --proof | --witness)
+    --output | --proof | --witness | --algebra)
         mapfile -t COMPREPLY < <(compgen -f -- "$word")
         return
         ;;
@@ -38,7 +38,7 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -W "partition" -- "$word")
         return
         ;;
-    --candidate | --model | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads | --jobs | --cell)
+    --candidate | --model | --degree | --degrees | --partition | --from | --count | --index | --primes | --seed | --field | --threads | --jobs | --cell | --dimension | --entries | --steps)
         return
         ;;
     esac
@@ -55,7 +55,7 @@ _idspan()
     types) own="--degree --degrees" ;;
     basis) own="--degree --from --count" ;;
     count) own="--degree --degrees --split" ;;
-    follows) own="--candidate --all --proof --witness --primes --seed" ;;
+    follows) own="--candidate --all --proof --witness --algebra --dimension --entries --steps --primes --seed" ;;
     fresh) own="--model --degree --degrees --table --primes --seed" ;;
     draw) own="--degree --monomials --index --from --count" ;;
     matrix) own="--degree --plain --field --seed" ;;

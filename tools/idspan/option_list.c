@@ -39,6 +39,13 @@ const option option_list[OPTION_END] = {
     [OPTION_MODEL] = {"model", "NAME", "the model NAME of the file"},
     [OPTION_TABLE] = {"table", NULL, "only count, and write no identities down"},
     [OPTION_SAVE] = {"save", "FILE", "write a presentation with what is found to FILE"},
+    [OPTION_ALGEBRA] = {"algebra", "FILE",
+                        "if it does not, look for an algebra in which the identities\n"
+                        "hold and the candidate does not, and write it to FILE"},
+    [OPTION_DIMENSION] = {"dimension", "N", "of --algebra: at most dimension N (default 30)"},
+    [OPTION_ENTRIES] = {"entries", "K",
+                        "of --algebra: products with coefficients up to K (default 100)"},
+    [OPTION_STEPS] = {"steps", "K", "of --algebra: stop after K steps (default 10000000)"},
     [OPTION_FORMAT] = {"format", "F",
                        "text (for people, the default), csv, json or latex;\n"
                        "of rank also svg and html; of draw: text, ascii, svg or\n"

@@ -179,6 +179,19 @@ static bool read_value(option_id id, const char *value, settings *read)
     case OPTION_SAVE:
         read->save = value;
         return true;
+    case OPTION_ALGEBRA:
+        read->algebra = value;
+        return true;
+    case OPTION_DIMENSION:
+        if (!read_number(id, value, 1, IDS_MAX_DIMENSION, &number)) {
+            return false;
+        }
+        read->dimension = (uint32_t)number;
+        return true;
+    case OPTION_ENTRIES:
+        return read_number(id, value, 1, INT64_MAX, &read->entries);
+    case OPTION_STEPS:
+        return read_number(id, value, 1, UINT64_MAX, &read->steps);
     case OPTION_FORMAT:
         read->format_name = value; /* which there are depends on the task */
         return true;
@@ -375,7 +388,7 @@ static bool check_pairs(const settings *read)
         {OPTION_PLAIN, OPTION_FIELD},    {OPTION_PLAIN, OPTION_SEED},
         {OPTION_CANDIDATE, OPTION_ALL},  {OPTION_PROOF, OPTION_ALL},
         {OPTION_WITNESS, OPTION_ALL},    {OPTION_PARTITION, OPTION_CROSS_CHECK},
-        {OPTION_TABLE, OPTION_SAVE},
+        {OPTION_TABLE, OPTION_SAVE},     {OPTION_ALGEBRA, OPTION_ALL},
         {OPTION_RUN, OPTION_PARTITION},  {OPTION_RUN, OPTION_CROSS_CHECK},
         {OPTION_RUN, OPTION_THREADS},    {OPTION_PLAN, OPTION_LIST_CELLS},
         {OPTION_PLAN, OPTION_CELL},      {OPTION_CELL, OPTION_LIST_CELLS}};
@@ -411,7 +424,7 @@ static bool check(settings *read)
     if (read->file == NULL && read->run == NULL) {
         complain("\"%s\" wants a %s file, or - for standard input:\n"
                  "        idspan %s FILE%s",
-                 chosen->name, chosen->wants_text ? "proof or witness" : "presentation",
+                 chosen->name, chosen->wants_text ? "proof, witness or algebra" : "presentation",
                  chosen->name, chosen->usage);
         return false;
     }

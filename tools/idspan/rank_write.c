@@ -173,6 +173,9 @@ ids_status rank_write(session *s, const rank_view *view)
     size_t count = 0;
     ids_writer *writer = NULL;
 
+    if (is_report_format(s->set)) {
+        return report_view(s, view);
+    }
     if (text && view->count == 0) {
         return IDS_OK;
     }

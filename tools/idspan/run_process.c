@@ -18,6 +18,9 @@
 
 #define SLACK_BYTES ((uint64_t)64 << 20) /* for stacks and what the libraries below take */
 
+/* The sanitizers take terabytes of addresses, so no limit can be set under them. */
+#if !defined(__SANITIZE_ADDRESS__) && !defined(__SANITIZE_THREAD__)
+
 /* Address space of this process; 0 when the system does not tell. */
 static uint64_t address_space(void)
 {
@@ -33,10 +36,8 @@ static uint64_t address_space(void)
     return (uint64_t)pages * (uint64_t)sysconf(_SC_PAGESIZE);
 }
 
-/* The sanitizers take terabytes of addresses, so no limit can be set under them. */
 static void limit_memory(const session *s)
 {
-#if !defined(__SANITIZE_ADDRESS__) && !defined(__SANITIZE_THREAD__)
     ids_memory memory = ids_ctx_memory(s->ctx);
     uint64_t have = address_space();
     struct rlimit limit = {0};
@@ -50,10 +51,16 @@ static void limit_memory(const session *s)
         limit.rlim_cur = wanted;
         setrlimit(RLIMIT_AS, &limit);
     }
-#else
-    (void)s;
-#endif
 }
+
+#else
+
+static void limit_memory(const session *s)
+{
+    (void)s;
+}
+
+#endif
 
 void crew_settle(const session *s, pid_t parent)
 {

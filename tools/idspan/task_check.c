@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * idspan check: verifies a derivation or witness that `follows` or anybody else has written.
+ * idspan check: verifies a derivation, witness or counterexample that `follows` or anybody else has
+ * written.
  */
 #include <string.h>
 
@@ -19,6 +20,15 @@ static ids_status write_verdict(session *s, const ids_check_report *report)
                              "and add up to it, exactly.\n",
                              blank, report->claim, (unsigned)report->degree,
                              digits_of(report->terms).text, digits_of(report->monomials).text);
+    }
+    if (report->dimension > 0) {
+        return output_printf(&s->out,
+                             "\nVerified: the candidate%s%s of degree %u does not follow. The "
+                             "identities hold in the\nalgebra of dimension %u, on all tuples of "
+                             "basis elements (%s for all identities\ntogether), and the candidate "
+                             "is not 0 at the values in the file.\n",
+                             blank, report->claim, (unsigned)report->degree,
+                             (unsigned)report->dimension, digits_of(report->tuples).text);
     }
     return output_printf(&s->out,
                          "\nVerified: the candidate%s%s of degree %u does not follow. The witness, "
@@ -46,7 +56,9 @@ static ids_status run(session *s)
     digits degree = digits_of(report.degree);
     digits identities = digits_of(report.identities);
     digits terms = digits_of(report.terms);
-    digits verified = digits_of(report.follows ? report.monomials : report.consequences);
+    digits verified = digits_of(report.follows         ? report.monomials
+                                : report.dimension > 0 ? report.tuples
+                                                       : report.consequences);
     const char *cells[COLUMNS] = {report.claim,    degree.text, report.follows ? "yes" : "no",
                                   identities.text, terms.text,  verified.text};
     TRY(ids_writer_create(s->ctx, s->set->format, "check", columns, COLUMNS, output_sink, &s->out,
@@ -64,16 +76,18 @@ done:
 const task task_check = {
     .name = "check",
     .usage = "",
-    .summary = "verify a proof or witness file",
+    .summary = "verify a proof, witness or algebra file",
     .details =
-        "FILE is a derivation or a witness, as \"follows\" writes them; it has the identities and\n"
-        "the candidate in it. A derivation is multiplied out, and its terms must add up to the\n"
-        "candidate. A witness must be 0 on every consequence of the identities in the variables\n"
-        "of the candidate, and not on the candidate. All of it is recomputed exactly, by code\n"
-        "that has nothing in common with the search.\n"
+        "FILE is a derivation, a witness or an algebra, as \"follows\" writes them; it has the\n"
+        "identities and the candidate in it. A derivation is multiplied out, and its terms must\n"
+        "add up to the candidate. A witness must be 0 on every consequence of the identities in\n"
+        "the variables of the candidate, and not on the candidate. In an algebra the identities\n"
+        "must hold on all tuples of basis elements, and the candidate must not be 0 at the values\n"
+        "given. All of it is recomputed exactly, by code that has nothing in common with the\n"
+        "search.\n"
         "\n"
         "A file that is damaged, or does not show what it claims, is refused with status 2.\n"
-        "`verified` counts the monomials that were added up, or the consequences.\n"
+        "`verified` counts the monomials that were added up, the consequences, or the tuples.\n"
         "\n"
         "Columns: candidate,degree,follows,identities,terms,verified",
     .examples = "  idspan check moufang.proof\n"

@@ -112,6 +112,44 @@ done:
     return st;
 }
 
+static ids_status write_algebra(session *s, size_t index, const ids_follows_options *options)
+{
+    ids_status st = IDS_OK;
+    ids_counterexample *found = NULL;
+    output out = {0};
+    const ids_counterexample_options limits = {.struct_size = sizeof limits,
+                                               .dimension = s->set->dimension,
+                                               .entries = s->set->entries,
+                                               .steps = s->set->steps,
+                                               .seed = options->seed};
+
+    TRY(ids_counterexample_find(s->ctx, s->pres, index, &limits, &found));
+    if (!output_open(&out, s->set->algebra, s->set->file)) {
+        st = IDS_ERR_IO;
+        goto done;
+    }
+    if (s->set->format == IDS_FORMAT_LATEX) {
+        st = ids_counterexample_latex(s->ctx, found, output_sink, &out);
+    } else {
+        st = ids_counterexample_write(s->ctx, found, output_sink, &out);
+    }
+    if (!output_close(&out)) {
+        st = IDS_ERR_IO;
+    }
+done:
+    ids_counterexample_free(found);
+    return st;
+}
+
+/* Explains why something was not written. */
+static ids_status explain(session *s, ids_status st, const char *what)
+{
+    if (st != IDS_OK && st != IDS_ERR_IO) {
+        session_fail(s, st, "no %s was written: %s", what, ids_ctx_message(s->ctx));
+    }
+    return st;
+}
+
 /* Writes what was asked for and fits the answer; *proved when the answer is exact by it. */
 static ids_status write_certificate(session *s, size_t index, const ids_follows_options *options,
                                     bool follows, bool *proved)
@@ -119,16 +157,18 @@ static ids_status write_certificate(session *s, size_t index, const ids_follows_
     ids_status st = IDS_OK;
 
     if (follows && s->set->proof != NULL) {
-        st = write_proof(s, index, options);
-        *proved = st == IDS_OK;
-    } else if (!follows && s->set->witness != NULL) {
-        st = write_witness(s, index, options);
-        *proved = st == IDS_OK;
+        TRY(explain(s, write_proof(s, index, options), "proof"));
+        *proved = true;
     }
-    if (st != IDS_OK && st != IDS_ERR_IO) {
-        session_fail(s, st, "no %s was written: %s", follows ? "proof" : "witness",
-                     ids_ctx_message(s->ctx));
+    if (!follows && s->set->witness != NULL) {
+        TRY(explain(s, write_witness(s, index, options), "witness"));
+        *proved = true;
     }
+    if (!follows && s->set->algebra != NULL) {
+        TRY(explain(s, write_algebra(s, index, options), "algebra"));
+        *proved = true;
+    }
+done:
     return st;
 }
 
@@ -243,17 +283,28 @@ done:
     return st;
 }
 
+/* Whether two options name the same file. */
+static bool same_file(const char *a, const char *b)
+{
+    return a != NULL && b != NULL && strcmp(a, b) == 0;
+}
+
 static bool check(settings *read)
 {
+    const uint64_t limits = BIT(OPTION_DIMENSION) | BIT(OPTION_ENTRIES) | BIT(OPTION_STEPS);
+
     if (read->candidate == NULL && (read->seen & BIT(OPTION_ALL)) == 0) {
         complain("\"follows\" wants a candidate, or --all:\n        idspan follows %s%s",
                  read->file, task_follows.usage);
         return false;
     }
-    if ((read->proof != NULL && read->output != NULL && strcmp(read->proof, read->output) == 0) ||
-        (read->witness != NULL && read->output != NULL &&
-         strcmp(read->witness, read->output) == 0)) {
-        complain("--output and --proof or --witness name the same file");
+    if (same_file(read->proof, read->output) || same_file(read->witness, read->output) ||
+        same_file(read->algebra, read->output) || same_file(read->algebra, read->witness)) {
+        complain("--output, --witness or --algebra and another option name the same file");
+        return false;
+    }
+    if (read->algebra == NULL && (read->seen & limits) != 0) {
+        complain("--dimension, --entries and --steps are limits of --algebra FILE");
         return false;
     }
     return true;
@@ -262,6 +313,7 @@ static bool check(settings *read)
 const task task_follows = {
     .name = "follows",
     .usage = " --candidate NAME [--proof FILE] [--witness FILE] | --all\n"
+             "          [--algebra FILE [--dimension N] [--entries K] [--steps K]]\n"
              "          [--primes K] [--seed S]",
     .summary = "decide whether a candidate follows from the identities",
     .details =
@@ -275,15 +327,19 @@ const task task_follows = {
         "where the consequence stands. With --format latex it is a LaTeX formula. --witness\n"
         "writes a refutation: an integer for each monomial, such that all consequences get 0 and "
         "the\n"
-        "candidate does not. Both make the answer exact, and \"check\" verifies them.\n"
+        "candidate does not. --algebra looks for a small algebra in which the identities hold and\n"
+        "the candidate does not, and writes its multiplication table, as LaTeX with\n"
+        "--format latex. All of them make the answer exact, and \"check\" verifies them.\n"
         "\n"
         "Exit status: 0 it follows, all of them with --all; 1 it does not.\n"
         "Columns: candidate,degree,follows,certainty",
     .examples = "  idspan follows pair.pres --all\n"
                 "  idspan follows pair.pres --candidate exchange --proof exchange.proof\n"
-                "  idspan follows pair.pres --candidate hybrid --witness hybrid.witness",
+                "  idspan follows pair.pres --candidate hybrid --witness hybrid.witness\n"
+                "  idspan follows pair.pres --candidate hybrid --algebra hybrid.alg",
     .options = BIT(OPTION_CANDIDATE) | BIT(OPTION_ALL) | BIT(OPTION_PROOF) | BIT(OPTION_WITNESS) |
-               BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
+               BIT(OPTION_ALGEBRA) | BIT(OPTION_DIMENSION) | BIT(OPTION_ENTRIES) |
+               BIT(OPTION_STEPS) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
     .check = check,
     .run = run,
 };

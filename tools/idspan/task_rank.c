@@ -88,7 +88,7 @@ static ids_status run(session *s)
 
     keep_reason(s, table, st);
     if (table != NULL) {
-        written = is_report_format(set) ? report_ranks(s, table) : write_table(s, table, st);
+        written = write_table(s, table, st);
     }
     ids_rank_table_free(table);
     return written != IDS_OK ? written : st;
@@ -127,7 +127,8 @@ const task task_rank = {
         "When a limit is hit, or after Ctrl-C, the degrees that were finished are shown.\n"
         "\n"
         "--format svg draws the growth of the dimensions and, by partition, the multiplicities;\n"
-        "--format html writes one page with tables, charts, presentation and provenance.\n"
+        "--format html writes one page with tables, charts, presentation and provenance, of a\n"
+        "run also with time and memory of each part, and with what is missing or failed.\n"
         "\n"
         "Columns: degree,free,consequences,quotient,certainty\n"
         "by partition: degree,partition,dimension,free,consequences,quotient,certainty",

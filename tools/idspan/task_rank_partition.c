@@ -70,6 +70,10 @@ bool rank_check(settings *read)
         complain("--by can be partition, not \"%s\"", read->by);
         return false;
     }
+    if (is_given(read, OPTION_PLAN) && is_report_format(read)) {
+        complain("a plan is a table: --format can be text, csv, json or latex");
+        return false;
+    }
     if (!by_partition) {
         if (is_given(read, OPTION_CROSS_CHECK)) {
             complain("--cross-check is for --by partition: the totals are compared with those of "
@@ -178,7 +182,7 @@ ids_status rank_by_partition(session *s)
 
     keep_reason(s, table, st);
     if (table != NULL) {
-        written = is_report_format(set) ? report_partitions(s, table) : write_table(s, table, st);
+        written = write_table(s, table, st);
     }
     ids_partition_table_free(table);
     return written != IDS_OK ? written : st;

@@ -51,6 +51,10 @@ typedef enum option_id {
     OPTION_MODEL,
     OPTION_TABLE,
     OPTION_SAVE,
+    OPTION_ALGEBRA,
+    OPTION_DIMENSION,
+    OPTION_ENTRIES,
+    OPTION_STEPS,
     OPTION_FORMAT,
     OPTION_OUTPUT,
     OPTION_MEMORY,
@@ -101,6 +105,10 @@ typedef struct settings {
     const char *witness;        /* value of --witness, NULL: none */
     const char *model;          /* value of --model, NULL: none */
     const char *save;           /* value of --save, NULL: none */
+    const char *algebra;        /* value of --algebra, NULL: none */
+    uint32_t dimension;         /* of --algebra; 0: the default */
+    uint64_t entries;           /* likewise */
+    uint64_t steps;             /* likewise */
     const char *format_name; /* value of --format, as written */
     ids_format format;       /* its place in the list of formats of the task */
     const char *output; /* NULL: standard output */
@@ -188,6 +196,7 @@ typedef struct rank_view {
     const char *stopped; /* why there is no more; NULL: there is */
 } rank_view;
 
+/* In the format of --format, pictures and pages included. */
 ids_status rank_write(session *s, const rank_view *view);
 
 /* Appends a prime to a list with blanks between; a long list is cut, since the seed tells the
@@ -195,7 +204,7 @@ ids_status rank_write(session *s, const rank_view *view);
 #define PRIMES_CHARS 4096u
 void primes_append(char *text, uint64_t prime);
 
-/* The formats of `rank` and `report` beyond those of tables: numbers that go on from ids_format,
+/* The formats of `rank` beyond those of tables: numbers that go on from ids_format,
  * in the order of their names in rank_formats. */
 enum { FORMAT_SVG = IDS_FORMAT_LATEX + 1, FORMAT_HTML };
 extern const char *const rank_formats[];
@@ -206,9 +215,8 @@ bool is_report_format(const settings *set);
 ids_status report_start(session *s, const char *source, const char *text, size_t length,
                         ids_report **report);
 ids_status report_finish(session *s, ids_report *report);
-/* Writes a table as picture or page; degrees that are not in it are shown as missing. */
-ids_status report_ranks(session *s, const ids_rank_table *table);
-ids_status report_partitions(session *s, const ids_partition_table *table);
+/* Writes a table, or a run, as picture or page; what is not there is shown as missing. */
+ids_status report_view(session *s, const rank_view *view);
 ids_status report_run(session *s, const ids_run *run);
 
 /* Said of ranks over a small field. */
