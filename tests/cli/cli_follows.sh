@@ -75,6 +75,18 @@ run 0 check assoc.witness
 has out "Verified: the candidate assoc of degree 3 does not follow."
 run 0 follows alternative.pres --candidate moufang --proof moufang.tex --format latex
 grep -q '\\begin{eqnarray\*}' moufang.tex || complain "$last: $(head moufang.tex)"
+# A plain article has room for it.
+if command -v pdflatex >/dev/null; then
+    printf 'candidate c: ((((x*x)*x)*x)*x)*x = ((x*x)*x)*((x*x)*x)\n' >>jordan.pres
+    run 0 follows jordan.pres --candidate c --proof sixth.tex --format latex
+    for name in moufang sixth; do
+        printf '\\documentclass{article}\\begin{document}\\input{%s}\\end{document}\n' $name \
+            >article-$name.tex
+        pdflatex -interaction=nonstopmode article-$name.tex >latex.log 2>&1 ||
+            complain "$name.tex does not compile: $(grep '^!' latex.log)"
+        ! grep -q 'Overfull' latex.log || complain "$name.tex: $(grep Overfull latex.log)"
+    done
+fi
 run 2 check moufang.tex
 has err "moufang.tex:1:1: expected \"idspan proof 1\""
 
