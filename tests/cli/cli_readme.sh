@@ -1,9 +1,9 @@
 #!/bin/bash
 # SPDX-License-Identifier: BSD-2-Clause
 #
-# What README.md shows is what the tool says: every command "    $ idspan ..." or "    $ cat ...", and
-# every one that ends in "| idspan ...", is run in a copy of data/crosses. Its output and messages
-# must be the indented lines that follow. A line "..." stands for any lines.
+# What README.md shows is what the tool says: every command "    $ idspan ..." or "    $ cat ...",
+# and every one that ends in "| idspan ...", is run in a copy of data/crosses. Its output and
+# messages must be the indented lines that follow. A line "..." stands for any lines.
 here=$(cd "$(dirname "${BASH_SOURCE[0]}")" && pwd)
 # shellcheck source-path=SCRIPTDIR source=common.sh
 . "$here/common.sh"
