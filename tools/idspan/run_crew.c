@@ -373,13 +373,16 @@ done:
     return st;
 }
 
-/* Puts a cell in its place among the others, the largest first. */
+/*
+ * Puts a cell in its place among the others, the largest first, so that the workers end together.
+ * One worker takes them in the order of the table: of whole degrees, the lowest first.
+ */
 static void queue_cell(crew *w, size_t cell)
 {
     const board_cell *cells = w->o->b->cells;
     size_t at = w->queue_count;
 
-    while (at > 0 && cells[w->queue[at - 1]].seconds < cells[cell].seconds) {
+    while (w->slot_count > 1 && at > 0 && cells[w->queue[at - 1]].seconds < cells[cell].seconds) {
         w->queue[at] = w->queue[at - 1];
         at--;
     }
