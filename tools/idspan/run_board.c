@@ -17,6 +17,7 @@
 #define MINUTE 60.0
 #define QUIET_SECONDS 1.0
 #define LOWER_SHARE 0.1
+#define MOST_OF_CELL 0.9 /* of a running cell counts as done, at most */
 
 board *board_create(size_t cells)
 {
@@ -95,6 +96,9 @@ static figures take_figures(const monitor *m)
         if (mark != MARK_UNWANTED) {
             work += c->seconds;
             done += mark == MARK_DONE || mark == MARK_FAILED ? c->seconds : 0;
+            done += mark == MARK_RUNNING
+                        ? fmin(now_seconds() - c->started, MOST_OF_CELL * c->seconds)
+                        : 0;
         }
     }
     f.all = m->b->count;
