@@ -115,8 +115,12 @@ static ids_status give_up_above(supervisor *v, uint32_t degree, const char *reas
     char text[BOARD_TEXT + 80] = "";
     size_t count = 0;
 
-    snprintf(text, sizeof text, "degree %u, which it needs, could not be computed: %s",
-             (unsigned)degree, reason);
+    if (degree > 0) {
+        snprintf(text, sizeof text, "degree %u, which it needs, could not be computed: %s",
+                 (unsigned)degree, reason);
+    } else {
+        snprintf(text, sizeof text, "%s", reason);
+    }
     for (size_t i = 0; st == IDS_OK && i < v->b->count; i++) {
         ids_cell cell = {0};
         st = ids_run_cell(v->run, i, &cell);
@@ -128,11 +132,23 @@ static ids_status give_up_above(supervisor *v, uint32_t degree, const char *reas
             count++;
         }
     }
-    if (count > 0) {
+    if (count > 0 && degree == 0) {
+        complain("%zu cells are given up for now: %s", count, reason);
+    } else if (count > 0) {
         complain("degree %u, which %zu cells of higher degrees need, could not be computed: %s",
                  (unsigned)degree, count, reason);
     }
     return st;
+}
+
+static size_t count_waiting(const supervisor *v)
+{
+    size_t waiting = 0;
+
+    for (size_t i = 0; i < v->b->count; i++) {
+        waiting += atomic_load(&v->b->cells[i].mark) == MARK_WAITING;
+    }
+    return waiting;
 }
 
 /* The largest degree with a cell that waits; 0: none does. */
@@ -173,6 +189,7 @@ static ids_status supervise(supervisor *v)
     while ((top = top_degree(v)) > 0) {
         int status = 0;
         char reason[BOARD_TEXT] = "";
+        size_t waiting = count_waiting(v);
         v->b->message[0] = '\0';
         pid_t grower = start_grower(v, top, alone ? 1 : v->jobs);
         if (grower < 0) {
@@ -195,6 +212,8 @@ static ids_status supervise(supervisor *v)
             }
         } else if (!ended_well && growing > 0) {
             TRY(give_up_above(v, growing < top ? growing : 0, reason));
+        } else if (count_waiting(v) == waiting) {
+            TRY(give_up_above(v, 0, reason)); /* not one cell was as much as begun */
         }
         alone = !ended_well && !alone;
     }
