@@ -73,6 +73,29 @@ START_TEST(test_jordan)
 }
 END_TEST
 
+/*
+ * Commutative with x^2 x^2 = 0: the columns by the formula above, and the values that were set as
+ * the goal of this engine (common practice, no source).
+ */
+START_TEST(test_squares)
+{
+    tower t;
+    idsi_level level;
+
+    open_tower(&t, "square-zero-squares.pres", PRIME);
+    for (uint32_t d = 1; d <= 8; d++) {
+        TEST_OK(t.ctx, idsi_tower_grow(&t.tower, true));
+    }
+    TEST_OK(t.ctx, idsi_level_plan(&t.tower, &level));
+    ck_assert_uint_eq(level.columns, commutative_columns(&t.tower, 9));
+    ck_assert_uint_eq(level.columns, 1371132);
+    idsi_level_clear(t.ctx, &level);
+    TEST_OK(t.ctx, idsi_tower_grow(&t.tower, false));
+    ck_assert_uint_eq(t.tower.level[9].dimension, 1139670);
+    close_tower(&t);
+}
+END_TEST
+
 /* ---- tables ------------------------------------------------------------------------------ */
 
 typedef struct check {
@@ -191,6 +214,7 @@ int main(void)
 
     tcase_set_timeout(tcase, 30);
     tcase_add_test(tcase, test_jordan);
+    tcase_add_test(tcase, test_squares);
     tcase_add_loop_test(tcase, test_tables, 0, (int)engine_variety_count);
     tcase_add_test(tcase, test_same_normal_forms);
     suite_add_tcase(suite, tcase);
