@@ -4,8 +4,8 @@
 # tested.sh SOURCE_DIR MISUSE_CALLS
 #
 # Every public function that can run out of memory (its comment says so) is called in tests/oom, or
-# in another test that uses TEST_OOM; every one in tests/thread, and every one is in the calls that misuse.sh has written. Prints how
-# many of each there are.
+# in another test that uses TEST_OOM; every one is called in tests/thread; and every one is in the
+# calls that misuse.sh has written. Prints how many of each there are.
 here=$(cd "$(dirname "${BASH_SOURCE[0]}")" && pwd)
 # shellcheck source-path=SCRIPTDIR source=common.sh
 . "$here/common.sh"

@@ -21,11 +21,13 @@ typedef struct world {
     ids_follows *no;
     ids_derivation *derivation;
     ids_witness *witness;
+    ids_counterexample *counterexample;
 } world;
 
 static void make_world(ids_ctx *ctx, world *w)
 {
     static const char polynomial[] = "3*((a*b)*c)*d - 1/2*(a*b)*(c*d)";
+    const ids_counterexample_options few = {.struct_size = sizeof few, .steps = 10000};
     const ids_normal_options exact = {.struct_size = sizeof exact, .exact = true};
 
     MUST(ids_presentation_read(ctx, text, sizeof text - 1, "text", &w->pres));
@@ -38,10 +40,12 @@ static void make_world(ids_ctx *ctx, world *w)
     MUST(ids_follows_decide(ctx, w->pres, 1, NULL, &w->no));
     MUST(ids_derivation_find(ctx, w->pres, 0, NULL, &w->derivation));
     MUST(ids_witness_find(ctx, w->pres, 1, NULL, &w->witness));
+    MUST(ids_counterexample_find(ctx, w->pres, 1, &few, &w->counterexample));
 }
 
 static void free_world(world *w)
 {
+    ids_counterexample_free(w->counterexample);
     ids_witness_free(w->witness);
     ids_derivation_free(w->derivation);
     ids_follows_free(w->no);
@@ -173,7 +177,8 @@ static int keep(void *user, const char *bytes, size_t length)
 
 static void use_certificates(ids_ctx *ctx, const world *w, uint64_t *sum)
 {
-    sheet files[2] = {{0}};
+    int64_t value[IDS_MAX_DIMENSION] = {0};
+    sheet files[3] = {{0}};
 
     sum_number(sum, ids_derivation_count(w->derivation));
     sum_number(sum, ids_derivation_first_count(w->derivation));
@@ -181,7 +186,12 @@ static void use_certificates(ids_ctx *ctx, const world *w, uint64_t *sum)
     MUST(ids_derivation_latex(ctx, w->derivation, sum_sink, sum));
     MUST(ids_derivation_write(ctx, w->derivation, keep, &files[0]));
     MUST(ids_witness_write(ctx, w->witness, keep, &files[1]));
-    for (size_t i = 0; i < 2; i++) {
+    MUST(ids_counterexample_write(ctx, w->counterexample, keep, &files[2]));
+    MUST(ids_counterexample_latex(ctx, w->counterexample, sum_sink, sum));
+    MUST(ids_counterexample_value(w->counterexample, 0, value, IDS_MAX_DIMENSION));
+    sum_number(sum, (uint64_t)value[0]);
+    sum_number(sum, ids_algebra_dimension(ids_counterexample_algebra(w->counterexample)));
+    for (size_t i = 0; i < 3; i++) {
         ids_check_report report;
         MUST(ids_certificate_check(ctx, files[i].bytes, files[i].length, NULL, &report));
         sum_number(sum, report.terms);
