@@ -396,7 +396,7 @@ IDS_API IDS_MUST_USE ids_status ids_counterexample_write(ids_ctx *ctx,
                                                          ids_sink_fn sink, void *sink_user);
 
 /**
- * Writes the multiplication table of a counterexample as LaTeX, to be read with \input into a
+ * Writes the multiplication table of a counterexample as LaTeX, to be read with \\input into a
  * document. No package is needed.
  *
  * @param ctx             borrowed.

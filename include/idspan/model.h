@@ -19,8 +19,10 @@ extern "C" {
 /**
  * Brings a file that a model names: hands its bytes to `sink`, in pieces, with sink_user.
  *
- * @param user  what was given to ids_model_open().
- * @param name  borrowed: the name as it stands in the presentation.
+ * @param user       what was given to ids_model_open().
+ * @param name       borrowed: the name as it stands in the presentation.
+ * @param sink       takes the bytes; what it returns ends the call, unless it is 0.
+ * @param sink_user  passed to `sink`.
  * @return 0; anything else when there is no such file, or when the sink returned it.
  */
 typedef int (*ids_load_fn)(void *user, const char *name, ids_sink_fn sink, void *sink_user);

@@ -118,6 +118,17 @@ done:
     return st;
 }
 
+/* Not lgamma(), which writes a variable of the whole process. */
+static double factorial_bits(uint32_t n)
+{
+    double bits = 0;
+
+    for (uint32_t i = 2; i <= n; i++) {
+        bits += log2(i);
+    }
+    return bits;
+}
+
 /* log2 of the orders of the row and the column group of a partition, together. */
 double idsi_partition_group_bits(const ids_partition *partition)
 {
@@ -128,12 +139,12 @@ double idsi_partition_group_bits(const ids_partition *partition)
         return INFINITY;
     }
     for (uint32_t i = 0; i < partition->length; i++) {
-        bits += lgamma(partition->part[i] + 1.0);
+        bits += factorial_bits(partition->part[i]);
     }
     for (uint32_t i = 0; i < conjugate.length; i++) {
-        bits += lgamma(conjugate.part[i] + 1.0);
+        bits += factorial_bits(conjugate.part[i]);
     }
-    return bits / log(2.0) + 1e-6;
+    return bits + 1e-6;
 }
 
 void idsi_partition_certify(const idsi_laws *laws, uint64_t blocks, uint32_t primes,

@@ -81,13 +81,18 @@ static void free_value(ids_ctx *ctx, idsi_left *value)
     }
 }
 
-/* Stores a matrix unless another thread was first; *matrix is then the stored one. */
+/* Stores a matrix, while there is room for more, unless another thread was first; *matrix is then
+ * the stored one. *owned: the matrix when it was not stored. */
 static ids_status store_value(idsi_partition_engine *engine, uint32_t shape, uint32_t expr,
-                              idsi_left **matrix)
+                              idsi_left **matrix, idsi_left **owned)
 {
     ids_status st = IDS_OK;
 
     pthread_mutex_lock(&engine->lock);
+    if (engine->value_bytes >= STORE_BYTES) {
+        *owned = *matrix;
+        goto done;
+    }
     if (2 * (engine->value_count + 1) > engine->value_slots) {
         IDSI_TRY(grow_values(engine));
     }
@@ -151,8 +156,8 @@ static ids_status get_value(idsi_scratch *s, uint32_t shape, uint32_t expr,
         return IDS_OK;
     }
     IDSI_TRY(make_value(s, shape, expr, &made));
-    if (made->m * made->k <= STORE_ENTRIES && engine->value_bytes < STORE_BYTES) {
-        IDSI_TRY(store_value(engine, shape, expr, &made));
+    if (made->m * made->k <= STORE_ENTRIES) {
+        IDSI_TRY(store_value(engine, shape, expr, &made, owned));
     } else {
         *owned = made;
     }

@@ -38,7 +38,7 @@ double idsi_cell_memory(double unknowns, double tableaux)
 
 static double factorial(uint32_t n)
 {
-    return exp(lgamma(n + 1.0));
+    return tgamma(n + 1.0);
 }
 
 static void plan_partition(const ids_run *run, const idsi_forecast_degree *degree,

@@ -68,7 +68,7 @@ static void make_cut(maker *m, uint32_t at, uint32_t size, uint32_t taken, bool 
 static void make_subtree(maker *m, uint32_t type, uint32_t at)
 {
     const ids_types *types = m->basis->types;
-    const uint32_t *children = types->children + types->list[type].children;
+    const uint32_t *children = NULL;
     idsi_split split;
     uint32_t next[IDSI_SPLIT_MAX + 1]; /* first place of what is left to deal; last: to roots */
     uint32_t left[IDSI_SPLIT_MAX + 1]; /* how much that is */
@@ -80,6 +80,7 @@ static void make_subtree(maker *m, uint32_t type, uint32_t at)
         m->length++;
         return;
     }
+    children = types->children + types->list[type].children;
     idsi_type_split(types, type, &split);
     m->room->shape[m->length] = (int8_t)(-1 - (int)types->list[type].op);
     m->length++;

@@ -4,8 +4,8 @@
 # symbols.sh ARCHIVE ASSERTIONS   (ASSERTIONS: 1 when the build has them, else 0)
 #
 # What the objects of the static library refer to and define: nothing that ends the process,
-# prints, reads the environment, jumps, or has hidden state; no writable data; no global name
-# without our prefix, which could meet another one in a static program.
+# prints, reads the environment, jumps, or has state of the whole process; no writable data; no
+# global name without our prefix, which could meet another one in a static program.
 here=$(cd "$(dirname "${BASH_SOURCE[0]}")" && pwd)
 # shellcheck source-path=SCRIPTDIR source=common.sh
 . "$here/common.sh"
@@ -19,6 +19,7 @@ forbidden=(
     rand srand random srandom drand48
     setjmp _setjmp longjmp _longjmp siglongjmp
     getenv secure_getenv setenv putenv setlocale signal sigaction
+    lgamma lgammaf lgammal strtok strerror gmtime localtime asctime ctime
 )
 # Process-wide hooks of the libraries below belong to the program, never to us.
 hooks=(

@@ -16,13 +16,16 @@ static ids_status use(ids_ctx *ctx, void *data)
 {
     ids_status st = IDS_OK;
     ids_algebra *algebra = NULL;
+    ids_algebra *made = NULL;
     ids_presentation *pres = NULL;
     char *text = NULL;
     bool holds = true;
     uint32_t tuple[3];
+    const ids_constant square = {.result = 1, .numerator = 2, .denominator = 3};
 
     (void)data;
     IDSI_TRY(ids_algebra_read(ctx, algebra_text, strlen(algebra_text), "a", &algebra));
+    IDSI_TRY(ids_algebra_create(ctx, ids_algebra_signature(algebra), 2, NULL, &square, 1, &made));
     IDSI_TRY(ids_algebra_print(ctx, algebra, &text));
     IDSI_TRY(ids_presentation_read(ctx, pres_text, strlen(pres_text), "p", &pres));
     IDSI_TRY(ids_algebra_holds(ctx, algebra, pres, IDS_ROLE_CANDIDATE, 0, &holds, tuple, 3));
@@ -30,6 +33,7 @@ static ids_status use(ids_ctx *ctx, void *data)
 done:
     ids_string_free(ctx, text);
     ids_presentation_free(pres);
+    ids_algebra_free(made);
     ids_algebra_free(algebra);
     return st;
 }
