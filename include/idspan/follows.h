@@ -297,7 +297,7 @@ typedef struct ids_counterexample_options {
     size_t struct_size; /**< sizeof(ids_counterexample_options) */
     uint32_t dimension; /**< largest dimension; 0: 30 */
     uint64_t entries;   /**< largest numerator and denominator of a structure constant; 0: 100 */
-    uint64_t steps;     /**< elementary steps, some millions a second; 0: 10,000,000 */
+    uint64_t steps;     /**< elementary steps, some 100,000 to 10,000,000 a second; 0: 10,000,000 */
     uint64_t seed;      /**< of what is chosen at random */
 } ids_counterexample_options;
 
