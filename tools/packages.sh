@@ -8,7 +8,7 @@
 is_there() {
     case $1 in
     build-essential) command -v cc && command -v c++ && command -v make ;;
-    cmake | pkg-config | valgrind) command -v "$1" ;;
+    cmake | pkg-config | valgrind | clang-tidy | cppcheck | shellcheck | groff) command -v "$1" ;;
     libgmp-dev) cc -E -x c - <<<'#include <gmp.h>' ;;
     libflint-dev) cc -E -x c - <<<'#include <flint/flint.h>' ;;
     check) pkg-config --exists check ;;

@@ -209,6 +209,7 @@ static ids_status choose_places(evaluation *e, uint32_t at)
     if (empty > e->made->degree - at) {
         return IDS_OK;
     }
+    /* cppcheck-suppress arrayIndexOutOfBoundsCond ; `at` is below the degree here */
     if (at > 0 && e->variable[at] == e->variable[at - 1]) {
         from = e->place[at - 1];
     }

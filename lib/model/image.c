@@ -35,7 +35,7 @@ static ids_status list_products(idsi_image *image, const idsi_form *form, uint32
     idsi_partition_engine *engine = image->engine;
     const ids_symmetry symmetry = engine->sig->ops[form->op].group.symmetry;
     const bool ordered =
-        place > 0 && form->degree[place] == form->degree[place - 1] &&
+        place > 0 && place < form->arity && form->degree[place] == form->degree[place - 1] &&
         (symmetry == IDS_SYMMETRY_COMMUTATIVE || symmetry == IDS_SYMMETRY_ALTERNATING);
 
     if (place == form->arity) {

@@ -46,6 +46,7 @@ uint64_t idsi_action_order(const idsi_action *action)
         kernel += is_identity(&action->list[e], action->degree);
     }
     IDSI_ASSERT(kernel > 0 && action->count % kernel == 0);
+    /* cppcheck-suppress zerodiv */
     return action->count / kernel;
 }
 

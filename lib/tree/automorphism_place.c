@@ -139,6 +139,7 @@ static uint64_t restricted_order(const places *p, uint32_t set)
         kernel += fixes;
     }
     IDSI_ASSERT(kernel > 0); /* the identity is there */
+    /* cppcheck-suppress zerodiv */
     return p->order / kernel;
 }
 

@@ -195,7 +195,7 @@ uint64_t idsi_split_rank(const idsi_split *split, uint64_t all, const uint64_t *
  * digit[2i+1] for its own labels. */
 static void rank_digits(const idsi_split *split, uint64_t rank, uint64_t *digit)
 {
-    uint64_t radix[2 * IDSI_SPLIT_MAX];
+    uint64_t radix[2 * IDSI_SPLIT_MAX] = {0};
     uint32_t left[IDSI_SPLIT_MAX + 1] = {0};
     uint32_t count = split->count;
 

@@ -357,6 +357,7 @@ uint32_t idsi_types_find_code(const ids_types *types, const idsi_token *code, si
         top -= types->sig->ops[op].arity - 1;
         stack[top - 1] = found;
     }
+    /* cppcheck-suppress uninitvar ; a code has at least one token */
     return stack[0];
 }
 

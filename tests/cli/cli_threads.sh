@@ -52,7 +52,7 @@ run 0 follows job.pres --candidate powers --proof proof.txt
 alike 0 check proof.txt
 
 run 0 --help
-for task in $(sed -n 's/^  \([a-z][a-z]*\) *written.mtx.*/\1/p' out); do
+for task in $(sed -n 's/^  \([a-z][a-z]*\) *FILE.*/\1/p' out); do
     [[ $seen == *" $task"* ]] || complain "$task was not tried"
 done
 finish
