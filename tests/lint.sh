@@ -29,7 +29,8 @@ if command -v cppcheck >/dev/null; then
         "${files[@]}" || failed=1
 fi
 if command -v shellcheck >/dev/null; then
-    shellcheck -S warning -x tests/run tests/*.sh tests/*/*.sh tools/start tools/packages.sh || failed=1
+    shellcheck -S warning -x tests/run tests/*.sh tests/*/*.sh tools/start tools/packages.sh ||
+        failed=1
 fi
 if command -v groff >/dev/null; then
     for page in tools/idspan/idspan.[0-9]; do
