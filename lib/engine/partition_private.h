@@ -123,7 +123,7 @@ typedef struct idsi_partition_engine {
     idsi_value *values;
     size_t value_slots;
     size_t value_count;
-    uint64_t value_bytes;
+    _Atomic uint64_t value_bytes;
     uint8_t *since; /* of each planned shape: the lowest degree asked for that needs it; else 0 */
 } idsi_partition_engine;
 

@@ -95,7 +95,7 @@ ids_status ids_run_plan(ids_run *run)
     tower.ctx = run->ctx;
     IDSI_TRY(idsi_laws_create(run->ctx, run->pres, &laws));
     idsi_tower_init(&tower, run->ctx, laws, prime);
-    while (known < run->options.to) {
+    while (known + 1 < run->options.to) {
         idsi_forecast_degrees(&tower, known, known + 1, degrees);
         if (degrees[known + 1].columns > QUICK_COLUMNS) {
             break;
