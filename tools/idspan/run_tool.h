@@ -3,7 +3,7 @@
  * How `rank --run` spreads its cells over processes.
  *
  *     supervisor   holds the lock, shows progress, answers signals, writes the table; it computes
- *         |        nothing, so nothing can break it
+ *         |        nothing but the plan, so little can break it
  *       grower     computes the lower degrees, once, then gives out the cells of the top degree
  *       /    \
  *  worker    worker   copies of the grower, each computing one cell after the other
