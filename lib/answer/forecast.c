@@ -9,8 +9,8 @@
  * labels, where the exponential formula divides out a symmetry that moves all distributions. The
  * dimensions of degrees that are not known yet are a share of the columns that goes on to fall like
  * the power of the degree by which it fell between the last two degrees that are. (For Jordan
- * algebras it falls as n^-0.7 to n^-0.8 in the degrees 5 to 9.) Only progress and plans depend on it,
- * so double precision will do.
+ * algebras it falls as n^-0.7 to n^-0.8 in the degrees 5 to 9.) Only progress and plans depend on
+ * it, so double precision will do.
  */
 #include <math.h>
 #include <string.h>
