@@ -150,7 +150,7 @@ static ids_status name_action(const places *p, uint32_t set, char name[IDSI_ACTI
     idsi_action action = {0};
     uint8_t number[IDS_MAX_ARITY] = {0};
 
-    for (uint32_t i = 0; i < p->arity; i++) {
+    for (uint32_t i = 0; i < p->arity && i < IDS_MAX_ARITY; i++) {
         if ((set >> i) & 1u) {
             number[i] = (uint8_t)action.degree++;
         }
