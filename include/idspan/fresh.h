@@ -18,6 +18,8 @@ typedef struct ids_fresh_options {
     size_t struct_size; /**< sizeof(ids_fresh_options) */
     uint32_t primes;    /**< number of random primes to compute with; 0: one */
     uint64_t seed;      /**< seed that primes and points are drawn from */
+    bool exact;         /**< an algebra is evaluated on all tuples of basis elements, not at random
+                             points; refused where these are too many */
     bool table_only;    /**< only count: no identities are written down, and none become known */
 } ids_fresh_options;
 
@@ -62,7 +64,7 @@ typedef struct ids_fresh ids_fresh;
  *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model, or
  *                            coefficients of an identity do not come out of 40 primes
  *         IDS_ERR_NOMEM      the allocator refused
- *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra
+ *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra, too many tuples for `exact`
  *         IDS_ERR_CANCELLED  cancelled
  * Cost: a table by partition for the consequences; for words about as much; for an algebra
  * degree! evaluations at some points.

@@ -16,6 +16,7 @@ void ids_fresh_free(ids_fresh *fresh)
         idsi_free(ctx, fresh->found);
         ids_presentation_free(fresh->known);
         idsi_free(ctx, fresh->rows);
+        idsi_free(ctx, fresh->sure);
         idsi_free(ctx, fresh->primes);
         idsi_free(ctx, fresh);
     }
@@ -113,6 +114,7 @@ static ids_status draw_primes(ids_fresh *made, const ids_fresh_options *options)
     const uint32_t count = options->primes == 0 ? 1 : options->primes;
 
     made->seed = options->seed;
+    made->exact = options->exact;
     idsi_random_seed(&random, options->seed);
     IDSI_TRY(idsi_alloc_array(made->ctx, count, sizeof *made->primes, &made->primes));
     for (uint32_t k = 0; k < count; k++) {

@@ -32,6 +32,9 @@ struct ids_fresh {
     size_t count;
     size_t capacity;
     ids_fresh_row *rows;
+    size_t sure_capacity;
+    double *sure; /* of each row the probability that the consequences are wrong */
+    bool exact;
     size_t prime_count;
     uint32_t *primes;
     uint64_t seed;

@@ -359,6 +359,29 @@ done:
     return st;
 }
 
+/*
+ * What is found holds in the model, exactly, and with it the consequences are all that holds, so
+ * only the consequences of what was known can be wrong in the table.
+ */
+static void make_sure(ids_fresh *fresh, uint32_t degree, size_t count)
+{
+    for (size_t i = 0; i < fresh->found_count; i++) {
+        if (fresh->found[i].degree == degree && fresh->found[i].bits > 0) {
+            return;
+        }
+    }
+    for (size_t i = fresh->count - 1 - count; i < fresh->count; i++) {
+        ids_fresh_row *row = &fresh->rows[i];
+        if (row->certainty == IDS_CERTAINTY_MODULAR) {
+            row->bits = idsi_error_bits(fresh->sure[i]);
+            if (fresh->sure[i] <= 0) {
+                row->certainty = IDS_CERTAINTY_EXACT;
+                row->bits = 0;
+            }
+        }
+    }
+}
+
 ids_status idsi_fresh_search(ids_fresh *fresh, uint32_t degree)
 {
     ids_status st = IDS_OK;
@@ -378,6 +401,7 @@ ids_status idsi_fresh_search(ids_fresh *fresh, uint32_t degree)
     }
     IDSI_TRY(drop_needless(fresh, rows, count));
     IDSI_TRY(rename_found(fresh, degree));
+    make_sure(fresh, degree, count);
 done:
     return st;
 }

@@ -94,6 +94,7 @@ typedef struct idsi_image {
     idsi_workspace work;
     double error; /* probability that random choices have missed a map, of the last rank */
     idsi_word_operations words; /* in words */
+    bool exact;                 /* in an algebra: all basis tuples instead of random points */
     idsi_residues *residues;    /* in an algebra, */
     size_t point_count;         /* and the values at points that were drawn so far */
     size_t point_capacity;

@@ -389,6 +389,7 @@ static ids_status run(session *s)
     ids_fresh_options options = {.struct_size = sizeof options,
                                  .primes = s->set->primes,
                                  .seed = s->set->seed,
+                                 .exact = (s->set->seen & BIT(OPTION_EXACT)) != 0,
                                  .table_only = (s->set->seen & BIT(OPTION_TABLE)) != 0};
     ids_model *model = NULL;
     ids_fresh *fresh = NULL;
@@ -436,7 +437,7 @@ static bool check(settings *read)
 const task task_fresh = {
     .name = "fresh",
     .usage = " --model NAME --degree N | --degrees A..B [--table] [--save FILE]\n"
-             "          [--primes K] [--seed S]",
+             "          [--exact] [--primes K] [--seed S]",
     .summary = "find identities of a model that the presentation does not imply",
     .details =
         "A model is made by `model NAME ...` statements of the file. For each partition, what "
@@ -450,7 +451,7 @@ const task task_fresh = {
         "Columns: degree,partition,dimension,free,holding,consequences,fresh,certainty",
     .examples = "  idspan fresh jordan.pres --model special --degree 8",
     .options = BIT(OPTION_MODEL) | BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_TABLE) |
-               BIT(OPTION_SAVE) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
+               BIT(OPTION_SAVE) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
     .most_degree = MOST_DEGREE,
     .check = check,
