@@ -440,16 +440,18 @@ const task task_fresh = {
              "          [--exact] [--primes K] [--seed S]",
     .summary = "find identities of a model that the presentation does not imply",
     .details =
-        "A model is made by `model NAME ...` statements of the file. For each partition, what "
-        "holds\n"
+        "A model is made by `model NAME ...` statements of the file. For each partition, what holds\n"
         "in the model is compared with what follows from the identities of the file, which must\n"
-        "hold there.\n"
+        "hold there. Then identities are written down that are new, as lines of a presentation:\n"
+        "each holds, does not follow from the others, and with all of them nothing is new. They\n"
+        "count as known in higher degrees. A comment tells which modules an identity adds.\n"
         "\n"
         "`free`, `holding`, `consequences` and `fresh` are multiplicities of irreducible modules,\n"
         "in the row `total` dimensions; `fresh` is holding - consequences. Where it is 0 that is\n"
         "exact, elsewhere `certainty` bounds the probability that it is wrong.\n"
         "Columns: degree,partition,dimension,free,holding,consequences,fresh,certainty",
-    .examples = "  idspan fresh jordan.pres --model special --degree 8",
+    .examples = "  idspan fresh special-jordan.pres --model special --degree 8\n"
+                "  idspan fresh octonions.pres --model octonions --degrees 4..6 --save known.pres",
     .options = BIT(OPTION_MODEL) | BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_TABLE) |
                BIT(OPTION_SAVE) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
