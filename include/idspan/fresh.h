@@ -64,7 +64,8 @@ typedef struct ids_fresh ids_fresh;
  *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model, or
  *                            coefficients of an identity do not come out of 40 primes
  *         IDS_ERR_NOMEM      the allocator refused
- *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra, too many tuples for `exact`
+ *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra, too many tuples
+ *                            for `exact`
  *         IDS_ERR_CANCELLED  cancelled
  * Cost: a table by partition for the consequences; for words about as much; for an algebra
  * degree! evaluations at some points.

@@ -6,8 +6,8 @@
  * variables, from left to right, and the tree is alternated in them. So a letter that is moved past
  * an equal one changes the sign, and arguments A and B of an operation that are exchanged change it
  * once for each letter in A and equal letter in B, besides what the operation's symmetry says. A
- * tree is zero when some exchange of equal arguments has sign -1. Letters over `variables` are even;
- * they stand for holes.
+ * tree is zero when some exchange of equal arguments has sign -1. Letters over `variables` are
+ * even; they stand for holes.
  */
 #include <string.h>
 

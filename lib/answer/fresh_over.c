@@ -2,8 +2,8 @@
 /*
  * Samples over another presentation.
  *
- * A tree becomes a polynomial in the operations there, with the same letters, and a combination is 0
- * when it is a consequence of the identities there. So numbers are drawn for the monomials there
+ * A tree becomes a polynomial in the operations there, with the same letters, and a combination is
+ * 0 when it is a consequence of the identities there. So numbers are drawn for the monomials there
  * that are not rewritten by the consequences, extended to all others by the rewriting rules, and a
  * tree gets the sum of those of its monomials.
  */

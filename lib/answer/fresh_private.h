@@ -101,7 +101,7 @@ ids_status idsi_space_draw(idsi_space_search *s);
 ids_status idsi_space_lift(idsi_space_search *s, bool modulo, mpz_t **rows, size_t *count);
 void idsi_rows_clear(ids_ctx *ctx, mpz_t *rows, size_t count);
 
-/* ---- texts (fresh_text.c) ---------------------------------------------------------------------- */
+/* ---- texts (fresh_text.c) -------------------------------------------------------------------- */
 
 /* Fills in the texts of an identity from its row, and its terms; it has its name. */
 ids_status idsi_found_write(const idsi_space_search *s, mpz_t *row, idsi_found *found);
@@ -112,7 +112,7 @@ void idsi_found_clear(ids_ctx *ctx, idsi_found *found);
 ids_status idsi_fresh_text(ids_ctx *ctx, const ids_fresh *fresh, size_t without, bool comments,
                            char **text);
 
-/* ---- short ones (fresh_short.c) --------------------------------------------------------------- */
+/* ---- short ones (fresh_short.c) -------------------------------------------------------------- */
 
 /* Rough length of a vector in print: its terms, and the bits of its coefficients. */
 uint64_t idsi_short_length(mpz_t *row, size_t count);

@@ -3,15 +3,15 @@
  * The search for new identities of one degree.
  *
  * Partitions are taken one by one. In the weight space of a partition, with even letters, all of
- * what is new belongs to larger partitions or to this one; with odd letters, to smaller ones or this
- * one. The list of partitions, largest first, is cut in two so that the weight spaces are small: the
- * first part is gone through from the largest partition down with even letters, the second from the
- * smallest up with odd ones. What is found becomes known at once. So in each weight space only this
- * partition is new, and every dimension of it is one module.
+ * what is new belongs to larger partitions or to this one; with odd letters, to smaller ones or
+ * this one. The list of partitions, largest first, is cut in two so that the weight spaces are
+ * small: the first part is gone through from the largest partition down with even letters, the
+ * second from the smallest up with odd ones. What is found becomes known at once. So in each
+ * weight space only this partition is new, and every dimension of it is one module.
  *
  * Each identity is read back from its text and verified: it holds in the model, and the
- * multiplicity of its partition in the quotient falls. In the end each is left out once, to see what
- * is lost without it; one that is not missed goes.
+ * multiplicity of its partition in the quotient falls. In the end each is left out once, to see
+ * what is lost without it; one that is not missed goes.
  */
 #include <math.h>
 #include <stdio.h>
@@ -288,7 +288,7 @@ static void remove_found(ids_fresh *fresh, size_t i)
     fresh->found_count--;
 }
 
-/* What is lost without each identity of a degree. One that is not missed goes, and ends the pass. */
+/* What is lost without each identity of a degree. One that is not missed goes: end of pass. */
 static ids_status pass(ids_fresh *fresh, const ids_fresh_row *rows, size_t count,
                        const uint32_t *all, uint32_t *left, bool *dropped)
 {

@@ -4,9 +4,9 @@
  *
  *     [ 1 | sample ]     a row a monomial that the consequences do not rewrite
  *
- * is brought to echelon form from the right. Rows that have become 0 in the sample are identities of
- * the model in these monomials. The form is the reduced one, which depends on the space alone; so
- * residues mod several primes belong to the same fractions, and are lifted to them.
+ * is brought to echelon form from the right. Rows that have become 0 in the sample are identities
+ * of the model in these monomials. The form is the reduced one, which depends on the space alone;
+ * so residues mod several primes belong to the same fractions, and are lifted to them.
  */
 #include <string.h>
 

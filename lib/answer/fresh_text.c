@@ -3,8 +3,8 @@
  * New identities as text, and the presentation that has them.
  *
  * With even letters the polynomial is printed in its letters, each as often as it occurs. With odd
- * ones every letter becomes as many variables as it occurs, from left to right in each term, and the
- * statement says that the polynomial is to be alternated in them.
+ * ones every letter becomes as many variables as it occurs, from left to right in each term, and
+ * the statement says that the polynomial is to be alternated in them.
  */
 #include <stdio.h>
 #include <string.h>

@@ -133,9 +133,9 @@ ids_status idsi_over_vanishes(ids_ctx *ctx, idsi_partition_engine *base, const i
                               bool *zero);
 
 /* ---- samples (sample_words.c, sample_algebra.c) ------------------------------------------------
- * Trees with repeated letters, evaluated: a row of `width` residues each, such that a combination of
- * trees is 0 in the model exactly when that of the rows is, but for bad luck with random choices.
- * Odd letters as in words.
+ * Trees with repeated letters, evaluated: a row of `width` residues each, such that a combination
+ * of trees is 0 in the model exactly when that of the rows is, but for bad luck with random
+ * choices. Odd letters as in words.
  */
 typedef struct idsi_sample {
     ids_ctx *ctx;

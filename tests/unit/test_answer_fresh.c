@@ -2,7 +2,8 @@
 /*
  * New identities that are written down: with them nothing is new any more, each of them is missed
  * when it is left out, they hold, and they are short. The numbers of modules have their sources in
- * test_published_models.c; the lengths are what this program reaches, so that it is not worse later.
+ * test_published_models.c; the lengths are what this program reaches, so that it is not worse
+ * later.
  */
 #include <stdio.h>
 #include <stdlib.h>

@@ -440,10 +440,10 @@ const task task_fresh = {
              "          [--exact] [--primes K] [--seed S]",
     .summary = "find identities of a model that the presentation does not imply",
     .details =
-        "A model is made by `model NAME ...` statements of the file. For each partition, what holds\n"
-        "in the model is compared with what follows from the identities of the file, which must\n"
-        "hold there. Then identities are written down that are new, as lines of a presentation:\n"
-        "each holds, does not follow from the others, and with all of them nothing is new. They\n"
+        "A model is made by `model NAME ...` statements of the file. For each partition, what\n"
+        "holds in the model is compared with what follows from the identities of the file,\n"
+        "which must hold there. Then identities are written down that are new, as lines of a\n"
+        "presentation: each holds, does not follow from the others, and with all of them nothing is new. They\n"
         "count as known in higher degrees. A comment tells which modules an identity adds.\n"
         "\n"
         "`free`, `holding`, `consequences` and `fresh` are multiplicities of irreducible modules,\n"

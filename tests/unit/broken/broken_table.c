@@ -169,8 +169,8 @@ const broken broken_table[] = {
     {OP "identity n: x*x = y*y\n", 0, P, 2, 13, "'x' stands 2 times in x*x but 0 times in y*y"},
     {OP "identity n: x*y\nidentity n: y*x\n", 0, P, 3, 10, "the name 'n' is in use, in line 2"},
     {OP "identity n: x*y\ncandidate n: y*x\n", 0, P, 3, 11, "the name 'n' is in use"},
-    {OP "identity n : m : x\n", 0, P, 2, 16, "expected an operation, '=' or the end"},
-    {OP "identity x*y, y*x\n", 0, P, 2, 13, "expected an operation, '=' or the end"},
+    {OP "identity n : m : x\n", 0, P, 2, 16, "expected an operation, '=', 'alternating'"},
+    {OP "identity x*y, y*x\n", 0, P, 2, 13, "expected an operation, '=', 'alternating'"},
     {OP "identity \"x\"\n", 0, P, 2, 10, "missing operand"},
 
     /* ---- definitions ---- */
