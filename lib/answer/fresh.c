@@ -125,6 +125,28 @@ done:
     return st;
 }
 
+/* One degree. When it ends early, nothing of it is left. */
+static ids_status add_degree(ids_fresh *made, uint32_t degree, bool table_only)
+{
+    ids_status st = IDS_OK;
+    const size_t rows = made->count;
+    const size_t found = made->found_count;
+
+    IDSI_TRY(
+        idsi_fresh_degree(made, made->known == NULL ? made->model->pres : made->known, degree));
+    if (!table_only && made->rows[made->count - 1].fresh > 0) {
+        IDSI_TRY(idsi_fresh_search(made, degree));
+    }
+done:
+    if (st != IDS_OK) {
+        made->count = rows;
+        while (made->found_count > found) {
+            idsi_found_clear(made->ctx, &made->found[--made->found_count]);
+        }
+    }
+    return st;
+}
+
 ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from, uint32_t to,
                             const ids_fresh_options *options, ids_fresh **fresh)
 {
@@ -149,10 +171,7 @@ ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from,
     made->model = model;
     IDSI_TRY(draw_primes(made, &chosen));
     for (uint32_t d = from; d <= to; d++) {
-        IDSI_TRY(idsi_fresh_degree(made, made->known == NULL ? model->pres : made->known, d));
-        if (!chosen.table_only && made->rows[made->count - 1].fresh > 0) {
-            IDSI_TRY(idsi_fresh_search(made, d));
-        }
+        IDSI_TRY(add_degree(made, d, chosen.table_only));
     }
 done:
     if (made != NULL && (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED)) {

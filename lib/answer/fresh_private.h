@@ -44,6 +44,7 @@ struct ids_fresh {
     ids_presentation *known; /* with all that is found; NULL while there is nothing */
 };
 
+double idsi_factorial_bits(uint32_t n);
 /* log2 of the orders of the row and the column group of a partition, together. */
 double idsi_partition_group_bits(const ids_partition *partition);
 

@@ -200,16 +200,16 @@ done:
 /* log2 of the ways to put the letters of a partition, or of its conjugate, into places. */
 static double content_bits(const ids_partition *partition, bool odd)
 {
-    double bits = lgamma(partition->degree + 1.0);
+    double bits = idsi_factorial_bits(partition->degree);
     ids_partition shape = *partition;
 
     if (odd && ids_partition_conjugate(partition, &shape) != IDS_OK) {
         return INFINITY;
     }
     for (uint32_t i = 0; i < shape.length; i++) {
-        bits -= lgamma(shape.part[i] + 1.0);
+        bits -= idsi_factorial_bits(shape.part[i]);
     }
-    return bits / log(2.0);
+    return bits;
 }
 
 /* How many rows are taken with even letters, so that the weight spaces are smallest. Letters that
