@@ -18,6 +18,9 @@ typedef struct ids_fresh_options {
     size_t struct_size; /**< sizeof(ids_fresh_options) */
     uint32_t primes;    /**< number of random primes to compute with; 0: one */
     uint64_t seed;      /**< seed that primes and points are drawn from */
+    bool exact;         /**< an algebra is evaluated on all tuples of basis elements, not at random
+                             points; refused where these are too many */
+    bool table_only;    /**< only count: no identities are written down, and none become known */
 } ids_fresh_options;
 
 /** One row of the table: a partition, or the whole degree. */
@@ -42,7 +45,10 @@ typedef struct ids_fresh ids_fresh;
  *
  * In each degree and for each partition, `holding` and `consequences` are computed modulo random
  * primes. The identities of the presentation must hold in the model, which is verified first; so
- * where both numbers agree they are exact.
+ * where both numbers agree they are exact. Where they do not, one identity is found for each new
+ * irreducible module, unless only the table is wanted. It holds in the model and does not follow
+ * from what was known, both of which has been verified; none is superfluous. In all higher degrees
+ * it counts as known.
  *
  * @param ctx      borrowed now, kept.
  * @param model    kept: must outlive the result.
@@ -55,14 +61,16 @@ typedef struct ids_fresh ids_fresh;
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size
  *         IDS_ERR_DOMAIN     an identity of the presentation does not hold in the model; the
  *                            message names it
- *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model
+ *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model, or
+ *                            coefficients of an identity do not come out of 40 primes
  *         IDS_ERR_NOMEM      the allocator refused
- *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra
+ *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra, too many tuples
+ *                            for `exact`
  *         IDS_ERR_CANCELLED  cancelled
  * Cost: a table by partition for the consequences; for words about as much; for an algebra
  * degree! evaluations at some points.
  * Threads: up to the context's number, for the table by partition. Cancel: polled.
- * Border: GMP (coefficients). Since: 0.1
+ * Border: GMP (coefficients), FLINT (lattices). Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model,
                                                  uint32_t from, uint32_t to,
@@ -118,6 +126,61 @@ IDS_API size_t ids_fresh_prime_count(const ids_fresh *fresh);
  * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
  */
 IDS_API uint64_t ids_fresh_prime(const ids_fresh *fresh, size_t index);
+
+/** A new identity. Without it some of what is new would be lost. */
+typedef struct ids_fresh_identity {
+    const char *name;          /**< borrowed; model, degree and number: special-8-1 */
+    const char *statement;     /**< borrowed; as a line of a presentation */
+    const char *polynomial;    /**< borrowed; integers with content 1 */
+    const char *alternating;   /**< borrowed; variables to be alternated in, as in "a,b,c d,e" */
+    uint32_t degree;           /**< degree */
+    ids_partition partition;   /**< partition it was found for */
+    const char *modules;       /**< borrowed; what is lost without it, as in "7, 6+1" */
+    uint64_t terms;            /**< terms of the polynomial */
+    uint64_t first_terms;      /**< of the solution that was found first */
+    const char *largest;       /**< borrowed; largest absolute value of a coefficient, in digits */
+    const char *first_largest; /**< borrowed; of the solution that was found first */
+    uint32_t bits;             /**< 0: that it holds is proved; else wrong with 2^-bits at most */
+} ids_fresh_identity;
+
+/**
+ * Number of identities that were found.
+ *
+ * @param fresh  borrowed; NULL gives 0.
+ * @return how many.
+ * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
+ */
+IDS_API size_t ids_fresh_identity_count(const ids_fresh *fresh);
+
+/**
+ * Describes an identity that was found, by degree.
+ *
+ * @param fresh     borrowed.
+ * @param index     0 .. ids_fresh_identity_count()-1.
+ * @param identity  out, written only on IDS_OK; its strings live as long as `fresh`.
+ * @return IDS_OK
+ *         IDS_ERR_ARG  NULL, index out of range
+ * Cost: constant, no allocation. Threads: any number may share `fresh`. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_fresh_identity_get(const ids_fresh *fresh, size_t index,
+                                                       ids_fresh_identity *identity);
+
+/**
+ * Writes the presentation with the identities that were found, each with a comment on its degree,
+ * its partition, and where it comes from.
+ *
+ * @param ctx    borrowed.
+ * @param fresh  borrowed.
+ * @param text   out, owned: ids_string_free(); written only on IDS_OK.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: linear in the text. Threads: any number may share `fresh`, each with a ctx of its own.
+ * Cancel: not polled. Border: GMP (coefficients). Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_fresh_presentation(ids_ctx *ctx, const ids_fresh *fresh,
+                                                       char **text);
 
 #ifdef __cplusplus
 }

@@ -73,7 +73,7 @@ static ids_status keep_canonical(idsi_component *c, uint32_t content, const idsi
     ids_status st = IDS_OK;
 
     memcpy(copy, tree, length * sizeof *tree);
-    if (idsi_tree_canonicalize(c->sig, copy, length) == 0 ||
+    if (idsi_component_canonicalize(c, copy, length) == 0 ||
         memcmp(copy, tree, length * sizeof *tree) != 0) {
         return IDS_OK;
     }
@@ -185,6 +185,7 @@ size_t idsi_component_find(const idsi_component *component, const idsi_token *tr
 
 /* ---- the component --------------------------------------------------------------------------- */
 
+/* Counts the letters of the candidate. */
 static void measure(idsi_component *c)
 {
     const idsi_token *tree = c->goal->tokens;
@@ -194,6 +195,12 @@ static void measure(idsi_component *c)
             c->power[tree[i] - 1]++;
         }
     }
+}
+
+static ids_status list_all(idsi_component *c)
+{
+    ids_status st = IDS_OK;
+
     c->contents = 1;
     for (uint32_t i = 0; i < c->variables; i++) {
         c->stride[i] = c->contents;
@@ -201,10 +208,19 @@ static void measure(idsi_component *c)
         c->contents *= c->power[i] + 1;
     }
     c->stride[c->variables] = c->contents;
+    IDSI_TRY(idsi_alloc_array(c->ctx, 2 * (size_t)c->contents, sizeof *c->trees, &c->trees));
+    for (uint32_t content = 1; content <= c->top + c->contents; content++) {
+        /* The whole content beside a hole would be a degree too high. */
+        if (idsi_content_degree(c, content) <= c->degree) {
+            IDSI_TRY(list_content(c, content));
+        }
+    }
+    IDSI_TRY(make_slots(c));
+done:
+    return st;
 }
 
-ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, size_t index,
-                                 idsi_component **component)
+static ids_status begin(ids_ctx *ctx, const ids_presentation *pres, idsi_component **component)
 {
     ids_status st = IDS_OK;
     idsi_component *made = NULL;
@@ -213,28 +229,62 @@ ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, siz
     made->ctx = ctx;
     made->pres = pres;
     made->sig = pres->sig;
+    idsi_poly_init(&made->none, ctx, pres->sig);
+    made->goal = &made->none;
+    *component = made;
+    IDSI_TRY(idsi_laws_create(ctx, pres, &made->laws));
+done:
+    return st;
+}
+
+ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, size_t index,
+                                 idsi_component **component)
+{
+    ids_status st = IDS_OK;
+    idsi_component *made = NULL;
+
+    IDSI_TRY(begin(ctx, pres, &made));
     made->claim = idsi_presentation_get(pres, IDS_ROLE_CANDIDATE, index);
     made->goal = &made->claim->written;
     made->degree = made->claim->degree;
     made->variables = made->goal->variables;
-    IDSI_TRY(idsi_laws_create(ctx, pres, &made->laws));
     if (made->goal->count > 0) {
         measure(made);
-        IDSI_TRY(
-            idsi_alloc_array(ctx, 2 * (size_t)made->contents, sizeof *made->trees, &made->trees));
-        for (uint32_t content = 1; content <= made->top + made->contents; content++) {
-            /* The whole content beside a hole would be a degree too high. */
-            if (idsi_content_degree(made, content) <= made->degree) {
-                IDSI_TRY(list_content(made, content));
-            }
-        }
-        IDSI_TRY(make_slots(made));
+        IDSI_TRY(list_all(made));
     }
     *component = made;
     made = NULL;
 done:
     idsi_component_free(made);
     return st;
+}
+
+ids_status idsi_component_create_content(ids_ctx *ctx, const ids_presentation *pres,
+                                         const uint8_t *power, uint32_t variables, bool odd,
+                                         idsi_component **component)
+{
+    ids_status st = IDS_OK;
+    idsi_component *made = NULL;
+
+    IDSI_TRY(begin(ctx, pres, &made));
+    made->odd = odd;
+    made->variables = variables;
+    for (uint32_t i = 0; i < variables; i++) {
+        made->power[i] = power[i];
+        made->degree += power[i];
+    }
+    IDSI_TRY(list_all(made));
+    *component = made;
+    made = NULL;
+done:
+    idsi_component_free(made);
+    return st;
+}
+
+int idsi_component_canonicalize(const idsi_component *component, idsi_token *tree, size_t length)
+{
+    return component->odd ? idsi_odd_canonicalize(component->sig, component->variables, tree)
+                          : idsi_tree_canonicalize(component->sig, tree, length);
 }
 
 void idsi_component_free(idsi_component *component)
@@ -365,6 +415,29 @@ static size_t put_arguments(const idsi_component *c, const idsi_instance *instan
     return used;
 }
 
+/* With odd letters: sign of the order in which a term of the law has its variables. */
+static int order_sign(const idsi_component *c, const idsi_instance *instance,
+                      const idsi_token *term, size_t length)
+{
+    uint8_t content[IDSI_MAX_IDENTITY_DEGREE][IDSI_MAX_IDENTITY_DEGREE] = {{0}};
+    uint8_t order[IDSI_MAX_IDENTITY_DEGREE] = {0};
+    uint32_t count = 0;
+
+    for (size_t i = 0; i < length; i++) {
+        if (idsi_is_node(term[i])) {
+            continue;
+        }
+        const uint32_t place = term[i] - 1;
+        uint32_t rest = instance->content[place];
+        for (uint32_t k = 0; k < c->variables; k++) {
+            content[place][k] = (uint8_t)(rest % (c->power[k] + 1));
+            rest /= c->power[k] + 1;
+        }
+        order[count++] = (uint8_t)place;
+    }
+    return idsi_odd_sign((const uint8_t(*)[IDSI_MAX_IDENTITY_DEGREE])content, order, count);
+}
+
 void idsi_component_expand(const idsi_component *component, const idsi_instance *instance,
                            idsi_part *parts, size_t *count)
 {
@@ -384,7 +457,11 @@ void idsi_component_expand(const idsi_component *component, const idsi_instance 
                                       poly->start[t + 1] - poly->start[t], tree + used);
             }
         }
-        int sign = idsi_tree_canonicalize(component->sig, tree, used);
+        int sign = idsi_component_canonicalize(component, tree, used);
+        if (component->odd) {
+            sign *= order_sign(component, instance, poly->tokens + poly->start[t],
+                               poly->start[t + 1] - poly->start[t]);
+        }
         if (sign != 0) {
             parts[*count] = (idsi_part){idsi_component_find(component, tree), sign, t};
             (*count)++;

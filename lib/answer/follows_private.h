@@ -37,7 +37,9 @@ typedef struct idsi_component {
     const ids_presentation *pres;
     const ids_signature *sig;
     const idsi_identity *claim;
-    const idsi_poly *goal; /* the candidate as written */
+    const idsi_poly *goal; /* the candidate as written; without terms when there is none */
+    idsi_poly none;
+    bool odd; /* a letter that occurs c times stands for the alternating sum over c letters */
     uint32_t degree;
     uint32_t variables;
     uint32_t power[IDSI_MAX_IDENTITY_DEGREE];
@@ -63,12 +65,28 @@ typedef struct idsi_instance {
 
 ids_status idsi_component_create(ids_ctx *ctx, const ids_presentation *pres, size_t index,
                                  idsi_component **component);
+/*
+ * The component in which letter i occurs power[i] times, without a candidate. With odd letters it
+ * is the space of multilinear polynomials that are alternating in as many groups of variables: a
+ * tree stands for the one with the variables of each group from left to right, alternated.
+ */
+ids_status idsi_component_create_content(ids_ctx *ctx, const ids_presentation *pres,
+                                         const uint8_t *power, uint32_t variables, bool odd,
+                                         idsi_component **component);
 void idsi_component_free(idsi_component *component);
 /* Whether each label occurs in `part` at most as often as in `whole`; labels of a content. */
 bool idsi_content_within(const idsi_component *c, uint32_t part, uint32_t whole);
 uint32_t idsi_content_degree(const idsi_component *c, uint32_t content);
 /* The monomials of the candidate's content. */
 const idsi_forest *idsi_component_monomials(const idsi_component *component);
+/* Makes a tree canonical; the sign, 0 when it is zero. */
+int idsi_component_canonicalize(const idsi_component *component, idsi_token *tree, size_t length);
+/* (component_odd.c) The same where letters are odd, but for those over `variables`. */
+int idsi_odd_canonicalize(const ids_signature *sig, uint32_t variables, idsi_token *tree);
+/* Sign of bringing pieces into an order: piece order[i] comes to place i. content[k] has the
+ * letters of piece k. */
+int idsi_odd_sign(const uint8_t (*content)[IDSI_MAX_IDENTITY_DEGREE], const uint8_t *order,
+                  uint32_t count);
 /* Index of a canonical tree among them; SIZE_MAX when it is none. */
 size_t idsi_component_find(const idsi_component *component, const idsi_token *tree);
 

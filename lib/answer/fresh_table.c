@@ -26,6 +26,7 @@ typedef struct job {
     ids_fresh_row *rows; /* and the total */
     uint64_t *blocks; /* of random covectors behind each quotient, mod the prime that took most */
     double *image_error; /* of each row mod one prime, the largest */
+    double *sure;        /* of each row the probability that the consequences are wrong */
     double image_bits;
 } job;
 
@@ -37,6 +38,7 @@ static ids_status lay_out(job *j)
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count + 1, sizeof *j->rows, &j->rows));
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof *j->blocks, &j->blocks));
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof(double), &j->image_error));
+    IDSI_TRY(idsi_alloc_array(j->ctx, j->count + 1, sizeof(double), &j->sure));
     for (size_t i = 0; i < j->count; i++) {
         ids_fresh_row *row = &j->rows[i];
         row->degree = j->degree;
@@ -89,6 +91,9 @@ static ids_status fill_rows(job *j, uint32_t prime, bool *good)
     IDSI_TRY(idsi_partition_create(j->ctx, j->laws, prime, j->degree, &engine));
     IDSI_TRY(idsi_partition_solve(engine, j->degree));
     IDSI_TRY(idsi_image_create(j->ctx, j->fresh->model, engine, j->degree, good, &image));
+    if (*good) {
+        image->exact = j->fresh->exact;
+    }
     for (size_t i = 0; *good && i < j->count; i++) {
         IDSI_TRY(fill_row(j, engine, image, i));
         IDSI_TRY(idsi_poll(j->ctx, NULL));
@@ -119,6 +124,8 @@ static double certify(const job *j, size_t i, uint32_t primes)
     row->bits = 0;
     if (row->fresh > 0) {
         idsi_partition_certify(j->laws, j->blocks[i], primes, &quotient, &error);
+        j->sure[i] = error;
+        j->sure[j->count] += error;
         error += idsi_prime_error(image, j->image_error[i], primes);
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(error);
@@ -162,6 +169,9 @@ static ids_status hand_over(job *j)
     for (size_t i = 0; i <= j->count; i++) {
         IDSI_TRY(
             idsi_grow(j->ctx, fresh->count, &fresh->capacity, sizeof *fresh->rows, &fresh->rows));
+        IDSI_TRY(idsi_grow(j->ctx, fresh->count, &fresh->sure_capacity, sizeof *fresh->sure,
+                           &fresh->sure));
+        fresh->sure[fresh->count] = j->sure[i];
         fresh->rows[fresh->count++] = j->rows[i];
     }
 done:
@@ -200,5 +210,6 @@ done:
     idsi_free(j.ctx, j.rows);
     idsi_free(j.ctx, j.blocks);
     idsi_free(j.ctx, j.image_error);
+    idsi_free(j.ctx, j.sure);
     return st;
 }

@@ -119,7 +119,7 @@ done:
 }
 
 /* Not lgamma(), which writes a variable of the whole process. */
-static double factorial_bits(uint32_t n)
+double idsi_factorial_bits(uint32_t n)
 {
     double bits = 0;
 
@@ -139,10 +139,10 @@ double idsi_partition_group_bits(const ids_partition *partition)
         return INFINITY;
     }
     for (uint32_t i = 0; i < partition->length; i++) {
-        bits += factorial_bits(partition->part[i]);
+        bits += idsi_factorial_bits(partition->part[i]);
     }
     for (uint32_t i = 0; i < conjugate.length; i++) {
-        bits += factorial_bits(conjugate.part[i]);
+        bits += idsi_factorial_bits(conjugate.part[i]);
     }
     return bits + 1e-6;
 }

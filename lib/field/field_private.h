@@ -147,5 +147,11 @@ const char *idsi_border_version(void);
  * square root of modulus/2; false when there is none.
  */
 bool idsi_border_reconstruct(mpq_ptr fraction, mpz_srcptr residue, mpz_srcptr modulus);
+/*
+ * Makes a basis of a lattice short (LLL): count x columns integers, the rows independent. Limits:
+ * 512 rows, 65536 columns, entries of 4096 bits; IDS_ERR_LIMIT beyond, or when the budget does not
+ * hold what FLINT needs, the rows unchanged.
+ */
+ids_status idsi_border_shorten(ids_ctx *ctx, mpz_t *rows, size_t count, size_t columns);
 
 #endif

@@ -263,7 +263,10 @@ static ids_status read_factor(idsi_reader *reader, idsi_value *value)
     mpq_init(coefficient);
     IDSI_TRY(idsi_reader_coefficient(reader, coefficient, &number));
     const idsi_lexeme_kind next = reader->lexemes[reader->at].kind;
-    if (number && next != IDSI_LEX_NAME && next != IDSI_LEX_OPEN) {
+    const bool factor =
+        next == IDSI_LEX_OPEN ||
+        (next == IDSI_LEX_NAME && !idsi_lexeme_is_reserved(reader, reader->at));
+    if (number && !factor) {
         if (mpq_sgn(coefficient) != 0) {
             const idsi_shown found = idsi_reader_show(reader, reader->at);
             st = idsi_reader_fail(reader, IDS_ERR_PARSE, begin,
@@ -351,6 +354,9 @@ static ids_status check_after_product(idsi_reader *reader, size_t begin, size_t 
     }
     if (kind == IDSI_LEX_SYMBOL || (kind == IDSI_LEX_NAME && infix)) {
         return fail_chain(reader, begin, symbol);
+    }
+    if (idsi_lexeme_is(reader, reader->at, "alternating")) {
+        return IDS_OK; /* it ends the expression */
     }
     if (kind == IDSI_LEX_NAME || kind == IDSI_LEX_OPEN || kind == IDSI_LEX_NUMBER) {
         const idsi_shown before = idsi_reader_show(reader, reader->at - 1);

@@ -210,6 +210,9 @@ ids_status idsi_reader_sum(idsi_reader *reader, idsi_value *value);
 /* An operation is used: fails unless it is declared above. */
 ids_status idsi_reader_check_declared(idsi_reader *reader, size_t op, size_t use);
 
+/* (alternate.c) Reads `alternating a,b,..` as often as it stands, and alternates the polynomial. */
+ids_status idsi_reader_alternate(idsi_reader *reader, idsi_poly *poly);
+
 /* (model.c) Reads what follows the word `model`. */
 ids_status idsi_reader_model(idsi_reader *reader);
 /* Fails when a model leaves an operation out. */

@@ -3,7 +3,7 @@
  * The statements define, identity and candidate.
  *
  *     define     NAME ( NAME , ... ) = sum
- *     identity   [LABEL ":"] sum [ "=" sum ]        candidate likewise
+ *     identity   [LABEL ":"] sum [ "=" sum ] { alternating NAME , ... }     candidate likewise
  *
  * While an identity is read, labels number its variables in the order of first use. In the end
  * they number the variables that are left after cancellation, in the order of their names, with
@@ -254,7 +254,8 @@ static ids_status read_equation(idsi_reader *reader, idsi_value *value)
                               "P = Q = R as the two identities P = Q and Q = R");
         goto done;
     }
-    IDSI_TRY(idsi_reader_end(reader, "an operation, '=' or the end of the line"));
+    IDSI_TRY(idsi_reader_alternate(reader, &value->poly));
+    IDSI_TRY(idsi_reader_end(reader, "an operation, '=', 'alternating' or the end of the line"));
     if (value->nominal_length == 0) {
         st = idsi_reader_fail(reader, IDS_ERR_PARSE, begin,
                               "no monomial in this identity; expected at least one");

@@ -15,6 +15,8 @@
  * The permutations are gone through by exchanges of neighbours (Johnson and Trotter), so that the
  * covectors are moved by one exchange at a time. The values of the generators at a point do not
  * depend on the partition and are kept.
+ *
+ * When nothing is to be left to chance, the points are all tuples of basis elements, up to order.
  */
 #include <string.h>
 
@@ -22,6 +24,8 @@
 
 /* n! evaluations: more are too many. */
 #define MOST_DEGREE 9u
+/* On all basis tuples: dimension (dimension + 1) .. (dimension + n - 1) evaluations. */
+#define MOST_EVALUATIONS 2e5
 
 /* ---- permutations ---------------------------------------------------------------------------- */
 
@@ -93,8 +97,19 @@ static const uint32_t *evaluate(evaluator *e, const idsi_token **at)
     return value;
 }
 
-/* Draws a point and evaluates all generators at it, in all orders. */
-static ids_status draw_point(idsi_image *image)
+/* A random point, or one of basis elements. */
+static void choose_point(idsi_image *image, const uint8_t *tuple, uint32_t *point)
+{
+    const size_t dimension = image->model->algebra->dimension;
+
+    for (size_t i = 0; i < image->degree * dimension; i++) {
+        point[i] = tuple == NULL ? idsi_random_residue(&image->random, image->prime)
+                                 : tuple[i / dimension] == i % dimension;
+    }
+}
+
+/* Evaluates all generators at a point, in all orders: values in the order of the walk, owned. */
+static ids_status evaluate_point(idsi_image *image, const uint8_t *tuple, uint32_t **out)
 {
     ids_status st = IDS_OK;
     const size_t dimension = image->model->algebra->dimension;
@@ -113,11 +128,7 @@ static ids_status draw_point(idsi_image *image)
         idsi_alloc_array(image->ctx, 2 * image->degree * dimension, sizeof *e.stack, &e.stack));
     IDSI_TRY(
         idsi_alloc_array(image->ctx, orders * image->count * dimension, sizeof *values, &values));
-    IDSI_TRY(idsi_grow(image->ctx, image->point_count, &image->point_capacity,
-                       sizeof *image->points, &image->points));
-    for (size_t i = 0; i < image->degree * dimension; i++) {
-        point[i] = idsi_random_residue(&image->random, image->prime);
-    }
+    choose_point(image, tuple, point);
     e.point = point;
     walk_begin(&w, image->degree);
     e.order = w.at;
@@ -130,12 +141,25 @@ static ids_status draw_point(idsi_image *image)
         }
         IDSI_TRY(idsi_poll(image->ctx, NULL));
     } while (walk_next(&w) < w.n);
-    image->points[image->point_count++] = values;
+    *out = values;
     values = NULL;
 done:
     idsi_free(image->ctx, point);
     idsi_free(image->ctx, e.stack);
     idsi_free(image->ctx, values);
+    return st;
+}
+
+/* One more random point, which is kept. */
+static ids_status draw_point(idsi_image *image)
+{
+    ids_status st = IDS_OK;
+
+    IDSI_TRY(idsi_grow(image->ctx, image->point_count, &image->point_capacity,
+                       sizeof *image->points, &image->points));
+    IDSI_TRY(evaluate_point(image, NULL, &image->points[image->point_count]));
+    image->point_count++;
+done:
     return st;
 }
 
@@ -200,16 +224,15 @@ done:
     return st;
 }
 
-static ids_status count_rank(mapper *m, uint32_t bound, uint32_t *rank)
+/* Random points, until two in a row add nothing. */
+static ids_status use_random(mapper *m, idsi_dense_echelon *echelon, uint32_t bound)
 {
     ids_status st = IDS_OK;
     idsi_image *image = m->image;
-    const size_t columns = image->count * m->skew->count;
-    idsi_dense_echelon *echelon = NULL;
+    const double miss = (image->degree + 1.0) / image->prime;
     uint32_t idle = 0;
 
-    IDSI_TRY(idsi_dense_echelon_create(image->ctx, image->prime, columns, &echelon));
-    for (size_t i = 0; idle < 2; i++) {
+    for (size_t i = 0; idle < 2 && idsi_dense_echelon_rank(echelon) < bound; i++) {
         const size_t before = idsi_dense_echelon_rank(echelon);
         if (i == image->point_count) {
             IDSI_TRY(draw_point(image));
@@ -217,16 +240,89 @@ static ids_status count_rank(mapper *m, uint32_t bound, uint32_t *rank)
         IDSI_TRY(make_rows(m, image->points[i]));
         IDSI_TRY(idsi_dense_echelon_add(echelon, m->rows, m->dimension, NULL));
         idle = idsi_dense_echelon_rank(echelon) == before ? idle + 1 : 0;
-        if (idsi_dense_echelon_rank(echelon) >= bound) {
-            break;
+    }
+    image->error = miss * miss;
+done:
+    return st;
+}
+
+/* The next tuple that does not descend; false after the last. */
+static bool next_tuple(uint8_t *tuple, uint32_t n, uint32_t dimension)
+{
+    uint32_t i = n;
+    while (i > 0 && tuple[i - 1] + 1u == dimension) {
+        i--;
+    }
+    if (i == 0) {
+        return false;
+    }
+    const uint8_t value = (uint8_t)(tuple[i - 1] + 1);
+    memset(tuple + i - 1, value, n - i + 1);
+    return true;
+}
+
+/* All tuples of basis elements. A covector is drawn for each coordinate, as many times as there are
+ * tableaux, so that nothing that a tuple can add is left out but for bad luck with covectors. */
+static ids_status use_tuples(mapper *m, idsi_dense_echelon *echelon, uint32_t bound)
+{
+    ids_status st = IDS_OK;
+    uint8_t tuple[MOST_DEGREE] = {0};
+    uint32_t *values = NULL;
+    bool more = true;
+
+    while (more && idsi_dense_echelon_rank(echelon) < bound) {
+        size_t before = 0;
+        uint32_t idle = 0;
+        IDSI_TRY(evaluate_point(m->image, tuple, &values));
+        while (idle < 2 && idsi_dense_echelon_rank(echelon) < bound) {
+            before = idsi_dense_echelon_rank(echelon);
+            IDSI_TRY(make_rows(m, values));
+            IDSI_TRY(idsi_dense_echelon_add(echelon, m->rows, m->dimension, NULL));
+            idle = idsi_dense_echelon_rank(echelon) == before ? idle + 1 : 0;
         }
+        idsi_free(m->image->ctx, values);
+        values = NULL;
+        more = next_tuple(tuple, m->image->degree, (uint32_t)m->dimension);
+        m->image->error += 1.0 / ((double)m->image->prime * m->image->prime);
+    }
+done:
+    idsi_free(m->image->ctx, values);
+    return st;
+}
+
+static ids_status count_rank(mapper *m, uint32_t bound, uint32_t *rank)
+{
+    ids_status st = IDS_OK;
+    const size_t columns = m->image->count * m->skew->count;
+    idsi_dense_echelon *echelon = NULL;
+
+    IDSI_TRY(idsi_dense_echelon_create(m->image->ctx, m->image->prime, columns, &echelon));
+    if (m->image->exact) {
+        IDSI_TRY(use_tuples(m, echelon, bound));
+    } else {
+        IDSI_TRY(use_random(m, echelon, bound));
     }
     *rank = (uint32_t)idsi_dense_echelon_rank(echelon);
-    const double miss = (image->degree + 1.0) / image->prime;
-    image->error = miss * miss;
 done:
     idsi_dense_echelon_free(echelon);
     return st;
+}
+
+/* Tuples times orders, as far as that is not too much. */
+static ids_status check_tuples(const idsi_image *image)
+{
+    double tuples = 1;
+
+    for (uint32_t i = 0; i < image->degree; i++) {
+        tuples *= image->model->algebra->dimension + (double)i;
+    }
+    if (image->exact && tuples > MOST_EVALUATIONS) {
+        return idsi_fail(image->ctx, IDS_ERR_LIMIT,
+                         "degree %u: %.0f evaluations on all basis tuples in all orders; up to "
+                         "%.0f are made, and random points need far fewer",
+                         image->degree, tuples, MOST_EVALUATIONS);
+    }
+    return IDS_OK;
 }
 
 ids_status idsi_image_algebra(idsi_image *image, const idsi_skew *skew, uint32_t bound,
@@ -242,6 +338,7 @@ ids_status idsi_image_algebra(idsi_image *image, const idsi_skew *skew, uint32_t
                          "goes to degree %u",
                          image->degree, MOST_DEGREE);
     }
+    IDSI_TRY(check_tuples(image));
     IDSI_TRY(idsi_alloc_array(image->ctx, skew->count * m.dimension, sizeof *m.block, &m.block));
     IDSI_TRY(idsi_alloc_array(image->ctx, columns * m.dimension, sizeof *m.sum, &m.sum));
     IDSI_TRY(idsi_alloc_array(image->ctx, columns * m.dimension, sizeof *m.rows, &m.rows));

@@ -94,6 +94,7 @@ typedef struct idsi_image {
     idsi_workspace work;
     double error; /* probability that random choices have missed a map, of the last rank */
     idsi_word_operations words; /* in words */
+    bool exact;                 /* in an algebra: all basis tuples instead of random points */
     idsi_residues *residues;    /* in an algebra, */
     size_t point_count;         /* and the values at points that were drawn so far */
     size_t point_capacity;
@@ -130,5 +131,38 @@ ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, ui
                            uint32_t *rank);
 ids_status idsi_over_vanishes(ids_ctx *ctx, idsi_partition_engine *base, const idsi_poly *poly,
                               bool *zero);
+
+/* ---- samples (sample_words.c, sample_algebra.c) ------------------------------------------------
+ * Trees with repeated letters, evaluated: a row of `width` residues each, such that a combination
+ * of trees is 0 in the model exactly when that of the rows is, but for bad luck with random
+ * choices. Odd letters as in words.
+ */
+typedef struct idsi_sample {
+    ids_ctx *ctx;
+    const ids_model *model;
+    uint32_t prime;
+    bool odd;
+    uint32_t degree;
+    uint32_t variables;
+    const uint8_t *power; /* how often each letter occurs */
+    size_t count;
+    const idsi_token *const *trees;
+    size_t width;
+    uint64_t seed;
+    uint32_t *out; /* count x width */
+} idsi_sample;
+
+/* *good is false when the prime divides a denominator of the model. */
+ids_status idsi_sample_words(const idsi_sample *sample, bool *good);
+ids_status idsi_sample_algebra(const idsi_sample *sample, bool *good);
+
+/* A residue that looks random, the same for the same numbers. */
+static inline uint32_t idsi_sample_mix(uint64_t seed, uint64_t a, uint64_t b, uint32_t p)
+{
+    uint64_t z = seed ^ a * UINT64_C(0x9E3779B97F4A7C15) ^ b * UINT64_C(0xC2B2AE3D27D4EB4F);
+    z = (z ^ z >> 30) * UINT64_C(0xBF58476D1CE4E5B9);
+    z = (z ^ z >> 27) * UINT64_C(0x94D049BB133111EB);
+    return (uint32_t)((z ^ z >> 31) % p);
+}
 
 #endif

@@ -34,6 +34,38 @@ has out "Degree 5: new in octonions are 3+2, 3+1+1, 2+2+1, 2+1+1+1 (2 times), 1+
 run 0 fresh "$models/symmetrised-pre-lie.pres" --model symmetrised --degrees 2..4 --table
 has out "Nothing new holds in symmetrised."
 
+# ---- identities --------------------------------------------------------------------------
+
+run 0 fresh "$models/octonions.pres" --model octonions --degrees 5..6 --save known.pres
+has out "# 4: degree 6, adds 1+1+1+1+1+1; "
+has out "identity octonions-6-1: "
+has out " alternating a,b,c,d,e,f"
+has known.pres "# degree 6; holds in the model octonions; adds 1+1+1+1+1+1"
+mkdir -p algebras
+cp "$source_dir/data/algebras/octonions.alg" .
+sed 's,"../algebras/octonions.alg","octonions.alg",' known.pres >again.pres
+run 0 fresh again.pres --model octonions --degrees 4..6
+has out "Nothing new holds in octonions."
+# What is printed can be pasted: the statements, with their line breaks, read like the saved ones.
+run 0 fresh "$models/octonions.pres" --model octonions --degrees 5..6
+sed -n '/^# 1:/,$p' out >pasted
+{ sed 's,"../algebras/octonions.alg","octonions.alg",' "$models/octonions.pres" && cat pasted; } \
+    >pasted.pres
+run 0 fresh pasted.pres --model octonions --degrees 4..6
+has out "Nothing new holds in octonions."
+run 0 fresh "$models/sl-2.pres" --model sl2 --degree 5 --format json
+has out '"sl2-5-1": "identity sl2-5-1: [[[a,b],[a,c]],a] = 0"'
+[ -z "$python" ] || "$python" -m json.tool <out >json || complain "$last: not JSON"
+run 0 fresh "$models/sl-2.pres" --model sl2 --degree 5 --format latex
+has out '\toprule'
+has out 'sl2-5-1'
+run 0 fresh "$models/sl-2.pres" --model sl2 --degree 5 --format csv
+lacks out 'sl2-5-1'
+run 0 fresh "$models/sl-2.pres" --model sl2 --degree 5 --exact --table
+has out "Degree 5: new in sl2 are 3+1+1, 2+1+1+1."
+run 3 fresh "$models/octonions.pres" --model octonions --degree 7 --exact --table
+has err "evaluations on all basis tuples"
+
 # ---- mistakes ----------------------------------------------------------------------------
 
 run 2 fresh "$models/octonions.pres" --degree 5
@@ -42,6 +74,8 @@ run 2 fresh "$models/octonions.pres" --model octonions
 has err '"fresh" wants a degree'
 run 2 fresh "$models/octonions.pres" --model octonion --degree 3
 has err 'did you mean "octonions"?'
+run 2 fresh "$models/octonions.pres" --model octonions --degree 3 --table --save x
+has err "exclude each other"
 run 2 fresh jordan.pres --model special --degree 3
 has err 'write one as "model NAME associative: ..."'
 printf 'operation a*b\nmodel m algebra "nowhere.alg"\n' >nowhere.pres

@@ -26,6 +26,7 @@ static ids_status use_model(ids_ctx *ctx, void *data)
     ids_presentation *pres = NULL;
     ids_model *model = NULL;
     ids_fresh *fresh = NULL;
+    char *saved = NULL;
     bool holds = false;
     ids_status st = IDS_OK;
 
@@ -33,7 +34,9 @@ static ids_status use_model(ids_ctx *ctx, void *data)
     IDSI_TRY(ids_model_open(ctx, pres, 0, load, NULL, &model));
     IDSI_TRY(ids_model_holds(ctx, model, IDS_ROLE_CANDIDATE, 0, &holds, NULL));
     IDSI_TRY(ids_fresh_create(ctx, model, 2, 3, NULL, &fresh));
+    IDSI_TRY(ids_fresh_presentation(ctx, fresh, &saved));
 done:
+    ids_string_free(ctx, saved);
     ids_fresh_free(fresh);
     ids_model_free(model);
     ids_presentation_free(pres);

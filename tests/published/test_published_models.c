@@ -69,7 +69,7 @@ static ids_fresh *find(ids_ctx *ctx, const char *file, uint32_t degree, ids_pres
                        ids_model **model)
 {
     char folder[] = "models";
-    ids_fresh_options options = {.struct_size = sizeof options};
+    ids_fresh_options options = {.struct_size = sizeof options, .table_only = true};
     ids_fresh *fresh = NULL;
 
     *pres = published_presentation(ctx, file);

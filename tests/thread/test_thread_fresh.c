@@ -59,6 +59,15 @@ static void use_world(ids_ctx *ctx, const world *w, uint64_t *sum)
             MUST(ids_fresh_row_get(w->fresh[i], k, &row));
             sum_number(sum, row.holding + 64u * row.fresh + row.bits);
         }
+        for (size_t k = 0; k < ids_fresh_identity_count(w->fresh[i]); k++) {
+            ids_fresh_identity found;
+            MUST(ids_fresh_identity_get(w->fresh[i], k, &found));
+            sum_text(sum, found.statement);
+        }
+        char *saved = NULL;
+        MUST(ids_fresh_presentation(ctx, w->fresh[i], &saved));
+        sum_text(sum, saved);
+        ids_string_free(ctx, saved);
         for (size_t k = 0; k < ids_fresh_prime_count(w->fresh[i]); k++) {
             sum_number(sum, ids_fresh_prime(w->fresh[i], k));
         }

@@ -26,7 +26,7 @@ _idspan()
         mapfile -t COMPREPLY < <(compgen -d -- "$word")
         return
         ;;
-    --output | --proof | --witness | --algebra)
+    --output | --proof | --witness | --algebra | --save)
         mapfile -t COMPREPLY < <(compgen -f -- "$word")
         return
         ;;
@@ -56,7 +56,7 @@ _idspan()
     basis) own="--degree --from --count" ;;
     count) own="--degree --degrees --split" ;;
     follows) own="--candidate --all --proof --witness --algebra --dimension --entries --steps --primes --seed" ;;
-    fresh) own="--model --degree --degrees --table --primes --seed" ;;
+    fresh) own="--model --degree --degrees --table --save --exact --primes --seed" ;;
     draw) own="--degree --monomials --index --from --count" ;;
     matrix) own="--degree --plain --field --seed" ;;
     rank)

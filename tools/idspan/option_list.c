@@ -12,7 +12,9 @@ const option option_list[OPTION_END] = {
     [OPTION_INDEX] = {"index", "I", "only the one of index I; indices count from 0"},
     [OPTION_MONOMIALS] = {"monomials", NULL, "the multilinear monomials, with their labels"},
     [OPTION_SPLIT] = {"split", NULL, "split the numbers by the uses of each operation"},
-    [OPTION_EXACT] = {"exact", NULL, "prove the ranks over the rational numbers"},
+    [OPTION_EXACT] = {"exact", NULL,
+                      "prove the ranks over the rational numbers; of fresh: evaluate\n"
+                      "an algebra on all basis tuples"},
     [OPTION_PRIMES] = {"primes", "K", "compute modulo K random primes (default 1)"},
     [OPTION_SEED] = {"seed", "S",
                      "draw the primes from seed S (default 0); the same seed\n"

@@ -34,6 +34,13 @@ const broken broken_table[] = {
     {OP "identity x*y\n  + y*x\n", 0, P, 3, 3, "expected a statement word"},
     {OP "(x*y)*z\n", 0, P, 2, 1, "expected a statement word"},
 
+    /* ---- alternating ---- */
+    {OP "identity x*y alternating\n", 0, P, 2, 25, "expected a variable of the identity after"},
+    {OP "identity x*y = 0 alternating x,z\n", 0, P, 2, 32, "expected a variable of the identity"},
+    {OP "identity x*y alternating x,x\n", 0, P, 2, 28, "'x' stands twice"},
+    {OP "identity (x*y alternating x,y)*z\n", 0, P, 2, 15, "the closing fence"},
+    {OP "identity (x*x)*y alternating x,y\n", 0, P, 2, 10, "not homogeneous"},
+
     /* ---- model ---- */
     {OP "model: a*b = a b\n", 0, P, 2, 6, "expected the name of the model"},
     {OP "model m: a*b = a b\n", 0, P, 2, 8, "expected what the model is"},
@@ -162,8 +169,8 @@ const broken broken_table[] = {
     {OP "identity n: x*x = y*y\n", 0, P, 2, 13, "'x' stands 2 times in x*x but 0 times in y*y"},
     {OP "identity n: x*y\nidentity n: y*x\n", 0, P, 3, 10, "the name 'n' is in use, in line 2"},
     {OP "identity n: x*y\ncandidate n: y*x\n", 0, P, 3, 11, "the name 'n' is in use"},
-    {OP "identity n : m : x\n", 0, P, 2, 16, "expected an operation, '=' or the end"},
-    {OP "identity x*y, y*x\n", 0, P, 2, 13, "expected an operation, '=' or the end"},
+    {OP "identity n : m : x\n", 0, P, 2, 16, "expected an operation, '=', 'alternating'"},
+    {OP "identity x*y, y*x\n", 0, P, 2, 13, "expected an operation, '=', 'alternating'"},
     {OP "identity \"x\"\n", 0, P, 2, 10, "missing operand"},
 
     /* ---- definitions ---- */
