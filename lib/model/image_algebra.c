@@ -104,7 +104,7 @@ static void choose_point(idsi_image *image, const uint8_t *tuple, uint32_t *poin
 
     for (size_t i = 0; i < image->degree * dimension; i++) {
         point[i] = tuple == NULL ? idsi_random_residue(&image->random, image->prime)
-                                 : tuple[i / dimension] == i % dimension;
+                                 : (uint32_t)(tuple[i / dimension] == i % dimension);
     }
 }
 
