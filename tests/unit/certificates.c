@@ -171,8 +171,8 @@ static void damage(idsi_random *random, const idsi_text *file, idsi_text *out)
         ck_assert(ok);
         return;
     default:
-        byte = digit ? (char)('0' + (byte - '0' + 1 + (int)idsi_random_below(random, 9)) % 10)
-                     : (char)((unsigned char)byte ^ (1u + (unsigned)idsi_random_below(random, 127)));
+        byte = (char)(digit ? '0' + (byte - '0' + 1 + (int)idsi_random_below(random, 9)) % 10
+                            : byte ^ (1 + (int)idsi_random_below(random, 127)));
         ok = ok && idsi_text_append(out, &byte, 1) == IDS_OK;
         break;
     }
