@@ -204,7 +204,9 @@ static ids_status keep_row(void *user, const idsi_entry *row, size_t count)
         b->entry_capacity = capacity;
     }
     IDSI_TRY(idsi_grow(b->ctx, b->row_count, &b->row_capacity, sizeof *b->rows, &b->rows));
-    memcpy(b->entries + b->entry_count, row, count * sizeof *row);
+    if (count > 0) { /* before the first entry there is no memory */
+        memcpy(b->entries + b->entry_count, row, count * sizeof *row);
+    }
     b->entry_count += count;
     b->rows[b->row_count] = (struct kept){b->number - 1, b->entry_count};
     b->row_count++;
