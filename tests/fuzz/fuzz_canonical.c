@@ -52,10 +52,24 @@ typedef struct shelf {
     ids_basis *basis[BASIS_DEGREE + 1];
 } shelf;
 
+static ids_ctx *shelf_ctx;
+static shelf shelves[COUNT];
+
+/* At the end, for those who look for leaks. */
+static void clear_shelves(void)
+{
+    for (size_t i = 0; i < COUNT; i++) {
+        for (size_t degree = 0; degree <= BASIS_DEGREE; degree++) {
+            ids_basis_free(shelves[i].basis[degree]);
+        }
+        ids_types_free(shelves[i].types);
+        ids_signature_free(shelves[i].sig);
+    }
+    ids_ctx_free(shelf_ctx);
+}
+
 static shelf *shelf_of(uint8_t number)
 {
-    static ids_ctx *ctx;
-    static shelf shelves[COUNT];
     shelf *s = &shelves[number % COUNT];
     ids_operation chosen[3];
 
@@ -65,13 +79,16 @@ static shelf *shelf_of(uint8_t number)
     for (size_t i = 0; i < 3; i++) {
         chosen[i] = operations[(number + i) % COUNT];
     }
-    if ((ctx == NULL && ids_ctx_create(NULL, &ctx) != IDS_OK) ||
-        ids_signature_create(ctx, chosen, 3, &s->sig) != IDS_OK ||
-        ids_types_create(ctx, s->sig, BASIS_DEGREE, &s->types) != IDS_OK) {
+    if (shelf_ctx == NULL) {
+        atexit(clear_shelves);
+    }
+    if ((shelf_ctx == NULL && ids_ctx_create(NULL, &shelf_ctx) != IDS_OK) ||
+        ids_signature_create(shelf_ctx, chosen, 3, &s->sig) != IDS_OK ||
+        ids_types_create(shelf_ctx, s->sig, BASIS_DEGREE, &s->types) != IDS_OK) {
         wrong("no signature");
     }
     for (uint32_t degree = 1; degree <= BASIS_DEGREE; degree++) {
-        if (ids_basis_create(ctx, s->types, degree, &s->basis[degree]) != IDS_OK) {
+        if (ids_basis_create(shelf_ctx, s->types, degree, &s->basis[degree]) != IDS_OK) {
             wrong("no basis");
         }
     }
