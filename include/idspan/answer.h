@@ -209,7 +209,8 @@ typedef struct ids_partition_row {
  *                      prime (maybe none) and must be freed too.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a partition that is
- *                            not well formed or of another degree
+ *                            not well formed or of another degree, a cross-check of one
+ *                            partition alone
  *         IDS_ERR_NOMEM      the allocator refused; *table is then NULL
  *         IDS_ERR_LIMIT      byte budget; the message says how many unknowns a partition has, what
  *                            they need and what the budget is

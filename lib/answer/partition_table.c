@@ -326,6 +326,10 @@ static ids_status check_arguments(ids_ctx *ctx, uint32_t from, uint32_t to,
                          "own, is possible",
                          options->partition->degree, from, to);
     }
+    if (options != NULL && options->partition != NULL && options->cross_check) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "a cross-check compares totals; one partition alone has none");
+    }
     return IDS_OK;
 }
 

@@ -195,6 +195,22 @@ static void multiply_share(void *user, uint32_t member, size_t task)
     multiply(&pr);
 }
 
+/* All but B. */
+static product describe(idsi_workspace *work, uint32_t p, size_t m, size_t n, size_t k,
+                        const uint32_t *a, size_t lda, uint32_t *c, size_t ldc)
+{
+    return (product){.work = work,
+                     .kernel = idsi_kernel_choose(),
+                     .p = p,
+                     .m = m,
+                     .n = n,
+                     .k = k,
+                     .a = a,
+                     .lda = lda,
+                     .c = c,
+                     .ldc = ldc};
+}
+
 static void run(product *pr)
 {
     uint32_t members = idsi_team_size(pr->work->team);
@@ -216,18 +232,10 @@ void idsi_dense_mul_sub(idsi_workspace *work, uint32_t p, size_t m, size_t n, si
                         const uint32_t *a, size_t lda, const uint32_t *b, size_t ldb, uint32_t *c,
                         size_t ldc)
 {
-    product pr = {.work = work,
-                  .kernel = idsi_kernel_choose(),
-                  .p = p,
-                  .m = m,
-                  .n = n,
-                  .k = k,
-                  .a = a,
-                  .lda = lda,
-                  .b = b,
-                  .ldb = ldb,
-                  .c = c,
-                  .ldc = ldc};
+    product pr = describe(work, p, m, n, k, a, lda, c, ldc);
+
+    pr.b = b;
+    pr.ldb = ldb;
     run(&pr);
 }
 
@@ -235,16 +243,8 @@ void idsi_dense_mul_sub_packed(idsi_workspace *work, uint32_t p, size_t m, size_
                                const uint32_t *a, size_t lda, const int32_t *packed, uint32_t *c,
                                size_t ldc)
 {
-    product pr = {.work = work,
-                  .kernel = idsi_kernel_choose(),
-                  .p = p,
-                  .m = m,
-                  .n = n,
-                  .k = k,
-                  .a = a,
-                  .lda = lda,
-                  .packed = packed,
-                  .c = c,
-                  .ldc = ldc};
+    product pr = describe(work, p, m, n, k, a, lda, c, ldc);
+
+    pr.packed = packed;
     run(&pr);
 }

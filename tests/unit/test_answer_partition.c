@@ -185,6 +185,8 @@ START_TEST(test_bad_arguments)
         {3, 4, {.struct_size = sizeof cases->options, .partition = &four}},
         {5, 5, {.struct_size = sizeof cases->options, .partition = &four}},
         {4, 4, {.struct_size = sizeof cases->options, .partition = &broken}},
+        {4, 4,
+         {.struct_size = sizeof cases->options, .partition = &four, .cross_check = true}},
     };
 
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {

@@ -74,8 +74,8 @@ START_TEST(test_jordan)
 END_TEST
 
 /*
- * Commutative with x^2 x^2 = 0: the columns by the formula above, and the values that were set as
- * the goal of this engine (common practice, no source).
+ * Commutative with x^2 x^2 = 0: the columns by the formula above. Both numbers were given before
+ * this engine was written, and are not its output; no published source.
  */
 START_TEST(test_squares)
 {

@@ -117,98 +117,83 @@ static bool read_memory(const char *text, uint64_t *bytes)
     return true;
 }
 
-static bool read_value(option_id id, const char *value, settings *read)
+/* Where the value of an option goes: text as it is written, or a number in bounds. */
+typedef enum slot_kind { SLOT_TEXT, SLOT_SHORT, SLOT_LONG, SLOT_MEMORY } slot_kind;
+
+typedef struct slot {
+    option_id id;
+    slot_kind kind;
+    size_t offset; /* in the settings */
+    uint64_t least;
+    uint64_t most;
+} slot;
+
+#define TEXT(option, member) {option, SLOT_TEXT, offsetof(settings, member), 0, 0}
+#define SHORT(option, member, least, most)                                                         \
+    {option, SLOT_SHORT, offsetof(settings, member), least, most}
+#define LONG(option, member, least, most)                                                          \
+    {option, SLOT_LONG, offsetof(settings, member), least, most}
+
+/* Limits of degrees, and which formats there are, depend on the task, which is not yet known. */
+static const slot slots[] = {
+    TEXT(OPTION_DEGREE, degrees),
+    TEXT(OPTION_DEGREES, degrees),
+    LONG(OPTION_FROM, from, 0, UINT64_MAX),
+    LONG(OPTION_COUNT, count, 0, UINT64_MAX),
+    LONG(OPTION_INDEX, index, 0, UINT64_MAX),
+    SHORT(OPTION_PRIMES, primes, 1, 1000),
+    LONG(OPTION_SEED, seed, 0, UINT64_MAX),
+    SHORT(OPTION_FIELD, field, 2, (1u << 30) - 1),
+    TEXT(OPTION_BY, by),
+    TEXT(OPTION_PARTITION, partition_text),
+    TEXT(OPTION_RUN, run),
+    SHORT(OPTION_JOBS, jobs, 1, 1024),
+    TEXT(OPTION_CELL, cells),
+    TEXT(OPTION_CANDIDATE, candidate),
+    TEXT(OPTION_PROOF, proof),
+    TEXT(OPTION_WITNESS, witness),
+    TEXT(OPTION_MODEL, model),
+    TEXT(OPTION_SAVE, save),
+    TEXT(OPTION_ALGEBRA, algebra),
+    SHORT(OPTION_DIMENSION, dimension, 1, IDS_MAX_DIMENSION),
+    LONG(OPTION_ENTRIES, entries, 1, INT64_MAX),
+    LONG(OPTION_STEPS, steps, 1, UINT64_MAX),
+    TEXT(OPTION_FORMAT, format_name),
+    TEXT(OPTION_OUTPUT, output),
+    {OPTION_MEMORY, SLOT_MEMORY, offsetof(settings, memory), 0, 0},
+    SHORT(OPTION_THREADS, threads, 1, 1024),
+};
+
+static bool read_slot(const slot *to, const char *value, settings *read)
 {
+    char *place = (char *)read + to->offset;
     uint64_t number = 0;
 
-    switch (id) {
-    case OPTION_DEGREE:
-    case OPTION_DEGREES:
-        read->degrees = value; /* the limit is the task's, which is not yet known */
-        return true;
-    case OPTION_FROM:
-        return read_number(id, value, 0, UINT64_MAX, &read->from);
-    case OPTION_COUNT:
-        return read_number(id, value, 0, UINT64_MAX, &read->count);
-    case OPTION_INDEX:
-        return read_number(id, value, 0, UINT64_MAX, &read->index);
-    case OPTION_PRIMES:
-        if (!read_number(id, value, 1, 1000, &number)) {
-            return false;
-        }
-        read->primes = (uint32_t)number;
-        return true;
-    case OPTION_SEED:
-        return read_number(id, value, 0, UINT64_MAX, &read->seed);
-    case OPTION_FIELD:
-        if (!read_number(id, value, 2, (1u << 30) - 1, &number)) {
-            return false;
-        }
-        read->field = (uint32_t)number;
-        return true;
-    case OPTION_BY:
-        read->by = value;
-        return true;
-    case OPTION_PARTITION:
-        read->partition_text = value;
-        return true;
-    case OPTION_RUN:
-        read->run = value;
-        return true;
-    case OPTION_JOBS:
-        if (!read_number(id, value, 1, 1024, &number)) {
-            return false;
-        }
-        read->jobs = (uint32_t)number;
-        return true;
-    case OPTION_CELL:
-        read->cells = value;
-        return true;
-    case OPTION_CANDIDATE:
-        read->candidate = value;
-        return true;
-    case OPTION_PROOF:
-        read->proof = value;
-        return true;
-    case OPTION_WITNESS:
-        read->witness = value;
-        return true;
-    case OPTION_MODEL:
-        read->model = value;
-        return true;
-    case OPTION_SAVE:
-        read->save = value;
-        return true;
-    case OPTION_ALGEBRA:
-        read->algebra = value;
-        return true;
-    case OPTION_DIMENSION:
-        if (!read_number(id, value, 1, IDS_MAX_DIMENSION, &number)) {
-            return false;
-        }
-        read->dimension = (uint32_t)number;
-        return true;
-    case OPTION_ENTRIES:
-        return read_number(id, value, 1, INT64_MAX, &read->entries);
-    case OPTION_STEPS:
-        return read_number(id, value, 1, UINT64_MAX, &read->steps);
-    case OPTION_FORMAT:
-        read->format_name = value; /* which there are depends on the task */
-        return true;
-    case OPTION_OUTPUT:
-        read->output = value;
-        return true;
-    case OPTION_MEMORY:
-        return read_memory(value, &read->memory);
-    case OPTION_THREADS:
-        if (!read_number(id, value, 1, 1024, &number)) {
-            return false;
-        }
-        read->threads = (uint32_t)number;
-        return true;
-    default:
+    if (to->kind == SLOT_TEXT) {
+        memcpy(place, &value, sizeof value);
         return true;
     }
+    if (to->kind == SLOT_MEMORY ? !read_memory(value, &number)
+                                : !read_number(to->id, value, to->least, to->most, &number)) {
+        return false;
+    }
+    if (to->kind == SLOT_SHORT) {
+        uint32_t small = (uint32_t)number;
+        memcpy(place, &small, sizeof small);
+    } else {
+        memcpy(place, &number, sizeof number);
+    }
+    return true;
+}
+
+static bool read_value(option_id id, const char *value, settings *read)
+{
+    for (size_t i = 0; i < sizeof slots / sizeof *slots; i++) {
+        if (slots[i].id == id) {
+            return read_slot(&slots[i], value, read);
+        }
+    }
+    return true; /* an option without a value */
 }
 
 /* ---- words --------------------------------------------------------------------------- */

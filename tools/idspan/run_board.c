@@ -173,7 +173,7 @@ static void report_failures(monitor *m)
         if (failures > m->seen[i] && ids_run_cell(m->run, i, &cell) == IDS_OK) {
             complain("cell %s: %s; %s", cell.id, c->message,
                      failures == 1 ? "it is tried again, alone, at the end"
-                                   : "it is given up for now");
+                                   : "it is given up");
             m->seen[i] = failures;
         }
     }

@@ -133,7 +133,7 @@ static ids_status give_up_above(supervisor *v, uint32_t degree, const char *reas
         }
     }
     if (count > 0 && degree == 0) {
-        complain("%zu cells are given up for now: %s", count, reason);
+        complain("%zu cells are given up: %s", count, reason);
     } else if (count > 0) {
         complain("degree %u, which %zu cells of higher degrees need, could not be computed: %s",
                  (unsigned)degree, count, reason);
