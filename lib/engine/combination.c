@@ -74,7 +74,7 @@ ids_status ids_combination_print(ids_ctx *ctx, const ids_combination *combinatio
     for (size_t i = 0; i < combination->count; i++) {
         idsi_token tree[IDSI_MAX_TOKENS];
         size_t length = idsi_normal_tree(&forms->tower, degree, combination->index[i],
-                                         UINT64_MAX >> (64 - degree), tree);
+                                         idsi_labels_all(degree), tree);
         IDSI_TRY(idsi_poly_append(&poly, combination->coefficient[i], tree, length));
     }
     IDSI_TRY(idsi_poly_normalize(&poly));

@@ -311,7 +311,7 @@ static ids_status write_name(const ids_matrix *matrix, uint64_t column, idsi_mar
         }
     } else {
         (void)idsi_column_tree(&matrix->tower, &matrix->level, column,
-                               UINT64_MAX >> (64 - matrix->degree), tree);
+                               idsi_labels_all(matrix->degree), tree);
     }
     IDSI_TRY(idsi_tree_print(sig, tree, NULL, &market->text));
     IDSI_TRY(idsi_text_puts(&market->text, "\n"));

@@ -127,7 +127,7 @@ ids_status ids_normal_forms_mono(ids_ctx *ctx, const ids_normal_forms *forms, ui
     }
     IDSI_TRY(check_index(ctx, forms, degree, index));
     size_t length =
-        idsi_normal_tree(&forms->tower, degree, index, UINT64_MAX >> (64 - degree), tree);
+        idsi_normal_tree(&forms->tower, degree, index, idsi_labels_all(degree), tree);
     IDSI_TRY(idsi_mono_from_tokens(ctx, forms->pres->sig, tree, length, mono));
 done:
     return st;
@@ -240,7 +240,7 @@ static bool is_multilinear(const ids_mono *mono)
             labels |= UINT64_C(1) << (mono->tokens[i] - 1);
         }
     }
-    return labels == UINT64_MAX >> (64 - mono->degree);
+    return labels == idsi_labels_all(mono->degree);
 }
 
 ids_status ids_normal_forms_reduce(ids_ctx *ctx, const ids_normal_forms *forms,
@@ -327,7 +327,7 @@ ids_status ids_normal_forms_product(ids_ctx *ctx, const ids_normal_forms *forms,
         labels |= args[i].labels;
         degree += args[i].degree;
     }
-    if (degree > IDS_MAX_DEGREE || labels != UINT64_MAX >> (64 - degree)) {
+    if (degree > IDS_MAX_DEGREE || labels != idsi_labels_all(degree)) {
         st = idsi_fail(ctx, IDS_ERR_ARG,
                        "the labels of all factors are 1 to the sum of their degrees, each once");
         goto done;

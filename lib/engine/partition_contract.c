@@ -354,6 +354,7 @@ static ids_status contract_core(contraction *c, uint32_t shape, uint32_t expr,
     if (c->maps != NULL) {
         return core_maps(c, shape, expr, block, width);
     }
+    IDSI_ASSERT(c->out != NULL);
     IDSI_TRY(idsi_contract_values(c->s, shape, expr, block, width, c->out));
     c->out += dimension * width;
 done:

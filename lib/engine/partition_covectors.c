@@ -91,6 +91,7 @@ static ids_status make_room(idsi_covectors *covectors, size_t *place)
     ids_status st = IDS_OK;
     void *room = NULL;
 
+    IDSI_ASSERT(covectors->limit > 0);
     if (covectors->count == covectors->limit) {
         *place = covectors->next;
         covectors->next = (covectors->next + 1) % covectors->limit;

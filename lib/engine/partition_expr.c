@@ -147,7 +147,7 @@ static ids_status add_term(maker *m, uint32_t coefficient, uint32_t expr, const 
     idsi_equation *equation = &m->equation;
     uint8_t label[IDSI_SHAPE_MAX];
     uint8_t word[IDSI_SHAPE_MAX * IDSI_SHAPE_MAX];
-    uint8_t start[IDSI_MAX_IDENTITY_DEGREE];
+    uint8_t start[IDSI_MAX_IDENTITY_DEGREE] = {0};
     uint32_t n = 0;
     uint32_t p = m->engine->prime;
 
@@ -280,12 +280,15 @@ done:
 
 static ids_status impose_order(maker *m, const uint8_t *image, int sign)
 {
+    ids_status st = IDS_OK;
     int8_t tied[IDSI_MAX_IDENTITY_DEGREE];
     memset(tied, -1, sizeof tied);
     m->image = image;
     m->sign = sign;
     m->finish = finish_symmetry;
-    return choose_generators(m, 0, tied);
+    st = choose_generators(m, 0, tied);
+    m->image = NULL;
+    return st;
 }
 
 static ids_status symmetry_equations(maker *m, const idsi_form *form)
@@ -364,7 +367,7 @@ static ids_status finish_identity(maker *m)
     uint32_t p = m->engine->prime;
 
     for (size_t t = 0; t < m->law->poly->count; t++) {
-        uint8_t order[IDSI_MAX_IDENTITY_DEGREE];
+        uint8_t order[IDSI_MAX_IDENTITY_DEGREE] = {0};
         uint32_t coefficient = 0;
         uint32_t expr = 0;
         uint32_t count = 0;

@@ -150,7 +150,7 @@ static ids_status each_context(walk *w)
     ids_status st = IDS_OK;
     const idsi_plain *plain = w->plain;
     const ids_basis *basis = plain->basis[plain->degree - w->k + 1];
-    uint64_t all = UINT64_MAX >> (64 - plain->degree);
+    uint64_t all = idsi_labels_all(plain->degree);
 
     for (uint64_t c = 0; c < ids_basis_size(basis); c++) {
         IDSI_TRY(take_monomial(basis, c, all & ~w->inner, w->context, &w->context_length));
@@ -197,7 +197,7 @@ static ids_status each_set(walk *w)
 {
     ids_status st = IDS_OK;
     uint32_t degree = w->plain->degree;
-    uint64_t all = UINT64_MAX >> (64 - degree);
+    uint64_t all = idsi_labels_all(degree);
 
     for (uint64_t s = 0; s < idsi_binomial(degree, w->k); s++) {
         w->inner = idsi_subset_unrank(all, w->k, s);

@@ -315,7 +315,7 @@ done:
 static void begin_split(evaluator *ev, uint64_t rank, uint64_t tuple)
 {
     const idsi_row_job *j = ev->job;
-    uint64_t all = UINT64_MAX >> (64 - ev->level->degree);
+    uint64_t all = idsi_labels_all(ev->level->degree);
 
     idsi_split_unrank(&j->split, all, rank, ev->sets);
     place_labels(ev);

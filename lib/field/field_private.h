@@ -84,7 +84,7 @@ typedef enum idsi_verdict {
 /* Turns the row at work into a rule, applying at most `work` entries of rules. */
 ids_status idsi_echelon_settle(idsi_echelon *echelon, uint64_t work, idsi_verdict *verdict);
 /* Stores a row that is already free of pivots, largest column first, as a rule. */
-ids_status idsi_echelon_store(idsi_echelon *echelon, const idsi_entry *entries, size_t count);
+ids_status idsi_echelon_store(idsi_echelon *echelon, const idsi_entry *row, size_t count);
 uint32_t idsi_echelon_rank(const idsi_echelon *echelon);
 /* Rewrites all rules so that only columns that are no pivots stand on their right sides. */
 ids_status idsi_echelon_complete(idsi_echelon *echelon);

@@ -46,7 +46,7 @@ static ids_status read_name(idsi_reader *reader, char **name)
     if (first->kind != IDSI_LEX_NAME || idsi_lexeme_is_reserved(reader, reader->at)) {
         return expected(reader, "the name of the model");
     }
-    const idsi_lexeme *last = first;
+    const idsi_lexeme *last = NULL;
     do {
         last = &reader->lexemes[reader->at++];
     } while (reader->lexemes[reader->at].glued &&
@@ -379,13 +379,14 @@ static ids_status get_model(idsi_reader *reader, size_t lexeme, idsi_model *head
 {
     ids_presentation *pres = reader->presentation;
     ids_status st = IDS_OK;
+    IDSI_ASSERT(head->name != NULL);
     for (size_t i = 0; i < pres->model_count; i++) {
         idsi_model *known = &pres->models[i];
         if (strcmp(known->name, head->name) != 0) {
             continue;
         }
         if (known->kind == IDS_MODEL_ALGEBRA || known->kind != head->kind ||
-            (known->file != NULL && strcmp(known->file, head->file) != 0)) {
+            (head->file != NULL && strcmp(known->file, head->file) != 0)) {
             return idsi_reader_fail(reader, IDS_ERR_PARSE, lexeme,
                                     "the name %s is that of the model in line %u, which is not "
                                     "the same; expected another name",
@@ -416,6 +417,7 @@ ids_status idsi_reader_model(idsi_reader *reader)
         IDSI_TRY(read_file(reader, &head.file));
     }
     IDSI_TRY(get_model(reader, begin, &head, &model));
+    IDSI_ASSERT(model != NULL);
     if (complete) {
         st = idsi_reader_end(reader, "the end of the line after the file of an algebra");
         goto done;

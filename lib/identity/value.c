@@ -179,6 +179,7 @@ static ids_status expand_term(idsi_poly *out, mpq_srcptr coefficient, const idsi
                 IDSI_TRY(add_tokens(out->ctx, &built, &tree[i], 1));
                 continue;
             }
+            IDSI_ASSERT(leaf < c.leaves);
             const idsi_poly *argument = c.argument[leaf];
             const size_t term = c.term[leaf++];
             const size_t begin = argument->start[term];

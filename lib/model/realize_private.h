@@ -61,10 +61,10 @@ void idsi_wordsum_clear(ids_ctx *ctx, idsi_wordsum *sum);
 ids_status idsi_wordsum_letter(ids_ctx *ctx, uint32_t letter, idsi_wordsum *sum);
 /* How often each letter stands in a word of so many. */
 void idsi_key_content(idsi_key key, uint32_t length, uint8_t content[IDSI_KEY_LETTERS]);
-/* An operation on sums; length[i] is that of the words of argument i. `product` must be new. */
+/* An operation on sums; length[i] is that of the words of argument i. `sum` must be new. */
 ids_status idsi_words_product(const idsi_word_operations *words, uint32_t op,
                               const idsi_wordsum *const *arguments, const uint32_t *length,
-                              idsi_wordsum *product);
+                              idsi_wordsum *sum);
 /* A tree with labels from 1, multiplied out. */
 ids_status idsi_words_tree(const idsi_word_operations *words, const idsi_token *tree,
                            idsi_wordsum *sum);

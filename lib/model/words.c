@@ -195,6 +195,7 @@ ids_status idsi_words_product(const idsi_word_operations *words, uint32_t op,
     uint64_t room = made->count;
 
     for (uint32_t i = 0; i < t.arity; i++) {
+        IDSI_ASSERT(arguments[i] != NULL);
         if (!idsi_mul_u64(room, arguments[i]->count, &room)) {
             return idsi_fail(words->ctx, IDS_ERR_LIMIT, "a product of more than 2^64 words");
         }

@@ -36,7 +36,7 @@ void ids_report_free(ids_report *report)
         return;
     }
     for (size_t i = 0; i < report->count; i++) {
-        ids_string_free(report->ctx, (char *)(uintptr_t)report->rows[i].given.reason);
+        ids_string_free(report->ctx, report->rows[i].reason);
     }
     idsi_free(report->ctx, report->rows);
     idsi_free(report->ctx, report->title);
@@ -164,7 +164,7 @@ ids_status ids_report_add(ids_report *report, const ids_report_row *row)
     IDSI_TRY(idsi_grow(report->ctx, report->count, &report->capacity, sizeof *report->rows,
                        &report->rows));
     memmove(report->rows + at + 1, report->rows + at, (report->count - at) * sizeof *report->rows);
-    report->rows[at] = (idsi_report_row){.given = *row, .index = index};
+    report->rows[at] = (idsi_report_row){.given = *row, .reason = reason, .index = index};
     report->rows[at].given.reason = reason;
     if (row->state != IDS_REPORT_DONE) {
         report->rows[at].given.numbers = what_is_known(&row->numbers);

@@ -10,9 +10,10 @@
 
 #include "render_private.h"
 
-/* A row; `given.reason` is owned here. */
+/* A row; `given.reason` is `reason`. */
 typedef struct idsi_report_row {
     ids_report_row given;
+    char *reason;   /* owned; NULL: none */
     uint64_t index; /* of the partition; of a total, a number above all of them */
 } idsi_report_row;
 

@@ -106,10 +106,10 @@ static ids_status check_cell(const ids_run_work *work, size_t cell, const void *
 ids_status ids_run_work_estimate(ids_run_work *work, size_t cell, double *seconds,
                                  uint64_t *memory)
 {
-    ids_status st = check_cell(work, cell, seconds != NULL ? memory : NULL);
+    ids_status st = check_cell(work, cell, memory);
 
-    if (st != IDS_OK) {
-        return st;
+    if (st != IDS_OK || seconds == NULL) {
+        return st != IDS_OK ? st : idsi_fail_arg(work->ctx, "seconds");
     }
     const idsi_cell *c = &work->run->cells[cell];
     double unknowns = 0;

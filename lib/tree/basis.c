@@ -65,6 +65,7 @@ ids_status ids_basis_create(ids_ctx *ctx, const ids_types *types, uint32_t degre
         return idsi_fail_arg(ctx, "result");
     }
     IDSI_TRY(idsi_basis_prepare(ctx, types, degree, &made));
+    IDSI_ASSERT(made != NULL);
     if (made->offset == NULL) {
         st = idsi_basis_fail_size(ctx, made);
         goto done;
@@ -169,7 +170,7 @@ static ids_status check_code(const ids_basis *basis, const int32_t *code, size_t
             return IDS_ERR_ARG;
         }
     }
-    bool multilinear = leaves == basis->degree && labels == UINT64_MAX >> (64 - basis->degree);
+    bool multilinear = leaves == basis->degree && labels == idsi_labels_all(basis->degree);
     return open == 0 && multilinear ? IDS_OK : IDS_ERR_ARG;
 }
 

@@ -74,6 +74,7 @@ static void make_subtree(maker *m, uint32_t type, uint32_t at)
     uint32_t left[IDSI_SPLIT_MAX + 1]; /* how much that is */
     uint32_t start[IDSI_SPLIT_MAX];
 
+    IDSI_ASSERT(m->room != NULL);
     if (type == 0) {
         m->room->leaf[at] = (uint8_t)m->length;
         m->room->shape[m->length] = 0;
@@ -327,7 +328,7 @@ ids_status idsi_plan_gather(const ids_basis *basis, const idsi_plan *plan, const
         proper = proper && label < basis->degree;
         before[i + 1] = before[i] | UINT64_C(1) << (label & 63);
     }
-    if (!proper || before[basis->degree] != UINT64_MAX >> (64 - basis->degree)) {
+    if (!proper || before[basis->degree] != idsi_labels_all(basis->degree)) {
         return IDS_ERR_ARG;
     }
     for (uint32_t i = 0; i < plan->checks; i++) {
@@ -377,7 +378,7 @@ void idsi_plan_write(const ids_basis *basis, const idsi_plan *plan, const uint8_
                      int32_t *code)
 {
     for (uint32_t i = 0; i < plan->length; i++) {
-        code[i] = plan->shape[i];
+        code[i] = (int32_t)plan->shape[i];
     }
     for (uint32_t i = 0; i < basis->degree; i++) {
         code[plan->leaf[i]] = label[i];

@@ -258,11 +258,13 @@ ids_status ids_iter_seek(ids_iter *iter, uint64_t begin, uint64_t end)
     if (begin > end || end > ids_basis_size(iter->basis)) {
         return IDS_ERR_ARG;
     }
-    if (begin < end) {
-        type = idsi_basis_type_of(iter->basis, begin);
-        idsi_plan_get(iter->basis, type, &room, &plan);
-        idsi_plan_digits(iter->basis, &plan, begin - iter->basis->offset[type], digit);
+    if (begin == end) {
+        idsi_iter_place(iter, 0, NULL, begin, 0);
+        return IDS_OK;
     }
+    type = idsi_basis_type_of(iter->basis, begin);
+    idsi_plan_get(iter->basis, type, &room, &plan);
+    idsi_plan_digits(iter->basis, &plan, begin - iter->basis->offset[type], digit);
     idsi_iter_place(iter, type, digit, begin, end - begin);
     return IDS_OK;
 }

@@ -48,7 +48,7 @@ void idsi_label_name(const ids_signature *sig, uint32_t label, char name[16])
         blank_name(sig, name);
         return;
     }
-    for (char letter = 'a'; letter <= 'z'; letter++) {
+    for (int letter = 'a'; letter <= 'z'; letter++) {
         snprintf(name, 16, "%c", letter);
         if (!names_operation(sig, name)) {
             free_letters++;

@@ -151,7 +151,7 @@ void idsi_split_for_group(const idsi_group *group, const uint64_t *key, const ui
         generated_parents(group, key, split->parent);
     } else if (group->symmetry != IDS_SYMMETRY_NONE) {
         for (uint32_t i = 1; i < group->arity; i++) {
-            split->parent[i] = key[i] == key[i - 1] ? (int8_t)(i - 1) : -1;
+            split->parent[i] = (int8_t)(key[i] == key[i - 1] ? (int)i - 1 : -1);
         }
     }
     idsi_split_prepare(split);

@@ -34,6 +34,12 @@ static inline uint32_t idsi_node_op(idsi_token token)
     return token & ~IDSI_NODE_BIT;
 }
 
+/* The set of the labels 1..degree; label i is bit i - 1. */
+static inline uint64_t idsi_labels_all(uint32_t degree)
+{
+    return degree == 0 ? 0 : UINT64_MAX >> (64 - degree);
+}
+
 /* ---- groups of signed argument orders ------------------------------------------------------- */
 
 /* order of arguments: result[i] = argument[image[i]] */

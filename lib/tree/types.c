@@ -349,14 +349,17 @@ uint32_t idsi_types_find_code(const ids_types *types, const idsi_token *code, si
             continue;
         }
         uint32_t op = idsi_node_op(code[i]);
+        uint32_t arity = types->sig->ops[op].arity;
+        IDSI_ASSERT(arity >= 2 && top >= arity);
         uint32_t found = *find_slot(types, op, &stack[top - 1], -1);
 
         if (found == 0) {
             return UINT32_MAX;
         }
-        top -= types->sig->ops[op].arity - 1;
+        top -= arity - 1;
         stack[top - 1] = found;
     }
+    IDSI_ASSERT(top == 1);
     /* cppcheck-suppress uninitvar ; a code has at least one token */
     return stack[0];
 }

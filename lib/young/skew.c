@@ -285,6 +285,7 @@ ids_status idsi_skews_cut(idsi_skews *skews, uint32_t number, uint32_t at)
     size_t middle_capacity = 0;
     size_t used_capacity = 0;
     size_t capacity = 0;
+    size_t cuts = 0;
     uint32_t t = 0;
 
     if (skew->cut_count[at] > 0) {
@@ -295,15 +296,16 @@ ids_status idsi_skews_cut(idsi_skews *skews, uint32_t number, uint32_t at)
         idsi_cut *cut = NULL;
         size_t k = 0;
         shape_after(skew, t, at, middle);
-        while (k < skew->cut_count[at] && memcmp(middles[k], middle, sizeof middle) != 0) {
+        while (k < cuts && memcmp(middles[k], middle, sizeof middle) != 0) {
             k++;
         }
-        if (k == skew->cut_count[at]) {
+        if (k == cuts) {
             IDSI_TRY(idsi_grow(skews->ctx, k, &middle_capacity, sizeof *middles, &middles));
             IDSI_TRY(idsi_grow(skews->ctx, k, &used_capacity, sizeof *used, &used));
             IDSI_TRY(get_cut(skews, number, at, middle, &capacity, &cut));
             memcpy(middles[k], middle, sizeof middle);
             used[k] = 0;
+            cuts++;
         }
         cut = &skew->cut[at][k];
         cut->start[used[k]] = t;

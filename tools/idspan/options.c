@@ -193,7 +193,7 @@ static bool read_value(option_id id, const char *value, settings *read)
             return read_slot(&slots[i], value, read);
         }
     }
-    return true; /* an option without a value */
+    return true;
 }
 
 /* ---- words --------------------------------------------------------------------------- */
@@ -252,7 +252,7 @@ static bool read_option(int argc, char **argv, int *at, settings *read)
         return false;
     }
     read->seen |= BIT(id);
-    return read_value((option_id)id, value, read);
+    return value == NULL || read_value((option_id)id, value, read);
 }
 
 static bool read_task(const char *word, settings *read)

@@ -444,7 +444,7 @@ int crew_main(const crew_orders *o)
     TRY(make_queue(&w));
     if (pipe(w.wake) != 0 || fcntl(w.wake[0], F_SETFL, O_NONBLOCK) != 0) {
         snprintf(o->b->message, BOARD_TEXT, "no pipe can be made: %s", strerror(errno));
-        return GROWER_STUCK;
+        goto done;
     }
     result = do_cells(&w, w.slot_count, MARK_WAITING);
     if (result == GROWER_DONE) {
@@ -453,5 +453,8 @@ int crew_main(const crew_orders *o)
         result = do_cells(&w, 1, MARK_AGAIN);
     }
 done:
+    ids_run_work_free(w.work);
+    free(w.queue);
+    free(w.slots);
     return st != IDS_OK ? give_up(o, st) : result;
 }

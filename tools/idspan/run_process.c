@@ -7,6 +7,7 @@
  * which are not counted in it, and end the process when memory is refused.
  */
 #include <signal.h>
+#include <stdlib.h>
 #include <sys/resource.h>
 #include <unistd.h>
 
@@ -24,16 +25,16 @@
 /* Address space of this process; 0 when the system does not tell. */
 static uint64_t address_space(void)
 {
-    unsigned long long pages = 0;
+    char line[256] = "";
     FILE *file = fopen("/proc/self/statm", "r");
 
     if (file != NULL) {
-        if (fscanf(file, "%llu", &pages) != 1) {
-            pages = 0;
+        if (fgets(line, sizeof line, file) == NULL) {
+            line[0] = '\0';
         }
         fclose(file);
     }
-    return (uint64_t)pages * (uint64_t)sysconf(_SC_PAGESIZE);
+    return (uint64_t)strtoull(line, NULL, 10) * (uint64_t)sysconf(_SC_PAGESIZE);
 }
 
 static void limit_memory(const session *s)

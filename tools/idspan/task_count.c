@@ -62,7 +62,7 @@ static ids_status write_row(counting *c, uint32_t degree, const uint32_t *uses)
     TRY(write_digits(&c->types));
     TRY(write_digits(&c->monomials));
     cells[at++] = degree_cell.text;
-    for (size_t i = 0; i < c->operations; i++) {
+    for (size_t i = 0; uses != NULL && i < c->operations; i++) {
         use_cells[i] = digits_of(uses[i]);
         cells[at++] = use_cells[i].text;
     }

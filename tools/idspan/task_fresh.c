@@ -56,11 +56,12 @@ static char *path_of(const session *s, const char *name)
 {
     const char *slash = strcmp(s->set->file, "-") == 0 ? NULL : strrchr(s->set->file, '/');
     size_t folder = slash == NULL || name[0] == '/' ? 0 : (size_t)(slash + 1 - s->set->file);
-    char *path = malloc(folder + strlen(name) + 1);
+    size_t length = strlen(name) + 1;
+    char *path = malloc(folder + length);
 
     if (path != NULL) {
         memcpy(path, s->set->file, folder);
-        strcpy(path + folder, name);
+        memcpy(path + folder, name, length);
     }
     return path;
 }

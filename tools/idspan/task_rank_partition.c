@@ -110,16 +110,17 @@ static void name_unfinished(const session *s, const ids_partition_table *table, 
                             size_t size)
 {
     size_t count = ids_partition_table_count(table);
-    ids_partition_row last = {.degree = s->set->first_degree - 1};
+    uint32_t last = s->set->first_degree - 1;
+    ids_partition_row row = {0};
 
-    if (count > 0 && ids_partition_table_row(table, count - 1, &last) != IDS_OK) {
-        count = 0;
+    if (count > 0 && ids_partition_table_row(table, count - 1, &row) == IDS_OK) {
+        last = row.degree;
     }
-    if (last.degree == s->set->last_degree) {
+    if (last == s->set->last_degree) {
         snprintf(text, size, "prime %zu of %u", ids_partition_table_prime_count(table),
                  (unsigned)s->set->primes);
     } else {
-        snprintf(text, size, "degree %u", (unsigned)last.degree + 1);
+        snprintf(text, size, "degree %u", (unsigned)last + 1);
     }
 }
 
