@@ -130,6 +130,9 @@ static void add_column_exact(idsi_sum *sum, uint64_t column, mpq_srcptr coeffici
     const idsi_lifted *table = idsi_proof_table(sum->forms->proof, sum->degree);
     mpq_t entry;
 
+    if (table->start == NULL) {
+        return; /* nothing is left of this degree, which needs no table */
+    }
     mpq_init(entry);
     for (size_t i = table->start[column]; i < table->start[column + 1]; i++) {
         mpq_ptr place = sum->exact[table->normal[i]];

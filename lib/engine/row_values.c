@@ -172,7 +172,8 @@ static ids_status evaluate(evaluator *ev, product *pr, uint32_t coefficient)
     uint32_t longest = 0;
 
     pr->result = (value){NULL, 0, 1};
-    if (pr->block == NULL) {
+    /* A lower degree of which nothing is left may have no table. */
+    if (pr->block == NULL || (!pr->is_root && pr->level->dimension == 0)) {
         return IDS_OK;
     }
     for (uint32_t i = 0; i <= last; i++) {
