@@ -16,7 +16,7 @@ extern "C" {
 /** Options of ids_fresh_create(); set struct_size, the rest to 0 for the defaults. */
 typedef struct ids_fresh_options {
     size_t struct_size; /**< sizeof(ids_fresh_options) */
-    uint32_t primes;    /**< number of random primes to compute with; 0: one */
+    uint32_t primes;    /**< number of random primes to compute with, at most 1000; 0: one */
     uint64_t seed;      /**< seed that primes and points are drawn from */
     bool exact;         /**< an algebra is evaluated on all tuples of basis elements, not at random
                              points; refused where these are too many */
@@ -45,10 +45,11 @@ typedef struct ids_fresh ids_fresh;
  *
  * In each degree and for each partition, `holding` and `consequences` are computed modulo random
  * primes. The identities of the presentation must hold in the model, which is verified first; so
- * where both numbers agree they are exact. Where they do not, one identity is found for each new
- * irreducible module, unless only the table is wanted. It holds in the model and does not follow
- * from what was known, both of which has been verified; none is superfluous. In all higher degrees
- * it counts as known.
+ * where both numbers agree they are exact, except in a model over another presentation, whose
+ * identities are used modulo the primes too. Where they do not agree, one identity is found for
+ * each new irreducible module, unless only the table is wanted. It holds in the model and does not
+ * follow from what was known, both of which has been verified; none is superfluous. In all higher
+ * degrees it counts as known.
  *
  * @param ctx      borrowed now, kept.
  * @param model    kept: must outlive the result.
@@ -58,7 +59,7 @@ typedef struct ids_fresh ids_fresh;
  * @param fresh    out, owned: ids_fresh_free(). Also written with IDS_ERR_LIMIT and
  *                 IDS_ERR_CANCELLED: then it has the degrees that were finished.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size
+ *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, too many primes
  *         IDS_ERR_DOMAIN     an identity of the presentation does not hold in the model; the
  *                            message names it
  *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model, or

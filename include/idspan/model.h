@@ -70,8 +70,8 @@ IDS_API void ids_model_free(ids_model *model);
  * Whether an identity or candidate of the model's presentation holds in the model.
  *
  * Words are multiplied out, and algebras evaluated on all tuples of basis elements; that is exact.
- * Over another presentation it is decided modulo two primes; then "holds" is wrong with probability
- * 2^-bits at most.
+ * Over another presentation it is decided modulo two primes; then the answer, whichever it is, is
+ * wrong with probability 2^-bits at most.
  *
  * @param ctx    borrowed.
  * @param model  borrowed.

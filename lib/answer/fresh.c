@@ -6,6 +6,8 @@
 
 #include "fresh_private.h"
 
+#define MOST_PRIMES 1000u
+
 void ids_fresh_free(ids_fresh *fresh)
 {
     if (fresh != NULL) {
@@ -82,26 +84,30 @@ ids_status ids_fresh_presentation(ids_ctx *ctx, const ids_fresh *fresh, char **t
 }
 
 /* The identities of the presentation must hold, or nothing that is computed means anything. */
-static ids_status check_identities(ids_ctx *ctx, const ids_model *model, uint32_t to)
+static ids_status check_identities(ids_fresh *fresh, uint32_t to)
 {
     ids_status st = IDS_OK;
+    const ids_model *model = fresh->model;
     const size_t count = ids_presentation_count(model->pres, IDS_ROLE_IDENTITY);
 
     for (size_t i = 0; i < count; i++) {
         const idsi_identity *identity = idsi_presentation_get(model->pres, IDS_ROLE_IDENTITY, i);
         bool holds = true;
+        double error = 0;
         if (identity->degree > to) {
             continue;
         }
-        IDSI_TRY(ids_model_holds(ctx, model, IDS_ROLE_IDENTITY, i, &holds, NULL));
+        IDSI_TRY(
+            idsi_model_holds(fresh->ctx, model, IDS_ROLE_IDENTITY, i, fresh->seed, &holds, &error));
         if (!holds) {
-            st = idsi_fail(ctx, IDS_ERR_DOMAIN,
-                           "the identity %s%s of line %u does not hold in the model %s; new "
+            st = idsi_fail(fresh->ctx, IDS_ERR_DOMAIN,
+                           "the identity %s of line %u does not hold in the model %s; new "
                            "identities can only be told from identities that hold",
-                           identity->name[0] == '\0' ? "without name" : identity->name, "",
+                           identity->name[0] == '\0' ? "without name" : identity->name,
                            identity->line, model->decl->name);
             goto done;
         }
+        fresh->doubt += error;
     }
 done:
     return st;
@@ -164,12 +170,17 @@ ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from,
     if (options != NULL) {
         chosen = *options;
     }
+    if (chosen.primes > MOST_PRIMES) {
+        return idsi_fail(ctx, IDS_ERR_ARG, "%u primes: at most %u are used",
+                         (unsigned)chosen.primes, MOST_PRIMES);
+    }
     *fresh = NULL;
-    IDSI_TRY(check_identities(ctx, model, to));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     made->model = model;
+    made->doubt = model->doubt;
     IDSI_TRY(draw_primes(made, &chosen));
+    IDSI_TRY(check_identities(made, to));
     for (uint32_t d = from; d <= to; d++) {
         IDSI_TRY(add_degree(made, d, chosen.table_only));
     }

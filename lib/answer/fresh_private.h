@@ -34,6 +34,7 @@ struct ids_fresh {
     ids_fresh_row *rows;
     size_t sure_capacity;
     double *sure; /* of each row the probability that the consequences are wrong */
+    double doubt; /* probability that some identity that is known does not hold */
     bool exact;
     size_t prime_count;
     uint32_t *primes;
@@ -43,10 +44,6 @@ struct ids_fresh {
     idsi_found *found;
     ids_presentation *known; /* with all that is found; NULL while there is nothing */
 };
-
-double idsi_factorial_bits(uint32_t n);
-/* log2 of the orders of the row and the column group of a partition, together. */
-double idsi_partition_group_bits(const ids_partition *partition);
 
 /* (fresh_table.c) Adds the rows of one degree to a result. */
 ids_status idsi_fresh_degree(ids_fresh *fresh, const ids_presentation *known, uint32_t degree);

@@ -65,14 +65,17 @@ static ids_status verify(ids_fresh *fresh, size_t count)
     for (size_t i = 0; i < count; i++) {
         idsi_found *found = &fresh->found[fresh->found_count - count + i];
         bool holds = false;
-        IDSI_TRY(ids_model_holds(fresh->ctx, &model, IDS_ROLE_IDENTITY, all - count + i, &holds,
-                                 &found->bits));
+        double error = 0;
+        IDSI_TRY(idsi_model_holds(fresh->ctx, &model, IDS_ROLE_IDENTITY, all - count + i,
+                                  fresh->seed, &holds, &error));
         if (!holds) {
             st = idsi_fail(fresh->ctx, IDS_ERR_INTERNAL,
                            "the identity %s, found modulo primes, does not hold in the model",
                            found->name);
             goto done;
         }
+        found->bits = error > 0 ? idsi_error_bits(error) : 0;
+        fresh->doubt += error;
     }
 done:
     return st;

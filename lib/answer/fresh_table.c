@@ -10,6 +10,13 @@
  *
  * over the rational numbers. Where q = r, all of that is equal and proved. Elsewhere q may be too
  * large, or r too small, with probabilities that add up.
+ *
+ * In a model over another presentation r is less sure. It is the rank of a matrix whose columns are
+ * the maps from the quotient there, and mod p there may be too many of these: r can be too large as
+ * well, and q = r proves nothing. So the primes with the fewest maps count, and among these the
+ * largest r. That is right when one prime divides neither a minor of the identities there nor one
+ * of these identities and the image together. Where q = r, the first alone is enough, since r is
+ * at most q. That the identities hold in such a model is not certain either.
  */
 #include <string.h>
 
@@ -25,8 +32,9 @@ typedef struct job {
     size_t count;        /* partitions */
     ids_fresh_row *rows; /* and the total */
     uint64_t *blocks; /* of random covectors behind each quotient, mod the prime that took most */
-    double *image_error; /* of each row mod one prime, the largest */
-    double *sure;        /* of each row the probability that the consequences are wrong */
+    double *image_error;   /* of each row mod one prime, the largest */
+    idsi_base_value *base; /* over a presentation: what the primes with the fewest maps say */
+    double *sure;          /* of each row the probability that the consequences are wrong */
     double image_bits;
 } job;
 
@@ -38,6 +46,7 @@ static ids_status lay_out(job *j)
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count + 1, sizeof *j->rows, &j->rows));
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof *j->blocks, &j->blocks));
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof(double), &j->image_error));
+    IDSI_TRY(idsi_alloc_array(j->ctx, j->count, sizeof *j->base, &j->base));
     IDSI_TRY(idsi_alloc_array(j->ctx, j->count + 1, sizeof(double), &j->sure));
     for (size_t i = 0; i < j->count; i++) {
         ids_fresh_row *row = &j->rows[i];
@@ -46,6 +55,7 @@ static ids_status lay_out(job *j)
         IDSI_TRY(ids_partition_dimension(&row->partition, &row->dimension));
         IDSI_TRY(ids_cocharacter_multiplicity(j->free, j->degree, i, &row->free));
         row->holding = row->free;
+        j->base[i].multiplicity = UINT32_MAX;
     }
     j->rows[j->count] = (ids_fresh_row){.degree = j->degree, .total = true};
 done:
@@ -72,9 +82,14 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, idsi_image *im
     if (row->free - quotient > row->consequences) {
         row->consequences = row->free - quotient;
     }
-    if (row->free - rank < row->holding) {
+    if (image->base_value.multiplicity < j->base[i].multiplicity) {
+        j->base[i] = image->base_value;
+        row->holding = row->free - rank;
+    } else if (image->base_value.multiplicity == j->base[i].multiplicity &&
+               row->free - rank < row->holding) {
         row->holding = row->free - rank;
     }
+    IDSI_TRY(idsi_partition_account(engine, row->partition.part, row->partition.length, &account));
     j->blocks[i] = account.blocks > j->blocks[i] ? account.blocks : j->blocks[i];
     j->image_error[i] = image->error > j->image_error[i] ? image->error : j->image_error[i];
 done:
@@ -115,8 +130,10 @@ static double certify(const job *j, size_t i, uint32_t primes)
                                   .partition = row->partition,
                                   .free = row->free,
                                   .quotient = row->free - row->consequences};
-    const double image = (double)(row->free - row->holding) *
-                         (idsi_partition_group_bits(&row->partition) + j->image_bits);
+    const idsi_base_value *base = &j->base[i];
+    const uint64_t rank = row->free - row->holding;
+    const double image =
+        (double)rank * (idsi_partition_group_bits(&row->partition) + j->image_bits);
     double error = 0;
 
     row->fresh = row->holding - row->consequences;
@@ -126,7 +143,12 @@ static double certify(const job *j, size_t i, uint32_t primes)
         idsi_partition_certify(j->laws, j->blocks[i], primes, &quotient, &error);
         j->sure[i] = error;
         j->sure[j->count] += error;
-        error += idsi_prime_error(image, j->image_error[i], primes);
+        error += idsi_prime_error(2 * base->bits + image, base->error + j->image_error[i], primes);
+    } else if (rank > 0 && base->bits > 0) {
+        error = idsi_prime_error(base->bits, base->error, primes);
+    }
+    error += j->fresh->doubt;
+    if (row->fresh > 0 || error > 0) {
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(error);
     }
@@ -210,6 +232,7 @@ done:
     idsi_free(j.ctx, j.rows);
     idsi_free(j.ctx, j.blocks);
     idsi_free(j.ctx, j.image_error);
+    idsi_free(j.ctx, j.base);
     idsi_free(j.ctx, j.sure);
     return st;
 }

@@ -118,35 +118,6 @@ done:
     return st;
 }
 
-/* Not lgamma(), which writes a variable of the whole process. */
-double idsi_factorial_bits(uint32_t n)
-{
-    double bits = 0;
-
-    for (uint32_t i = 2; i <= n; i++) {
-        bits += log2(i);
-    }
-    return bits;
-}
-
-/* log2 of the orders of the row and the column group of a partition, together. */
-double idsi_partition_group_bits(const ids_partition *partition)
-{
-    double bits = 0;
-    ids_partition conjugate = *partition;
-
-    if (ids_partition_conjugate(partition, &conjugate) != IDS_OK) {
-        return INFINITY;
-    }
-    for (uint32_t i = 0; i < partition->length; i++) {
-        bits += idsi_factorial_bits(partition->part[i]);
-    }
-    for (uint32_t i = 0; i < conjugate.length; i++) {
-        bits += idsi_factorial_bits(conjugate.part[i]);
-    }
-    return bits + 1e-6;
-}
-
 void idsi_partition_certify(const idsi_laws *laws, uint64_t blocks, uint32_t primes,
                             ids_partition_row *row, double *error)
 {
@@ -214,8 +185,7 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, size_t i)
 
     IDSI_TRY(idsi_partition_multiplicity(engine, row->partition.part, row->partition.length,
                                          &multiplicity));
-    IDSI_TRY(idsi_partition_account(engine, row->partition.part, row->partition.length,
-                                    &account));
+    IDSI_TRY(idsi_partition_account(engine, row->partition.part, row->partition.length, &account));
     if (multiplicity > row->free) {
         st = idsi_fail(j->ctx, IDS_ERR_INTERNAL,
                        "degree %u: a multiplicity is %u in the quotient, %llu in the free "
@@ -319,8 +289,8 @@ static ids_status check_arguments(ids_ctx *ctx, uint32_t from, uint32_t to,
         return idsi_fail_arg(ctx, "struct_size");
     }
     if (options != NULL && options->partition != NULL &&
-        (!idsi_partition_is_valid(options->partition) ||
-         options->partition->degree != from || from != to)) {
+        (!idsi_partition_is_valid(options->partition) || options->partition->degree != from ||
+         from != to)) {
         return idsi_fail(ctx, IDS_ERR_ARG,
                          "the partition is one of %u, the degrees are %u to %u; one degree, its "
                          "own, is possible",

@@ -92,12 +92,7 @@ static uint32_t products_below_root(const idsi_law *law)
 
 static double coefficient_bits(const idsi_law *law)
 {
-    double sum = 0;
-    for (size_t t = 0; t < law->poly->count; t++) {
-        sum += fabs(mpq_get_d(law->poly->coefficients[t]));
-    }
-    /* cppcheck-suppress invalidFunctionArg ; a law has terms */
-    return log2(sum) + 1e-6;
+    return idsi_sum_bits(law->poly->coefficients, law->poly->count) + 1e-6;
 }
 
 /* log2 of the bound at the top of this file, for all laws together. */

@@ -35,8 +35,8 @@ done:
     return st;
 }
 
-static ids_status compile_tree(ids_ctx *ctx, idsi_law *law, size_t *capacity,
-                               const idsi_token **at, int32_t *arg, uint32_t *variables)
+static ids_status compile_tree(ids_ctx *ctx, idsi_law *law, size_t *capacity, const idsi_token **at,
+                               int32_t *arg, uint32_t *variables)
 {
     ids_status st = IDS_OK;
     idsi_law_node node = {0};
@@ -72,8 +72,8 @@ static ids_status exchange_keeps(const idsi_poly *poly, idsi_token i, idsi_token
     image.variables = poly->variables;
     for (size_t t = 0; t < poly->count; t++) {
         size_t length = poly->start[t + 1] - poly->start[t];
-        IDSI_TRY(idsi_poly_append(&image, poly->coefficients[t], poly->tokens + poly->start[t],
-                                  length));
+        IDSI_TRY(
+            idsi_poly_append(&image, poly->coefficients[t], poly->tokens + poly->start[t], length));
     }
     for (size_t k = 0; k < poly->start[poly->count]; k++) {
         idsi_token token = image.tokens[k];
@@ -118,13 +118,12 @@ done:
 
 static double norm_bits(const idsi_poly *poly)
 {
-    double sum = 0;
+    double squares = -INFINITY;
     for (size_t t = 0; t < poly->count; t++) {
-        double c = mpq_get_d(poly->coefficients[t]);
-        sum += c * c;
+        squares = idsi_bits_add(squares, 2 * idsi_mpq_bits(poly->coefficients[t]));
     }
     /* Rounded up, so that it stays an upper bound in floating point. */
-    return isfinite(sum) ? 0.5 * log2(sum) * (1 + 1e-9) + 1e-9 : INFINITY;
+    return 0.5 * squares * (1 + 1e-9) + 1e-9;
 }
 
 ids_status idsi_law_compile(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law)

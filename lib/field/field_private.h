@@ -52,6 +52,14 @@ double idsi_prime_error(double minor_bits, double random_error, uint32_t primes)
 /* The k of 2^-k >= error; 0 when the error is no bound, 1000 for no error. */
 uint32_t idsi_error_bits(double error);
 uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes);
+/* log2 of the absolute value, -INFINITY for 0, of however large a number. */
+double idsi_mpz_bits(mpz_srcptr z);
+double idsi_mpq_bits(mpq_srcptr q);
+/* log2(2^a + 2^b). */
+double idsi_bits_add(double a, double b);
+/* log2 of the sum of the absolute values; log2 of the least common denominator. */
+double idsi_sum_bits(const mpq_t *numbers, size_t count);
+double idsi_denominator_bits(const mpq_t *numbers, size_t count);
 
 /* ---- sparse echelon form (lib/field/sparse.c) ------------------------------------------------ */
 
@@ -74,8 +82,7 @@ void idsi_echelon_free(idsi_echelon *echelon);
 /* Bytes that idsi_echelon_create() takes for so many columns. */
 uint64_t idsi_echelon_base_bytes(uint64_t columns);
 /* Adds factor * row to the row at work. Columns in any order, may repeat; values < prime. */
-void idsi_echelon_load(idsi_echelon *echelon, const idsi_entry *row, size_t count,
-                       uint32_t factor);
+void idsi_echelon_load(idsi_echelon *echelon, const idsi_entry *row, size_t count, uint32_t factor);
 typedef enum idsi_verdict {
     IDSI_DEPENDENT,   /* the row adds nothing */
     IDSI_INDEPENDENT, /* it has become a rule */
@@ -113,7 +120,7 @@ typedef struct idsi_matrix {
     ids_ctx *ctx;
     uint32_t prime;
     uint32_t columns;
-    bool tables; /* the complete echelon form is wanted, not only the rank */
+    bool tables;           /* the complete echelon form is wanted, not only the rank */
     idsi_source_fn source; /* unless there are pieces */
     size_t pieces;         /* > 0: rows come from `piece` */
     idsi_piece_fn piece;
@@ -123,8 +130,8 @@ typedef struct idsi_matrix {
 typedef struct idsi_result {
     idsi_echelon *echelon; /* with tables: complete, owned; else NULL */
     uint64_t rank;
-    double error;  /* probability that the rank is too small, whatever the matrix; 0: none */
-    uint64_t rows; /* that the source made */
+    double error;      /* probability that the rank is too small, whatever the matrix; 0: none */
+    uint64_t rows;     /* that the source made */
     uint64_t deferred; /* rows that were left to the dense finish */
     uint64_t fill;     /* entries in sparse rules */
     uint64_t dense_rank;

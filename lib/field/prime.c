@@ -111,6 +111,49 @@ uint32_t idsi_error_bits(double error)
     return bits > 0 ? (uint32_t)bits : 0;
 }
 
+double idsi_mpz_bits(mpz_srcptr z)
+{
+    signed long exponent = 0; /* the type is GMP's */
+    const double mantissa = mpz_get_d_2exp(&exponent, z);
+
+    return mantissa == 0 ? -INFINITY : log2(fabs(mantissa)) + (double)exponent;
+}
+
+double idsi_mpq_bits(mpq_srcptr q)
+{
+    return idsi_mpz_bits(mpq_numref(q)) - idsi_mpz_bits(mpq_denref(q));
+}
+
+double idsi_bits_add(double a, double b)
+{
+    const double high = fmax(a, b);
+
+    return isinf(high) ? high : high + log2(1 + exp2(fmin(a, b) - high));
+}
+
+double idsi_sum_bits(const mpq_t *numbers, size_t count)
+{
+    double bits = -INFINITY;
+
+    for (size_t i = 0; i < count; i++) {
+        bits = idsi_bits_add(bits, idsi_mpq_bits(numbers[i]));
+    }
+    return bits;
+}
+
+double idsi_denominator_bits(const mpq_t *numbers, size_t count)
+{
+    mpz_t common;
+
+    mpz_init_set_ui(common, 1);
+    for (size_t i = 0; i < count; i++) {
+        mpz_lcm(common, common, mpq_denref(numbers[i]));
+    }
+    const double bits = idsi_mpz_bits(common);
+    mpz_clear(common);
+    return bits;
+}
+
 uint32_t idsi_prime_error_bits(double minor_bits, double random_error, uint32_t primes)
 {
     return idsi_error_bits(idsi_prime_error(minor_bits, random_error, primes));

@@ -105,15 +105,12 @@ static ids_status holds_in_words(ids_ctx *ctx, const ids_model *model, const ids
                                  bool *holds)
 {
     ids_status st = IDS_OK;
-    double size = 0;
     double known = 0;
     uint32_t prime = IDSI_PRIME_HIGH - 1;
-
-    for (size_t i = 0; i < poly->count; i++) {
-        size += fabs(mpq_get_d(poly->coefficients[i]));
-    }
+    const double size = idsi_sum_bits(poly->coefficients, poly->count);
     /* One bit more for the sign. */
-    double bits = 1 + idsi_words_bits(model, poly->degree, log2(fmax(size, 1)));
+    const double bits = 1 + idsi_words_bits(model, poly->degree, fmax(size, 0));
+
     *holds = true;
     while (*holds && known < bits) {
         bool good = true;
@@ -130,8 +127,6 @@ done:
 }
 
 /* ---- over another presentation --------------------------------------------------------------- */
-
-#define OVER_PRIMES 2u
 
 /* The polynomial that an identity is there. */
 static ids_status expand_over(const ids_model *model, const idsi_poly *poly, idsi_poly *sum)
@@ -161,43 +156,17 @@ done:
     return st;
 }
 
-/*
- * "Does not hold" is as sure as the primes are: a prime can make a polynomial that is 0 only look
- * like another when it divides a denominator in its derivation. "Holds" can come from a prime that
- * divides a value, or from covectors that see nothing.
- */
 static ids_status holds_over(ids_ctx *ctx, const ids_model *model, const idsi_poly *poly,
-                             bool *holds, uint32_t *bits)
+                             uint64_t seed, bool *holds, double *error)
 {
     ids_status st = IDS_OK;
-    idsi_laws *laws = NULL;
-    idsi_partition_engine *base = NULL;
-    uint32_t primes[OVER_PRIMES] = {0};
-    idsi_random random;
     idsi_poly sum;
 
-    idsi_random_seed(&random, poly->degree);
     idsi_poly_init(&sum, ctx, model->base->sig);
-    *holds = true;
-    *bits = 0;
     IDSI_TRY(expand_over(model, poly, &sum));
-    for (uint32_t k = 0; sum.count > 0 && *holds && k < OVER_PRIMES; k++) {
-        primes[k] = idsi_prime_draw(&random, primes, k);
-        IDSI_TRY(idsi_image_over_open(ctx, model, primes[k], sum.degree, &laws, &base));
-        IDSI_TRY(idsi_over_vanishes(ctx, base, &sum, holds));
-        idsi_partition_free(base);
-        idsi_laws_free(laws);
-        base = NULL;
-        laws = NULL;
-    }
-    if (sum.count > 0) {
-        const double minor = 64.0 * poly->degree * poly->degree * (double)(sum.count + 1);
-        *bits = idsi_prime_error_bits(minor, 1e-12, OVER_PRIMES);
-    }
+    st = idsi_base_is_zero(ctx, model->base, &sum, seed, holds, error);
 done:
     idsi_poly_clear(&sum);
-    idsi_partition_free(base);
-    idsi_laws_free(laws);
     return st;
 }
 
@@ -211,34 +180,47 @@ static ids_status holds_in_algebra(ids_ctx *ctx, const ids_model *model, ids_rol
 
 /* ---- all kinds ------------------------------------------------------------------------------- */
 
+ids_status idsi_model_holds(ids_ctx *ctx, const ids_model *model, ids_role role, size_t index,
+                            uint64_t seed, bool *holds, double *error)
+{
+    ids_status st = IDS_OK;
+    const idsi_poly *linear = &idsi_presentation_get(model->pres, role, index)->linear;
+
+    *holds = true;
+    *error = 0;
+    if (linear->count > 0) {
+        switch (model->decl->kind) {
+        case IDS_MODEL_ASSOCIATIVE:
+            IDSI_TRY(holds_in_words(ctx, model, linear, holds));
+            break;
+        case IDS_MODEL_ALGEBRA:
+            IDSI_TRY(holds_in_algebra(ctx, model, role, index, holds));
+            break;
+        case IDS_MODEL_OVER:
+            IDSI_TRY(holds_over(ctx, model, linear, seed, holds, error));
+            break;
+        }
+    }
+done:
+    return st;
+}
+
 ids_status ids_model_holds(ids_ctx *ctx, const ids_model *model, ids_role role, size_t index,
                            bool *holds, uint32_t *bits)
 {
     ids_status st = IDS_OK;
-    const idsi_identity *identity =
-        model == NULL ? NULL : idsi_presentation_get(model->pres, role, index);
     bool found = true;
-    uint32_t claimed = 0;
+    double error = 0;
 
-    if (ctx == NULL || identity == NULL || holds == NULL) {
+    if (ctx == NULL || model == NULL || holds == NULL ||
+        idsi_presentation_get(model->pres, role, index) == NULL) {
         return idsi_fail_arg(ctx, "context, model, identity or result");
     }
-    if (identity->linear.count > 0) {
-        switch (model->decl->kind) {
-        case IDS_MODEL_ASSOCIATIVE:
-            IDSI_TRY(holds_in_words(ctx, model, &identity->linear, &found));
-            break;
-        case IDS_MODEL_ALGEBRA:
-            IDSI_TRY(holds_in_algebra(ctx, model, role, index, &found));
-            break;
-        case IDS_MODEL_OVER:
-            IDSI_TRY(holds_over(ctx, model, &identity->linear, &found, &claimed));
-            break;
-        }
-    }
+    IDSI_TRY(idsi_model_holds(ctx, model, role, index, 0, &found, &error));
     *holds = found;
+    error += model->doubt;
     if (bits != NULL) {
-        *bits = claimed;
+        *bits = error > 0 ? idsi_error_bits(error) : 0;
     }
 done:
     return st;

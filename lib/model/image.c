@@ -96,8 +96,7 @@ static ids_status open_kind(idsi_image *image, bool *good)
     case IDS_MODEL_OVER:
         break;
     }
-    return idsi_image_over_open(image->ctx, model, image->prime, image->degree, &image->laws,
-                                &image->base);
+    return idsi_base_open(image->ctx, model->base, image->prime, image->degree, &image->base);
 }
 
 ids_status idsi_image_create(ids_ctx *ctx, const ids_model *model, idsi_partition_engine *engine,
@@ -141,8 +140,7 @@ void idsi_image_free(idsi_image *image)
         }
         idsi_free(image->ctx, image->points);
         idsi_residues_free(image->residues);
-        idsi_partition_free(image->base);
-        idsi_laws_free(image->laws);
+        idsi_base_close(&image->base);
         idsi_free(image->ctx, image->trees);
         idsi_free(image->ctx, image);
     }
@@ -190,6 +188,7 @@ ids_status idsi_image_rank(idsi_image *image, const ids_partition *partition, ui
 
     *rank = 0;
     image->error = 0;
+    image->base_value = (idsi_base_value){0};
     if (bound == 0) {
         return IDS_OK;
     }
@@ -239,13 +238,8 @@ static double over_bits(const ids_model *model, uint32_t degree)
 
     for (size_t op = 0; op < model->pres->sig->count; op++) {
         const idsi_poly *poly = &model->value[op];
-        double sum = 0;
-        double denominators = 0;
-        for (size_t t = 0; t < poly->count; t++) {
-            sum += fabs(mpq_get_d(poly->coefficients[t]));
-            denominators += log2(mpz_get_d(mpq_denref(poly->coefficients[t])));
-        }
-        bits += (degree - 1.0) * (denominators + log2(fmax(sum, 1)) + 1e-6);
+        bits += (degree - 1.0) * (idsi_denominator_bits(poly->coefficients, poly->count) +
+                                  fmax(0, idsi_sum_bits(poly->coefficients, poly->count)) + 1e-6);
     }
     return bits;
 }

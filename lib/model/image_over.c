@@ -11,17 +11,27 @@
 
 #include "realize_private.h"
 
-ids_status idsi_image_over_open(ids_ctx *ctx, const ids_model *model, uint32_t prime,
-                                uint32_t degree, idsi_laws **laws, idsi_partition_engine **base)
+ids_status idsi_base_open(ids_ctx *ctx, const ids_presentation *pres, uint32_t prime,
+                          uint32_t degree, idsi_base *base)
 {
     ids_status st = IDS_OK;
 
-    IDSI_TRY(idsi_laws_create(ctx, model->base, laws));
-    IDSI_TRY(idsi_partition_create(ctx, *laws, prime, degree, base));
-    (*base)->top_basis = true;
-    IDSI_TRY(idsi_partition_solve(*base, degree));
+    base->ctx = ctx;
+    IDSI_TRY(idsi_laws_create(ctx, pres, &base->laws));
+    IDSI_TRY(ids_cocharacter_create(ctx, pres->sig, degree, &base->free));
+    IDSI_TRY(idsi_partition_create(ctx, base->laws, prime, degree, &base->engine));
+    base->engine->top_basis = true;
+    IDSI_TRY(idsi_partition_solve(base->engine, degree));
 done:
     return st;
+}
+
+void idsi_base_close(idsi_base *base)
+{
+    idsi_partition_free(base->engine);
+    ids_cocharacter_free(base->free);
+    idsi_laws_free(base->laws);
+    *base = (idsi_base){0};
 }
 
 /* ---- monomials as expressions ---------------------------------------------------------------- */
@@ -142,16 +152,32 @@ static void draw_block(reader *r, idsi_random *random)
     }
 }
 
-/* ---- answers --------------------------------------------------------------------------------- */
+/* ---- the image ------------------------------------------------------------------------------- */
 
-static ids_status find_shape(idsi_partition_engine *base, const ids_partition *partition,
-                             uint32_t *shape, uint32_t *dimension)
+/* A partition there: its shape, and its multiplicity with the doubts about it. */
+static ids_status find_shape(const idsi_base *base, const ids_partition *partition, uint32_t *shape,
+                             idsi_base_value *value)
 {
     ids_status st = IDS_OK;
     static const uint8_t empty[IDSI_SHAPE_MAX] = {0};
+    idsi_partition_engine *engine = base->engine;
+    const double norm = idsi_laws_norm_bits(base->laws, partition->degree);
+    idsi_account account = {0};
+    uint64_t index = 0;
+    uint64_t free = 0;
 
-    IDSI_TRY(idsi_skews_get(&base->skews, partition->part, empty, partition->length, shape));
-    *dimension = *shape < base->space_count ? base->spaces[*shape].dimension : 0;
+    *value = (idsi_base_value){0};
+    IDSI_TRY(idsi_skews_get(&engine->skews, partition->part, empty, partition->length, shape));
+    if (*shape < engine->space_count) {
+        value->multiplicity = engine->spaces[*shape].dimension;
+    }
+    if (norm >= 0 && value->multiplicity > 0) {
+        IDSI_TRY(ids_partition_rank(partition, &index));
+        IDSI_TRY(ids_cocharacter_multiplicity(base->free, partition->degree, index, &free));
+        IDSI_TRY(idsi_partition_account(engine, partition->part, partition->length, &account));
+        value->bits = (double)free * (idsi_partition_group_bits(partition) + norm);
+        value->error = idsi_blocks_error(account.blocks);
+    }
 done:
     return st;
 }
@@ -163,15 +189,13 @@ ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, ui
     reader r = {.shape = 0};
     idsi_poly value;
     uint32_t shape = 0;
-    uint32_t dimension = 0;
-    idsi_account account = {0};
 
     idsi_poly_init(&value, image->ctx, image->model->base->sig);
-    IDSI_TRY(find_shape(image->base, partition, &shape, &dimension));
-    if (dimension == 0) {
+    IDSI_TRY(find_shape(&image->base, partition, &shape, &image->base_value));
+    if (image->base_value.multiplicity == 0) {
         goto done;
     }
-    IDSI_TRY(reader_open(&r, image->ctx, image->base, shape, (size_t)bound + 4));
+    IDSI_TRY(reader_open(&r, image->ctx, image->base.engine, shape, (size_t)bound + 4));
     for (size_t g = 0; g < image->count; g++) {
         IDSI_TRY(idsi_over_tree(image->model, image->trees[g], &value));
         draw_block(&r, &image->random);
@@ -180,40 +204,152 @@ ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, ui
         IDSI_TRY(idsi_poll(image->ctx, NULL));
     }
     IDSI_TRY(idsi_image_eliminate(image, r.sum, r.dimension, r.width, rank));
-    IDSI_TRY(idsi_partition_account(image->base, partition->part, partition->length, &account));
-    image->error = idsi_blocks_error(account.blocks) + 4.0 / ((double)image->prime * image->prime);
+    image->error = 4.0 / ((double)image->prime * image->prime);
 done:
     idsi_poly_clear(&value);
     reader_clear(&r);
     return st;
 }
 
-ids_status idsi_over_vanishes(ids_ctx *ctx, idsi_partition_engine *base, const idsi_poly *poly,
-                              bool *zero)
+/* ---- is it zero? ----------------------------------------------------------------------------- */
+
+/*
+ * A polynomial is 0 modulo the identities when all maps from the quotient are 0 on it. Mod a prime
+ * there can be too many maps, when it divides a minor of the identities, and then the polynomial
+ * looks as if it were not 0; or the right ones, but the prime divides the values, that is, a minor
+ * of the identities and the polynomial together. So for each partition the primes with the fewest
+ * maps count, and among these one where it is not 0. That is wrong only when every prime divides
+ * one of the two minors.
+ */
+#define ZERO_PRIMES 2u
+
+typedef struct verdict {
+    size_t count; /* partitions */
+    idsi_base_value *values;
+    bool *zero;
+} verdict;
+
+/* A prime that divides no denominator of the polynomial. */
+static uint32_t draw_prime(idsi_random *random, const uint32_t *known, size_t count,
+                           const idsi_poly *poly)
+{
+    for (;;) {
+        const uint32_t prime = idsi_prime_draw(random, known, count);
+        bool good = true;
+        for (size_t t = 0; good && t < poly->count; t++) {
+            uint32_t residue = 0;
+            good = idsi_mod_rational(poly->coefficients[t], prime, &residue);
+        }
+        if (good) {
+            return prime;
+        }
+    }
+}
+
+/* Whether all maps mod the prime of the base are 0 on a polynomial. */
+static ids_status read_zero(const idsi_base *base, uint32_t shape, const idsi_poly *poly,
+                            idsi_random *random, bool *zero)
+{
+    ids_status st = IDS_OK;
+    reader r = {.shape = 0};
+
+    *zero = true;
+    IDSI_TRY(reader_open(&r, base->ctx, base->engine, shape, 4));
+    draw_block(&r, random);
+    IDSI_TRY(add_values(&r, poly));
+    for (size_t i = 0; i < r.dimension * r.width; i++) {
+        *zero = *zero && r.sum[i] == 0;
+    }
+done:
+    reader_clear(&r);
+    return st;
+}
+
+static ids_status ask_prime(const idsi_base *base, const idsi_poly *poly, idsi_random *random,
+                            verdict *v)
 {
     ids_status st = IDS_OK;
     ids_partition partition = {0};
+
+    idsi_partition_first(poly->degree, &partition);
+    for (size_t i = 0; i < v->count; i++) {
+        uint32_t shape = 0;
+        bool zero = true;
+        idsi_base_value now = {0};
+        IDSI_TRY(find_shape(base, &partition, &shape, &now));
+        if (now.multiplicity > 0) {
+            IDSI_TRY(read_zero(base, shape, poly, random, &zero));
+            now.error += 0x1p-57; /* that the block misses a value */
+        }
+        if (now.multiplicity < v->values[i].multiplicity) {
+            v->values[i] = now;
+            v->zero[i] = zero;
+        } else if (now.multiplicity == v->values[i].multiplicity) {
+            v->zero[i] = v->zero[i] && zero;
+        }
+        (void)idsi_partition_next(&partition);
+    }
+done:
+    return st;
+}
+
+/* The probability that for some partition no prime tells the truth. */
+static double doubt(const verdict *v, const idsi_poly *poly)
+{
+    const double size = idsi_sum_bits(poly->coefficients, poly->count) +
+                        idsi_denominator_bits(poly->coefficients, poly->count);
+    double error = 0;
+    ids_partition partition = {0};
+
+    idsi_partition_first(poly->degree, &partition);
+    for (size_t i = 0; i < v->count; i++) {
+        if (v->values[i].multiplicity > 0) {
+            error += idsi_prime_error(2 * v->values[i].bits +
+                                          idsi_partition_group_bits(&partition) + size,
+                                      v->values[i].error, ZERO_PRIMES);
+        }
+        (void)idsi_partition_next(&partition);
+    }
+    return error;
+}
+
+ids_status idsi_base_is_zero(ids_ctx *ctx, const ids_presentation *pres, const idsi_poly *poly,
+                             uint64_t seed, bool *zero, double *error)
+{
+    ids_status st = IDS_OK;
+    verdict v = {.count = (size_t)ids_partition_count(poly->degree)};
+    uint32_t primes[ZERO_PRIMES] = {0};
+    idsi_laws *laws = NULL;
+    idsi_base base = {0};
     idsi_random random;
 
+    *zero = poly->count == 0;
+    *error = 0;
+    IDSI_TRY(idsi_laws_create(ctx, pres, &laws));
+    if (*zero || idsi_laws_norm_bits(laws, poly->degree) < 0) {
+        goto done;
+    }
+    IDSI_TRY(idsi_alloc_array(ctx, v.count, sizeof *v.values, &v.values));
+    IDSI_TRY(idsi_alloc_array(ctx, v.count, sizeof *v.zero, &v.zero));
+    for (size_t i = 0; i < v.count; i++) {
+        v.values[i].multiplicity = UINT32_MAX;
+    }
+    idsi_random_seed(&random, seed);
+    for (uint32_t k = 0; k < ZERO_PRIMES; k++) {
+        primes[k] = draw_prime(&random, primes, k, poly);
+        IDSI_TRY(idsi_base_open(ctx, pres, primes[k], poly->degree, &base));
+        IDSI_TRY(ask_prime(&base, poly, &random, &v));
+        idsi_base_close(&base);
+    }
     *zero = true;
-    idsi_random_seed(&random, base->prime);
-    idsi_partition_first(poly->degree, &partition);
-    do {
-        reader r = {.shape = 0};
-        uint32_t shape = 0;
-        uint32_t dimension = 0;
-        st = find_shape(base, &partition, &shape, &dimension);
-        if (st == IDS_OK && dimension > 0) {
-            st = reader_open(&r, ctx, base, shape, 4);
-            if (st == IDS_OK) {
-                draw_block(&r, &random);
-                st = add_values(&r, poly);
-            }
-            for (size_t i = 0; st == IDS_OK && i < r.dimension * r.width; i++) {
-                *zero = *zero && r.sum[i] == 0;
-            }
-            reader_clear(&r);
-        }
-    } while (st == IDS_OK && *zero && idsi_partition_next(&partition));
+    for (size_t i = 0; i < v.count; i++) {
+        *zero = *zero && v.zero[i];
+    }
+    *error = doubt(&v, poly);
+done:
+    idsi_base_close(&base);
+    idsi_laws_free(laws);
+    idsi_free(ctx, v.values);
+    idsi_free(ctx, v.zero);
     return st;
 }

@@ -19,6 +19,7 @@ struct ids_model {
     uint32_t operation[IDS_MAX_OPERATIONS]; /* index of each operation there */
     ids_presentation *base;                 /* over another presentation: owned */
     idsi_poly *value; /* each operation as a polynomial there, label i being argument i */
+    double doubt;     /* probability that one of these lacks the symmetry it is to have */
 };
 
 /* A multilinear tree as a polynomial over the other presentation; `value` has no terms. (over.c) */
@@ -81,6 +82,24 @@ double idsi_words_bits(const ids_model *model, uint32_t degree, double terms);
  * generators of F(n)/I(n): products of the generators of lower degrees that the partition engine
  * has chosen. For each kind of model there is a way to draw maps at random.
  */
+/* Another presentation, solved mod a prime. */
+typedef struct idsi_base {
+    ids_ctx *ctx;
+    idsi_laws *laws;
+    idsi_partition_engine *engine;
+    ids_cocharacter *free;
+} idsi_base;
+
+/*
+ * A multiplicity in its quotient, and how it can be too large: bits of a minor that the prime may
+ * divide, and what random covectors can miss. Both are 0 where it is certain.
+ */
+typedef struct idsi_base_value {
+    uint32_t multiplicity;
+    double bits;
+    double error;
+} idsi_base_value;
+
 typedef struct idsi_image {
     ids_ctx *ctx;
     const ids_model *model;
@@ -98,9 +117,10 @@ typedef struct idsi_image {
     idsi_residues *residues;    /* in an algebra, */
     size_t point_count;         /* and the values at points that were drawn so far */
     size_t point_capacity;
-    uint32_t **points; /* degree! x generators x dimension residues */
-    idsi_laws *laws;   /* over a presentation: its laws, and all its maps */
-    idsi_partition_engine *base;
+    uint32_t **points;          /* degree! x generators x dimension residues */
+    idsi_base base;             /* over a presentation, */
+    idsi_base_value base_value; /* and that of the last rank: a wrong one makes the rank wrong,
+                                 * in either direction */
 } idsi_image;
 
 /* *good is false, and there is no result, when the prime divides a denominator of the model. */
@@ -124,13 +144,23 @@ ids_status idsi_image_words(idsi_image *image, const idsi_skew *skew, uint32_t b
 ids_status idsi_image_algebra(idsi_image *image, const idsi_skew *skew, uint32_t bound,
                               uint32_t *rank);
 
-/* (image_over.c) Solves the other presentation; then ranks, and whether a polynomial there is 0. */
-ids_status idsi_image_over_open(ids_ctx *ctx, const ids_model *model, uint32_t prime,
-                                uint32_t degree, idsi_laws **laws, idsi_partition_engine **base);
+/* (image_over.c) */
+ids_status idsi_base_open(ids_ctx *ctx, const ids_presentation *pres, uint32_t prime,
+                          uint32_t degree, idsi_base *base);
+void idsi_base_close(idsi_base *base); /* a zeroed one is fine */
 ids_status idsi_image_over(idsi_image *image, const ids_partition *partition, uint32_t bound,
                            uint32_t *rank);
-ids_status idsi_over_vanishes(ids_ctx *ctx, idsi_partition_engine *base, const idsi_poly *poly,
-                              bool *zero);
+/*
+ * Whether a polynomial is 0 modulo the identities of a presentation, and the probability that this
+ * is wrong, 0 when it is certain.
+ */
+ids_status idsi_base_is_zero(ids_ctx *ctx, const ids_presentation *pres, const idsi_poly *poly,
+                             uint64_t seed, bool *zero, double *error);
+
+/* (holds.c) ids_model_holds() with a seed, and the probability that the answer is wrong; the doubt
+ * about the model itself is not in it. */
+ids_status idsi_model_holds(ids_ctx *ctx, const ids_model *model, ids_role role, size_t index,
+                            uint64_t seed, bool *holds, double *error);
 
 /* ---- samples (sample_words.c, sample_algebra.c) ------------------------------------------------
  * Trees with repeated letters, evaluated: a row of `width` residues each, such that a combination

@@ -269,14 +269,14 @@ double idsi_words_bits(const ids_model *model, uint32_t degree, double terms)
 
     for (size_t i = 0; i < model->decl->count; i++) {
         const idsi_realization *made = &model->decl->list[i];
-        double sum = 0;
+        double sum = -INFINITY;
         double denominators = 0;
         for (size_t w = 0; w < made->count; w++) {
-            sum += fabs(mpq_get_d(made->words[w].coefficient));
-            denominators += log2(mpz_get_d(mpq_denref(made->words[w].coefficient)));
+            sum = idsi_bits_add(sum, idsi_mpq_bits(made->words[w].coefficient));
+            denominators += idsi_mpz_bits(mpq_denref(made->words[w].coefficient));
         }
         double uses = degree == 0 ? 0 : floor((degree - 1.0) / (made->arity - 1.0));
-        bits += uses * (denominators + fmax(0, log2(fmax(sum, 1))) + 1e-6);
+        bits += uses * (denominators + fmax(0, sum) + 1e-6);
     }
     return bits + 1e-6;
 }

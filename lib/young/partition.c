@@ -13,6 +13,7 @@
  */
 #include "young_private.h"
 
+#include <math.h>
 #include <stdio.h>
 #include <string.h>
 
@@ -359,4 +360,34 @@ void idsi_partition_from_beads(uint64_t beads, ids_partition *partition)
         partition->degree += top - below;
         beads &= ~(UINT64_C(1) << top);
     }
+}
+
+/* ---- sizes --------------------------------------------------------------------------- */
+
+/* Not lgamma(), which writes a variable of the whole process. */
+double idsi_factorial_bits(uint32_t n)
+{
+    double bits = 0;
+
+    for (uint32_t i = 2; i <= n; i++) {
+        bits += log2(i);
+    }
+    return bits;
+}
+
+double idsi_partition_group_bits(const ids_partition *partition)
+{
+    double bits = 0;
+    ids_partition conjugate = *partition;
+
+    if (ids_partition_conjugate(partition, &conjugate) != IDS_OK) {
+        return INFINITY;
+    }
+    for (uint32_t i = 0; i < partition->length; i++) {
+        bits += idsi_factorial_bits(partition->part[i]);
+    }
+    for (uint32_t i = 0; i < conjugate.length; i++) {
+        bits += idsi_factorial_bits(conjugate.part[i]);
+    }
+    return bits + 1e-6;
 }

@@ -51,6 +51,11 @@ void idsi_partition_write(const ids_partition *partition, char text[IDSI_PARTITI
 uint64_t idsi_partition_beads(const ids_partition *partition, uint32_t count);
 void idsi_partition_from_beads(uint64_t beads, ids_partition *partition);
 
+/* log2 of n!. */
+double idsi_factorial_bits(uint32_t n);
+/* log2 of the orders of the row and the column group of a partition, together. */
+double idsi_partition_group_bits(const ids_partition *partition);
+
 /* ---- characters (character.c) ------------------------------------------------------------- */
 
 /*

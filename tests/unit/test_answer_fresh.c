@@ -244,6 +244,8 @@ START_TEST(test_misuse)
     TEST_STATUS(ctx, ids_fresh_create(ctx, model, 2, 17, NULL, &fresh), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_fresh_create(ctx, NULL, 2, 3, NULL, &fresh), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_fresh_create(ctx, model, 2, 3, &options, &fresh), IDS_ERR_ARG);
+    options = (ids_fresh_options){.struct_size = sizeof options, .primes = 1001};
+    TEST_STATUS(ctx, ids_fresh_create(ctx, model, 2, 3, &options, &fresh), IDS_ERR_ARG);
     TEST_OK(ctx, ids_fresh_create(ctx, model, 2, 3, NULL, &fresh));
     /* Associativity: by partition 3, 2+1 twice, 1+1+1. */
     ck_assert_uint_eq(ids_fresh_identity_count(fresh), 3);

@@ -215,16 +215,38 @@ done:
     return st;
 }
 
+/* The least bits of a total, when not all are proved. */
+static uint32_t least_bits(const ids_fresh *fresh, bool *proved)
+{
+    uint32_t least = UINT32_MAX;
+
+    for (size_t i = 0; i < ids_fresh_count(fresh); i++) {
+        ids_fresh_row row = {0};
+        if (ids_fresh_row_get(fresh, i, &row) == IDS_OK && row.total &&
+            row.certainty == IDS_CERTAINTY_MODULAR && row.bits < least) {
+            least = row.bits;
+        }
+    }
+    *proved = least == UINT32_MAX;
+    return least;
+}
+
 static ids_status write_verdict(session *s, const ids_fresh *fresh)
 {
     ids_status st = IDS_OK;
     bool any = false;
+    bool proved = true;
 
     for (uint32_t d = s->set->first_degree; d <= s->set->last_degree; d++) {
         TRY(write_degree(s, fresh, d, &any));
     }
     if (!any && ids_fresh_count(fresh) > 0) {
-        TRY(output_printf(&s->out, "\nNothing new holds in %s.\n", s->set->model));
+        const uint32_t bits = least_bits(fresh, &proved);
+        TRY(output_printf(&s->out, "\nNothing new holds in %s", s->set->model));
+        TRY(proved ? output_printf(&s->out, ".\n")
+                   : output_printf(&s->out, " (%swrong with probability at most 2^-%u).\n",
+                                   s->set->first_degree < s->set->last_degree ? "each degree " : "",
+                                   (unsigned)bits));
     }
 done:
     return st;
