@@ -69,8 +69,9 @@ typedef struct ids_rank_row {
  * @param presentation  borrowed.
  * @param from, to      1 <= from <= to <= IDS_MAX_DEGREE. Lower degrees are computed as needed.
  * @param options       borrowed; NULL for the defaults.
- * @param table         out, owned: ids_rank_table_free(). On IDS_ERR_LIMIT and IDS_ERR_CANCELLED
- *                      it holds the degrees that were finished (maybe none) and must be freed too.
+ * @param table         out, owned: ids_rank_table_free(). On IDS_ERR_LIMIT, IDS_ERR_UNABLE and
+ *                      IDS_ERR_CANCELLED it holds the degrees that were finished (maybe none) and
+ *                      must be freed too.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a `field` that is no
  *                            prime below 2^30, or together with `exact` or `primes` > 1
@@ -78,7 +79,8 @@ typedef struct ids_rank_row {
  *         IDS_ERR_LIMIT      byte budget, 64 bits of monomials, 32 bits of columns; the message
  *                            says how many monomials and columns a degree has, what they need and
  *                            what the budget is
- *         IDS_ERR_UNABLE     `exact`: the coefficients do not fit the proof
+ *         IDS_ERR_UNABLE     `exact`: the coefficients of a degree do not fit the proof, or five
+ *                            primes in a row are exceptional
  *         IDS_ERR_CANCELLED  cancelled
  * Cost: see DEVELOPERS.md, "Monomial engine".
  * Threads: up to the context's number; results do not depend on it. Cancel: polled.

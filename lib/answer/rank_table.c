@@ -85,7 +85,8 @@ typedef struct job {
     size_t tower_count;
     idsi_tower *towers;
     ids_rank_table *table;
-    double share; /* of the estimated cost, at the end of the degree at work */
+    double share;    /* of the estimated cost, at the end of the degree at work */
+    uint32_t starts; /* how often a prime was replaced */
 } job;
 
 static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
@@ -119,6 +120,18 @@ static void make_row(const job *j, uint32_t degree, ids_rank_row *row)
     }
 }
 
+static void draw_towers(job *j)
+{
+    ids_rank_table *table = j->table;
+
+    for (uint32_t k = 0; k < j->tower_count; k++) {
+        table->primes[k] =
+            table->field != 0 ? table->field : idsi_prime_draw(&j->random, table->primes, k);
+        idsi_tower_init(&j->towers[k], j->ctx, j->laws, table->primes[k]);
+        j->towers[k].count_only = j->laws->count == 0;
+    }
+}
+
 static ids_status start_towers(job *j, uint32_t primes)
 {
     ids_status st = IDS_OK;
@@ -126,14 +139,9 @@ static ids_status start_towers(job *j, uint32_t primes)
 
     IDSI_TRY(idsi_alloc_array(j->ctx, primes, sizeof *table->primes, &table->primes));
     IDSI_TRY(idsi_alloc_array(j->ctx, primes, sizeof *j->towers, &j->towers));
-    for (uint32_t k = 0; k < primes; k++) {
-        table->primes[k] =
-            table->field != 0 ? table->field : idsi_prime_draw(&j->random, table->primes, k);
-        idsi_tower_init(&j->towers[k], j->ctx, j->laws, table->primes[k]);
-        j->towers[k].count_only = j->laws->count == 0;
-    }
     table->prime_count = primes;
     j->tower_count = primes;
+    draw_towers(j);
 done:
     return st;
 }
@@ -155,17 +163,43 @@ static void plan_shares(job *j, uint32_t degree)
     j->share = end;
 }
 
+/* The first prime was exceptional: all begins anew, with others. */
+static ids_status start_again(job *j)
+{
+    ids_status st = IDS_OK;
+
+    if (++j->starts == IDSI_PROOF_STARTS) {
+        return idsi_proof_give_up(j->ctx);
+    }
+    for (size_t k = 0; k < j->tower_count; k++) {
+        idsi_tower_clear(&j->towers[k]);
+    }
+    draw_towers(j);
+    idsi_proof_free(j->proof);
+    j->proof = NULL;
+    IDSI_TRY(idsi_proof_create(j->ctx, j->laws, &j->proof));
+    j->table->count = 0;
+done:
+    return st;
+}
+
 static ids_status fill_table(job *j)
 {
     ids_status st = IDS_OK;
 
     for (uint32_t degree = 1; degree <= j->to; degree++) {
+        bool exceptional = false;
         plan_shares(j, degree);
         for (size_t k = 0; k < j->tower_count; k++) {
             IDSI_TRY(idsi_tower_grow(&j->towers[k], degree < j->to || j->proof != NULL));
         }
         if (j->proof != NULL && j->laws->count > 0) {
-            IDSI_TRY(idsi_proof_degree(j->proof, &j->towers[0], &j->random));
+            IDSI_TRY(idsi_proof_degree(j->proof, &j->towers[0], &j->random, &exceptional));
+        }
+        if (exceptional) {
+            IDSI_TRY(start_again(j));
+            degree = 0;
+            continue;
         }
         if (degree >= j->from) {
             make_row(j, degree, &j->table->rows[j->table->count]);
@@ -265,7 +299,7 @@ done:
     idsi_free(ctx, j.towers);
     idsi_proof_free(j.proof);
     idsi_laws_free(j.laws);
-    if (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED) {
+    if (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED || st == IDS_ERR_UNABLE) {
         *table = j.table;
     } else {
         ids_rank_table_free(j.table);

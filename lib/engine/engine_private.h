@@ -160,7 +160,13 @@ void idsi_proof_free(idsi_proof *proof);
  * Proves that the dimension of the tower's top degree is that over Q. To be called for every
  * degree 1, 2, ... in turn, with a tower that has tables in all of them. More primes are drawn
  * from `random` as needed. IDS_ERR_UNABLE when the coefficients of the normal forms do not fit.
+ * *exceptional: the tower's prime is at fault. Nothing is proved; the caller starts again, with
+ * another prime and a new proof, at most IDSI_PROOF_STARTS times in all.
  */
-ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_random *random);
+#define IDSI_PROOF_STARTS 5u
+ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_random *random,
+                             bool *exceptional);
+/* What to say when these are used up. */
+ids_status idsi_proof_give_up(ids_ctx *ctx);
 
 #endif

@@ -22,7 +22,9 @@
  *
  * Lifting is by Chinese remaindering over 1 to 4 primes and rational reconstruction; entries must
  * fit 62 bits above and below. A prime whose elimination combined rows at random does not count,
- * since a row may have been missed there; nor does one whose pivots differ in a lower degree.
+ * since a row may have been missed there; nor does one whose pivots differ in a lower degree. Such
+ * a prime is exceptional, or the caller's is: the one with the larger dimension. A prime that is
+ * exceptional for its caller can only be replaced by him.
  */
 #include <math.h>
 #include <string.h>
@@ -30,12 +32,14 @@
 #include "lift_private.h"
 
 #define MOST_CHECKS 512u
+#define MOST_DROPPED 4u
 
 struct idsi_proof {
     ids_ctx *ctx;
     const idsi_laws *laws;
     uint32_t degree; /* proved so far */
     size_t extra;    /* towers besides the caller's, for lifting */
+    size_t dropped;  /* towers that were no help */
     idsi_tower *towers[IDSI_LIFT_PRIMES - 1];
     idsi_lifted table[IDS_MAX_DEGREE + 1];
     mpz_t below; /* L: common denominator of the proved degrees */
@@ -277,56 +281,91 @@ done:
     return st;
 }
 
-/* In all degrees: then both towers are residues of the same rational one. */
-static bool same_normal_forms(const idsi_tower *a, const idsi_tower *b, uint32_t degree)
+/*
+ * SAME normal forms in all degrees: then the tables of a proved degree have the other tower's tables
+ * as residues. Take a column minus its combination of normal forms over Q, times the common
+ * denominator D: an integral consequence of content 1. Dimensions being equal, its residue is a
+ * consequence mod p. If p divided D it would be one of normal forms alone, but these are
+ * independent; so p does not, and the residue is what the other table says, which is unique.
+ */
+typedef enum likeness { SAME, WORSE, BETTER } likeness;
+
+static likeness compare_towers(const idsi_tower *tower, const idsi_tower *model, uint32_t degree)
 {
     for (uint32_t d = 2; d <= degree; d++) {
-        const idsi_level *x = &a->level[d];
-        const idsi_level *y = &b->level[d];
-        if (x->dimension != y->dimension || x->columns != y->columns ||
+        const idsi_level *x = &tower->level[d];
+        const idsi_level *y = &model->level[d];
+        if (x->dimension < y->dimension) {
+            return BETTER;
+        }
+        if (x->dimension > y->dimension || x->columns != y->columns ||
             (x->dimension > 0 &&
              memcmp(x->normal, y->normal, x->dimension * sizeof *x->normal) != 0)) {
-            return false;
+            return WORSE;
         }
     }
-    return true;
+    return SAME;
+}
+
+static void drop_tower(idsi_proof *proof, size_t k)
+{
+    idsi_tower_clear(proof->towers[k]);
+    idsi_free(proof->ctx, proof->towers[k]);
+    proof->extra--;
+    proof->towers[k] = proof->towers[proof->extra];
+    proof->towers[proof->extra] = NULL;
+    proof->dropped++;
 }
 
 static ids_status unable(const idsi_proof *proof, uint32_t degree)
 {
     return idsi_fail(proof->ctx, IDS_ERR_UNABLE,
                      "degree %u: the normal forms have coefficients too large for the proof over "
-                     "the rational numbers; the ranks mod primes stand",
+                     "the rational numbers; without a proof there are ranks mod primes",
                      degree);
 }
 
-/* Levels of all towers; grows those that lag behind. *same is false when a prime is exceptional. */
+/* Levels of all towers; grows those that lag behind, and drops those that differ. */
 static ids_status gather_sources(idsi_proof *proof, const idsi_tower *model, idsi_lift_sources *src,
-                                 bool *same)
+                                 bool *exceptional)
 {
     ids_status st = IDS_OK;
     uint32_t degree = model->height;
 
     *src =
         (idsi_lift_sources){.count = 1, .level = {&model->level[degree]}, .prime = {model->prime}};
-    *same = true;
-    for (size_t k = 0; k < proof->extra; k++) {
+    for (size_t k = 0; !*exceptional && k < proof->extra;) {
         idsi_tower *tower = proof->towers[k];
         tower->share_begin = model->share_end;
         tower->share_end = model->share_end;
         while (tower->height < degree) {
             IDSI_TRY(idsi_tower_grow(tower, true));
         }
-        *same = *same && same_normal_forms(tower, model, degree);
+        likeness like = compare_towers(tower, model, degree);
+        if (like != SAME) {
+            drop_tower(proof, k);
+            *exceptional = like == BETTER || proof->dropped > MOST_DROPPED;
+            continue;
+        }
         src->level[src->count] = &tower->level[degree];
         src->prime[src->count] = tower->prime;
         src->count++;
+        k++;
     }
 done:
     return st;
 }
 
-ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_random *random)
+ids_status idsi_proof_give_up(ids_ctx *ctx)
+{
+    return idsi_fail(ctx, IDS_ERR_UNABLE,
+                     "all of %u primes are exceptional for these identities; another seed gives "
+                     "others",
+                     IDSI_PROOF_STARTS);
+}
+
+ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_random *random,
+                             bool *exceptional)
 {
     ids_status st = IDS_OK;
     uint32_t degree = tower->height;
@@ -334,15 +373,17 @@ ids_status idsi_proof_degree(idsi_proof *proof, const idsi_tower *tower, idsi_ra
     mpz_t denominator;
     bool proved = level->dimension == 0 || level->columns == 0;
 
+    *exceptional = false;
     mpz_init(denominator);
     IDSI_ASSERT(degree == proof->degree + 1);
     while (!proved) {
         idsi_lift_sources src;
         bool good = true;
-        IDSI_TRY(gather_sources(proof, tower, &src, &good));
-        if (good) {
-            IDSI_TRY(idsi_lift_table(proof->ctx, &src, &proof->table[degree], denominator, &good));
+        IDSI_TRY(gather_sources(proof, tower, &src, exceptional));
+        if (*exceptional) {
+            goto done;
         }
+        IDSI_TRY(idsi_lift_table(proof->ctx, &src, &proof->table[degree], denominator, &good));
         if (good) {
             IDSI_TRY(check_table(proof, tower, &src, random, &proved));
         }

@@ -45,6 +45,36 @@ done:
     return st;
 }
 
+/* All degrees; with a proof, the prime is replaced when it is exceptional. */
+static ids_status grow(ids_normal_forms *forms, uint32_t max_degree, idsi_random *random)
+{
+    ids_status st = IDS_OK;
+    uint32_t starts = 0;
+
+    for (uint32_t degree = 1; degree <= max_degree; degree++) {
+        bool exceptional = false;
+        IDSI_TRY(idsi_tower_grow(&forms->tower, true));
+        if (forms->proof != NULL) {
+            IDSI_TRY(idsi_proof_degree(forms->proof, &forms->tower, random, &exceptional));
+        }
+        if (!exceptional) {
+            continue;
+        }
+        if (++starts == IDSI_PROOF_STARTS) {
+            return idsi_proof_give_up(forms->ctx);
+        }
+        const uint32_t prime = idsi_prime_draw(random, &forms->tower.prime, 1);
+        idsi_tower_clear(&forms->tower);
+        idsi_tower_init(&forms->tower, forms->ctx, forms->laws, prime);
+        idsi_proof_free(forms->proof);
+        forms->proof = NULL;
+        IDSI_TRY(idsi_proof_create(forms->ctx, forms->laws, &forms->proof));
+        degree = 0;
+    }
+done:
+    return st;
+}
+
 ids_status ids_normal_forms_create(ids_ctx *ctx, const ids_presentation *presentation,
                                    uint32_t max_degree, const ids_normal_options *options,
                                    ids_normal_forms **forms)
@@ -73,12 +103,7 @@ ids_status ids_normal_forms_create(ids_ctx *ctx, const ids_presentation *present
     if (chosen.exact) {
         IDSI_TRY(idsi_proof_create(ctx, made->laws, &made->proof));
     }
-    for (uint32_t degree = 1; degree <= max_degree; degree++) {
-        IDSI_TRY(idsi_tower_grow(&made->tower, true));
-        if (chosen.exact) {
-            IDSI_TRY(idsi_proof_degree(made->proof, &made->tower, &random));
-        }
-    }
+    IDSI_TRY(grow(made, max_degree, &random));
     *forms = made;
     made = NULL;
 done:
@@ -126,8 +151,7 @@ ids_status ids_normal_forms_mono(ids_ctx *ctx, const ids_normal_forms *forms, ui
         return idsi_fail_arg(ctx, "context, normal forms or result");
     }
     IDSI_TRY(check_index(ctx, forms, degree, index));
-    size_t length =
-        idsi_normal_tree(&forms->tower, degree, index, idsi_labels_all(degree), tree);
+    size_t length = idsi_normal_tree(&forms->tower, degree, index, idsi_labels_all(degree), tree);
     IDSI_TRY(idsi_mono_from_tokens(ctx, forms->pres->sig, tree, length, mono));
 done:
     return st;

@@ -108,8 +108,8 @@ static ids_status add_block(void *user, const uint8_t *degree)
     if (columns == 0) {
         return IDS_OK;
     }
-    IDSI_TRY(idsi_grow(ctx, level->block_count, &plan->capacity, sizeof *level->blocks,
-                       &level->blocks));
+    IDSI_TRY(
+        idsi_grow(ctx, level->block_count, &plan->capacity, sizeof *level->blocks, &level->blocks));
     level->blocks[level->block_count] = block;
     level->block_count++;
 done:
@@ -237,7 +237,7 @@ static ids_status solve_level(idsi_tower *tower, idsi_level *level, bool tables)
     st = idsi_eliminate(&matrix, &tower->random, &result);
     if (st == IDS_OK) {
         level->dimension = level->columns - result.rank;
-        level->error = tower->level[level->degree - 1].error + result.error;
+        level->error += result.error;
         st = tables ? make_tables(tower->ctx, result.echelon, level) : IDS_OK;
     }
     if (st == IDS_ERR_LIMIT) {
@@ -255,6 +255,8 @@ ids_status idsi_tower_grow(idsi_tower *tower, bool tables)
     idsi_level *level = &tower->level[tower->height + 1];
 
     IDSI_TRY(idsi_level_plan(tower, level));
+    /* What was missed in a lower degree can be missing in all above, those without columns too. */
+    level->error = tower->height > 0 ? tower->level[tower->height].error : 0;
     if (tower->count_only) {
         level->dimension = level->degree > 1 ? level->columns : level->dimension;
     } else if (level->degree > 1 && level->columns > 0) {

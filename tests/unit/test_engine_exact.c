@@ -4,6 +4,7 @@
  * with the ranks mod p, and are not fooled by a table that is wrong in one entry. That the proved
  * numbers are right is shown by test_engine_matrix.c, against FLINT's rank over the integers.
  */
+#include <stdio.h>
 #include <string.h>
 
 #include <idspan/answer.h>
@@ -68,7 +69,9 @@ START_TEST(test_wrong_table)
                 }
             }
         }
-        st = idsi_proof_degree(proof, &tower, &random);
+        bool exceptional = false;
+        st = idsi_proof_degree(proof, &tower, &random, &exceptional);
+        ck_assert(!exceptional);
         ck_assert_int_eq(st, degree == 5 && _i == 1 ? IDS_ERR_UNABLE : IDS_OK);
     }
     idsi_tower_clear(&tower);
@@ -98,6 +101,46 @@ START_TEST(test_large_fractions)
     ck_assert_int_eq(ids_rank_table_row(table, 1, &row), IDS_OK);
     ck_assert_uint_eq(row.quotient, 0);
     ids_rank_table_free(table);
+    ids_presentation_free(pres);
+    test_ctx_free(ctx);
+}
+END_TEST
+
+/*
+ * p (xy)z + (p+1) x(yz), p being the prime that is drawn first: modulo p it is nilpotency, with
+ * 4! products of degree 4 left; over Q nothing is, by the pentagon again. The proof takes other
+ * primes and starts again.
+ */
+START_TEST(test_exceptional_prime)
+{
+    static const uint64_t quotient[] = {1, 2, 6, 0, 0};
+    ids_ctx *ctx = test_ctx();
+    idsi_random random;
+    char text[200];
+    ids_rank_options options = {.struct_size = sizeof options, .exact = true};
+    ids_normal_options exact = {.struct_size = sizeof exact, .exact = true};
+    ids_rank_table *table = NULL;
+    ids_normal_forms *forms = NULL;
+
+    idsi_random_seed(&random, 0);
+    const uint32_t prime = idsi_prime_draw(&random, NULL, 0);
+    (void)snprintf(text, sizeof text, "operation a*b\nidentity %u (x*y)*z + %u x*(y*z)\n",
+                   (unsigned)prime, (unsigned)prime + 1);
+    ids_presentation *pres = engine_presentation(ctx, text);
+    for (options.primes = 1; options.primes <= 3; options.primes++) {
+        TEST_OK(ctx, ids_rank_table_create(ctx, pres, 1, 5, &options, &table));
+        for (size_t i = 0; i < 5; i++) {
+            ids_rank_row row = {0};
+            ck_assert_int_eq(ids_rank_table_row(table, i, &row), IDS_OK);
+            ck_assert_uint_eq(row.quotient, quotient[i]);
+            ck_assert_int_eq(row.certainty, IDS_CERTAINTY_EXACT);
+        }
+        ids_rank_table_free(table);
+    }
+    TEST_OK(ctx, ids_normal_forms_create(ctx, pres, 5, &exact, &forms));
+    ck_assert_uint_eq(ids_normal_forms_count(forms, 3), 6);
+    ck_assert_uint_eq(ids_normal_forms_count(forms, 4), 0);
+    ids_normal_forms_free(forms);
     ids_presentation_free(pres);
     test_ctx_free(ctx);
 }
@@ -150,6 +193,7 @@ int main(void)
     tcase_add_loop_test(tcase, test_varieties, 0, (int)engine_variety_count);
     tcase_add_loop_test(tcase, test_wrong_table, 0, 2);
     tcase_add_test(tcase, test_large_fractions);
+    tcase_add_test(tcase, test_exceptional_prime);
     tcase_add_test(tcase, test_empty_degree);
     suite_add_tcase(suite, tcase);
     return test_run(suite);

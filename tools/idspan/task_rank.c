@@ -55,7 +55,7 @@ static void keep_reason(session *s, const ids_rank_table *table, ids_status st)
 
     if (st == IDS_ERR_CANCELLED) {
         session_fail(s, st, "interrupted before degree %zu was finished", next);
-    } else if (st == IDS_ERR_LIMIT || st == IDS_ERR_NOMEM) {
+    } else if (st == IDS_ERR_LIMIT || st == IDS_ERR_NOMEM || st == IDS_ERR_UNABLE) {
         const char *reason = ids_ctx_message(s->ctx);
 
         /* Mostly the library names the degree, which can be a lower one. */
