@@ -210,8 +210,9 @@ ids_status idsi_poll(ids_ctx *ctx, const ids_progress *progress)
     if (ctx == NULL) {
         return IDS_OK;
     }
-    if (atomic_load_explicit(&ctx->cancel, memory_order_relaxed) != 0) {
-        atomic_store(&ctx->cancel, 0);
+    /* The load is for speed; who takes the flag away, in one step, is the one to answer it. */
+    if (atomic_load_explicit(&ctx->cancel, memory_order_relaxed) != 0 &&
+        atomic_exchange(&ctx->cancel, 0) != 0) {
         return idsi_fail(ctx, IDS_ERR_CANCELLED, "cancelled by the caller");
     }
     if (progress != NULL && ctx->progress != NULL && hook_cancels(ctx, progress)) {

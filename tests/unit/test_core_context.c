@@ -3,10 +3,21 @@
 #include "support.h"
 
 #include <inttypes.h>
+#include <pthread.h>
+#include <sched.h>
 #include <signal.h>
+#include <stdatomic.h>
 #include <stdio.h>
 #include <string.h>
 #include <time.h>
+
+static uint64_t milliseconds(void)
+{
+    struct timespec now = {0};
+
+    clock_gettime(CLOCK_MONOTONIC, &now);
+    return (uint64_t)now.tv_sec * 1000 + (uint64_t)now.tv_nsec / 1000000;
+}
 
 START_TEST(test_create_arguments)
 {
@@ -127,6 +138,60 @@ START_TEST(test_cancel)
 }
 END_TEST
 
+/* ---- several threads, one cancel ------------------------------------------------------------- */
+
+typedef struct poll_race {
+    ids_ctx *ctx;
+    atomic_bool over;
+    atomic_uint told; /* how often a poll said that it is cancelled */
+} poll_race;
+
+static void poll_race_once(poll_race *race)
+{
+    if (idsi_poll(race->ctx, NULL) == IDS_ERR_CANCELLED) {
+        atomic_fetch_add(&race->told, 1);
+    }
+}
+
+static void *poll_on(void *data)
+{
+    poll_race *race = data;
+
+    while (!atomic_load(&race->over)) {
+        poll_race_once(race);
+    }
+    return NULL;
+}
+
+/* Of two threads that poll at the same time exactly one answers a cancel. */
+START_TEST(test_cancel_is_told_once)
+{
+    poll_race race = {.ctx = test_ctx()};
+    pthread_t other;
+    uint64_t end = milliseconds() + 500;
+    unsigned cancels = 0;
+
+    ck_assert_int_eq(pthread_create(&other, NULL, poll_on, &race), 0);
+    while (atomic_load(&race.told) == cancels && milliseconds() < end) {
+        cancels++;
+        ids_ctx_cancel(race.ctx);
+        poll_race_once(&race);
+        while (atomic_load(&race.told) < cancels) {
+            sched_yield();
+        }
+        for (int i = 0; i < 100; i++) {
+            poll_race_once(&race); /* time for a second answer to arrive */
+        }
+    }
+    atomic_store(&race.over, true);
+    ck_assert_int_eq(pthread_join(other, NULL), 0);
+    ck_assert_uint_eq(atomic_load(&race.told), cancels);
+    test_ctx_free(race.ctx);
+}
+END_TEST
+
+/* ---- the hook -------------------------------------------------------------------------------- */
+
 typedef struct hook_log {
     unsigned calls;
     int answer;
@@ -152,14 +217,6 @@ static ids_ctx *ctx_with_hook(hook_log *log)
     options.progress_user = log;
     ck_assert_int_eq(ids_ctx_create(&options, &ctx), IDS_OK);
     return ctx;
-}
-
-static uint64_t milliseconds(void)
-{
-    struct timespec now = {0};
-
-    clock_gettime(CLOCK_MONOTONIC, &now);
-    return (uint64_t)now.tv_sec * 1000 + (uint64_t)now.tv_nsec / 1000000;
 }
 
 START_TEST(test_hook_is_told)
@@ -244,6 +301,7 @@ int main(void)
     tcase_add_loop_test(tcase, test_long_message, 0, 2);
     tcase_add_test(tcase, test_threads_option);
     tcase_add_test(tcase, test_cancel);
+    tcase_add_test(tcase, test_cancel_is_told_once);
     tcase_add_test(tcase, test_hook_is_told);
     tcase_add_test(tcase, test_hook_rate);
     tcase_add_test(tcase, test_hook_cancels);
