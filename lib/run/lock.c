@@ -80,14 +80,17 @@ static void sign(int file)
 static bool take_lock(int file, int how)
 {
     const struct timespec pause = {0, 50000000};
+    int tries = 0;
 
-    for (int i = 0; flock(file, how) != 0; i++) {
-        if (errno != EWOULDBLOCK || i == 20) {
+    while (flock(file, how) != 0) {
+        if (errno == EINTR) {
+            continue; /* a signal came while the system asked a file server */
+        }
+        if (errno != EWOULDBLOCK || tries == 20) {
             return false;
         }
-        int error = errno;
+        tries++;
         nanosleep(&pause, NULL);
-        errno = error;
     }
     return true;
 }
