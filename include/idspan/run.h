@@ -404,10 +404,11 @@ IDS_API void ids_run_work_free(ids_run_work *work);
  * @param result  borrowed; host and time are filled in anew.
  * @return IDS_OK
  *         IDS_ERR_ARG    NULL, index out of range, a run that is open for reading
- *         IDS_ERR_IO     the message says why
+ *         IDS_ERR_IO     the message says why; if the folder could not be synced, the cell is there
+ *                        and DONE, but may not survive a crash
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
- * Cost: two files are written and synced. Threads: one a run. Since: 0.1
+ * Cost: a file is written, and it and the folder are synced. Threads: one a run. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_run_store(ids_run *run, size_t cell,
                                               const ids_cell_result *result);

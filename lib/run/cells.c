@@ -168,6 +168,7 @@ ids_status ids_run_store(ids_run *run, size_t cell, const ids_cell_result *resul
     snprintf(name, sizeof name, "failed-%s.txt", made.id);
     idsi_folder_remove(&run->folder, name);
     run->cells[cell] = made;
+    IDSI_TRY(idsi_folder_sync(run->ctx, &run->folder));
 done:
     idsi_text_clear(&text);
     return st;
@@ -191,6 +192,7 @@ ids_status ids_run_store_failure(ids_run *run, size_t cell, const char *reason)
     snprintf(name, sizeof name, "failed-%s.txt", made.id);
     IDSI_TRY(idsi_folder_write(run->ctx, &run->folder, name, text.data, text.length));
     run->cells[cell] = made;
+    IDSI_TRY(idsi_folder_sync(run->ctx, &run->folder));
 done:
     idsi_text_clear(&text);
     return st;

@@ -2,10 +2,10 @@
 /*
  * Files in a run folder.
  *
- * A file is written under a temporary name that no other process uses, synced, renamed to its own
- * name, and the folder is synced: after that it survives a crash of the system, and before it the
- * old file is there, if there was one. Temporary files of processes that died are swept away by
- * whoever has the folder alone.
+ * A file is written under a temporary name that no other process uses, synced, and renamed to its
+ * own name: until then the old file is there, if there was one. After the folder is synced too, it
+ * survives a crash of the system. Temporary files of processes that died are swept away by whoever
+ * has the folder alone.
  */
 #include <dirent.h>
 #include <errno.h>
@@ -31,8 +31,37 @@ static ids_status fail_io(ids_ctx *ctx, const char *verb, const char *folder, co
                      name != NULL ? "/" : "", name != NULL ? name : "", reason);
 }
 
+/* What cannot be synced at all, as folders in some file systems, is as safe as it can be. */
+static bool sync_all(int fd)
+{
+    int failed = 0;
+
+    do {
+        failed = fsync(fd);
+    } while (failed != 0 && errno == EINTR);
+    return failed == 0 || errno == EINVAL;
+}
+
+/* Syncs the entry of an open folder in the folder above, unless that is closed to us. */
+static bool sync_entry(int folder)
+{
+    int above = openat(folder, "..", O_RDONLY | O_DIRECTORY | O_CLOEXEC);
+    bool synced = false;
+    int error = 0;
+
+    if (above < 0) {
+        return errno == EACCES;
+    }
+    synced = sync_all(above);
+    error = errno;
+    close(above);
+    errno = error;
+    return synced;
+}
+
 ids_status idsi_folder_open(ids_ctx *ctx, const char *folder, bool make, int *fd)
 {
+    ids_status st = IDS_OK;
     int opened = -1;
 
     if (make && mkdir(folder, 0777) != 0 && errno != EEXIST) {
@@ -41,6 +70,11 @@ ids_status idsi_folder_open(ids_ctx *ctx, const char *folder, bool make, int *fd
     opened = open(folder, O_RDONLY | O_DIRECTORY | O_CLOEXEC);
     if (opened < 0) {
         return fail_io(ctx, "open the folder", folder, NULL);
+    }
+    if (make && !sync_entry(opened)) {
+        st = fail_io(ctx, "make the folder", folder, NULL);
+        close(opened);
+        return st;
     }
     *fd = opened;
     return IDS_OK;
@@ -116,13 +150,12 @@ static bool write_all(int file, const char *bytes, size_t length)
             length -= (size_t)put;
         }
     }
-    return fsync(file) == 0;
+    return sync_all(file);
 }
 
 ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char *name,
                              const char *bytes, size_t length)
 {
-    ids_status st = IDS_OK;
     char temporary[2 * IDS_RUN_NAME + 32] = "";
     char host[IDS_RUN_NAME] = "";
     int file = -1;
@@ -148,10 +181,12 @@ ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char
         errno = error;
         return fail_io(ctx, "write", folder->path, name);
     }
-    if (fsync(folder->fd) != 0 && errno != EINVAL) {
-        st = fail_io(ctx, "write", folder->path, name);
-    }
-    return st;
+    return IDS_OK;
+}
+
+ids_status idsi_folder_sync(ids_ctx *ctx, const idsi_folder *folder)
+{
+    return sync_all(folder->fd) ? IDS_OK : fail_io(ctx, "sync the folder", folder->path, NULL);
 }
 
 void idsi_folder_remove(const idsi_folder *folder, const char *name)

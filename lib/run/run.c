@@ -280,8 +280,10 @@ static ids_status write_question(const ids_run *run)
     idsi_text_init(&text, run->ctx);
     IDSI_TRY(idsi_folder_write(run->ctx, &run->folder, IDSI_PRESENTATION_FILE, run->text,
                                run->length));
+    IDSI_TRY(idsi_folder_sync(run->ctx, &run->folder));
     IDSI_TRY(idsi_run_write(run, &text));
     IDSI_TRY(idsi_folder_write(run->ctx, &run->folder, IDSI_RUN_FILE, text.data, text.length));
+    IDSI_TRY(idsi_folder_sync(run->ctx, &run->folder));
 done:
     idsi_text_clear(&text);
     return st;

@@ -52,7 +52,7 @@ typedef struct idsi_folder {
     int lock;         /* -1: none */
 } idsi_folder;
 
-/* Opens a folder, after making it if that is wanted and it is not there. */
+/* Opens a folder; with `make` it is made if it is not there, and is sure to stay. */
 ids_status idsi_folder_open(ids_ctx *ctx, const char *folder, bool make, int *fd);
 /* IDS_ERR_UNABLE when somebody else holds it, with the explanation. */
 ids_status idsi_folder_lock(ids_ctx *ctx, idsi_folder *folder, bool alone);
@@ -60,9 +60,10 @@ void idsi_folder_close(idsi_folder *folder);
 /* *bytes is NULL when there is no such file; else owned, with a NUL after it. */
 ids_status idsi_folder_read(ids_ctx *ctx, const idsi_folder *folder, const char *name,
                             char **bytes, size_t *length);
-/* The file is as it was, or complete and on disk. */
+/* The file is as it was, or, on IDS_OK, the new one; which after idsi_folder_sync() is sure to stay. */
 ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char *name,
                              const char *bytes, size_t length);
+ids_status idsi_folder_sync(ids_ctx *ctx, const idsi_folder *folder);
 void idsi_folder_remove(const idsi_folder *folder, const char *name);
 /* Takes away what processes that died were writing. */
 void idsi_folder_sweep(const idsi_folder *folder);
