@@ -2,10 +2,11 @@
 /*
  * Files in a run folder.
  *
- * A file is written under a temporary name that no other process uses, synced, and renamed to its
- * own name: until then the old file is there, if there was one. After the folder is synced too, it
- * survives a crash of the system. Temporary files of processes that died are swept away by whoever
- * has the folder alone.
+ * A file is written under a temporary name, synced, and renamed to its own name: until then the old
+ * file is there, if there was one. After the folder is synced too, it survives a crash of the system.
+ * A temporary file belongs to whoever made it, which the system decides (O_EXCL): threads have one
+ * process number, and so may processes in two containers. Those of processes that died are swept
+ * away by whoever has the folder alone.
  */
 #include <dirent.h>
 #include <errno.h>
@@ -18,6 +19,7 @@
 #include "run_private.h"
 
 #define TEMPORARY "tmp-"
+#define TEMPORARY_NAME (sizeof TEMPORARY + IDS_RUN_NAME + 32)
 
 static ids_status fail_io(ids_ctx *ctx, const char *verb, const char *folder, const char *name)
 {
@@ -153,16 +155,26 @@ static bool write_all(int file, const char *bytes, size_t length)
     return sync_all(file);
 }
 
-ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char *name,
-                             const char *bytes, size_t length)
+/* A new file that is nobody else's; its name is for people who find it. */
+static int open_temporary(const idsi_folder *folder, char name[TEMPORARY_NAME])
 {
-    char temporary[2 * IDS_RUN_NAME + 32] = "";
     char host[IDS_RUN_NAME] = "";
     int file = -1;
 
     idsi_host(host);
-    snprintf(temporary, sizeof temporary, TEMPORARY "%s-%d", host, (int)getpid());
-    file = openat(folder->fd, temporary, O_WRONLY | O_CREAT | O_TRUNC | O_CLOEXEC, 0666);
+    for (unsigned k = 0; file < 0 && (k == 0 || errno == EEXIST); k++) {
+        snprintf(name, TEMPORARY_NAME, TEMPORARY "%s-%d-%u", host, (int)getpid(), k);
+        file = openat(folder->fd, name, O_WRONLY | O_CREAT | O_EXCL | O_CLOEXEC, 0666);
+    }
+    return file;
+}
+
+ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char *name,
+                             const char *bytes, size_t length)
+{
+    char temporary[TEMPORARY_NAME] = "";
+    int file = open_temporary(folder, temporary);
+
     if (file < 0) {
         return fail_io(ctx, "write", folder->path, name);
     }

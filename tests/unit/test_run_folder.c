@@ -1,9 +1,11 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * lib/run/folder.c and lock.c: what they do when the system interrupts them or cannot sync. fsync() and flock() are this file's own; a sync that is to work
- * is left to fdatasync().
+ * lib/run/folder.c and lock.c: what they do when the system interrupts them, cannot sync, or when
+ * others write at the same time. fsync() and flock() are this file's own; a sync that is to work
+ * is left to fdatasync(), or left out.
  */
 #include <errno.h>
+#include <pthread.h>
 #include <stdatomic.h>
 #include <stdio.h>
 #include <stdlib.h>
@@ -24,6 +26,7 @@ static struct {
     int lock_calls;      /* so far */
     atomic_int syncs;    /* so far */
     bool no_folder_sync; /* folders cannot be synced: the disk is broken */
+    bool no_sync;        /* nothing is really synced */
     ino_t watched;       /* a folder */
     int watched_syncs;   /* how often it was synced, in one thread */
 } fake;
@@ -46,7 +49,7 @@ int fsync(int fd)
             fake.watched_syncs++;
         }
     }
-    return fdatasync(fd);
+    return fake.no_sync ? 0 : fdatasync(fd);
 }
 
 int flock(int fd, int how)
@@ -166,6 +169,83 @@ START_TEST(test_folder_cannot_sync)
 }
 END_TEST
 
+/* ---- others who write ------------------------------------------------------------------------ */
+
+/* A temporary file that is there belongs to somebody else, who has our name and number. */
+START_TEST(test_foreign_temporary)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_run *run = NULL;
+    char host[IDS_RUN_NAME];
+    char names[2][IDS_RUN_NAME + 128];
+    struct stat about;
+
+    make_place();
+    TEST_OK(ctx, start(ctx, IDS_RUN_SHARED, &run));
+    idsi_host(host);
+    snprintf(names[0], sizeof names[0], "%s/tmp-%s-%d", folder, host, (int)getpid());
+    snprintf(names[1], sizeof names[1], "%s/tmp-%s-%d-0", folder, host, (int)getpid());
+    for (size_t i = 0; i < 2; i++) {
+        FILE *file = fopen(names[i], "w");
+        ck_assert_ptr_nonnull(file);
+        ck_assert_int_gt(fputs("half of a cell", file), 0);
+        ck_assert_int_eq(fclose(file), 0);
+    }
+    TEST_OK(ctx, ids_run_store(run, 0, &result));
+    for (size_t i = 0; i < 2; i++) {
+        ck_assert_int_eq(stat(names[i], &about), 0);
+        ck_assert_int_eq(about.st_size, (off_t)strlen("half of a cell"));
+    }
+    TEST_OK(ctx, ids_run_refresh(run));
+    check_state(run, 0, IDS_CELL_DONE);
+    ids_run_free(run);
+    remove_place();
+    test_ctx_free(ctx);
+}
+END_TEST
+
+static void *store_often(void *data)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_run *run = NULL;
+    int *stored = data;
+
+    if (ids_run_open(ctx, folder, IDS_RUN_SHARED, &run) == IDS_OK) {
+        for (int k = 0; k < 300; k++) {
+            *stored += ids_run_store(run, 0, &result) == IDS_OK;
+        }
+        ids_run_free(run);
+    }
+    test_ctx_free(ctx);
+    return NULL;
+}
+
+START_TEST(test_threads_store)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_run *run = NULL;
+    pthread_t threads[2];
+    int stored[2] = {0};
+
+    make_place();
+    TEST_OK(ctx, start(ctx, IDS_RUN_ALONE, &run));
+    fake.no_sync = true;
+    for (size_t i = 0; i < 2; i++) {
+        ck_assert_int_eq(pthread_create(&threads[i], NULL, store_often, &stored[i]), 0);
+    }
+    for (size_t i = 0; i < 2; i++) {
+        ck_assert_int_eq(pthread_join(threads[i], NULL), 0);
+    }
+    ck_assert_int_eq(stored[0], 300);
+    ck_assert_int_eq(stored[1], 300);
+    TEST_OK(ctx, ids_run_refresh(run));
+    check_state(run, 0, IDS_CELL_DONE);
+    ids_run_free(run);
+    remove_place();
+    test_ctx_free(ctx);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("run: folder");
@@ -174,6 +254,8 @@ int main(void)
     tcase_add_test(tcase, test_interrupted);
     tcase_add_test(tcase, test_new_folder);
     tcase_add_test(tcase, test_folder_cannot_sync);
+    tcase_add_test(tcase, test_foreign_temporary);
+    tcase_add_test(tcase, test_threads_store);
     suite_add_tcase(suite, tcase);
     return test_run(suite);
 }
