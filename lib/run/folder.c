@@ -3,10 +3,10 @@
  * Files in a run folder.
  *
  * A file is written under a temporary name, synced, and renamed to its own name: until then the old
- * file is there, if there was one. After the folder is synced too, it survives a crash of the system.
- * A temporary file belongs to whoever made it, which the system decides (O_EXCL): threads have one
- * process number, and so may processes in two containers. Those of processes that died are swept
- * away by whoever has the folder alone.
+ * file is there, if there was one. After the folder is synced too, it survives a crash of the
+ * system. A temporary file belongs to whoever made it, which the system decides (O_EXCL): threads
+ * have one process number, and so may processes in two containers. Those of processes that died are
+ * swept away by whoever has the folder alone.
  */
 #include <dirent.h>
 #include <errno.h>

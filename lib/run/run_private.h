@@ -60,7 +60,8 @@ void idsi_folder_close(idsi_folder *folder);
 /* *bytes is NULL when there is no such file; else owned, with a NUL after it. */
 ids_status idsi_folder_read(ids_ctx *ctx, const idsi_folder *folder, const char *name,
                             char **bytes, size_t *length);
-/* The file is as it was, or, on IDS_OK, the new one; which after idsi_folder_sync() is sure to stay. */
+/* The file is as it was or, on IDS_OK, the new one, which is sure to stay once the folder is
+ * synced. */
 ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char *name,
                              const char *bytes, size_t length);
 ids_status idsi_folder_sync(ids_ctx *ctx, const idsi_folder *folder);
@@ -125,6 +126,19 @@ ids_status idsi_cell_read(const ids_run *run, idsi_cell *cell, const char *bytes
 ids_status idsi_failure_write(const ids_run *run, const idsi_cell *cell, idsi_text *text);
 ids_status idsi_failure_read(const ids_run *run, idsi_cell *cell, const char *bytes,
                              size_t length);
+
+/* ---- the question (question.c) ------------------------------------------------------------ */
+
+/* Fills a run that is otherwise empty with what is asked. */
+ids_status idsi_question_ask(ids_run *run, const char *text, size_t length, const char *source,
+                             const ids_run_options *options);
+/* Reads question and presentation from the run's folder; *wrong says why they are of no use. */
+ids_status idsi_question_read(ids_run *run, bool *there, const char **wrong);
+ids_status idsi_question_write(const ids_run *run);
+/* Refuses a run of another version. */
+ids_status idsi_question_version(const ids_run *run);
+/* Refuses unless the run that was found may go on as the one that is asked for. */
+ids_status idsi_question_compare(const ids_run *found, const ids_run *asked);
 
 /* ---- estimates (plan.c) ------------------------------------------------------------------ */
 
