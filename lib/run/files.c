@@ -173,20 +173,18 @@ static ids_status read_strings(ids_run *run, const idsi_record *record, bool *go
     ids_status st = IDS_OK;
     const char *primes = idsi_record_get(record, "primes");
     const char *digest = idsi_record_get(record, "presentation");
-    const char *version = idsi_record_get(record, "version");
     const char *source = idsi_record_get(record, "source");
     const char *libraries = idsi_record_get(record, "libraries");
     const char *created = idsi_record_get(record, "created");
 
     *good = primes != NULL && digest != NULL && strlen(digest) < sizeof run->digest &&
-            version != NULL && source != NULL && libraries != NULL && created != NULL;
+            source != NULL && libraries != NULL && created != NULL;
     if (!*good) {
         return IDS_OK;
     }
     IDSI_TRY(read_primes(run, primes, good));
     snprintf(run->digest, sizeof run->digest, "%s", digest);
     snprintf(run->created, sizeof run->created, "%s", created);
-    IDSI_TRY(idsi_strdup(run->ctx, version, &run->version));
     IDSI_TRY(idsi_strdup(run->ctx, source, &run->source));
     IDSI_TRY(idsi_strdup(run->ctx, libraries, &run->libraries));
 done:
@@ -222,13 +220,18 @@ ids_status idsi_run_read(ids_run *run, const char *bytes, size_t length, const c
 {
     ids_status st = IDS_OK;
     idsi_record record;
+    const char *version = NULL;
     bool good = false;
 
     IDSI_TRY(idsi_record_read(run->ctx, "run", bytes, length, &record, wrong));
     if (*wrong != NULL) {
         goto done;
     }
-    good = read_numbers(run, &record);
+    version = idsi_record_get(&record, "version");
+    if (version != NULL) {
+        IDSI_TRY(idsi_strdup(run->ctx, version, &run->version));
+        good = read_numbers(run, &record);
+    }
     if (good) {
         IDSI_TRY(read_strings(run, &record, &good));
     }

@@ -88,12 +88,40 @@ done:
 
 /* ---- as it stands in a folder ------------------------------------------------------------ */
 
+static ids_status refuse_version(const ids_run *run)
+{
+    if (strcmp(run->version, IDS_VERSION_STRING) == 0) {
+        return IDS_OK;
+    }
+    return idsi_fail(run->ctx, IDS_ERR_ARG,
+                     "the run in \"%s\" is one of idspan %s, this is %s; it can be read, but not "
+                     "gone on with: take another folder",
+                     run->path, run->version, IDS_VERSION_STRING);
+}
+
+static ids_status read_presentation(ids_run *run, const char **wrong)
+{
+    ids_status st = IDS_OK;
+    char digest[IDSI_SHA256_HEX] = "";
+
+    if (run->text == NULL) {
+        *wrong = "its presentation is not there";
+        return IDS_OK;
+    }
+    IDSI_TRY(ids_presentation_read(run->ctx, run->text, run->length, run->source, &run->pres));
+    IDSI_TRY(idsi_run_digest(run->ctx, run->pres, digest));
+    if (strcmp(digest, run->digest) != 0) {
+        *wrong = "the digest does not fit the presentation";
+    }
+done:
+    return st;
+}
+
 ids_status idsi_question_read(ids_run *run, bool *there, const char **wrong)
 {
     ids_status st = IDS_OK;
     char *bytes = NULL;
     size_t length = 0;
-    char digest[IDSI_SHA256_HEX] = "";
 
     *wrong = NULL;
     IDSI_TRY(idsi_folder_read(run->ctx, &run->folder, IDSI_RUN_FILE, &bytes, &length));
@@ -104,16 +132,12 @@ ids_status idsi_question_read(ids_run *run, bool *there, const char **wrong)
     IDSI_TRY(idsi_folder_read(run->ctx, &run->folder, IDSI_PRESENTATION_FILE, &run->text,
                               &run->length));
     IDSI_TRY(idsi_run_read(run, bytes, length, wrong));
-    if (*wrong == NULL && run->text == NULL) {
-        *wrong = "its presentation is not there";
+    /* Before anything is blamed on the files: another version may write them in another way. */
+    if (run->version != NULL && run->access != IDS_RUN_READ) {
+        IDSI_TRY(refuse_version(run));
     }
-    if (*wrong != NULL) {
-        goto done;
-    }
-    IDSI_TRY(ids_presentation_read(run->ctx, run->text, run->length, run->source, &run->pres));
-    IDSI_TRY(idsi_run_digest(run->ctx, run->pres, digest));
-    if (strcmp(digest, run->digest) != 0) {
-        *wrong = "the digest does not fit the presentation";
+    if (*wrong == NULL) {
+        IDSI_TRY(read_presentation(run, wrong));
     }
 done:
     idsi_free(run->ctx, bytes);
@@ -139,17 +163,6 @@ done:
 
 /* ---- whether they agree ------------------------------------------------------------------ */
 
-ids_status idsi_question_version(const ids_run *run)
-{
-    if (strcmp(run->version, IDS_VERSION_STRING) == 0) {
-        return IDS_OK;
-    }
-    return idsi_fail(run->ctx, IDS_ERR_ARG,
-                     "the run in \"%s\" is one of idspan %s, this is %s; it can be read, but not "
-                     "gone on with: take another folder",
-                     run->path, run->version, IDS_VERSION_STRING);
-}
-
 static ids_status refuse(const ids_run *found, const char *what)
 {
     return idsi_fail(found->ctx, IDS_ERR_ARG,
@@ -163,11 +176,7 @@ ids_status idsi_question_compare(const ids_run *found, const ids_run *asked)
     const ids_run_options *a = &found->options;
     const ids_run_options *b = &asked->options;
     char what[160] = "";
-    ids_status st = idsi_question_version(found);
 
-    if (st != IDS_OK) {
-        return st;
-    }
     if (strcmp(found->digest, asked->digest) != 0) {
         return refuse(found, "its operations or identities are others");
     }

@@ -111,9 +111,6 @@ ids_status ids_run_open(ids_ctx *ctx, const char *folder, ids_run_access access,
                        folder, wrong);
         goto done;
     }
-    if (access != IDS_RUN_READ) {
-        IDSI_TRY(idsi_question_version(made));
-    }
     IDSI_TRY(take_stock(made));
     *run = made;
     made = NULL;

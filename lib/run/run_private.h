@@ -117,7 +117,8 @@ ids_status idsi_run_digest(ids_ctx *ctx, const ids_presentation *pres,
                            char digest[IDSI_SHA256_HEX]);
 /* The contents of run.txt. */
 ids_status idsi_run_write(const ids_run *run, idsi_text *text);
-/* Reads them into a run that is otherwise empty; *wrong as for records. */
+/* Reads them into a run that is otherwise empty; *wrong as for records. The version is there if the
+ * record has one, whatever else may be wrong. */
 ids_status idsi_run_read(ids_run *run, const char *bytes, size_t length, const char **wrong);
 /* The contents of a cell's file. */
 ids_status idsi_cell_write(const ids_run *run, const idsi_cell *cell, idsi_text *text);
@@ -132,11 +133,10 @@ ids_status idsi_failure_read(const ids_run *run, idsi_cell *cell, const char *by
 /* Fills a run that is otherwise empty with what is asked. */
 ids_status idsi_question_ask(ids_run *run, const char *text, size_t length, const char *source,
                              const ids_run_options *options);
-/* Reads question and presentation from the run's folder; *wrong says why they are of no use. */
+/* Reads question and presentation from the run's folder; *wrong says why they are of no use.
+ * Refuses a run of another version, unless it is only to be read. */
 ids_status idsi_question_read(ids_run *run, bool *there, const char **wrong);
 ids_status idsi_question_write(const ids_run *run);
-/* Refuses a run of another version. */
-ids_status idsi_question_version(const ids_run *run);
 /* Refuses unless the run that was found may go on as the one that is asked for. */
 ids_status idsi_question_compare(const ids_run *found, const ids_run *asked);
 
