@@ -61,7 +61,8 @@ typedef struct ids_run_options {
  * same presentation (operations and identities; names, comments and candidates do not count),
  * version of the library, primes and seed, and of the same degrees; with IDS_RUN_ALONE the degrees
  * can also be more than before, and are then added. A run.txt or presentation.pres that is damaged
- * is written again, and what interrupted processes left behind is taken away.
+ * or not there is written again, unless there are cells of which none belongs to the run that is
+ * asked for. What interrupted processes left behind is taken away.
  *
  * @param ctx      borrowed now, kept.
  * @param folder   borrowed.

@@ -107,7 +107,7 @@ static ids_status load_cell(const ids_run *run, idsi_cell *cell)
 
     cell->state = IDS_CELL_MISSING;
     cell->message[0] = '\0';
-    snprintf(name, sizeof name, "cell-%s.txt", cell->id);
+    snprintf(name, sizeof name, IDSI_CELL_FILES "%s.txt", cell->id);
     IDSI_TRY(idsi_folder_read(run->ctx, &run->folder, name, &bytes, &length));
     if (bytes != NULL) {
         IDSI_TRY(idsi_cell_read(run, cell, bytes, length));
@@ -163,7 +163,7 @@ ids_status ids_run_store(ids_run *run, size_t cell, const ids_cell_result *resul
     idsi_host(made.result.host);
     idsi_now(made.result.finished);
     IDSI_TRY(idsi_cell_write(run, &made, &text));
-    snprintf(name, sizeof name, "cell-%s.txt", made.id);
+    snprintf(name, sizeof name, IDSI_CELL_FILES "%s.txt", made.id);
     IDSI_TRY(idsi_folder_write(run->ctx, &run->folder, name, text.data, text.length));
     snprintf(name, sizeof name, "failed-%s.txt", made.id);
     idsi_folder_remove(&run->folder, name);

@@ -206,22 +206,53 @@ void idsi_folder_remove(const idsi_folder *folder, const char *name)
     (void)unlinkat(folder->fd, name, 0);
 }
 
+/* ---- the list of files ------------------------------------------------------------------- */
+
+static DIR *open_list(const idsi_folder *folder)
+{
+    int copy = openat(folder->fd, ".", O_RDONLY | O_DIRECTORY | O_CLOEXEC);
+    DIR *list = copy >= 0 ? fdopendir(copy) : NULL;
+
+    if (list == NULL && copy >= 0) {
+        close(copy);
+    }
+    return list;
+}
+
+/* The next name in the list that begins so; NULL: no more. */
+static const char *next_name(DIR *list, const char *beginning)
+{
+    for (struct dirent *entry = readdir(list); entry != NULL; entry = readdir(list)) {
+        if (strncmp(entry->d_name, beginning, strlen(beginning)) == 0) {
+            return entry->d_name;
+        }
+    }
+    return NULL;
+}
+
+ids_status idsi_folder_holds(ids_ctx *ctx, const idsi_folder *folder, const char *beginning,
+                             bool *holds)
+{
+    DIR *list = open_list(folder);
+
+    if (list == NULL) {
+        return fail_io(ctx, "list the folder", folder->path, NULL);
+    }
+    *holds = next_name(list, beginning) != NULL;
+    closedir(list);
+    return IDS_OK;
+}
+
 /* Best effort: what cannot be listed or removed does no harm. */
 void idsi_folder_sweep(const idsi_folder *folder)
 {
-    int copy = openat(folder->fd, ".", O_RDONLY | O_DIRECTORY | O_CLOEXEC);
-    DIR *directory = copy >= 0 ? fdopendir(copy) : NULL;
+    DIR *list = open_list(folder);
+    const char *name = NULL;
 
-    if (directory == NULL) {
-        if (copy >= 0) {
-            close(copy);
-        }
-        return;
+    while (list != NULL && (name = next_name(list, TEMPORARY)) != NULL) {
+        idsi_folder_remove(folder, name);
     }
-    for (struct dirent *entry = readdir(directory); entry != NULL; entry = readdir(directory)) {
-        if (strncmp(entry->d_name, TEMPORARY, sizeof TEMPORARY - 1) == 0) {
-            idsi_folder_remove(folder, entry->d_name);
-        }
+    if (list != NULL) {
+        closedir(list);
     }
-    closedir(directory);
 }

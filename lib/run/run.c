@@ -145,14 +145,40 @@ done:
     return st;
 }
 
-/* The run that is asked for begins in the folder of the other, where no question can be read. */
-static ids_status begin(ids_run *asked, ids_run *found)
+/* Refuses when there are cells but none is the run's: the work of another run is not overwritten
+ * because its question cannot be read. */
+static ids_status check_cells(const ids_run *run, const char *wrong)
+{
+    ids_status st = IDS_OK;
+    bool any = false;
+
+    for (size_t i = 0; i < run->cell_count; i++) {
+        if (run->cells[i].state == IDS_CELL_DONE) {
+            return IDS_OK;
+        }
+    }
+    IDSI_TRY(idsi_folder_holds(run->ctx, &run->folder, IDSI_CELL_FILES, &any));
+    if (any) {
+        st = idsi_fail(run->ctx, IDS_ERR_ARG,
+                       "\"%s/" IDSI_RUN_FILE "\" is damaged: %s; and none of the cells in the "
+                       "folder is one of the run that is asked for: ask for the one that they "
+                       "belong to, or take another folder",
+                       run->path, wrong);
+    }
+done:
+    return st;
+}
+
+/* The run that is asked for begins in the folder of the other, where, as `wrong` says, there is no
+ * question that can be read. */
+static ids_status begin(ids_run *asked, ids_run *found, const char *wrong)
 {
     ids_status st = IDS_OK;
 
     hand_over_folder(found, asked);
-    IDSI_TRY(idsi_question_write(asked));
     IDSI_TRY(take_stock(asked));
+    IDSI_TRY(check_cells(asked, wrong));
+    IDSI_TRY(idsi_question_write(asked));
 done:
     return st;
 }
@@ -181,7 +207,7 @@ ids_status ids_run_create(ids_ctx *ctx, const char *folder, const char *text, si
         *run = found;
         found = NULL;
     } else {
-        IDSI_TRY(begin(asked, found));
+        IDSI_TRY(begin(asked, found, there ? wrong : "it is not there"));
         *run = asked;
         asked = NULL;
     }

@@ -12,6 +12,7 @@
 #define IDSI_RUN_FILE "run.txt"
 #define IDSI_PRESENTATION_FILE "presentation.pres"
 #define IDSI_LOCK_FILE "lock"
+#define IDSI_CELL_FILES "cell-" /* then the ID */
 #define IDSI_FILE_MAX ((size_t)1 << 26) /* of what is read */
 
 /* ---- checksums (sha256.c) ---------------------------------------------------------------- */
@@ -66,6 +67,9 @@ ids_status idsi_folder_write(ids_ctx *ctx, const idsi_folder *folder, const char
                              const char *bytes, size_t length);
 ids_status idsi_folder_sync(ids_ctx *ctx, const idsi_folder *folder);
 void idsi_folder_remove(const idsi_folder *folder, const char *name);
+/* Whether some file has a name that begins so. */
+ids_status idsi_folder_holds(ids_ctx *ctx, const idsi_folder *folder, const char *beginning,
+                             bool *holds);
 /* Takes away what processes that died were writing. */
 void idsi_folder_sweep(const idsi_folder *folder);
 

@@ -281,7 +281,7 @@ START_TEST(test_damage)
 }
 END_TEST
 
-/* A failure is noted, and the note goes away with a result; a cell of another run is not taken. */
+/* A failure is noted, and the note goes away with a result; another cell's file is not taken. */
 START_TEST(test_failure)
 {
     ids_ctx *ctx = test_ctx();
@@ -307,16 +307,13 @@ START_TEST(test_failure)
     TEST_OK(ctx, ids_run_cell(run, index, &cell));
     ck_assert_int_eq(cell.state, IDS_CELL_DONE);
     ids_run_free(run);
-    snprintf(command, sizeof command, "rm %s/run.txt; cp %s/cell-4.4.txt %s/cell-4.3+1.txt", folder,
-             folder, folder);
+    snprintf(command, sizeof command, "cp %s/cell-4.4.txt %s/cell-4.3+1.txt", folder, folder);
     ck_assert_int_eq(system(command), 0);
-    asked.seed = 5;
     TEST_OK(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
-    for (size_t i = 0; i < ids_run_cell_count(run); i++) {
-        TEST_OK(ctx, ids_run_cell(run, i, &cell));
-        ck_assert_int_eq(cell.state, IDS_CELL_DAMAGED);
-        ck_assert_ptr_nonnull(strstr(cell.message, "another"));
-    }
+    TEST_OK(ctx, ids_run_cell_find(run, "4.3+1", &index));
+    TEST_OK(ctx, ids_run_cell(run, index, &cell));
+    ck_assert_int_eq(cell.state, IDS_CELL_DAMAGED);
+    ck_assert_ptr_nonnull(strstr(cell.message, "another cell"));
     ids_run_free(run);
     remove_folder();
     test_ctx_free(ctx);
