@@ -100,7 +100,8 @@ IDS_API IDS_MUST_USE ids_status ids_run_create(ids_ctx *ctx, const char *folder,
  * @param run     out, owned: ids_run_free(); written only on IDS_OK.
  * @return IDS_OK
  *         IDS_ERR_ARG     NULL, another version
- *         IDS_ERR_PARSE   run.txt or presentation.pres is damaged
+ *         IDS_ERR_PARSE   run.txt or presentation.pres is damaged; among that, the primes are not
+ *                         those that the seed gives
  *         IDS_ERR_UNABLE  somebody else works in it
  *         IDS_ERR_IO      no such run, or the system refused something
  *         IDS_ERR_NOMEM   the allocator refused
@@ -380,6 +381,7 @@ IDS_API IDS_MUST_USE ids_status ids_run_work_estimate(ids_run_work *work, size_t
  *         IDS_ERR_LIMIT      byte budget, as ids_rank_table_create() and
  *                            ids_partition_table_create()
  *         IDS_ERR_CANCELLED  cancelled
+ *         IDS_ERR_INTERNAL   the numbers contradict each other: never, please report it
  * Cost: as the cell of ids_rank_table_create() or ids_partition_table_create().
  * Threads: up to the context's number. Cancel: polled.
  * Border: FLINT, GMP, as ids_rank_table_create(). Since: 0.1

@@ -381,6 +381,7 @@ ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t p
     idsi_partition_engine *made = NULL;
     uint32_t inverse[IDSI_DISTANCE_MAX + 1] = {0};
 
+    IDSI_TRY(idsi_prime_check(ctx, prime));
     if (top > IDSI_SHAPE_MAX || prime <= 2 * IDSI_SHAPE_MAX) {
         return idsi_fail(ctx, IDS_ERR_LIMIT,
                          "the partition engine goes to degree %u and needs a larger prime than %u",

@@ -127,6 +127,7 @@ typedef struct idsi_partition_engine {
     uint8_t *since; /* of each planned shape: the lowest degree asked for that needs it; else 0 */
 } idsi_partition_engine;
 
+/* IDS_ERR_ARG unless `prime` is a prime below 2^30. */
 ids_status idsi_partition_create(ids_ctx *ctx, const idsi_laws *laws, uint32_t prime, uint32_t top,
                                  idsi_partition_engine **engine);
 void idsi_partition_free(idsi_partition_engine *engine);

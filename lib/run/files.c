@@ -17,6 +17,7 @@
 #include "run_private.h"
 
 #define MANTISSA_BITS 53
+#define WRONG_ENTRY "an entry is missing or impossible"
 
 /* ---- the question ------------------------------------------------------------------------ */
 
@@ -77,21 +78,30 @@ done:
     return st;
 }
 
+/* What follows that number and the blank behind it; NULL when something else stands there. */
+static const char *pass_prime(const char *at, uint32_t prime)
+{
+    char *end = NULL;
+
+    if (*at < '1' || *at > '9' || strtoull(at, &end, 10) != prime) {
+        return NULL;
+    }
+    if (*end == ' ' && end[1] != '\0') {
+        return end + 1;
+    }
+    return *end == '\0' ? end : NULL;
+}
+
 /* Whether a list of primes in a file is that of the run. */
 static bool same_primes(const ids_run *run, const char *at)
 {
     if (run->prime_count == 0) {
         return strcmp(at, "none") == 0;
     }
-    for (size_t i = 0; i < run->prime_count; i++) {
-        char *end = NULL;
-        if (at[0] < '1' || at[0] > '9' || strtoull(at, &end, 10) != run->primes[i] ||
-            *end != (i + 1 < run->prime_count ? ' ' : '\0')) {
-            return false;
-        }
-        at = end + 1;
+    for (size_t i = 0; at != NULL && i < run->prime_count; i++) {
+        at = pass_prime(at, run->primes[i]);
     }
-    return true;
+    return at != NULL && *at == '\0';
 }
 
 static bool same_number(const idsi_record *record, const char *key, uint64_t expected)
@@ -139,36 +149,37 @@ done:
     return st;
 }
 
-static ids_status read_primes(ids_run *run, const char *at, bool *good)
+/*
+ * The primes are drawn again, and those in the file must be the same: a certainty is only one for
+ * primes that came by chance, and a number that is no prime breaks what is computed with it. So how
+ * primes are drawn is part of the form of the file.
+ */
+static ids_status read_primes(ids_run *run, const char *at, const char **wrong)
 {
     ids_status st = IDS_OK;
+    idsi_random random;
 
-    *good = true;
     if (strcmp(at, "none") == 0) {
         return IDS_OK;
     }
-    size_t most = strlen(at) / 2 + 1;
-    IDSI_TRY(idsi_alloc_array(run->ctx, most, sizeof *run->primes, &run->primes));
+    idsi_random_seed(&random, run->options.seed);
+    IDSI_TRY(idsi_alloc_array(run->ctx, strlen(at) / 2 + 1, sizeof *run->primes, &run->primes));
     do {
-        char *end = NULL;
-        unsigned long long prime = 0;
-        if (*at < '1' || *at > '9') {
-            *good = false;
-            return IDS_OK;
-        }
-        prime = strtoull(at, &end, 10);
-        *good = prime < IDSI_PRIME_HIGH && (*end == ' ' || *end == '\0');
-        run->primes[run->prime_count] = (uint32_t)prime;
+        uint32_t prime = idsi_prime_draw(&random, run->primes, run->prime_count);
+        run->primes[run->prime_count] = prime;
         run->prime_count++;
-        at = *end == ' ' ? end + 1 : end;
-    } while (*good && *at != '\0');
+        at = pass_prime(at, prime);
+    } while (at != NULL && *at != '\0');
+    if (at == NULL) {
+        *wrong = "its primes are not those that its seed gives";
+    }
     run->options.primes = (uint32_t)run->prime_count;
 done:
     return st;
 }
 
-/* What read_numbers() leaves: the strings. */
-static ids_status read_strings(ids_run *run, const idsi_record *record, bool *good)
+/* What read_numbers() leaves. */
+static ids_status read_strings(ids_run *run, const idsi_record *record, const char **wrong)
 {
     ids_status st = IDS_OK;
     const char *primes = idsi_record_get(record, "primes");
@@ -177,12 +188,13 @@ static ids_status read_strings(ids_run *run, const idsi_record *record, bool *go
     const char *libraries = idsi_record_get(record, "libraries");
     const char *created = idsi_record_get(record, "created");
 
-    *good = primes != NULL && digest != NULL && strlen(digest) < sizeof run->digest &&
-            source != NULL && libraries != NULL && created != NULL;
-    if (!*good) {
+    if (primes == NULL || (strcmp(primes, "none") == 0) != (run->options.field > 0) ||
+        digest == NULL || strlen(digest) >= sizeof run->digest || source == NULL ||
+        libraries == NULL || created == NULL) {
+        *wrong = WRONG_ENTRY;
         return IDS_OK;
     }
-    IDSI_TRY(read_primes(run, primes, good));
+    IDSI_TRY(read_primes(run, primes, wrong));
     snprintf(run->digest, sizeof run->digest, "%s", digest);
     snprintf(run->created, sizeof run->created, "%s", created);
     IDSI_TRY(idsi_strdup(run->ctx, source, &run->source));
@@ -205,7 +217,7 @@ static bool read_numbers(ids_run *run, const idsi_record *record)
         !idsi_record_get_number(record, "from", to, &from) || from == 0 ||
         !idsi_record_get_number(record, "seed", UINT64_MAX, &run->options.seed) ||
         !idsi_record_get_number(record, "exact", 1, &exact) ||
-        !idsi_record_get_number(record, "field", IDSI_PRIME_HIGH, &field)) {
+        !idsi_record_get_number(record, "field", IDSI_PRIME_HIGH - 1, &field)) {
         return false;
     }
     run->options.by_partition = partition;
@@ -213,7 +225,26 @@ static bool read_numbers(ids_run *run, const idsi_record *record)
     run->options.to = (uint32_t)to;
     run->options.exact = exact == 1;
     run->options.field = (uint32_t)field;
-    return !partition || (exact == 0 && field == 0);
+    if (partition || exact == 1) {
+        return field == 0 && !(partition && exact == 1);
+    }
+    return field == 0 || idsi_is_prime((uint32_t)field);
+}
+
+/* Whether the presentation that was read is the one of the record. */
+static const char *check_text(const ids_run *run, const idsi_record *record)
+{
+    const char *sum = idsi_record_get(record, "text");
+    char actual[IDSI_SHA256_HEX];
+
+    if (sum == NULL) {
+        return WRONG_ENTRY;
+    }
+    if (run->text == NULL) {
+        return "its presentation is not there";
+    }
+    idsi_sha256(run->text, run->length, actual);
+    return strcmp(sum, actual) == 0 ? NULL : "its presentation is not the one in the folder";
 }
 
 ids_status idsi_run_read(ids_run *run, const char *bytes, size_t length, const char **wrong)
@@ -221,7 +252,6 @@ ids_status idsi_run_read(ids_run *run, const char *bytes, size_t length, const c
     ids_status st = IDS_OK;
     idsi_record record;
     const char *version = NULL;
-    bool good = false;
 
     IDSI_TRY(idsi_record_read(run->ctx, "run", bytes, length, &record, wrong));
     if (*wrong != NULL) {
@@ -230,18 +260,14 @@ ids_status idsi_run_read(ids_run *run, const char *bytes, size_t length, const c
     version = idsi_record_get(&record, "version");
     if (version != NULL) {
         IDSI_TRY(idsi_strdup(run->ctx, version, &run->version));
-        good = read_numbers(run, &record);
     }
-    if (good) {
-        IDSI_TRY(read_strings(run, &record, &good));
+    if (version == NULL || !read_numbers(run, &record)) {
+        *wrong = WRONG_ENTRY;
+        goto done;
     }
-    const char *sum = idsi_record_get(&record, "text");
-    if (!good || sum == NULL || (run->prime_count == 0) != (run->options.field > 0)) {
-        *wrong = "an entry is missing or impossible";
-    } else if (run->text != NULL) {
-        char actual[IDSI_SHA256_HEX];
-        idsi_sha256(run->text, run->length, actual);
-        *wrong = strcmp(sum, actual) == 0 ? NULL : "its presentation is not the one in the folder";
+    IDSI_TRY(read_strings(run, &record, wrong));
+    if (*wrong == NULL) {
+        *wrong = check_text(run, &record);
     }
 done:
     idsi_record_clear(&record);
@@ -378,7 +404,7 @@ ids_status idsi_cell_read(const ids_run *run, idsi_cell *cell, const char *bytes
         wrong = "it belongs to another run";
     }
     if (wrong == NULL && !read_result(&record, &result)) {
-        wrong = "an entry is missing or impossible";
+        wrong = WRONG_ENTRY;
     }
     set_state(cell, wrong == NULL ? IDS_CELL_DONE : IDS_CELL_DAMAGED, wrong == NULL ? "" : wrong);
     cell->result = result;

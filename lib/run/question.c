@@ -104,10 +104,6 @@ static ids_status read_presentation(ids_run *run, const char **wrong)
     ids_status st = IDS_OK;
     char digest[IDSI_SHA256_HEX] = "";
 
-    if (run->text == NULL) {
-        *wrong = "its presentation is not there";
-        return IDS_OK;
-    }
     IDSI_TRY(ids_presentation_read(run->ctx, run->text, run->length, run->source, &run->pres));
     IDSI_TRY(idsi_run_digest(run->ctx, run->pres, digest));
     if (strcmp(digest, run->digest) != 0) {

@@ -257,6 +257,9 @@ START_TEST(test_limits)
     TEST_STATUS(f.ctx, idsi_partition_create(f.ctx, f.laws, PRIME, IDSI_SHAPE_MAX + 1, &engine),
                 IDS_ERR_LIMIT);
     TEST_STATUS(f.ctx, idsi_partition_create(f.ctx, f.laws, 31, 3, &engine), IDS_ERR_LIMIT);
+    /* divisible by 3; and a prime above 2^30, from memory */
+    TEST_STATUS(f.ctx, idsi_partition_create(f.ctx, f.laws, 1000000005, 3, &engine), IDS_ERR_ARG);
+    TEST_STATUS(f.ctx, idsi_partition_create(f.ctx, f.laws, 1073741827, 3, &engine), IDS_ERR_ARG);
     ck_assert_ptr_null(engine);
     idsi_partition_free(NULL);
     close_engine(&f);

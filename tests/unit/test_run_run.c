@@ -149,6 +149,9 @@ START_TEST(test_same_degrees)
         ck_assert_int_eq(line.row.certainty, row.certainty);
         ck_assert_uint_eq(line.row.bits, row.bits);
     }
+    for (size_t i = 0; i < ids_run_prime_count(run); i++) {
+        ck_assert_uint_eq(ids_run_prime(run, i), ids_rank_table_prime(table, i));
+    }
     ids_run_free(run);
     ids_rank_table_free(table);
     ids_presentation_free(pres);
