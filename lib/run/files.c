@@ -220,6 +220,7 @@ static bool read_numbers(ids_run *run, const idsi_record *record)
         !idsi_record_get_number(record, "field", IDSI_PRIME_HIGH - 1, &field)) {
         return false;
     }
+    run->options.struct_size = sizeof run->options;
     run->options.by_partition = partition;
     run->options.from = (uint32_t)from;
     run->options.to = (uint32_t)to;
