@@ -2,8 +2,9 @@
 /*
  * What stands in the files of a run.
  *
- * A cell's file repeats the question (digest, version, primes, seed, kind of rank), so that it can
- * be believed on its own, wherever it was computed; one of another question counts as damaged.
+ * A cell's file repeats the question (digest, version, primes, seed, whether it is proved, field),
+ * so that it can be believed on its own, wherever it was computed; one of another question counts
+ * as damaged. Whether it is a partition or a whole degree shows in its ID.
  * Error probabilities are kept exactly, as mantissa and exponent, so that the totals of a table
  * come out the same as in one piece. Numbers are integers throughout: a locale plays no part.
  */
