@@ -270,7 +270,7 @@ typedef struct ids_run_line {
  * Number of rows of the table, finished or not: a row a cell and, by partition, a total a degree.
  *
  * A finished one has the rows of ids_partition_table_create(), or of ids_rank_table_create() with
- * `total` set.
+ * `total` set; there `bits` can differ a little, as each degree is the last of its table.
  *
  * @param run  borrowed; NULL gives 0.
  * @return number of rows.
@@ -369,7 +369,8 @@ IDS_API IDS_MUST_USE ids_status ids_run_work_estimate(ids_run_work *work, size_t
  * Computes a cell, after the lower degrees if they are not there.
  *
  * The result depends on the question alone: not on the other cells that were computed with `work`,
- * nor on threads. `memory` is the context's peak.
+ * nor on threads. `memory` is the context's peak. The error bound of a whole degree (`error`,
+ * `bits`) also depends a little on the byte budget.
  *
  * @param work    borrowed.
  * @param cell    index of a cell whose degree is at most `top`.
