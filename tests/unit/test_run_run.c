@@ -352,16 +352,12 @@ START_TEST(test_plan)
 }
 END_TEST
 
-START_TEST(test_misuse)
+/* Runs that cannot be opened or made. */
+START_TEST(test_misuse_question)
 {
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
-    ids_run_work *work = NULL;
     ids_run_options asked = question(1, 3);
-    ids_cell cell;
-    ids_cell_result result = {0};
-    ids_run_line line;
-    size_t index = 0;
 
     snprintf(folder, sizeof folder, "no/such/folder");
     TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_IO);
@@ -386,7 +382,23 @@ START_TEST(test_misuse)
     asked.struct_size = 1;
     TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     ck_assert_ptr_null(run);
+    remove_folder();
+    test_ctx_free(ctx);
+}
+END_TEST
 
+/* Calls that a run refuses. */
+START_TEST(test_misuse_cells)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_run *run = NULL;
+    ids_run_work *work = NULL;
+    ids_cell cell;
+    ids_cell_result result = {0};
+    ids_run_line line;
+    size_t index = 0;
+
+    make_folder();
     TEST_OK(ctx, start(ctx, jordan, question(1, 3), IDS_RUN_ALONE, &run));
     TEST_STATUS(ctx, ids_run_work_create(run, 4, &work), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_run_work_create(NULL, 3, &work), IDS_ERR_ARG);
@@ -430,7 +442,8 @@ int main(void)
     tcase_add_test(tcase, test_damage);
     tcase_add_test(tcase, test_failure);
     tcase_add_test(tcase, test_plan);
-    tcase_add_test(tcase, test_misuse);
+    tcase_add_test(tcase, test_misuse_question);
+    tcase_add_test(tcase, test_misuse_cells);
     suite_add_tcase(suite, tcase);
     return test_run(suite);
 }
