@@ -7,6 +7,7 @@
  * depends on what else it was asked for, or on how far it goes (partition_plan.c). A whole degree
  * is a rank table of one row.
  */
+#include <math.h>
 #include <time.h>
 
 #include "../answer/rank_private.h"
@@ -212,6 +213,7 @@ static ids_status compute_degree(ids_run_work *work, const idsi_cell *cell,
     result->quotient = row.quotient;
     result->certainty = row.certainty;
     result->bits = row.bits;
+    result->error = row.certainty == IDS_CERTAINTY_MODULAR ? ldexp(1, -(int)row.bits) : 0;
     result->seconds = process_seconds() - start;
 done:
     ids_rank_table_free(table);

@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /* lib/run: folders, cells, tables. */
 #include <fcntl.h>
+#include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -117,6 +118,18 @@ START_TEST(test_same_table)
 }
 END_TEST
 
+/* The probability of a cell is the one that its bits round down, and 0 when there is no doubt. */
+static void check_error(const ids_run *run, size_t index)
+{
+    ids_cell cell;
+
+    ck_assert_int_eq(ids_run_cell(run, index, &cell), IDS_OK);
+    double bound = ldexp(1, -(int)cell.result.bits);
+    bool doubt = cell.result.certainty == IDS_CERTAINTY_MODULAR;
+    ck_assert(cell.result.error <= bound);
+    ck_assert(doubt ? cell.result.error > bound / 2 : cell.result.error == 0);
+}
+
 /* A run of whole degrees is the rank table. */
 START_TEST(test_same_degrees)
 {
@@ -148,6 +161,7 @@ START_TEST(test_same_degrees)
         ck_assert_uint_eq(line.row.quotient, row.quotient);
         ck_assert_int_eq(line.row.certainty, row.certainty);
         ck_assert_uint_eq(line.row.bits, row.bits);
+        check_error(run, i);
     }
     for (size_t i = 0; i < ids_run_prime_count(run); i++) {
         ck_assert_uint_eq(ids_run_prime(run, i), ids_rank_table_prime(table, i));
