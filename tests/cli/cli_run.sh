@@ -112,14 +112,34 @@ run 2 rank jordan.pres --degrees 2..5 --by partition --run table
 has err "degrees 2..6"
 run 2 rank jordan.pres --degrees 2..6 --run table
 has err "it is by partition"
-sed -e 's/^version: .*/version: 0.0.9/' -e '/^sha256/d' table/run.txt >other
-echo "sha256: $(sha256sum <other | cut -d' ' -f1)" >>other
+# forge FILE KEY VALUE: gives the file another value, and the checksum of that.
+forge() {
+    sed -e "s/^$2: .*/$2: $3/" -e '/^sha256/d' "$1" >other
+    echo "sha256: $(sha256sum <other | cut -d' ' -f1)" >>other
+    cp other "$1"
+}
 cp table/run.txt kept
-cp other table/run.txt
+forge table/run.txt version 0.0.9
 run 2 rank jordan.pres --degrees 2..6 --by partition --run table
 has err "is one of idspan 0.0.9, this is"
 run 0 rank --run table # it can be read
-cp kept table/run.txt
+# 1000000005 is divisible by 3.
+cp -r table composite
+cp kept composite/run.txt
+rm composite/cell-6.6.txt
+for file in composite/run.txt composite/cell-*; do
+    forge "$file" primes 1000000005
+done
+run 2 rank --run composite --cell 6.6
+has err "is damaged: its primes are not those that its seed gives"
+run 2 rank jordan.pres --degrees 2..6 --by partition --run composite
+has err "none of the cells in the folder is one of the run that is asked for"
+truncate -s 50 table/run.txt
+run 2 rank nil.pres --degrees 2..6 --by partition --run table
+has err "none of the cells in the folder is one of the run that is asked for"
+run 0 rank jordan.pres --degrees 2..6 --by partition --run table --format csv
+is_empty err
+is out "$(cat expected)"
 run 2 rank --run nowhere
 has err 'cannot open the folder "nowhere": No such file or directory'
 mkdir empty
