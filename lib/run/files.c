@@ -227,10 +227,10 @@ static bool read_numbers(ids_run *run, const idsi_record *record)
     run->options.to = (uint32_t)to;
     run->options.exact = exact == 1;
     run->options.field = (uint32_t)field;
-    if (partition || exact == 1) {
-        return field == 0 && !(partition && exact == 1);
+    if (field == 0) {
+        return !(partition && exact == 1);
     }
-    return field == 0 || idsi_is_prime((uint32_t)field);
+    return !partition && exact == 0 && idsi_is_prime((uint32_t)field);
 }
 
 /* Whether the presentation that was read is the one of the record. */

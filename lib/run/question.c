@@ -125,8 +125,8 @@ ids_status idsi_question_read(ids_run *run, bool *there, const char **wrong)
     if (!*there) {
         goto done;
     }
-    IDSI_TRY(idsi_folder_read(run->ctx, &run->folder, IDSI_PRESENTATION_FILE, &run->text,
-                              &run->length));
+    IDSI_TRY(
+        idsi_folder_read(run->ctx, &run->folder, IDSI_PRESENTATION_FILE, &run->text, &run->length));
     IDSI_TRY(idsi_run_read(run, bytes, length, wrong));
     /* Before anything is blamed on the files: another version may write them in another way. */
     if (run->version != NULL && run->access != IDS_RUN_READ) {
@@ -146,8 +146,8 @@ ids_status idsi_question_write(const ids_run *run)
     idsi_text text;
 
     idsi_text_init(&text, run->ctx);
-    IDSI_TRY(idsi_folder_write(run->ctx, &run->folder, IDSI_PRESENTATION_FILE, run->text,
-                               run->length));
+    IDSI_TRY(
+        idsi_folder_write(run->ctx, &run->folder, IDSI_PRESENTATION_FILE, run->text, run->length));
     IDSI_TRY(idsi_folder_sync(run->ctx, &run->folder));
     IDSI_TRY(idsi_run_write(run, &text));
     IDSI_TRY(idsi_folder_write(run->ctx, &run->folder, IDSI_RUN_FILE, text.data, text.length));
@@ -183,16 +183,15 @@ ids_status idsi_question_compare(const ids_run *found, const ids_run *asked)
         return refuse(found, "its ranks are over another field, or proved and these not");
     }
     if (found->prime_count != asked->prime_count || a->seed != b->seed ||
-        (found->prime_count > 0 && memcmp(found->primes, asked->primes,
-                                          found->prime_count * sizeof *found->primes) != 0)) {
+        (found->prime_count > 0 &&
+         memcmp(found->primes, asked->primes, found->prime_count * sizeof *found->primes) != 0)) {
         snprintf(what, sizeof what, "it works modulo %zu primes from the seed %llu",
                  found->prime_count, (unsigned long long)a->seed);
         return refuse(found, what);
     }
     if (b->from > a->from || b->to < a->to ||
         ((b->from < a->from || b->to > a->to) && asked->access != IDS_RUN_ALONE)) {
-        snprintf(what, sizeof what,
-                 "it is about the degrees %u..%u, to which others can be added",
+        snprintf(what, sizeof what, "it is about the degrees %u..%u, to which others can be added",
                  (unsigned)a->from, (unsigned)a->to);
         return refuse(found, what);
     }

@@ -184,8 +184,8 @@ done:
 }
 
 ids_status ids_run_create(ids_ctx *ctx, const char *folder, const char *text, size_t length,
-                          const char *source, const ids_run_options *options,
-                          ids_run_access access, ids_run **run)
+                          const char *source, const ids_run_options *options, ids_run_access access,
+                          ids_run **run)
 {
     ids_status st = IDS_OK;
     ids_run *asked = NULL;

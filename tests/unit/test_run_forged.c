@@ -244,8 +244,8 @@ END_TEST
  * divisible by 3; 1000000007 is prime (both are common practice, no source). */
 START_TEST(test_primes)
 {
-    static const char *const forged[] = {"1000000005", "1000000007", "7",    "none", "0",
-                                         "",           "4294967297", "junk"};
+    static const char *const forged[] = {"1000000005", "1000000007", "7",          "none",
+                                         "0",          "",           "4294967297", "junk"};
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
     char own[32];
