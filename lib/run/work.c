@@ -179,12 +179,17 @@ static double process_seconds(void)
     return (double)now.tv_sec + 1e-9 * (double)now.tv_nsec;
 }
 
-/* A rank table draws its primes itself; the cell says that they were the run's. */
-static ids_status check_primes(const ids_run *run, const ids_rank_table *table)
+/* A rank table draws its primes itself, and the cell's certainty says that they were the run's.
+ * What is exact has no need of that: a proof may have replaced a prime. */
+static ids_status check_primes(const ids_run *run, const ids_rank_table *table,
+                               const ids_rank_row *row)
 {
+    if (row->certainty == IDS_CERTAINTY_EXACT) {
+        return IDS_OK;
+    }
     for (size_t k = 0; k < run->prime_count; k++) {
         if (ids_rank_table_prime(table, k) != run->primes[k]) {
-            return idsi_fail(run->ctx, IDS_ERR_INTERNAL, 
+            return idsi_fail(run->ctx, IDS_ERR_INTERNAL,
                              "the rank table worked modulo other primes than the run's");
         }
     }
@@ -207,8 +212,8 @@ static ids_status compute_degree(ids_run_work *work, const idsi_cell *cell,
 
     IDSI_TRY(ids_rank_table_create(work->ctx, work->run->pres, cell->degree, cell->degree,
                                    &options, &table));
-    IDSI_TRY(check_primes(work->run, table));
     IDSI_TRY(ids_rank_table_row(table, 0, &row));
+    IDSI_TRY(check_primes(work->run, table, &row));
     result->free = row.free;
     result->quotient = row.quotient;
     result->certainty = row.certainty;
