@@ -59,10 +59,10 @@ typedef struct ids_rank_row {
  * were combined). The derivation is in lib/field/prime.c. `exact` proves the ranks instead; in
  * degrees below that of every identity, and where the quotient is 0, they are proved anyway.
  *
- * With `field` the ranks are those over GF(p), of the identities as completely linearised, with
- * integer coefficients of content 1. Where p is at most the number of times that a variable occurs
- * in a term, the linearisation can say less than the identity, or (after division by a common
- * factor) other things; ids_rank_table_weakened() tells. For p < 2^20 rows are not combined and the
+ * With `field` the ranks are those over GF(p), of the identities as completely linearised; one of
+ * which nothing is left mod p, as of x*x for a commutative product mod 2, says nothing there. Where
+ * p is at most the number of times that a variable occurs in a term, the linearisation can say less
+ * than the identity; ids_rank_table_weakened() tells. For p < 2^20 rows are not combined and the
  * ranks are exact; above, they are exact or have the bound 2^-bits = r.
  *
  * @param ctx           borrowed now, kept.
@@ -75,6 +75,7 @@ typedef struct ids_rank_row {
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a `field` that is no
  *                            prime below 2^30, or together with `exact` or `primes` > 1
+ *         IDS_ERR_DOMAIN     `field` divides a denominator of an identity
  *         IDS_ERR_NOMEM      the allocator refused; *table is then NULL
  *         IDS_ERR_LIMIT      byte budget, 64 bits of monomials, 32 bits of columns; the message
  *                            says how many monomials and columns a degree has, what they need and

@@ -46,7 +46,9 @@ typedef struct ids_normal_forms ids_normal_forms;
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degree out of range, unknown struct_size, `field` no prime
  *                            below 2^30 or together with `exact`
- *         IDS_ERR_UNABLE     `exact`: some coefficient does not fit 62 bits above and below
+ *         IDS_ERR_DOMAIN     `field` divides a denominator of an identity
+ *         IDS_ERR_UNABLE     `exact`: some coefficient does not fit 62 bits above and below, or
+ *                            five primes in a row are exceptional
  *         IDS_ERR_LIMIT      byte budget, 2^32 products of normal forms in a degree
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_CANCELLED  cancelled
@@ -351,6 +353,7 @@ typedef struct ids_matrix ids_matrix;
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degree, unknown struct_size, `field` no prime below 2^30 or
  *                            together with `plain`
+ *         IDS_ERR_DOMAIN     `field` divides a denominator of an identity
  *         IDS_ERR_LIMIT      byte budget, 64 bits
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_CANCELLED  cancelled

@@ -286,7 +286,7 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
     j.table->field = chosen.field;
     j.table->weakened = idsi_rank_weakened(presentation, chosen.field, to);
     IDSI_TRY(idsi_alloc_array(ctx, to - from + 1u, sizeof *j.table->rows, &j.table->rows));
-    IDSI_TRY(idsi_laws_create(ctx, presentation, &j.laws));
+    IDSI_TRY(idsi_laws_create_over(ctx, presentation, chosen.field, &j.laws));
     if (chosen.exact) {
         IDSI_TRY(idsi_proof_create(ctx, j.laws, &j.proof));
     }

@@ -81,6 +81,12 @@ typedef struct idsi_laws {
 ids_status idsi_law_compile(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law);
 void idsi_law_clear(ids_ctx *ctx, idsi_law *law);
 ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_laws **laws);
+/*
+ * Over the field of `field` elements (0: the rational numbers). An identity that is 0 there is
+ * left out; IDS_ERR_DOMAIN when one has a denominator that is.
+ */
+ids_status idsi_laws_create_over(ids_ctx *ctx, const ids_presentation *pres, uint32_t field,
+                                 idsi_laws **laws);
 void idsi_laws_free(idsi_laws *laws);
 /* Whether some law says x = 0. */
 bool idsi_laws_trivial(const idsi_laws *laws);

@@ -282,8 +282,8 @@ done:
 }
 
 /*
- * SAME normal forms in all degrees: then the tables of a proved degree have the other tower's tables
- * as residues. Take a column minus its combination of normal forms over Q, times the common
+ * SAME normal forms in all degrees: then the tables of a proved degree have those of the other
+ * tower as residues. Take a column minus its combination of normal forms over Q, times the common
  * denominator D: an integral consequence of content 1. Dimensions being equal, its residue is a
  * consequence mod p. If p divided D it would be one of normal forms alone, but these are
  * independent; so p does not, and the residue is what the other table says, which is unique.

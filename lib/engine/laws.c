@@ -147,7 +147,37 @@ done:
     return st;
 }
 
+/* Whether an identity says anything over a field. */
+static ids_status is_law(ids_ctx *ctx, const ids_presentation *pres, size_t index, uint32_t field,
+                         bool *law)
+{
+    ids_status st = IDS_OK;
+    const idsi_identity *identity = &pres->list[index];
+    int order = 0;
+
+    *law = identity->role == IDS_ROLE_IDENTITY && identity->linear.count > 0;
+    if (!*law || field == 0) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_poly_linear_mod(ctx, &identity->written, field, &order));
+    if (order < 0) {
+        st = idsi_fail(ctx, IDS_ERR_DOMAIN,
+                       "the identity of line %u has a denominator that is 0 in the field of %u "
+                       "elements",
+                       identity->line, field);
+    }
+    *law = order == 0;
+done:
+    return st;
+}
+
 ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_laws **laws)
+{
+    return idsi_laws_create_over(ctx, pres, 0, laws);
+}
+
+ids_status idsi_laws_create_over(ids_ctx *ctx, const ids_presentation *pres, uint32_t field,
+                                 idsi_laws **laws)
 {
     ids_status st = IDS_OK;
     idsi_laws *made = NULL;
@@ -157,10 +187,11 @@ ids_status idsi_laws_create(ids_ctx *ctx, const ids_presentation *pres, idsi_law
     made->pres = pres;
     IDSI_TRY(idsi_alloc_array(ctx, pres->count, sizeof *made->law, &made->law));
     for (size_t i = 0; i < pres->count; i++) {
-        const idsi_identity *identity = &pres->list[i];
-        if (identity->role == IDS_ROLE_IDENTITY && identity->linear.count > 0) {
+        bool law = false;
+        IDSI_TRY(is_law(ctx, pres, i, field, &law));
+        if (law) {
             made->count++;
-            IDSI_TRY(idsi_law_compile(ctx, &identity->linear, &made->law[made->count - 1]));
+            IDSI_TRY(idsi_law_compile(ctx, &pres->list[i].linear, &made->law[made->count - 1]));
         }
     }
     *laws = made;

@@ -204,7 +204,7 @@ ids_status ids_matrix_create(ids_ctx *ctx, const ids_presentation *presentation,
     made->pres = presentation;
     made->degree = degree;
     made->is_plain = chosen.plain || degree == 1;
-    IDSI_TRY(idsi_laws_create(ctx, presentation, &made->laws));
+    IDSI_TRY(idsi_laws_create_over(ctx, presentation, chosen.field, &made->laws));
     IDSI_TRY(made->is_plain ? make_plain(made) : make_step(made, &chosen));
     *matrix = made;
     made = NULL;

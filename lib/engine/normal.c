@@ -98,7 +98,7 @@ ids_status ids_normal_forms_create(ids_ctx *ctx, const ids_presentation *present
     idsi_random_seed(&random, chosen.seed);
     uint32_t prime = chosen.field != 0 ? chosen.field : idsi_prime_draw(&random, NULL, 0);
     made->prime = chosen.exact ? 0 : prime;
-    IDSI_TRY(idsi_laws_create(ctx, presentation, &made->laws));
+    IDSI_TRY(idsi_laws_create_over(ctx, presentation, chosen.field, &made->laws));
     idsi_tower_init(&made->tower, ctx, made->laws, prime);
     if (chosen.exact) {
         IDSI_TRY(idsi_proof_create(ctx, made->laws, &made->proof));

@@ -64,6 +64,12 @@ ids_status idsi_poly_print(const idsi_poly *poly, const char *const *names, idsi
  * group, its order for each node of a written term.
  */
 ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear);
+/*
+ * What is left of the complete linearisation mod a prime, before it is made primitive. order 1:
+ * nothing, all coefficients are multiples of p; -1: p divides a denominator; 0: it is a multiple of
+ * the primitive one by a number that p does not divide. Cost: as idsi_poly_linearize().
+ */
+ids_status idsi_poly_linear_mod(ids_ctx *ctx, const idsi_poly *poly, uint32_t p, int *order);
 
 typedef struct idsi_identity {
     ids_role role;

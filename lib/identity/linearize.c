@@ -288,7 +288,8 @@ static ids_status check_terms(const idsi_poly *poly, uint8_t count[IDS_MAX_DEGRE
     return IDS_OK;
 }
 
-ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear)
+/* The linearisation with the coefficients that come out; all memory is from linear->ctx. */
+static ids_status linearize(const idsi_poly *poly, idsi_poly *linear)
 {
     uint8_t count[IDS_MAX_DEGREE] = {0};
     dealer *d = NULL;
@@ -298,11 +299,11 @@ ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear)
         return IDS_OK;
     }
     if (poly->degree > IDS_MAX_DEGREE) {
-        return idsi_fail(poly->ctx, IDS_ERR_LIMIT, "linearisation of degree over %u",
+        return idsi_fail(linear->ctx, IDS_ERR_LIMIT, "linearisation of degree over %u",
                          IDS_MAX_DEGREE);
     }
     IDSI_TRY(check_terms(poly, count));
-    IDSI_TRY(idsi_alloc_array(poly->ctx, 1, sizeof *d, &d));
+    IDSI_TRY(idsi_alloc_array(linear->ctx, 1, sizeof *d, &d));
     d->out = linear;
     d->sig = poly->sig;
     d->variables = poly->variables < IDS_MAX_DEGREE ? poly->variables : IDS_MAX_DEGREE;
@@ -317,8 +318,34 @@ ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear)
     }
     linear->variables = used;
     IDSI_TRY(idsi_poly_normalize(linear));
-    IDSI_TRY(idsi_poly_primitive(linear));
 done:
-    idsi_free(poly->ctx, d);
+    idsi_free(linear->ctx, d);
+    return st;
+}
+
+ids_status idsi_poly_linearize(const idsi_poly *poly, idsi_poly *linear)
+{
+    ids_status st = linearize(poly, linear);
+
+    return st == IDS_OK ? idsi_poly_primitive(linear) : st;
+}
+
+ids_status idsi_poly_linear_mod(ids_ctx *ctx, const idsi_poly *poly, uint32_t p, int *order)
+{
+    ids_status st = IDS_OK;
+    idsi_poly linear;
+
+    *order = 1;
+    idsi_poly_init(&linear, ctx, poly->sig);
+    IDSI_TRY(linearize(poly, &linear));
+    for (size_t t = 0; *order >= 0 && t < linear.count; t++) {
+        if (mpz_divisible_ui_p(mpq_denref(linear.coefficients[t]), p)) {
+            *order = -1;
+        } else if (!mpz_divisible_ui_p(mpq_numref(linear.coefficients[t]), p)) {
+            *order = 0;
+        }
+    }
+done:
+    idsi_poly_clear(&linear);
     return st;
 }
