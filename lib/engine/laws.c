@@ -13,30 +13,76 @@
 
 #include "engine_private.h"
 
-/* Number of a node equal to *node, adding it when there is none. */
-static ids_status intern_node(ids_ctx *ctx, idsi_law *law, size_t *capacity,
-                              const idsi_law_node *node, uint32_t *number)
-{
-    ids_status st = IDS_OK;
+/* A law at work, with a table of its nodes: slots of number + 1, or 0; at most half are taken. */
+typedef struct compiler {
+    ids_ctx *ctx;
+    idsi_law *law;
+    size_t capacity;
+    uint32_t *slots;
+    size_t slot_count; /* 0 or a power of 2 */
+} compiler;
 
-    for (size_t i = 0; i < law->node_count; i++) {
-        const idsi_law_node *known = &law->nodes[i];
-        if (known->op == node->op && known->variables == node->variables &&
-            memcmp(known->arg, node->arg, sizeof node->arg) == 0) {
-            *number = (uint32_t)i;
-            return IDS_OK;
+/* The slot of an equal node, or the empty one that it would have. */
+static uint32_t *find_slot(const compiler *c, const idsi_law_node *node)
+{
+    uint64_t hash = node->op;
+
+    for (uint32_t i = 0; i < node->arity; i++) {
+        hash = (hash ^ (uint32_t)node->arg[i]) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden */
+        hash ^= hash >> 32;
+    }
+    for (;; hash++) {
+        uint32_t *slot = &c->slots[hash & (c->slot_count - 1)];
+        if (*slot == 0) {
+            return slot;
+        }
+        const idsi_law_node *known = &c->law->nodes[*slot - 1];
+        if (known->op == node->op && memcmp(known->arg, node->arg, sizeof node->arg) == 0) {
+            return slot;
         }
     }
-    IDSI_TRY(idsi_grow(ctx, law->node_count, capacity, sizeof *law->nodes, &law->nodes));
-    law->nodes[law->node_count] = *node;
-    *number = (uint32_t)law->node_count;
-    law->node_count++;
+}
+
+static ids_status grow_slots(compiler *c)
+{
+    ids_status st = IDS_OK;
+    const size_t wanted = c->slot_count == 0 ? 64 : 2 * c->slot_count;
+
+    idsi_free(c->ctx, c->slots);
+    c->slots = NULL;
+    c->slot_count = 0;
+    IDSI_TRY(idsi_alloc_array(c->ctx, wanted, sizeof *c->slots, &c->slots));
+    c->slot_count = wanted;
+    for (size_t i = 0; i < c->law->node_count; i++) {
+        *find_slot(c, &c->law->nodes[i]) = (uint32_t)i + 1;
+    }
 done:
     return st;
 }
 
-static ids_status compile_tree(ids_ctx *ctx, idsi_law *law, size_t *capacity, const idsi_token **at,
-                               int32_t *arg, uint32_t *variables)
+/* Number of a node equal to *node, adding it when there is none. */
+static ids_status intern_node(compiler *c, const idsi_law_node *node, uint32_t *number)
+{
+    ids_status st = IDS_OK;
+    idsi_law *law = c->law;
+
+    if (2 * (law->node_count + 1) > c->slot_count) {
+        IDSI_TRY(grow_slots(c));
+    }
+    uint32_t *slot = find_slot(c, node);
+    if (*slot == 0) {
+        IDSI_TRY(idsi_grow(c->ctx, law->node_count, &c->capacity, sizeof *law->nodes, &law->nodes));
+        law->nodes[law->node_count] = *node;
+        law->node_count++;
+        *slot = (uint32_t)law->node_count;
+    }
+    *number = *slot - 1;
+done:
+    return st;
+}
+
+static ids_status compile_tree(compiler *c, const idsi_token **at, int32_t *arg,
+                               uint32_t *variables)
 {
     ids_status st = IDS_OK;
     idsi_law_node node = {0};
@@ -49,11 +95,11 @@ static ids_status compile_tree(ids_ctx *ctx, idsi_law *law, size_t *capacity, co
         return IDS_OK;
     }
     node.op = idsi_node_op(token);
-    node.arity = law->poly->sig->ops[node.op].arity;
+    node.arity = c->law->poly->sig->ops[node.op].arity;
     for (uint32_t i = 0; i < node.arity; i++) {
-        IDSI_TRY(compile_tree(ctx, law, capacity, at, &node.arg[i], &node.variables));
+        IDSI_TRY(compile_tree(c, at, &node.arg[i], &node.variables));
     }
-    IDSI_TRY(intern_node(ctx, law, capacity, &node, &number));
+    IDSI_TRY(intern_node(c, &node, &number));
     *arg = -1 - (int32_t)number;
     *variables |= node.variables;
 done:
@@ -61,14 +107,15 @@ done:
 }
 
 /* Whether exchanging variables i and j (labels) multiplies the polynomial by +1 or -1. */
-static ids_status exchange_keeps(const idsi_poly *poly, idsi_token i, idsi_token j, bool *keeps)
+static ids_status exchange_keeps(ids_ctx *ctx, const idsi_poly *poly, idsi_token i, idsi_token j,
+                                 bool *keeps)
 {
     ids_status st = IDS_OK;
     idsi_poly image;
     mpq_t negative;
 
     mpq_init(negative);
-    idsi_poly_init(&image, poly->ctx, poly->sig);
+    idsi_poly_init(&image, ctx, poly->sig);
     image.variables = poly->variables;
     for (size_t t = 0; t < poly->count; t++) {
         size_t length = poly->start[t + 1] - poly->start[t];
@@ -94,7 +141,7 @@ done:
     return st;
 }
 
-static ids_status find_classes(idsi_law *law)
+static ids_status find_classes(ids_ctx *ctx, idsi_law *law)
 {
     ids_status st = IDS_OK;
 
@@ -105,7 +152,7 @@ static ids_status find_classes(idsi_law *law)
             if (law->class_of[i] != i) {
                 continue;
             }
-            IDSI_TRY(exchange_keeps(law->poly, i + 1, j + 1, &keeps));
+            IDSI_TRY(exchange_keeps(ctx, law->poly, i + 1, j + 1, &keeps));
             if (keeps) {
                 law->class_of[j] = (uint8_t)i;
                 break;
@@ -129,7 +176,7 @@ static double norm_bits(const idsi_poly *poly)
 ids_status idsi_law_compile(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law)
 {
     ids_status st = IDS_OK;
-    size_t capacity = 0;
+    compiler c = {.ctx = ctx, .law = law};
 
     law->poly = poly;
     law->degree = poly->degree;
@@ -139,11 +186,15 @@ ids_status idsi_law_compile(ids_ctx *ctx, const idsi_poly *poly, idsi_law *law)
         const idsi_token *at = poly->tokens + poly->start[t];
         int32_t arg = 0;
         uint32_t variables = 0;
-        IDSI_TRY(compile_tree(ctx, law, &capacity, &at, &arg, &variables));
+        IDSI_TRY(compile_tree(&c, &at, &arg, &variables));
         law->root[t] = arg < 0 ? (uint32_t)(-1 - arg) : 0;
+        if ((t & 0xfffu) == 0xfffu) {
+            IDSI_TRY(idsi_poll(ctx, NULL));
+        }
     }
-    IDSI_TRY(find_classes(law));
+    IDSI_TRY(find_classes(ctx, law));
 done:
+    idsi_free(ctx, c.slots);
     return st;
 }
 
