@@ -186,18 +186,24 @@ static uint64_t monotonic_ns(void)
     return (uint64_t)now.tv_sec * UINT64_C(1000000000) + (uint64_t)now.tv_nsec;
 }
 
-/* Calls the hook when it is due; true when the hook wants to cancel. */
+/*
+ * Calls the hook when it is due; true when the hook wants to cancel. Work that does not count
+ * itself (NULL) waits twice as long, so that it does not take the turn of work that does.
+ */
 static bool hook_cancels(ids_ctx *ctx, const ids_progress *progress)
 {
+    static const ids_progress uncounted = {.stage = ""};
     uint64_t now = monotonic_ns();
+    uint64_t late = progress == NULL ? HOOK_INTERVAL_NS : 0;
     bool cancels = false;
 
-    if (now < atomic_load_explicit(&ctx->hook_due, memory_order_relaxed) ||
+    if (now < atomic_load_explicit(&ctx->hook_due, memory_order_relaxed) + late ||
         atomic_flag_test_and_set(&ctx->hook_is_busy)) {
         return false;
     }
+    progress = progress == NULL ? &uncounted : progress;
     /* Two threads can pass the test above one after the other. */
-    if (now >= atomic_load(&ctx->hook_due)) {
+    if (now >= atomic_load(&ctx->hook_due) + late) {
         cancels = ctx->progress(ctx->progress_user, progress) != 0;
         atomic_store(&ctx->hook_due, now + HOOK_INTERVAL_NS);
     }
@@ -215,7 +221,7 @@ ids_status idsi_poll(ids_ctx *ctx, const ids_progress *progress)
         atomic_exchange(&ctx->cancel, 0) != 0) {
         return idsi_fail(ctx, IDS_ERR_CANCELLED, "cancelled by the caller");
     }
-    if (progress != NULL && ctx->progress != NULL && hook_cancels(ctx, progress)) {
+    if (ctx->progress != NULL && hook_cancels(ctx, progress)) {
         return idsi_fail(ctx, IDS_ERR_CANCELLED, "cancelled by the progress hook");
     }
     return IDS_OK;

@@ -68,8 +68,8 @@ ids_status idsi_strdup(ids_ctx *ctx, const char *text, char **out);
 /* ---- progress and cancel ------------------------------------------------------------------ */
 
 /* Cheap enough for inner loops: tests the cancel flag, calls the hook at most ten times a second.
- * progress may be NULL (only the flag). IDS_ERR_CANCELLED or IDS_OK. The flag is then cleared, so
- * of several threads one is told: it must stop the others. */
+ * progress is NULL where work is not counted. IDS_ERR_CANCELLED or IDS_OK. The flag is then
+ * cleared, so of several threads one is told: it must stop the others. */
 ids_status idsi_poll(ids_ctx *ctx, const ids_progress *progress);
 uint32_t idsi_threads(const ids_ctx *ctx); /* >= 1 */
 

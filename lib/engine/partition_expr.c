@@ -149,7 +149,6 @@ static ids_status add_term(maker *m, uint32_t coefficient, uint32_t expr, const 
     uint8_t word[IDSI_SHAPE_MAX * IDSI_SHAPE_MAX];
     uint8_t start[IDSI_MAX_IDENTITY_DEGREE] = {0};
     uint32_t n = 0;
-    uint32_t p = m->engine->prime;
 
     for (uint32_t v = 0; v < m->count; v++) {
         start[v] = (uint8_t)n;
@@ -162,13 +161,8 @@ static ids_status add_term(maker *m, uint32_t coefficient, uint32_t expr, const 
         }
     }
     size_t length = idsi_seminormal_word(label, n, word);
-    for (size_t i = 0; i < equation->count; i++) {
-        idsi_term *term = &equation->terms[i];
-        if (term->expr == expr && term->word_length == length &&
-            memcmp(term->word, word, length) == 0) {
-            term->coefficient = (term->coefficient + coefficient) % p;
-            return IDS_OK;
-        }
+    if ((equation->count & 0xfffu) == 0xfffu) {
+        IDSI_TRY(idsi_poll(m->ctx, NULL));
     }
     IDSI_TRY(idsi_grow(m->ctx, equation->count, &m->term_capacity, sizeof *equation->terms,
                        &equation->terms));
@@ -195,6 +189,29 @@ static int compare_terms(const void *a, const void *b)
     return memcmp(x->word, y->word, x->word_length);
 }
 
+/* Sorts the terms of the equation at work and adds up those that are equal. */
+static void collect_terms(maker *m)
+{
+    idsi_equation *equation = &m->equation;
+    idsi_term *terms = equation->terms;
+    size_t kept = 0;
+
+    if (equation->count == 0) {
+        return;
+    }
+    qsort(terms, equation->count, sizeof *terms, compare_terms);
+    for (size_t i = 1; i < equation->count; i++) {
+        if (compare_terms(&terms[kept], &terms[i]) == 0) {
+            terms[kept].coefficient =
+                (terms[kept].coefficient + terms[i].coefficient) % m->engine->prime;
+            idsi_free(m->ctx, terms[i].word);
+        } else {
+            terms[++kept] = terms[i];
+        }
+    }
+    equation->count = kept + 1;
+}
+
 /* Stores the equation at work, unless nothing is left of it. */
 static ids_status store_equation(maker *m)
 {
@@ -203,6 +220,7 @@ static ids_status store_equation(maker *m)
     idsi_equation *equation = &m->equation;
     size_t kept = 0;
 
+    collect_terms(m);
     for (size_t i = 0; i < equation->count; i++) {
         if (equation->terms[i].coefficient != 0) {
             equation->terms[kept++] = equation->terms[i];
@@ -212,7 +230,6 @@ static ids_status store_equation(maker *m)
     }
     equation->count = kept;
     if (kept > 0) {
-        qsort(equation->terms, kept, sizeof *equation->terms, compare_terms);
         for (size_t i = 0; i < kept; i++) {
             const idsi_expr *expr = &m->engine->exprs[equation->terms[i].expr];
             uint32_t largest = 1;

@@ -108,6 +108,9 @@ static ids_status gather_terms(solver *v, idsi_covectors *covectors, const idsi_
     }
     for (size_t i = first; i < end; i++) {
         const uint32_t *moved = NULL;
+        if ((i & 0xffu) == 0xffu) {
+            IDSI_TRY(idsi_poll(v->engine->ctx, NULL));
+        }
         IDSI_TRY(idsi_covectors_get(covectors, &equation->terms[i], &moved));
         if (i == first) {
             memcpy(v->gathered, moved, entries * sizeof *moved);

@@ -225,14 +225,35 @@ START_TEST(test_hook_is_told)
     ids_ctx *ctx = ctx_with_hook(&log);
     ids_progress progress = {"rank", 7, 3, 10, 0.25};
 
-    TEST_OK(ctx, idsi_poll(ctx, NULL));
-    ck_assert_uint_eq(log.calls, 0);
     TEST_OK(ctx, idsi_poll(ctx, &progress));
+    ck_assert_uint_eq(log.calls, 1);
+    TEST_OK(ctx, idsi_poll(ctx, NULL));
     ck_assert_uint_eq(log.calls, 1);
     ck_assert_str_eq(log.last.stage, "rank");
     ck_assert_uint_eq(log.last.degree, 7);
     ck_assert_uint_eq(log.last.done, 3);
     ck_assert_uint_eq(log.last.total, 10);
+    test_ctx_free(ctx);
+}
+END_TEST
+
+/* Work that does not count itself calls the hook too, which may cancel it. */
+START_TEST(test_hook_without_progress)
+{
+    hook_log log = {0};
+    ids_ctx *ctx = ctx_with_hook(&log);
+    uint64_t begin = milliseconds();
+
+    TEST_OK(ctx, idsi_poll(ctx, NULL));
+    ck_assert_uint_eq(log.calls, 1);
+    ck_assert_str_eq(log.last.stage, "");
+    ck_assert_uint_eq(log.last.total, 0);
+    log.answer = 1;
+    while (log.calls < 2 && milliseconds() - begin < 3000) {
+        ids_status st = idsi_poll(ctx, NULL);
+        ck_assert_int_eq(st, log.calls < 2 ? IDS_OK : IDS_ERR_CANCELLED);
+    }
+    ck_assert_uint_eq(log.calls, 2);
     test_ctx_free(ctx);
 }
 END_TEST
@@ -303,6 +324,7 @@ int main(void)
     tcase_add_test(tcase, test_cancel);
     tcase_add_test(tcase, test_cancel_is_told_once);
     tcase_add_test(tcase, test_hook_is_told);
+    tcase_add_test(tcase, test_hook_without_progress);
     tcase_add_test(tcase, test_hook_rate);
     tcase_add_test(tcase, test_hook_cancels);
     tcase_add_test(tcase, test_own_allocator);

@@ -95,7 +95,7 @@ int progress_hook(void *user, const ids_progress *progress)
     if (diverted.fn != NULL) {
         return diverted.fn(diverted.user, progress);
     }
-    if (!line.on) {
+    if (!line.on || progress->stage[0] == '\0') {
         return 0;
     }
     if (progress->degree != line.degree) {

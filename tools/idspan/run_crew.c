@@ -324,6 +324,10 @@ static int do_cells(crew *w, size_t slots, cell_mark wanted)
 static int note_growth(void *user, const ids_progress *progress)
 {
     const crew_orders *o = user;
+
+    if (progress->stage[0] == '\0') {
+        return 0;
+    }
     double part = progress->total > 0 ? (double)progress->done / (double)progress->total : 0;
 
     atomic_store(&o->b->growing, progress->degree);
