@@ -81,7 +81,8 @@ IDS_API IDS_MUST_USE ids_status ids_types_draw(ids_ctx *ctx, const ids_types *ty
  * @param sink_user  passed to `sink`; borrowed.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, first out of range, unknown options
- *         IDS_ERR_LIMIT      more than IDS_MAX_PICTURES trees; byte budget
+ *         IDS_ERR_LIMIT      more than IDS_MAX_PICTURES trees; a basis of more than 2^64-1
+ *                            monomials; byte budget
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_IO         the sink refused
  *         IDS_ERR_CANCELLED  cancelled

@@ -255,13 +255,18 @@ ids_status ids_basis_draw(ids_ctx *ctx, const ids_basis *basis, uint64_t first, 
 {
     ids_status st = IDS_OK;
     ids_mono *mono = NULL;
+    uint64_t begin = 0;
     idsi_sheet sheet = {
         .ctx = ctx, .basis = basis, .first = first, .sink = sink, .sink_user = sink_user};
 
     if (ctx == NULL || basis == NULL || sink == NULL) {
         return idsi_fail_arg(ctx, "context, basis or sink");
     }
-    sheet.all = ids_basis_size(basis);
+    if (ids_basis_part(basis, 0, 1, &begin, &sheet.all) == IDS_ERR_LIMIT) {
+        return idsi_fail(ctx, IDS_ERR_LIMIT,
+                         "the monomials of this degree are too many for indices of 64 bits; their "
+                         "association types can be drawn");
+    }
     if (sheet.all > 0) {
         IDSI_TRY(ids_basis_unrank(ctx, basis, 0, &mono));
         sheet.sig = mono->sig;

@@ -9,6 +9,7 @@
 #include <string.h>
 
 #include <idspan/draw.h>
+#include <idspan/gmp.h>
 #include <idspan/idspan.h>
 
 #include "render/draw_private.h"
@@ -361,6 +362,26 @@ START_TEST(nothing_to_draw)
 }
 END_TEST
 
+/* A basis whose indices pass 64 bits is not an empty one. */
+START_TEST(too_many_to_number)
+{
+    ids_basis *basis = NULL;
+    drawing d = open_drawing("operation t(a,b,c,d,e,f,g,h) commutative\n", 1);
+
+    ids_basis_free(d.basis);
+    ids_types_free(d.types);
+    d.basis = NULL;
+    TEST_OK(d.ctx, ids_types_create(d.ctx, ids_presentation_signature(d.pres), 57, &d.types));
+    TEST_OK(d.ctx, ids_basis_create_exact(d.ctx, d.types, 57, &basis));
+    ck_assert_uint_eq(ids_basis_size(basis), 0);
+    TEST_STATUS(d.ctx, ids_basis_draw(d.ctx, basis, 0, 1, NULL, keep, &d), IDS_ERR_LIMIT);
+    TEST_STATUS(d.ctx, ids_basis_draw(d.ctx, basis, 1, 1, NULL, keep, &d), IDS_ERR_LIMIT);
+    ck_assert_uint_eq(d.length, 0);
+    ids_basis_free(basis);
+    close_drawing(&d);
+}
+END_TEST
+
 static Suite *suite(void)
 {
     const int count = (int)(sizeof families / sizeof families[0]);
@@ -379,6 +400,7 @@ static Suite *suite(void)
     tcase_add_loop_test(tcase, streaming, 0, 4);
     tcase_add_test(tcase, arguments);
     tcase_add_loop_test(tcase, nothing_to_draw, 0, 4);
+    tcase_add_test(tcase, too_many_to_number);
     suite_add_tcase(s, tcase);
     return s;
 }
