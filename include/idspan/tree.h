@@ -29,11 +29,17 @@ extern "C" {
 /** Largest degree of association types, monomials and ranks (counting goes further). */
 #define IDS_MAX_DEGREE 64u
 
-/** How an operation is written. */
+/**
+ * How an operation is written, by the rules of presentations.
+ *
+ * A name is a letter, then letters, digits, primes and the like, at most 63 bytes of UTF-8, and not
+ * one of the words operation, define, identity, candidate, model, commutative, alternating, none.
+ */
 typedef enum ids_notation {
-    IDS_NOTATION_INFIX = 0, /**< a*b; arity 2; `open` is the symbol */
+    IDS_NOTATION_INFIX = 0, /**< a*b; arity 2; `open` is a name or a symbol: marks of any kind but
+                                 ( ) [ ] { } < > , : + - = # ", at most 63 bytes of UTF-8 */
     IDS_NOTATION_FENCE = 1, /**< (a,b,c): `open` and `close` are one of ( ) [ ] { } < > */
-    IDS_NOTATION_PREFIX = 2 /**< t(a,b,c,d): `open` is the name */
+    IDS_NOTATION_PREFIX = 2 /**< t(a,b,c,d): `open` is a name */
 } ids_notation;
 
 /** Symmetry of an operation. */
@@ -76,8 +82,8 @@ typedef struct ids_signature ids_signature;
  * @param signature   out, owned: ids_signature_free() after all objects that keep it; written only
  *                    on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG     NULL, bad arity, name or permutation, two operations written the same
- *                         way
+ *         IDS_ERR_ARG     NULL, bad notation (see ids_notation), arity, symmetry or permutation,
+ *                         two operations written the same way
  *         IDS_ERR_DOMAIN  the signs force an operation to be zero
  *         IDS_ERR_NOMEM   the allocator refused
  *         IDS_ERR_LIMIT   byte budget

@@ -21,18 +21,9 @@ typedef struct grouping {
     size_t open[IDSI_MAX_NESTING]; /* the fences that are open */
 } grouping;
 
-static const char *closing_of(const idsi_reader *reader, size_t open)
+static char closing_of(const idsi_reader *reader, size_t open)
 {
-    switch (reader->text[reader->lexemes[open].offset]) {
-    case '(':
-        return ")";
-    case '[':
-        return "]";
-    case '{':
-        return "}";
-    default:
-        return ">";
-    }
+    return idsi_fence_close(reader->text[reader->lexemes[open].offset]);
 }
 
 static ids_status fail_open(const grouping *g)
@@ -40,7 +31,7 @@ static ids_status fail_open(const grouping *g)
     const size_t open = g->open[g->depth - 1];
     const idsi_shown shown = idsi_reader_show(g->reader, open);
     return idsi_reader_fail(g->reader, IDS_ERR_PARSE, open,
-                            "the fence %s is never closed; expected '%s'", shown.text,
+                            "the fence %s is never closed; expected '%c'", shown.text,
                             closing_of(g->reader, open));
 }
 
@@ -52,11 +43,11 @@ static ids_status close_fence(grouping *g, size_t lexeme)
                                 "%s closes nothing; no fence is open here", found.text);
     }
     const size_t open = g->open[g->depth - 1];
-    if (!idsi_lexeme_is(g->reader, lexeme, closing_of(g->reader, open))) {
+    if (g->reader->text[g->reader->lexemes[lexeme].offset] != closing_of(g->reader, open)) {
         const idsi_lexeme *at = &g->reader->lexemes[open];
         const idsi_shown shown = idsi_reader_show(g->reader, open);
         return idsi_reader_fail(g->reader, IDS_ERR_PARSE, lexeme,
-                                "expected '%s' to close the %s of line %u, column %u, found %s",
+                                "expected '%c' to close the %s of line %u, column %u, found %s",
                                 closing_of(g->reader, open), shown.text, at->line, at->column,
                                 found.text);
     }

@@ -10,30 +10,12 @@
 
 /* Deepest nesting of fences: far more than a degree of 16 needs, far less than any stack has. */
 #define IDSI_MAX_NESTING 250u
-/* Longest number, in decimal digits, and longest name or symbol, in bytes. */
+/* Longest number, in decimal digits. */
 #define IDSI_MAX_DIGITS 10000u
-#define IDSI_MAX_NAME 63u
 /* Most arguments of a definition, and most different variables of a statement. */
 #define IDSI_MAX_VARIABLES IDSI_MAX_IDENTITY_DEGREE
 /* Most tokens of a tree of an identity: 2 * degree - 1. */
 #define IDSI_IDENTITY_TOKENS (2u * IDSI_MAX_IDENTITY_DEGREE - 1u)
-
-/* ---- characters (chars.c) -------------------------------------------------------------------- */
-
-typedef enum idsi_char_class {
-    IDSI_CHAR_BLANK,    /* space, tab */
-    IDSI_CHAR_LINE_END, /* line feed, or carriage return (before a line feed) */
-    IDSI_CHAR_ODD,      /* control, invisible and unusual blank characters */
-    IDSI_CHAR_LETTER,
-    IDSI_CHAR_DIGIT,    /* 0 .. 9 */
-    IDSI_CHAR_CONTINUE, /* goes on in a name but cannot begin one: ' and subscripts */
-    IDSI_CHAR_MARK,     /* a character that is a lexeme by itself: fences , : + - = # " */
-    IDSI_CHAR_SYMBOL    /* any other printable character */
-} idsi_char_class;
-
-/* Decodes the character at text[0 .. length); its bytes (1 .. 4), or 0 when it is not UTF-8. */
-size_t idsi_utf8_decode(const char *text, size_t length, uint32_t *code);
-idsi_char_class idsi_char_classify(uint32_t code);
 
 /* ---- lexemes (lexer.c) ----------------------------------------------------------------------- */
 
@@ -181,7 +163,6 @@ ids_status idsi_lexeme_copy(idsi_reader *reader, size_t lexeme, char **out);
 /* Whether a NAME is kept for the grammar: a statement word or a symmetry word. */
 bool idsi_lexeme_is_reserved(const idsi_reader *reader, size_t lexeme);
 bool idsi_lexeme_is_statement(const idsi_reader *reader, size_t lexeme);
-extern const char *const idsi_statement_words[5];
 /* Index of the operation with this notation and opening text, SIZE_MAX when there is none; arity 0:
  * the first of any arity. */
 size_t idsi_reader_operation(const idsi_reader *reader, ids_notation notation, size_t lexeme,

@@ -91,8 +91,8 @@ static ids_status read_infix(idsi_reader *reader, idsi_pattern *p)
                               shown.text);
         goto done;
     }
-    if ((symbol->kind != IDSI_LEX_SYMBOL && symbol->kind != IDSI_LEX_NAME) ||
-        idsi_lexeme_is_reserved(reader, reader->at)) {
+    if (symbol->kind == IDSI_LEX_END ||
+        !idsi_word_is_infix(reader->text + symbol->offset, symbol->length)) {
         st = expected(reader, "the symbol of an infix operation");
         goto done;
     }

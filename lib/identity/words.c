@@ -7,9 +7,6 @@
 
 #include "notation_private.h"
 
-const char *const idsi_statement_words[5] = {"operation", "define", "identity", "candidate",
-                                             "model"};
-
 bool idsi_lexeme_is(const idsi_reader *reader, size_t lexeme, const char *word)
 {
     const idsi_lexeme *at = &reader->lexemes[lexeme];
@@ -40,7 +37,7 @@ ids_status idsi_lexeme_copy(idsi_reader *reader, size_t lexeme, char **out)
 
 bool idsi_lexeme_is_statement(const idsi_reader *reader, size_t lexeme)
 {
-    for (size_t i = 0; i < 5; i++) {
+    for (size_t i = 0; i < IDSI_STATEMENT_WORDS; i++) {
         if (idsi_lexeme_is(reader, lexeme, idsi_statement_words[i])) {
             return true;
         }
@@ -50,9 +47,8 @@ bool idsi_lexeme_is_statement(const idsi_reader *reader, size_t lexeme)
 
 bool idsi_lexeme_is_reserved(const idsi_reader *reader, size_t lexeme)
 {
-    return idsi_lexeme_is_statement(reader, lexeme) ||
-           idsi_lexeme_is(reader, lexeme, "commutative") ||
-           idsi_lexeme_is(reader, lexeme, "alternating") || idsi_lexeme_is(reader, lexeme, "none");
+    const idsi_lexeme *at = &reader->lexemes[lexeme];
+    return at->kind != IDSI_LEX_END && idsi_word_is_reserved(reader->text + at->offset, at->length);
 }
 
 size_t idsi_reader_operation(const idsi_reader *reader, ids_notation notation, size_t lexeme,

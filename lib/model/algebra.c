@@ -61,27 +61,7 @@ static bool names_operation(const ids_signature *sig, const char *name)
 
 static bool is_name(const char *name)
 {
-    static const char *const words[] = {"basis",       "operation",   "define",
-                                        "identity",    "candidate",   "model",
-                                        "commutative", "alternating", "none"};
-    const size_t length = strlen(name);
-    uint32_t code = 0;
-
-    for (size_t i = 0; i < sizeof words / sizeof *words; i++) {
-        if (strcmp(name, words[i]) == 0) {
-            return false;
-        }
-    }
-    for (size_t at = 0; at < length;) {
-        const size_t bytes = idsi_utf8_decode(name + at, length - at, &code);
-        const idsi_char_class class = bytes == 0 ? IDSI_CHAR_ODD : idsi_char_classify(code);
-        if (class != IDSI_CHAR_LETTER &&
-            (at == 0 || (class != IDSI_CHAR_DIGIT && class != IDSI_CHAR_CONTINUE))) {
-            return false;
-        }
-        at += bytes;
-    }
-    return length > 0 && length <= IDSI_MAX_NAME;
+    return strcmp(name, "basis") != 0 && idsi_word_is_name(name, strlen(name));
 }
 
 /* e1, e2, ... or another letter, or several, of which no name with a number is an operation. */

@@ -2,9 +2,9 @@
 /*
  * Signatures: copies of the declared operations with their closed symmetry groups.
  *
- * Invariants: no two operations are written the same way (same notation and symbol, and for
- * fences and names the same number of arguments); a group that is trivial or full is known by
- * its kind alone.
+ * Invariants: every operation can be written in a presentation (notation.c); no two are written
+ * the same way (same notation and symbol, and for fences and names the same number of arguments);
+ * a group that is trivial or full is known by its kind alone.
  */
 #include <string.h>
 
@@ -21,10 +21,35 @@ static bool written_alike(const idsi_op *op, const ids_operation *other)
            same_text(op->open, other->open) && same_text(op->close, other->close);
 }
 
+/* Whether a message can show a symbol. */
+static bool is_visible(const char *symbol)
+{
+    const size_t length = strlen(symbol);
+    uint32_t code = 0;
+    for (size_t at = 0; at < length;) {
+        const size_t bytes = idsi_utf8_decode(symbol + at, length - at, &code);
+        const idsi_char_class class = idsi_char_classify(code);
+        if (bytes == 0 || class == IDSI_CHAR_ODD || class == IDSI_CHAR_LINE_END) {
+            return false;
+        }
+        at += bytes;
+    }
+    return true;
+}
+
 static ids_status check_operation(ids_ctx *ctx, const ids_operation *operation)
 {
     if (operation->open == NULL || operation->open[0] == '\0') {
         return idsi_fail(ctx, IDS_ERR_ARG, "an operation has no symbol");
+    }
+    const char *fault =
+        idsi_notation_fault(operation->notation, operation->open, operation->close);
+    if (fault != NULL) {
+        const bool visible = is_visible(operation->open);
+        return idsi_fail(ctx, IDS_ERR_ARG, "an operation cannot be written with %s%.70s%s: %s",
+                         visible ? "\"" : "",
+                         visible ? operation->open : "what is no visible UTF-8",
+                         visible ? "\"" : "", fault);
     }
     if (operation->arity < IDS_MIN_ARITY || operation->arity > IDS_MAX_ARITY) {
         return idsi_fail(ctx, IDS_ERR_ARG, "operation %s has %u arguments; %u to %u are possible",
@@ -33,10 +58,6 @@ static ids_status check_operation(ids_ctx *ctx, const ids_operation *operation)
     if (operation->notation == IDS_NOTATION_INFIX && operation->arity != 2) {
         return idsi_fail(ctx, IDS_ERR_ARG, "infix operation %s must have two arguments",
                          operation->open);
-    }
-    if ((operation->notation == IDS_NOTATION_FENCE) != (operation->close != NULL)) {
-        return idsi_fail(ctx, IDS_ERR_ARG,
-                         "a closing symbol belongs to fences and to nothing else");
     }
     if (operation->symmetry == IDS_SYMMETRY_GENERATED && operation->generator_count > 0 &&
         operation->generators == NULL) {

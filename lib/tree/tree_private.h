@@ -40,6 +40,41 @@ static inline uint64_t idsi_labels_all(uint32_t degree)
     return degree == 0 ? 0 : UINT64_MAX >> (64 - degree);
 }
 
+/* ---- characters (chars.c) -------------------------------------------------------------------- */
+
+typedef enum idsi_char_class {
+    IDSI_CHAR_BLANK,    /* space, tab */
+    IDSI_CHAR_LINE_END, /* line feed, or carriage return (before a line feed) */
+    IDSI_CHAR_ODD,      /* control, invisible and unusual blank characters */
+    IDSI_CHAR_LETTER,
+    IDSI_CHAR_DIGIT,    /* 0 .. 9 */
+    IDSI_CHAR_CONTINUE, /* goes on in a name but cannot begin one: ' and subscripts */
+    IDSI_CHAR_MARK,     /* a character that is a lexeme by itself: fences , : + - = # " */
+    IDSI_CHAR_SYMBOL    /* any other printable character */
+} idsi_char_class;
+
+/* Decodes the character at text[0 .. length); its bytes (1 .. 4), or 0 when it is not UTF-8. */
+size_t idsi_utf8_decode(const char *text, size_t length, uint32_t *code);
+idsi_char_class idsi_char_classify(uint32_t code);
+
+/* ---- the notation of operations (notation.c) --------------------------------------------------- */
+
+/* Longest name or symbol, in bytes. */
+#define IDSI_MAX_NAME 63u
+
+/* The words that begin a statement of a presentation. */
+#define IDSI_STATEMENT_WORDS 5u
+extern const char *const idsi_statement_words[IDSI_STATEMENT_WORDS];
+
+/* What text[0 .. length) is as a whole, for readers of presentations and for signatures. */
+bool idsi_word_is_reserved(const char *text, size_t length); /* has a meaning in presentations */
+bool idsi_word_is_name(const char *text, size_t length);     /* letters, digits; not reserved */
+bool idsi_word_is_infix(const char *text, size_t length);    /* a name, or symbol characters */
+/* The fence that closes `open`; '\0' when that opens nothing. */
+char idsi_fence_close(char open);
+/* NULL when an operation can be written so; else what is expected instead. */
+const char *idsi_notation_fault(ids_notation notation, const char *open, const char *close);
+
 /* ---- groups of signed argument orders ------------------------------------------------------- */
 
 /* order of arguments: result[i] = argument[image[i]] */

@@ -7,7 +7,7 @@
  * Characters that a reader of the file could not see, or could mistake for another blank, are
  * refused.
  */
-#include "notation_private.h"
+#include "tree_private.h"
 
 typedef struct range {
     uint32_t first;
