@@ -71,7 +71,8 @@ typedef struct ids_rank_row {
  * @param options       borrowed; NULL for the defaults.
  * @param table         out, owned: ids_rank_table_free(). On IDS_ERR_LIMIT, IDS_ERR_UNABLE and
  *                      IDS_ERR_CANCELLED it holds the degrees that were finished (maybe none) and
- *                      must be freed too.
+ *                      must be freed too, or is NULL. Not written on other failures but
+ *                      IDS_ERR_NOMEM.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a `field` that is no
  *                            prime below 2^30, or together with `exact` or `primes` > 1
@@ -209,7 +210,8 @@ typedef struct ids_partition_row {
  * @param options       borrowed; NULL for the defaults.
  * @param table         out, owned: ids_partition_table_free(). On IDS_ERR_LIMIT and
  *                      IDS_ERR_CANCELLED it holds the degrees that were finished with the first
- *                      prime (maybe none) and must be freed too.
+ *                      prime (maybe none) and must be freed too, or is NULL. Not written on other
+ *                      failures but IDS_ERR_NOMEM.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a partition that is
  *                            not well formed or of another degree, a cross-check of one

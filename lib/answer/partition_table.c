@@ -314,7 +314,6 @@ ids_status ids_partition_table_create(ids_ctx *ctx, const ids_presentation *pres
     if (ctx == NULL || presentation == NULL || table == NULL) {
         return idsi_fail_arg(ctx, "context, presentation or result");
     }
-    *table = NULL;
     IDSI_TRY(check_arguments(ctx, from, to, options));
     if (options != NULL) {
         j.options = *options;
@@ -331,6 +330,9 @@ done:
         *table = j.table;
     } else {
         ids_partition_table_free(j.table);
+        if (st == IDS_ERR_NOMEM) {
+            *table = NULL;
+        }
     }
     return st;
 }

@@ -268,7 +268,6 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
     if (ctx == NULL || presentation == NULL || table == NULL) {
         return idsi_fail_arg(ctx, "context, presentation or result");
     }
-    *table = NULL;
     if (from == 0 || from > to || to > IDS_MAX_DEGREE) {
         return idsi_fail(ctx, IDS_ERR_ARG, "degrees %u to %u: possible are 1 to %u, upwards", from,
                          to, IDS_MAX_DEGREE);
@@ -303,6 +302,9 @@ done:
         *table = j.table;
     } else {
         ids_rank_table_free(j.table);
+        if (st == IDS_ERR_NOMEM) {
+            *table = NULL;
+        }
     }
     return st;
 }

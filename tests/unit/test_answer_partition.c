@@ -170,7 +170,8 @@ START_TEST(test_bad_arguments)
 {
     ids_ctx *ctx = test_ctx();
     ids_presentation *pres = read(ctx, jordan);
-    ids_partition_table *table = NULL;
+    ids_partition_table *table = table_of(ctx, jordan, 1, 3, NULL);
+    ids_partition_table *const before = table; /* it is still there after a refusal */
     ids_partition four = {.degree = 4, .length = 2, .part = {3, 1}};
     ids_partition broken = {.degree = 4, .length = 2, .part = {1, 3}};
     const struct {
@@ -194,12 +195,14 @@ START_TEST(test_bad_arguments)
                     ids_partition_table_create(ctx, pres, cases[i].from, cases[i].to,
                                                &cases[i].options, &table),
                     IDS_ERR_ARG);
-        ck_assert_ptr_null(table);
+        ck_assert_ptr_eq(table, before);
         ck_assert_str_ne(ids_ctx_message(ctx), "");
     }
     TEST_STATUS(ctx, ids_partition_table_create(ctx, NULL, 1, 2, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_partition_table_create(ctx, pres, 1, 2, NULL, NULL), IDS_ERR_ARG);
     ck_assert_int_eq(ids_partition_table_create(NULL, pres, 1, 2, NULL, &table), IDS_ERR_ARG);
+    ck_assert_ptr_eq(table, before);
+    ids_partition_table_free(table);
     ids_presentation_free(pres);
     test_ctx_free(ctx);
 }

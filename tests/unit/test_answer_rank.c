@@ -187,6 +187,28 @@ START_TEST(test_vanishing_laws)
 }
 END_TEST
 
+/* What was in the result before is still there after a refusal. */
+START_TEST(test_refused_result)
+{
+    ids_ctx *ctx = test_ctx();
+    ids_presentation *pres = read(ctx, jordan);
+    ids_rank_options options = {.struct_size = sizeof options, .field = 4};
+    ids_rank_table *table = table_of(ctx, jordan, 3, NULL);
+    ids_rank_table *const before = table;
+
+    TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 3, 2, NULL, &table), IDS_ERR_ARG);
+    ck_assert_ptr_eq(table, before);
+    TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
+    ck_assert_ptr_eq(table, before);
+    options = (ids_rank_options){0};
+    TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
+    ck_assert_ptr_eq(table, before);
+    ids_rank_table_free(table);
+    ids_presentation_free(pres);
+    test_ctx_free(ctx);
+}
+END_TEST
+
 START_TEST(test_bad_options)
 {
     static const uint32_t no_fields[] = {1, 4, 9, 1048575, 1u << 30, (1u << 30) + 3, UINT32_MAX};
@@ -439,6 +461,7 @@ int main(void)
     tcase_add_test(tcase, test_weakened);
     tcase_add_test(tcase, test_vanishing_laws);
     tcase_add_test(tcase, test_bad_options);
+    tcase_add_test(tcase, test_refused_result);
     tcase_add_test(tcase, test_primes);
     tcase_add_loop_test(tcase, test_mutations, 0, (int)(sizeof mutations / sizeof *mutations));
     tcase_add_test(tcase, test_cancel);
