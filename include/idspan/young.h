@@ -32,15 +32,16 @@ typedef struct ids_partition {
 } ids_partition;
 
 /**
- * Reads a partition written as 4+3+1: largest part first, no blanks.
+ * Reads a partition written as 4+3+1: largest part first, no blanks, no zeros in front; "0" is the
+ * partition of 0. So each partition has one text, that of ids_partition_print().
  *
  * @param ctx        borrowed.
  * @param text       borrowed.
  * @param partition  out, written only on IDS_OK.
  * @return IDS_OK
  *         IDS_ERR_ARG    NULL
- *         IDS_ERR_PARSE  not such a text, a part 0, a part larger than the one before it, degree
- *                        over IDS_MAX_PARTITION_DEGREE; the message says which,
+ *         IDS_ERR_PARSE  not such a text, a part 0 beside others, a part larger than the one
+ *                        before it, degree over IDS_MAX_PARTITION_DEGREE; the message says which,
  *                        ids_ctx_last_place() where
  * Cost: O(length of text), no allocation. Threads: one a ctx. Cancel: not polled. Border: none.
  * Since: 0.1

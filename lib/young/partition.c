@@ -174,8 +174,10 @@ static ids_status read_part(ids_ctx *ctx, const char *text, size_t *at, ids_part
         return fail_at(ctx, text, start,
                        "expected parts joined by +, largest first, such as 4+3+1");
     }
-    if (part == 0) {
-        return fail_at(ctx, text, start, "a part is at least 1");
+    if (text[start] == '0') {
+        return fail_at(ctx, text, start,
+                       *at == start + 1 ? "a part is at least 1"
+                                        : "a part is written without zeros in front");
     }
     if (part > MAX - partition->degree) {
         return fail_at(ctx, text, start, "the sum of the parts passes the largest degree, 40");
@@ -197,6 +199,10 @@ ids_status ids_partition_parse(ids_ctx *ctx, const char *text, ids_partition *pa
 
     if (text == NULL || partition == NULL) {
         return idsi_fail_arg(ctx, text == NULL ? "text" : "partition");
+    }
+    if (strcmp(text, "0") == 0) {
+        *partition = read; /* no parts at all */
+        return IDS_OK;
     }
     IDSI_TRY(read_part(ctx, text, &at, &read));
     while (text[at] == '+') {

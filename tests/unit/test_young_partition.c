@@ -142,6 +142,9 @@ START_TEST(test_long_text)
     ids_string_free(ctx, text);
     TEST_OK(ctx, ids_partition_print(ctx, &nothing, &text));
     ck_assert_str_eq(text, "0");
+    read = four_three_one;
+    TEST_OK(ctx, ids_partition_parse(ctx, text, &read));
+    ck_assert_mem_eq(&read, &nothing, sizeof read);
     ids_string_free(ctx, text);
     test_ctx_free(ctx);
 }
@@ -163,7 +166,10 @@ static const broken_text broken_texts[] = {
     {"4,3,1", 2, "expected parts"},
     {"4-3", 2, "expected parts"},
     {"-4", 1, "expected parts"},
-    {"0", 1, "a part is at least 1"},
+    {"0+1", 1, "a part is at least 1"},
+    {"00", 1, "without zeros in front"},
+    {"04", 1, "without zeros in front"},
+    {"4+03", 3, "without zeros in front"},
     {"4+0", 3, "a part is at least 1"},
     {"1+2", 3, "write the largest part first"},
     {"4+1+3", 5, "write the largest part first"},
