@@ -12,7 +12,10 @@
 extern "C" {
 #endif
 
-/** Output format. */
+/**
+ * Output format. All of them are UTF-8 without a byte order mark, whatever the cells hold: a byte
+ * that is not UTF-8 comes out as U+FFFD, the replacement character.
+ */
 typedef enum ids_format {
     IDS_FORMAT_TEXT = 0,  /**< aligned columns, for people; not a contract */
     IDS_FORMAT_CSV = 1,   /**< RFC 4180, header line, LF line ends */

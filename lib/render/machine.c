@@ -6,7 +6,8 @@
  * end, and when it is the only field of its row and empty, since that row would be an empty line.
  * JSON: RFC 8259, one object: {"task", "columns", "rows", "notes"}, rows as objects, one a line.
  * Numbers are bare, in as many digits as they have; a reader that keeps doubles rounds them, not
- * the file. A number cell without a number is null. Text that is not UTF-8 is repaired.
+ * the file. A number cell without a number is null.
+ * Both: text that is not UTF-8 is repaired.
  */
 #include <string.h>
 
@@ -14,21 +15,33 @@
 
 /* ---- CSV ----------------------------------------------------------------------------- */
 
+/* Most fields are copied as they are. */
+static bool is_ascii(const char *field)
+{
+    while (*field != '\0' && ((unsigned char)*field & 0x80u) == 0) {
+        field++;
+    }
+    return *field == '\0';
+}
+
 static ids_status append_field(idsi_text *line, const char *field, bool alone)
 {
     ids_status st = IDS_OK;
 
-    if (field[strcspn(field, ",\"\r\n")] == '\0' && !(alone && field[0] == '\0')) {
+    const bool quoted =
+        field[strcspn(field, ",\"\r\n")] != '\0' || (alone && field[0] == '\0');
+    if (!quoted && is_ascii(field)) {
         return idsi_text_puts(line, field);
     }
-    IDSI_TRY(idsi_text_puts(line, "\""));
-    for (; *field != '\0'; field++) {
-        if (*field == '"') {
+    IDSI_TRY(idsi_text_puts(line, quoted ? "\"" : ""));
+    while (*field != '\0') {
+        uint32_t character = idsi_utf8_next(&field);
+        if (character == '"') {
             IDSI_TRY(idsi_text_puts(line, "\""));
         }
-        IDSI_TRY(idsi_text_append(line, field, 1));
+        IDSI_TRY(idsi_utf8_append(line, character));
     }
-    IDSI_TRY(idsi_text_puts(line, "\""));
+    IDSI_TRY(idsi_text_puts(line, quoted ? "\"" : ""));
 done:
     return st;
 }

@@ -43,6 +43,18 @@ START_TEST(test_csv_one_empty_field)
 }
 END_TEST
 
+/* e acute kept; stray bytes become U+FFFD, in quotes and without. */
+START_TEST(test_csv_repairs)
+{
+    static const char *const cells[] = {"1", "caf\xc3\xa9", "\xff.", "2", "\xc3,\"", "\xc3\xa9,"};
+
+    expect_table(IDS_FORMAT_CSV, columns, 3, cells, 2, NULL,
+                 "degree,monomial,remark\n"
+                 "1,caf\xc3\xa9,\xef\xbf\xbd.\n"
+                 "2,\"\xef\xbf\xbd,\"\"\",\"\xc3\xa9,\"\n");
+}
+END_TEST
+
 START_TEST(test_csv_no_rows)
 {
     expect_table(IDS_FORMAT_CSV, columns, 3, NULL, 0, NULL, "degree,monomial,remark\n");
@@ -102,6 +114,7 @@ int main(void)
     tcase_add_test(tcase, test_csv_plain);
     tcase_add_test(tcase, test_csv_quotes);
     tcase_add_test(tcase, test_csv_one_empty_field);
+    tcase_add_test(tcase, test_csv_repairs);
     tcase_add_test(tcase, test_csv_no_rows);
     tcase_add_test(tcase, test_json_rows);
     tcase_add_test(tcase, test_json_strings);
