@@ -163,8 +163,7 @@ typedef struct ids_combination ids_combination;
  * @param combination  out, owned: ids_combination_free(); written only on IDS_OK.
  * @return IDS_OK
  *         IDS_ERR_ARG        NULL, degree over max_degree
- *         IDS_ERR_PARSE      as ids_presentation_read(); the place counts from the text, where the
- *                            first line begins with the word `candidate` and a blank
+ *         IDS_ERR_PARSE      as ids_presentation_read()
  *         IDS_ERR_DOMAIN     not multilinear; a coefficient has no residue modulo the prime
  *         IDS_ERR_LIMIT      byte budget, a limit of presentations
  *         IDS_ERR_NOMEM      the allocator refused

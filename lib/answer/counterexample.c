@@ -157,8 +157,10 @@ static ids_status read_options(ids_ctx *ctx, const ids_counterexample_options *o
     const ids_counterexample_options none = {.struct_size = sizeof none};
 
     options = options == NULL ? &none : options;
-    if (options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
+    ids_status st = idsi_check_struct(ctx, "ids_counterexample_options", options->struct_size,
+                                      sizeof *options);
+    if (st != IDS_OK) {
+        return st;
     }
     if (options->dimension > IDS_MAX_DIMENSION) {
         return idsi_fail(ctx, IDS_ERR_ARG, "an algebra has dimension at most %u, not %u",
@@ -179,11 +181,9 @@ ids_status ids_counterexample_find(ids_ctx *ctx, const ids_presentation *present
     ids_counterexample *made = NULL;
     idsi_hunt hunt = {.ctx = ctx, .pres = presentation};
 
-    hunt.claim = idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index);
-    if (ctx == NULL || counterexample == NULL || hunt.claim == NULL) {
-        return idsi_fail_arg(ctx, "context, presentation, candidate or result");
-    }
+    IDSI_TRY(idsi_candidate_check(ctx, presentation, index, counterexample));
     IDSI_TRY(read_options(ctx, options, &hunt));
+    hunt.claim = idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index);
     if (hunt.claim->linear.count == 0) {
         st = idsi_fail(ctx, IDS_ERR_DOMAIN, "there is no counterexample: the candidate is 0");
         goto done;

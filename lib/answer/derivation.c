@@ -388,13 +388,8 @@ ids_status ids_derivation_find(ids_ctx *ctx, const ids_presentation *presentatio
     ids_derivation *made = NULL;
     idsi_solver s = {.ctx = ctx};
 
-    if (ctx == NULL || derivation == NULL || presentation == NULL ||
-        idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index) == NULL) {
-        return idsi_fail_arg(ctx, "context, presentation, candidate or result");
-    }
-    if (options != NULL && options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
-    }
+    IDSI_TRY(idsi_candidate_check(ctx, presentation, index, derivation));
+    IDSI_TRY(idsi_follows_check(ctx, options));
     idsi_random_seed(&s.random, options == NULL ? 0 : options->seed);
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;

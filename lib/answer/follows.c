@@ -125,21 +125,32 @@ done:
     return st;
 }
 
+ids_status idsi_candidate_check(ids_ctx *ctx, const ids_presentation *pres, size_t index,
+                                const void *result)
+{
+    if (ctx == NULL || pres == NULL || result == NULL) {
+        return idsi_fail_arg(ctx, "context, presentation or result");
+    }
+    return idsi_check_index(ctx, "candidate", index,
+                            ids_presentation_count(pres, IDS_ROLE_CANDIDATE));
+}
+
+ids_status idsi_follows_check(ids_ctx *ctx, const ids_follows_options *options)
+{
+    return options == NULL ? IDS_OK
+                           : idsi_check_struct(ctx, "ids_follows_options", options->struct_size,
+                                               sizeof *options);
+}
+
 ids_status ids_follows_decide(ids_ctx *ctx, const ids_presentation *presentation, size_t index,
                               const ids_follows_options *options, ids_follows **follows)
 {
     ids_status st = IDS_OK;
     ids_follows *made = NULL;
-    const idsi_identity *candidate =
-        presentation == NULL ? NULL
-                             : idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index);
 
-    if (ctx == NULL || candidate == NULL || follows == NULL) {
-        return idsi_fail_arg(ctx, "context, presentation, candidate or result");
-    }
-    if (options != NULL && options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
-    }
+    IDSI_TRY(idsi_candidate_check(ctx, presentation, index, follows));
+    IDSI_TRY(idsi_follows_check(ctx, options));
+    const idsi_identity *candidate = idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index);
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     *made =
         (ids_follows){.ctx = ctx, .degree = candidate->degree, .certainty = IDS_CERTAINTY_EXACT};

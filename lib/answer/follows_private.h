@@ -12,6 +12,11 @@
 
 #include "../engine/engine_private.h"
 
+/* (follows.c) Checks the arguments that the calls have in common. Options may be NULL. */
+ids_status idsi_candidate_check(ids_ctx *ctx, const ids_presentation *pres, size_t index,
+                                const void *result);
+ids_status idsi_follows_check(ids_ctx *ctx, const ids_follows_options *options);
+
 /* ---- one component (component.c) --------------------------------------------------------------
  * A content says how often each label occurs, as a number in mixed radix; the hole of a context
  * is one more label, behind the variables.

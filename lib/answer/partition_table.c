@@ -277,6 +277,31 @@ done:
     return st;
 }
 
+static ids_status check_partition(ids_ctx *ctx, uint32_t from, uint32_t to,
+                                  const ids_partition_options *options)
+{
+    const ids_partition *partition = options->partition;
+
+    if (!idsi_partition_is_valid(partition)) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "the partition is malformed: %u parts of degree %u; its first `length` "
+                         "parts must fall from left to right and add up to `degree`, the others "
+                         "must be 0",
+                         (unsigned)partition->length, (unsigned)partition->degree);
+    }
+    if (partition->degree != from || from != to) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "the partition is one of %u, the degrees are %u to %u; one degree, its "
+                         "own, is possible",
+                         partition->degree, from, to);
+    }
+    if (options->cross_check) {
+        return idsi_fail(ctx, IDS_ERR_ARG,
+                         "a cross-check compares totals; one partition alone has none");
+    }
+    return IDS_OK;
+}
+
 static ids_status check_arguments(ids_ctx *ctx, uint32_t from, uint32_t to,
                                   const ids_partition_options *options)
 {
@@ -285,22 +310,13 @@ static ids_status check_arguments(ids_ctx *ctx, uint32_t from, uint32_t to,
                          "degrees %u to %u: by partition 1 to %u are possible, upwards", from, to,
                          IDSI_SHAPE_MAX);
     }
-    if (options != NULL && options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
+    if (options == NULL) {
+        return IDS_OK;
     }
-    if (options != NULL && options->partition != NULL &&
-        (!idsi_partition_is_valid(options->partition) || options->partition->degree != from ||
-         from != to)) {
-        return idsi_fail(ctx, IDS_ERR_ARG,
-                         "the partition is one of %u, the degrees are %u to %u; one degree, its "
-                         "own, is possible",
-                         options->partition->degree, from, to);
-    }
-    if (options != NULL && options->partition != NULL && options->cross_check) {
-        return idsi_fail(ctx, IDS_ERR_ARG,
-                         "a cross-check compares totals; one partition alone has none");
-    }
-    return IDS_OK;
+    ids_status st = idsi_check_struct(ctx, "ids_partition_options", options->struct_size,
+                                      sizeof *options);
+    return st != IDS_OK || options->partition == NULL ? st
+                                                      : check_partition(ctx, from, to, options);
 }
 
 ids_status ids_partition_table_create(ids_ctx *ctx, const ids_presentation *presentation,

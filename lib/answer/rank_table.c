@@ -273,9 +273,8 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
                          to, IDS_MAX_DEGREE);
     }
     if (options != NULL) {
-        if (options->struct_size != sizeof chosen) {
-            return idsi_fail_arg(ctx, "struct_size");
-        }
+        IDSI_TRY(
+            idsi_check_struct(ctx, "ids_rank_options", options->struct_size, sizeof *options));
         chosen = *options;
         IDSI_TRY(check_options(ctx, &chosen));
     }

@@ -287,13 +287,8 @@ ids_status ids_witness_find(ids_ctx *ctx, const ids_presentation *presentation, 
     ids_witness *made = NULL;
     choice f = {.s.ctx = ctx};
 
-    if (ctx == NULL || witness == NULL || presentation == NULL ||
-        idsi_presentation_get(presentation, IDS_ROLE_CANDIDATE, index) == NULL) {
-        return idsi_fail_arg(ctx, "context, presentation, candidate or result");
-    }
-    if (options != NULL && options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
-    }
+    IDSI_TRY(idsi_candidate_check(ctx, presentation, index, witness));
+    IDSI_TRY(idsi_follows_check(ctx, options));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     IDSI_TRY(idsi_component_create(ctx, presentation, index, &made->component));

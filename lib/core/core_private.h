@@ -45,6 +45,10 @@ ids_status idsi_fail_at(ids_ctx *ctx, ids_status status, ids_place place, const 
     IDSI_PRINTF(4, 5);
 /* IDS_ERR_ARG, "<what> is NULL or out of range". */
 ids_status idsi_fail_arg(ids_ctx *ctx, const char *what);
+/* (options.c) IDS_ERR_ARG unless the struct_size of the struct `name` is that of this version. */
+ids_status idsi_check_struct(ids_ctx *ctx, const char *name, size_t given, size_t size);
+/* (options.c) IDS_ERR_ARG unless index < count; `what` names one of those counted. */
+ids_status idsi_check_index(ids_ctx *ctx, const char *what, uint64_t index, uint64_t count);
 
 /* ---- memory --------------------------------------------------------------------------- */
 

@@ -46,9 +46,10 @@ ids_status ids_combination_coefficient(ids_ctx *ctx, const ids_combination *comb
     ids_status st = IDS_OK;
     void *block = NULL;
 
-    if (ctx == NULL || text == NULL || term >= ids_combination_count(combination)) {
-        return idsi_fail_arg(ctx, "context, combination, term or result");
+    if (ctx == NULL || text == NULL || combination == NULL) {
+        return idsi_fail_arg(ctx, "context, combination or result");
     }
+    IDSI_TRY(idsi_check_index(ctx, "term", term, combination->count));
     mpq_srcptr value = combination->coefficient[term];
     size_t size = mpz_sizeinbase(mpq_numref(value), 10) + mpz_sizeinbase(mpq_denref(value), 10) + 3;
     IDSI_TRY(idsi_alloc(ctx, size, &block));

@@ -4,7 +4,8 @@
  * or with the proved rational tables beside it.
  *
  * A polynomial that comes as text is read as the candidate of a presentation with the same
- * operations. They are written behind it, so that line numbers in messages are those of the text.
+ * operations. They are written behind it, and the word before it is hidden from messages, so that
+ * places in messages are those of the text.
  */
 #include <string.h>
 
@@ -27,9 +28,8 @@ static ids_status choose_options(ids_ctx *ctx, const ids_normal_options *options
 
     memset(chosen, 0, sizeof *chosen);
     if (options != NULL) {
-        if (options->struct_size != sizeof *chosen) {
-            return idsi_fail_arg(ctx, "struct_size");
-        }
+        IDSI_TRY(idsi_check_struct(ctx, "ids_normal_options", options->struct_size,
+                                   sizeof *options));
         *chosen = *options;
     }
     if (chosen->field != 0) {
@@ -206,12 +206,13 @@ done:
 static ids_status read_candidate(ids_ctx *ctx, const ids_signature *sig, const char *text,
                                  size_t length, const char *source, ids_presentation **pres)
 {
+    static const char before[] = "candidate ";
     ids_status st = IDS_OK;
     idsi_text whole;
     char *operation = NULL;
 
     idsi_text_init(&whole, ctx);
-    IDSI_TRY(idsi_text_puts(&whole, "candidate "));
+    IDSI_TRY(idsi_text_puts(&whole, before));
     IDSI_TRY(idsi_text_append(&whole, text, length));
     for (size_t i = 0; i < sig->count; i++) {
         IDSI_TRY(ids_signature_print_operation(ctx, sig, i, &operation));
@@ -220,7 +221,8 @@ static ids_status read_candidate(ids_ctx *ctx, const ids_signature *sig, const c
         operation = NULL;
     }
     IDSI_TRY(idsi_text_puts(&whole, "\n"));
-    IDSI_TRY(idsi_presentation_read(ctx, whole.data, whole.length, source, true, pres));
+    IDSI_TRY(idsi_presentation_read(ctx, whole.data, whole.length, source, true, sizeof before - 1,
+                                    pres));
     if ((*pres)->count != 1 || (*pres)->sig->count != sig->count) {
         st = idsi_fail(ctx, IDS_ERR_PARSE, "%s: expected one polynomial and nothing else", source);
     }
@@ -340,9 +342,16 @@ ids_status ids_normal_forms_product(ids_ctx *ctx, const ids_normal_forms *forms,
     uint64_t labels = 0;
     uint32_t degree = 0;
 
-    if (ctx == NULL || forms == NULL || factors == NULL || combination == NULL ||
-        operation >= forms->pres->sig->count || count != forms->pres->sig->ops[operation].arity) {
-        return idsi_fail_arg(ctx, "context, normal forms, operation, factors, count or result");
+    if (ctx == NULL || forms == NULL || factors == NULL || combination == NULL) {
+        return idsi_fail_arg(ctx, "context, normal forms, factors or result");
+    }
+    st = idsi_check_index(ctx, "operation", operation, forms->pres->sig->count);
+    if (st != IDS_OK) {
+        return st;
+    }
+    if (count != forms->pres->sig->ops[operation].arity) {
+        return idsi_fail(ctx, IDS_ERR_ARG, "%zu factors: operation %zu has %u arguments", count,
+                         operation, forms->pres->sig->ops[operation].arity);
     }
     mpq_init(one);
     mpq_set_ui(one, 1, 1);

@@ -41,7 +41,7 @@ static size_t excerpt_char(const char *text, size_t length, char *out, size_t *o
 
 static size_t line_begin(const idsi_reader *reader, size_t offset)
 {
-    while (offset > 0 && reader->text[offset - 1] != '\n') {
+    while (offset > reader->hidden && reader->text[offset - 1] != '\n') {
         offset--;
     }
     if (offset == 0 && reader->length >= 3 && memcmp(reader->text, "\xEF\xBB\xBF", 3) == 0) {
@@ -98,6 +98,10 @@ ids_status idsi_reader_fail_place(idsi_reader *reader, ids_status status, ids_pl
     const int n = vsnprintf(message, sizeof message, format, args);
     if (n < 0) {
         message[0] = '\0';
+    }
+    if (offset < reader->hidden) {
+        offset = reader->hidden;
+        place.column = 1;
     }
     make_excerpt(reader, offset, place.column, &lines);
     return idsi_fail_at(reader->ctx, status, place, "%.120s:%u:%u: %s\n%s\n%s", reader->source,

@@ -220,7 +220,9 @@ static ids_status scan_one(scanner *s, uint32_t code, size_t bytes)
 
 ids_status idsi_reader_lex(idsi_reader *reader)
 {
-    scanner s = {.reader = reader, .line = 1, .column = 1, .first = true};
+    /* Columns wrap around to 1 at the end of what is hidden. */
+    scanner s = {
+        .reader = reader, .line = 1, .column = 1u - (uint32_t)reader->hidden, .first = true};
     uint32_t code = 0;
     size_t bytes = 0;
     ids_status st = IDS_OK;

@@ -106,6 +106,7 @@ typedef struct idsi_reader {
     size_t length;
     const char *source;
     bool operations_follow; /* an operation may be used before its declaration */
+    size_t hidden;          /* bytes at the beginning that messages do not show nor count */
 
     idsi_lexeme *lexemes;
     size_t lexeme_count;

@@ -82,17 +82,18 @@ done:
 ids_status ids_presentation_read(ids_ctx *ctx, const char *text, size_t length, const char *source,
                                  ids_presentation **presentation)
 {
-    return idsi_presentation_read(ctx, text, length, source, false, presentation);
+    return idsi_presentation_read(ctx, text, length, source, false, 0, presentation);
 }
 
 ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
-                                  const char *source, bool operations_follow,
+                                  const char *source, bool operations_follow, size_t hidden,
                                   ids_presentation **presentation)
 {
     idsi_reader reader = {.ctx = ctx,
                           .text = text,
                           .length = length,
                           .operations_follow = operations_follow,
+                          .hidden = hidden,
                           .defining = SIZE_MAX};
     ids_status st = IDS_OK;
     if (ctx == NULL || text == NULL || presentation == NULL) {

@@ -102,10 +102,11 @@ ids_status ids_signature_print_operation(ids_ctx *ctx, const ids_signature *sign
 {
     idsi_text out;
     ids_status st = IDS_OK;
-    if (ctx == NULL || signature == NULL || text == NULL || index >= signature->count) {
-        return idsi_fail_arg(ctx, "context, signature, index or result");
+    if (ctx == NULL || signature == NULL || text == NULL) {
+        return idsi_fail_arg(ctx, "context, signature or result");
     }
     idsi_text_init(&out, ctx);
+    IDSI_TRY(idsi_check_index(ctx, "operation", index, signature->count));
     IDSI_TRY(print_operation(signature, (uint32_t)index, &out));
     IDSI_TRY(idsi_text_take(&out, text));
 done:
@@ -164,11 +165,13 @@ ids_status ids_presentation_print_identity(ids_ctx *ctx, const ids_presentation 
     const idsi_identity *identity = idsi_presentation_get(presentation, role, index);
     idsi_text out;
     ids_status st = IDS_OK;
-    if (ctx == NULL || text == NULL || identity == NULL ||
+    if (ctx == NULL || text == NULL || presentation == NULL ||
         (form != IDS_FORM_WRITTEN && form != IDS_FORM_LINEAR)) {
-        return idsi_fail_arg(ctx, "context, presentation, index, form or result");
+        return idsi_fail_arg(ctx, "context, presentation, form or result");
     }
     idsi_text_init(&out, ctx);
+    IDSI_TRY(idsi_check_index(ctx, role == IDS_ROLE_CANDIDATE ? "candidate" : "identity", index,
+                              ids_presentation_count(presentation, role)));
     if (form == IDS_FORM_WRITTEN) {
         IDSI_TRY(idsi_poly_print(&identity->written, (const char *const *)identity->letters, &out));
     } else {

@@ -145,6 +145,20 @@ static ids_status reduce(ids_ctx *ctx, const ids_constant *given, idsi_given *ou
     return IDS_OK;
 }
 
+/* IDS_ERR_DOMAIN, "<product> <what>" with the product as it is written. */
+static ids_status fail_product(const ids_algebra *made, const idsi_given *given, const char *what)
+{
+    ids_status st = IDS_OK;
+    idsi_text text;
+
+    idsi_text_init(&text, made->ctx);
+    IDSI_TRY(idsi_product_print(made, given->op, given->constant.argument, &text));
+    st = idsi_fail(made->ctx, IDS_ERR_DOMAIN, "%.200s %s", text.data, what);
+done:
+    idsi_text_clear(&text);
+    return st;
+}
+
 /* Brings a constant to canonical arguments. */
 static ids_status normalize(const ids_algebra *made, const ids_constant *given, idsi_given *out)
 {
@@ -167,10 +181,7 @@ static ids_status normalize(const ids_algebra *made, const ids_constant *given, 
     IDSI_TRY(reduce(ctx, given, out));
     const int sign = idsi_arguments_canonical(made->sig, out->op, argument, out->constant.argument);
     if (sign == 0 && out->constant.numerator != 0) {
-        return idsi_fail(ctx, IDS_ERR_DOMAIN,
-                         "a constant of operation %u is not 0 where the symmetry makes the "
-                         "product 0",
-                         out->op);
+        return fail_product(made, out, "is 0 by the symmetry; a constant of it is not");
     }
     if (sign < 0) {
         out->constant.numerator = -out->constant.numerator;
@@ -211,8 +222,7 @@ static ids_status join(const ids_algebra *made, idsi_given *list, size_t *count)
         }
         if (before->constant.numerator != list[i].constant.numerator ||
             before->constant.denominator != list[i].constant.denominator) {
-            return idsi_fail(made->ctx, IDS_ERR_DOMAIN,
-                             "two constants of operation %u contradict each other", list[i].op);
+            return fail_product(made, &list[i], "has two constants that contradict each other");
         }
     }
     *count = kept;

@@ -42,14 +42,10 @@ static ids_status fail_symmetry(ids_ctx *ctx, const ids_algebra *algebra, uint32
     ids_status st = IDS_OK;
     char *declared = NULL;
     idsi_text product;
-    idsi_token tree[IDS_MAX_ARITY + 1] = {idsi_node(op)};
 
     idsi_text_init(&product, ctx);
-    for (uint32_t i = 0; i < algebra->sig->ops[op].arity; i++) {
-        tree[i + 1] = bad->argument[i] + 1u;
-    }
     IDSI_TRY(ids_signature_print_operation(ctx, sig, asked, &declared));
-    IDSI_TRY(idsi_tree_print(algebra->sig, tree, (const char *const *)algebra->names, &product));
+    IDSI_TRY(idsi_product_print(algebra, op, bad->argument, &product));
     st = idsi_fail(ctx, IDS_ERR_DOMAIN,
                    "the presentation declares %.200s, but the algebra's product %.200s does not "
                    "have that symmetry",

@@ -29,8 +29,8 @@ done:
     return st;
 }
 
-static ids_status print_left(const ids_algebra *algebra, uint32_t op, const uint8_t *argument,
-                             idsi_text *text)
+ids_status idsi_product_print(const ids_algebra *algebra, uint32_t op, const uint8_t *argument,
+                              idsi_text *text)
 {
     idsi_token tree[IDS_MAX_ARITY + 1];
 
@@ -78,7 +78,7 @@ static ids_status print_table(const ids_algebra *algebra, uint32_t op, idsi_text
         if (memcmp(canonical, argument, sizeof canonical) != 0) {
             continue;
         }
-        IDSI_TRY(print_left(algebra, op, argument, text));
+        IDSI_TRY(idsi_product_print(algebra, op, argument, text));
         IDSI_TRY(idsi_text_puts(text, " = "));
         for (size_t k = i; k < end; k++) {
             IDSI_TRY(print_term(algebra, &table->list[k], k == i, text));

@@ -28,6 +28,10 @@ int idsi_arguments_canonical(const ids_signature *sig, uint32_t op, const uint8_
 ids_status idsi_orbit_add(ids_algebra *algebra, uint32_t op, const idsi_constant *constant,
                           size_t *capacity);
 
+/* (algebra_print.c) Appends a product of basis elements as it is written. */
+ids_status idsi_product_print(const ids_algebra *algebra, uint32_t op, const uint8_t *argument,
+                              idsi_text *text);
+
 /* ---- reading ------------------------------------------------------------------------------- */
 
 /* A line `product = sum`: its constants are list[begin .. end) of the draft. */

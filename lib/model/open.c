@@ -64,10 +64,10 @@ ids_status ids_model_open(ids_ctx *ctx, const ids_presentation *presentation, si
     ids_status st = IDS_OK;
     ids_model *made = NULL;
 
-    if (ctx == NULL || presentation == NULL || model == NULL ||
-        index >= presentation->model_count) {
-        return idsi_fail_arg(ctx, "context, presentation, model or result");
+    if (ctx == NULL || presentation == NULL || model == NULL) {
+        return idsi_fail_arg(ctx, "context, presentation or result");
     }
+    IDSI_TRY(idsi_check_index(ctx, "model", index, presentation->model_count));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     made->pres = presentation;

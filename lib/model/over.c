@@ -93,7 +93,7 @@ static ids_status read_value(const ids_model *model, const idsi_realization *mad
     idsi_text_init(&text, model->ctx);
     (void)snprintf(source, sizeof source, "model %s", model->decl->name);
     IDSI_TRY(compose(model, made, &text));
-    IDSI_TRY(idsi_presentation_read(model->ctx, text.data, text.length, source, true, &small));
+    IDSI_TRY(idsi_presentation_read(model->ctx, text.data, text.length, source, true, 0, &small));
     st = take_poly(model, made, &small->list[0], value);
 done:
     ids_presentation_free(small);

@@ -183,8 +183,12 @@ static ids_status draw(idsi_sheet *sheet, uint64_t count, const ids_draw_options
     ids_status st = IDS_OK;
     ids_picture picture = options == NULL ? IDS_PICTURE_TEXT : options->picture;
 
-    if (options != NULL && options->struct_size != sizeof *options) {
-        return idsi_fail(sheet->ctx, IDS_ERR_ARG, "struct_size of the options is not set");
+    if (options != NULL) {
+        st = idsi_check_struct(sheet->ctx, "ids_draw_options", options->struct_size,
+                               sizeof *options);
+        if (st != IDS_OK) {
+            return st;
+        }
     }
     if ((unsigned)picture > IDS_PICTURE_TIKZ) {
         return idsi_fail(sheet->ctx, IDS_ERR_ARG, "there is no kind of picture number %u",
@@ -241,9 +245,9 @@ ids_status ids_types_draw(ids_ctx *ctx, const ids_types *types, uint32_t degree,
     if (ctx == NULL || types == NULL || sink == NULL) {
         return idsi_fail_arg(ctx, "context, types or sink");
     }
-    if (degree == 0 || degree > types->max_degree) {
-        return idsi_fail(ctx, IDS_ERR_ARG, "the types go from degree 1 to %u, not to %u",
-                         types->max_degree, degree);
+    ids_status st = idsi_types_check_degree(ctx, types, degree);
+    if (st != IDS_OK) {
+        return st;
     }
     sheet.sig = types->sig;
     sheet.all = ids_types_count(types, degree);

@@ -90,8 +90,9 @@ static ids_status check_row(ids_ctx *ctx, const ids_report_row *row, uint64_t *i
 {
     const ids_partition_row *numbers = &row->numbers;
 
-    if (row->struct_size != sizeof *row) {
-        return idsi_fail(ctx, IDS_ERR_ARG, "struct_size of the row is not set");
+    ids_status st = idsi_check_struct(ctx, "ids_report_row", row->struct_size, sizeof *row);
+    if (st != IDS_OK) {
+        return st;
     }
     if ((unsigned)row->state > IDS_REPORT_FAILED) {
         return idsi_fail(ctx, IDS_ERR_ARG, "a row has no state number %u", (unsigned)row->state);

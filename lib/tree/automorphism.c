@@ -340,9 +340,10 @@ ids_status ids_automorphisms_create(ids_ctx *ctx, const ids_types *types, uint32
     ids_status st = IDS_OK;
     builder b = {.ctx = ctx, .types = types};
 
-    if (ctx == NULL || automorphisms == NULL || index >= ids_types_count(types, degree)) {
-        return idsi_fail_arg(ctx, "context, types, index or result");
+    if (ctx == NULL || automorphisms == NULL || types == NULL) {
+        return idsi_fail_arg(ctx, "context, types or result");
     }
+    IDSI_TRY(idsi_types_check_index(ctx, types, degree, index));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *b.group, &b.group));
     b.group->ctx = ctx;
     b.group->degree = degree;

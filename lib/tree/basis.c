@@ -38,10 +38,10 @@ ids_status idsi_basis_prepare(ids_ctx *ctx, const ids_types *types, uint32_t deg
     ids_status st = IDS_OK;
     ids_basis *made = NULL;
 
-    if (ctx == NULL || types == NULL || basis == NULL || degree == 0 ||
-        degree > types->max_degree) {
-        return idsi_fail_arg(ctx, "context, types, degree or result");
+    if (ctx == NULL || types == NULL || basis == NULL) {
+        return idsi_fail_arg(ctx, "context, types or result");
     }
+    IDSI_TRY(idsi_types_check_degree(ctx, types, degree));
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     made->types = types;

@@ -34,7 +34,7 @@ ids_status ids_counts_create(ids_ctx *ctx, const ids_signature *signature, uint3
     uint64_t need = 0;
 
     if (ctx == NULL || signature == NULL || counts == NULL) {
-        return idsi_fail_arg(ctx, "ctx, signature or counts is NULL");
+        return idsi_fail_arg(ctx, "context, signature or counts");
     }
     if (max_degree > IDS_MAX_COUNT_DEGREE) {
         return idsi_fail(ctx, IDS_ERR_ARG, "degree %u: counting goes up to degree %u", max_degree,

@@ -252,7 +252,7 @@ ids_status ids_count_split_create(ids_ctx *ctx, const ids_signature *signature, 
     ids_count_split *made = NULL;
 
     if (ctx == NULL || signature == NULL || split == NULL) {
-        return idsi_fail_arg(ctx, "ctx, signature or split is NULL");
+        return idsi_fail_arg(ctx, "context, signature or split");
     }
     if (degree == 0 || degree > IDS_MAX_COUNT_DEGREE) {
         return idsi_fail(ctx, IDS_ERR_ARG, "degree %u: counts can be split in degrees 1 to %u",

@@ -224,6 +224,11 @@ static inline uint64_t idsi_type_key(const ids_types *types, uint32_t type)
     return ((uint64_t)types->list[type].degree << 32) | (UINT32_MAX - type);
 }
 
+/* IDS_ERR_ARG unless there is such a degree, and such a type of it. */
+ids_status idsi_types_check_degree(ids_ctx *ctx, const ids_types *types, uint32_t degree);
+ids_status idsi_types_check_index(ids_ctx *ctx, const ids_types *types, uint32_t degree,
+                                  uint64_t index);
+
 /*
  * IDS_ERR_LIMIT when the types of degrees 1 .. max_degree are too many for the budget or for their
  * 32-bit numbers, or when that is known to the caller (`too_large`): the message has the numbers.

@@ -265,6 +265,25 @@ static void spell_type(const ids_types *types, uint32_t type, idsi_token **at)
     }
 }
 
+ids_status idsi_types_check_degree(ids_ctx *ctx, const ids_types *types, uint32_t degree)
+{
+    if (degree == 0 || degree > types->max_degree) {
+        return idsi_fail(ctx, IDS_ERR_ARG, "degree %u: the association types go from 1 to %u",
+                         degree, types->max_degree);
+    }
+    return IDS_OK;
+}
+
+ids_status idsi_types_check_index(ids_ctx *ctx, const ids_types *types, uint32_t degree,
+                                  uint64_t index)
+{
+    ids_status st = idsi_types_check_degree(ctx, types, degree);
+
+    return st != IDS_OK
+               ? st
+               : idsi_check_index(ctx, "association type", index, ids_types_count(types, degree));
+}
+
 ids_status ids_types_print(ids_ctx *ctx, const ids_types *types, uint32_t degree, uint64_t index,
                            char **text)
 {
@@ -273,10 +292,11 @@ ids_status ids_types_print(ids_ctx *ctx, const ids_types *types, uint32_t degree
     idsi_token tokens[IDSI_MAX_TOKENS];
     idsi_token *end = tokens;
 
-    if (ctx == NULL || text == NULL || index >= ids_types_count(types, degree)) {
-        return idsi_fail_arg(ctx, "context, types, index or result");
+    if (ctx == NULL || types == NULL || text == NULL) {
+        return idsi_fail_arg(ctx, "context, types or result");
     }
     idsi_text_init(&buffer, ctx);
+    IDSI_TRY(idsi_types_check_index(ctx, types, degree, index));
     spell_type(types, types->first[degree] + (uint32_t)index, &end);
     IDSI_TRY(idsi_tree_print(types->sig, tokens, NULL, &buffer));
     IDSI_TRY(idsi_text_take(&buffer, text));

@@ -216,8 +216,10 @@ START_TEST(test_limits)
     limits.dimension = 0;
     limits.struct_size--;
     TEST_STATUS(ctx, ids_counterexample_find(ctx, pres, 0, &limits, &found), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "sizeof(ids_counterexample_options)"));
     TEST_STATUS(ctx, ids_counterexample_find(ctx, pres, 1, NULL, &found), IDS_ERR_DOMAIN);
     TEST_STATUS(ctx, ids_counterexample_find(ctx, pres, 2, NULL, &found), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "candidate 2 does not exist: there are 2"));
     TEST_STATUS(ctx, ids_counterexample_find(ctx, NULL, 0, NULL, &found), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_counterexample_find(ctx, pres, 0, NULL, NULL), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_counterexample_write(ctx, NULL, receive, NULL), IDS_ERR_ARG);

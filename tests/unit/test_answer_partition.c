@@ -178,16 +178,18 @@ START_TEST(test_bad_arguments)
         uint32_t from;
         uint32_t to;
         ids_partition_options options;
+        const char *message; /* a part of it */
     } cases[] = {
-        {0, 3, {.struct_size = sizeof cases->options}},
-        {4, 3, {.struct_size = sizeof cases->options}},
-        {1, 17, {.struct_size = sizeof cases->options}},
-        {1, 3, {.struct_size = 8}},
-        {3, 4, {.struct_size = sizeof cases->options, .partition = &four}},
-        {5, 5, {.struct_size = sizeof cases->options, .partition = &four}},
-        {4, 4, {.struct_size = sizeof cases->options, .partition = &broken}},
+        {0, 3, {.struct_size = sizeof cases->options}, "degrees 0 to 3"},
+        {4, 3, {.struct_size = sizeof cases->options}, "degrees 4 to 3"},
+        {1, 17, {.struct_size = sizeof cases->options}, "1 to 16 are possible"},
+        {1, 3, {.struct_size = 8}, "must be sizeof(ids_partition_options)"},
+        {3, 4, {.struct_size = sizeof cases->options, .partition = &four}, "one of 4"},
+        {5, 5, {.struct_size = sizeof cases->options, .partition = &four}, "one of 4"},
+        {4, 4, {.struct_size = sizeof cases->options, .partition = &broken}, "malformed"},
         {4, 4,
-         {.struct_size = sizeof cases->options, .partition = &four, .cross_check = true}},
+         {.struct_size = sizeof cases->options, .partition = &four, .cross_check = true},
+         "cross-check"},
     };
 
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
@@ -196,7 +198,8 @@ START_TEST(test_bad_arguments)
                                                &cases[i].options, &table),
                     IDS_ERR_ARG);
         ck_assert_ptr_eq(table, before);
-        ck_assert_str_ne(ids_ctx_message(ctx), "");
+        ck_assert_msg(strstr(ids_ctx_message(ctx), cases[i].message) != NULL, "%s",
+                      ids_ctx_message(ctx));
     }
     TEST_STATUS(ctx, ids_partition_table_create(ctx, NULL, 1, 2, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_partition_table_create(ctx, pres, 1, 2, NULL, NULL), IDS_ERR_ARG);

@@ -231,6 +231,7 @@ START_TEST(test_bad_options)
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
     options = (ids_rank_options){.struct_size = 1};
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "must be sizeof(ids_rank_options)"));
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 0, 2, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 3, 2, NULL, &table), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 65, NULL, &table), IDS_ERR_ARG);

@@ -212,6 +212,7 @@ START_TEST(test_errors)
     TEST_STATUS(ctx, ids_matrix_create(ctx, pres, 3, &options, &matrix), IDS_ERR_ARG);
     options = (ids_matrix_options){.struct_size = 2};
     TEST_STATUS(ctx, ids_matrix_create(ctx, pres, 3, &options, &matrix), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "must be sizeof(ids_matrix_options)"));
     TEST_STATUS(ctx, ids_matrix_create(ctx, pres, 0, NULL, &matrix), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_matrix_create(ctx, pres, 65, NULL, &matrix), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_matrix_create(ctx, NULL, 3, NULL, &matrix), IDS_ERR_ARG);

@@ -25,7 +25,15 @@ START_TEST(test_text_errors)
     TEST_STATUS(ctx, reduce(ctx, forms, "a*b - b*a"), IDS_OK); /* cancels: 0 */
     TEST_STATUS(ctx, reduce(ctx, forms, "a*(b*"), IDS_ERR_PARSE);
     ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "word:1:"));
+    ck_assert_ptr_null(strstr(ids_ctx_message(ctx), "candidate"));
+    TEST_STATUS(ctx, reduce(ctx, forms, "a*b..c"), IDS_ERR_PARSE);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "word:1:4: "));
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "\na*b..c\n   ^"));
+    ck_assert_uint_eq(ids_ctx_last_place(ctx).line, 1);
+    ck_assert_uint_eq(ids_ctx_last_place(ctx).column, 4);
     TEST_STATUS(ctx, reduce(ctx, forms, ""), IDS_ERR_PARSE);
+    ck_assert_uint_eq(ids_ctx_last_place(ctx).column, 1);
+    ck_assert_ptr_null(strstr(ids_ctx_message(ctx), "candidate"));
     TEST_STATUS(ctx, reduce(ctx, forms, "a*b + a*c"), IDS_ERR_PARSE);
     TEST_STATUS(ctx, reduce(ctx, forms, "(a*b)*a"), IDS_ERR_DOMAIN);
     TEST_STATUS(ctx, reduce(ctx, forms, "((a*b)*c)*(d*e)"), IDS_ERR_ARG);

@@ -189,15 +189,16 @@ START_TEST(test_refuse)
     static const struct {
         ids_constant list[2];
         ids_status status;
+        const char *message; /* a part of it */
     } bad[] = {
-        {{{1, {0, 1}, 0, 1, 1}, {0}}, IDS_ERR_ARG},
-        {{{0, {0, 2}, 0, 1, 1}, {0}}, IDS_ERR_ARG},
-        {{{0, {0, 1}, 2, 1, 1}, {0}}, IDS_ERR_ARG},
-        {{{0, {0, 1}, 0, 1, 0}, {0}}, IDS_ERR_ARG},
-        {{{0, {0, 0}, 0, 1, 1}, {0, {0, 1}, 0, 1, 1}}, IDS_ERR_DOMAIN},
-        {{{0, {1, 0}, 0, 1, 1}, {0, {0, 1}, 0, 1, 1}}, IDS_ERR_DOMAIN},
-        {{{0, {1, 0}, 0, 0, 1}, {0, {0, 1}, 0, 1, 1}}, IDS_ERR_DOMAIN},
-        {{{0, {1, 0}, 0, INT64_MIN, 1}, {0, {0, 1}, 1, 1, 1}}, IDS_ERR_LIMIT},
+        {{{1, {0, 1}, 0, 1, 1}, {0}}, IDS_ERR_ARG, "operation"},
+        {{{0, {0, 2}, 0, 1, 1}, {0}}, IDS_ERR_ARG, "argument"},
+        {{{0, {0, 1}, 2, 1, 1}, {0}}, IDS_ERR_ARG, "result"},
+        {{{0, {0, 1}, 0, 1, 0}, {0}}, IDS_ERR_ARG, "denominator"},
+        {{{0, {0, 0}, 0, 1, 1}, {0, {0, 1}, 0, 1, 1}}, IDS_ERR_DOMAIN, "e1*e1 is 0"},
+        {{{0, {1, 0}, 0, 1, 1}, {0, {0, 1}, 0, 1, 1}}, IDS_ERR_DOMAIN, "e1*e2 has two"},
+        {{{0, {1, 0}, 0, 0, 1}, {0, {0, 1}, 0, 1, 1}}, IDS_ERR_DOMAIN, "e1*e2 has two"},
+        {{{0, {1, 0}, 0, INT64_MIN, 1}, {0, {0, 1}, 1, 1, 1}}, IDS_ERR_LIMIT, "64 bits"},
     };
     static const char *const names[][2] = {
         {"a", "a"}, {"a", NULL}, {"a", "2b"}, {"a", ""}, {"basis", "b"}, {"a", "b c"}, {"*", "b"}};
@@ -209,6 +210,8 @@ START_TEST(test_refuse)
         const size_t count = bad[i].list[1].denominator == 0 ? 1 : 2;
         TEST_STATUS(ctx, ids_algebra_create(ctx, sig, 2, NULL, bad[i].list, count, &made),
                     bad[i].status);
+        ck_assert_msg(strstr(ids_ctx_message(ctx), bad[i].message) != NULL, "%s",
+                      ids_ctx_message(ctx));
     }
     for (size_t i = 0; i < sizeof names / sizeof *names; i++) {
         TEST_STATUS(ctx, ids_algebra_create(ctx, sig, 2, names[i], NULL, 0, &made), IDS_ERR_ARG);

@@ -332,12 +332,14 @@ START_TEST(arguments)
 
     TEST_STATUS(d.ctx, ids_types_draw(d.ctx, NULL, 4, 0, 1, NULL, keep, &d), IDS_ERR_ARG);
     TEST_STATUS(d.ctx, ids_types_draw(d.ctx, d.types, 10, 0, 1, NULL, keep, &d), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(d.ctx), "degree 10: the association types go"));
     TEST_STATUS(d.ctx, ids_types_draw(d.ctx, d.types, 4, 2, 1, NULL, keep, &d), IDS_ERR_ARG);
     TEST_STATUS(d.ctx, ids_types_draw(d.ctx, d.types, 4, 0, 1, NULL, NULL, &d), IDS_ERR_ARG);
     TEST_STATUS(d.ctx, ids_basis_draw(d.ctx, NULL, 0, 1, NULL, keep, &d), IDS_ERR_ARG);
     TEST_STATUS(d.ctx, ids_basis_draw(d.ctx, d.basis, 0, 100001, NULL, keep, &d), IDS_ERR_LIMIT);
     options.struct_size = 1;
     TEST_STATUS(d.ctx, ids_types_draw(d.ctx, d.types, 4, 0, 1, &options, keep, &d), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(d.ctx), "must be sizeof(ids_draw_options)"));
     options = as((ids_picture)4);
     TEST_STATUS(d.ctx, ids_types_draw(d.ctx, d.types, 4, 0, 1, &options, keep, &d), IDS_ERR_ARG);
     ck_assert_uint_eq(d.calls, 0);
