@@ -13,11 +13,14 @@
 extern "C" {
 #endif
 
-/** Options of ids_rank_table(); set struct_size, the rest to 0 for the defaults. */
+/** Most primes that ranks can be computed modulo. */
+#define IDS_MAX_PRIMES 1000u
+
+/** Options of ids_rank_table_create(); set struct_size, the rest to 0 for the defaults. */
 typedef struct ids_rank_options {
     size_t struct_size;   /**< sizeof(ids_rank_options) */
     bool exact;           /**< prove the ranks over the rational numbers */
-    uint32_t primes;      /**< number of random primes to try; 0: one */
+    uint32_t primes;      /**< number of random primes to try, at most IDS_MAX_PRIMES; 0: one */
     uint64_t seed;        /**< seed that the primes are drawn from; 0 is a seed like any other */
     uint32_t field;       /**< a prime p < 2^30: ranks over GF(p), without `exact` and `primes`;
                                0: over the rational numbers */
@@ -74,8 +77,9 @@ typedef struct ids_rank_row {
  *                      must be freed too, or is NULL. Not written on other failures but
  *                      IDS_ERR_NOMEM.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a `field` that is no
- *                            prime below 2^30, or together with `exact` or `primes` > 1
+ *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, too many primes, a
+ *                            `field` that is no prime below 2^30, or together with `exact` or
+ *                            `primes` > 1
  *         IDS_ERR_DOMAIN     `field` divides a denominator of an identity
  *         IDS_ERR_NOMEM      the allocator refused; *table is then NULL
  *         IDS_ERR_LIMIT      byte budget, 64 bits of monomials, 32 bits of columns; the message
@@ -168,7 +172,8 @@ IDS_API bool ids_rank_table_weakened(const ids_rank_table *table);
 /** Options of ids_partition_table_create(); set struct_size, the rest to 0 for the defaults. */
 typedef struct ids_partition_options {
     size_t struct_size;             /**< sizeof(ids_partition_options) */
-    uint32_t primes;                /**< number of random primes to try; 0: one */
+    uint32_t primes;                /**< number of random primes to try, at most IDS_MAX_PRIMES;
+                                         0: one */
     uint64_t seed;                  /**< seed that the primes are drawn from */
     const ids_partition *partition; /**< only this partition, of degree from = to; NULL: all */
     bool cross_check;               /**< compute every degree by the monomial engine too */
@@ -213,9 +218,9 @@ typedef struct ids_partition_row {
  *                      prime (maybe none) and must be freed too, or is NULL. Not written on other
  *                      failures but IDS_ERR_NOMEM.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, a partition that is
- *                            not well formed or of another degree, a cross-check of one
- *                            partition alone
+ *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, too many primes, a
+ *                            partition that is not well formed or of another degree, a
+ *                            cross-check of one partition alone
  *         IDS_ERR_NOMEM      the allocator refused; *table is then NULL
  *         IDS_ERR_LIMIT      byte budget; the message says how many unknowns a partition has, what
  *                            they need and what the budget is

@@ -17,7 +17,8 @@ extern "C" {
 /** Options of the calls below; set struct_size, the rest to 0 for the defaults. */
 typedef struct ids_follows_options {
     size_t struct_size; /**< sizeof(ids_follows_options) */
-    uint32_t primes;    /**< number of random primes to decide with; 0: one */
+    uint32_t primes;    /**< number of random primes to decide with, at most IDS_MAX_PRIMES;
+                             0: one. Derivations and witnesses need no number of them */
     uint64_t seed;      /**< seed that primes and orders are drawn from */
 } ids_follows_options;
 
@@ -43,7 +44,7 @@ typedef struct ids_follows ids_follows;
  * @param options       borrowed; NULL for the defaults.
  * @param follows       out, owned: ids_follows_free(); written only on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size, too many primes
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_LIMIT      byte budget, a candidate of degree over 16
  *         IDS_ERR_CANCELLED  cancelled
@@ -143,7 +144,7 @@ typedef struct ids_derivation ids_derivation;
  *         IDS_ERR_DOMAIN     there is none: the candidate does not follow, modulo the prime that
  *                            was drawn
  *         IDS_ERR_UNABLE     coefficients too large
- *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size, too many primes
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_LIMIT      byte budget, 2^32 consequences
  *         IDS_ERR_CANCELLED  cancelled
@@ -243,7 +244,7 @@ typedef struct ids_witness ids_witness;
  * @return IDS_OK
  *         IDS_ERR_DOMAIN     there is none: the candidate follows, modulo the prime that was drawn
  *         IDS_ERR_UNABLE     values too large
- *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size
+ *         IDS_ERR_ARG        NULL, index out of range, unknown struct_size, too many primes
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_LIMIT      byte budget, 2^32 consequences
  *         IDS_ERR_CANCELLED  cancelled

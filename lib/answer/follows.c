@@ -14,6 +14,7 @@
 #include <string.h>
 
 #include "follows_private.h"
+#include "rank_private.h"
 
 typedef struct failure {
     ids_partition partition;
@@ -137,9 +138,14 @@ ids_status idsi_candidate_check(ids_ctx *ctx, const ids_presentation *pres, size
 
 ids_status idsi_follows_check(ids_ctx *ctx, const ids_follows_options *options)
 {
-    return options == NULL ? IDS_OK
-                           : idsi_check_struct(ctx, "ids_follows_options", options->struct_size,
-                                               sizeof *options);
+    ids_status st = IDS_OK;
+    if (options != NULL) {
+        IDSI_TRY(idsi_check_struct(ctx, "ids_follows_options", options->struct_size,
+                                   sizeof *options));
+        IDSI_TRY(idsi_check_primes(ctx, options->primes));
+    }
+done:
+    return st;
 }
 
 ids_status ids_follows_decide(ids_ctx *ctx, const ids_presentation *presentation, size_t index,

@@ -310,13 +310,18 @@ static ids_status check_arguments(ids_ctx *ctx, uint32_t from, uint32_t to,
                          "degrees %u to %u: by partition 1 to %u are possible, upwards", from, to,
                          IDSI_SHAPE_MAX);
     }
+    ids_status st = IDS_OK;
     if (options == NULL) {
-        return IDS_OK;
+        return st;
     }
-    ids_status st = idsi_check_struct(ctx, "ids_partition_options", options->struct_size,
-                                      sizeof *options);
-    return st != IDS_OK || options->partition == NULL ? st
-                                                      : check_partition(ctx, from, to, options);
+    IDSI_TRY(idsi_check_struct(ctx, "ids_partition_options", options->struct_size,
+                               sizeof *options));
+    IDSI_TRY(idsi_check_primes(ctx, options->primes));
+    if (options->partition != NULL) {
+        IDSI_TRY(check_partition(ctx, from, to, options));
+    }
+done:
+    return st;
 }
 
 ids_status ids_partition_table_create(ids_ctx *ctx, const ids_presentation *presentation,

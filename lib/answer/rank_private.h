@@ -7,6 +7,9 @@
 
 #include "../engine/engine_private.h"
 
+/* (rank_table.c) IDS_ERR_ARG when an option asks for more primes than IDS_MAX_PRIMES. */
+ids_status idsi_check_primes(ids_ctx *ctx, uint32_t primes);
+
 /*
  * Whether over the field of `field` elements (0: the rational numbers) some identity of at most
  * that degree can differ from its linearisation.

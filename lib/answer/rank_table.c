@@ -239,22 +239,34 @@ bool idsi_rank_weakened(const ids_presentation *pres, uint32_t field, uint32_t d
     return false;
 }
 
+ids_status idsi_check_primes(ids_ctx *ctx, uint32_t primes)
+{
+    if (primes <= IDS_MAX_PRIMES) {
+        return IDS_OK;
+    }
+    return idsi_fail(ctx, IDS_ERR_ARG, "%u primes: at most %u are possible", primes,
+                     IDS_MAX_PRIMES);
+}
+
 static ids_status check_options(ids_ctx *ctx, const ids_rank_options *options)
 {
+    ids_status st = IDS_OK;
+
+    IDSI_TRY(
+        idsi_check_struct(ctx, "ids_rank_options", options->struct_size, sizeof *options));
+    IDSI_TRY(idsi_check_primes(ctx, options->primes));
     if (options->field == 0) {
         return IDS_OK;
     }
-    ids_status st = idsi_prime_check(ctx, options->field);
-    if (st != IDS_OK) {
-        return st;
-    }
+    IDSI_TRY(idsi_prime_check(ctx, options->field));
     if (options->exact || options->primes > 1) {
-        return idsi_fail(ctx, IDS_ERR_ARG,
-                         "a proof over the rational numbers and several primes exclude the ranks "
-                         "over the field of %u elements",
-                         options->field);
+        st = idsi_fail(ctx, IDS_ERR_ARG,
+                       "a proof over the rational numbers and several primes exclude the ranks "
+                       "over the field of %u elements",
+                       options->field);
     }
-    return IDS_OK;
+done:
+    return st;
 }
 
 ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentation, uint32_t from,
@@ -273,10 +285,8 @@ ids_status ids_rank_table_create(ids_ctx *ctx, const ids_presentation *presentat
                          to, IDS_MAX_DEGREE);
     }
     if (options != NULL) {
-        IDSI_TRY(
-            idsi_check_struct(ctx, "ids_rank_options", options->struct_size, sizeof *options));
+        IDSI_TRY(check_options(ctx, options));
         chosen = *options;
-        IDSI_TRY(check_options(ctx, &chosen));
     }
     idsi_random_seed(&j.random, chosen.seed);
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *j.table, &j.table));

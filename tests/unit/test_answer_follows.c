@@ -300,6 +300,32 @@ START_TEST(test_damage)
 }
 END_TEST
 
+/* The three calls look at their options alike. */
+static void check_options(ids_ctx *ctx)
+{
+    static const char text[] = "operation a*b\ncandidate a*b = b*a\n";
+    ids_follows_options options[2] = {{.struct_size = 4},
+                                      {.struct_size = sizeof *options, .primes = 1001}};
+    static const char *const message[2] = {"sizeof(ids_follows_options)", "at most 1000"};
+    ids_presentation *pres = NULL;
+    ids_follows *follows = NULL;
+    ids_derivation *derivation = NULL;
+    ids_witness *witness = NULL;
+
+    TEST_OK(ctx, ids_presentation_read(ctx, text, sizeof text - 1, NULL, &pres));
+    for (size_t i = 0; i < 2; i++) {
+        TEST_STATUS(ctx, ids_follows_decide(ctx, pres, 0, &options[i], &follows), IDS_ERR_ARG);
+        ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), message[i]));
+        TEST_STATUS(ctx, ids_derivation_find(ctx, pres, 0, &options[i], &derivation), IDS_ERR_ARG);
+        ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), message[i]));
+        TEST_STATUS(ctx, ids_witness_find(ctx, pres, 0, &options[i], &witness), IDS_ERR_ARG);
+        ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), message[i]));
+    }
+    TEST_STATUS(ctx, ids_witness_find(ctx, pres, 1, NULL, &witness), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "candidate 1 does not exist"));
+    ids_presentation_free(pres);
+}
+
 START_TEST(test_arguments)
 {
     ids_ctx *ctx = test_ctx();
@@ -312,6 +338,7 @@ START_TEST(test_arguments)
     TEST_STATUS(ctx, ids_follows_decide(ctx, pres, 0, NULL, &follows), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_derivation_find(ctx, pres, 0, NULL, &derivation), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_witness_find(ctx, pres, 0, NULL, &witness), IDS_ERR_ARG);
+    check_options(ctx);
     TEST_STATUS(ctx, ids_certificate_check(ctx, NULL, 0, NULL, &report), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_certificate_check(ctx, "", 0, NULL, &report), IDS_ERR_PARSE);
     ck_assert(!ids_follows_answer(NULL));

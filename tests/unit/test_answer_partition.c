@@ -184,6 +184,7 @@ START_TEST(test_bad_arguments)
         {4, 3, {.struct_size = sizeof cases->options}, "degrees 4 to 3"},
         {1, 17, {.struct_size = sizeof cases->options}, "1 to 16 are possible"},
         {1, 3, {.struct_size = 8}, "must be sizeof(ids_partition_options)"},
+        {1, 3, {.struct_size = sizeof cases->options, .primes = UINT32_MAX}, "at most 1000"},
         {3, 4, {.struct_size = sizeof cases->options, .partition = &four}, "one of 4"},
         {5, 5, {.struct_size = sizeof cases->options, .partition = &four}, "one of 4"},
         {4, 4, {.struct_size = sizeof cases->options, .partition = &broken}, "malformed"},

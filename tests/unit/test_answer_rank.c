@@ -229,6 +229,9 @@ START_TEST(test_bad_options)
     options.exact = false;
     options.primes = 2;
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
+    options = (ids_rank_options){.struct_size = sizeof options, .primes = IDS_MAX_PRIMES + 1};
+    TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "1001 primes: at most 1000"));
     options = (ids_rank_options){.struct_size = 1};
     TEST_STATUS(ctx, ids_rank_table_create(ctx, pres, 1, 2, &options, &table), IDS_ERR_ARG);
     ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "must be sizeof(ids_rank_options)"));

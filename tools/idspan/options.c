@@ -141,7 +141,7 @@ static const slot slots[] = {
     LONG(OPTION_FROM, from, 0, UINT64_MAX),
     LONG(OPTION_COUNT, count, 0, UINT64_MAX),
     LONG(OPTION_INDEX, index, 0, UINT64_MAX),
-    SHORT(OPTION_PRIMES, primes, 1, 1000),
+    SHORT(OPTION_PRIMES, primes, 1, IDS_MAX_PRIMES),
     LONG(OPTION_SEED, seed, 0, UINT64_MAX),
     SHORT(OPTION_FIELD, field, 2, (1u << 30) - 1),
     TEXT(OPTION_BY, by),
