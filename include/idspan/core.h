@@ -90,6 +90,9 @@ typedef struct ids_progress {
 /** Progress hook, called about ten times a second; non-zero cancels the call. */
 typedef int (*ids_progress_fn)(void *user, const ids_progress *progress);
 
+/** Most threads that a call ever uses, the calling one among them. */
+#define IDS_MAX_THREADS 1024u
+
 /** Options of ids_ctx_create(); set struct_size to sizeof(ids_ctx_options), the rest to 0. */
 typedef struct ids_ctx_options {
     size_t struct_size;           /**< sizeof(ids_ctx_options) */
@@ -98,7 +101,8 @@ typedef struct ids_ctx_options {
     uint64_t byte_budget;         /**< most bytes that may be live at once; 0: no limit */
     ids_progress_fn progress;     /**< NULL: none */
     void *progress_user;          /**< passed to progress; kept */
-    uint32_t threads;             /**< most threads a call may use; 0 counts as 1 */
+    uint32_t threads;             /**< most threads a call may use; 0 counts as 1, more than
+                                       IDS_MAX_THREADS as so many */
 } ids_ctx_options;
 
 /**
@@ -185,10 +189,11 @@ typedef struct ids_memory {
 IDS_API ids_memory ids_ctx_memory(const ids_ctx *ctx);
 
 /**
- * Sets the most threads that later calls may use. Results do not depend on it.
+ * Sets the most threads that later calls may use: a limit, not a number. A call uses no more than
+ * it has work for, and fewer when the system refuses threads. Results do not depend on it.
  *
  * @param ctx      borrowed; NULL is fine.
- * @param threads  with the calling one; 0 counts as 1.
+ * @param threads  with the calling one; 0 counts as 1, more than IDS_MAX_THREADS as so many.
  * Cost: constant, no allocation. Threads: the one that uses `ctx`. Since: 0.1
  */
 IDS_API void ids_ctx_set_threads(ids_ctx *ctx, uint32_t threads);

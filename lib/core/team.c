@@ -87,6 +87,15 @@ static void *work(void *user)
     }
 }
 
+uint32_t idsi_team_members(const ids_ctx *ctx, uint64_t work)
+{
+    uint64_t members = idsi_threads(ctx);
+
+    members = members < work ? members : work;
+    members = members < IDS_MAX_THREADS ? members : IDS_MAX_THREADS;
+    return members == 0 ? 1 : (uint32_t)members;
+}
+
 /* Starts threads until one is refused. */
 static void start(idsi_team *team, uint32_t members)
 {

@@ -16,6 +16,12 @@ typedef struct idsi_team idsi_team;
 typedef void (*idsi_task_fn)(void *user, uint32_t member, size_t task);
 
 /*
+ * Threads for `work` pieces of work, the calling one among them: as many as the context allows and
+ * there are pieces, at most IDS_MAX_THREADS, at least 1.
+ */
+uint32_t idsi_team_members(const ids_ctx *ctx, uint64_t work);
+
+/*
  * A team of at most `members`, the caller among them. The system may refuse threads: then the
  * team is smaller. *team is NULL for a team of one.
  */

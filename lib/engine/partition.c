@@ -9,6 +9,7 @@
 #include <string.h>
 #include <time.h>
 
+#include "../core/team_private.h"
 #include "partition_private.h"
 
 /* The shape that is solved first has so many tableaux at least, and this part of the most. */
@@ -147,7 +148,7 @@ static ids_status run_crew(crew *c)
 {
     ids_status st = IDS_OK;
     ids_ctx *ctx = c->engine->ctx;
-    uint32_t count = idsi_threads(ctx);
+    uint32_t count = idsi_team_members(ctx, c->count);
     worker *workers = NULL;
     pthread_t *threads = NULL;
     uint32_t started = 0;

@@ -261,8 +261,9 @@ START_TEST(test_threads)
     ids_ctx *ctx = threaded_ctx(1);
     ids_partition_table *expected = table_of(ctx, cases[_i].text, 1, cases[_i].degree, NULL);
 
-    for (uint32_t threads = 2; threads <= 4; threads += 2) {
-        ids_ctx *other = threaded_ctx(threads);
+    static const uint32_t threads[] = {2, 4, UINT32_MAX};
+    for (size_t i = 0; i < sizeof threads / sizeof *threads; i++) {
+        ids_ctx *other = threaded_ctx(threads[i]);
         ids_partition_table *table = table_of(other, cases[_i].text, 1, cases[_i].degree, NULL);
         check_same(expected, table);
         ids_partition_table_free(table);

@@ -250,6 +250,31 @@ START_TEST(test_bad_options)
 }
 END_TEST
 
+/* As many threads as there is work, however many are allowed. */
+START_TEST(test_most_threads)
+{
+    const ids_ctx_options options = {
+        .struct_size = sizeof options, .byte_budget = 1u << 26, .threads = UINT32_MAX};
+    ids_ctx *ctx = test_ctx();
+    ids_ctx *wide = NULL;
+    ids_rank_row a;
+    ids_rank_row b;
+
+    ck_assert_int_eq(ids_ctx_create(&options, &wide), IDS_OK);
+    ids_rank_table *one = table_of(ctx, jordan, 6, NULL);
+    ids_rank_table *many = table_of(wide, jordan, 6, NULL);
+    for (size_t i = 0; i < ids_rank_table_count(one); i++) {
+        ck_assert_int_eq(ids_rank_table_row(one, i, &a), IDS_OK);
+        ck_assert_int_eq(ids_rank_table_row(many, i, &b), IDS_OK);
+        ck_assert_uint_eq(a.consequences, b.consequences);
+    }
+    ids_rank_table_free(one);
+    ids_rank_table_free(many);
+    test_ctx_free(wide);
+    test_ctx_free(ctx);
+}
+END_TEST
+
 /* ---- primes ------------------------------------------------------------------------------ */
 
 START_TEST(test_primes)
@@ -466,6 +491,7 @@ int main(void)
     tcase_add_test(tcase, test_vanishing_laws);
     tcase_add_test(tcase, test_bad_options);
     tcase_add_test(tcase, test_refused_result);
+    tcase_add_test(tcase, test_most_threads);
     tcase_add_test(tcase, test_primes);
     tcase_add_loop_test(tcase, test_mutations, 0, (int)(sizeof mutations / sizeof *mutations));
     tcase_add_test(tcase, test_cancel);

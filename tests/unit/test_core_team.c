@@ -82,6 +82,24 @@ START_TEST(test_rounds)
 }
 END_TEST
 
+/* The context's number is a limit, however large. */
+START_TEST(test_members)
+{
+    ids_ctx *ctx = test_ctx();
+
+    ck_assert_uint_eq(idsi_team_members(NULL, 7), 1);
+    ck_assert_uint_eq(idsi_team_members(ctx, 7), 1);
+    ids_ctx_set_threads(ctx, 5);
+    ck_assert_uint_eq(idsi_team_members(ctx, 0), 1);
+    ck_assert_uint_eq(idsi_team_members(ctx, 3), 3);
+    ck_assert_uint_eq(idsi_team_members(ctx, UINT64_MAX), 5);
+    ids_ctx_set_threads(ctx, UINT32_MAX);
+    ck_assert_uint_eq(idsi_team_members(ctx, 3), 3);
+    ck_assert_uint_eq(idsi_team_members(ctx, UINT64_MAX), IDS_MAX_THREADS);
+    test_ctx_free(ctx);
+}
+END_TEST
+
 static ids_status make_team(ids_ctx *ctx, void *data)
 {
     idsi_team *team = NULL;
@@ -106,6 +124,7 @@ int main(void)
     tcase_set_timeout(tcase, 20);
     tcase_add_test(tcase, test_every_task_once);
     tcase_add_test(tcase, test_rounds);
+    tcase_add_test(tcase, test_members);
     tcase_add_test(tcase, test_refused_memory);
     suite_add_tcase(suite, tcase);
     return test_run(suite);

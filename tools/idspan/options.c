@@ -161,7 +161,7 @@ static const slot slots[] = {
     TEXT(OPTION_FORMAT, format_name),
     TEXT(OPTION_OUTPUT, output),
     {OPTION_MEMORY, SLOT_MEMORY, offsetof(settings, memory), 0, 0},
-    SHORT(OPTION_THREADS, threads, 1, 1024),
+    SHORT(OPTION_THREADS, threads, 1, IDS_MAX_THREADS),
 };
 
 static bool read_slot(const slot *to, const char *value, settings *read)
