@@ -26,6 +26,17 @@ extern "C" {
 #endif
 
 /**
+ * Version of the library that runs, such as "1.2.3".
+ *
+ * IDS_VERSION_STRING is that of the headers a program was compiled with; the two differ when
+ * another shared library was installed since.
+ *
+ * @return a static string, never NULL.
+ * Cost: constant. Threads: any. Since: 0.1
+ */
+IDS_API const char *ids_version(void);
+
+/**
  * The list of status codes: name, value, one-line text. Values are frozen.
  */
 #define IDS_STATUS_LIST(X)                                                            \

@@ -1,9 +1,14 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * Names and texts of the status codes. Both come from the one list in core.h, so that a code
- * cannot be added without them.
+ * Static strings. Names and texts of the status codes come from the one list in core.h, so that a
+ * code cannot be added without them.
  */
 #include "core_private.h"
+
+const char *ids_version(void)
+{
+    return IDS_VERSION_STRING;
+}
 
 const char *ids_status_name(ids_status status)
 {

@@ -31,7 +31,7 @@ done |
     BEGIN {
         split("ids_follows_certainty ids_presentation_equal ids_algebra_equal ids_status_name " \
               "ids_status_text ids_ctx_message ids_ctx_memory ids_ctx_last_place " \
-              "ids_automorphisms_structure ids_partition_count", list, " ")
+              "ids_automorphisms_structure ids_partition_count ids_version", list, " ")
         for (i in list) other[list[i]] = 1
     }
     !/IDS_API_MARK/ { next }
@@ -45,6 +45,7 @@ done |
         result = substr($0, 1, RSTART - 1)
         parameters = substr($0, RSTART + RLENGTH)
         sub(/\) *$/, "", parameters)
+        if (parameters ~ /^ *void *$/) parameters = ""
         count = split(parameters, part, ",")
         plain = with = ""
         contexts = 0

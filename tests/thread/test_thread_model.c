@@ -117,6 +117,7 @@ static void use_statuses(ids_ctx *ctx, uint64_t *sum)
     ids_presentation *none = NULL;
     ids_status st = ids_presentation_read(ctx, "?", 1, NULL, &none);
 
+    sum_text(sum, ids_version());
     sum_text(sum, ids_status_name(st));
     sum_text(sum, ids_status_text(ids_ctx_last_status(ctx)));
     sum_text(sum, ids_ctx_message(ctx));

@@ -5,6 +5,7 @@
  */
 #include "support.h"
 
+#include <stdio.h>
 #include <string.h>
 
 static const struct {
@@ -45,6 +46,18 @@ START_TEST(test_unknown)
 }
 END_TEST
 
+/* The program and the library are of one build here. */
+START_TEST(test_version)
+{
+    char numbers[40];
+
+    snprintf(numbers, sizeof numbers, "%d.%d.%d", IDS_VERSION_MAJOR, IDS_VERSION_MINOR,
+             IDS_VERSION_PATCH);
+    ck_assert_str_eq(ids_version(), numbers);
+    ck_assert_str_eq(ids_version(), IDS_VERSION_STRING);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("core: status");
@@ -52,6 +65,7 @@ int main(void)
 
     tcase_add_loop_test(tcase, test_value_name_text, 0, FROZEN_COUNT);
     tcase_add_test(tcase, test_unknown);
+    tcase_add_test(tcase, test_version);
     suite_add_tcase(suite, tcase);
     return test_run(suite);
 }
