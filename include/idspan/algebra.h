@@ -121,12 +121,12 @@ IDS_API IDS_MUST_USE ids_status ids_algebra_print(ids_ctx *ctx, const ids_algebr
 
 /**
  * Whether two algebras have the same operations and the same basis, names included, with the same
- * constants.
+ * constants. NULL is equal to NULL and to nothing else.
  *
  * @param a  borrowed, or NULL.
  * @param b  borrowed, or NULL.
  * @return true when they are the same.
- * Cost: linear, no allocation. Threads: any number may share `a`. Since: 0.1
+ * Cost: linear, no allocation. Threads: any number may share `a` and `b`. Since: 0.1
  */
 IDS_API bool ids_algebra_equal(const ids_algebra *a, const ids_algebra *b);
 
@@ -193,8 +193,9 @@ IDS_API IDS_MUST_USE ids_status ids_algebra_constant(const ids_algebra *algebra,
  * @param ctx        borrowed.
  * @param algebra    borrowed.
  * @param signature  borrowed.
- * @param operation  out: for each operation of the signature its index in the algebra; written
- *                   only on IDS_OK.
+ * @param operation  out: for each operation of the signature its index in the algebra, so
+ *                   ids_signature_count(signature) entries, which must have room; never more than
+ *                   IDS_MAX_OPERATIONS. Written only on IDS_OK.
  * @return IDS_OK
  *         IDS_ERR_DOMAIN  an operation is missing, or its products lack the symmetry; the message
  *                         says which
@@ -221,9 +222,9 @@ IDS_API IDS_MUST_USE ids_status ids_algebra_match(ids_ctx *ctx, const ids_algebr
  * @param role          whether `index` counts identities or candidates.
  * @param index         0 .. ids_presentation_count()-1.
  * @param holds         out, written only on IDS_OK.
- * @param tuple         out, may be NULL: when it does not hold, basis elements on which the
- *                      linearisation is not 0, one for each variable of IDS_FORM_LINEAR (`degree`
- *                      of them).
+ * @param tuple         out, may be NULL; written only on IDS_OK and when it does not hold: basis
+ *                      elements on which the linearisation is not 0, one for each variable of
+ *                      IDS_FORM_LINEAR (`degree` of them).
  * @param capacity      entries of tuple, at least the degree unless tuple is NULL.
  * @return IDS_OK
  *         IDS_ERR_DOMAIN     an operation is missing, or its products lack the symmetry, as

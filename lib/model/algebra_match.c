@@ -91,6 +91,7 @@ ids_status ids_algebra_match(ids_ctx *ctx, const ids_algebra *algebra,
 {
     ids_status st = IDS_OK;
     char *declared = NULL;
+    uint32_t found[IDS_MAX_OPERATIONS];
 
     if (ctx == NULL || algebra == NULL || signature == NULL || operation == NULL) {
         return idsi_fail_arg(ctx, "context, algebra, signature or result");
@@ -107,8 +108,9 @@ ids_status ids_algebra_match(ids_ctx *ctx, const ids_algebra *algebra,
             goto done;
         }
         IDSI_TRY(check_symmetry(ctx, algebra, op, signature, i));
-        operation[i] = op;
+        found[i] = op;
     }
+    memcpy(operation, found, signature->count * sizeof *operation);
 done:
     ids_string_free(ctx, declared);
     return st;

@@ -256,16 +256,19 @@ START_TEST(test_match)
     static const char text[] = "operation a*b commutative\noperation [a,b] alternating\n";
     ids_ctx *ctx = test_ctx();
     ids_presentation *pres = NULL;
-    uint32_t operation[2] = {9, 9};
+    uint32_t operation[2];
 
     TEST_OK(ctx, ids_presentation_read(ctx, text, strlen(text), NULL, &pres));
     const ids_signature *sig = ids_presentation_signature(pres);
     for (size_t i = 0; i < sizeof list / sizeof *list; i++) {
         ids_algebra *a = read_text(ctx, list[i].algebra);
+        operation[0] = operation[1] = 9;
         TEST_STATUS(ctx, ids_algebra_match(ctx, a, sig, operation), list[i].status);
         if (list[i].status != IDS_OK) {
             ck_assert_msg(strstr(ids_ctx_message(ctx), list[i].part) != NULL, "%s",
                           ids_ctx_message(ctx));
+            ck_assert_uint_eq(operation[0], 9);
+            ck_assert_uint_eq(operation[1], 9);
         } else {
             ck_assert_uint_eq(operation[0], 1);
             ck_assert_uint_eq(operation[1], 0);
