@@ -66,6 +66,7 @@ IDS_API uint64_t ids_basis_size(const ids_basis *basis);
  *         IDS_ERR_ARG            NULL, other signature, other degree, not multilinear
  *         IDS_ERR_NOT_CANONICAL  well formed, but not the chosen one of its class;
  *                                ids_mono_canonicalize() gives that one and the sign
+ *         IDS_ERR_LIMIT          the basis has more than 2^64-1 monomials, see gmp.h
  * Cost: O(degree^2) word operations and a look-up in a hash table for each node; no allocation.
  * Threads: any number may share `basis`. Border: none.
  * Source: label sets by the combinatorial number system (Knuth, TAOCP 4A, 7.2.1.3). Since: 0.1
@@ -83,7 +84,7 @@ IDS_API IDS_MUST_USE ids_status ids_basis_rank(const ids_basis *basis, const ids
  * @return IDS_OK
  *         IDS_ERR_ARG    NULL, index out of range
  *         IDS_ERR_NOMEM  the allocator refused
- *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_LIMIT  byte budget; the basis has more than 2^64-1 monomials, see gmp.h
  * Cost: O(degree^2) word operations and one allocation.
  * Threads: any number may share `basis`, with a ctx each. Cancel: not polled. Border: none.
  * Since: 0.1
@@ -113,11 +114,12 @@ IDS_API IDS_MUST_USE ids_status ids_basis_rank_code(const ids_basis *basis, cons
  *
  * @param basis     borrowed.
  * @param index     0 .. ids_basis_size(basis)-1.
- * @param code      out: the form of ids_mono_create().
+ * @param code      out, written only on IDS_OK: the form of ids_mono_create().
  * @param capacity  entries that fit; 2 * degree - 1 is always enough.
- * @param length    out: entries written.
+ * @param length    out, written only on IDS_OK: entries written.
  * @return IDS_OK
- *         IDS_ERR_ARG  NULL, index out of range, capacity too small
+ *         IDS_ERR_ARG    NULL, index out of range, capacity too small
+ *         IDS_ERR_LIMIT  the basis has more than 2^64-1 monomials, see gmp.h
  * Cost: O(degree^2) byte operations; no allocation. Threads: any number may share `basis`.
  * Since: 0.1
  */
@@ -133,7 +135,8 @@ IDS_API IDS_MUST_USE ids_status ids_basis_unrank_code(const ids_basis *basis, ui
  * @param begin  out, written only on IDS_OK.
  * @param end    out, written only on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG  NULL, type out of range
+ *         IDS_ERR_ARG    NULL, type out of range
+ *         IDS_ERR_LIMIT  the basis has more than 2^64-1 monomials, see gmp.h
  * Cost: constant, no allocation. Threads: any number may share `basis`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_basis_type_range(const ids_basis *basis, uint64_t type,
@@ -149,7 +152,8 @@ IDS_API IDS_MUST_USE ids_status ids_basis_type_range(const ids_basis *basis, uin
  * @param begin  out, written only on IDS_OK.
  * @param end    out, written only on IDS_OK.
  * @return IDS_OK
- *         IDS_ERR_ARG  NULL, part >= parts
+ *         IDS_ERR_ARG    NULL, part >= parts
+ *         IDS_ERR_LIMIT  the basis has more than 2^64-1 monomials, see gmp.h
  * Cost: constant, no allocation. Threads: any number may share `basis`. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_basis_part(const ids_basis *basis, uint64_t part,
@@ -193,7 +197,7 @@ typedef struct ids_mono_view {
  * @return IDS_OK
  *         IDS_ERR_ARG    NULL, no such range
  *         IDS_ERR_NOMEM  the allocator refused
- *         IDS_ERR_LIMIT  byte budget
+ *         IDS_ERR_LIMIT  byte budget; the basis has more than 2^64-1 monomials, see gmp.h
  * Cost: as ids_basis_unrank(); one allocation of about 13 kB, whatever the range.
  * Threads: any number may share `basis`, with a ctx each. Cancel: not polled. Border: none.
  * Since: 0.1
@@ -229,7 +233,8 @@ IDS_API const ids_mono_view *ids_iter_next(ids_iter *iter);
  * @param begin  0 .. end.
  * @param end    at most ids_basis_size(basis).
  * @return IDS_OK
- *         IDS_ERR_ARG  NULL, no such range; then nothing has changed
+ *         IDS_ERR_ARG    NULL, no such range; then nothing has changed
+ *         IDS_ERR_LIMIT  the basis has more than 2^64-1 monomials, see gmp.h; nothing has changed
  * Cost: as ids_basis_unrank_code(); no allocation. Threads: one an iterator. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_iter_seek(ids_iter *iter, uint64_t begin, uint64_t end);

@@ -77,7 +77,21 @@ IDS_API const char *ids_status_name(ids_status status);
  */
 IDS_API const char *ids_status_text(ids_status status);
 
-/** The context: one thread at a time may pass it to calls; see ids_ctx_create(). */
+/**
+ * The context: one thread at a time may pass it to calls; see ids_ctx_create().
+ *
+ * Objects keep the context that they were made with. Immutable ones use it only to be freed. Those
+ * that change (ids_iter, ids_writer, ids_report, ids_run) serve one thread; writers, reports and
+ * runs also allocate and record failures with it, so they are used by the thread that has it at the
+ * time. Every call that frees an object may come from any thread, whatever the context does
+ * meanwhile, when nobody uses the object any more.
+ *
+ * Structs that a caller fills in for the library begin with struct_size, which must be exactly the
+ * sizeof of the struct, so that the library knows what the program was compiled with. Such a struct
+ * may grow at its end in a later version. That version then also accepts the sizes that the struct
+ * had before, with 0 for what is new, so programs need not be compiled again. A size that no
+ * version had is IDS_ERR_ARG.
+ */
 typedef struct ids_ctx ids_ctx;
 
 /**
@@ -85,7 +99,11 @@ typedef struct ids_ctx ids_ctx;
  *
  * `ptr == NULL` allocates `new_size` bytes; `new_size == 0` frees; otherwise resizes.
  * Memory is aligned as malloc's. Returns NULL when it refuses; the old block is then intact.
- * It may be called from any thread that uses an object of the context.
+ *
+ * It is called from the threads that make calls with the context or free its objects and, with
+ * more than one thread allowed, from those that the library starts; from several at once. So it
+ * must be thread-safe then, as malloc is. With one thread allowed and everything on one thread it
+ * need not be. It must not call the library with this context.
  */
 typedef void *(*ids_resize_fn)(void *user, void *ptr, size_t old_size, size_t new_size);
 
@@ -98,7 +116,13 @@ typedef struct ids_progress {
     double share;      /**< share of the estimated cost of the whole call, 0 .. 1 */
 } ids_progress;
 
-/** Progress hook, called about ten times a second; non-zero cancels the call. */
+/**
+ * Progress hook, called about ten times a second; non-zero cancels the call.
+ *
+ * With one thread allowed it runs on the thread that made the call, else perhaps on one that the
+ * library started for it; never twice at once for one context. It must not call the library with
+ * this context, but for ids_ctx_cancel() and ids_ctx_memory().
+ */
 typedef int (*ids_progress_fn)(void *user, const ids_progress *progress);
 
 /** Most threads that a call ever uses, the calling one among them. */
@@ -109,7 +133,8 @@ typedef struct ids_ctx_options {
     size_t struct_size;           /**< sizeof(ids_ctx_options) */
     ids_resize_fn resize;         /**< NULL: malloc, realloc, free */
     void *resize_user;            /**< passed to resize; kept */
-    uint64_t byte_budget;         /**< most bytes that may be live at once; 0: no limit */
+    uint64_t byte_budget;         /**< most bytes that may be live at once, see ids_memory;
+                                       0: no limit */
     ids_progress_fn progress;     /**< NULL: none */
     void *progress_user;          /**< passed to progress; kept */
     uint32_t threads;             /**< most threads a call may use; 0 counts as 1, more than
@@ -152,6 +177,10 @@ IDS_API void ids_ctx_cancel(ids_ctx *ctx);
 /**
  * Explanation of the last failure in this context, "" when there was none.
  *
+ * Success does not clear it: look at it only after a call with `ctx`, or with a writer, report or
+ * run that keeps it, has failed. Calls that take neither leave it alone, so what they refuse has no
+ * message.
+ *
  * @param ctx  borrowed; NULL gives "".
  * @return a string that lives until the next call with ctx. UTF-8, without a final newline; it can
  *         have several lines (a parse error shows the source line with a caret).
@@ -160,7 +189,8 @@ IDS_API void ids_ctx_cancel(ids_ctx *ctx);
 IDS_API const char *ids_ctx_message(const ids_ctx *ctx);
 
 /**
- * Status of the last failure in this context, IDS_OK when there was none.
+ * Status of the last failure in this context, IDS_OK when there was none; as long as the message
+ * of ids_ctx_message().
  *
  * @param ctx  borrowed; NULL gives IDS_ERR_ARG.
  * @return that status.
@@ -168,7 +198,10 @@ IDS_API const char *ids_ctx_message(const ids_ctx *ctx);
  */
 IDS_API ids_status ids_ctx_last_status(const ids_ctx *ctx);
 
-/** Where in an input the last IDS_ERR_PARSE stands. */
+/**
+ * Where in an input the last failure stands. IDS_ERR_PARSE always has a place, IDS_ERR_DOMAIN and
+ * IDS_ERR_LIMIT often have one where text is read.
+ */
 typedef struct ids_place {
     uint32_t line;   /**< from 1; 0: no place is known */
     uint32_t column; /**< from 1, in characters (not bytes) */
@@ -183,7 +216,12 @@ typedef struct ids_place {
  */
 IDS_API ids_place ids_ctx_last_place(const ids_ctx *ctx);
 
-/** Memory that a context accounts for. */
+/**
+ * Memory that a context accounts for: all blocks that its allocator gave, with the few bytes that
+ * the library keeps in front of each. The context's own block is not counted, nor is what GMP and
+ * FLINT allocate, nor the stacks of threads. Where a call can foresee GMP's memory it counts it in
+ * before it begins (gmp.h).
+ */
 typedef struct ids_memory {
     uint64_t live;   /**< bytes allocated now */
     uint64_t peak;   /**< most bytes that were live at once */

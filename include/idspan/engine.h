@@ -49,7 +49,8 @@ typedef struct ids_normal_forms ids_normal_forms;
  *         IDS_ERR_DOMAIN     `field` divides a denominator of an identity
  *         IDS_ERR_UNABLE     `exact`: some coefficient does not fit 62 bits above and below, or
  *                            five primes in a row are exceptional
- *         IDS_ERR_LIMIT      byte budget, 2^32 products of normal forms in a degree
+ *         IDS_ERR_LIMIT      byte budget, 2^32 products of normal forms in a degree, 64 bits of
+ *                            monomials
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_CANCELLED  cancelled
  * Cost: an elimination a degree; memory 8 bytes for each coefficient of each product (24 with
@@ -422,7 +423,7 @@ IDS_API uint32_t ids_matrix_prime(const ids_matrix *matrix);
  * @param sink       receives the text piece by piece; called from this thread.
  * @param sink_user  passed to `sink`; borrowed.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL
+ *         IDS_ERR_ARG        NULL, another context
  *         IDS_ERR_IO         the sink stopped
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_LIMIT      byte budget
@@ -444,7 +445,7 @@ IDS_API IDS_MUST_USE ids_status ids_matrix_write(ids_ctx *ctx, const ids_matrix 
  * @param sink       receives the text piece by piece; called from this thread.
  * @param sink_user  passed to `sink`; borrowed.
  * @return IDS_OK
- *         IDS_ERR_ARG        NULL
+ *         IDS_ERR_ARG        NULL, another context
  *         IDS_ERR_IO         the sink stopped
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_LIMIT      byte budget

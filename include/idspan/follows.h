@@ -124,7 +124,8 @@ IDS_API IDS_MUST_USE ids_status ids_follows_partition(const ids_follows *follows
 /**
  * A derivation: the candidate, in its own variables, as a sum of rational multiples of
  * consequences. A consequence is the complete linearisation of an identity with monomials in the
- * place of its variables, put into a context: a monomial with one leaf left open. Immutable.
+ * place of its variables, put into a context: a monomial with one leaf left open. Immutable,
+ * shareable.
  */
 typedef struct ids_derivation ids_derivation;
 
@@ -227,7 +228,7 @@ IDS_API IDS_MUST_USE ids_status ids_derivation_latex(ids_ctx *ctx, const ids_der
 /**
  * A witness: an integer for each monomial in the variables of the candidate as written, each as
  * often as there. As a linear functional it vanishes on all consequences and not on the candidate.
- * Immutable.
+ * Immutable, shareable.
  */
 typedef struct ids_witness ids_witness;
 
@@ -304,7 +305,8 @@ typedef struct ids_counterexample_options {
 
 /**
  * A counterexample: a finite-dimensional algebra in which the identities hold and a candidate does
- * not, with values of the candidate's variables where it is not 0. Immutable.
+ * not, with values of the candidate's variables where it is not 0. Immutable,
+ * shareable.
  */
 typedef struct ids_counterexample ids_counterexample;
 

@@ -211,7 +211,7 @@ IDS_API IDS_MUST_USE ids_status ids_automorphisms_exact(const ids_automorphisms 
  * Prepares the numbering of the canonical monomials of a degree, whatever its size.
  *
  * Where the numbers fit 64 bits this is ids_basis_create(). Beyond, ids_basis_size() is 0, the
- * calls of tree.h that take or give an index answer IDS_ERR_LIMIT, and those below take their
+ * calls of basis.h that take or give an index answer IDS_ERR_LIMIT, and those below take their
  * place; these work for every basis.
  *
  * @param ctx     borrowed now, kept.
@@ -312,9 +312,9 @@ IDS_API IDS_MUST_USE ids_status ids_basis_unrank_exact(ids_ctx *ctx, const ids_b
  *
  * @param basis     borrowed.
  * @param index     borrowed, 0 .. size-1.
- * @param code      out: the form of ids_mono_create().
+ * @param code      out, written only on IDS_OK: the form of ids_mono_create().
  * @param capacity  entries that fit; 2 * degree - 1 is always enough.
- * @param length    out: entries written.
+ * @param length    out, written only on IDS_OK: entries written.
  * @return IDS_OK
  *         IDS_ERR_ARG  NULL, index out of range, capacity too small
  * Cost: O(degree^2) word operations. Threads: any number may share `basis`. Since: 0.1

@@ -41,7 +41,8 @@ typedef enum ids_role {
  *         IDS_ERR_PARSE      ids_ctx_message() names source, line and column, shows the line with
  *                            a caret and says what was expected; ids_ctx_last_place() gives the
  *                            place
- *         IDS_ERR_DOMAIN     a sign character that forces an operation to be zero; with place
+ *         IDS_ERR_DOMAIN     a sign character that forces an operation to be zero; a model that
+ *                            writes an operation as words without its symmetry; with place
  *         IDS_ERR_LIMIT      degree, number of terms or byte budget; with place where there is one
  *         IDS_ERR_CANCELLED  cancelled
  *         IDS_ERR_ARG        NULL

@@ -38,7 +38,7 @@ typedef struct ids_column {
     uint32_t width;       /**< least width in text format, in characters; 0: as wide as needed */
 } ids_column;
 
-/** A table that is being written. */
+/** A table that is being written. It uses the ctx it keeps, so it serves the thread that has it. */
 typedef struct ids_writer ids_writer;
 
 /**
@@ -78,7 +78,8 @@ IDS_API IDS_MUST_USE ids_status ids_writer_create(ids_ctx *ctx, ids_format forma
  *         IDS_ERR_ARG    NULL, the name is taken, after ids_writer_end()
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
- * Cost: a copy. Threads: one a writer. Since: 0.1
+ * Cost: a copy. Threads: the one that has the writer's ctx. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *name,
                                                 const char *value);
@@ -96,7 +97,8 @@ IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
  *         IDS_ERR_IO     the sink refused
- * Cost: proportional to the row. Threads: one a writer. Since: 0.1
+ * Cost: proportional to the row. Threads: the one that has the writer's ctx. Cancel: not polled; a
+ * sink that refuses ends it. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_row(ids_writer *writer, const char *const *cells);
 
@@ -109,7 +111,8 @@ IDS_API IDS_MUST_USE ids_status ids_writer_row(ids_writer *writer, const char *c
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
  *         IDS_ERR_IO     the sink refused
- * Cost: proportional to what is held back. Threads: one a writer. Since: 0.1
+ * Cost: proportional to what is held back. Threads: the one that has the writer's ctx.
+ * Cancel: not polled; a sink that refuses ends it. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_end(ids_writer *writer);
 

@@ -42,7 +42,7 @@ typedef struct ids_report_row {
     const char *reason;        /**< borrowed: why it is not done, in a few words; NULL: not said */
 } ids_report_row;
 
-/** A report that is being filled. */
+/** A report that is being filled. It uses the ctx it keeps, so it serves the thread that has it. */
 typedef struct ids_report ids_report;
 
 /**
@@ -79,7 +79,8 @@ IDS_API void ids_report_free(ids_report *report);
  *         IDS_ERR_ARG    NULL
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
- * Cost: a copy. Threads: one a report. Since: 0.1
+ * Cost: a copy. Threads: the one that has the report's ctx. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_set_presentation(ids_report *report, const char *text,
                                                             size_t length);
@@ -99,7 +100,8 @@ IDS_API IDS_MUST_USE ids_status ids_report_set_presentation(ids_report *report, 
  *                        `free` is not the sum of the others, a row that is there already
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
- * Cost: a copy, sometimes of the whole list. Threads: one a report. Since: 0.1
+ * Cost: a copy, sometimes of the whole list. Threads: the one that has the report's ctx.
+ * Cancel: not polled. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_add(ids_report *report, const ids_report_row *row);
 
@@ -113,7 +115,8 @@ IDS_API IDS_MUST_USE ids_status ids_report_add(ids_report *report, const ids_rep
  *         IDS_ERR_ARG    NULL, empty name
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
- * Cost: a copy. Threads: one a report. Since: 0.1
+ * Cost: a copy. Threads: the one that has the report's ctx. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_note(ids_report *report, const char *name,
                                                 const char *value);
@@ -130,7 +133,8 @@ IDS_API IDS_MUST_USE ids_status ids_report_note(ids_report *report, const char *
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
  *         IDS_ERR_IO     the sink refused
- * Cost: linear in the rows. Threads: one a report. Since: 0.1
+ * Cost: linear in the rows. Threads: the one that has the report's ctx. Cancel: not polled; a sink
+ * that refuses ends it. Border: none. Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_report_write(ids_report *report, ids_report_form form,
                                                  ids_sink_fn sink, void *sink_user);

@@ -272,8 +272,8 @@ IDS_API IDS_MUST_USE ids_status ids_mono_code(const ids_mono *mono, int32_t *cod
  * With repeated labels an alternating (or other signed) operation can force the monomial to be
  * zero; then *sign is 0.
  *
- * @param ctx        borrowed.
- * @param mono       borrowed; any labels.
+ * @param ctx        borrowed now, kept by the result.
+ * @param mono       borrowed; any labels. The result does not keep it, but its signature.
  * @param canonical  out, owned: ids_mono_free(); written only on IDS_OK.
  * @param sign       out, written only on IDS_OK: +1, -1, or 0 (the monomial is zero; *canonical is
  *                   still given).

@@ -1,8 +1,10 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
  * An allocator of the program's own, and a byte budget. What does not fit is refused with a
- * message, the program goes on, and afterwards not one block is left.
+ * message, the program goes on, and afterwards not one block is left. The allocator may be entered
+ * by several threads at once, so its counters are guarded.
  */
+#include <pthread.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -10,8 +12,9 @@
 #include <idspan/idspan.h>
 
 typedef struct heap {
+    pthread_mutex_t lock;
     size_t live;  /* bytes that the library has now */
-    size_t calls; /* how often it asked */
+    size_t calls; /* how often it got or freed some */
 } heap;
 
 /* One function allocates, resizes and frees; it is told the old size. */
@@ -20,7 +23,6 @@ static void *resize(void *user, void *ptr, size_t old_size, size_t new_size)
     heap *h = (heap *)user;
     void *block = NULL;
 
-    h->calls++;
     if (new_size > 0) {
         block = realloc(ptr, new_size);
         if (block == NULL) {
@@ -29,7 +31,10 @@ static void *resize(void *user, void *ptr, size_t old_size, size_t new_size)
     } else {
         free(ptr);
     }
+    pthread_mutex_lock(&h->lock);
+    h->calls++;
     h->live = h->live - old_size + new_size;
+    pthread_mutex_unlock(&h->lock);
     return block;
 }
 
@@ -53,6 +58,7 @@ static ids_status count_types(heap *h, uint64_t budget, uint32_t degree)
     options.resize = resize;
     options.resize_user = h;
     options.byte_budget = budget;
+    options.threads = 2;
 
     st = ids_ctx_create(&options, &ctx);
     if (st == IDS_OK) {
@@ -76,12 +82,15 @@ static ids_status count_types(heap *h, uint64_t budget, uint32_t degree)
 
 int main(void)
 {
-    heap h = {0, 0};
+    heap h;
 
+    memset(&h, 0, sizeof h);
+    pthread_mutex_init(&h.lock, NULL);
     if (count_types(&h, 1u << 20, 10) != IDS_OK || count_types(&h, 1u << 20, 20) != IDS_ERR_LIMIT ||
         count_types(&h, 1u << 28, 20) != IDS_OK) {
         return EXIT_FAILURE;
     }
+    pthread_mutex_destroy(&h.lock);
     printf("%u bytes left\n", (unsigned)h.live);
     return h.live == 0 && h.calls > 0 ? EXIT_SUCCESS : EXIT_FAILURE;
 }
