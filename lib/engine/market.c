@@ -271,15 +271,26 @@ done:
     return st;
 }
 
+static ids_status check_writing(ids_ctx *ctx, const ids_matrix *matrix, ids_sink_fn sink)
+{
+    if (ctx == NULL || matrix == NULL || sink == NULL) {
+        return idsi_fail_arg(ctx, "context, matrix or sink");
+    }
+    if (ctx != matrix->ctx) {
+        return idsi_fail(ctx, IDS_ERR_ARG, "the matrix was made with another context");
+    }
+    return IDS_OK;
+}
+
 ids_status ids_matrix_write(ids_ctx *ctx, const ids_matrix *matrix, ids_sink_fn sink,
                             void *sink_user)
 {
-    ids_status st = IDS_OK;
+    ids_status st = check_writing(ctx, matrix, sink);
     idsi_market market;
     step s = {.matrix = matrix, .market = &market};
 
-    if (ctx == NULL || matrix == NULL || sink == NULL || ctx != matrix->ctx) {
-        return idsi_fail_arg(ctx, "context, matrix or sink");
+    if (st != IDS_OK) {
+        return st;
     }
     idsi_market_init(&market, ctx, sink, sink_user);
     IDSI_TRY(write_head(matrix, &market));
@@ -322,11 +333,11 @@ done:
 ids_status ids_matrix_write_columns(ids_ctx *ctx, const ids_matrix *matrix, ids_sink_fn sink,
                                     void *sink_user)
 {
-    ids_status st = IDS_OK;
+    ids_status st = check_writing(ctx, matrix, sink);
     idsi_market market;
 
-    if (ctx == NULL || matrix == NULL || sink == NULL || ctx != matrix->ctx) {
-        return idsi_fail_arg(ctx, "context, matrix or sink");
+    if (st != IDS_OK) {
+        return st;
     }
     idsi_market_init(&market, ctx, sink, sink_user);
     for (uint64_t column = 0; column < matrix->columns; column++) {

@@ -57,7 +57,7 @@ typedef enum idsi_char_class {
 size_t idsi_utf8_decode(const char *text, size_t length, uint32_t *code);
 idsi_char_class idsi_char_classify(uint32_t code);
 
-/* ---- the notation of operations (notation.c) --------------------------------------------------- */
+/* ---- the notation of operations (notation.c) ------------------------------------------------ */
 
 /* Longest name or symbol, in bytes. */
 #define IDSI_MAX_NAME 63u

@@ -225,6 +225,11 @@ START_TEST(test_errors)
     TEST_STATUS(ctx, ids_matrix_write(ctx, matrix, refuse, NULL), IDS_ERR_IO);
     TEST_STATUS(ctx, ids_matrix_write_columns(ctx, matrix, refuse, NULL), IDS_ERR_IO);
     TEST_STATUS(ctx, ids_matrix_write(ctx, matrix, NULL, NULL), IDS_ERR_ARG);
+    ids_ctx *other = test_ctx();
+    TEST_STATUS(other, ids_matrix_write(other, matrix, refuse, NULL), IDS_ERR_ARG);
+    ck_assert_ptr_nonnull(strstr(ids_ctx_message(other), "another context"));
+    TEST_STATUS(other, ids_matrix_write_columns(other, matrix, refuse, NULL), IDS_ERR_ARG);
+    test_ctx_free(other);
     TEST_STATUS(ctx, ids_matrix_write_columns(ctx, NULL, refuse, NULL), IDS_ERR_ARG);
     ids_matrix_free(matrix);
     ids_presentation_free(pres);
