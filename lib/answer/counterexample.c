@@ -157,8 +157,8 @@ static ids_status read_options(ids_ctx *ctx, const ids_counterexample_options *o
     const ids_counterexample_options none = {.struct_size = sizeof none};
 
     options = options == NULL ? &none : options;
-    ids_status st = idsi_check_struct(ctx, "ids_counterexample_options", options->struct_size,
-                                      sizeof *options);
+    ids_status st =
+        idsi_check_struct(ctx, "ids_counterexample_options", options->struct_size, sizeof *options);
     if (st != IDS_OK) {
         return st;
     }

@@ -140,8 +140,8 @@ ids_status idsi_follows_check(ids_ctx *ctx, const ids_follows_options *options)
 {
     ids_status st = IDS_OK;
     if (options != NULL) {
-        IDSI_TRY(idsi_check_struct(ctx, "ids_follows_options", options->struct_size,
-                                   sizeof *options));
+        IDSI_TRY(
+            idsi_check_struct(ctx, "ids_follows_options", options->struct_size, sizeof *options));
         IDSI_TRY(idsi_check_primes(ctx, options->primes));
     }
 done:

@@ -314,8 +314,8 @@ static ids_status check_arguments(ids_ctx *ctx, uint32_t from, uint32_t to,
     if (options == NULL) {
         return st;
     }
-    IDSI_TRY(idsi_check_struct(ctx, "ids_partition_options", options->struct_size,
-                               sizeof *options));
+    IDSI_TRY(
+        idsi_check_struct(ctx, "ids_partition_options", options->struct_size, sizeof *options));
     IDSI_TRY(idsi_check_primes(ctx, options->primes));
     if (options->partition != NULL) {
         IDSI_TRY(check_partition(ctx, from, to, options));

@@ -252,8 +252,7 @@ static ids_status check_options(ids_ctx *ctx, const ids_rank_options *options)
 {
     ids_status st = IDS_OK;
 
-    IDSI_TRY(
-        idsi_check_struct(ctx, "ids_rank_options", options->struct_size, sizeof *options));
+    IDSI_TRY(idsi_check_struct(ctx, "ids_rank_options", options->struct_size, sizeof *options));
     IDSI_TRY(idsi_check_primes(ctx, options->primes));
     if (options->field == 0) {
         return IDS_OK;

@@ -133,8 +133,8 @@ static ids_status check_options(ids_ctx *ctx, const ids_matrix_options *options,
 
     memset(chosen, 0, sizeof *chosen);
     if (options != NULL) {
-        IDSI_TRY(idsi_check_struct(ctx, "ids_matrix_options", options->struct_size,
-                                   sizeof *options));
+        IDSI_TRY(
+            idsi_check_struct(ctx, "ids_matrix_options", options->struct_size, sizeof *options));
         *chosen = *options;
     }
     if (chosen->field != 0) {

@@ -28,8 +28,8 @@ static ids_status choose_options(ids_ctx *ctx, const ids_normal_options *options
 
     memset(chosen, 0, sizeof *chosen);
     if (options != NULL) {
-        IDSI_TRY(idsi_check_struct(ctx, "ids_normal_options", options->struct_size,
-                                   sizeof *options));
+        IDSI_TRY(
+            idsi_check_struct(ctx, "ids_normal_options", options->struct_size, sizeof *options));
         *chosen = *options;
     }
     if (chosen->field != 0) {

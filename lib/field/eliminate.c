@@ -196,8 +196,8 @@ ids_status idsi_eliminate(const idsi_matrix *matrix, idsi_random *random, idsi_r
                           .columns = matrix->columns};
 
     if (matrix->columns >= LEAST_SHARED) {
-        IDSI_TRY(idsi_team_create(
-            e.ctx, idsi_team_members(e.ctx, matrix->columns / MEMBER_COLUMNS), &e.team));
+        IDSI_TRY(idsi_team_create(e.ctx, idsi_team_members(e.ctx, matrix->columns / MEMBER_COLUMNS),
+                                  &e.team));
     }
     IDSI_TRY(idsi_feed_create(matrix, e.team, &e.feed));
     IDSI_TRY(idsi_echelon_create(e.ctx, e.prime, e.columns, &e.echelon));

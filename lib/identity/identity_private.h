@@ -130,8 +130,8 @@ struct ids_presentation {
  * use, so that those of another presentation can be added to a text whose lines keep their numbers.
  * The first `hidden` bytes, of line 1, are not shown nor counted in messages and places.
  */
-ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
-                                  const char *source, bool operations_follow, size_t hidden,
+ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length, const char *source,
+                                  bool operations_follow, size_t hidden,
                                   ids_presentation **presentation);
 /* The same operations, written in the same way, with the same symmetries, in the same order. */
 bool idsi_signature_equal(const ids_signature *a, const ids_signature *b);

@@ -85,8 +85,8 @@ ids_status ids_presentation_read(ids_ctx *ctx, const char *text, size_t length, 
     return idsi_presentation_read(ctx, text, length, source, false, 0, presentation);
 }
 
-ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
-                                  const char *source, bool operations_follow, size_t hidden,
+ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length, const char *source,
+                                  bool operations_follow, size_t hidden,
                                   ids_presentation **presentation)
 {
     idsi_reader reader = {.ctx = ctx,

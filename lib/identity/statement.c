@@ -302,8 +302,8 @@ static ids_status fail_word(idsi_reader *reader, size_t word)
             "its line in an operator",
             found.text);
     }
-    const char *near = idsi_reader_nearest(reader, word, idsi_statement_words,
-                                           IDSI_STATEMENT_WORDS);
+    const char *near =
+        idsi_reader_nearest(reader, word, idsi_statement_words, IDSI_STATEMENT_WORDS);
     return idsi_reader_fail(reader, IDS_ERR_PARSE, word,
                             "unknown statement %s; expected operation, define, identity, "
                             "candidate or model%s%s%s",

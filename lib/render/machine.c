@@ -28,8 +28,7 @@ static ids_status append_field(idsi_text *line, const char *field, bool alone)
 {
     ids_status st = IDS_OK;
 
-    const bool quoted =
-        field[strcspn(field, ",\"\r\n")] != '\0' || (alone && field[0] == '\0');
+    const bool quoted = field[strcspn(field, ",\"\r\n")] != '\0' || (alone && field[0] == '\0');
     if (!quoted && is_ascii(field)) {
         return idsi_text_puts(line, field);
     }

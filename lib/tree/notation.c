@@ -40,8 +40,7 @@ static bool is_run(const char *text, size_t length, idsi_char_class head, idsi_c
         uint32_t code = 0;
         const size_t bytes = idsi_utf8_decode(text + at, length - at, &code);
         const idsi_char_class class = idsi_char_classify(code);
-        if (bytes == 0 ||
-            (class != head && (at == 0 || (class != second && class != third)))) {
+        if (bytes == 0 || (class != head && (at == 0 || (class != second && class != third)))) {
             return false;
         }
         at += bytes;

@@ -42,8 +42,7 @@ static ids_status check_operation(ids_ctx *ctx, const ids_operation *operation)
     if (operation->open == NULL || operation->open[0] == '\0') {
         return idsi_fail(ctx, IDS_ERR_ARG, "an operation has no symbol");
     }
-    const char *fault =
-        idsi_notation_fault(operation->notation, operation->open, operation->close);
+    const char *fault = idsi_notation_fault(operation->notation, operation->open, operation->close);
     if (fault != NULL) {
         const bool visible = is_visible(operation->open);
         return idsi_fail(ctx, IDS_ERR_ARG, "an operation cannot be written with %s%.70s%s: %s",

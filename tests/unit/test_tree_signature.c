@@ -91,8 +91,7 @@ START_TEST(test_notation)
                   ids_status_name(st));
     if (s->message != NULL) {
         ck_assert_ptr_null(sig);
-        ck_assert_msg(strstr(ids_ctx_message(ctx), s->message) != NULL, "%s",
-                      ids_ctx_message(ctx));
+        ck_assert_msg(strstr(ids_ctx_message(ctx), s->message) != NULL, "%s", ids_ctx_message(ctx));
     }
     ids_signature_free(sig);
     test_ctx_free(ctx);
