@@ -120,7 +120,9 @@ typedef struct ids_progress {
  * Progress hook, called about ten times a second; non-zero cancels the call.
  *
  * With one thread allowed it runs on the thread that made the call, else perhaps on one that the
- * library started for it; never twice at once for one context. It must not call the library with
+ * library started for it; never twice at once for one context. Work that is not counted calls it
+ * too, less often, with an empty stage and all else 0: a hook that shows progress passes over these
+ * calls, one that cancels answers them as well. It must not call the library with
  * this context, but for ids_ctx_cancel() and ids_ctx_memory().
  */
 typedef int (*ids_progress_fn)(void *user, const ids_progress *progress);
@@ -167,12 +169,24 @@ IDS_API void ids_ctx_free(ids_ctx *ctx);
 /**
  * Asks the call that runs with this context to stop with IDS_ERR_CANCELLED.
  *
- * Sets an atomic flag and nothing else. The flag is cleared when a call has answered it.
+ * Sets an atomic flag and nothing else. The flag is cleared when a call has answered it. When it
+ * comes too late for one call it stops the next: ids_ctx_cancel_clear() withdraws it.
  *
  * @param ctx  borrowed; NULL is fine.
  * Cost: one atomic store, no allocation. Threads: any, and signal handlers. Since: 0.1
  */
 IDS_API void ids_ctx_cancel(ids_ctx *ctx);
+
+/**
+ * Withdraws ids_ctx_cancel() where no call has answered it yet.
+ *
+ * To be called between two calls when the request was meant for the first one, and nobody makes
+ * requests any more.
+ *
+ * @param ctx  borrowed; NULL is fine.
+ * Cost: one atomic store, no allocation. Threads: any, and signal handlers. Since: 0.1
+ */
+IDS_API void ids_ctx_cancel_clear(ids_ctx *ctx);
 
 /**
  * Explanation of the last failure in this context, "" when there was none.

@@ -16,7 +16,7 @@ extern "C" {
 /** Options of ids_fresh_create(); set struct_size, the rest to 0 for the defaults. */
 typedef struct ids_fresh_options {
     size_t struct_size; /**< sizeof(ids_fresh_options) */
-    uint32_t primes;    /**< number of random primes to compute with, at most 1000; 0: one */
+    uint32_t primes;    /**< random primes to compute with, at most IDS_MAX_PRIMES; 0: one */
     uint64_t seed;      /**< seed that primes and points are drawn from */
     bool exact;         /**< an algebra is evaluated on all tuples of basis elements, not at random
                              points; refused where these are too many */

@@ -6,8 +6,6 @@
 
 #include "fresh_private.h"
 
-#define MOST_PRIMES 1000u
-
 void ids_fresh_free(ids_fresh *fresh)
 {
     if (fresh != NULL) {
@@ -170,9 +168,9 @@ ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from,
     if (options != NULL) {
         chosen = *options;
     }
-    if (chosen.primes > MOST_PRIMES) {
+    if (chosen.primes > IDS_MAX_PRIMES) {
         return idsi_fail(ctx, IDS_ERR_ARG, "%u primes: at most %u are used",
-                         (unsigned)chosen.primes, MOST_PRIMES);
+                         (unsigned)chosen.primes, IDS_MAX_PRIMES);
     }
     *fresh = NULL;
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));

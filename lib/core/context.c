@@ -79,6 +79,13 @@ void ids_ctx_cancel(ids_ctx *ctx)
     }
 }
 
+void ids_ctx_cancel_clear(ids_ctx *ctx)
+{
+    if (ctx != NULL) {
+        atomic_store(&ctx->cancel, 0);
+    }
+}
+
 const char *ids_ctx_message(const ids_ctx *ctx)
 {
     return ctx == NULL ? "" : ctx->message;

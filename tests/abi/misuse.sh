@@ -63,7 +63,7 @@ done |
         }
         printf "    functions++;\n"
         emit(plain)
-        if (contexts && name != "ids_ctx_free" && name != "ids_ctx_cancel") emit(with)
+        if (contexts && name != "ids_ctx_free" && name !~ /^ids_ctx_cancel/) emit(with)
     }
     function emit(arguments,    call) {
         call = name "(" arguments ")"

@@ -212,12 +212,8 @@ START_TEST(test_cancel)
         table = NULL;
     }
     ck_assert_int_eq(pthread_join(other, NULL), 0);
-    ids_status st = ids_rank_table_create(ctx, pres, 1, 5, NULL, &table);
-    ids_rank_table_free(table);
-    table = NULL;
-    if (st == IDS_ERR_CANCELLED) { /* the last flag was still up */
-        TEST_OK(ctx, ids_rank_table_create(ctx, pres, 1, 5, NULL, &table));
-    }
+    ids_ctx_cancel_clear(ctx); /* the last one may have come too late */
+    TEST_OK(ctx, ids_rank_table_create(ctx, pres, 1, 5, NULL, &table));
     ids_rank_table_free(table);
     ids_presentation_free(pres);
     test_ctx_free(ctx);

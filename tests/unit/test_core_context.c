@@ -128,6 +128,10 @@ START_TEST(test_cancel)
     ck_assert_int_eq(ids_ctx_last_status(ctx), IDS_ERR_CANCELLED);
     /* answered: the context is usable again */
     TEST_OK(ctx, idsi_poll(ctx, NULL));
+    ids_ctx_cancel(ctx);
+    ids_ctx_cancel_clear(ctx);
+    TEST_OK(ctx, idsi_poll(ctx, NULL));
+    ids_ctx_cancel_clear(NULL);
 
     cancelled_by_signal = ctx;
     action.sa_handler = on_signal;
