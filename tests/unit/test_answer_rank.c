@@ -151,7 +151,7 @@ START_TEST(test_weakened)
 END_TEST
 
 /* By hand: what is left of an identity over a small field, before a common factor is divided out.
- * x^2 becomes xy + yx, which a commutative product makes 2xy, and an alternating one 0. */
+ * x^2 becomes xy + yx, and with a commutative product 2xy. */
 START_TEST(test_vanishing_laws)
 {
     static const struct {
