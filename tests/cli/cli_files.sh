@@ -61,6 +61,53 @@ has err 'cannot write "no/such/folder"'
 run 2 show wrong.pres --output result
 cmp -s result expected || complain "a wrong input has spoiled an older output"
 
+# ---- what was there before -------------------------------------------------------------------
+
+# A command that fails leaves an older file as it was, and nothing beside it.
+mkdir kept
+cp "$source_dir/data/crosses/pair.pres" kept
+unspoilt() { # STATUS ARGUMENT...: --output kept/result is a file that must not change
+    echo older >kept/result
+    run "$@" --output kept/result
+    is kept/result older
+    [ "$(ls kept)" = $'pair.pres\nresult' ] || complain "$last: left behind: $(ls kept)"
+}
+unspoilt 3 types kept/pair.pres --degree 40 --memory 1M
+unspoilt 3 rank kept/pair.pres --degrees 9..10 --memory 100K
+unspoilt 3 basis kept/pair.pres --degree 40 --memory 1M
+# Degrees that were finished are a result, also in a file.
+run 3 rank kept/pair.pres --degrees 1..20 --memory 1M --format csv --output kept/result
+has kept/result '3,3,0,3,exact'
+rm kept/result
+run 3 matrix kept/pair.pres --degree 9 --memory 1M --output kept/m.mtx
+[ "$(ls kept)" = pair.pres ] || complain "$last: left behind: $(ls kept)"
+
+# Permissions stay, a symbolic link stays one, other names of the file see the result.
+run 0 show jordan.pres
+cp out expected
+(umask 027 && "$tool" show jordan.pres --output fresh)
+[ "$(stat -c %a fresh)" = 640 ] || complain "a new file has the permissions $(stat -c %a fresh)"
+echo older >target && chmod 604 target && ln -s target link && ln target twin
+run 0 show jordan.pres --output link
+{ [ -L link ] && cmp -s target expected && cmp -s twin expected; } || complain "$last: the links"
+rm twin
+run 0 show jordan.pres --output target
+[ "$(stat -c %a target)" = 604 ] || complain "$last: permissions $(stat -c %a target)"
+rm target
+run 0 show jordan.pres --output link
+{ [ -L link ] && cmp -s target expected; } || complain "$last: a link to nothing yet"
+run 0 show jordan.pres --output /dev/stdout
+cmp -s out expected || complain "$last: another output"
+{ "$tool" show jordan.pres --output /dev/stdout && echo more; } >>both
+[ "$(tail -n 1 both)" = more ] || complain "/dev/stdout lost what came after it"
+run 0 show jordan.pres --output /dev/null
+[ -c /dev/null ] || complain "$last: /dev/null is gone"
+mkfifo pipe
+timeout 20 cat pipe >through &
+run 0 show jordan.pres --output pipe
+wait $!
+{ [ -p pipe ] && cmp -s through expected; } || complain "$last: a pipe"
+
 # full ARGUMENT...: with standard output on a full disk.
 full() {
     local got=0

@@ -114,7 +114,7 @@ has err "are limits of --algebra FILE"
 run 2 follows alternative.pres --candidate assoc --algebra a.alg --dimension 256
 has err "--dimension wants a whole number from 1 to 255"
 run 2 follows alternative.pres --candidate assoc --algebra a --witness a
-has err "name the same file"
+has err "--algebra and --witness name the same file"
 sed 's/ = -\?e7$/ = e6/' assoc.alg >bad
 run 2 check bad
 has err "the mark at the end does not fit the file"
@@ -144,7 +144,11 @@ has err "exclude each other"
 run 2 follows commutative.pres --all
 has err "has no candidates"
 run 2 follows alternative.pres --candidate flexible --proof alternative.pres
-has err "would overwrite"
+has err '--proof would overwrite "alternative.pres", the file that is read'
+run 2 follows alternative.pres --candidate assoc --witness ./alternative.pres
+has err '--witness would overwrite'
+run 2 follows alternative.pres --candidate assoc --output w --witness w
+has err '--output and --witness name the same file'
 run 2 follows alternative.pres --candidate flexible --proof /nowhere/p
 has err "cannot write"
 run 2 check

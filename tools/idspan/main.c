@@ -120,7 +120,7 @@ static int run(const settings *set)
         result = exit_status(st);
         goto done;
     }
-    if (!output_open(&s.out, set->output, set->file)) {
+    if (!output_open(&s.out, set->output)) {
         goto done;
     }
     progress_start(set->task->name);
@@ -130,7 +130,7 @@ static int run(const settings *set)
     if (st != IDS_OK) {
         explain(&s, st);
     }
-    if (!output_close(&s.out)) {
+    if (!output_close(&s.out, st == IDS_OK || s.keep)) {
         result = EXIT_INPUT;
     }
 done:
@@ -153,7 +153,7 @@ static int answer(const settings *set)
     } else {
         help_general(stdout);
     }
-    return output_close(&out) ? EXIT_DONE : EXIT_INPUT;
+    return output_close(&out, true) ? EXIT_DONE : EXIT_INPUT;
 }
 
 int main(int argc, char **argv)

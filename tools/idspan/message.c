@@ -1,16 +1,11 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * Input, output and messages.
- *
- * Results go to one place, messages to standard error. A write that fails (full disk, closed
- * pipe) is remembered with its reason and reported once, when the output is closed; until then
- * the sink refuses everything, which ends the task with IDS_ERR_IO.
+ * Messages, on standard error, and input.
  */
 #include <errno.h>
 #include <stdarg.h>
 #include <stdlib.h>
 #include <string.h>
-#include <sys/stat.h>
 #include <unistd.h>
 
 #include "tool.h"
@@ -98,96 +93,4 @@ bool input_read(const char *name, char **text, size_t *length)
         fclose(file);
     }
     return read;
-}
-
-/* ---- output -------------------------------------------------------------------------- */
-
-static bool same_file(const char *a, const char *b)
-{
-    struct stat first = {0};
-    struct stat second = {0};
-
-    return stat(a, &first) == 0 && stat(b, &second) == 0 && S_ISREG(first.st_mode) &&
-           first.st_dev == second.st_dev && first.st_ino == second.st_ino;
-}
-
-bool output_open(output *out, const char *name, const char *source)
-{
-    out->error = 0;
-    if (name == NULL || strcmp(name, "-") == 0) {
-        out->file = stdout;
-        out->name = "standard output";
-        return true;
-    }
-    if (source != NULL && same_file(name, source)) {
-        complain("--output would overwrite \"%s\", the file that is read", source);
-        return false;
-    }
-    out->name = name;
-    out->file = fopen(name, "wb");
-    if (out->file == NULL) {
-        complain("cannot write \"%s\": %s", name, strerror(errno));
-        return false;
-    }
-    return true;
-}
-
-static void note_error(output *out)
-{
-    if (out->error == 0) {
-        out->error = errno != 0 ? errno : EIO;
-    }
-}
-
-int output_sink(void *user, const char *bytes, size_t length)
-{
-    output *out = user;
-
-    progress_clear();
-    if (out->error == 0) {
-        errno = 0;
-        if (fwrite(bytes, 1, length, out->file) != length) {
-            note_error(out);
-        }
-    }
-    return out->error;
-}
-
-ids_status output_printf(output *out, const char *format, ...)
-{
-    va_list args;
-    int written = 0;
-
-    progress_clear();
-    if (out->error == 0) {
-        errno = 0;
-        va_start(args, format);
-        written = vfprintf(out->file, format, args);
-        va_end(args);
-        if (written < 0) {
-            note_error(out);
-        }
-    }
-    return out->error == 0 ? IDS_OK : IDS_ERR_IO;
-}
-
-bool output_close(output *out)
-{
-    if (out->file == NULL) {
-        return true;
-    }
-    errno = 0;
-    if (fflush(out->file) != 0 || ferror(out->file)) {
-        note_error(out);
-    }
-    errno = 0;
-    if (out->file != stdout && fclose(out->file) != 0) {
-        note_error(out);
-    }
-    out->file = NULL;
-    if (out->error != 0) {
-        complain("cannot write %s: %s", out->name, strerror(out->error));
-        return false;
-    }
-    return true;
 }

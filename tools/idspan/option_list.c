@@ -52,7 +52,7 @@ const option option_list[OPTION_END] = {
                        "text (for people, the default), csv, json or latex;\n"
                        "of rank also svg and html; of draw: text, ascii, svg or\n"
                        "tikz; of matrix: mtx"},
-    [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE"},
+    [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE, once it is complete"},
     [OPTION_MEMORY] = {"memory", "SIZE",
                        "use at most SIZE, such as 500M or 8G (default 4G);\n"
                        "none for no limit"},

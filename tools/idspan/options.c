@@ -418,7 +418,7 @@ static bool check(settings *read)
                  read->file, chosen->usage);
         return false;
     }
-    return check_pairs(read) && check_degrees(read) && check_format(read) &&
+    return check_pairs(read) && files_check(read) && check_degrees(read) && check_format(read) &&
            (chosen->check == NULL || chosen->check(read));
 }
 

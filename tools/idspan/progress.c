@@ -32,6 +32,7 @@ static struct {
 
 static ids_ctx *volatile watched;
 static volatile sig_atomic_t caught;
+static const char *volatile unfinished; /* file to be removed when a signal ends the program */
 
 /* ---- progress ------------------------------------------------------------------------ */
 
@@ -161,6 +162,9 @@ static void on_signal(int number)
         caught = number;
         ids_ctx_cancel(watched);
     } else if (now.tv_sec - first.tv_sec > 1) {
+        if (unfinished != NULL) {
+            unlink(unfinished);
+        }
         signal(number, SIG_DFL);
         raise(number);
     }
@@ -189,6 +193,11 @@ void interrupt_watch(ids_ctx *ctx)
         catch_signal(SIGINT);
         catch_signal(SIGTERM);
     }
+}
+
+void interrupt_removes(const char *name)
+{
+    unfinished = name;
 }
 
 bool interrupted(void)

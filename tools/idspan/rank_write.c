@@ -194,6 +194,8 @@ ids_status rank_write(session *s, const rank_view *view)
     if (text && view->verdict) {
         TRY(write_verdict(s, view));
     }
+    /* The finished degrees of work that was stopped are a result, a table without any is not. */
+    s->keep = view->count > 0;
 done:
     ids_writer_free(writer);
     return st;

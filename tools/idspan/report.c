@@ -31,8 +31,11 @@ ids_status report_finish(session *s, ids_report *report)
 {
     bool picture = (unsigned)s->set->format == FORMAT_SVG;
 
-    return ids_report_write(report, picture ? IDS_REPORT_SVG : IDS_REPORT_HTML, output_sink,
-                            &s->out);
+    ids_status st = ids_report_write(report, picture ? IDS_REPORT_SVG : IDS_REPORT_HTML,
+                                     output_sink, &s->out);
+
+    s->keep = st == IDS_OK;
+    return st;
 }
 
 /* The rows that the table has, then the degrees that it should have and has not. */

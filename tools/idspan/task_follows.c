@@ -75,7 +75,7 @@ static ids_status write_proof(session *s, size_t index, const ids_follows_option
     output out = {0};
 
     TRY(ids_derivation_find(s->ctx, s->pres, index, options, &derivation));
-    if (!output_open(&out, s->set->proof, s->set->file)) {
+    if (!output_open(&out, s->set->proof)) {
         st = IDS_ERR_IO;
         goto done;
     }
@@ -84,7 +84,7 @@ static ids_status write_proof(session *s, size_t index, const ids_follows_option
     } else {
         st = ids_derivation_write(s->ctx, derivation, output_sink, &out);
     }
-    if (!output_close(&out)) {
+    if (!output_close(&out, st == IDS_OK)) {
         st = IDS_ERR_IO;
     }
 done:
@@ -99,12 +99,12 @@ static ids_status write_witness(session *s, size_t index, const ids_follows_opti
     output out = {0};
 
     TRY(ids_witness_find(s->ctx, s->pres, index, options, &witness));
-    if (!output_open(&out, s->set->witness, s->set->file)) {
+    if (!output_open(&out, s->set->witness)) {
         st = IDS_ERR_IO;
         goto done;
     }
     st = ids_witness_write(s->ctx, witness, output_sink, &out);
-    if (!output_close(&out)) {
+    if (!output_close(&out, st == IDS_OK)) {
         st = IDS_ERR_IO;
     }
 done:
@@ -124,7 +124,7 @@ static ids_status write_algebra(session *s, size_t index, const ids_follows_opti
                                                .seed = options->seed};
 
     TRY(ids_counterexample_find(s->ctx, s->pres, index, &limits, &found));
-    if (!output_open(&out, s->set->algebra, s->set->file)) {
+    if (!output_open(&out, s->set->algebra)) {
         st = IDS_ERR_IO;
         goto done;
     }
@@ -133,7 +133,7 @@ static ids_status write_algebra(session *s, size_t index, const ids_follows_opti
     } else {
         st = ids_counterexample_write(s->ctx, found, output_sink, &out);
     }
-    if (!output_close(&out)) {
+    if (!output_close(&out, st == IDS_OK)) {
         st = IDS_ERR_IO;
     }
 done:
@@ -277,16 +277,11 @@ static ids_status run(session *s)
         TRY(write_verdict(s, &t));
     }
     s->no = t.following < t.count;
+    s->keep = true;
     st = t.failed;
 done:
     ids_writer_free(t.writer);
     return st;
-}
-
-/* Whether two options name the same file. */
-static bool same_file(const char *a, const char *b)
-{
-    return a != NULL && b != NULL && strcmp(a, b) == 0;
 }
 
 static bool check(settings *read)
@@ -296,11 +291,6 @@ static bool check(settings *read)
     if (read->candidate == NULL && (read->seen & BIT(OPTION_ALL)) == 0) {
         complain("\"follows\" wants a candidate, or --all:\n        idspan follows %s%s",
                  read->file, task_follows.usage);
-        return false;
-    }
-    if (same_file(read->proof, read->output) || same_file(read->witness, read->output) ||
-        same_file(read->algebra, read->output) || same_file(read->algebra, read->witness)) {
-        complain("--output, --witness or --algebra and another option name the same file");
         return false;
     }
     if (read->algebra == NULL && (read->seen & limits) != 0) {

@@ -391,12 +391,12 @@ static ids_status save(session *s, const ids_fresh *fresh)
     output out = {0};
 
     TRY(ids_fresh_presentation(s->ctx, fresh, &text));
-    if (!output_open(&out, s->set->save, s->set->file)) {
+    if (!output_open(&out, s->set->save)) {
         st = IDS_ERR_IO;
         goto done;
     }
     st = output_printf(&out, "%s", text);
-    if (!output_close(&out)) {
+    if (!output_close(&out, st == IDS_OK)) {
         st = IDS_ERR_IO;
     }
 done:
@@ -440,6 +440,7 @@ static ids_status run(session *s)
     if (s->set->save != NULL) {
         TRY(save(s, fresh));
     }
+    s->keep = ids_fresh_count(fresh) > 0;
     st = computed;
 done:
     ids_fresh_free(fresh);

@@ -27,11 +27,15 @@ static ids_status write_columns(session *s, const ids_matrix *matrix, const char
     output side = {0};
     ids_status st = IDS_OK;
 
-    if (!output_open(&side, name, s->set->file)) {
+    if (output_is_file(name, s->set->file)) {
+        complain("the names of the columns would overwrite \"%s\", the file that is read", name);
+        return IDS_ERR_IO;
+    }
+    if (!output_open(&side, name)) {
         return IDS_ERR_IO;
     }
     st = ids_matrix_write_columns(s->ctx, matrix, output_sink, &side);
-    if (!output_close(&side)) {
+    if (!output_close(&side, st == IDS_OK)) {
         st = IDS_ERR_IO;
     }
     return st;
@@ -52,7 +56,7 @@ static ids_status write_summary(const session *s, const ids_matrix *matrix, cons
     TRY(output_printf(&screen, ".\nThe matrix is in %s, the names of its columns in %s.\n",
                       s->set->output, name));
 done:
-    return output_close(&screen) ? st : IDS_ERR_IO;
+    return output_close(&screen, true) ? st : IDS_ERR_IO;
 }
 
 static ids_status run(session *s)

@@ -118,6 +118,8 @@ typedef struct settings {
 
 /* Reads the command line; false after a message on standard error. */
 bool settings_read(int argc, char **argv, settings *read);
+/* False after a message when an option would write to a file that is in use otherwise. */
+bool files_check(const settings *read);
 
 /* ---- the run of a task --------------------------------------------------------------- */
 
@@ -125,7 +127,9 @@ bool settings_read(int argc, char **argv, settings *read);
 typedef struct output {
     FILE *file;
     const char *name;
-    int error; /* errno of the first write that failed, else 0 */
+    int error;       /* errno of the first write that failed, else 0 */
+    char *target;    /* the file to be replaced, and the temporary one that will replace it; */
+    char *temporary; /* NULL when it is written to directly */
 } output;
 
 /* What a task works with; made and closed by main.c. */
@@ -135,7 +139,8 @@ typedef struct session {
     ids_presentation *pres; /* NULL for a task that wants text, and without a file */
     char *text;             /* the file; NULL when there is none */
     size_t length;
-    bool no; /* the answer is "does not follow" */
+    bool no;   /* the answer is "does not follow" */
+    bool keep; /* what was written is a result, even if the task fails later */
     output out;
     char failure[2048]; /* explanation of a failure, "" to use the library's */
 } session;
@@ -256,13 +261,16 @@ void complain(const char *format, ...) PRINTF_LIKE(1, 2);
 /* Reads a whole file, "-" for standard input; the caller frees *text. False after a message. */
 bool input_read(const char *name, char **text, size_t *length);
 
-/* Opens the output unless it is the file `source`. False after a message. */
-bool output_open(output *out, const char *name, const char *source);
+/* Whether both names are there and are those of one regular file. */
+bool output_is_file(const char *name, const char *other);
+/* Opens a file, or standard output for NULL and "-". False after a message. */
+bool output_open(output *out, const char *name);
 /* An ids_sink_fn for an output. */
 int output_sink(void *user, const char *bytes, size_t length);
 ids_status output_printf(output *out, const char *format, ...) PRINTF_LIKE(2, 3);
-/* False after a message when any write has failed. */
-bool output_close(output *out);
+/* With `keep` the file replaces an older one, else it is forgotten and the older one stays, where
+ * that can be. False after a message when any write has failed. */
+bool output_close(output *out, bool keep);
 
 /* ---- progress and interruption ------------------------------------------------------- */
 
@@ -283,6 +291,8 @@ void progress_clear(void);
 /* Ctrl-C and SIGTERM cancel what runs with ctx from now on; NULL: they are only noted. */
 void interrupt_watch(ids_ctx *ctx);
 bool interrupted(void);
+/* A second signal, which ends the program at once, removes this file; NULL: none. */
+void interrupt_removes(const char *name);
 
 /* ---- numbers of any size that the tool needs ----------------------------------------- */
 
