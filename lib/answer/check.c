@@ -49,6 +49,9 @@ static ids_status check_mark(idsi_cursor *cursor, const char *prefix)
         while (last > cursor->text && last[-1] != '\n') {
             last--;
         }
+        /* Without such a line the mark is that of the whole, to be written behind it. */
+        (void)snprintf(mark, sizeof mark, "%send", prefix);
+        last = strncmp(last, mark, strlen(mark)) == 0 ? last : cursor->end;
     }
     (void)snprintf(mark, sizeof mark, "%send %016" PRIx64 "\n", prefix,
                    idsi_certificate_mark(cursor->text, (size_t)(last - cursor->text)));
@@ -60,7 +63,9 @@ static ids_status check_mark(idsi_cursor *cursor, const char *prefix)
         cursor->at = cursor->text;
         return idsi_cursor_fail(cursor, IDS_ERR_PARSE,
                                 "the mark at the end does not fit the file: it was damaged or "
-                                "changed, or is not whole");
+                                "changed, or is not whole; a file that is as it should be ends in "
+                                "the line \"%.*s\"",
+                                (int)strlen(mark) - 1, mark);
     }
     cursor->end = last;
     return IDS_OK;
@@ -463,6 +468,27 @@ done:
     return st;
 }
 
+/* A copy of the text with line feeds in the place of carriage return and line feed. */
+static ids_status unify_lines(idsi_cursor *cursor, size_t length, char **copy)
+{
+    ids_status st = IDS_OK;
+    size_t used = 0;
+
+    if (length == 0 || memchr(cursor->text, '\r', length) == NULL) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_alloc_array(cursor->ctx, length + 1, 1, copy));
+    for (size_t i = 0; i < length; i++) {
+        if (cursor->text[i] != '\r' || i + 1 == length || cursor->text[i + 1] != '\n') {
+            (*copy)[used++] = cursor->text[i];
+        }
+    }
+    cursor->text = *copy;
+    cursor->end = *copy + used;
+done:
+    return st;
+}
+
 ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length, const char *source,
                                  ids_check_report *report)
 {
@@ -470,14 +496,17 @@ ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length, 
     ids_check_report found = {0};
     idsi_certificate made = {.ctx = ctx};
     idsi_cursor cursor = {.ctx = ctx, .source = source == NULL ? "input" : source, .text = text};
+    char *copy = NULL;
 
     if (ctx == NULL || text == NULL || report == NULL) {
         return idsi_fail_arg(ctx, "context, text or report");
     }
     cursor.end = text + length;
+    IDSI_TRY(unify_lines(&cursor, length, &copy));
     IDSI_TRY(check_file(&cursor, &made, &found));
     *report = found;
 done:
     ids_presentation_free(made.pres);
+    idsi_free(ctx, copy);
     return st;
 }

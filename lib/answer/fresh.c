@@ -98,11 +98,11 @@ static ids_status check_identities(ids_fresh *fresh, uint32_t to)
         IDSI_TRY(
             idsi_model_holds(fresh->ctx, model, IDS_ROLE_IDENTITY, i, fresh->seed, &holds, &error));
         if (!holds) {
-            st = idsi_fail(fresh->ctx, IDS_ERR_DOMAIN,
-                           "the identity %s of line %u does not hold in the model %s; new "
-                           "identities can only be told from identities that hold",
-                           identity->name[0] == '\0' ? "without name" : identity->name,
-                           identity->line, model->decl->name);
+            st = idsi_presentation_fail(
+                fresh->ctx, model->pres, IDS_ERR_DOMAIN, (ids_place){identity->line, 1},
+                "the identity%s%s does not hold in the model %s; new identities can only be told "
+                "from identities that hold",
+                identity->name[0] == '\0' ? "" : " ", identity->name, model->decl->name);
             goto done;
         }
         fresh->doubt += error;

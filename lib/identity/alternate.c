@@ -127,6 +127,33 @@ static ids_status read_variable(idsi_reader *reader, permutation *p)
     return IDS_OK;
 }
 
+/* Permuting variables that occur a different number of times would make unlike terms. */
+static ids_status check_balance(idsi_reader *reader, const permutation *p, const idsi_poly *poly,
+                                size_t word)
+{
+    for (size_t t = 0; t < poly->count; t++) {
+        uint32_t uses[IDSI_MAX_VARIABLES] = {0};
+        for (size_t k = poly->start[t]; k < poly->start[t + 1]; k++) {
+            for (uint32_t i = 0; i < p->count; i++) {
+                uses[i] += poly->tokens[k] == p->label[i];
+            }
+        }
+        for (uint32_t i = 1; i < p->count; i++) {
+            if (uses[i] != uses[0]) {
+                const idsi_shown a = idsi_reader_show(reader, reader->variables[p->label[0] - 1]);
+                const idsi_shown b = idsi_reader_show(reader, reader->variables[p->label[i] - 1]);
+                return idsi_reader_fail(
+                    reader, IDS_ERR_PARSE, word,
+                    "not homogeneous: some term has %s %u time%s and %s %u time%s; expected the "
+                    "variables behind alternating equally often in each term",
+                    a.text, uses[0], uses[0] == 1 ? "" : "s", b.text, uses[i],
+                    uses[i] == 1 ? "" : "s");
+            }
+        }
+    }
+    return IDS_OK;
+}
+
 ids_status idsi_reader_alternate(idsi_reader *reader, idsi_poly *poly)
 {
     ids_status st = IDS_OK;
@@ -137,6 +164,7 @@ ids_status idsi_reader_alternate(idsi_reader *reader, idsi_poly *poly)
             reader->at++;
             IDSI_TRY(read_variable(reader, &p));
         } while (reader->lexemes[reader->at].kind == IDSI_LEX_COMMA);
+        IDSI_TRY(check_balance(reader, &p, poly, word));
         IDSI_TRY(idsi_reader_place(reader, alternate(reader, &p, poly), word));
     }
 done:

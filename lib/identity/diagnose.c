@@ -90,9 +90,35 @@ static void make_excerpt(const idsi_reader *reader, size_t offset, uint32_t colu
     out->caret[c + 1] = '\0';
 }
 
+/* Turns the reader to the text that its own one is a piece of. */
+static idsi_reader at_origin(const idsi_reader *reader, ids_place *place, size_t *offset)
+{
+    const idsi_origin *origin = reader->origin;
+    const char *text = origin->pres->text;
+    size_t at = 0;
+    if (place->line == origin->place.line) {
+        const uint32_t prefix = sizeof IDSI_PIECE_PREFIX - 1;
+        place->column = origin->place.column + (place->column > prefix ? place->column - prefix : 1);
+        place->column--;
+    }
+    for (uint32_t line = 1; line < place->line && at < origin->pres->length; at++) {
+        line += text[at] == '\n';
+    }
+    *offset = at;
+    return (idsi_reader){.ctx = reader->ctx,
+                         .source = origin->pres->source,
+                         .text = text,
+                         .length = origin->pres->length};
+}
+
 ids_status idsi_reader_fail_place(idsi_reader *reader, ids_status status, ids_place place,
                                   size_t offset, const char *format, va_list args)
 {
+    idsi_reader other;
+    if (reader->origin != NULL) {
+        other = at_origin(reader, &place, &offset);
+        reader = &other;
+    }
     char message[480];
     excerpt lines;
     const int n = vsnprintf(message, sizeof message, format, args);
@@ -132,6 +158,30 @@ ids_status idsi_reader_place(idsi_reader *reader, ids_status status, size_t lexe
     char message[400];
     (void)snprintf(message, sizeof message, "%s", ids_ctx_message(reader->ctx));
     return idsi_reader_fail(reader, status, lexeme, "%s", message);
+}
+
+ids_status idsi_presentation_fail(ids_ctx *ctx, const ids_presentation *pres, ids_status status,
+                                  ids_place place, const char *format, ...)
+{
+    /* A text of which the whole of `pres` is a piece, so that only the offset is looked up. */
+    const idsi_origin origin = {.pres = pres};
+    idsi_reader reader = {.ctx = ctx, .origin = &origin};
+    va_list args;
+    va_start(args, format);
+    ids_status st = idsi_reader_fail_place(&reader, status, place, 0, format, args);
+    va_end(args);
+    return st;
+}
+
+ids_status idsi_presentation_place(ids_ctx *ctx, const ids_presentation *pres, ids_status status,
+                                   ids_place place)
+{
+    char message[400];
+    if (status == IDS_OK || ids_ctx_last_place(ctx).line != 0) {
+        return status;
+    }
+    (void)snprintf(message, sizeof message, "%s", ids_ctx_message(ctx));
+    return idsi_presentation_fail(ctx, pres, status, place, "%s", message);
 }
 
 /* Copies at most `most` bytes, cut between characters, with "..." where something is missing. */

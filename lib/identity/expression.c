@@ -91,6 +91,12 @@ static ids_status fail_fence(idsi_reader *reader, size_t open, uint32_t count)
         return idsi_reader_fail(reader, IDS_ERR_PARSE, open,
                                 "one expression in %c%c; expected ( ) for grouping", a, b);
     }
+    if (reader->origin != NULL) {
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, open,
+                                "unknown operation %c%c with %u arguments; expected an operation "
+                                "that is declared in \"%.120s\"",
+                                a, b, count, reader->origin->file);
+    }
     return idsi_reader_fail(reader, IDS_ERR_PARSE, open,
                             "unknown operation %c%c with %u arguments; expected a declaration "
                             "above, as in: operation %ca,b%s%c",
@@ -144,6 +150,12 @@ static ids_status fail_unknown_name(idsi_reader *reader, size_t name)
                                     "before its first use",
                                     shown.text, reader->lexemes[i].line);
         }
+    }
+    if (reader->origin != NULL) {
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
+                                "unknown operation %s; expected an operation that is declared in "
+                                "\"%.120s\"",
+                                shown.text, reader->origin->file);
     }
     return idsi_reader_fail(reader, IDS_ERR_PARSE, name,
                             "unknown operation %s; expected the name of a declared operation or "
@@ -345,6 +357,12 @@ static ids_status check_after_product(idsi_reader *reader, size_t begin, size_t 
     const idsi_lexeme_kind kind = reader->lexemes[reader->at].kind;
     const idsi_shown found = idsi_reader_show(reader, reader->at);
     const bool infix = idsi_reader_operation(reader, IDS_NOTATION_INFIX, reader->at, 0) != SIZE_MAX;
+    if (kind == IDSI_LEX_SYMBOL && !infix && reader->origin != NULL) {
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
+                                "unknown operation %s; expected an operation that is declared in "
+                                "\"%.120s\"",
+                                found.text, reader->origin->file);
+    }
     if (kind == IDSI_LEX_SYMBOL && !infix) {
         return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
                                 "unknown operation %s; expected a declaration above, as in: "

@@ -96,8 +96,9 @@ typedef struct idsi_word {
 typedef struct idsi_realization {
     uint32_t op;
     uint32_t arity;
-    uint32_t line; /* of the text on the right, and its column */
-    uint32_t column;
+    ids_place place; /* of the text on the right, */
+    uint32_t begin;  /* and its bytes in the text of the presentation */
+    uint32_t end;
     char *letters[IDS_MAX_ARITY]; /* names of the arguments */
     size_t count;                 /* associative: words, sorted, none twice, no coefficient 0 */
     size_t capacity;
@@ -110,6 +111,7 @@ typedef struct idsi_model {
     ids_model_kind kind;
     char *file; /* as written; NULL for associative */
     uint32_t line;
+    uint32_t column; /* of its name */
     size_t lexeme; /* of its name, while the text is read */
     size_t count;  /* algebra: none */
     size_t capacity;
@@ -118,6 +120,9 @@ typedef struct idsi_model {
 
 struct ids_presentation {
     ids_ctx *ctx;
+    char *source; /* the name of the text, and the text, for messages about what it says */
+    char *text;
+    size_t length;
     ids_signature *sig;
     size_t model_count;
     idsi_model *models;
@@ -133,6 +138,25 @@ struct ids_presentation {
 ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length, const char *source,
                                   bool operations_follow, size_t hidden,
                                   ids_presentation **presentation);
+/*
+ * A piece of the text of a presentation that is about the operations of another file. Messages are
+ * given their places in `pres`: line `place.line` of what is read is `candidate ` and the piece,
+ * which begins at `place`.
+ */
+typedef struct idsi_origin {
+    const ids_presentation *pres;
+    const char *file;
+    ids_place place;
+} idsi_origin;
+#define IDSI_PIECE_PREFIX "candidate "
+ids_status idsi_presentation_read_piece(ids_ctx *ctx, const char *text, size_t length,
+                                        const idsi_origin *origin, ids_presentation **piece);
+/* Fails at a place of the text: source, line, column, message, the line and a caret. */
+ids_status idsi_presentation_fail(ids_ctx *ctx, const ids_presentation *pres, ids_status status,
+                                  ids_place place, const char *format, ...) IDSI_PRINTF(5, 6);
+/* Gives a failure without a place this one; passes IDS_OK on. */
+ids_status idsi_presentation_place(ids_ctx *ctx, const ids_presentation *pres, ids_status status,
+                                   ids_place place);
 /* The same operations, written in the same way, with the same symmetries, in the same order. */
 bool idsi_signature_equal(const ids_signature *a, const ids_signature *b);
 void idsi_model_clear(ids_ctx *ctx, idsi_model *model);

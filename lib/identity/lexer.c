@@ -122,6 +122,20 @@ static bool goes_on(idsi_lexeme_kind kind, idsi_char_class class)
     }
 }
 
+/* Superscript digits would look like powers in a name, and are none. */
+static bool is_superscript(uint32_t code)
+{
+    return code == 0xB2 || code == 0xB3 || code == 0xB9 || code == 0x2070 ||
+           (code >= 0x2074 && code <= 0x2079);
+}
+
+static ids_status fail_superscript(const scanner *s)
+{
+    return fail(s, IDS_ERR_PARSE,
+                "a superscript is not a power here; expected the product, as in x*x for the "
+                "square of x");
+}
+
 static ids_status scan_run(scanner *s, idsi_lexeme_kind kind)
 {
     const scanner begin = *s;
@@ -132,6 +146,10 @@ static ids_status scan_run(scanner *s, idsi_lexeme_kind kind)
         IDSI_TRY(peek(s, &code, &bytes));
         if (bytes == 0 || !goes_on(kind, idsi_char_classify(code))) {
             break;
+        }
+        if (is_superscript(code)) {
+            st = fail_superscript(s);
+            goto done;
         }
         step(s, bytes);
     } while (true);
@@ -206,6 +224,9 @@ static ids_status scan_one(scanner *s, uint32_t code, size_t bytes)
     case IDSI_CHAR_MARK:
         return scan_mark(s, code, bytes);
     case IDSI_CHAR_CONTINUE:
+        if (is_superscript(code)) {
+            return fail_superscript(s);
+        }
         return fail(s, IDS_ERR_PARSE,
                     "the character U+%04X can only go on in a name; expected a letter before it",
                     (unsigned)code);

@@ -306,7 +306,8 @@ static ids_status keep_text(idsi_reader *reader, idsi_realization *made)
         }
         IDSI_TRY(idsi_text_append(&text, reader->text + at->offset, at->length));
     }
-    reader->at++;
+    const idsi_lexeme *last = &reader->lexemes[reader->at++ - 1];
+    made->end = last->offset + last->length;
     IDSI_TRY(idsi_text_take(&text, &made->text));
 done:
     idsi_text_clear(&text);
@@ -340,7 +341,7 @@ static ids_status read_realization(idsi_reader *reader, idsi_model *model)
     if (other != NULL) {
         st = idsi_reader_fail(reader, IDS_ERR_PARSE, pattern.first,
                               "the model %s realises this operation in line %u already",
-                              model->name, other->line);
+                              model->name, other->place.line);
         goto done;
     }
     if (reader->lexemes[reader->at].kind != IDSI_LEX_EQUAL) {
@@ -353,8 +354,9 @@ static ids_status read_realization(idsi_reader *reader, idsi_model *model)
     idsi_realization *made = &model->list[model->count++];
     *made = (idsi_realization){.op = op,
                                .arity = pattern.count,
-                               .line = reader->lexemes[reader->at].line,
-                               .column = reader->lexemes[reader->at].column};
+                               .place = {reader->lexemes[reader->at].line,
+                                         reader->lexemes[reader->at].column},
+                               .begin = reader->lexemes[reader->at].offset};
     for (uint32_t i = 0; i < pattern.count; i++) {
         IDSI_TRY(idsi_lexeme_copy(reader, pattern.argument[i], &made->letters[i]));
     }
@@ -407,7 +409,9 @@ done:
 ids_status idsi_reader_model(idsi_reader *reader)
 {
     const size_t begin = reader->at;
-    idsi_model head = {.line = reader->lexemes[begin].line, .lexeme = begin};
+    idsi_model head = {.line = reader->lexemes[begin].line,
+                       .column = reader->lexemes[begin].column,
+                       .lexeme = begin};
     idsi_model *model = NULL;
     ids_status st = IDS_OK;
     IDSI_TRY(read_name(reader, &head.name));

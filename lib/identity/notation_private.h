@@ -107,6 +107,7 @@ typedef struct idsi_reader {
     const char *source;
     bool operations_follow; /* an operation may be used before its declaration */
     size_t hidden;          /* bytes at the beginning that messages do not show nor count */
+    const idsi_origin *origin; /* where the text stands for a piece of another one; else NULL */
 
     idsi_lexeme *lexemes;
     size_t lexeme_count;

@@ -33,6 +33,8 @@ void ids_presentation_free(ids_presentation *presentation)
     for (size_t i = 0; i < presentation->model_count; i++) {
         idsi_model_clear(ctx, &presentation->models[i]);
     }
+    idsi_free(ctx, presentation->source);
+    idsi_free(ctx, presentation->text);
     idsi_free(ctx, presentation->models);
     idsi_free(ctx, presentation->list);
     ids_signature_free(presentation->sig);
@@ -85,6 +87,45 @@ ids_status ids_presentation_read(ids_ctx *ctx, const char *text, size_t length, 
     return idsi_presentation_read(ctx, text, length, source, false, 0, presentation);
 }
 
+/* Keeps what later messages about the presentation show. */
+static ids_status keep_source(const idsi_reader *reader, ids_presentation *pres)
+{
+    ids_status st = IDS_OK;
+    const size_t length = strlen(reader->source);
+    IDSI_TRY(idsi_alloc_array(reader->ctx, length + 1, 1, &pres->source));
+    memcpy(pres->source, reader->source, length + 1);
+    IDSI_TRY(idsi_alloc_array(reader->ctx, reader->length + 1, 1, &pres->text));
+    memcpy(pres->text, reader->text, reader->length);
+    pres->length = reader->length;
+done:
+    return st;
+}
+
+static ids_status read_text(idsi_reader *reader, ids_presentation **presentation)
+{
+    ids_ctx *ctx = reader->ctx;
+    ids_status st = IDS_OK;
+    if (ctx == NULL || reader->text == NULL || presentation == NULL) {
+        return idsi_fail_arg(ctx, "context, text or result");
+    }
+    if (reader->length >= UINT32_MAX) {
+        return idsi_fail(ctx, IDS_ERR_LIMIT, "a presentation of more than 4 GiB");
+    }
+    reader->defining = SIZE_MAX;
+    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *reader->presentation, &reader->presentation));
+    reader->presentation->ctx = ctx;
+    IDSI_TRY(idsi_reader_lex(reader));
+    IDSI_TRY(idsi_reader_group(reader));
+    IDSI_TRY(idsi_reader_signature(reader, &reader->presentation->sig));
+    IDSI_TRY(idsi_reader_statements(reader));
+    IDSI_TRY(keep_source(reader, reader->presentation));
+    *presentation = reader->presentation;
+    reader->presentation = NULL;
+done:
+    idsi_reader_clear(reader);
+    return st;
+}
+
 ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length, const char *source,
                                   bool operations_follow, size_t hidden,
                                   ids_presentation **presentation)
@@ -92,28 +133,22 @@ ids_status idsi_presentation_read(ids_ctx *ctx, const char *text, size_t length,
     idsi_reader reader = {.ctx = ctx,
                           .text = text,
                           .length = length,
+                          .source = source == NULL ? "input" : source,
                           .operations_follow = operations_follow,
-                          .hidden = hidden,
-                          .defining = SIZE_MAX};
-    ids_status st = IDS_OK;
-    if (ctx == NULL || text == NULL || presentation == NULL) {
-        return idsi_fail_arg(ctx, "context, text or result");
-    }
-    if (length >= UINT32_MAX) {
-        return idsi_fail(ctx, IDS_ERR_LIMIT, "a presentation of more than 4 GiB");
-    }
-    reader.source = source == NULL ? "input" : source;
-    IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *reader.presentation, &reader.presentation));
-    reader.presentation->ctx = ctx;
-    IDSI_TRY(idsi_reader_lex(&reader));
-    IDSI_TRY(idsi_reader_group(&reader));
-    IDSI_TRY(idsi_reader_signature(&reader, &reader.presentation->sig));
-    IDSI_TRY(idsi_reader_statements(&reader));
-    *presentation = reader.presentation;
-    reader.presentation = NULL;
-done:
-    idsi_reader_clear(&reader);
-    return st;
+                          .hidden = hidden};
+    return read_text(&reader, presentation);
+}
+
+ids_status idsi_presentation_read_piece(ids_ctx *ctx, const char *text, size_t length,
+                                        const idsi_origin *origin, ids_presentation **piece)
+{
+    idsi_reader reader = {.ctx = ctx,
+                          .text = text,
+                          .length = length,
+                          .source = origin->pres->source,
+                          .operations_follow = true,
+                          .origin = origin};
+    return read_text(&reader, piece);
 }
 
 /* ---- access ---------------------------------------------------------------------------------- */

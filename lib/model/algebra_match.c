@@ -86,11 +86,31 @@ static ids_status check_symmetry(ids_ctx *ctx, const ids_algebra *algebra, uint3
     return IDS_OK;
 }
 
+/* The operation with names for its arguments, without the symmetry, which is not what lacks. */
+static ids_status fail_missing(ids_ctx *ctx, const ids_signature *sig, size_t asked)
+{
+    static const char *const names[IDS_MAX_ARITY] = {"a", "b", "c", "d", "e", "f", "g", "h"};
+    ids_status st = IDS_OK;
+    idsi_text operation;
+    idsi_token tree[IDS_MAX_ARITY + 1] = {idsi_node((uint32_t)asked)};
+
+    idsi_text_init(&operation, ctx);
+    for (uint32_t i = 0; i < sig->ops[asked].arity; i++) {
+        tree[i + 1] = i + 1u;
+    }
+    IDSI_TRY(idsi_tree_print(sig, tree, names, &operation));
+    st = idsi_fail(ctx, IDS_ERR_DOMAIN,
+                   "the algebra has no operation that is written %.200s, as the presentation has",
+                   operation.data);
+done:
+    idsi_text_clear(&operation);
+    return st;
+}
+
 ids_status ids_algebra_match(ids_ctx *ctx, const ids_algebra *algebra,
                              const ids_signature *signature, uint32_t *operation)
 {
     ids_status st = IDS_OK;
-    char *declared = NULL;
     uint32_t found[IDS_MAX_OPERATIONS];
 
     if (ctx == NULL || algebra == NULL || signature == NULL || operation == NULL) {
@@ -103,15 +123,12 @@ ids_status ids_algebra_match(ids_ctx *ctx, const ids_algebra *algebra,
             op++;
         }
         if (op == algebra->sig->count) {
-            IDSI_TRY(ids_signature_print_operation(ctx, signature, i, &declared));
-            st = idsi_fail(ctx, IDS_ERR_DOMAIN, "the algebra has no operation %.200s", declared);
-            goto done;
+            return fail_missing(ctx, signature, i);
         }
         IDSI_TRY(check_symmetry(ctx, algebra, op, signature, i));
         found[i] = op;
     }
     memcpy(operation, found, signature->count * sizeof *operation);
 done:
-    ids_string_free(ctx, declared);
     return st;
 }

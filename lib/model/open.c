@@ -40,15 +40,18 @@ static ids_status load_file(ids_model *model, ids_load_fn load, void *load_user)
     idsi_text_init(&a.text, model->ctx);
     IDSI_TRY(idsi_text_append(&a.text, "", 0));
     int refused = load == NULL ? 1 : load(load_user, file, take, &a);
+    const ids_place place = {model->decl->line, model->decl->column};
     IDSI_TRY(a.st);
     if (refused != 0) {
-        st = idsi_fail(model->ctx, IDS_ERR_IO, "the file \"%s\" of the model %s cannot be read",
-                       file, model->decl->name);
+        st = idsi_presentation_fail(model->ctx, model->pres, IDS_ERR_IO, place,
+                                    "the file \"%.200s\" of the model %s cannot be read", file,
+                                    model->decl->name);
         goto done;
     }
     if (model->decl->kind == IDS_MODEL_ALGEBRA) {
         IDSI_TRY(ids_algebra_read(model->ctx, a.text.data, a.text.length, file, &model->algebra));
         st = ids_algebra_match(model->ctx, model->algebra, model->pres->sig, model->operation);
+        IDSI_TRY(idsi_presentation_place(model->ctx, model->pres, st, place));
     } else {
         IDSI_TRY(ids_presentation_read(model->ctx, a.text.data, a.text.length, file, &model->base));
         st = idsi_over_open(model);

@@ -3,28 +3,25 @@
  * Models over another presentation: operations as polynomials in its operations.
  *
  * The polynomial of an operation was kept as text. It is read as a candidate of a small
- * presentation that has the operations of the other one, at the line and column where it stood, so
- * that messages name the right place.
+ * presentation that has the operations of the other one, with messages about the place where it
+ * stands.
  */
-#include <stdio.h>
 #include <string.h>
 
 #include "realize_private.h"
 
-/* The text that is read: empty lines, the candidate in its column, the operations behind it. */
+/* The text that is read: empty lines, the candidate in its line, the operations behind it. */
 static ids_status compose(const ids_model *model, const idsi_realization *made, idsi_text *text)
 {
     ids_status st = IDS_OK;
     char *operation = NULL;
 
-    for (uint32_t i = 1; i < made->line; i++) {
+    for (uint32_t i = 1; i < made->place.line; i++) {
         IDSI_TRY(idsi_text_puts(text, "\n"));
     }
-    IDSI_TRY(idsi_text_puts(text, "candidate "));
-    for (uint32_t i = 11; i < made->column; i++) {
-        IDSI_TRY(idsi_text_puts(text, " "));
-    }
-    IDSI_TRY(idsi_text_printf(text, "%s\n", made->text));
+    IDSI_TRY(idsi_text_puts(text, IDSI_PIECE_PREFIX));
+    IDSI_TRY(idsi_text_append(text, model->pres->text + made->begin, made->end - made->begin));
+    IDSI_TRY(idsi_text_puts(text, "\n"));
     for (size_t op = 0; op < model->base->sig->count; op++) {
         IDSI_TRY(ids_signature_print_operation(model->ctx, model->base->sig, op, &operation));
         IDSI_TRY(idsi_text_printf(text, "operation %s\n", operation));
@@ -38,10 +35,10 @@ done:
 
 static ids_status fail_letters(const ids_model *model, const idsi_realization *made)
 {
-    return idsi_fail_at(model->ctx, IDS_ERR_DOMAIN, (ids_place){made->line, made->column},
-                        "model %s, line %u: in \"%.200s\" each of the %u arguments of the "
-                        "operation must stand once in each term, and nothing else",
-                        model->decl->name, made->line, made->text, made->arity);
+    return idsi_presentation_fail(model->ctx, model->pres, IDS_ERR_DOMAIN, made->place,
+                                  "each of the %u arguments of the operation must stand once in "
+                                  "each term, and nothing else",
+                                  made->arity);
 }
 
 /* Takes over a polynomial whose variables are numbered by name. */
@@ -84,16 +81,16 @@ static ids_status read_value(const ids_model *model, const idsi_realization *mad
 {
     ids_status st = IDS_OK;
     ids_presentation *small = NULL;
-    char source[128];
+    const idsi_origin origin = {
+        .pres = model->pres, .file = model->decl->file, .place = made->place};
     idsi_text text;
 
     if (strcmp(made->text, "0") == 0) {
         return IDS_OK;
     }
     idsi_text_init(&text, model->ctx);
-    (void)snprintf(source, sizeof source, "model %s", model->decl->name);
     IDSI_TRY(compose(model, made, &text));
-    IDSI_TRY(idsi_presentation_read(model->ctx, text.data, text.length, source, true, 0, &small));
+    IDSI_TRY(idsi_presentation_read_piece(model->ctx, text.data, text.length, &origin, &small));
     st = take_poly(model, made, &small->list[0], value);
 done:
     ids_presentation_free(small);
@@ -147,10 +144,10 @@ static ids_status check_order(ids_model *model, const idsi_realization *made, co
     IDSI_TRY(idsi_base_is_zero(model->ctx, model->base, &sum, 0, &zero, &error));
     model->doubt += error;
     if (!zero) {
-        st = idsi_fail_at(model->ctx, IDS_ERR_DOMAIN, (ids_place){made->line, made->column},
-                          "model %s, line %u: \"%.200s\" does not have the symmetry that the "
-                          "operation is declared with, not even by the identities of \"%s\"",
-                          model->decl->name, made->line, made->text, model->decl->file);
+        st = idsi_presentation_fail(model->ctx, model->pres, IDS_ERR_DOMAIN, made->place,
+                                    "the polynomial does not have the symmetry that the operation "
+                                    "is declared with, not even by the identities of \"%.120s\"",
+                                    model->decl->file);
     }
 done:
     idsi_poly_clear(&sum);

@@ -119,6 +119,17 @@ sed 's/ = -\?e7$/ = e6/' assoc.alg >bad
 run 2 check bad
 has err "the mark at the end does not fit the file"
 
+# Lines that end in carriage return and line feed are the same lines.
+for file in flexible.proof assoc.witness assoc.alg; do
+    sed 's/$/\r/' $file >crlf
+    run 0 check crlf
+done
+# A file that somebody wrote lacks the last line, and is told what it is.
+for file in flexible.proof assoc.witness assoc.alg; do
+    sed '$d' $file >hand
+    run 2 check hand
+    has err "ends in the line \"$(tail -n 1 $file)\""
+done
 sed 's/^terms 2/terms 3/' flexible.proof >bad
 run 2 check bad
 has err "the mark at the end does not fit the file"

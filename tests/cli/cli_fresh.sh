@@ -80,11 +80,13 @@ run 2 fresh jordan.pres --model special --degree 3
 has err 'write one as "model NAME associative: ..."'
 printf 'operation a*b\nmodel m algebra "nowhere.alg"\n' >nowhere.pres
 run 2 fresh nowhere.pres --model m --degree 3
-has err 'cannot read "nowhere.alg", which the model names'
+has err 'nowhere.pres:2:7: the file "nowhere.alg" of the model m cannot be read: No such file'
+has err 'model m algebra "nowhere.alg"'
 printf 'operation a*b\nidentity flat: (a*b)*c = a*(b*c)\nmodel m associative: a*b = a b - b a\n' \
     >wrong.pres
 run 2 fresh wrong.pres --model m --degree 3
-has err 'the identity flat of line 2 does not hold in the model m'
+has err 'wrong.pres:2:1: the identity flat does not hold in the model m'
+has err 'identity flat: (a*b)*c = a*(b*c)'
 mkdir other
 printf 'operation a.b\nidentity a.b - b.a\n' >other/base.pres
 printf 'operation a*b commutative\nmodel m over "base.pres": a*b = a.b\n' >other/good.pres
@@ -92,16 +94,30 @@ run 0 fresh other/good.pres --model m --degree 3 --table
 has out "Nothing new"
 printf 'operation a*b alternating\nmodel m over "base.pres": a*b = a.b\n' >other/odd.pres
 run 2 fresh other/odd.pres --model m --degree 3
-has err 'does not have the symmetry'
+has err 'odd.pres:2:33: the polynomial does not have the symmetry'
 printf 'operation a*b\nmodel m over "base.pres": a*b = a.b + [a,b]\n' >other/unknown.pres
 run 2 fresh other/unknown.pres --model m --degree 3
-has err 'model m:2:39: unknown operation []'
+has err 'unknown.pres:2:39: unknown operation [] with 2 arguments; expected an operation that is'
+has err 'declared in "base.pres"'
+has err '^'
+# The user's own line, also of a statement on several lines.
+printf 'operation a*b\n\nmodel m over "base.pres": a*b =   a.b +\n     a*b # x\n' >other/long.pres
+run 2 fresh other/long.pres --model m --degree 3
+is err "idspan: other/long.pres:4:7: unknown operation '*'; expected an operation that is declared \
+in \"base.pres\"
+     a*b # x
+      ^"
 printf 'operation a*b\nmodel m over "base.pres": a*b = a.a\n' >other/twice.pres
 run 2 fresh other/twice.pres --model m --degree 3
-has err 'each of the 2 arguments of the operation must stand once'
-printf 'operation [a,b]\nmodel m algebra "%s"\n' "$source_dir/data/algebras/octonions.alg" \
+has err 'twice.pres:2:33: each of the 2 arguments of the operation must stand once'
+printf 'operation [a,b] alternating\nmodel m algebra "%s"\n' "$source_dir/data/algebras/octonions.alg" \
     >fence.pres
 run 2 fresh fence.pres --model m --degree 3
-has err '[a,b]'
+has err 'fence.pres:2:7: the algebra has no operation that is written [a,b]'
+lacks err alternating
+printf 'basis e1 e2\noperation a*b\ne1*e2 = e1\n' >plain.alg
+printf 'operation a*b commutative\nmodel m algebra "plain.alg"\n' >commutes.pres
+run 2 fresh commutes.pres --model m --degree 3
+has err 'commutes.pres:2:7: the presentation declares a*b commutative, but'
 
 finish

@@ -32,6 +32,10 @@ has out '"stopped": "interrupted before degree '
 if command -v python3 >/dev/null; then
     python3 -m json.tool <out >/dev/null || complain "$last: not JSON"
 fi
+interrupt INT fresh "$source_dir/data/models/special-jordan.pres" --model special \
+    --degrees 3..16 --table --format csv --memory none
+has err 'idspan: interrupted before degree '
+has out '3,3,'
 interrupt TERM basis commutative.pres --degree 12 --format csv --output /dev/null
 
 # A terminal, if there is a program that makes one, and the system has one to give.

@@ -132,6 +132,15 @@ refuse '--seed wants' rank jordan.pres --degree 3 --seed 18446744073709551616
 refuse '--count wants' basis jordan.pres --degree 3 --count all
 refuse '--from 3: degree 3 has 3 monomials' basis jordan.pres --degree 3 --from 3
 
+# Beyond the range of an option: 2. A limit of what a file says, or of the work: 3.
+refuse 'from 1 to 16, not "17"' fresh jordan.pres --model m --degree 17
+refuse 'degrees go from 1 to 16' fresh jordan.pres --model m --degrees 1..17
+printf 'operation t(a,b,c,d,e,f,g,h,i)\n' >nine.pres
+run 3 show nine.pres
+printf 'operation a*b\nidentity (a*b)*c = 12345678901234567890123 a*(b*c)\n' >large.pres
+run 3 rank large.pres --degrees 1..4 --exact
+has err 'coefficients too large for the proof'
+
 # ---- what is the same ---------------------------------------------------------------------
 
 run 0 rank jordan.pres --degrees 1..4 --format csv

@@ -250,7 +250,7 @@ START_TEST(test_match)
         {"basis x y\noperation [a,b] commutative\noperation a*b\n[x,y] = x\n", IDS_ERR_DOMAIN,
          "declares [a,b] alternating"},
         {"basis x y\noperation a*b commutative\noperation (a,b)\n", IDS_ERR_DOMAIN,
-         "the algebra has no operation [a,b] alternating"},
+         "the algebra has no operation that is written [a,b]"},
         {"basis x y\noperation a*b\noperation [a,b,c]\n", IDS_ERR_DOMAIN, "no operation [a,b]"},
     };
     static const char text[] = "operation a*b commutative\noperation [a,b] alternating\n";

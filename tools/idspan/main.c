@@ -40,7 +40,7 @@ ids_status session_poll(void)
     return interrupted() ? IDS_ERR_CANCELLED : IDS_OK;
 }
 
-static int exit_status(ids_status status)
+static int exit_status(ids_status status, const settings *set)
 {
     switch (status) {
     case IDS_OK:
@@ -48,6 +48,8 @@ static int exit_status(ids_status status)
     case IDS_ERR_NOMEM:
     case IDS_ERR_LIMIT:
         return EXIT_LIMIT;
+    case IDS_ERR_UNABLE: /* a method at its end; of a folder: somebody else is in it */
+        return set->run == NULL ? EXIT_LIMIT : EXIT_INPUT;
     case IDS_ERR_CANCELLED:
         return EXIT_INTERRUPTED;
     default:
@@ -112,12 +114,12 @@ static int run(const settings *set)
 
     if (st != IDS_OK) {
         complain("%s", ids_status_text(st));
-        return exit_status(st);
+        return exit_status(st, set);
     }
     st = read_file(&s);
     if (st != IDS_OK) {
         explain(&s, st);
-        result = exit_status(st);
+        result = exit_status(st, set);
         goto done;
     }
     if (!output_open(&s.out, set->output)) {
@@ -125,7 +127,7 @@ static int run(const settings *set)
     }
     progress_start(set->task->name);
     st = set->task->run(&s);
-    result = st == IDS_OK && s.no ? EXIT_NO : exit_status(st);
+    result = st == IDS_OK && s.no ? EXIT_NO : exit_status(st, set);
     progress_clear();
     if (st != IDS_OK) {
         explain(&s, st);

@@ -66,7 +66,7 @@ static char *path_of(const session *s, const char *name)
     return path;
 }
 
-/* An ids_load_fn; a message of its own explains what went wrong. */
+/* An ids_load_fn; what went wrong is left in s->failure. */
 static int load(void *user, const char *name, ids_sink_fn sink, void *sink_user)
 {
     session *s = user;
@@ -77,8 +77,7 @@ static int load(void *user, const char *name, ids_sink_fn sink, void *sink_user)
     int result = 0;
 
     if (file == NULL) {
-        session_fail(s, IDS_ERR_IO, "cannot read \"%s\", which the model names: %s",
-                     path == NULL ? name : path, strerror(errno));
+        session_fail(s, IDS_ERR_IO, "%s", strerror(errno));
         free(path);
         return -1;
     }
@@ -86,12 +85,27 @@ static int load(void *user, const char *name, ids_sink_fn sink, void *sink_user)
         result = sink(sink_user, bytes, got);
     }
     if (ferror(file)) {
-        session_fail(s, IDS_ERR_IO, "cannot read \"%s\": %s", path, strerror(errno));
+        session_fail(s, IDS_ERR_IO, "%s", strerror(errno));
         result = -1;
     }
     fclose(file);
     free(path);
     return result;
+}
+
+/* Opens the model; the reason why its file cannot be read goes into the library's message. */
+static ids_status open_model(session *s, size_t index, ids_model **model)
+{
+    ids_status st = ids_model_open(s->ctx, s->pres, index, load, s, model);
+    const char *message = ids_ctx_message(s->ctx);
+    const int line = (int)strcspn(message, "\n");
+    char reason[256] = "";
+
+    if (st == IDS_ERR_IO) {
+        snprintf(reason, sizeof reason, "%.255s", s->failure);
+        session_fail(s, st, "%.*s: %s%s", line, message, reason, message + line);
+    }
+    return st;
 }
 
 /* ---- the table ----------------------------------------------------------------------- */
@@ -406,6 +420,24 @@ done:
 
 /* ---- the task ------------------------------------------------------------------------ */
 
+/* Keeps the reason why the work ended early: writing what there is leaves other messages. */
+static void keep_reason(session *s, const ids_fresh *fresh, ids_status st)
+{
+    uint32_t next = s->set->first_degree;
+    ids_fresh_row row = {0};
+
+    for (size_t i = 0; fresh != NULL && i < ids_fresh_count(fresh); i++) {
+        if (ids_fresh_row_get(fresh, i, &row) == IDS_OK && row.total) {
+            next = row.degree + 1;
+        }
+    }
+    if (st == IDS_ERR_CANCELLED) {
+        session_fail(s, st, "interrupted before degree %u was finished", (unsigned)next);
+    } else if (st != IDS_OK) {
+        session_fail(s, st, "%s", ids_ctx_message(s->ctx));
+    }
+}
+
 static ids_status run(session *s)
 {
     ids_status st = IDS_OK;
@@ -420,15 +452,13 @@ static ids_status run(session *s)
     size_t index = 0;
 
     TRY(find_model(s, &index));
-    TRY(ids_model_open(s->ctx, s->pres, index, load, s, &model));
+    TRY(open_model(s, index, &model));
     computed = ids_fresh_create(s->ctx, model, s->set->first_degree, s->set->last_degree, &options,
                                 &fresh);
+    keep_reason(s, fresh, computed);
     if (fresh == NULL) {
         st = computed;
         goto done;
-    }
-    if (computed != IDS_OK) {
-        session_fail(s, computed, "%s", ids_ctx_message(s->ctx));
     }
     TRY(write_table(s, fresh));
     if (s->set->format == IDS_FORMAT_TEXT) {

@@ -39,7 +39,10 @@ const broken broken_table[] = {
     {OP "identity x*y = 0 alternating x,z\n", 0, P, 2, 32, "expected a variable of the identity"},
     {OP "identity x*y alternating x,x\n", 0, P, 2, 28, "'x' stands twice"},
     {OP "identity (x*y alternating x,y)*z\n", 0, P, 2, 15, "the closing fence"},
-    {OP "identity (x*x)*y alternating x,y\n", 0, P, 2, 10, "not homogeneous"},
+    {OP "identity (x*x)*y alternating x,y\n", 0, P, 2, 18,
+     "some term has 'x' 2 times and 'y' 1 time; expected the variables behind alternating"},
+    {OP "identity x\u00b2*y\n", 0, P, 2, 11, "a superscript is not a power here"},
+    {OP "identity (x*y)\u2074\n", 0, P, 2, 15, "a superscript is not a power here"},
 
     /* ---- model ---- */
     {OP "model: a*b = a b\n", 0, P, 2, 6, "expected the name of the model"},
