@@ -80,6 +80,9 @@ typedef struct idsi_cursor {
 /* A failure at the cursor, with source, line and column. */
 ids_status idsi_cursor_fail(const idsi_cursor *cursor, ids_status status, const char *format, ...)
     IDSI_PRINTF(3, 4);
+/* Before the first line: makes line feeds of carriage return and line feed, in a copy that the
+ * caller frees; NULL when there are none. */
+ids_status idsi_cursor_unify(idsi_cursor *cursor, char **copy);
 ids_status idsi_cursor_next(idsi_cursor *cursor);
 /* Steps over a text; fails when something else is there. */
 ids_status idsi_cursor_expect(idsi_cursor *cursor, const char *text);

@@ -468,27 +468,6 @@ done:
     return st;
 }
 
-/* A copy of the text with line feeds in the place of carriage return and line feed. */
-static ids_status unify_lines(idsi_cursor *cursor, size_t length, char **copy)
-{
-    ids_status st = IDS_OK;
-    size_t used = 0;
-
-    if (length == 0 || memchr(cursor->text, '\r', length) == NULL) {
-        return IDS_OK;
-    }
-    IDSI_TRY(idsi_alloc_array(cursor->ctx, length + 1, 1, copy));
-    for (size_t i = 0; i < length; i++) {
-        if (cursor->text[i] != '\r' || i + 1 == length || cursor->text[i + 1] != '\n') {
-            (*copy)[used++] = cursor->text[i];
-        }
-    }
-    cursor->text = *copy;
-    cursor->end = *copy + used;
-done:
-    return st;
-}
-
 ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length, const char *source,
                                  ids_check_report *report)
 {
@@ -502,7 +481,7 @@ ids_status ids_certificate_check(ids_ctx *ctx, const char *text, size_t length, 
         return idsi_fail_arg(ctx, "context, text or report");
     }
     cursor.end = text + length;
-    IDSI_TRY(unify_lines(&cursor, length, &copy));
+    IDSI_TRY(idsi_cursor_unify(&cursor, &copy));
     IDSI_TRY(check_file(&cursor, &made, &found));
     *report = found;
 done:

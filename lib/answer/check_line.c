@@ -25,6 +25,27 @@ ids_status idsi_cursor_fail(const idsi_cursor *cursor, ids_status status, const 
                         place.column, what);
 }
 
+ids_status idsi_cursor_unify(idsi_cursor *cursor, char **copy)
+{
+    ids_status st = IDS_OK;
+    const size_t length = (size_t)(cursor->end - cursor->text);
+    size_t used = 0;
+
+    if (length == 0 || memchr(cursor->text, '\r', length) == NULL) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_alloc_array(cursor->ctx, length, 1, copy));
+    for (size_t i = 0; i < length; i++) {
+        if (cursor->text[i] != '\r' || i + 1 == length || cursor->text[i + 1] != '\n') {
+            (*copy)[used++] = cursor->text[i];
+        }
+    }
+    cursor->text = *copy;
+    cursor->end = *copy + used;
+done:
+    return st;
+}
+
 ids_status idsi_cursor_next(idsi_cursor *cursor)
 {
     const char *begin = cursor->line == NULL ? cursor->text : cursor->line_end;

@@ -98,8 +98,8 @@ static idsi_reader at_origin(const idsi_reader *reader, ids_place *place, size_t
     size_t at = 0;
     if (place->line == origin->place.line) {
         const uint32_t prefix = sizeof IDSI_PIECE_PREFIX - 1;
-        place->column = origin->place.column + (place->column > prefix ? place->column - prefix : 1);
-        place->column--;
+        place->column -= place->column > prefix ? prefix : place->column - 1;
+        place->column += origin->place.column - 1;
     }
     for (uint32_t line = 1; line < place->line && at < origin->pres->length; at++) {
         line += text[at] == '\n';
@@ -130,8 +130,10 @@ ids_status idsi_reader_fail_place(idsi_reader *reader, ids_status status, ids_pl
         place.column = 1;
     }
     make_excerpt(reader, offset, place.column, &lines);
-    return idsi_fail_at(reader->ctx, status, place, "%.120s:%u:%u: %s\n%s\n%s", reader->source,
-                        place.line, place.column, message, lines.line, lines.caret);
+    const bool empty = lines.line[0] == '\0'; /* nothing to point at */
+    return idsi_fail_at(reader->ctx, status, place, "%.120s:%u:%u: %s%s%s%s%s", reader->source,
+                        place.line, place.column, message, empty ? "" : "\n", lines.line,
+                        empty ? "" : "\n", empty ? "" : lines.caret);
 }
 
 ids_status idsi_reader_fail(idsi_reader *reader, ids_status status, size_t lexeme,
@@ -267,7 +269,8 @@ const char *idsi_reader_nearest(const idsi_reader *reader, size_t lexeme, const 
     for (size_t i = 0; i < count; i++) {
         const size_t d =
             distance(reader->text + at->offset, at->length, words[i], strlen(words[i]));
-        if (d < best && d < at->length) {
+        /* At most two letters are wrong, and of a short word one. */
+        if (d < best && 5 * d <= 2 * (size_t)at->length) {
             best = d;
             nearest = words[i];
         }

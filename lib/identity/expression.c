@@ -11,6 +11,8 @@
  * is as deep as the fences are nested, and that has a limit (group.c). Lists of arguments are
  * on the heap to keep the frames small.
  */
+#include <string.h>
+
 #include "notation_private.h"
 
 typedef struct arguments {
@@ -351,24 +353,41 @@ static ids_status fail_chain(idsi_reader *reader, size_t begin, size_t first)
                             blank, y, blank, t.text, blank, z);
 }
 
+/* A symbol that is no operation, behind a factor that begins at `begin`. */
+static ids_status fail_symbol(idsi_reader *reader, size_t begin)
+{
+    const idsi_shown found = idsi_reader_show(reader, reader->at);
+    if (idsi_lexeme_is(reader, reader->at, "/") &&
+        reader->lexemes[reader->at + 1].kind == IDSI_LEX_NUMBER) {
+        const idsi_shown number = idsi_reader_show(reader, reader->at + 1);
+        const idsi_shown factor = idsi_reader_slice(reader, begin, reader->at - 1);
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
+                                "a division behind a factor; expected the coefficient before it: "
+                                "write 1/%.*s %s",
+                                (int)strlen(number.text) - 2, number.text + 1,
+                                factor.text[0] != '\0' ? factor.text : "(...)");
+    }
+    if (reader->origin != NULL) {
+        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
+                                "unknown operation %s; expected an operation that is declared in "
+                                "\"%.120s\"",
+                                found.text, reader->origin->file);
+    }
+    return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
+                            "unknown operation %s; expected a declaration above, as in: "
+                            "operation a%.*sb",
+                            found.text, (int)reader->lexemes[reader->at].length,
+                            reader->text + reader->lexemes[reader->at].offset);
+}
+
 /* After a complete product: a symbol or an operand here is an error worth explaining. */
 static ids_status check_after_product(idsi_reader *reader, size_t begin, size_t symbol)
 {
     const idsi_lexeme_kind kind = reader->lexemes[reader->at].kind;
     const idsi_shown found = idsi_reader_show(reader, reader->at);
     const bool infix = idsi_reader_operation(reader, IDS_NOTATION_INFIX, reader->at, 0) != SIZE_MAX;
-    if (kind == IDSI_LEX_SYMBOL && !infix && reader->origin != NULL) {
-        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
-                                "unknown operation %s; expected an operation that is declared in "
-                                "\"%.120s\"",
-                                found.text, reader->origin->file);
-    }
     if (kind == IDSI_LEX_SYMBOL && !infix) {
-        return idsi_reader_fail(reader, IDS_ERR_PARSE, reader->at,
-                                "unknown operation %s; expected a declaration above, as in: "
-                                "operation a%.*sb",
-                                found.text, (int)reader->lexemes[reader->at].length,
-                                reader->text + reader->lexemes[reader->at].offset);
+        return fail_symbol(reader, begin);
     }
     if (kind == IDSI_LEX_SYMBOL || (kind == IDSI_LEX_NAME && infix)) {
         return fail_chain(reader, begin, symbol);

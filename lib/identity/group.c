@@ -30,6 +30,14 @@ static ids_status fail_open(const grouping *g)
 {
     const size_t open = g->open[g->depth - 1];
     const idsi_shown shown = idsi_reader_show(g->reader, open);
+    if (open == g->begin + 2 && idsi_lexeme_is(g->reader, g->begin, "operation") &&
+        !g->reader->lexemes[open].glued) {
+        return idsi_reader_fail(g->reader, IDS_ERR_PARSE, open,
+                                "%s is a fence, not an infix sign; expected another sign, or an "
+                                "operation such as %sa,b%s",
+                                shown.text, closing_of(g->reader, open)[0] == '>' ? "<" : "[",
+                                closing_of(g->reader, open)[0] == '>' ? ">" : "]");
+    }
     return idsi_reader_fail(g->reader, IDS_ERR_PARSE, open,
                             "the fence %s is never closed; expected '%c'", shown.text,
                             closing_of(g->reader, open));

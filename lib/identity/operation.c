@@ -135,7 +135,8 @@ ids_status idsi_reader_pattern(idsi_reader *reader, idsi_pattern *p)
         p->notation = IDS_NOTATION_INFIX;
         IDSI_TRY(read_infix(reader, p));
     } else {
-        return expected(reader, "an operation such as a*b, [a,b] or t(a,b,c)");
+        return expected(reader, "an operation such as a*b, [a,b] or t(a,b,c), with one of the "
+                                "fences ( ) [ ] { } < >");
     }
     for (uint32_t i = 0; i < p->count; i++) {
         if (p->notation != IDS_NOTATION_FENCE &&

@@ -3,8 +3,8 @@
  * Polynomials, operations and presentations as text that reads back to the same thing.
  *
  * A coefficient other than 1 stands before its monomial with a "*", which the reader takes for
- * a coefficient whatever operations there are. A trivial identity is written as 0 times a
- * monomial, so that it keeps its degree.
+ * a coefficient whatever operations there are. A trivial identity is written as an equation of
+ * a monomial with itself, so that it keeps its degree.
  */
 #include "identity_private.h"
 
@@ -126,10 +126,15 @@ static ids_status print_identity(const ids_presentation *pres, const idsi_identi
     if (identity->written.count > 0) {
         IDSI_TRY(idsi_poly_print(&identity->written, letters, text));
     } else {
-        IDSI_TRY(idsi_text_puts(text, "0*"));
         IDSI_TRY(idsi_tree_print(pres->sig, identity->trivial, letters, text));
     }
-    IDSI_TRY(idsi_text_puts(text, " = 0\n"));
+    IDSI_TRY(idsi_text_puts(text, " = "));
+    if (identity->written.count > 0) {
+        IDSI_TRY(idsi_text_puts(text, "0"));
+    } else {
+        IDSI_TRY(idsi_tree_print(pres->sig, identity->trivial, letters, text));
+    }
+    IDSI_TRY(idsi_text_puts(text, "\n"));
 done:
     return st;
 }

@@ -45,7 +45,7 @@ static const range letter_ranges[] = {
     {0x1D400, 0x1D7CB}, {0x20000, 0x3FFFF},
 };
 
-/* Apostrophe and primes, combining marks, subscript and (refused by the lexer) superscript digits. */
+/* Apostrophe and primes, combining marks, subscripts, and superscripts, which the lexer refuses. */
 static const range continue_ranges[] = {
     {0x0027, 0x0027}, {0x00B2, 0x00B3}, {0x00B9, 0x00B9}, {0x02B0, 0x036F},
     {0x0483, 0x0489}, {0x1DC0, 0x1DFF}, {0x2032, 0x2034}, {0x2070, 0x2079},

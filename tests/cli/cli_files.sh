@@ -22,7 +22,8 @@ cmp -s out expected || complain "standard input gives another output"
 run 2 show - <<<'operation a*b identity'
 has err 'standard input:1:15:'
 run 2 show /dev/null
-has err '/dev/null:1:1:'
+is err "idspan: /dev/null:1:1: no operation is declared; expected a line such as: \
+operation a*b commutative"
 
 # The places are counted by hand.
 wrong() { # PLACE MESSAGE LINE...
@@ -43,6 +44,13 @@ wrong 2:10 'not homogeneous' 'operation a*b' 'identity x*y = x*x'
 wrong 2:12 'denominator 0' 'operation a*b' 'identity 1/0 a*b'
 wrong 2:10 'wrong number of arguments' 'operation t(a,b,c)' 'identity t(a,b)'
 wrong 1:11 'zero' 'operation (a,b) = (b,a) = -(b,a)'
+
+wrong 2:15 'write 1/2 (a*b)' 'operation a*b' 'identity (a*b)/2 = a*b'
+wrong 1:13 "'<' is a fence, not an infix sign" 'operation a < b'
+wrong 1:11 'with one of the fences ( ) [ ] { } < >' $'operation \xe2\x9f\xa8a,b\xe2\x9f\xa9'
+
+run 0 show - <<<$'operation a*b\nidentity x = 0'
+is err 'idspan: warning: standard input:2: an identity of degree 1 makes everything 0'
 
 # A column counts characters, not bytes.
 wrong 2:15 'unknown operation' 'operation a*b' $'identity \xc3\xa9\xc3\xa9: a.b'

@@ -42,6 +42,18 @@ has out "assoc does not follow (proved)."
 run 0 follows jordan.pres --candidate zero --proof zero.proof
 has out "zero follows (proved)."
 run 0 check zero.proof
+has zero.proof 'candidate zero: a*b = a*b'
+printf 'operation a*b\nidentity (a*b)*c\ncandidate only: (a*b)*c\n' >only.pres
+run 0 follows only.pres --proof only.proof --witness only.witness
+has out 'only follows (proved).'
+is err 'idspan: no file for --witness was written: only follows'
+run 0 check only.proof
+has out 'The derivation, of 1 term,'
+printf 'operation a*b commutative\ncandidate only: (a*b)*c\n' >only.pres
+run 1 follows only.pres --proof other.proof
+has out 'only fails for: 3, 2+1'
+is err 'idspan: no file for --proof was written: only does not follow'
+[ ! -e other.proof ] || complain "$last: a proof of what does not follow"
 
 while IFS=, read -r file candidate degree follows _; do
     [ "$file" != file ] || continue
@@ -102,6 +114,7 @@ run 0 check assoc.alg --format csv
 run 1 follows alternative.pres --candidate assoc --algebra other.alg
 cmp -s assoc.alg other.alg || complain "the same search gave two algebras"
 run 0 follows alternative.pres --candidate flexible --algebra flexible.alg
+is err 'idspan: no file for --algebra was written: flexible follows'
 [ ! -e flexible.alg ] || complain "$last: an algebra against what follows"
 run 1 follows alternative.pres --candidate assoc --algebra assoc.tex --format latex
 grep -q '\\begin{eqnarray\*}' assoc.tex || complain "$last: $(head assoc.tex)"
@@ -145,7 +158,9 @@ has err "there is no file"
 # ---- the command line --------------------------------------------------------------------
 
 run 2 follows alternative.pres
-has err "wants a candidate, or --all"
+has err "has 4 candidates: ask for --all, or choose one with --candidate, of flexible, moufang,"
+run 2 follows alternative.pres --candidate xyzzy
+has err 'it has flexible, moufang, assoc, #4'
 run 2 follows alternative.pres --candidate flexibel
 has err "did you mean \"flexible\"?"
 run 2 follows alternative.pres --candidate x --all

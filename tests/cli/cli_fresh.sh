@@ -66,10 +66,17 @@ has out "Degree 5: new in sl2 are 3+1+1, 2+1+1+1."
 run 3 fresh "$models/octonions.pres" --model octonions --degree 7 --exact --table
 has err "evaluations on all basis tuples"
 
+printf 'operation a*b\nmodel only associative: a*b = a b\n' >other.pres
 # ---- mistakes ----------------------------------------------------------------------------
 
-run 2 fresh "$models/octonions.pres" --degree 5
-has err '"fresh" wants a model'
+# The only model need not be named; of several the names are listed.
+run 0 fresh other.pres --degree 2 --table
+has out 'Nothing new holds in only.'
+printf 'model second associative: a*b = b a\n' >>other.pres
+run 2 fresh other.pres --degree 2
+has err 'other.pres has 2 models: choose one with --model, of only, second'
+run 2 fresh other.pres --degree 2 --model xyzzy
+has err 'it has only, second'
 run 2 fresh "$models/octonions.pres" --model octonions
 has err '"fresh" wants a degree'
 run 2 fresh "$models/octonions.pres" --model octonion --degree 3
@@ -101,10 +108,11 @@ has err 'unknown.pres:2:39: unknown operation [] with 2 arguments; expected an o
 has err 'declared in "base.pres"'
 has err '^'
 # The user's own line, also of a statement on several lines.
-printf 'operation a*b\n\nmodel m over "base.pres": a*b =   a.b +\n     a*b # x\n' >other/long.pres
+printf 'operation a*b\n\nmodel m over "base.pres": a*b =   a.b +\n     a*b # x\n' \
+    >other/long.pres
 run 2 fresh other/long.pres --model m --degree 3
-is err "idspan: other/long.pres:4:7: unknown operation '*'; expected an operation that is declared \
-in \"base.pres\"
+is err "idspan: other/long.pres:4:7: unknown operation '*'; expected an operation that is \
+declared in \"base.pres\"
      a*b # x
       ^"
 printf 'operation a*b\nmodel m over "base.pres": a*b = a.a\n' >other/twice.pres

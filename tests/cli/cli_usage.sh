@@ -132,6 +132,29 @@ refuse '--seed wants' rank jordan.pres --degree 3 --seed 18446744073709551616
 refuse '--count wants' basis jordan.pres --degree 3 --count all
 refuse '--from 3: degree 3 has 3 monomials' basis jordan.pres --degree 3 --from 3
 
+refuse 'not "3..5"; did you mean --degrees 3..5?' rank jordan.pres --degree 3..5
+refuse '--field wants a prime, not "4"' rank jordan.pres --degree 3 --field 4
+refuse '--from wants a whole number from 0 to 2^64 - 1' \
+    basis jordan.pres --degree 3 --from 18446744073709551616
+# Words that are not near are not suggested.
+refuse 'no task "ranks"; did you mean "rank"?' ranks jordan.pres
+refuse 'no task "tip"; idspan --help' tip jordan.pres
+run 2 show - <<<$'operatoin a*b'
+has err "did you mean 'operation'"
+run 2 show - <<<$'odd a*b'
+lacks err 'did you mean'
+
+# No line of the usage is wider than a terminal, and alternatives stand below each other.
+run 0 --help
+[ -z "$(awk 'length > 80' out)" ] || complain "--help: $(awk 'length > 80' out)"
+has out '  rank    --run DIR ['
+for task in $tasks fresh matrix; do
+    run 0 "$task" --help
+    [ -z "$(sed '/^$/q' out | awk 'length > 80')" ] || complain "$task --help: a wide usage"
+done
+run 0 rank --help
+has out '       idspan rank --run DIR ['
+
 # Beyond the range of an option: 2. A limit of what a file says, or of the work: 3.
 refuse 'from 1 to 16, not "17"' fresh jordan.pres --model m --degree 17
 refuse 'degrees go from 1 to 16' fresh jordan.pres --model m --degrees 1..17

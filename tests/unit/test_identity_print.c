@@ -28,7 +28,7 @@ static const printed presentations[] = {
     {"operation p q r\noperation p.r\nidentity (x q y).z - x q (y.z)\n",
      "operation a q b\noperation a.b\nidentity -x q (y.z) + (x q y).z = 0\n"},
     {"operation x*y none\nidentity trivial: y*x - y*x\n",
-     "operation a*b\nidentity trivial: 0*y*x = 0\n"},
+     "operation a*b\nidentity trivial: y*x = y*x\n"},
     {"operation x*y commutative\nmodel m-1 associative: u*v = 2/4 u v + v u - 1/2*v u\n",
      "operation a*b commutative\nmodel m-1 associative: u*v = 1/2*u v + 1/2*v u\n"},
     {"operation {x,y,z} = {z,y,x}\noperation x*y\nmodel m associative: {x,y,z} = x y' z + z y' x\n"

@@ -251,7 +251,8 @@ START_TEST(test_match)
          "declares [a,b] alternating"},
         {"basis x y\noperation a*b commutative\noperation (a,b)\n", IDS_ERR_DOMAIN,
          "the algebra has no operation that is written [a,b]"},
-        {"basis x y\noperation a*b\noperation [a,b,c]\n", IDS_ERR_DOMAIN, "no operation [a,b]"},
+        {"basis x y\noperation a*b\noperation [a,b,c]\n", IDS_ERR_DOMAIN,
+         "no operation that is written [a,b], as"},
     };
     static const char text[] = "operation a*b commutative\noperation [a,b] alternating\n";
     ids_ctx *ctx = test_ctx();

@@ -98,6 +98,11 @@ digits digits_of(uint64_t number)
     return made;
 }
 
+const char *plural(uint64_t number)
+{
+    return number == 1 ? "" : "s";
+}
+
 uint32_t digits_count(uint64_t number)
 {
     uint32_t count = 1;

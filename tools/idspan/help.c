@@ -54,7 +54,7 @@ static size_t distance(const char *from, const char *to)
 const char *help_nearest(const char *word, const char *const *names)
 {
     const char *best = NULL;
-    size_t best_distance = strlen(word) / 3 + 2;
+    size_t best_distance = strlen(word) / 3 + 1; /* at most every third letter is wrong */
 
     for (size_t i = 0; names[i] != NULL; i++) {
         size_t d = distance(word, names[i]);
@@ -93,7 +93,7 @@ static void print_options(FILE *to, uint64_t which)
 
 void help_general(FILE *to)
 {
-    fputs("idspan: monomials, consequences and ranks for identities of nonassociative algebras\n"
+    fputs("idspan: consequences and ranks for identities of nonassociative algebras\n"
           "\n"
           "Usage:\n"
           "  idspan TASK FILE [options]\n"
@@ -105,14 +105,17 @@ void help_general(FILE *to)
           "Tasks:\n",
           to);
     for (size_t i = 0; task_list[i] != NULL; i++) {
-        fprintf(to, "  %-7s FILE%s\n          %s\n", task_list[i]->name, task_list[i]->usage,
-                task_list[i]->summary);
+        fprintf(to, "  %-7s FILE%s\n", task_list[i]->name, task_list[i]->usage);
+        if (task_list[i]->also != NULL) {
+            fprintf(to, "  %-7s %s\n", task_list[i]->name, task_list[i]->also);
+        }
+        fprintf(to, "          %s\n", task_list[i]->summary);
     }
     fputs("\nOptions of every task:\n", to);
     print_options(to, COMMON_OPTIONS);
     fputs("\n"
-          "Exit status: 0 done, 1 does not follow, 2 the command line, the input or the output is\n"
-          "not in order, 3 a limit was hit, 4 interrupted.\n"
+          "Exit status: 0 done, 1 does not follow, 2 the command line, the input or the\n"
+          "output is not in order, 3 a limit was hit, 4 interrupted.\n"
           "\n"
           "Examples:\n"
           "  idspan show pair.pres\n"
@@ -123,7 +126,11 @@ void help_general(FILE *to)
 
 void help_task(FILE *to, const task *about)
 {
-    fprintf(to, "Usage: idspan %s FILE%s\n\n%s\n\n", about->name, about->usage, about->details);
+    fprintf(to, "Usage: idspan %s FILE%s\n", about->name, about->usage);
+    if (about->also != NULL) {
+        fprintf(to, "       idspan %s %s\n", about->name, about->also);
+    }
+    fprintf(to, "\n%s\n\n", about->details);
     if (about->options != 0) {
         fprintf(to, "Options of %s:\n", about->name);
         print_options(to, about->options);

@@ -102,6 +102,19 @@ static ids_status read_file(session *s)
     return ids_presentation_read(s->ctx, s->text, s->length, session_source(s), &s->pres);
 }
 
+/* An identity x = 0 is hardly what anybody meant. */
+static void warn_of_degree_one(const session *s)
+{
+    for (size_t i = 0; i < ids_presentation_count(s->pres, IDS_ROLE_IDENTITY); i++) {
+        ids_identity_info info = {0};
+        if (ids_presentation_info(s->pres, IDS_ROLE_IDENTITY, i, &info) == IDS_OK &&
+            info.degree == 1 && info.linear_terms > 0) {
+            complain("warning: %s:%u: an identity of degree 1 makes everything 0",
+                     session_source(s), (unsigned)info.line);
+        }
+    }
+}
+
 static int run(const settings *set)
 {
     session s = {.set = set};
@@ -122,6 +135,7 @@ static int run(const settings *set)
         result = exit_status(st, set);
         goto done;
     }
+    warn_of_degree_one(&s);
     if (!output_open(&s.out, set->output)) {
         goto done;
     }

@@ -41,11 +41,13 @@ static bool read_number(option_id id, const char *text, uint64_t least, uint64_t
 
     if (end == NULL || *end != '\0' || value < least || value > most) {
         if (most == UINT64_MAX) {
-            complain("--%s wants a whole number from %s on, not \"%s\"", option_list[id].name,
-                     digits_of(least).text, text);
+            complain("--%s wants a whole number from %s to 2^64 - 1, not \"%s\"",
+                     option_list[id].name, digits_of(least).text, text);
         } else {
-            complain("--%s wants a whole number from %s to %s, not \"%s\"", option_list[id].name,
-                     digits_of(least).text, digits_of(most).text, text);
+            bool range = id == OPTION_DEGREE && end != NULL && strncmp(end, "..", 2) == 0;
+            complain("--%s wants a whole number from %s to %s, not \"%s\"%s%s%s",
+                     option_list[id].name, digits_of(least).text, digits_of(most).text, text,
+                     range ? "; did you mean --degrees " : "", range ? text : "", range ? "?" : "");
         }
         return false;
     }
@@ -316,6 +318,19 @@ static bool check_own_options(const settings *read)
     return true;
 }
 
+static bool check_field(const settings *read)
+{
+    for (uint32_t divisor = 2; divisor <= read->field / divisor; divisor++) {
+        if (read->field % divisor == 0) {
+            complain("--field wants a prime, not \"%u\": a field has a prime number of elements "
+                     "here",
+                     (unsigned)read->field);
+            return false;
+        }
+    }
+    return true;
+}
+
 /* Reads --degree or --degrees. */
 static bool check_degrees(settings *read)
 {
@@ -418,7 +433,7 @@ static bool check(settings *read)
                  read->file, chosen->usage);
         return false;
     }
-    return check_pairs(read) && files_check(read) && check_degrees(read) && check_format(read) &&
+    return check_pairs(read) && check_field(read) && files_check(read) && check_degrees(read) && check_format(read) &&
            (chosen->check == NULL || chosen->check(read));
 }
 

@@ -15,11 +15,12 @@ static ids_status write_verdict(session *s, const ids_check_report *report)
 
     if (report->follows) {
         return output_printf(&s->out,
-                             "\nVerified: the candidate%s%s of degree %u follows. The terms of "
-                             "the derivation,\n%s of them, were multiplied out into %s monomials "
-                             "and add up to it, exactly.\n",
+                             "\nVerified: the candidate%s%s of degree %u follows. The derivation, "
+                             "of %s term%s,\nwas multiplied out into %s monomial%s and adds up to "
+                             "it, exactly.\n",
                              blank, report->claim, (unsigned)report->degree,
-                             digits_of(report->terms).text, digits_of(report->monomials).text);
+                             digits_of(report->terms).text, plural(report->terms),
+                             digits_of(report->monomials).text, plural(report->monomials));
     }
     if (report->dimension > 0) {
         return output_printf(&s->out,
@@ -32,10 +33,11 @@ static ids_status write_verdict(session *s, const ids_check_report *report)
     }
     return output_printf(&s->out,
                          "\nVerified: the candidate%s%s of degree %u does not follow. The witness, "
-                         "%s values,\nwas evaluated on %s consequences in its variables, all "
+                         "%s value%s,\nwas evaluated on %s consequence%s in its variables, all "
                          "there are, and is 0 on\nevery one, but not on the candidate.\n",
                          blank, report->claim, (unsigned)report->degree,
-                         digits_of(report->terms).text, digits_of(report->consequences).text);
+                         digits_of(report->terms).text, plural(report->terms),
+                         digits_of(report->consequences).text, plural(report->consequences));
 }
 
 static ids_status run(session *s)

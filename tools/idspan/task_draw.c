@@ -73,7 +73,8 @@ done:
 
 const task task_draw = {
     .name = "draw",
-    .usage = " --degree N [--monomials] [--index I | --from I --count K]",
+    .usage = " --degree N [--monomials]\n"
+             "          [--index I | [--from I] [--count K]]",
     .summary = "draw association types or monomials as trees",
     .details =
         "Draws the association types of a degree as trees, on one sheet, each with its index,\n"

@@ -34,11 +34,16 @@ static void name_candidate(const ids_identity_info *info, size_t index, char nam
     }
 }
 
+/* The candidate of --candidate, or the only one. */
 static ids_status find_candidate(session *s, size_t *index)
 {
+    const char *wanted = s->set->candidate;
     size_t count = ids_presentation_count(s->pres, IDS_ROLE_CANDIDATE);
-    const char *names[64] = {0};
+    char kept[64][NAME_CHARS] = {{0}};
+    const char *names[65] = {0};
     const char *near = NULL;
+    char list[1024] = "";
+    size_t used = 0;
 
     for (size_t i = 0; i < count; i++) {
         ids_identity_info info = {0};
@@ -48,22 +53,36 @@ static ids_status find_candidate(session *s, size_t *index)
             return st;
         }
         name_candidate(&info, i, name);
-        if (strcmp(name, s->set->candidate) == 0) {
+        if (wanted == NULL ? count == 1 : strcmp(name, wanted) == 0) {
             *index = i;
             return IDS_OK;
         }
-        if (i < 63) {
-            names[i] = info.name;
+        if (i < 64) {
+            names[i] = memcpy(kept[i], name, sizeof name);
+        }
+        if (used + NAME_CHARS + 8 < sizeof list) {
+            used += (size_t)snprintf(list + used, sizeof list - used, "%s%s", i > 0 ? ", " : "",
+                                     name);
         }
     }
-    near = help_nearest(s->set->candidate, names);
+    if (count == 0) {
+        return session_fail(s, IDS_ERR_ARG,
+                            "%s has no candidates: write one as \"candidate NAME: ...\"",
+                            session_source(s));
+    }
+    if (wanted == NULL) {
+        return session_fail(s, IDS_ERR_ARG,
+                            "%s has %zu candidates: ask for --all, or choose one with --candidate, "
+                            "of %s",
+                            session_source(s), count, list);
+    }
+    near = help_nearest(wanted, names);
     if (near != NULL) {
         return session_fail(s, IDS_ERR_ARG, "%s has no candidate \"%s\"; did you mean \"%s\"?",
-                            session_source(s), s->set->candidate, near);
+                            session_source(s), wanted, near);
     }
-    return session_fail(s, IDS_ERR_ARG, "%s has no candidate \"%s\"; it has %zu%s",
-                        session_source(s), s->set->candidate, count,
-                        count == 0 ? ": write one as \"candidate NAME: ...\"" : " others");
+    return session_fail(s, IDS_ERR_ARG, "%s has no candidate \"%s\"; it has %s",
+                        session_source(s), wanted, list);
 }
 
 /* ---- proofs and witnesses -------------------------------------------------------------------- */
@@ -150,6 +169,15 @@ static ids_status explain(session *s, ids_status st, const char *what)
     return st;
 }
 
+/* Says that a file was not written since the answer is another one. */
+static void say_unwritten(option_id id, const char *file, const char *name, bool follows)
+{
+    if (file != NULL) {
+        complain("no file for --%s was written: %s %s", option_list[id].name, name,
+                 follows ? "follows" : "does not follow");
+    }
+}
+
 /* Writes what was asked for and fits the answer; *proved when the answer is exact by it. */
 static ids_status write_certificate(session *s, size_t index, const ids_follows_options *options,
                                     bool follows, bool *proved)
@@ -188,7 +216,7 @@ static ids_status write_failures(session *s, const ids_follows *follows, tally *
         uint64_t more = 0;
         TRY(ids_follows_partition(follows, i, &partition, &more));
         TRY(ids_partition_print(s->ctx, &partition, &text));
-        used += (size_t)snprintf(list + used, sizeof list - used, "%s%s", i > 0 ? " " : "", text);
+        used += (size_t)snprintf(list + used, sizeof list - used, "%s%s", i > 0 ? ", " : "", text);
         ids_string_free(s->ctx, text);
         text = NULL;
     }
@@ -224,6 +252,12 @@ static ids_status answer_one(session *s, size_t index, tally *t)
     digits degree = digits_of(info.degree);
     const char *cells[COLUMNS] = {t->name, degree.text, yes ? "yes" : "no", certainty};
     TRY(ids_writer_row(t->writer, cells));
+    if (yes) {
+        say_unwritten(OPTION_WITNESS, s->set->witness, t->name, true);
+        say_unwritten(OPTION_ALGEBRA, s->set->algebra, t->name, true);
+    } else {
+        say_unwritten(OPTION_PROOF, s->set->proof, t->name, false);
+    }
     t->count++;
     t->following += yes;
     if (!yes) {
@@ -257,15 +291,9 @@ static ids_status run(session *s)
     size_t from = 0;
     size_t count = ids_presentation_count(s->pres, IDS_ROLE_CANDIDATE);
 
-    if (s->set->candidate != NULL) {
+    if ((s->set->seen & BIT(OPTION_ALL)) == 0 || count == 0) {
         TRY(find_candidate(s, &from));
         count = from + 1;
-    } else if (count == 0) {
-        st = session_fail(s, IDS_ERR_ARG,
-                          "%s has no candidates: write one as \"candidate NAME: "
-                          "...\"",
-                          session_source(s));
-        goto done;
     }
     TRY(ids_writer_create(s->ctx, s->set->format, "follows", columns, COLUMNS, output_sink, &s->out,
                           &t.writer));
@@ -288,11 +316,6 @@ static bool check(settings *read)
 {
     const uint64_t limits = BIT(OPTION_DIMENSION) | BIT(OPTION_ENTRIES) | BIT(OPTION_STEPS);
 
-    if (read->candidate == NULL && (read->seen & BIT(OPTION_ALL)) == 0) {
-        complain("\"follows\" wants a candidate, or --all:\n        idspan follows %s%s",
-                 read->file, task_follows.usage);
-        return false;
-    }
     if (read->algebra == NULL && (read->seen & limits) != 0) {
         complain("--dimension, --entries and --steps are limits of --algebra FILE");
         return false;
@@ -302,9 +325,10 @@ static bool check(settings *read)
 
 const task task_follows = {
     .name = "follows",
-    .usage = " --candidate NAME [--proof FILE] [--witness FILE] | --all\n"
+    .usage = " [--candidate NAME] [--proof FILE] [--witness FILE]\n"
              "          [--algebra FILE [--dimension N] [--entries K] [--steps K]]\n"
              "          [--primes K] [--seed S]",
+    .also = "FILE --all [--primes K] [--seed S]",
     .summary = "decide whether a candidate follows from the identities",
     .details =
         "A candidate is a statement `candidate NAME: ...` of the file. It follows when it is a\n"

@@ -1,11 +1,7 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
  * idspan fresh: identities of a model that the presentation does not imply.
- *
- * The library asks for the file that a model names through a function; here it is opened, relative
- * to the folder of the presentation.
  */
-#include <errno.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -18,95 +14,6 @@
 #define LATEX_WIDTH 80u
 
 enum { DEGREE, PARTITION, DIMENSION, FREE, HOLDING, CONSEQUENCES, FRESH, CERTAINTY, COLUMNS };
-
-/* ---- the model ----------------------------------------------------------------------- */
-
-static ids_status find_model(session *s, size_t *index)
-{
-    const size_t count = ids_presentation_model_count(s->pres);
-    const char *names[64] = {0};
-    const char *near = NULL;
-
-    for (size_t i = 0; i < count; i++) {
-        ids_model_info info = {0};
-        ids_status st = ids_presentation_model(s->pres, i, &info);
-        if (st != IDS_OK) {
-            return st;
-        }
-        if (strcmp(info.name, s->set->model) == 0) {
-            *index = i;
-            return IDS_OK;
-        }
-        if (i < 63) {
-            names[i] = info.name;
-        }
-    }
-    near = help_nearest(s->set->model, names);
-    if (near != NULL) {
-        return session_fail(s, IDS_ERR_ARG, "%s has no model \"%s\"; did you mean \"%s\"?",
-                            session_source(s), s->set->model, near);
-    }
-    return session_fail(s, IDS_ERR_ARG, "%s has no model \"%s\"; it has %zu%s", session_source(s),
-                        s->set->model, count,
-                        count == 0 ? ": write one as \"model NAME associative: ...\"" : " others");
-}
-
-/* Path of a file that is named in the presentation; the caller frees it. */
-static char *path_of(const session *s, const char *name)
-{
-    const char *slash = strcmp(s->set->file, "-") == 0 ? NULL : strrchr(s->set->file, '/');
-    size_t folder = slash == NULL || name[0] == '/' ? 0 : (size_t)(slash + 1 - s->set->file);
-    size_t length = strlen(name) + 1;
-    char *path = malloc(folder + length);
-
-    if (path != NULL) {
-        memcpy(path, s->set->file, folder);
-        memcpy(path + folder, name, length);
-    }
-    return path;
-}
-
-/* An ids_load_fn; what went wrong is left in s->failure. */
-static int load(void *user, const char *name, ids_sink_fn sink, void *sink_user)
-{
-    session *s = user;
-    char *path = path_of(s, name);
-    FILE *file = path == NULL ? NULL : fopen(path, "rb");
-    char bytes[4096];
-    size_t got = 0;
-    int result = 0;
-
-    if (file == NULL) {
-        session_fail(s, IDS_ERR_IO, "%s", strerror(errno));
-        free(path);
-        return -1;
-    }
-    while (result == 0 && (got = fread(bytes, 1, sizeof bytes, file)) > 0) {
-        result = sink(sink_user, bytes, got);
-    }
-    if (ferror(file)) {
-        session_fail(s, IDS_ERR_IO, "%s", strerror(errno));
-        result = -1;
-    }
-    fclose(file);
-    free(path);
-    return result;
-}
-
-/* Opens the model; the reason why its file cannot be read goes into the library's message. */
-static ids_status open_model(session *s, size_t index, ids_model **model)
-{
-    ids_status st = ids_model_open(s->ctx, s->pres, index, load, s, model);
-    const char *message = ids_ctx_message(s->ctx);
-    const int line = (int)strcspn(message, "\n");
-    char reason[256] = "";
-
-    if (st == IDS_ERR_IO) {
-        snprintf(reason, sizeof reason, "%.255s", s->failure);
-        session_fail(s, st, "%.*s: %s%s", line, message, reason, message + line);
-    }
-    return st;
-}
 
 /* ---- the table ----------------------------------------------------------------------- */
 
@@ -195,7 +102,8 @@ done:
 /* ---- the verdict --------------------------------------------------------------------- */
 
 /* The partitions of one degree in which something is new; none: nothing is written. */
-static ids_status write_degree(session *s, const ids_fresh *fresh, uint32_t degree, bool *any)
+static ids_status write_degree(session *s, const ids_fresh *fresh, const char *model,
+                               uint32_t degree, bool *any)
 {
     ids_status st = IDS_OK;
     char *partition = NULL;
@@ -210,7 +118,7 @@ static ids_status write_degree(session *s, const ids_fresh *fresh, uint32_t degr
         TRY(ids_partition_print(s->ctx, &row.partition, &partition));
         if (first) {
             TRY(output_printf(&s->out, "%sDegree %u: new in %s are", *any ? "" : "\n",
-                              (unsigned)degree, s->set->model));
+                              (unsigned)degree, model));
         }
         TRY(output_printf(&s->out, "%s %s", first ? "" : ",", partition));
         if (row.fresh > 1) {
@@ -245,18 +153,18 @@ static uint32_t least_bits(const ids_fresh *fresh, bool *proved)
     return least;
 }
 
-static ids_status write_verdict(session *s, const ids_fresh *fresh)
+static ids_status write_verdict(session *s, const ids_fresh *fresh, const char *model)
 {
     ids_status st = IDS_OK;
     bool any = false;
     bool proved = true;
 
     for (uint32_t d = s->set->first_degree; d <= s->set->last_degree; d++) {
-        TRY(write_degree(s, fresh, d, &any));
+        TRY(write_degree(s, fresh, model, d, &any));
     }
     if (!any && ids_fresh_count(fresh) > 0) {
         const uint32_t bits = least_bits(fresh, &proved);
-        TRY(output_printf(&s->out, "\nNothing new holds in %s", s->set->model));
+        TRY(output_printf(&s->out, "\nNothing new holds in %s", model));
         TRY(proved ? output_printf(&s->out, ".\n")
                    : output_printf(&s->out, " (%swrong with probability at most 2^-%u).\n",
                                    s->set->first_degree < s->set->last_degree ? "each degree " : "",
@@ -449,10 +357,9 @@ static ids_status run(session *s)
     ids_model *model = NULL;
     ids_fresh *fresh = NULL;
     ids_status computed = IDS_OK;
-    size_t index = 0;
+    const char *name = NULL;
 
-    TRY(find_model(s, &index));
-    TRY(open_model(s, index, &model));
+    TRY(fresh_model_open(s, &name, &model));
     computed = ids_fresh_create(s->ctx, model, s->set->first_degree, s->set->last_degree, &options,
                                 &fresh);
     keep_reason(s, fresh, computed);
@@ -462,7 +369,7 @@ static ids_status run(session *s)
     }
     TRY(write_table(s, fresh));
     if (s->set->format == IDS_FORMAT_TEXT) {
-        TRY(write_verdict(s, fresh));
+        TRY(write_verdict(s, fresh, name));
         TRY(write_identities(s, fresh));
     } else if (s->set->format == IDS_FORMAT_LATEX) {
         TRY(latex_identities(s, fresh));
@@ -478,20 +385,10 @@ done:
     return st;
 }
 
-static bool check(settings *read)
-{
-    if (read->model == NULL) {
-        complain("\"fresh\" wants a model:\n        idspan fresh %s%s", read->file,
-                 task_fresh.usage);
-        return false;
-    }
-    return true;
-}
-
 const task task_fresh = {
     .name = "fresh",
-    .usage = " --model NAME --degree N | --degrees A..B [--table] [--save FILE]\n"
-             "          [--exact] [--primes K] [--seed S]",
+    .usage = " [--model NAME] --degree N | --degrees A..B\n"
+             "          [--table | --save FILE] [--exact] [--primes K] [--seed S]",
     .summary = "find identities of a model that the presentation does not imply",
     .details =
         "A model is made by `model NAME ...` statements of the file. For each partition, what\n"
@@ -511,6 +408,5 @@ const task task_fresh = {
                BIT(OPTION_SAVE) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
     .most_degree = MOST_DEGREE,
-    .check = check,
     .run = run,
 };

@@ -46,10 +46,12 @@ static ids_status write_summary(const session *s, const ids_matrix *matrix, cons
     output screen = {.file = stdout, .name = "standard output"};
     ids_status st = IDS_OK;
 
-    TRY(output_printf(&screen, "Degree %u: %s rows, %s columns, %s entries",
+    TRY(output_printf(&screen, "Degree %u: %s row%s, %s column%s, %s entr%s",
                       (unsigned)s->set->first_degree, digits_of(ids_matrix_rows(matrix)).text,
-                      digits_of(ids_matrix_columns(matrix)).text,
-                      digits_of(ids_matrix_entries(matrix)).text));
+                      plural(ids_matrix_rows(matrix)), digits_of(ids_matrix_columns(matrix)).text,
+                      plural(ids_matrix_columns(matrix)),
+                      digits_of(ids_matrix_entries(matrix)).text,
+                      ids_matrix_entries(matrix) == 1 ? "y" : "ies"));
     if (ids_matrix_prime(matrix) > 0) {
         TRY(output_printf(&screen, " modulo %u", (unsigned)ids_matrix_prime(matrix)));
     }
@@ -88,7 +90,8 @@ static const char *const formats[] = {"mtx", NULL};
 
 const task task_matrix = {
     .name = "matrix",
-    .usage = " --degree N --output M.mtx [--plain | --field P | --seed S]",
+    .usage = " --degree N --output M.mtx\n"
+             "          [--plain | --field P | --seed S]",
     .summary = "write the matrix of the consequences of a degree",
     .details =
         "Writes a matrix whose rows span the consequences of the identities in one degree, in\n"

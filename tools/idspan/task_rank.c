@@ -96,10 +96,11 @@ static ids_status run(session *s)
 
 const task task_rank = {
     .name = "rank",
-    .usage = " --degree N | --degrees A..B [--by partition [--cross-check] | --partition P]\n"
+    .usage = " --degree N | --degrees A..B\n"
+             "          [--by partition [--cross-check] | --partition P]\n"
              "          [--exact] [--primes K] [--seed S] [--field P]\n"
-             "          [--run DIR [--jobs N] [--plan]]\n"
-             "  idspan rank --run DIR [--list-cells | --plan | --cell ID,... [--jobs N]]",
+             "          [--run DIR [--jobs N] [--plan]]",
+    .also = "--run DIR [--list-cells | --plan | --cell ID,... [--jobs N]]",
     .summary = "count how many monomials the identities leave independent",
     .details =
         "For each degree, dimensions of spaces of multilinear polynomials: `free` without the\n"

@@ -149,6 +149,7 @@ typedef struct session {
 typedef struct task {
     const char *name;
     const char *usage;   /* what follows `idspan NAME FILE`, with a blank before it, or "" */
+    const char *also;    /* what can follow `idspan NAME` instead, or NULL */
     const char *summary; /* one line */
     const char *details; /* for --help */
     const char *examples;
@@ -175,6 +176,9 @@ extern const task task_fresh;
 /* All tasks, NULL at the end. */
 extern const task *const task_list[];
 const task *task_find(const char *name);
+
+/* The model that `fresh` is about, opened; the caller frees it. The name is the presentation's. */
+ids_status fresh_model_open(session *s, const char **name, ids_model **model);
 
 /* The part of `rank` that works by partition. */
 bool rank_check(settings *read);
@@ -318,6 +322,8 @@ typedef struct digits {
 } digits;
 
 digits digits_of(uint64_t number);
+/* "s" for all numbers but 1. */
+const char *plural(uint64_t number);
 /* Number of decimal digits. */
 uint32_t digits_count(uint64_t number);
 
