@@ -311,8 +311,8 @@ static ids_status check_derivation(idsi_cursor *cursor, const idsi_certificate *
     IDSI_TRY(subtract_claim(made, &sum));
     if (sum.count > 0) {
         st = idsi_cursor_fail(cursor, IDS_ERR_DOMAIN,
-                              "the terms do not add up to the claim: %zu monomials are left over",
-                              sum.count);
+                              "the terms do not add up to the claim: %zu monomial%s left over",
+                              sum.count, sum.count == 1 ? " is" : "s are");
     }
 done:
     if (t != NULL) {

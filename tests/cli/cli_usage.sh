@@ -66,6 +66,31 @@ run 0 rank --help
 has out "degree,free,consequences,quotient,certainty"
 has out "degree,partition,dimension,free,consequences,quotient,certainty"
 
+# What a task says of its options is about this task, and its examples work as they stand.
+run 0 rank --help
+has out 'from 1 to 64'
+has out 'text, csv, json, latex, svg or html; the first'
+lacks out 'basis elements'
+run 0 fresh --help
+has out 'from 1 to 16'
+has out 'all tuples of basis elements'
+run 0 count --help
+has out 'from 1 to 1000000'
+run 0 matrix --help
+has out 'mtx; the first is the default'
+lacks out 'latex'
+cp -r "$source_dir/data/crosses" examples
+for task in $tasks fresh matrix; do
+    "$tool" "$task" --help | sed -n '/^Examples:/,$s/^  //p' >commands
+    [ -s commands ] || complain "$task --help: no examples"
+    while read -r command; do
+        got=0
+        (cd examples && PATH=$(dirname "$tool"):$PATH && eval "$command") \
+            >out 2>err || got=$?
+        [ "$got" -le 1 ] || complain "$task --help: $command: status $got: $(head -c 300 err)"
+    done <commands
+done
+
 # ---- refusals -------------------------------------------------------------------------
 
 refuse() { # MESSAGE ARGUMENT...

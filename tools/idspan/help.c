@@ -69,11 +69,42 @@ const char *help_nearest(const char *word, const char *const *names)
 
 /* ---- help texts ---------------------------------------------------------------------- */
 
-static void print_options(FILE *to, uint64_t which)
+const char *const table_formats[] = {"text", "csv", "json", "latex", NULL};
+
+void help_formats(const task *about, char list[FORMATS_CHARS])
+{
+    const char *const *names =
+        about != NULL && about->formats != NULL ? about->formats : table_formats;
+    size_t used = 0;
+
+    list[0] = '\0';
+    for (unsigned i = 0; names[i] != NULL && used < FORMATS_CHARS; i++) {
+        const char *before = i == 0 ? "" : names[i + 1] != NULL ? ", " : " or ";
+        used += (size_t)snprintf(list + used, FORMATS_CHARS - used, "%s%s", before, names[i]);
+    }
+}
+
+/* What a % in the help of an option stands for. */
+static void print_variable(FILE *to, option_id id, const task *about)
+{
+    char list[FORMATS_CHARS];
+
+    if (id == OPTION_FORMAT) {
+        help_formats(about, list);
+        fputs(list, to);
+    } else {
+        fprintf(to, "%u", about != NULL && about->most_degree > 0 ? (unsigned)about->most_degree
+                                                                  : (unsigned)IDS_MAX_DEGREE);
+    }
+}
+
+/* Options of a task; NULL: of all of them. */
+static void print_options(FILE *to, uint64_t which, const task *about)
 {
     for (unsigned id = 0; id < OPTION_END; id++) {
         const option *shown = &option_list[id];
-        const char *text = shown->help;
+        const bool exact = id == OPTION_EXACT && about != NULL && about->exact != NULL;
+        const char *text = exact ? about->exact : shown->help;
         int used = 0;
         if ((which & BIT(id)) == 0) {
             continue;
@@ -82,6 +113,10 @@ static void print_options(FILE *to, uint64_t which)
                        shown->value != NULL ? shown->value : "");
         fprintf(to, "%*s", 20 - used, "");
         for (; *text != '\0'; text++) {
+            if (*text == '%') {
+                print_variable(to, (option_id)id, about);
+                continue;
+            }
             fputc(*text, to);
             if (*text == '\n') {
                 fprintf(to, "%20s", "");
@@ -112,8 +147,10 @@ void help_general(FILE *to)
         fprintf(to, "          %s\n", task_list[i]->summary);
     }
     fputs("\nOptions of every task:\n", to);
-    print_options(to, COMMON_OPTIONS);
+    print_options(to, COMMON_OPTIONS, NULL);
     fputs("\n"
+          "rank, draw and matrix have formats of their own; the help of a task lists them.\n"
+          "\n"
           "Exit status: 0 done, 1 does not follow, 2 the command line, the input or the\n"
           "output is not in order, 3 a limit was hit, 4 interrupted.\n"
           "\n"
@@ -133,10 +170,10 @@ void help_task(FILE *to, const task *about)
     fprintf(to, "\n%s\n\n", about->details);
     if (about->options != 0) {
         fprintf(to, "Options of %s:\n", about->name);
-        print_options(to, about->options);
+        print_options(to, about->options, about);
         fputc('\n', to);
     }
     fputs("Options of every task:\n", to);
-    print_options(to, COMMON_OPTIONS);
-    fprintf(to, "\nExamples:\n%s\n", about->examples);
+    print_options(to, COMMON_OPTIONS, about);
+    fprintf(to, "\nExamples: (the files are in share/idspan/crosses)\n%s\n", about->examples);
 }

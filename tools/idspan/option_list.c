@@ -1,11 +1,12 @@
 /* SPDX-License-Identifier: BSD-2-Clause */
 /*
- * The options of all tasks, with their help.
+ * The options of all tasks, with their help. A % stands for what depends on the task: its largest
+ * degree, its formats.
  */
 #include "tool.h"
 
 const option option_list[OPTION_END] = {
-    [OPTION_DEGREE] = {"degree", "N", "the degree N, from 1 to 64; count goes to 1000000"},
+    [OPTION_DEGREE] = {"degree", "N", "the degree N, from 1 to %"},
     [OPTION_DEGREES] = {"degrees", "A..B", "all degrees from A to B"},
     [OPTION_FROM] = {"from", "I", "begin with index I; indices count from 0"},
     [OPTION_COUNT] = {"count", "K", "list at most K of them"},
@@ -13,12 +14,12 @@ const option option_list[OPTION_END] = {
     [OPTION_MONOMIALS] = {"monomials", NULL, "the multilinear monomials, with their labels"},
     [OPTION_SPLIT] = {"split", NULL, "split the numbers by the uses of each operation"},
     [OPTION_EXACT] = {"exact", NULL,
-                      "prove the ranks over the rational numbers; of fresh: evaluate\n"
-                      "an algebra on all basis tuples"},
+                      "prove the ranks over the rational numbers"},
     [OPTION_PRIMES] = {"primes", "K", "compute modulo K random primes (default 1)"},
     [OPTION_SEED] = {"seed", "S",
                      "draw the primes from seed S (default 0); the same seed\n"
-                     "gives the same primes on every machine"},
+                     "gives the same primes on every machine, so an independent\n"
+                     "check wants another seed"},
     [OPTION_FIELD] = {"field", "P", "work over the field of P elements, P a prime below 2^30"},
     [OPTION_BY] = {"by", "partition", "one row a partition and a total, up to degree 16"},
     [OPTION_PARTITION] = {"partition", "P", "only the partition P, written as 4+3+1"},
@@ -34,11 +35,11 @@ const option option_list[OPTION_END] = {
                      "with --run, compute these cells only, beside others who\n"
                      "do the same in the same folder"},
     [OPTION_PLAIN] = {"plain", NULL, "all consequences in all monomials, with integers"},
-    [OPTION_CANDIDATE] = {"candidate", "NAME", "the candidate NAME of the file"},
+    [OPTION_CANDIDATE] = {"candidate", "NAME", "the candidate NAME of the file; the only one if not given"},
     [OPTION_ALL] = {"all", NULL, "all candidates of the file"},
     [OPTION_PROOF] = {"proof", "FILE", "if it follows, write a derivation to FILE"},
     [OPTION_WITNESS] = {"witness", "FILE", "if it does not, write a witness to FILE"},
-    [OPTION_MODEL] = {"model", "NAME", "the model NAME of the file"},
+    [OPTION_MODEL] = {"model", "NAME", "the model NAME of the file; the only one if not given"},
     [OPTION_TABLE] = {"table", NULL, "only count, and write no identities down"},
     [OPTION_SAVE] = {"save", "FILE", "write a presentation with what is found to FILE"},
     [OPTION_ALGEBRA] = {"algebra", "FILE",
@@ -49,9 +50,7 @@ const option option_list[OPTION_END] = {
                         "of --algebra: products with coefficients up to K (default 100)"},
     [OPTION_STEPS] = {"steps", "K", "of --algebra: stop after K steps (default 10000000)"},
     [OPTION_FORMAT] = {"format", "F",
-                       "text (for people, the default), csv, json or latex;\n"
-                       "of rank also svg and html; of draw: text, ascii, svg or\n"
-                       "tikz; of matrix: mtx"},
+                       "%; the first is the default"},
     [OPTION_OUTPUT] = {"output", "FILE", "write the result to FILE, once it is complete"},
     [OPTION_MEMORY] = {"memory", "SIZE",
                        "use at most SIZE, such as 500M or 8G (default 4G);\n"

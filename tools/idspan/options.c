@@ -353,10 +353,8 @@ static bool check_degrees(settings *read)
 /* Reads --format, one of the task's own. */
 static bool check_format(settings *read)
 {
-    static const char *const tables[] = {"text", "csv", "json", "latex", NULL};
-    const char *const *names = read->task->formats != NULL ? read->task->formats : tables;
-    char list[80] = "";
-    size_t used = 0;
+    const char *const *names = read->task->formats != NULL ? read->task->formats : table_formats;
+    char list[FORMATS_CHARS];
     const char *near = NULL;
 
     if (read->format_name == NULL) {
@@ -368,10 +366,7 @@ static bool check_format(settings *read)
             return true;
         }
     }
-    for (unsigned i = 0; names[i] != NULL && used < sizeof list; i++) {
-        const char *before = i == 0 ? "" : names[i + 1] != NULL ? ", " : " or ";
-        used += (size_t)snprintf(list + used, sizeof list - used, "%s%s", before, names[i]);
-    }
+    help_formats(read->task, list);
     near = help_nearest(read->format_name, names);
     complain("--format can be %s, not \"%s\"%s%s%s", list, read->format_name,
              near != NULL ? "; did you mean " : "", near != NULL ? near : "",

@@ -80,20 +80,22 @@ const task task_check = {
     .usage = "",
     .summary = "verify a proof, witness or algebra file",
     .details =
-        "FILE is a derivation, a witness or an algebra, as \"follows\" writes them; it has the\n"
+        "FILE is a derivation, a witness or an algebra, as \"follows\" writes them and idspan(5)\n"
+        "describes them; it has the\n"
         "identities and the candidate in it. A derivation is multiplied out, and its terms must\n"
         "add up to the candidate. A witness must be 0 on every consequence of the identities in\n"
         "the variables of the candidate, and not on the candidate. In an algebra the identities\n"
         "must hold on all tuples of basis elements, and the candidate must not be 0 at the values\n"
-        "given. All of it is recomputed exactly, by code that has nothing in common with the\n"
-        "search.\n"
+        "given. All of it is recomputed exactly, by code of its own, which shares the reader and\n"
+        "the normal form of monomials with the search and nothing else.\n"
         "\n"
         "A file that is damaged, or does not show what it claims, is refused with status 2.\n"
         "`verified` counts the monomials that were added up, the consequences, or the tuples.\n"
         "\n"
         "Columns: candidate,degree,follows,identities,terms,verified",
-    .examples = "  idspan check moufang.proof\n"
-                "  idspan check - --format json < moufang.proof",
+    .examples = "  idspan follows pair.pres --candidate exchange --proof exchange.proof\n"
+                "  idspan check exchange.proof\n"
+                "  idspan check - --format json < exchange.proof",
     .wants_text = true,
     .run = run,
 };

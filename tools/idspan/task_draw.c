@@ -86,9 +86,9 @@ const task task_draw = {
         "Formats: text (the default) for a terminal, ascii for one without line characters,\n"
         "svg for a browser, light or dark, tikz for \\input into a LaTeX document that uses the\n"
         "package tikz. Operations differ by the shape of their nodes, in text by their symbols.",
-    .examples = "  idspan draw cross.pres --degree 6\n"
-                "  idspan draw cross.pres --degree 6 --format svg --output types.svg\n"
-                "  idspan draw cross.pres --degree 4 --monomials --index 7 --format tikz",
+    .examples = "  idspan draw pair.pres --degree 6\n"
+                "  idspan draw pair.pres --degree 6 --format svg --output types.svg\n"
+                "  idspan draw pair.pres --degree 4 --monomials --index 7 --format tikz",
     .options = BIT(OPTION_DEGREE) | BIT(OPTION_INDEX) | BIT(OPTION_MONOMIALS) | BIT(OPTION_FROM) |
                BIT(OPTION_COUNT),
     .wanted = BIT(OPTION_DEGREE),

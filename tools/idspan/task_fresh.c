@@ -402,11 +402,12 @@ const task task_fresh = {
         "in the row `total` dimensions; `fresh` is holding - consequences. Where it is 0 that is\n"
         "exact, elsewhere `certainty` bounds the probability that it is wrong.\n"
         "Columns: degree,partition,dimension,free,holding,consequences,fresh,certainty",
-    .examples = "  idspan fresh special-jordan.pres --model special --degree 8\n"
-                "  idspan fresh octonions.pres --model octonions --degrees 4..6 --save known.pres",
+    .examples = "  idspan fresh inheritance.pres --model gametes --degrees 3..4\n"
+                "  idspan fresh inheritance.pres --degrees 3..4 --save known.pres",
     .options = BIT(OPTION_MODEL) | BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES) | BIT(OPTION_TABLE) |
                BIT(OPTION_SAVE) | BIT(OPTION_EXACT) | BIT(OPTION_PRIMES) | BIT(OPTION_SEED),
     .wanted = BIT(OPTION_DEGREE) | BIT(OPTION_DEGREES),
     .most_degree = MOST_DEGREE,
+    .exact = "evaluate an algebra on all tuples of basis elements",
     .run = run,
 };

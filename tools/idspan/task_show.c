@@ -388,7 +388,8 @@ const task task_show = {
     .details =
         "Shows the operations with their symmetry groups, and each identity and candidate twice:\n"
         "as written, with abbreviations expanded and monomials in canonical form, and completely\n"
-        "linearised, with integer coefficients.\n"
+        "linearised, with integer coefficients without a common factor; it can differ by a factor\n"
+        "from what is written.\n"
         "\n"
         "Columns: kind,index,name,line,degree,order,terms,written,linear_terms,linear\n"
         "`kind` is operation, identity or candidate; indices count from 0 within a kind; the\n"

@@ -158,6 +158,7 @@ typedef struct task {
     uint32_t most_degree; /* 0: IDS_MAX_DEGREE */
     bool wants_text;      /* the file is no presentation: the task reads it itself */
     const char *const *formats; /* NULL at the end; NULL: those of tables */
+    const char *exact;          /* help of --exact, NULL: that of the list of options */
     bool (*check)(settings *read); /* what else the options must be, with a message; or NULL */
     ids_status (*run)(session *s);
 } task;
@@ -254,6 +255,10 @@ ids_status session_poll(void);
 
 void help_general(FILE *to);
 void help_task(FILE *to, const task *about);
+/* "text, csv or json" of the formats of a task; NULL: those of tables. */
+#define FORMATS_CHARS 80u
+void help_formats(const task *about, char list[FORMATS_CHARS]);
+extern const char *const table_formats[];
 /* The entry of `names` (NULL at the end) that a mistyped word most likely meant, or NULL. */
 const char *help_nearest(const char *word, const char *const *names);
 
