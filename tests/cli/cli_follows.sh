@@ -138,7 +138,8 @@ for file in flexible.proof assoc.witness assoc.alg; do
     run 0 check crlf
 done
 # The proof in the manual, with the mark that it is told.
-sed -n '/^idspan proof 1$/,/^end MARK$/p' "$source_dir/tools/idspan/idspan.5" | sed '$d' >manual.proof
+sed -n '/^idspan proof 1$/,/^end MARK$/p' "$source_dir/tools/idspan/idspan.5" |
+    sed '$d' >manual.proof
 run 2 check manual.proof
 grep -o 'end [0-9a-f]\{16\}' err >mark
 cat mark >>manual.proof

@@ -118,8 +118,8 @@ declared in \"base.pres\"
 printf 'operation a*b\nmodel m over "base.pres": a*b = a.a\n' >other/twice.pres
 run 2 fresh other/twice.pres --model m --degree 3
 has err 'twice.pres:2:33: each of the 2 arguments of the operation must stand once'
-printf 'operation [a,b] alternating\nmodel m algebra "%s"\n' "$source_dir/data/algebras/octonions.alg" \
-    >fence.pres
+printf 'operation [a,b] alternating\nmodel m algebra "%s"\n' \
+    "$source_dir/data/algebras/octonions.alg" >fence.pres
 run 2 fresh fence.pres --model m --degree 3
 has err 'fence.pres:2:7: the algebra has no operation that is written [a,b]'
 lacks err alternating

@@ -35,7 +35,8 @@ const option option_list[OPTION_END] = {
                      "with --run, compute these cells only, beside others who\n"
                      "do the same in the same folder"},
     [OPTION_PLAIN] = {"plain", NULL, "all consequences in all monomials, with integers"},
-    [OPTION_CANDIDATE] = {"candidate", "NAME", "the candidate NAME of the file; the only one if not given"},
+    [OPTION_CANDIDATE] = {"candidate", "NAME",
+                          "the candidate NAME of the file; the only one if not given"},
     [OPTION_ALL] = {"all", NULL, "all candidates of the file"},
     [OPTION_PROOF] = {"proof", "FILE", "if it follows, write a derivation to FILE"},
     [OPTION_WITNESS] = {"witness", "FILE", "if it does not, write a witness to FILE"},

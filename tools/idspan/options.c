@@ -428,7 +428,8 @@ static bool check(settings *read)
                  read->file, chosen->usage);
         return false;
     }
-    return check_pairs(read) && check_field(read) && files_check(read) && check_degrees(read) && check_format(read) &&
+    return check_pairs(read) && check_field(read) && files_check(read) && check_degrees(read) &&
+           check_format(read) &&
            (chosen->check == NULL || chosen->check(read));
 }
 

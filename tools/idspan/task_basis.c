@@ -120,8 +120,8 @@ const task task_basis = {
     .details =
         "Lists the canonical multilinear monomials of a degree: every label once, one monomial\n"
         "for each class under the symmetries of the operations. Indices count from 0, as in the\n"
-        "library, and do not depend on the part that is listed; they go to 2^64 - 1. The identities of the\n"
-        "presentation play no part here.\n"
+        "library, and do not depend on the part that is listed; they go to 2^64 - 1. The\n"
+        "identities of the presentation play no part here.\n"
         "\n"
         "Columns: degree,index,monomial",
     .examples = "  idspan basis pair.pres --degree 4\n"

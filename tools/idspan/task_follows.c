@@ -340,9 +340,10 @@ const task task_follows = {
         "coefficient, identity, what its variables stand for, and the monomial around it; `_` is\n"
         "where the consequence stands. With --format latex it is a LaTeX formula. --witness\n"
         "writes a refutation: an integer for each monomial, such that all consequences get 0\n"
-        "and the candidate does not. --algebra looks for a small algebra in which the identities hold and\n"
-        "the candidate does not, and writes its multiplication table, as LaTeX with\n"
-        "--format latex. All of them make the answer exact, and \"check\" verifies them.\n"
+        "and the candidate does not. --algebra looks for a small algebra in which the\n"
+        "identities hold and the candidate does not, and writes its multiplication table, as\n"
+        "LaTeX with --format latex. All of them make the answer exact, and \"check\" verifies\n"
+        "them.\n"
         "\n"
         "Exit status: 0 it follows, all of them with --all; 1 it does not.\n"
         "Columns: candidate,degree,follows,certainty",
