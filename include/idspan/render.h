@@ -85,6 +85,22 @@ IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *
                                                 const char *value);
 
 /**
+ * Adds a note of several values: a list of strings in JSON, in text and LaTeX with commas between.
+ *
+ * @param writer  borrowed.
+ * @param name    borrowed, copied; no two notes of one name.
+ * @param values  borrowed, copied, `count` of them; NULL only when there are none.
+ * @param count   below 2^32-1.
+ * @return IDS_OK
+ *         IDS_ERR_ARG    NULL, the name is taken, after ids_writer_end()
+ *         IDS_ERR_NOMEM  the allocator refused
+ *         IDS_ERR_LIMIT  byte budget
+ * Cost: a copy. Threads: one a writer. Since: 0.1
+ */
+IDS_API IDS_MUST_USE ids_status ids_writer_note_list(ids_writer *writer, const char *name,
+                                                     const char *const *values, size_t count);
+
+/**
  * Writes one row; cells[i] is borrowed text for column i, as many as there are columns.
  *
  * A row that is refused with IDS_ERR_ARG leaves the table as it was. After any other failure the

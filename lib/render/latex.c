@@ -162,16 +162,20 @@ done:
 static ids_status latex_end(ids_writer *writer, idsi_text *line)
 {
     ids_status st = IDS_OK;
-    const char *name = NULL;
-    const char *value = NULL;
+    idsi_note note = {0};
     size_t at = 0;
 
     IDSI_TRY(idsi_text_puts(line, "\\bottomrule\n\\end{tabular}\n"));
-    while (idsi_writer_next_note(writer, &at, &name, &value)) {
+    while (idsi_writer_next_note(writer, &at, &note)) {
+        const char *between = ": ";
+        const char *value = NULL;
         IDSI_TRY(idsi_text_puts(line, "% "));
-        IDSI_TRY(append_comment(line, name));
-        IDSI_TRY(idsi_text_puts(line, ": "));
-        IDSI_TRY(append_comment(line, value));
+        IDSI_TRY(append_comment(line, note.name));
+        while ((value = idsi_note_next_value(&note)) != NULL) {
+            IDSI_TRY(idsi_text_puts(line, between));
+            IDSI_TRY(append_comment(line, value));
+            between = ", ";
+        }
         IDSI_TRY(idsi_text_puts(line, "\n"));
     }
 done:

@@ -146,17 +146,23 @@ done:
 static ids_status json_end(ids_writer *writer, idsi_text *line)
 {
     ids_status st = IDS_OK;
-    const char *name = NULL;
-    const char *value = NULL;
+    idsi_note note = {0};
     const char *between = "";
     size_t at = 0;
 
     IDSI_TRY(idsi_text_puts(line, "\n ],\n \"notes\": {"));
-    while (idsi_writer_next_note(writer, &at, &name, &value)) {
+    while (idsi_writer_next_note(writer, &at, &note)) {
+        const char *value = NULL;
+        const char *comma = "";
         IDSI_TRY(idsi_text_puts(line, between));
-        IDSI_TRY(append_string(line, name));
-        IDSI_TRY(idsi_text_puts(line, ": "));
-        IDSI_TRY(append_string(line, value));
+        IDSI_TRY(append_string(line, note.name));
+        IDSI_TRY(idsi_text_puts(line, note.list ? ": [" : ": "));
+        while ((value = idsi_note_next_value(&note)) != NULL) {
+            IDSI_TRY(idsi_text_puts(line, comma));
+            IDSI_TRY(append_string(line, value));
+            comma = ", ";
+        }
+        IDSI_TRY(idsi_text_puts(line, note.list ? "]" : ""));
         between = ", ";
     }
     IDSI_TRY(idsi_text_puts(line, "}}\n"));

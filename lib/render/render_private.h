@@ -62,7 +62,7 @@ struct ids_writer {
     ids_sink_fn sink;
     void *sink_user;
     uint64_t rows;   /* rows taken so far */
-    idsi_text notes; /* name NUL value NUL, note after note */
+    idsi_text notes; /* number of values (UINT32_MAX: one, no list) name NUL value NUL ... */
     idsi_text line;  /* what goes to the sink next */
     idsi_text held;  /* text format: cells of the rows held back, each with its NUL; LaTeX: the
                         first cell of a group of rows */
@@ -72,9 +72,18 @@ struct ids_writer {
     ids_status failed; /* once a row is lost the table is beyond repair */
 };
 
+/* A note, and its values one behind the other, each with a NUL. */
+typedef struct idsi_note {
+    const char *name;
+    const char *value; /* the first one */
+    uint32_t count;
+    bool list;
+} idsi_note;
+
 /* Walks over the notes: *at = 0 before the first call; false after the last note. */
-bool idsi_writer_next_note(const ids_writer *writer, size_t *at, const char **name,
-                           const char **value);
+bool idsi_writer_next_note(const ids_writer *writer, size_t *at, idsi_note *note);
+/* Walks over the values of a note; NULL behind the last one. */
+const char *idsi_note_next_value(idsi_note *note);
 
 /* ---- LaTeX --------------------------------------------------------------------------- */
 

@@ -162,25 +162,30 @@ done:
 static ids_status append_notes(const ids_writer *writer, idsi_text *line)
 {
     ids_status st = IDS_OK;
-    const char *name = NULL;
-    const char *value = NULL;
+    idsi_note note = {0};
     size_t width = 0;
     size_t at = 0;
 
-    while (idsi_writer_next_note(writer, &at, &name, &value)) {
-        size_t own = idsi_utf8_width(name);
+    while (idsi_writer_next_note(writer, &at, &note)) {
+        size_t own = idsi_utf8_width(note.name);
         width = own > width ? own : width;
     }
     if (at > 0) {
         IDSI_TRY(idsi_text_puts(line, "\n"));
     }
     at = 0;
-    while (idsi_writer_next_note(writer, &at, &name, &value)) {
+    while (idsi_writer_next_note(writer, &at, &note)) {
         size_t start = line->length;
-        IDSI_TRY(append_cell(line, name));
+        const char *between = "";
+        const char *value = NULL;
+        IDSI_TRY(append_cell(line, note.name));
         IDSI_TRY(idsi_text_puts(line, ":"));
-        IDSI_TRY(append_blanks(line, width - idsi_utf8_width(name) + 1, ' '));
-        IDSI_TRY(append_cell(line, value));
+        IDSI_TRY(append_blanks(line, width - idsi_utf8_width(note.name) + 1, ' '));
+        while ((value = idsi_note_next_value(&note)) != NULL) {
+            IDSI_TRY(idsi_text_puts(line, between));
+            IDSI_TRY(append_cell(line, value));
+            between = ", ";
+        }
         trim_end(line, start);
         IDSI_TRY(idsi_text_puts(line, "\n"));
     }

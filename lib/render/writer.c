@@ -104,48 +104,97 @@ done:
     return st;
 }
 
-bool idsi_writer_next_note(const ids_writer *writer, size_t *at, const char **name,
-                           const char **value)
+bool idsi_writer_next_note(const ids_writer *writer, size_t *at, idsi_note *note)
 {
+    const char *data = writer->notes.data;
+    uint32_t count = 0;
+
     if (*at >= writer->notes.length) {
         return false;
     }
-    *name = writer->notes.data + *at;
-    *value = *name + strlen(*name) + 1;
-    *at += strlen(*name) + strlen(*value) + 2;
+    memcpy(&count, data + *at, sizeof count);
+    *at += sizeof count;
+    note->list = count != UINT32_MAX;
+    note->count = note->list ? count : 1;
+    note->name = data + *at;
+    *at += strlen(note->name) + 1;
+    note->value = data + *at;
+    for (uint32_t i = 0; i < note->count; i++) {
+        *at += strlen(data + *at) + 1;
+    }
     return true;
 }
 
-ids_status ids_writer_note(ids_writer *writer, const char *name, const char *value)
+const char *idsi_note_next_value(idsi_note *note)
 {
-    ids_status st = IDS_OK;
-    const char *old = NULL;
-    const char *old_value = NULL;
-    size_t at = 0;
-    size_t before = 0;
+    const char *value = note->value;
 
-    if (writer == NULL) {
-        return IDS_ERR_ARG;
+    if (note->count == 0) {
+        return NULL;
     }
-    if (name == NULL || name[0] == '\0' || value == NULL) {
+    note->count--;
+    note->value += strlen(value) + 1;
+    return value;
+}
+
+static ids_status check_note(ids_writer *writer, const char *name)
+{
+    idsi_note old = {0};
+    size_t at = 0;
+
+    if (name == NULL || name[0] == '\0') {
         return idsi_fail_arg(writer->ctx, "name or value of a note");
     }
     if (writer->ended) {
         return idsi_fail(writer->ctx, IDS_ERR_ARG, "the table has been ended already");
     }
-    while (idsi_writer_next_note(writer, &at, &old, &old_value)) {
-        if (strcmp(old, name) == 0) {
+    while (idsi_writer_next_note(writer, &at, &old)) {
+        if (strcmp(old.name, name) == 0) {
             return idsi_fail(writer->ctx, IDS_ERR_ARG, "there is a note \"%s\" already", name);
         }
     }
-    before = writer->notes.length;
+    return IDS_OK;
+}
+
+static ids_status add_note(ids_writer *writer, const char *name, const char *const *values,
+                           size_t count, uint32_t kind)
+{
+    ids_status st = IDS_OK;
+    const size_t before = writer->notes.length;
+
+    for (size_t i = 0; i < count; i++) {
+        if (values[i] == NULL) {
+            return idsi_fail_arg(writer->ctx, "name or value of a note");
+        }
+    }
+    IDSI_TRY(check_note(writer, name));
+    IDSI_TRY(idsi_text_append(&writer->notes, (const char *)&kind, sizeof kind));
     IDSI_TRY(idsi_text_append(&writer->notes, name, strlen(name) + 1));
-    IDSI_TRY(idsi_text_append(&writer->notes, value, strlen(value) + 1));
+    for (size_t i = 0; i < count; i++) {
+        IDSI_TRY(idsi_text_append(&writer->notes, values[i], strlen(values[i]) + 1));
+    }
 done:
     if (st != IDS_OK) {
         writer->notes.length = before;
     }
     return st;
+}
+
+ids_status ids_writer_note(ids_writer *writer, const char *name, const char *value)
+{
+    return writer == NULL ? IDS_ERR_ARG : add_note(writer, name, &value, 1, UINT32_MAX);
+}
+
+ids_status ids_writer_note_list(ids_writer *writer, const char *name, const char *const *values,
+                                size_t count)
+{
+    if (writer == NULL) {
+        return IDS_ERR_ARG;
+    }
+    if ((values == NULL && count > 0) || count >= UINT32_MAX) {
+        return idsi_fail_arg(writer->ctx, "values of a note");
+    }
+    return add_note(writer, name, values, count, (uint32_t)count);
 }
 
 /* A number cell is an integer as JSON writes it, or empty where there is none. */

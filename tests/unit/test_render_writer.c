@@ -46,6 +46,7 @@ START_TEST(test_create_arguments)
     ck_assert_uint_eq(seen.calls, 0);
     ck_assert_int_eq(ids_writer_row(NULL, NULL), IDS_ERR_ARG);
     ck_assert_int_eq(ids_writer_note(NULL, "a", "b"), IDS_ERR_ARG);
+    ck_assert_int_eq(ids_writer_note_list(NULL, "a", NULL, 0), IDS_ERR_ARG);
     ck_assert_int_eq(ids_writer_end(NULL), IDS_ERR_ARG);
     ids_writer_free(NULL);
     test_ctx_free(ctx);
@@ -95,8 +96,23 @@ START_TEST(test_after_the_end)
     TEST_STATUS(ctx, ids_writer_note(writer, "", "2"), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_writer_note(writer, NULL, "2"), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_writer_note(writer, "b", NULL), IDS_ERR_ARG);
+    TEST_STATUS(ctx, ids_writer_note_list(writer, "b", NULL, 1), IDS_ERR_ARG);
+    TEST_STATUS(ctx, ids_writer_note_list(writer, "b", (const char *[]){"1", NULL}, 2),
+                IDS_ERR_ARG);
+    TEST_STATUS(ctx, ids_writer_note_list(writer, "a", (const char *[]){"1"}, 1), IDS_ERR_ARG);
+    TEST_OK(ctx, ids_writer_note_list(writer, "none", NULL, 0));
+    TEST_OK(ctx, ids_writer_note_list(writer, "two", (const char *[]){"1", "x"}, 2));
     TEST_OK(ctx, ids_writer_end(writer));
+    static const char *const lists[] = {
+        [IDS_FORMAT_TEXT] = "none:\ntwo:  1, x\n",
+        [IDS_FORMAT_CSV] = "",
+        [IDS_FORMAT_JSON] = "\"none\": [], \"two\": [\"1\", \"x\"]}}\n",
+        [IDS_FORMAT_LATEX] = "% none\n% two: 1, x\n",
+    };
+    const char *list = lists[formats[_i]];
     length = seen.length;
+    ck_assert_uint_ge(length, strlen(list));
+    ck_assert_int_eq(memcmp(seen.text + length - strlen(list), list, strlen(list)), 0);
     TEST_STATUS(ctx, ids_writer_end(writer), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_writer_row(writer, (const char *[]){"1", "x"}), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_writer_note(writer, "b", "2"), IDS_ERR_ARG);
@@ -118,6 +134,9 @@ static ids_status write_all(ids_ctx *ctx, ids_format format, capture *seen, ids_
     }
     if (st == IDS_OK) {
         st = ids_writer_note(*writer, "seed", "1");
+    }
+    if (st == IDS_OK) {
+        st = ids_writer_note_list(*writer, "partitions", (const char *[]){"3", "2+1"}, 2);
     }
     return st == IDS_OK ? ids_writer_end(*writer) : st;
 }

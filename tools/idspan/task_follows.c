@@ -5,6 +5,7 @@
  * The answer comes from ranks by partition. A proof or witness that was asked for makes it exact;
  * when none can be found, the answer is written all the same, and then the reason.
  */
+#include <stdlib.h>
 #include <string.h>
 
 #include "tool.h"
@@ -12,7 +13,6 @@
 enum { CANDIDATE, DEGREE, FOLLOWS, CERTAINTY, COLUMNS };
 
 #define NAME_CHARS 72u
-#define LIST_CHARS 8192u
 
 /* What has been found so far. */
 typedef struct tally {
@@ -206,24 +206,26 @@ done:
 static ids_status write_failures(session *s, const ids_follows *follows, tally *t)
 {
     ids_status st = IDS_OK;
-    char list[LIST_CHARS] = "";
     char name[NAME_CHARS + 16];
-    size_t used = 0;
-    char *text = NULL;
+    size_t count = ids_follows_count(follows);
+    char **list = calloc(count + 1, sizeof *list);
 
-    for (size_t i = 0; i < ids_follows_count(follows) && used + 128 < sizeof list; i++) {
+    if (list == NULL) {
+        return session_fail(s, IDS_ERR_NOMEM, "%s", ids_status_text(IDS_ERR_NOMEM));
+    }
+    for (size_t i = 0; i < count; i++) {
         ids_partition partition = {0};
         uint64_t more = 0;
         TRY(ids_follows_partition(follows, i, &partition, &more));
-        TRY(ids_partition_print(s->ctx, &partition, &text));
-        used += (size_t)snprintf(list + used, sizeof list - used, "%s%s", i > 0 ? ", " : "", text);
-        ids_string_free(s->ctx, text);
-        text = NULL;
+        TRY(ids_partition_print(s->ctx, &partition, &list[i]));
     }
     snprintf(name, sizeof name, "%s fails for", t->name);
-    TRY(ids_writer_note(t->writer, name, list));
+    TRY(ids_writer_note_list(t->writer, name, (const char *const *)list, count));
 done:
-    ids_string_free(s->ctx, text);
+    for (size_t i = 0; i < count; i++) {
+        ids_string_free(s->ctx, list[i]);
+    }
+    free(list);
     return st;
 }
 
