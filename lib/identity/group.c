@@ -34,9 +34,8 @@ static ids_status fail_open(const grouping *g)
         !g->reader->lexemes[open].glued) {
         return idsi_reader_fail(g->reader, IDS_ERR_PARSE, open,
                                 "%s is a fence, not an infix sign; expected another sign, or an "
-                                "operation such as %sa,b%s",
-                                shown.text, closing_of(g->reader, open)[0] == '>' ? "<" : "[",
-                                closing_of(g->reader, open)[0] == '>' ? ">" : "]");
+                                "operation such as %ca,b%c",
+                                shown.text, shown.text[1], closing_of(g->reader, open));
     }
     return idsi_reader_fail(g->reader, IDS_ERR_PARSE, open,
                             "the fence %s is never closed; expected '%c'", shown.text,
