@@ -95,7 +95,8 @@ IDS_API IDS_MUST_USE ids_status ids_writer_note(ids_writer *writer, const char *
  *         IDS_ERR_ARG    NULL, the name is taken, after ids_writer_end()
  *         IDS_ERR_NOMEM  the allocator refused
  *         IDS_ERR_LIMIT  byte budget
- * Cost: a copy. Threads: one a writer. Since: 0.1
+ * Cost: a copy. Threads: the one that has the writer's ctx. Cancel: not polled. Border: none.
+ * Since: 0.1
  */
 IDS_API IDS_MUST_USE ids_status ids_writer_note_list(ids_writer *writer, const char *name,
                                                      const char *const *values, size_t count);

@@ -70,6 +70,7 @@ static void use_writers(ids_ctx *ctx, uint64_t *sum)
         ids_writer *writer = NULL;
         MUST(ids_writer_create(ctx, format, "task", columns, 2, sum_sink, sum, &writer));
         MUST(ids_writer_note(writer, "name", "value"));
+        MUST(ids_writer_note_list(writer, "names", cells, 2));
         MUST(ids_writer_row(writer, cells));
         MUST(ids_writer_end(writer));
         ids_writer_free(writer);
