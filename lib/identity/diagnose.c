@@ -237,7 +237,13 @@ idsi_shown idsi_reader_slice(const idsi_reader *reader, size_t first, size_t las
     return shown;
 }
 
-/* Edit distance (Levenshtein) of two short words, by rows; SIZE_MAX when one is long. */
+static char folded(char letter)
+{
+    return letter >= 'A' && letter <= 'Z' ? (char)(letter - 'A' + 'a') : letter;
+}
+
+/* Edit distance (Levenshtein) of two short words, by rows, capitals being no difference; SIZE_MAX
+ * when one is long. */
 static size_t distance(const char *a, size_t n, const char *b, size_t m)
 {
     size_t row[IDSI_MAX_NAME + 1];
@@ -251,7 +257,7 @@ static size_t distance(const char *a, size_t n, const char *b, size_t m)
         size_t diagonal = row[0];
         row[0] = i;
         for (size_t j = 1; j <= m; j++) {
-            size_t best = diagonal + (a[i - 1] == b[j - 1] ? 0 : 1);
+            size_t best = diagonal + (folded(a[i - 1]) == folded(b[j - 1]) ? 0 : 1);
             diagonal = row[j];
             best = row[j] + 1 < best ? row[j] + 1 : best;
             row[j] = row[j - 1] + 1 < best ? row[j - 1] + 1 : best;
