@@ -18,7 +18,7 @@
 
 #include "run_private.h"
 
-#define TEMPORARY "tmp-"
+#define TEMPORARY "idspan-tmp-" /* what begins so is ours to remove */
 #define TEMPORARY_NAME (sizeof TEMPORARY + IDS_RUN_NAME + 32)
 
 static ids_status fail_io(ids_ctx *ctx, const char *verb, const char *folder, const char *name)

@@ -78,7 +78,7 @@ cmp -s out expected || complain "another table: $(diff out expected | head -5)"
 finished >now
 comm -13 now kept >lost
 [ ! -s lost ] || complain "cells were lost or written again: $(head -c 300 lost)"
-left=$(find table -name 'tmp-*')
+left=$(find table -name 'idspan-tmp-*')
 [ -z "$left" ] || complain "temporary files are left: $left"
 echo "$killed kills in $((tables + 1)) tables"
 finish

@@ -18,7 +18,7 @@ mv out expected
 go_on() {
     run 0 rank jordan.pres --degrees 2..8 --by partition --run table --jobs 2 --format csv
     is out "$(cat expected)"
-    [ -z "$(find table/ -name 'tmp-*' -o -name 'failed-*')" ] ||
+    [ -z "$(find table/ -name 'idspan-tmp-*' -o -name 'failed-*')" ] ||
         complain "$last: files are left: $(ls table)"
 }
 

@@ -183,8 +183,8 @@ START_TEST(test_foreign_temporary)
     make_place();
     TEST_OK(ctx, start(ctx, IDS_RUN_SHARED, &run));
     idsi_host(host);
-    snprintf(names[0], sizeof names[0], "%s/tmp-%s-%d", folder, host, (int)getpid());
-    snprintf(names[1], sizeof names[1], "%s/tmp-%s-%d-0", folder, host, (int)getpid());
+    snprintf(names[0], sizeof names[0], "%s/idspan-tmp-%s-%d", folder, host, (int)getpid());
+    snprintf(names[1], sizeof names[1], "%s/idspan-tmp-%s-%d-0", folder, host, (int)getpid());
     for (size_t i = 0; i < 2; i++) {
         FILE *file = fopen(names[i], "w");
         ck_assert_ptr_nonnull(file);
@@ -198,6 +198,34 @@ START_TEST(test_foreign_temporary)
     }
     TEST_OK(ctx, ids_run_refresh(run));
     check_state(run, 0, IDS_CELL_DONE);
+    ids_run_free(run);
+    remove_place();
+    test_ctx_free(ctx);
+}
+END_TEST
+
+/* What a killed writer has left is swept away by who has the folder alone; a user's file is not. */
+START_TEST(test_sweep)
+{
+    static const char *const endings[] = {"idspan-tmp-host-1-0", "tmp-notes", "temporary"};
+    ids_ctx *ctx = test_ctx();
+    ids_run *run = NULL;
+    char names[3][PATH_MAX];
+    struct stat about;
+
+    make_place();
+    TEST_OK(ctx, start(ctx, IDS_RUN_ALONE, &run));
+    ids_run_free(run);
+    for (size_t i = 0; i < 3; i++) {
+        snprintf(names[i], sizeof names[i], "%s/%s", folder, endings[i]);
+        FILE *file = fopen(names[i], "w");
+        ck_assert_ptr_nonnull(file);
+        ck_assert_int_eq(fclose(file), 0);
+    }
+    TEST_OK(ctx, start(ctx, IDS_RUN_ALONE, &run));
+    for (size_t i = 0; i < 3; i++) {
+        ck_assert_int_eq(stat(names[i], &about), i == 0 ? -1 : 0);
+    }
     ids_run_free(run);
     remove_place();
     test_ctx_free(ctx);
@@ -255,6 +283,7 @@ int main(void)
     tcase_add_test(tcase, test_new_folder);
     tcase_add_test(tcase, test_folder_cannot_sync);
     tcase_add_test(tcase, test_foreign_temporary);
+    tcase_add_test(tcase, test_sweep);
     tcase_add_test(tcase, test_threads_store);
     suite_add_tcase(suite, tcase);
     return test_run(suite);
