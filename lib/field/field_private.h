@@ -6,8 +6,12 @@
 #define IDSI_FIELD_PRIVATE_H
 
 #include <gmp.h>
+#include <limits.h>
 
 #include "../core/core_private.h"
+
+/* GMP's calls with an unsigned long are given 64 bits here and in the rooms below. */
+_Static_assert(ULONG_MAX == UINT64_MAX, "a system with 64-bit unsigned long");
 
 /*
  * Primes are drawn from (2^29, 2^30): IDSI_PRIME_COUNT of them, pi(2^30) - pi(2^29). Below 2^30 a
