@@ -27,6 +27,7 @@ static uint32_t *find_slot(const compiler *c, const idsi_law_node *node)
 {
     uint64_t hash = node->op;
 
+    IDSI_ASSERT(c->slots != NULL);
     for (uint32_t i = 0; i < node->arity; i++) {
         hash = (hash ^ (uint32_t)node->arg[i]) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden */
         hash ^= hash >> 32;

@@ -237,9 +237,9 @@ idsi_shown idsi_reader_slice(const idsi_reader *reader, size_t first, size_t las
     return shown;
 }
 
-static char folded(char letter)
+static int folded(int letter)
 {
-    return letter >= 'A' && letter <= 'Z' ? (char)(letter - 'A' + 'a') : letter;
+    return letter >= 'A' && letter <= 'Z' ? letter - 'A' + 'a' : letter;
 }
 
 /* Edit distance (Levenshtein) of two short words, by rows, capitals being no difference; SIZE_MAX

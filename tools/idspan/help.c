@@ -103,8 +103,8 @@ static void print_options(FILE *to, uint64_t which, const task *about)
 {
     for (unsigned id = 0; id < OPTION_END; id++) {
         const option *shown = &option_list[id];
-        const bool exact = id == OPTION_EXACT && about != NULL && about->exact != NULL;
-        const char *text = exact ? about->exact : shown->help;
+        const char *exact = id == OPTION_EXACT && about != NULL ? about->exact : NULL;
+        const char *text = exact != NULL ? exact : shown->help;
         int used = 0;
         if ((which & BIT(id)) == 0) {
             continue;
