@@ -62,8 +62,9 @@ typedef struct ids_fresh ids_fresh;
  *         IDS_ERR_ARG        NULL, degrees out of range, unknown struct_size, too many primes
  *         IDS_ERR_DOMAIN     an identity of the presentation does not hold in the model; the
  *                            message names it
- *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model, or
- *                            coefficients of an identity do not come out of 40 primes
+ *         IDS_ERR_UNABLE     every prime that was drawn divides a denominator of the model, or they
+ *                            contradict each other; coefficients of an identity do not come out
+ *                            of 40 primes
  *         IDS_ERR_NOMEM      the allocator refused
  *         IDS_ERR_LIMIT      byte budget; a degree over 9 in an algebra, too many tuples
  *                            for `exact`

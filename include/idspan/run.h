@@ -48,7 +48,7 @@ typedef struct ids_run_options {
     uint32_t from;      /**< first degree, at least 1 */
     uint32_t to;        /**< last degree, at most IDS_MAX_DEGREE, by partition at most 16 */
     bool by_partition;  /**< a cell a partition; else a cell a degree */
-    uint32_t primes;    /**< number of random primes; 0: one */
+    uint32_t primes;    /**< number of random primes, at most IDS_MAX_PRIMES; 0: one */
     uint64_t seed;      /**< seed that the primes are drawn from */
     bool exact;         /**< prove the ranks; not by partition */
     uint32_t field;     /**< a prime: ranks over GF(p); not by partition, nor with `exact`; 0: Q */

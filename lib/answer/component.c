@@ -131,10 +131,9 @@ done:
 
 static uint64_t hash_tree(const idsi_token *tree, size_t length)
 {
-    uint64_t hash = UINT64_C(0x9E3779B97F4A7C15);
+    uint64_t hash = length;
     for (size_t i = 0; i < length; i++) {
-        hash = (hash ^ tree[i]) * UINT64_C(0xD6E8FEB86659FD93);
-        hash ^= hash >> 29;
+        hash = idsi_hash_add(hash, tree[i]);
     }
     return hash;
 }

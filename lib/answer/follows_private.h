@@ -152,6 +152,13 @@ mpq_srcptr idsi_system_exact(const idsi_system *system, size_t i, const idsi_cel
 /* Joins a residue to those mod the product of earlier primes, which grows by p. */
 void idsi_residue_join(mpz_ptr value, mpz_srcptr modulus, uint32_t residue, uint32_t p);
 
+/*
+ * (witness.c) The fractions of which the residues are, as integers with content 1; false when there
+ * are none, or their common denominator has more bits.
+ */
+bool idsi_residues_to_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, size_t most_bits,
+                               mpz_t *values);
+
 /* ---- results --------------------------------------------------------------------------------- */
 
 struct ids_derivation {

@@ -5,6 +5,7 @@
 #include <string.h>
 
 #include "fresh_private.h"
+#include "rank_private.h"
 
 void ids_fresh_free(ids_fresh *fresh)
 {
@@ -162,17 +163,12 @@ ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from,
         to > IDSI_SHAPE_MAX) {
         return idsi_fail_arg(ctx, "context, model, degree or result");
     }
-    if (options != NULL && options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
-    }
     if (options != NULL) {
+        IDSI_TRY(
+            idsi_check_struct(ctx, "ids_fresh_options", options->struct_size, sizeof *options));
+        IDSI_TRY(idsi_check_primes(ctx, options->primes));
         chosen = *options;
     }
-    if (chosen.primes > IDS_MAX_PRIMES) {
-        return idsi_fail(ctx, IDS_ERR_ARG, "%u primes: at most %u are used",
-                         (unsigned)chosen.primes, IDS_MAX_PRIMES);
-    }
-    *fresh = NULL;
     IDSI_TRY(idsi_alloc_array(ctx, 1, sizeof *made, &made));
     made->ctx = ctx;
     made->model = model;
@@ -183,7 +179,7 @@ ids_status ids_fresh_create(ids_ctx *ctx, const ids_model *model, uint32_t from,
         IDSI_TRY(add_degree(made, d, chosen.table_only));
     }
 done:
-    if (made != NULL && (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED)) {
+    if (st == IDS_OK || st == IDS_ERR_LIMIT || st == IDS_ERR_CANCELLED) {
         *fresh = made;
     } else {
         ids_fresh_free(made);

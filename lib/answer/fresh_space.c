@@ -308,37 +308,6 @@ static ids_status rows_create(ids_ctx *ctx, size_t count, mpz_t **rows)
     return st;
 }
 
-/* The fractions of one row as integers with content 1; false when there are none. */
-static bool make_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, mpz_t *out)
-{
-    bool good = true;
-    mpq_t fraction;
-    mpz_t scale;
-
-    mpq_init(fraction);
-    mpz_init_set_ui(scale, 1);
-    for (size_t m = 0; good && m < count; m++) {
-        good = idsi_border_reconstruct(fraction, residues[m], modulus);
-        mpz_lcm(scale, scale, mpq_denref(fraction));
-        good = good && mpz_sizeinbase(scale, 2) < mpz_sizeinbase(modulus, 2);
-    }
-    for (size_t m = 0; good && m < count; m++) {
-        good = idsi_border_reconstruct(fraction, residues[m], modulus);
-        mpz_mul(out[m], mpq_numref(fraction), scale);
-        mpz_divexact(out[m], out[m], mpq_denref(fraction));
-    }
-    mpz_set_ui(scale, 0);
-    for (size_t m = 0; good && m < count; m++) {
-        mpz_gcd(scale, scale, out[m]);
-    }
-    for (size_t m = 0; good && m < count && mpz_cmp_ui(scale, 1) > 0; m++) {
-        mpz_divexact(out[m], out[m], scale);
-    }
-    mpq_clear(fraction);
-    mpz_clear(scale);
-    return good;
-}
-
 /* Whether integer rows are multiples of the kernel mod a prime that did not go into them. */
 static bool agree(const idsi_space_search *s, mpz_t *rows)
 {
@@ -391,8 +360,9 @@ ids_status idsi_space_lift(idsi_space_search *s, bool modulo, mpz_t **rows, size
             mpz_mul_ui(modulus, modulus, s->prime);
             ready = true;
             for (size_t i = 0; ready && i < s->row_count; i++) {
-                ready = make_integers(residues + i * s->monomials, s->monomials, modulus,
-                                      made + i * s->monomials);
+                ready = idsi_residues_to_integers(residues + i * s->monomials, s->monomials,
+                                                  modulus, mpz_sizeinbase(modulus, 2) - 1,
+                                                  made + i * s->monomials);
             }
         }
         IDSI_TRY(idsi_space_draw(s));

@@ -18,6 +18,7 @@
  * of these identities and the image together. Where q = r, the first alone is enough, since r is
  * at most q. That the identities hold in such a model is not certain either.
  */
+#include <math.h>
 #include <string.h>
 
 #include "fresh_private.h"
@@ -85,9 +86,9 @@ static ids_status fill_row(job *j, idsi_partition_engine *engine, idsi_image *im
     if (image->base_value.multiplicity < j->base[i].multiplicity) {
         j->base[i] = image->base_value;
         row->holding = row->free - rank;
-    } else if (image->base_value.multiplicity == j->base[i].multiplicity &&
-               row->free - rank < row->holding) {
-        row->holding = row->free - rank;
+    } else if (image->base_value.multiplicity == j->base[i].multiplicity) {
+        j->base[i].error = fmax(j->base[i].error, image->base_value.error);
+        row->holding = row->free - rank < row->holding ? row->free - rank : row->holding;
     }
     IDSI_TRY(idsi_partition_account(engine, row->partition.part, row->partition.length, &account));
     j->blocks[i] = account.blocks > j->blocks[i] ? account.blocks : j->blocks[i];
@@ -147,7 +148,9 @@ static double certify(const job *j, size_t i, uint32_t primes)
     } else if (rank > 0 && base->bits > 0) {
         error = idsi_prime_error(base->bits, base->error, primes);
     }
-    error += j->fresh->doubt;
+    if (row->free > 0) {
+        error += j->fresh->doubt;
+    }
     if (row->fresh > 0 || error > 0) {
         row->certainty = IDS_CERTAINTY_MODULAR;
         row->bits = idsi_error_bits(error);
@@ -164,6 +167,12 @@ static ids_status sum_up(job *j, uint32_t primes)
     for (size_t i = 0; i < j->count; i++) {
         const ids_fresh_row *row = &j->rows[i];
         uint64_t product = 0;
+        if (row->holding < row->consequences) {
+            st = idsi_fail(j->ctx, IDS_ERR_UNABLE,
+                           "degree %u: the primes contradict each other; another seed gives others",
+                           j->degree);
+            goto done;
+        }
         error += certify(j, i, primes);
         if (!idsi_mul_u64(row->free, row->dimension, &product) ||
             !idsi_add_u64(sum->free, product, &sum->free)) {

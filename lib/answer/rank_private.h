@@ -9,6 +9,8 @@
 
 /* (rank_table.c) IDS_ERR_ARG when an option asks for more primes than IDS_MAX_PRIMES. */
 ids_status idsi_check_primes(ids_ctx *ctx, uint32_t primes);
+/* (rank_table.c) The same, and that `field` is 0 or a prime that goes with the others. */
+ids_status idsi_check_field(ids_ctx *ctx, uint32_t field, bool exact, uint32_t primes);
 
 /*
  * Whether over the field of `field` elements (0: the rational numbers) some identity of at most

@@ -248,22 +248,31 @@ ids_status idsi_check_primes(ids_ctx *ctx, uint32_t primes)
                      IDS_MAX_PRIMES);
 }
 
+ids_status idsi_check_field(ids_ctx *ctx, uint32_t field, bool exact, uint32_t primes)
+{
+    ids_status st = IDS_OK;
+
+    IDSI_TRY(idsi_check_primes(ctx, primes));
+    if (field == 0) {
+        return IDS_OK;
+    }
+    IDSI_TRY(idsi_prime_check(ctx, field));
+    if (exact || primes > 1) {
+        st = idsi_fail(ctx, IDS_ERR_ARG,
+                       "a proof over the rational numbers and several primes exclude the ranks "
+                       "over the field of %u elements",
+                       field);
+    }
+done:
+    return st;
+}
+
 static ids_status check_options(ids_ctx *ctx, const ids_rank_options *options)
 {
     ids_status st = IDS_OK;
 
     IDSI_TRY(idsi_check_struct(ctx, "ids_rank_options", options->struct_size, sizeof *options));
-    IDSI_TRY(idsi_check_primes(ctx, options->primes));
-    if (options->field == 0) {
-        return IDS_OK;
-    }
-    IDSI_TRY(idsi_prime_check(ctx, options->field));
-    if (options->exact || options->primes > 1) {
-        st = idsi_fail(ctx, IDS_ERR_ARG,
-                       "a proof over the rational numbers and several primes exclude the ranks "
-                       "over the field of %u elements",
-                       options->field);
-    }
+    st = idsi_check_field(ctx, options->field, options->exact, options->primes);
 done:
     return st;
 }

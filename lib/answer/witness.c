@@ -164,8 +164,8 @@ static bool holds(const idsi_seeker *s, mpz_t *values, bool *negative)
     return good;
 }
 
-/* Fractions of the residues, as integers without common factor; false when there are none. */
-static bool make_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, mpz_t *values)
+bool idsi_residues_to_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, size_t most_bits,
+                               mpz_t *values)
 {
     bool good = true;
     mpq_t fraction;
@@ -175,9 +175,8 @@ static bool make_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, mpz
     mpz_init_set_ui(scale, 1);
     for (size_t m = 0; good && m < count; m++) {
         good = idsi_border_reconstruct(fraction, residues[m], modulus);
-        if (good) {
-            mpz_lcm(scale, scale, mpq_denref(fraction));
-        }
+        mpz_lcm(scale, scale, mpq_denref(fraction));
+        good = good && mpz_sizeinbase(scale, 2) <= most_bits;
     }
     for (size_t m = 0; good && m < count; m++) {
         good = idsi_border_reconstruct(fraction, residues[m], modulus);
@@ -185,10 +184,10 @@ static bool make_integers(mpz_t *residues, size_t count, mpz_srcptr modulus, mpz
         mpz_divexact(values[m], values[m], mpq_denref(fraction));
     }
     mpz_set_ui(scale, 0);
-    for (size_t m = 0; m < count; m++) {
+    for (size_t m = 0; good && m < count; m++) {
         mpz_gcd(scale, scale, values[m]);
     }
-    for (size_t m = 0; m < count && mpz_sgn(scale) != 0; m++) {
+    for (size_t m = 0; good && m < count && mpz_cmp_ui(scale, 1) > 0; m++) {
         mpz_divexact(values[m], values[m], scale);
     }
     mpq_clear(fraction);
@@ -215,8 +214,8 @@ static ids_status lift(choice *f, mpz_t *residues, mpz_ptr modulus, mpz_t *value
             idsi_residue_join(residues[m], modulus, f->value[m], primes[k]);
         }
         mpz_mul_ui(modulus, modulus, primes[k]);
-        proved =
-            make_integers(residues, s->monomials, modulus, values) && holds(s, values, &negative);
+        proved = idsi_residues_to_integers(residues, s->monomials, modulus, SIZE_MAX, values) &&
+                 holds(s, values, &negative);
         for (size_t m = 0; negative && m < s->monomials; m++) {
             mpz_neg(values[m], values[m]);
         }

@@ -69,6 +69,15 @@ void idsi_free(ids_ctx *ctx, void *ptr); /* NULL is fine; any thread */
 ids_status idsi_budget_check(ids_ctx *ctx, uint64_t bytes, const char *what);
 ids_status idsi_strdup(ids_ctx *ctx, const char *text, char **out);
 
+/* ---- hashing ------------------------------------------------------------------------------ */
+
+/* One more number of what is hashed; the low bits are good for a slot. */
+static inline uint64_t idsi_hash_add(uint64_t hash, uint64_t number)
+{
+    hash = (hash ^ number) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden ratio */
+    return hash ^ (hash >> 32);
+}
+
 /* ---- progress and cancel ------------------------------------------------------------------ */
 
 /* Cheap enough for inner loops: tests the cancel flag, calls the hook at most ten times a second.

@@ -29,8 +29,7 @@ static uint32_t *find_slot(const compiler *c, const idsi_law_node *node)
 
     IDSI_ASSERT(c->slots != NULL);
     for (uint32_t i = 0; i < node->arity; i++) {
-        hash = (hash ^ (uint32_t)node->arg[i]) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden */
-        hash ^= hash >> 32;
+        hash = idsi_hash_add(hash, (uint32_t)node->arg[i]);
     }
     for (;; hash++) {
         uint32_t *slot = &c->slots[hash & (c->slot_count - 1)];

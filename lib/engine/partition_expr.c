@@ -23,8 +23,7 @@ static size_t find_expr(const idsi_partition_engine *engine, const idsi_expr *ex
     const uint32_t *words = (const uint32_t *)expr;
     uint64_t hash = 0;
     for (size_t i = 0; i < sizeof *expr / sizeof *words; i++) {
-        hash = (hash ^ words[i]) * UINT64_C(0x9E3779B97F4A7C15);
-        hash ^= hash >> 29;
+        hash = idsi_hash_add(hash, words[i]);
     }
     size_t at = (size_t)hash & (engine->expr_slots - 1);
     while (engine->expr_slot[at] != 0 &&

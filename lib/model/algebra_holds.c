@@ -14,6 +14,7 @@
  * that leaves little of the dimension^degree tuples. Variables that the law is symmetric or
  * antisymmetric in are filled in increasing order only.
  */
+#include <math.h>
 #include <string.h>
 
 #include "algebra_private.h"
@@ -94,24 +95,6 @@ done:
     return st;
 }
 
-/* Bits of the sum of the absolute values of the coefficients, which are integers. */
-static size_t coefficient_bits(const idsi_poly *poly)
-{
-    mpz_t sum;
-    mpz_t term;
-
-    mpz_init(sum);
-    mpz_init(term);
-    for (size_t t = 0; t < poly->count; t++) {
-        mpz_abs(term, mpq_numref(poly->coefficients[t]));
-        mpz_add(sum, sum, term);
-    }
-    const size_t bits = mpz_sizeinbase(sum, 2);
-    mpz_clear(sum);
-    mpz_clear(term);
-    return bits;
-}
-
 /* How many primes over 2^29 make sure that a value is 0. */
 static ids_status count_primes(const tester *t, size_t *primes)
 {
@@ -121,7 +104,8 @@ static ids_status count_primes(const tester *t, size_t *primes)
     size_t top[IDS_MAX_OPERATIONS] = {0};
     size_t most[IDS_MAX_OPERATIONS] = {0};
     size_t largest = 0;
-    size_t bits = coefficient_bits(poly);
+    /* One bit more, for the rounding of the logarithm. */
+    size_t bits = (size_t)ceil(idsi_sum_bits(poly->coefficients, poly->count)) + 1;
 
     for (size_t op = 0; op < poly->sig->count; op++) {
         IDSI_TRY(measure(t->ctx, &t->algebra->tables[t->operation[op]], &bottom[op], &top[op]));

@@ -6,6 +6,7 @@
 #include <stdio.h>
 #include <string.h>
 
+#include "../answer/rank_private.h"
 #include "../field/field_private.h"
 #include "../young/skew_private.h"
 #include "run_private.h"
@@ -14,10 +15,12 @@
 
 static ids_status check_options(ids_ctx *ctx, const ids_run_options *options)
 {
+    ids_status st = IDS_OK;
     uint32_t most = IDS_MAX_DEGREE;
 
-    if (options->struct_size != sizeof *options) {
-        return idsi_fail_arg(ctx, "struct_size");
+    st = idsi_check_struct(ctx, "ids_run_options", options->struct_size, sizeof *options);
+    if (st != IDS_OK) {
+        return st;
     }
     most = options->by_partition ? IDSI_SHAPE_MAX : IDS_MAX_DEGREE;
     if (options->from == 0 || options->from > options->to || options->to > most) {
@@ -28,16 +31,7 @@ static ids_status check_options(ids_ctx *ctx, const ids_run_options *options)
         return idsi_fail(ctx, IDS_ERR_ARG,
                          "by partition ranks are neither proved nor over a field of one's own");
     }
-    if (options->field != 0) {
-        if (options->exact || options->primes > 1) {
-            return idsi_fail(ctx, IDS_ERR_ARG,
-                             "a proof over the rational numbers and several primes exclude the "
-                             "ranks over the field of %u elements",
-                             (unsigned)options->field);
-        }
-        return idsi_prime_check(ctx, options->field);
-    }
-    return IDS_OK;
+    return idsi_check_field(ctx, options->field, options->exact, options->primes);
 }
 
 static ids_status draw_primes(ids_run *run)

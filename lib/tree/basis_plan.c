@@ -196,8 +196,7 @@ static uint64_t hash_shape(const idsi_shape *shape, size_t length)
     uint64_t hash = length;
 
     for (size_t i = 0; i < (length + 7) / 8; i++) {
-        hash = (hash ^ shape->word[i]) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden ratio */
-        hash ^= hash >> 32;
+        hash = idsi_hash_add(hash, shape->word[i]);
     }
     return hash;
 }

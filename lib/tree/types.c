@@ -307,12 +307,6 @@ done:
 
 /* ---- from a tree to its type ----------------------------------------------------------------- */
 
-static uint64_t mix(uint64_t hash, uint32_t number)
-{
-    hash = (hash ^ number) * UINT64_C(0x9E3779B97F4A7C15); /* 2^64 / golden ratio */
-    return hash ^ (hash >> 32);
-}
-
 /* The slot of the type with this operation and these arguments, or the empty one it would have.
  * Argument i is children[i * step]. */
 static uint32_t *find_slot(const ids_types *types, uint32_t op, const uint32_t *children,
@@ -322,7 +316,7 @@ static uint32_t *find_slot(const ids_types *types, uint32_t op, const uint32_t *
     uint64_t hash = op;
 
     for (uint32_t i = 0; i < arity; i++) {
-        hash = mix(hash, children[(ptrdiff_t)i * step]);
+        hash = idsi_hash_add(hash, children[(ptrdiff_t)i * step]);
     }
     for (;; hash++) {
         uint32_t *slot = &types->slots[hash & types->slot_mask];

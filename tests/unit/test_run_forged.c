@@ -8,38 +8,11 @@
 #include <string.h>
 
 #include "run/run_private.h"
+#include "run_support.h"
 #include "support.h"
 
 static const char jordan[] = "operation a*b commutative\nidentity ((x*x)*y)*x = (x*x)*(y*x)\n";
 static const char nil[] = "operation a*b commutative\nidentity (x*x)*x = 0\n";
-
-static char folder[32];
-
-static void make_folder(void)
-{
-    snprintf(folder, sizeof folder, "forged-XXXXXX");
-    ck_assert_ptr_nonnull(mkdtemp(folder));
-}
-
-static void remove_folder(void)
-{
-    char command[64];
-    snprintf(command, sizeof command, "rm -rf '%s'", folder);
-    ck_assert_int_eq(system(command), 0);
-}
-
-static ids_run_options question(uint32_t from, uint32_t to)
-{
-    return (ids_run_options){
-        .struct_size = sizeof(ids_run_options), .from = from, .to = to, .by_partition = true};
-}
-
-static ids_status start(ids_ctx *ctx, const char *text, ids_run_options options,
-                        ids_run_access access, ids_run **run)
-{
-    *run = NULL;
-    return ids_run_create(ctx, folder, text, strlen(text), NULL, &options, access, run);
-}
 
 /* A run with its cells all stored; what they came to plays no part here. */
 static void make_run(ids_ctx *ctx, const char *text, ids_run_options options)
@@ -47,8 +20,8 @@ static void make_run(ids_ctx *ctx, const char *text, ids_run_options options)
     ids_run *run = NULL;
     ids_cell_result result = {.free = 1, .quotient = 1};
 
-    make_folder();
-    TEST_OK(ctx, start(ctx, text, options, IDS_RUN_ALONE, &run));
+    run_make_folder();
+    TEST_OK(ctx, run_start(ctx, text, options, IDS_RUN_ALONE, &run));
     for (size_t i = 0; i < ids_run_cell_count(run); i++) {
         TEST_OK(ctx, ids_run_store(run, i, &result));
     }
@@ -68,7 +41,7 @@ static size_t count_done(const ids_run *run)
 static size_t read_file(const char *name, char *bytes, size_t most)
 {
     char path[128];
-    snprintf(path, sizeof path, "%s/%s", folder, name);
+    snprintf(path, sizeof path, "%s/%s", run_folder, name);
     FILE *file = fopen(path, "rb");
     ck_assert_ptr_nonnull(file);
     size_t length = fread(bytes, 1, most - 1, file);
@@ -80,7 +53,7 @@ static size_t read_file(const char *name, char *bytes, size_t most)
 static void write_file(const char *name, const char *bytes, size_t length)
 {
     char path[128];
-    snprintf(path, sizeof path, "%s/%s", folder, name);
+    snprintf(path, sizeof path, "%s/%s", run_folder, name);
     FILE *file = fopen(path, "wb");
     ck_assert_ptr_nonnull(file);
     ck_assert_uint_eq(fwrite(bytes, 1, length, file), length);
@@ -127,9 +100,9 @@ START_TEST(test_other_version)
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
 
-    make_run(ctx, jordan, question(1, 3));
+    make_run(ctx, jordan, run_question(1, 3));
     forge("run.txt", "version", "9.9");
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     ids_run_free(run);
     for (int round = 0; round < 2; round++) {
         if (round == 0) {
@@ -137,13 +110,14 @@ START_TEST(test_other_version)
         } else {
             forge("run.txt", "by", "something new");
         }
-        TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_SHARED, &run), IDS_ERR_ARG);
+        TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_SHARED, &run), IDS_ERR_ARG);
         ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "is one of idspan 9.9, this is"));
-        TEST_STATUS(ctx, start(ctx, jordan, question(1, 3), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+        TEST_STATUS(ctx, run_start(ctx, jordan, run_question(1, 3), IDS_RUN_ALONE, &run),
+                    IDS_ERR_ARG);
         ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "is one of idspan 9.9, this is"));
-        TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+        TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
     }
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -159,7 +133,7 @@ static void spoil(int how)
 
     bytes[length / 2] ^= 1;
     if (how == 0) {
-        snprintf(path, sizeof path, "%s/run.txt", folder);
+        snprintf(path, sizeof path, "%s/run.txt", run_folder);
         ck_assert_int_eq(remove(path), 0);
     } else {
         write_file(how == 2 ? "presentation.pres" : "run.txt", bytes, length);
@@ -171,27 +145,27 @@ START_TEST(test_cells_without_question)
 {
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
-    ids_run_options seeded = question(1, 3);
-    ids_run_options whole = question(1, 3);
+    ids_run_options seeded = run_question(1, 3);
+    ids_run_options whole = run_question(1, 3);
     ids_run_access access = _i % 2 == 0 ? IDS_RUN_SHARED : IDS_RUN_ALONE;
 
     seeded.seed = 1;
     whole.by_partition = false;
-    make_run(ctx, jordan, question(1, 3));
+    make_run(ctx, jordan, run_question(1, 3));
     spoil(_i / 2);
-    TEST_STATUS(ctx, start(ctx, nil, question(1, 3), access, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, nil, run_question(1, 3), access, &run), IDS_ERR_ARG);
     ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "none of the cells"));
-    TEST_STATUS(ctx, start(ctx, jordan, seeded, access, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, whole, access, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, question(4, 5), access, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run),
+    TEST_STATUS(ctx, run_start(ctx, jordan, seeded, access, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, whole, access, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, run_question(4, 5), access, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run),
                 _i / 2 == 0 ? IDS_ERR_IO : IDS_ERR_PARSE);
-    TEST_OK(ctx, start(ctx, jordan, question(2, 5), access, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(2, 5), access, &run));
     ck_assert_uint_eq(count_done(run), 5);
     ids_run_free(run);
-    TEST_OK(ctx, ids_run_open(ctx, folder, access, &run));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, access, &run));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -203,20 +177,20 @@ START_TEST(test_one_cell_fits)
     ids_run *run = NULL;
     ids_cell cell;
 
-    make_run(ctx, jordan, question(1, 3));
+    make_run(ctx, jordan, run_question(1, 3));
     spoil(1);
     for (int k = 0; k < 5; k++) {
         static const char *const names[] = {"cell-1.1.txt", "cell-2.2.txt", "cell-2.1+1.txt",
                                             "cell-3.3.txt", "cell-3.2+1.txt"};
         forge(names[k], "seed", "1");
     }
-    TEST_OK(ctx, start(ctx, jordan, question(1, 3), IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(1, 3), IDS_RUN_ALONE, &run));
     ck_assert_uint_eq(count_done(run), 1);
     TEST_OK(ctx, ids_run_cell(run, 0, &cell));
     ck_assert_int_eq(cell.state, IDS_CELL_DAMAGED);
     ck_assert_ptr_nonnull(strstr(cell.message, "another run"));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -227,13 +201,13 @@ START_TEST(test_no_cells)
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
 
-    make_folder();
-    TEST_OK(ctx, start(ctx, jordan, question(1, 3), IDS_RUN_ALONE, &run));
+    run_make_folder();
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(1, 3), IDS_RUN_ALONE, &run));
     ids_run_free(run);
     spoil(1);
-    TEST_OK(ctx, start(ctx, nil, question(1, 4), IDS_RUN_SHARED, &run));
+    TEST_OK(ctx, run_start(ctx, nil, run_question(1, 4), IDS_RUN_SHARED, &run));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -251,29 +225,29 @@ START_TEST(test_primes)
     char own[32];
     char twice[64];
 
-    make_run(ctx, jordan, question(1, 1));
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    make_run(ctx, jordan, run_question(1, 1));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     snprintf(own, sizeof own, "%u", (unsigned)ids_run_prime(run, 0));
     ids_run_free(run);
     for (size_t i = 0; i < sizeof forged / sizeof *forged; i++) {
         forge("run.txt", "primes", forged[i]);
         forge("cell-1.1.txt", "primes", forged[i]);
-        TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_ALONE, &run), IDS_ERR_PARSE);
+        TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_ALONE, &run), IDS_ERR_PARSE);
         ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "is damaged"));
     }
     ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "primes are not those"));
     snprintf(twice, sizeof twice, "%s %s", own, own);
     forge("run.txt", "primes", twice);
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
     snprintf(twice, sizeof twice, "%s ", own);
     forge("run.txt", "primes", twice);
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
     forge("run.txt", "primes", own);
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     ids_run_free(run);
     forge("run.txt", "seed", "1");
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
-    remove_folder();
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -283,22 +257,22 @@ START_TEST(test_field)
 {
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
-    ids_run_options options = question(1, 2);
+    ids_run_options options = run_question(1, 2);
 
     options.by_partition = false;
     options.field = 5;
     make_run(ctx, jordan, options);
     forge("run.txt", "field", "6");
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
     forge("run.txt", "field", "1073741827"); /* a prime above 2^30, from memory */
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
     forge("run.txt", "field", "5");
     forge("run.txt", "exact", "1");
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
     forge("run.txt", "exact", "0");
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -312,15 +286,15 @@ START_TEST(test_options_again)
     ids_run *run = NULL;
     ids_run_info info;
 
-    make_run(ctx, jordan, question(1, 3));
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    make_run(ctx, jordan, run_question(1, 3));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     TEST_OK(ctx, ids_run_describe(run, &info));
     ids_run_options options = info.options;
     ids_run_free(run);
-    TEST_OK(ctx, start(ctx, jordan, options, IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, options, IDS_RUN_ALONE, &run));
     ck_assert_uint_eq(count_done(run), ids_run_cell_count(run));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST

@@ -10,6 +10,7 @@
 
 #include <idspan/idspan.h>
 
+#include "run_support.h"
 #include "support.h"
 
 static const char jordan[] = "operation a*b commutative\n"
@@ -18,34 +19,6 @@ static const char jordan[] = "operation a*b commutative\n"
 static const char renamed[] = "operation a*b commutative\n"
                               "identity j: x*(y*(x*x)) - (x*x)*(y*x)\ncandidate c: x*x\n";
 static const char other[] = "operation a*b commutative\nidentity (x*x)*x = 0\n";
-
-static char folder[64];
-
-static void make_folder(void)
-{
-    snprintf(folder, sizeof folder, "run-XXXXXX");
-    ck_assert_ptr_nonnull(mkdtemp(folder));
-}
-
-static void remove_folder(void)
-{
-    char command[128];
-    snprintf(command, sizeof command, "rm -rf '%s'", folder);
-    ck_assert_int_eq(system(command), 0);
-}
-
-static ids_run_options question(uint32_t from, uint32_t to)
-{
-    return (ids_run_options){
-        .struct_size = sizeof(ids_run_options), .from = from, .to = to, .by_partition = true};
-}
-
-static ids_status start(ids_ctx *ctx, const char *text, ids_run_options options,
-                        ids_run_access access, ids_run **run)
-{
-    *run = NULL;
-    return ids_run_create(ctx, folder, text, strlen(text), "a.pres", &options, access, run);
-}
 
 static void compute_all(ids_ctx *ctx, ids_run *run, uint32_t top)
 {
@@ -84,19 +57,19 @@ START_TEST(test_same_table)
     ids_presentation *pres = NULL;
     ids_partition_table *table = NULL;
     ids_run *run = NULL;
-    ids_run_options asked = question(2, 7);
+    ids_run_options asked = run_question(2, 7);
     ids_partition_options options = {.struct_size = sizeof options, .seed = 3};
 
-    make_folder();
+    run_make_folder();
     options.primes = asked.primes = _i == 0 ? 1 : 3;
     asked.seed = 3;
     TEST_OK(ctx, ids_presentation_read(ctx, jordan, strlen(jordan), "a", &pres));
     TEST_OK(ctx, ids_partition_table_create(ctx, pres, 2, 7, &options, &table));
-    TEST_OK(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
     compute_all(ctx, run, 5); /* in two goes: nothing depends on where the first one ended */
     compute_all(ctx, run, 7);
     ids_run_free(run);
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     ck_assert_uint_eq(ids_run_line_count(run), ids_partition_table_count(table));
     for (size_t i = 0; i < ids_run_line_count(run); i++) {
         ids_run_line line;
@@ -113,7 +86,7 @@ START_TEST(test_same_table)
     ids_run_free(run);
     ids_partition_table_free(table);
     ids_presentation_free(pres);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -138,15 +111,15 @@ START_TEST(test_same_degrees)
     ids_rank_table *table = NULL;
     ids_run *run = NULL;
     ids_rank_options options = {.struct_size = sizeof options};
-    ids_run_options asked = question(1, 6);
+    ids_run_options asked = run_question(1, 6);
 
-    make_folder();
+    run_make_folder();
     asked.by_partition = false;
     asked.exact = options.exact = _i == 1;
     asked.field = options.field = _i == 2 ? 3 : 0;
     TEST_OK(ctx, ids_presentation_read(ctx, jordan, strlen(jordan), "a", &pres));
     TEST_OK(ctx, ids_rank_table_create(ctx, pres, 1, 6, &options, &table));
-    TEST_OK(ctx, start(ctx, jordan, asked, IDS_RUN_SHARED, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, asked, IDS_RUN_SHARED, &run));
     compute_all(ctx, run, 6);
     TEST_OK(ctx, ids_run_refresh(run));
     ck_assert_uint_eq(ids_run_line_count(run), 6);
@@ -169,54 +142,55 @@ START_TEST(test_same_degrees)
     ids_run_free(run);
     ids_rank_table_free(table);
     ids_presentation_free(pres);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
 
-/* What may go on in a folder, and what is another run. */
+/* What may go on in a run_folder, and what is another run. */
 START_TEST(test_refused)
 {
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
     ids_run *second = NULL;
-    ids_run_options more = question(1, 5);
+    ids_run_options more = run_question(1, 5);
     ids_run_info info;
 
-    make_folder();
-    TEST_OK(ctx, start(ctx, jordan, question(2, 4), IDS_RUN_ALONE, &run));
-    TEST_STATUS(ctx, start(ctx, jordan, question(2, 4), IDS_RUN_ALONE, &second), IDS_ERR_UNABLE);
+    run_make_folder();
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(2, 4), IDS_RUN_ALONE, &run));
+    TEST_STATUS(ctx, run_start(ctx, jordan, run_question(2, 4), IDS_RUN_ALONE, &second),
+                IDS_ERR_UNABLE);
     ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "process "));
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_SHARED, &second), IDS_ERR_UNABLE);
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &second));
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_SHARED, &second), IDS_ERR_UNABLE);
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &second));
     ids_run_free(second);
     ids_run_free(run);
 
-    TEST_STATUS(ctx, start(ctx, other, question(2, 4), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, other, run_question(2, 4), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     ck_assert_ptr_nonnull(strstr(ids_ctx_message(ctx), "identities"));
     more.seed = 1;
-    TEST_STATUS(ctx, start(ctx, jordan, more, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, more, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     more.seed = 0;
     more.primes = 2;
-    TEST_STATUS(ctx, start(ctx, jordan, more, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, more, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     more.primes = 1;
     more.by_partition = false;
-    TEST_STATUS(ctx, start(ctx, jordan, more, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, more, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     more.by_partition = true;
-    TEST_STATUS(ctx, start(ctx, jordan, question(2, 3), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, more, IDS_RUN_SHARED, &run), IDS_ERR_ARG);
-    TEST_OK(ctx, start(ctx, renamed, question(2, 4), IDS_RUN_SHARED, &run));
-    TEST_OK(ctx, start(ctx, jordan, question(2, 4), IDS_RUN_SHARED, &second));
+    TEST_STATUS(ctx, run_start(ctx, jordan, run_question(2, 3), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, more, IDS_RUN_SHARED, &run), IDS_ERR_ARG);
+    TEST_OK(ctx, run_start(ctx, renamed, run_question(2, 4), IDS_RUN_SHARED, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(2, 4), IDS_RUN_SHARED, &second));
     ids_run_free(second);
     ids_run_free(run);
-    TEST_OK(ctx, start(ctx, jordan, more, IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, more, IDS_RUN_ALONE, &run));
     TEST_OK(ctx, ids_run_describe(run, &info));
     ck_assert_uint_eq(info.options.from, 1);
     ck_assert_uint_eq(info.options.to, 5);
     ck_assert_uint_eq(ids_run_cell_count(run), 1 + 2 + 3 + 5 + 7);
     ck_assert_str_eq(info.text, jordan);
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -228,7 +202,7 @@ static void damage(const char *name, uint64_t place, bool cut)
     struct stat state;
     unsigned char byte = 0;
 
-    snprintf(path, sizeof path, "%s/%s", folder, name);
+    snprintf(path, sizeof path, "%s/%s", run_folder, name);
     ck_assert_int_eq(stat(path, &state), 0);
     uint64_t bit = place % (8 * (uint64_t)state.st_size);
     if (cut) {
@@ -252,9 +226,9 @@ START_TEST(test_damage)
     uint64_t seed = test_seed();
     idsi_random random;
 
-    make_folder();
+    run_make_folder();
     test_random(&random, 8);
-    TEST_OK(ctx, start(ctx, jordan, question(1, 4), IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(1, 4), IDS_RUN_ALONE, &run));
     compute_all(ctx, run, 4);
     for (int round = 0; round < 200; round++) {
         ids_cell cell;
@@ -284,16 +258,16 @@ START_TEST(test_damage)
     }
     ids_run_free(run);
     damage("run.txt", 300, false);
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
-    TEST_OK(ctx, start(ctx, jordan, question(1, 4), IDS_RUN_ALONE, &run));
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(1, 4), IDS_RUN_ALONE, &run));
     ids_run_free(run);
     damage("presentation.pres", 50, false);
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
-    TEST_OK(ctx, start(ctx, jordan, question(1, 4), IDS_RUN_ALONE, &run));
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_PARSE);
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(1, 4), IDS_RUN_ALONE, &run));
     TEST_OK(ctx, ids_run_describe(run, &info));
     ck_assert_uint_eq(info.done, ids_run_cell_count(run));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -304,18 +278,18 @@ START_TEST(test_failure)
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
     ids_cell cell;
-    ids_run_options asked = question(3, 4);
+    ids_run_options asked = run_question(3, 4);
     char command[256];
     size_t index = 0;
 
-    make_folder();
-    TEST_OK(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
+    run_make_folder();
+    TEST_OK(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
     TEST_OK(ctx, ids_run_cell_find(run, "4.2+2", &index));
     ck_assert_uint_eq(index, 5);
     TEST_STATUS(ctx, ids_run_cell_find(run, "4.4+2", &index), IDS_ERR_ARG);
     TEST_OK(ctx, ids_run_store_failure(run, index, "out of luck\nand more"));
     ids_run_free(run);
-    TEST_OK(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
     TEST_OK(ctx, ids_run_cell(run, index, &cell));
     ck_assert_int_eq(cell.state, IDS_CELL_FAILED);
     ck_assert_str_eq(cell.message, "out of luck");
@@ -324,15 +298,16 @@ START_TEST(test_failure)
     TEST_OK(ctx, ids_run_cell(run, index, &cell));
     ck_assert_int_eq(cell.state, IDS_CELL_DONE);
     ids_run_free(run);
-    snprintf(command, sizeof command, "cp %s/cell-4.4.txt %s/cell-4.3+1.txt", folder, folder);
+    snprintf(command, sizeof command, "cp %s/cell-4.4.txt %s/cell-4.3+1.txt", run_folder,
+             run_folder);
     ck_assert_int_eq(system(command), 0);
-    TEST_OK(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
+    TEST_OK(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run));
     TEST_OK(ctx, ids_run_cell_find(run, "4.3+1", &index));
     TEST_OK(ctx, ids_run_cell(run, index, &cell));
     ck_assert_int_eq(cell.state, IDS_CELL_DAMAGED);
     ck_assert_ptr_nonnull(strstr(cell.message, "another cell"));
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -347,8 +322,8 @@ START_TEST(test_plan)
     double seconds = 0;
     uint64_t memory = 0;
 
-    make_folder();
-    TEST_OK(ctx, start(ctx, jordan, question(2, 8), IDS_RUN_ALONE, &run));
+    run_make_folder();
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(2, 8), IDS_RUN_ALONE, &run));
     TEST_OK(ctx, ids_run_plan(run));
     TEST_OK(ctx, ids_run_work_create(run, 8, &work));
     TEST_OK(ctx, ids_run_work_grow(work, 8));
@@ -361,7 +336,7 @@ START_TEST(test_plan)
     }
     ids_run_work_free(work);
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -371,32 +346,35 @@ START_TEST(test_misuse_question)
 {
     ids_ctx *ctx = test_ctx();
     ids_run *run = NULL;
-    ids_run_options asked = question(1, 3);
+    ids_run_options asked = run_question(1, 3);
 
-    snprintf(folder, sizeof folder, "no/such/folder");
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_IO);
-    TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_IO);
-    make_folder();
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run), IDS_ERR_IO);
-    TEST_STATUS(ctx, ids_run_open(ctx, folder, (ids_run_access)7, &run), IDS_ERR_ARG);
+    snprintf(run_folder, sizeof run_folder, "no/such/folder");
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_IO);
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_IO);
+    run_make_folder();
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run), IDS_ERR_IO);
+    TEST_STATUS(ctx, ids_run_open(ctx, run_folder, (ids_run_access)7, &run), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_run_open(ctx, NULL, IDS_RUN_READ, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_READ, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, question(0, 3), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, question(3, 2), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, jordan, question(1, 17), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
-    TEST_STATUS(ctx, start(ctx, "nonsense", asked, IDS_RUN_ALONE, &run), IDS_ERR_PARSE);
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_READ, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, run_question(0, 3), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, run_question(3, 2), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, run_question(1, 17), IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, "nonsense", asked, IDS_RUN_ALONE, &run), IDS_ERR_PARSE);
+    asked.primes = IDS_MAX_PRIMES + 1;
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    asked.primes = 1;
     asked.exact = true;
-    TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     asked.by_partition = false;
     asked.field = 5;
-    TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     asked.exact = false;
     asked.field = 6;
-    TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     asked.struct_size = 1;
-    TEST_STATUS(ctx, start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
+    TEST_STATUS(ctx, run_start(ctx, jordan, asked, IDS_RUN_ALONE, &run), IDS_ERR_ARG);
     ck_assert_ptr_null(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
@@ -412,8 +390,8 @@ START_TEST(test_misuse_cells)
     ids_run_line line;
     size_t index = 0;
 
-    make_folder();
-    TEST_OK(ctx, start(ctx, jordan, question(1, 3), IDS_RUN_ALONE, &run));
+    run_make_folder();
+    TEST_OK(ctx, run_start(ctx, jordan, run_question(1, 3), IDS_RUN_ALONE, &run));
     TEST_STATUS(ctx, ids_run_work_create(run, 4, &work), IDS_ERR_ARG);
     TEST_STATUS(ctx, ids_run_work_create(NULL, 3, &work), IDS_ERR_ARG);
     TEST_OK(ctx, ids_run_work_create(run, 2, &work));
@@ -436,10 +414,10 @@ START_TEST(test_misuse_cells)
     ids_run_work_free(NULL);
     ids_run_free(run);
     ids_run_free(NULL);
-    TEST_OK(ctx, ids_run_open(ctx, folder, IDS_RUN_READ, &run));
+    TEST_OK(ctx, ids_run_open(ctx, run_folder, IDS_RUN_READ, &run));
     TEST_STATUS(ctx, ids_run_store(run, 0, &result), IDS_ERR_ARG);
     ids_run_free(run);
-    remove_folder();
+    run_remove_folder();
     test_ctx_free(ctx);
 }
 END_TEST
